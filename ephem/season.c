@@ -1,0 +1,92 @@
+/* SPDX-License-Identifier: MIT */
+#include "ephem/season.h"
+
+#include <stdlib.h>
+#include <string.h>
+
+void window_list_free(struct window_list *list)
+{
+	free(list->w);
+	*list = (struct window_list){0};
+}
+
+static struct window *list_next(struct window_list *list)
+{
+	if (list->n == list->room) {
+		const size_t room = list->room > 0 ? 2 * list->room : 64;
+		struct window *w = realloc(list->w, room * sizeof *w);
+		if (!w)
+			return NULL;
+		list->w = w;
+		list->room = room;
+	}
+	return &list->w[list->n];
+}
+
+static int by_reserve(const void *left, const void *right)
+{
+	const struct window_event *a = &((const struct window *)left)->event, *b = &((const struct window *)right)->event;
+	if (a->reserve_start_d != b->reserve_start_d)
+		return a->reserve_start_d < b->reserve_start_d ? -1 : 1;
+	const int name = strcmp(a->prepared->target->name, b->prepared->target->name);
+	if (name != 0)
+		return name;
+	if (a->kind != b->kind)
+		return a->kind < b->kind ? -1 : 1;
+	return (a->epoch > b->epoch) - (a->epoch < b->epoch);
+}
+
+static bool add_events(const struct target_night *tn, enum event_kind kind, long first, long last, const struct window_choice *choice,
+		       struct window_list *list, long *hidden)
+{
+	for (long epoch = first; epoch <= last; epoch++) {
+		struct window *w = list_next(list);
+		if (!w)
+			return false;
+		window_make(w, tn, kind, epoch, STAGE_CHANCE);
+		if (choice->all || window_listed(w, choice->min_chance))
+			list->n++;
+		else if (window_hidden(w))
+			++*hidden;
+	}
+	return true;
+}
+
+static bool add_target(const struct night *night, const struct prepared *p, const struct window_choice *choice, struct sun_sets *suns,
+		       struct window_list *list, long *hidden)
+{
+	const struct star star = night_star(night, p->target);
+	struct target_night tn;
+	bool ready = false;
+	for (int kind = KIND_TRANSIT; kind <= KIND_OCCULTATION; kind++) {
+		long first, last;
+		if (!(choice->kinds & (kind == KIND_TRANSIT ? KINDS_TRANSIT : KINDS_OCCULTATION)) ||
+		    !window_epochs(night, &star, p, (enum event_kind)kind, &first, &last))
+			continue;
+		if (!ready)
+			tn = target_on_night(night, p, &star, suns);
+		ready = true;
+		/* nothing of the night can be used and nobody asked for what is spoilt */
+		if (!choice->all && tn.limb.n == 0)
+			continue;
+		if (!add_events(&tn, (enum event_kind)kind, first, last, choice, list, hidden))
+			return false;
+	}
+	return true;
+}
+
+enum status night_windows(const struct night *night, const struct prepared prepared[], size_t n, const struct window_choice *choice,
+			  struct window_list *list, long *hidden, struct err *e)
+{
+	struct sun_sets suns = {.n = 0};
+	long not_listed = 0;
+	list->n = 0;
+	for (size_t i = 0; i < n; i++)
+		if (prepared[i].has_ephemeris && !add_target(night, &prepared[i], choice, &suns, list, &not_listed))
+			return err_set(e, ST_MEMORY, "no memory for %zu windows", list->n);
+	if (list->n > 1)
+		qsort(list->w, list->n, sizeof *list->w, by_reserve);
+	if (hidden)
+		*hidden = not_listed;
+	return ST_OK;
+}

@@ -1,0 +1,12 @@
+/* SPDX-License-Identifier: MIT
+ * The later stages of a window, for window.c only. */
+#ifndef WANE_EPHEM_WINDOW_STAGES_H
+#define WANE_EPHEM_WINDOW_STAGES_H
+
+#include "ephem/window.h"
+
+/* Need the event stage; cover also fills sky.airmass_min. */
+void window_make_cover(struct window *w, const struct target_night *tn);
+void window_make_chance(struct window *w, const struct target_night *tn);
+
+#endif
