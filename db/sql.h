@@ -1,0 +1,54 @@
+/* SPDX-License-Identifier: MIT
+ * Every SQL statement of a running store, by number; prepared when it opens, finalised when it closes. The
+ * schema is in schema.c. */
+#ifndef WANE_DB_SQL_H
+#define WANE_DB_SQL_H
+
+enum sql_id {
+	SQL_BEGIN,
+	SQL_COMMIT,
+	SQL_ROLLBACK,
+	SQL_STORE_INFO,
+	SQL_CHANGE_NEXT,
+	SQL_CHANGE_ADD,
+	SQL_TARGET_NEXT,
+	SQL_TARGET_LOAD, /* each target with its current ephemeris, columns of the one behind those of the
+			    other */
+	SQL_TARGET_BY_KEY,
+	SQL_TARGET_BY_ID,
+	SQL_TARGET_ADD,
+	SQL_TARGET_UPDATE,
+	SQL_TARGET_KEEP_OLD,
+	SQL_EPHEMERIS_NEXT,
+	SQL_EPHEMERIS_BY_ID,
+	SQL_EPHEMERIS_OF_TARGET,
+	SQL_EPHEMERIS_ADD,
+	SQL_CHANGE_OF_EPHEMERIS,
+	SQL_ALIAS_NEXT,
+	SQL_ALIAS_LOAD,
+	SQL_ALIAS_BY_KEY,
+	SQL_ALIAS_ADD,
+	SQL_ALIAS_UPDATE,
+	SQL_ALIAS_KEEP_OLD,
+	SQL_SITE_NEXT,
+	SQL_SITE_LOAD,
+	SQL_SITE_BY_KEY,
+	SQL_SITE_ADD,
+	SQL_SITE_UPDATE,
+	SQL_SITE_KEEP_OLD,
+	SQL_ALL_CHANGES, /* whole tables, for the check */
+	SQL_ALL_TARGETS_OLD,
+	SQL_ALL_EPHEMERIDES,
+	SQL_ALL_ALIASES_OLD,
+	SQL_ALL_SITES_OLD,
+	SQL_ALL_SETTINGS,
+	SQL_ALL_SETTINGS_OLD,
+	SQL_INTEGRITY,
+	SQL_FOREIGN_KEYS,
+	SQL_WRONG_POINTERS,
+	SQL_COUNTS,
+	SQL_COUNT
+};
+extern const char *const sql_text[SQL_COUNT];
+
+#endif

@@ -1,0 +1,81 @@
+/* SPDX-License-Identifier: MIT
+ * Inside of the store, for the files of db/ only: statements, and rows with revision and checksum. */
+#ifndef WANE_DB_STORE_PARTS_H
+#define WANE_DB_STORE_PARTS_H
+
+#include "db/row_crc.h"
+#include "db/sql.h"
+#include "db/store.h"
+
+#include <sqlite3.h>
+#include <stdbool.h>
+
+enum { UTC_BYTES = 24, WHO_BYTES = 64, VERB_BYTES = 64 };
+
+struct store {
+	sqlite3 *db;
+	sqlite3_stmt *stmt[SQL_COUNT];
+	enum store_mode mode;
+	bool read_only;
+	bool in_change;
+	int64_t change_id; /* 0 until the change set has a row: one that changes nothing leaves none */
+	char utc[UTC_BYTES], who[WHO_BYTES], verb[VERB_BYTES];
+	char id[33];
+	struct crc_table crc;
+};
+
+/* Turns an SQLite result into a status and a sentence. */
+enum status store_fault(const struct store *s, int rc, struct err *e);
+
+/* --- statements --- */
+/* Steps once: *row tells whether a row is there to be read. The statement has to be reset (sql_reset)
+ * afterwards. */
+MUST_USE enum status sql_step(struct store *s, enum sql_id id, bool *row, struct err *e);
+void sql_reset(struct store *s, enum sql_id id);
+/* Runs a statement that gives one whole number. */
+MUST_USE enum status sql_number(struct store *s, enum sql_id id, int64_t *out, struct err *e);
+
+/* --- rows --- */
+/* A table family: how many cells its row has before the checksum, where rev and change_id stand among them,
+ * its statements. */
+struct table {
+	const char *name;
+	size_t cells, rev_at, change_at;
+	enum sql_id next, add, update, keep_old;
+};
+/* A row read; owns its texts. */
+struct row {
+	struct cell cell[ROW_CELLS_MAX];
+	size_t n;
+	char *block;
+};
+void row_free(struct row *row);
+/* Whether the columns from `first` on hold table->cells cells and their right checksum; cells are borrowed
+ * from the statement. */
+bool row_read(struct store *s, enum sql_id id, int first, const struct table *table, struct cell *cell);
+/* The one row that statement `id` finds for `key`. ST_ABSENT (no message) when there is none; ST_STORE when
+ * its checksum is wrong. */
+MUST_USE enum status row_find(struct store *s, enum sql_id id, struct cell key, const struct table *table,
+			      struct row *out, struct err *e);
+/* Id for a new row. */
+MUST_USE enum status row_next_id(struct store *s, const struct table *table, int64_t *id, struct err *e);
+/* Adds a row: rev becomes 1, the change and the checksum are filled in. */
+MUST_USE enum status row_add(struct store *s, const struct table *table, struct cell *cell, struct err *e);
+/* Replaces `old` by `cell` where the store still has old's rev (else ST_CONFLICT) and keeps the old row with
+ * the change's id. */
+MUST_USE enum status row_replace(struct store *s, const struct table *table, const struct row *old,
+				 struct cell *cell, struct err *e);
+
+/* ST_STORE outside a change set. Gives the change set its row when it has none yet. */
+MUST_USE enum status change_needed(struct store *s, struct err *e);
+
+/* A copy of the whole store in memory, for trials: the file is only read. *out is the caller's: store_close.
+ */
+MUST_USE enum status store_copy(struct store *s, struct store **out, struct err *e);
+
+/* store_open.c */
+MUST_USE enum status store_connect(struct store *s, const char *path, struct err *e);
+/* An empty connection in memory, without tables. */
+MUST_USE enum status store_connect_memory(struct store *s, struct err *e);
+
+#endif

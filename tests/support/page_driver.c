@@ -1,0 +1,114 @@
+/* SPDX-License-Identifier: MIT */
+#include "tests/support/page_driver.h"
+
+#include "tests/support/check.h"
+
+#include <stdlib.h>
+#include <string.h>
+
+void driver_load(struct page_driver *d, int32_t evening_mjd)
+{
+	struct err e;
+	struct night_view v = fixture_night(d->fixture, evening_mjd, d->page->show_long_shots);
+	if (night_page_take(d->page, &v, &e) != ST_OK)
+		check_fail("%s", e.text);
+}
+
+void driver_draw(struct page_driver *d)
+{
+	night_page_tick(d->page, wall_now(&d->fixture->run.wall));
+	night_page_draw(d->page, &d->grid);
+}
+
+void driver_size(struct page_driver *d, int rows, int cols)
+{
+	struct err e;
+	if (grid_resize(&d->grid, rows, cols, &e) != ST_OK)
+		check_fail("%s", e.text);
+	night_page_size(d->page, d->grid.rows, d->grid.cols);
+	driver_draw(d);
+}
+
+void driver_open(struct page_driver *d, bool zoneinfo, int rows, int cols, enum tier tier)
+{
+	*d = (struct page_driver){.fixture = fixture_open(zoneinfo), .page = malloc(sizeof *d->page)};
+	if (!d->page)
+		check_fail("no memory");
+	d->grid.tier = tier;
+	night_page_open(d->page, &d->fixture->run);
+	night_page_tick(d->page, wall_now(&d->fixture->run.wall));
+	driver_load(d, FIXTURE_EVENING_MJD);
+	driver_size(d, rows, cols);
+}
+
+void driver_close(struct page_driver *d)
+{
+	night_page_close(d->page);
+	free(d->page);
+	grid_close(&d->grid);
+	fixture_close(d->fixture);
+}
+
+void driver_key(struct page_driver *d, uint32_t code)
+{
+	switch (night_page_key(d->page, code)) {
+	case WANT_NIGHT:
+		driver_load(d, d->page->wanted_mjd);
+		break;
+	case WANT_QUIT:
+		d->quit = true;
+		break;
+	case WANT_REPAINT:
+		d->repaints++;
+		break;
+	case WANT_SUSPEND:
+		d->suspends++;
+		break;
+	case WANT_RED:
+		d->reds++;
+		break;
+	case WANT_NOTHING:
+		break;
+	}
+	driver_draw(d);
+}
+
+void driver_keys(struct page_driver *d, const char *keys)
+{
+	for (; *keys; keys++)
+		driver_key(d, (unsigned char)*keys);
+}
+
+static char *screen_text(const struct page_driver *d)
+{
+	size_t n = grid_to_text(&d->grid, false, NULL, 0);
+	char *text = malloc(n + 1);
+	if (!text)
+		check_fail("no memory");
+	grid_to_text(&d->grid, false, text, n + 1);
+	return text;
+}
+
+bool driver_shows(const struct page_driver *d, const char *text)
+{
+	char *screen = screen_text(d);
+	bool found = strstr(screen, text) != NULL;
+	free(screen);
+	return found;
+}
+
+void driver_expect(const struct page_driver *d, const char *text)
+{
+	if (driver_shows(d, text))
+		return;
+	print_error("%s\n", screen_text(d));
+	check_fail("not on the screen: %s", text);
+}
+
+void driver_expect_not(const struct page_driver *d, const char *text)
+{
+	if (!driver_shows(d, text))
+		return;
+	print_error("%s\n", screen_text(d));
+	check_fail("on the screen: %s", text);
+}

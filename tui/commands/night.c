@@ -1,0 +1,126 @@
+/* SPDX-License-Identifier: MIT */
+#include "tui/commands/table.h"
+
+#include "tui/diagnose.h"
+#include "tui/given.h"
+#include "tui/sheets/out.h"
+#include "tui/sheets/text.h"
+#include "tui/sheets/windows.h"
+
+#include <string.h>
+
+static void write_text(FILE *to, const struct run *r, const struct night_view *v)
+{
+	struct text_sheet t;
+	text_begin(&t, to, r, false);
+	t.hidden = v->hidden;
+	text_head(&t, &r->site, r->zone, v);
+	/* a night of a clock change has two names; the head says so */
+	const struct night *n = &v->night;
+	struct local_time from = zone_local(r->zone, night_utc(n, 0.0)),
+			  to_time = zone_local(r->zone, night_utc(n, n->length_d));
+	text_heading(&t, from.offset_s == to_time.offset_s ? from.abbreviation : "local time");
+	text_rows(&t, v, r->zone, false);
+	text_rows(&t, v, r->zone, true);
+	text_foot(&t, n->mjd);
+}
+
+static bool write_csv(FILE *to, const struct night_view *v)
+{
+	struct csv_out c = {.file = to};
+	windows_csv_header(&c);
+	for (size_t i = 0; i < v->list.n; i++)
+		window_csv(&c, &v->list.w[i], &v->night);
+	return !c.failed;
+}
+
+static void write_json(FILE *to, const struct run *r, const struct night_view *v)
+{
+	struct json j = json_begin(to);
+	json_open(&j, NULL, '{', false);
+	site_json(&j, "site", &r->site);
+	limits_json(&j, r);
+	night_json(&j, v, r->limits.value[LIM_SUN]);
+	json_open(&j, "windows", '[', false);
+	for (size_t i = 0; i < v->list.n; i++)
+		window_json(&j, &v->list.w[i], &v->night);
+	json_close(&j, ']');
+	json_open(&j, "running_order", '[', false);
+	json_close(&j, ']');
+	json_close(&j, '}');
+	json_end(&j);
+}
+
+int night_write(struct run *r, int32_t evening_mjd)
+{
+	struct night_view view = {.hidden = 0};
+	struct out out;
+	struct err e;
+	enum format format;
+	if (format_of(r->options, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &e) != ST_OK)
+		return usage_fault("--format", &e);
+	if (out_open(&out, r->options->out, r->options->force, &e) != ST_OK)
+		return diagnose_err("--out", &e, EXIT_UNMET);
+	if (run_night(r, evening_mjd, format == FORMAT_TEXT, &view, &e) != ST_OK) {
+		out_abandon(&out);
+		night_view_free(&view);
+		return diagnose_err("night", &e, EXIT_UNMET);
+	}
+	bool whole = true;
+	if (format == FORMAT_TEXT)
+		write_text(out.file, r, &view);
+	else if (format == FORMAT_CSV)
+		whole = write_csv(out.file, &view);
+	else
+		write_json(out.file, r, &view);
+	if (format != FORMAT_TEXT)
+		leap_note(r, evening_mjd);
+	night_view_free(&view);
+	if (!whole) {
+		out_abandon(&out);
+		diagnose("memory", "none for a long cell");
+		return EXIT_UNMET;
+	}
+	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_err("--out", &e, EXIT_UNMET);
+}
+
+void leap_note(const struct run *r, int32_t last_mjd)
+{
+	struct date d = date_from_mjd(r->leap.expires_mjd);
+	if (last_mjd > r->leap.expires_mjd)
+		diagnose("leap seconds",
+			 "the table is known to be complete until %04d-%02d-%02d; later UTC times may be off "
+			 "by a second",
+			 d.year, d.month, d.day);
+}
+
+bool one_site(const struct options *o, const char *command)
+{
+	if (o->n_sites + o->n_places <= 1)
+		return true;
+	diagnose("--site", "%s takes one site or place (got %d)", command, o->n_sites + o->n_places);
+	return false;
+}
+
+int command_night(const struct env *env, const struct options *o)
+{
+	struct run run;
+	struct err e;
+	int code;
+	int32_t mjd;
+	const char *date = o->n_words > 1 ? o->word[1] : NULL;
+	if (!one_site(o, "night"))
+		return EXIT_USAGE;
+	/* a wrong date is told before anything is opened */
+	if (date && given_night_check(&leap_builtin, date, &e) != ST_OK && !strstr(date, ":60"))
+		return usage_fault("DATE", &e);
+	if (run_open(&run, env, o, NEED_STORE | NEED_SITE | NEED_TARGETS, &code, &e) != ST_OK)
+		return diagnose_whole(&e, code);
+	mjd = run_tonight(&run);
+	if (date && given_night(&run.leap, run.site.lon_east_deg, date, &mjd, &e) != ST_OK)
+		code = usage_fault("DATE", &e);
+	else
+		code = night_write(&run, mjd);
+	run_close(&run);
+	return code;
+}

@@ -1,0 +1,243 @@
+/* SPDX-License-Identifier: MIT */
+#include "tui/commands/table.h"
+
+#include "ephem/angle_text.h"
+#include "ephem/number_text.h"
+#include "tui/diagnose.h"
+#include "tui/given.h"
+#include "tui/sheets/out.h"
+#include "tui/sheets/text.h"
+#include "tui/sheets/windows.h"
+
+#include <math.h>
+#include <string.h>
+
+/* A zone's clock runs at most this far from the Sun's at its places; more is a longitude with the wrong sign.
+ */
+#define ZONE_OFF_MAX_H 3.5
+
+/* --- writing --- */
+
+static void site_line(FILE *to, const struct site *s)
+{
+	char lat[ANGLE_TEXT_MAX], lon[ANGLE_TEXT_MAX], height[NUMBER_TEXT_MAX];
+	lat_text(s->lat_deg, 6, lat);
+	lon_text(s->lon_east_deg, 6, lon);
+	number_text(s->height_m, height);
+	text_cell(to, s->name, NAME_CHARS_MAX, false);
+	fprintf(to, ": %s, %s, %s m, zone %s\n", lat, lon, height,
+		s->zone[0] ? s->zone : "not known (UTC is shown)");
+}
+
+static void site_cells(struct csv_out *c, const struct site *s)
+{
+	char number[NUMBER_TEXT_MAX];
+	csv_text(c, s->name);
+	number_text(s->lat_deg, number);
+	csv_number(c, number);
+	number_text(s->lon_east_deg, number);
+	csv_number(c, number);
+	number_text(s->height_m, number);
+	csv_number(c, number);
+	csv_text(c, s->zone);
+	csv_end_line(c);
+}
+
+/* The sites as a list; of show, the one alone. */
+static int write_sites(const struct run *r, const struct site site[], size_t n, bool list)
+{
+	const struct options *o = r->options;
+	struct out out;
+	struct err e;
+	enum format format;
+	if (format_of(o, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &e) != ST_OK)
+		return usage_fault("--format", &e);
+	if (out_open(&out, o->out, o->force, &e) != ST_OK)
+		return diagnose_err("--out", &e, EXIT_UNMET);
+	struct csv_out csv = {.file = out.file};
+	struct json json = json_begin(out.file);
+	if (format == FORMAT_CSV)
+		fputs("name,latitude_deg,longitude_east_deg,height_m,zone\n", out.file);
+	if (format == FORMAT_JSON && list)
+		json_open(&json, NULL, '[', false);
+	if (format == FORMAT_TEXT && n == 0)
+		fputs("No site is stored: wane site add NAME --place LAT,LON,HEIGHT --zone ZONE\n", out.file);
+	for (size_t i = 0; i < n; i++) {
+		if (format == FORMAT_CSV)
+			site_cells(&csv, &site[i]);
+		else if (format == FORMAT_JSON)
+			site_json(&json, NULL, &site[i]);
+		else
+			site_line(out.file, &site[i]);
+	}
+	if (format == FORMAT_JSON && list)
+		json_close(&json, ']');
+	if (format == FORMAT_JSON)
+		json_end(&json);
+	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_err("--out", &e, EXIT_UNMET);
+}
+
+/* --- changing --- */
+
+/* The zone must be one that can be read, else local times would silently be UTC. */
+static enum status zone_exists(const struct run *r, const struct site *site, struct err *e)
+{
+	struct zone *zone;
+	if (!site->zone[0])
+		return ST_OK;
+	enum status s = zone_open(r->env->zoneinfo_dir, site->zone, &zone, e);
+	if (s != ST_OK)
+		return s;
+	double winter_h = zone_local(zone, (struct utc){.mjd = 61041}).offset_s / 3600.0; /* 2026-01-01 */
+	zone_close(zone);
+	double off_h = remainder(winter_h - site->lon_east_deg / 15.0, 24.0);
+	if (fabs(off_h) > ZONE_OFF_MAX_H) {
+		char lon[ANGLE_TEXT_MAX];
+		lon_text(site->lon_east_deg, 4, lon);
+		diagnose("zone", "%s is %.1f h off the longitude %s: are east and west swapped?", site->zone,
+			 fabs(off_h), lon);
+	}
+	return ST_OK;
+}
+
+static enum status put_in_store(struct run *r, const struct site *site, bool add, struct err *e)
+{
+	char utc[UTC_TEXT_MAX];
+	const struct change change = change_of(r, add ? "site add" : "site set", utc);
+	enum status s = store_begin(r->store, &change, e);
+	if (s != ST_OK)
+		return s;
+	s = site_put(r->store, site, add, e);
+	if (s == ST_OK)
+		s = store_commit(r->store, e);
+	if (s != ST_OK)
+		store_rollback(r->store);
+	return s;
+}
+
+/* What is asked for, checked against what is stored; nothing is written yet. */
+static int wanted_site(const struct run *r, bool add, struct site *site)
+{
+	const struct options *o = r->options;
+	const char *name = o->word[2];
+	struct err e;
+	long index = site_list_find(&r->sites, name);
+	if (name_check(name, strlen(name), NULL, &e) != ST_OK)
+		return diagnose_err("name", &e, EXIT_USAGE);
+	if (add && o->n_places == 0) {
+		diagnose("--place",
+			 "is missing (expected LAT,LON,HEIGHT: degrees north, degrees east, metres)");
+		return EXIT_USAGE;
+	}
+	*site = (struct site){.name = name, .zone = ""};
+	if (o->n_places > 0 && given_place(o->place[0], site, &e) != ST_OK)
+		return diagnose_err("--place", &e, EXIT_USAGE);
+	if (add == (index >= 0)) {
+		diagnose("site",
+			 add ? "\"%s\" exists already (wane site set changes it)"
+			     : "no such site is stored (got \"%s\")",
+			 name);
+		return EXIT_UNMET;
+	}
+	if (!add) {
+		struct site stored = r->sites.site[index];
+		if (o->n_places > 0) {
+			stored.lat_deg = site->lat_deg;
+			stored.lon_east_deg = site->lon_east_deg;
+			stored.height_m = site->height_m;
+		}
+		*site = stored;
+	}
+	if (o->zone)
+		site->zone = o->zone;
+	if (zone_exists(r, site, &e) != ST_OK)
+		return diagnose_err("--zone", &e, EXIT_UNMET);
+	return EXIT_DONE;
+}
+
+static int change_site(const struct env *env, const struct options *o, bool add)
+{
+	struct run read, write;
+	struct site site;
+	struct err e;
+	int code;
+	if (run_open(&read, env, o, NEED_STORE, &code, &e) != ST_OK)
+		return diagnose_whole(&e, code);
+	code = wanted_site(&read, add, &site);
+	if (code == EXIT_DONE && run_open(&write, env, o, NEED_STORE | NEED_WRITE, &code, &e) != ST_OK) {
+		run_close(&read);
+		return diagnose_whole(&e, code);
+	}
+	if (code != EXIT_DONE) {
+		run_close(&read);
+		return code;
+	}
+	if (put_in_store(&write, &site, add, &e) != ST_OK)
+		code = diagnose_err("site", &e, EXIT_UNMET);
+	else
+		code = write_sites(&write, &site, 1, false);
+	run_close(&write);
+	run_close(&read);
+	return code;
+}
+
+static int remove_site(struct run *r)
+{
+	const char *name = r->options->word[2];
+	char utc[UTC_TEXT_MAX];
+	struct err e;
+	const struct change change = change_of(r, "site remove", utc);
+	enum status s = store_begin(r->store, &change, &e);
+	if (s != ST_OK)
+		return diagnose_err("site", &e, EXIT_UNMET);
+	s = site_remove(r->store, name, &e);
+	if (s == ST_OK)
+		s = store_commit(r->store, &e);
+	if (s == ST_OK)
+		return EXIT_DONE;
+	store_rollback(r->store);
+	return diagnose_err("site", &e, EXIT_UNMET);
+}
+
+static int show_or_remove(const struct env *env, const struct options *o, bool remove)
+{
+	struct run run;
+	struct err e;
+	int code;
+	if (run_open(&run, env, o, NEED_STORE, &code, &e) != ST_OK)
+		return diagnose_whole(&e, code);
+	long index = site_list_find(&run.sites, o->word[2]);
+	if (index < 0) {
+		diagnose("site", "no such site is stored (got \"%s\")", o->word[2]);
+		code = EXIT_UNMET;
+	} else if (!remove) {
+		code = write_sites(&run, &run.sites.site[index], 1, false);
+	}
+	run_close(&run);
+	if (index < 0 || !remove)
+		return code;
+	if (run_open(&run, env, o, NEED_STORE | NEED_WRITE, &code, &e) != ST_OK)
+		return diagnose_whole(&e, code);
+	code = remove_site(&run);
+	run_close(&run);
+	return code;
+}
+
+int command_site(const struct env *env, const struct options *o)
+{
+	static const char *const verbs[] = {"list", "show", "add", "set", "remove"};
+	struct run run;
+	struct err e;
+	int code;
+	int verb = verb_of("site", verbs, 5, o);
+	if (verb < 0)
+		return EXIT_USAGE;
+	if (verb == 0) {
+		if (run_open(&run, env, o, NEED_STORE, &code, &e) != ST_OK)
+			return diagnose_whole(&e, code);
+		code = write_sites(&run, run.sites.site, run.sites.n, true);
+		run_close(&run);
+		return code;
+	}
+	return verb == 2 || verb == 3 ? change_site(env, o, verb == 2) : show_or_remove(env, o, verb == 4);
+}

@@ -1,0 +1,163 @@
+/* SPDX-License-Identifier: MIT */
+#include "tui/commands/table.h"
+
+#include "tui/diagnose.h"
+#include "tui/settings.h"
+#include "tui/sheets/text.h"
+
+#include <string.h>
+
+const struct command commands[] = {
+    {"night", "[DATE]", "The windows of one night.",
+     "DATE is the local date of the evening, or an instant: the night that contains it; without it, "
+     "tonight.\n",
+     GROUP_COMPUTE | GROUP_WINDOWS, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 1, command_night},
+    {"season", "FROM TO", "Every window in a range of nights, both included.",
+     "Several sites: repeat --site or --place. JSON: {\"site\" (null with several), \"sites\", \"limits\", "
+     "\"from\", "
+     "\"to\", \"windows\"}.\n",
+     GROUP_COMPUTE | GROUP_WINDOWS, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 2, command_season},
+    {"sky", "[TARGET | --radec RA,DEC]", "Where a target, the Sun and the Moon stand at an instant.",
+     "Altitudes are airless and topocentric. ra_deg, dec_deg: ICRS with proper motion to that date. "
+     "moon_ra_deg,\n"
+     "moon_dec_deg: seen from the site, true equator and equinox of date. epoch and phase: orbits since T0, "
+     "whole and "
+     "rest.\n",
+     GROUP_COMPUTE | GROUP_SKY, FORMAT_TEXT | FORMAT_JSON, 1, command_sky},
+    {"clock", "VALUE [TARGET | --radec RA,DEC]", "One time in another standard, for a target's direction.",
+     "Scales: UTC (text), JD_UTC, JD_TT, JD_TDB, MJD_UTC, MJD_TT, MJD_TDB, HJD_UTC, HJD_TT, HJD_TDB, "
+     "BJD_UTC, "
+     "BJD_TT,\nBJD_TDB; an offset is written behind it: BJD_TDB-2457000.\n",
+     GROUP_COMPUTE | GROUP_CLOCK, FORMAT_TEXT, 2, command_clock},
+    {"import", "FILE", "Targets from a table (CSV; `-` is standard input).",
+     "A bad row refuses that row only; --strict refuses the file. A known target's changed ephemeris is "
+     "stored beside the\n"
+     "old one and made current only with --adopt.\n",
+     GROUP_IMPORT, FORMAT_TEXT, 1, command_import},
+    {"target", "list | show NAME | add NAME | set NAME FIELD=VALUE... | remove NAME", "The stored targets.",
+     "add takes --radec and FIELD=VALUE too; FIELD= clears. Fields are the columns of `wane target list "
+     "--format csv`.\n",
+     0, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, OPTION_NAMES_MAX, command_target},
+    {"site", "list | show NAME | add NAME | set NAME | remove NAME", "The stored sites.",
+     "add and set take --place LAT,LON,HEIGHT and --zone ZONE.\n", GROUP_SITE,
+     FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 2, command_site},
+    {"check", "", "Whether the store is sound.", NULL, 0, FORMAT_TEXT, 0, command_check},
+    {"demo", "[DATE]", "An invented observatory and list in a throw-away database.",
+     "On a terminal the interface opens; else the night is printed.\n", GROUP_COMPUTE | GROUP_WINDOWS,
+     FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 1, command_demo},
+};
+const size_t command_count = sizeof commands / sizeof commands[0];
+
+const struct command *command_find(const char *name)
+{
+	for (size_t i = 0; i < command_count; i++)
+		if (strcmp(commands[i].name, name) == 0)
+			return &commands[i];
+	return NULL;
+}
+
+static const struct {
+	const char *word;
+	int format;
+} format_words[] = {{"text", FORMAT_TEXT}, {"csv", FORMAT_CSV}, {"json", FORMAT_JSON}};
+enum { FORMAT_WORDS = sizeof format_words / sizeof format_words[0] };
+
+enum status format_of(const struct options *o, int formats, enum format *f, struct err *e)
+{
+	char got[ERR_QUOTE_MAX], list[64] = "";
+	*f = FORMAT_TEXT;
+	if (!o->format)
+		return ST_OK;
+	for (size_t i = 0; i < FORMAT_WORDS; i++) {
+		if (!(formats & format_words[i].format))
+			continue;
+		if (strcmp(o->format, format_words[i].word) == 0) {
+			*f = (enum format)format_words[i].format;
+			return ST_OK;
+		}
+		snprintf(list + strlen(list), sizeof list - strlen(list), "%s%s", list[0] ? ", " : "",
+			 format_words[i].word);
+	}
+	err_quote(o->format, strlen(o->format), got);
+	return err_set(e, ST_SYNTAX, "no such format here (got \"%s\", expected %s)", got, list);
+}
+
+int usage_fault(const char *word, const struct err *e)
+{
+	return diagnose_err(word, e, EXIT_USAGE);
+}
+
+struct change change_of(const struct run *r, const char *verb, char utc[UTC_TEXT_MAX])
+{
+	utc_text(&r->leap, wall_now(&r->wall), 0, utc);
+	return (struct change){.utc = utc, .who = r->env->user, .verb = verb};
+}
+
+int verb_of(const char *command, const char *const verbs[], int n, const struct options *o)
+{
+	char got[ERR_QUOTE_MAX], list[128] = "";
+	const char *verb = o->n_words > 1 ? o->word[1] : "";
+	for (int i = 0; i < n; i++) {
+		snprintf(list + strlen(list), sizeof list - strlen(list), "%s%s", i ? ", " : "", verbs[i]);
+		if (strcmp(verb, verbs[i]) != 0)
+			continue;
+		if (i > 0 && o->n_words < 3) {
+			diagnose("NAME", "is missing (expected wane %s %s NAME)", command, verb);
+			return -1;
+		}
+		if (i == 0 && o->n_words > 2) {
+			diagnose(command, "list takes no name");
+			return -1;
+		}
+		return i;
+	}
+	err_quote(verb, strlen(verb), got);
+	diagnose(command, "no such verb (got \"%s\", expected %s)", got, list);
+	return -1;
+}
+
+/* --- help --- */
+
+void command_help(FILE *to, const struct command *c)
+{
+	fprintf(to, "wane %s %s\n%s\n", c->name, c->arguments, c->help);
+	if (c->more)
+		fputs(c->more, to);
+	fputs("Formats:", to);
+	for (size_t i = 0; i < FORMAT_WORDS; i++)
+		if (c->formats & format_words[i].format)
+			fprintf(to, " %s", format_words[i].word);
+	if (c->groups) {
+		fputs("\n\nOptions\n", to);
+		options_help(to, c->groups);
+	} else {
+		fputc('\n', to);
+	}
+	fputs("\nOptions of every subcommand\n", to);
+	options_help(to, GROUP_COMMON);
+	fputs("\nTIME: YYYY-MM-DDTHH:MM[:SS]Z in UTC, or one argument \"2461114.708333 JD_UTC\". An option's "
+	      "value may begin "
+	      "with -.\nExit code: 0 done, 1 the request could not be met, 2 the command line is wrong.\n",
+	      to);
+}
+
+void general_help(FILE *to)
+{
+	fputs("wane: transit windows for observers on the ground.\n\n"
+	      "  wane                     the interface, on tonight\n",
+	      to);
+	for (size_t i = 0; i < command_count; i++) {
+		char left[160];
+		snprintf(left, sizeof left, "wane %s %s", commands[i].name, commands[i].arguments);
+		fprintf(to, "  %-24s %s%s\n", left, strlen(left) > 24 ? "\n                           " : "",
+			commands[i].help);
+	}
+	fputs("\n`wane SUBCOMMAND --help` says more.\n\nOptions of every subcommand\n", to);
+	options_help(to, GROUP_COMMON);
+	fputs("\nLimits, wherever something is computed\n", to);
+	options_help(to, GROUP_COMPUTE | GROUP_WINDOWS);
+	fputs("\nThe settings file (built-in value; range)\n", to);
+	settings_help(to);
+	fputc('\n', to);
+	text_cautions(to);
+}

@@ -1,0 +1,206 @@
+/* SPDX-License-Identifier: MIT */
+#include "tui/commands/target_write.h"
+
+#include "tui/diagnose.h"
+#include "tui/given.h"
+
+#include <stdlib.h>
+#include <string.h>
+
+/* Fields given as FIELD=VALUE words. */
+struct assignments {
+	size_t n;
+	int field[FIELD_COUNT];
+	const char *text[FIELD_COUNT];
+	char ra[NUMBER_TEXT_MAX], dec[NUMBER_TEXT_MAX]; /* of --radec */
+};
+
+static int no_such_target(const char *name)
+{
+	char got[ERR_QUOTE_MAX];
+	err_quote(name, strlen(name), got);
+	diagnose("target", "no such target is stored (got \"%s\"; see wane target list)", got);
+	return EXIT_UNMET;
+}
+
+/* --- FIELD=VALUE --- */
+
+static enum status assign(struct assignments *a, int field, const char *text, struct err *e)
+{
+	for (size_t i = 0; i < a->n; i++)
+		if (a->field[i] == field)
+			return err_set(e, ST_SYNTAX, "%s: given twice", fields[field].name);
+	a->field[a->n] = field;
+	a->text[a->n++] = text;
+	return ST_OK;
+}
+
+static enum status unknown_field(const char *word, size_t n, struct err *e)
+{
+	const char *names[FIELD_COUNT], *near;
+	char got[ERR_QUOTE_MAX];
+	for (int i = 0; i < FIELD_COUNT; i++)
+		names[i] = fields[i].name;
+	err_quote(word, n, got);
+	near = nearest_word(got, names, FIELD_COUNT);
+	return err_set(e, ST_SYNTAX, "field: unknown (got \"%s\"%s%s)", got, near ? ", did you mean " : "",
+		       near ? near : "");
+}
+
+static enum status read_words(const struct options *o, struct assignments *a, struct err *e)
+{
+	double ra, dec;
+	struct err why;
+	enum status s = ST_OK;
+	a->n = 0;
+	for (int i = 3; s == ST_OK && i < o->n_words; i++) {
+		const char *equals = strchr(o->word[i], '=');
+		size_t n = equals ? (size_t)(equals - o->word[i]) : strlen(o->word[i]);
+		char name[64];
+		snprintf(name, sizeof name, "%.*s", n < sizeof name ? (int)n : 0, o->word[i]);
+		int field = field_find(name);
+		if (!equals)
+			return err_set(e, ST_SYNTAX, "field: expected FIELD=VALUE (got \"%.60s\")",
+				       o->word[i]);
+		s = field < 0 ? unknown_field(o->word[i], n, e) : assign(a, field, equals + 1, e);
+	}
+	if (s != ST_OK || !o->radec)
+		return s;
+	if (given_radec(o->radec, &ra, &dec, &why) != ST_OK)
+		return err_set(e, ST_SYNTAX, "--radec: %.440s", why.text);
+	number_text(ra, a->ra);
+	number_text(dec, a->dec);
+	s = assign(a, field_find("ra_deg"), a->ra, e);
+	return s == ST_OK ? assign(a, field_find("dec_deg"), a->dec, e) : s;
+}
+
+/* --- changing --- */
+
+static enum status add_in_store(struct run *r, const char *name, const struct assignments *a, struct err *e)
+{
+	struct field_texts texts;
+	enum put_result result;
+	for (int i = 0; i < FIELD_COUNT; i++)
+		texts.text[i] = "";
+	texts.text[0] = name;
+	for (size_t i = 0; i < a->n; i++)
+		texts.text[a->field[i]] = a->text[i];
+	return target_put(r->store, &texts, true, &result, e);
+}
+
+static enum status in_change(struct run *r, const char *verb, const char *name, const struct assignments *a,
+			     struct err *e)
+{
+	char utc[UTC_TEXT_MAX];
+	const struct change change = change_of(r, verb, utc);
+	enum status s = store_begin(r->store, &change, e);
+	if (s != ST_OK)
+		return s;
+	if (strcmp(verb, "target add") == 0)
+		s = add_in_store(r, name, a, e);
+	else if (strcmp(verb, "target set") == 0)
+		s = target_set(r->store, name, a->field, a->text, a->n, e);
+	else
+		s = target_remove(r->store, name, e);
+	if (s == ST_OK)
+		s = store_commit(r->store, e);
+	if (s != ST_OK)
+		store_rollback(r->store);
+	return s;
+}
+
+/* A row of texts as it would be read: faults are told before anything is opened for writing. */
+static enum status row_is_good(const char *name, const struct assignments *a, struct err *e)
+{
+	struct field_texts texts;
+	struct target t;
+	uint64_t doubts = 0;
+	int bad = 0;
+	struct err why;
+	for (int i = 0; i < FIELD_COUNT; i++)
+		texts.text[i] = "";
+	texts.text[0] = name;
+	for (size_t i = 0; i < a->n; i++)
+		texts.text[a->field[i]] = a->text[i];
+	if (fields_read(&texts, &t, &doubts, &bad, &why) != ST_OK)
+		return err_set(e, why.status, "%s: %.440s", fields[bad].name, why.text);
+	for (int i = 0; i < FIELD_COUNT; i++)
+		if (doubts >> i & 1)
+			diagnose(fields[i].name, "can't be true, kept aside and flagged (got \"%.60s\")",
+				 texts.text[i]);
+	return ST_OK;
+}
+
+static int change_target(const struct env *env, const struct options *o, const char *verb)
+{
+	struct run run;
+	struct assignments a;
+	struct err e;
+	int code;
+	bool add = strcmp(verb, "target add") == 0, set = strcmp(verb, "target set") == 0;
+	if (read_words(o, &a, &e) != ST_OK)
+		return diagnose_whole(&e, EXIT_USAGE);
+	if (set && a.n == 0) {
+		diagnose("target", "nothing to set (expected FIELD=VALUE)");
+		return EXIT_USAGE;
+	}
+	if (add && row_is_good(o->word[2], &a, &e) != ST_OK)
+		return diagnose_whole(&e, EXIT_UNMET);
+	struct options plain = *o;
+	plain.radec = NULL; /* it was a field here, not the run's target */
+	if (run_open(&run, env, &plain, NEED_STORE, &code, &e) != ST_OK)
+		return diagnose_whole(&e, code);
+	long index = target_list_find(&run.targets, o->word[2]);
+	run_close(&run);
+	if (add && index >= 0) {
+		diagnose("target", "\"%.80s\" exists already (wane target set changes it)", o->word[2]);
+		return EXIT_UNMET;
+	}
+	if (!add && index < 0)
+		return no_such_target(o->word[2]);
+	if (run_open(&run, env, &plain, NEED_STORE | NEED_WRITE, &code, &e) != ST_OK)
+		return diagnose_whole(&e, code);
+	if (in_change(&run, verb, o->word[2], &a, &e) != ST_OK)
+		code = diagnose_err("target", &e, EXIT_UNMET);
+	run_close(&run);
+	return code;
+}
+
+/* --- showing --- */
+
+static int show_targets(const struct env *env, const struct options *o, bool list)
+{
+	struct run run;
+	struct err e;
+	int code;
+	size_t first = 0, n;
+	if (run_open(&run, env, o, NEED_STORE, &code, &e) != ST_OK)
+		return diagnose_whole(&e, code);
+	n = run.targets.n;
+	if (!list) {
+		long index = target_list_find(&run.targets, o->word[2]);
+		if (index < 0)
+			code = no_such_target(o->word[2]);
+		first = index < 0 ? 0 : (size_t)index;
+		n = 1;
+	}
+	if (code == EXIT_DONE)
+		code = targets_write(&run, first, n, list);
+	run_close(&run);
+	return code;
+}
+
+int command_target(const struct env *env, const struct options *o)
+{
+	static const char *const verbs[] = {"list", "show", "add", "set", "remove"};
+	int verb = verb_of("target", verbs, 5, o);
+	if (verb < 0)
+		return EXIT_USAGE;
+	if ((verb == 1 || verb == 4) && o->n_words > 3) {
+		diagnose("target", "an argument too many (got \"%.60s\")", o->word[3]);
+		return EXIT_USAGE;
+	}
+	if (verb <= 1)
+		return show_targets(env, o, verb == 0);
+	return change_target(env, o, verb == 2 ? "target add" : verb == 3 ? "target set" : "target remove");
+}

@@ -1,0 +1,369 @@
+/* SPDX-License-Identifier: MIT */
+#include "tui/options.h"
+
+#include "ephem/number_text.h"
+#include "ephem/season.h"
+
+#include <math.h>
+#include <stddef.h>
+#include <string.h>
+
+enum option_kind {
+	OPT_TEXT,
+	OPT_TEXT_OR_EMPTY,
+	OPT_FLAG,
+	OPT_SITES,
+	OPT_PLACES,
+	OPT_TARGETS,
+	OPT_NUMBER,
+	OPT_WHOLE,
+	OPT_KINDS
+};
+
+struct option_row {
+	const char *name, *argument, *sentence;
+	int groups;
+	enum option_kind kind;
+	size_t offset;
+	double min, max; /* OPT_NUMBER, OPT_WHOLE */
+};
+
+#define AT(member) offsetof(struct options, member)
+
+static const struct option_row rows[] = {
+    {"--db", "FILE", "The database (default $XDG_DATA_HOME/wane/wane.db; a missing one reads as empty).",
+     GROUP_COMMON, OPT_TEXT, AT(db), 0, 0},
+    {"--settings", "FILE", "The settings file (default $XDG_CONFIG_HOME/wane/settings.ini).", GROUP_COMMON,
+     OPT_TEXT, AT(settings), 0, 0},
+    {"--site", "NAME", "A stored site; again for more in season.", GROUP_COMMON, OPT_SITES, 0, 0, 0},
+    {"--place", "LAT,LON,HEIGHT",
+     "Stands for a stored site: degrees north, degrees east, metres (or with letters: 38.62N,109.36W,2100).",
+     GROUP_COMMON, OPT_PLACES, 0, 0, 0},
+    {"--telescope", "NAME", "A stored telescope.", GROUP_COMMON, OPT_TEXT, AT(telescope), 0, 0},
+    {"--target", "NAME", "Only this target; again for more.", GROUP_COMMON, OPT_TARGETS, 0, 0, 0},
+    {"--radec", "RA,DEC", "Stands for a stored target: ICRS degrees, or hh:mm:ss.s,+dd:mm:ss.", GROUP_COMMON,
+     OPT_TEXT, AT(radec), 0, 0},
+    {"--format", "F", "How the result is written.", GROUP_COMMON, OPT_TEXT, AT(format), 0, 0},
+    {"--plain", NULL, "Text with one record a paragraph: words, no glyphs, nothing told by position.",
+     GROUP_COMMON, OPT_FLAG, AT(plain), 0, 0},
+    {"--out", "FILE", "Write the result to a file, whole or not at all.", GROUP_COMMON, OPT_TEXT, AT(out), 0,
+     0},
+    {"--force", NULL, "Let --out replace a file that exists.", GROUP_COMMON, OPT_FLAG, AT(force), 0, 0},
+    {"--now", "TIME", "Take this as the present: a frozen clock; `TIME+` starts there and runs.",
+     GROUP_COMMON, OPT_TEXT, AT(now), 0, 0},
+    {"--help", NULL, "This text.", GROUP_COMMON, OPT_FLAG, AT(help), 0, 0},
+    {"--version", NULL, "The version.", GROUP_COMMON, OPT_FLAG, AT(version), 0, 0},
+    {"--ut1-utc", "S", "UT1 less UTC in seconds, within 0.9 (0; 1 s turns the sky by 15 arcsec).",
+     GROUP_COMPUTE, OPT_NUMBER, AT(ut1_utc_s), -0.9, 0.9},
+    {"--kind", "K", "transit, occultation or both (transit).", GROUP_COMPUTE, OPT_KINDS, AT(kinds), 0, 0},
+    {"--threads", "N", "At most this many threads (season runs in one).", GROUP_COMPUTE, OPT_WHOLE,
+     AT(threads), 1, 1024},
+    {"--min-chance", "P",
+     "List a window when the chance of its ingress or egress reaches P (0.05 in csv and json, 0.5 in text).",
+     GROUP_WINDOWS, OPT_NUMBER, AT(min_chance), 0, 1},
+    {"--all", NULL, "Every event of the nights, with what spoils it.", GROUP_WINDOWS, OPT_FLAG, AT(all), 0,
+     0},
+    {"--at", "TIME", "The instant (default now).", GROUP_SKY, OPT_TEXT, AT(at), 0, 0},
+    {"--from", "SCALE", "The time standard of VALUE.", GROUP_CLOCK, OPT_TEXT, AT(from), 0, 0},
+    {"--to", "SCALE", "The time standard wanted.", GROUP_CLOCK, OPT_TEXT, AT(to), 0, 0},
+    {"--dry-run", NULL, "Say what would be done and change nothing.", GROUP_IMPORT, OPT_FLAG, AT(dry_run), 0,
+     0},
+    {"--strict", NULL, "One bad row refuses the whole file.", GROUP_IMPORT, OPT_FLAG, AT(strict), 0, 0},
+    {"--adopt", NULL, "Make changed ephemerides of known targets the current ones.", GROUP_IMPORT, OPT_FLAG,
+     AT(adopt), 0, 0},
+    {"--zone", "ZONE", "The site's IANA time zone, as in America/Denver.", GROUP_SITE, OPT_TEXT_OR_EMPTY,
+     AT(zone), 0, 0},
+};
+enum { ROW_COUNT = sizeof rows / sizeof rows[0], GIVEN_LIMITS = 32 /* bit of limit 0 in `given` */ };
+_Static_assert((int)ROW_COUNT <= (int)GIVEN_LIMITS && (int)GIVEN_LIMITS + LIM_COUNT <= 64, "one bit a row");
+
+static int row_find(const char *name, size_t n)
+{
+	for (int i = 0; i < ROW_COUNT; i++)
+		if (strlen(rows[i].name) == n && memcmp(rows[i].name, name, n) == 0)
+			return i;
+	return -1;
+}
+
+static int limit_find(const char *name, size_t n)
+{
+	for (int id = 0; id < LIM_COUNT; id++) {
+		const char *option = limit_rules[id].option;
+		if (option && strlen(option) == n && memcmp(option, name, n) == 0)
+			return id;
+	}
+	return -1;
+}
+
+/* --- values --- */
+
+static enum status number_between(const char *text, double min, double max, double *value, struct err *e)
+{
+	char got[ERR_QUOTE_MAX];
+	double v;
+	enum status s = number_parse(text, strlen(text), &v, NULL, e);
+	if (s != ST_OK)
+		return s;
+	err_quote(text, strlen(text), got);
+	if (!(v >= min && v <= max))
+		return err_set(e, ST_RANGE, "out of range (got \"%s\", expected %g to %g)", got, min, max);
+	*value = v;
+	return ST_OK;
+}
+
+enum status limit_parse(enum limit_id id, const char *text, double *value, struct err *e)
+{
+	const struct limit_rule *rule = &limit_rules[id];
+	if (id == LIM_AIRMASS && strcmp(text, "none") == 0) {
+		*value = (double)INFINITY;
+		return ST_OK;
+	}
+	if ((id == LIM_BASELINE_BEFORE || id == LIM_BASELINE_AFTER) && strcmp(text, "auto") == 0) {
+		*value = BASELINE_AUTO;
+		return ST_OK;
+	}
+	return number_between(text, rule->min, rule->max, value, e);
+}
+
+static const struct {
+	const char *word;
+	int kinds;
+} kind_words[] = {{"transit", KINDS_TRANSIT}, {"occultation", KINDS_OCCULTATION}, {"both", KINDS_BOTH}};
+
+enum status kinds_parse(const char *text, int *kinds, struct err *e)
+{
+	char got[ERR_QUOTE_MAX];
+	for (size_t i = 0; i < sizeof kind_words / sizeof kind_words[0]; i++)
+		if (strcmp(text, kind_words[i].word) == 0) {
+			*kinds = kind_words[i].kinds;
+			return ST_OK;
+		}
+	err_quote(text, strlen(text), got);
+	return err_set(e, ST_SYNTAX, "no such kind (got \"%s\", expected transit, occultation or both)", got);
+}
+
+const char *kinds_text(int kinds)
+{
+	for (size_t i = 0; i < sizeof kind_words / sizeof kind_words[0]; i++)
+		if (kind_words[i].kinds == kinds)
+			return kind_words[i].word;
+	return "";
+}
+
+static enum status add_name(const char **list, int *n, const char *value, struct err *e)
+{
+	if (*n == OPTION_NAMES_MAX)
+		return err_set(e, ST_RANGE, "given more than %d times", OPTION_NAMES_MAX);
+	list[(*n)++] = value;
+	return ST_OK;
+}
+
+static enum status put_row(struct options *o, const struct option_row *row, const char *value, struct err *e)
+{
+	char *at = (char *)o + row->offset;
+	double number;
+	enum status s = ST_OK;
+	if (row->kind != OPT_FLAG && row->kind != OPT_TEXT_OR_EMPTY && !value[0])
+		return err_set(e, ST_SYNTAX, "the value is empty (got \"\", expected %s)", row->argument);
+	switch (row->kind) {
+	case OPT_TEXT:
+	case OPT_TEXT_OR_EMPTY:
+		memcpy(at, &value, sizeof value);
+		break;
+	case OPT_FLAG:
+		*(bool *)at = true;
+		break;
+	case OPT_SITES:
+		s = add_name(o->site, &o->n_sites, value, e);
+		break;
+	case OPT_PLACES:
+		s = add_name(o->place, &o->n_places, value, e);
+		break;
+	case OPT_TARGETS:
+		s = add_name(o->target, &o->n_targets, value, e);
+		break;
+	case OPT_NUMBER:
+		s = number_between(value, row->min, row->max, &number, e);
+		if (s == ST_OK)
+			memcpy(at, &number, sizeof number);
+		break;
+	case OPT_WHOLE:
+		s = number_between(value, row->min, row->max, &number, e);
+		if (s == ST_OK && number != floor(number))
+			s = err_set(e, ST_SYNTAX, "expected a whole number");
+		if (s == ST_OK)
+			*(int *)(void *)at = (int)number;
+		break;
+	case OPT_KINDS:
+		s = kinds_parse(value, (int *)(void *)at, e);
+		break;
+	}
+	return s;
+}
+
+/* --- the line --- */
+
+static enum status named(struct err *e, const char *name, size_t n, enum status s)
+{
+	if (s == ST_OK || !e)
+		return s;
+	struct err inner = *e;
+	return err_set(e, s, "%.*s: %.450s", (int)(n > 40 ? 40 : n), name, inner.text);
+}
+
+static enum status unknown(const char *name, size_t n, struct err *e)
+{
+	const char *all[ROW_COUNT + LIM_COUNT];
+	char word[ERR_QUOTE_MAX];
+	size_t count = 0;
+	for (int i = 0; i < ROW_COUNT; i++)
+		all[count++] = rows[i].name;
+	for (int id = 0; id < LIM_COUNT; id++)
+		if (limit_rules[id].option)
+			all[count++] = limit_rules[id].option;
+	err_quote(name, n < 60 ? n : 60, word);
+	const char *near = nearest_word(word, all, count);
+	if (near)
+		return err_set(e, ST_SYNTAX, "%s: unknown option; did you mean %s?", word, near);
+	return err_set(e, ST_SYNTAX, "%s: unknown option (see wane --help)", word);
+}
+
+/* One option at argv[*i]; its value may be the next word, whatever that begins with. */
+static enum status take_option(struct options *o, int argc, char *const argv[], int *i, struct err *e)
+{
+	const char *arg = argv[*i], *equals = strchr(arg, '=');
+	size_t n = equals ? (size_t)(equals - arg) : strlen(arg);
+	int row = row_find(arg, n), id = row < 0 ? limit_find(arg, n) : -1;
+	if (row < 0 && id < 0)
+		return unknown(arg, n, e);
+	bool flag = row >= 0 && rows[row].kind == OPT_FLAG;
+	const char *argument = row >= 0 ? rows[row].argument : "a number";
+	const char *value = equals ? equals + 1 : NULL;
+	if (flag && value)
+		return named(e, arg, n, err_set(e, ST_SYNTAX, "takes no value"));
+	if (!flag && !value) {
+		if (*i + 1 >= argc)
+			return named(e, arg, n,
+				     err_set(e, ST_SYNTAX, "a value is missing (expected %s)", argument));
+		value = argv[++*i];
+	}
+	if (row >= 0) {
+		o->given |= (uint64_t)1 << row;
+		return named(e, arg, n, put_row(o, &rows[row], value, e));
+	}
+	o->given |= (uint64_t)1 << (GIVEN_LIMITS + id);
+	enum status s = limit_parse((enum limit_id)id, value, &o->limit[id], e);
+	if (s == ST_OK) {
+		o->limit_given[id] = true;
+		if (id == LIM_BASELINE_BEFORE) { /* --baseline means both sides */
+			o->limit[LIM_BASELINE_AFTER] = o->limit[id];
+			o->limit_given[LIM_BASELINE_AFTER] = true;
+		}
+	}
+	return named(e, arg, n, s);
+}
+
+static bool is_option(const char *arg)
+{
+	return arg[0] == '-' && arg[1] != '\0' && arg[1] != '.' && !(arg[1] >= '0' && arg[1] <= '9');
+}
+
+enum status options_parse(struct options *o, int argc, char *const argv[], struct err *e)
+{
+	*o = (struct options){.min_chance = NAN, .ut1_utc_s = NAN};
+	bool words_only = false;
+	for (int i = 1; i < argc; i++) {
+		enum status s = ST_OK;
+		if (!words_only && strcmp(argv[i], "--") == 0)
+			words_only = true;
+		else if (!words_only && is_option(argv[i]))
+			s = take_option(o, argc, argv, &i, e);
+		else
+			s = named(e, "words", 5, add_name(o->word, &o->n_words, argv[i], e));
+		if (s != ST_OK)
+			return s;
+	}
+	return ST_OK;
+}
+
+enum status options_allowed(const struct options *o, int groups, const char *command, struct err *e)
+{
+	for (int i = 0; i < ROW_COUNT; i++)
+		if (o->given >> i & 1 && !(rows[i].groups & (groups | GROUP_COMMON)))
+			return err_set(e, ST_SYNTAX, "%s: unknown option of %s", rows[i].name, command);
+	for (int id = 0; id < LIM_COUNT; id++)
+		if (o->given >> (GIVEN_LIMITS + id) & 1 && !(groups & GROUP_COMPUTE))
+			return err_set(e, ST_SYNTAX, "%s: unknown option of %s", limit_rules[id].option,
+				       command);
+	return ST_OK;
+}
+
+/* --- help --- */
+
+static void help_line(FILE *to, const char *name, const char *argument, const char *sentence)
+{
+	char left[48];
+	snprintf(left, sizeof left, "%s%s%s", name, argument ? " " : "", argument ? argument : "");
+	fprintf(to, "  %-24s %s", left, sentence);
+}
+
+void options_help(FILE *to, int groups)
+{
+	for (int i = 0; i < ROW_COUNT; i++) {
+		if (!(rows[i].groups & groups))
+			continue;
+		help_line(to, rows[i].name, rows[i].argument, rows[i].sentence);
+		fputc('\n', to);
+	}
+	if (!(groups & GROUP_COMPUTE))
+		return;
+	for (int id = 0; id < LIM_COUNT; id++) {
+		const struct limit_rule *r = &limit_rules[id];
+		if (!r->option)
+			continue;
+		help_line(to, r->option,
+			  r->unit[0] == 'd'   ? "DEG"
+			  : r->unit[0] == 'm' ? "MIN"
+					      : "X",
+			  r->sentence);
+		if (isfinite(r->fallback))
+			fprintf(to, " (%g; %g to %g)\n", r->fallback, r->min, r->max);
+		else
+			fprintf(to, " (none; %g to %g)\n", r->min, r->max);
+	}
+}
+
+/* Edit distance of two words shorter than 64, with a swap of neighbours counted as two. */
+static size_t distance(const char *a, const char *b)
+{
+	size_t na = strlen(a), nb = strlen(b), row[64];
+	if (na >= 64 || nb >= 64)
+		return 64;
+	for (size_t j = 0; j <= nb; j++)
+		row[j] = j;
+	for (size_t i = 1; i <= na; i++) {
+		size_t diagonal = row[0];
+		row[0] = i;
+		for (size_t j = 1; j <= nb; j++) {
+			size_t change = diagonal + (a[i - 1] != b[j - 1]);
+			diagonal = row[j];
+			size_t least = row[j] + 1 < row[j - 1] + 1 ? row[j] + 1 : row[j - 1] + 1;
+			row[j] = change < least ? change : least;
+		}
+	}
+	return row[nb];
+}
+
+const char *nearest_word(const char *word, const char *const list[], size_t n)
+{
+	const char *best = NULL;
+	size_t least = strlen(word) / 3 + 1;
+	for (size_t i = 0; i < n; i++) {
+		size_t d = distance(word, list[i]);
+		if (d <= least && (!best || d < least)) {
+			best = list[i];
+			least = d;
+		}
+	}
+	return best;
+}

@@ -1,0 +1,65 @@
+/* SPDX-License-Identifier: MIT
+ * The options of the command line: one table with name, argument and sentence; the parser and every --help read it. */
+#ifndef WANE_TUI_OPTIONS_H
+#define WANE_TUI_OPTIONS_H
+
+#include "ephem/err.h"
+#include "ephem/limits.h"
+
+#include <stdbool.h>
+#include <stdint.h>
+#include <stdio.h>
+
+enum { OPTION_NAMES_MAX = 64 };
+
+/* Which subcommands take an option: a command says the groups that it takes. */
+enum option_group {
+	GROUP_COMMON = 1,  /* every subcommand */
+	GROUP_COMPUTE = 2, /* wherever something is computed: limits, kind, UT1-UTC, threads */
+	GROUP_WINDOWS = 4, /* where windows are listed: least chance, all */
+	GROUP_SKY = 8,
+	GROUP_CLOCK = 16,
+	GROUP_IMPORT = 32,
+	GROUP_SITE = 64,
+};
+
+/* Options of one call, parsed; texts borrow from argv. NULL / NAN / false / 0: not given. */
+struct options {
+	const char *db, *settings, *telescope, *format, *out, *now, *radec, *at, *from, *to, *zone;
+	const char *site[OPTION_NAMES_MAX];
+	int n_sites;
+	const char *place[OPTION_NAMES_MAX];
+	int n_places;
+	const char *target[OPTION_NAMES_MAX];
+	int n_targets;
+	bool plain, force, all, dry_run, strict, adopt, help, version;
+	double min_chance; /* NAN not given */
+	double ut1_utc_s;  /* NAN not given */
+	int kinds;         /* KINDS_*; 0 not given */
+	int threads;       /* 0 not given */
+	bool limit_given[LIM_COUNT];
+	double limit[LIM_COUNT];
+	const char *word[OPTION_NAMES_MAX]; /* positional arguments, the subcommand first */
+	int n_words;
+	uint64_t given; /* bit per row of the table */
+};
+
+/* Reads argv[1..argc). A word that begins with `--` is an option, `--name=value` too; whatever follows an option with an argument is its value.
+ * After `--` all are words. A word like -12.5 is a word. Of a single option given twice the last one
+ * holds. On a fault (unknown name, missing value, out of range) the text
+ * begins with the option. */
+MUST_USE enum status options_parse(struct options *o, int argc, char *const argv[], struct err *e);
+/* ST_SYNTAX when an option was given that belongs to none of the groups: the message names it and the command. */
+MUST_USE enum status options_allowed(const struct options *o, int groups, const char *command, struct err *e);
+/* The lines of --help for these groups. */
+void options_help(FILE *to, int groups);
+
+/* A limit as text: a number, `auto` for baselines, `none` for the airmass. Used by options and by the settings file. */
+MUST_USE enum status limit_parse(enum limit_id id, const char *text, double *value, struct err *e);
+/* `transit`, `occultation`, `both`. */
+MUST_USE enum status kinds_parse(const char *text, int *kinds, struct err *e);
+const char *kinds_text(int kinds);
+/* The word of the list (NULL-terminated by n) that is nearest to a mistyped one; NULL when none is near. */
+const char *nearest_word(const char *word, const char *const list[], size_t n);
+
+#endif

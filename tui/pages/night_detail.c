@@ -1,0 +1,228 @@
+/* SPDX-License-Identifier: MIT */
+#include "tui/pages/night_detail.h"
+
+#include "ephem/number_text.h"
+#include "ephem/units.h"
+
+#include <math.h>
+#include <stdio.h>
+#include <string.h>
+
+enum { CONTACTS = 5, LABEL_COLUMNS = 6, INDENT = 7, COLUMNS_FOR_BJD = 76, CELL_BYTES = 40 };
+
+/* One line of the contact table: a label and five cells. */
+static void table_line(struct text_view *v, enum role role, const char *label,
+		       char cell[CONTACTS][CELL_BYTES])
+{
+	int width = (v->width - LABEL_COLUMNS) / CONTACTS;
+	char text[TEXT_LINE_BYTES];
+	int used = snprintf(text, sizeof text, "%-*s", LABEL_COLUMNS, label);
+	for (int i = 0; i < CONTACTS && used > 0 && (size_t)used < sizeof text; i++)
+		used += snprintf(text + used, sizeof text - (size_t)used, "%*s", width < 16 ? width : 16,
+				 cell[i]);
+	text_view_add(v, role, INDENT, text);
+}
+
+static void contact_times(const struct window_event *ev, double at_d[CONTACTS])
+{
+	at_d[0] = ev->t1_d;
+	at_d[1] = ev->t2_d;
+	at_d[2] = ev->mid_d;
+	at_d[3] = ev->t3_d;
+	at_d[4] = ev->t4_d;
+}
+
+static void contact_table(struct text_view *v, const struct run *r, const struct night *night,
+			  const struct night_head *head, const struct night_row *row)
+{
+	double at_d[CONTACTS];
+	char cell[CONTACTS][CELL_BYTES] = {"T1", "T2", "mid", "T3", "T4"};
+	contact_times(&row->window->event, at_d);
+	table_line(v, ROLE_STRONG, "", cell);
+	for (int i = 0; i < CONTACTS; i++)
+		local_text(night, r->zone, at_d[i], true, cell[i], CELL_BYTES);
+	table_line(v, ROLE_TEXT, head->zone, cell);
+	if (r->zone) {
+		for (int i = 0; i < CONTACTS; i++)
+			local_text(night, NULL, at_d[i], true, cell[i], CELL_BYTES);
+		table_line(v, ROLE_TEXT, "UTC", cell);
+	}
+	if (v->width >= COLUMNS_FOR_BJD) {
+		for (int i = 0; i < CONTACTS; i++) {
+			char bjd[NUMBER_TEXT_MAX] = "-";
+			if (night_covers(at_d[i]))
+				number_text_jd2(night_bjd_tdb(night, &row->star, at_d[i]).jd, 5, bjd);
+			snprintf(cell[i], CELL_BYTES, "%s", bjd);
+		}
+		table_line(v, ROLE_TEXT, "BJD", cell);
+	}
+}
+
+static void altitude_line(struct text_view *v, const struct night *night, const struct night_row *row)
+{
+	double at_d[CONTACTS];
+	char cell[CONTACTS][CELL_BYTES];
+	contact_times(&row->window->event, at_d);
+	for (int i = 0; i < CONTACTS; i++) {
+		struct altaz a = {NAN, NAN};
+		if (night_covers(at_d[i]))
+			a = night_star_altaz(night, &row->star, at_d[i]);
+		if (isnan(a.alt_deg))
+			snprintf(cell[i], CELL_BYTES, "-");
+		else
+			snprintf(cell[i], CELL_BYTES, "%.0f, %.0f", a.alt_deg, a.az_north_deg);
+	}
+	table_line(v, ROLE_TEXT, "alt,az", cell);
+}
+
+static void be_there_line(struct text_view *v, const struct run *r, const struct night *night,
+			  const struct night_head *head, const struct night_row *row)
+{
+	const struct window_event *ev = &row->window->event;
+	char latest[16], from[16], to[16];
+	local_text(night, r->zone, ev->latest_start_d, false, latest, sizeof latest);
+	local_text(night, r->zone, ev->reserve_start_d, false, from, sizeof from);
+	local_text(night, r->zone, ev->reserve_end_d, false, to, sizeof to);
+	if (!row->usable)
+		text_view_addf(v, ROLE_BAD, INDENT, "Times  no usable moment in the reserve %s to %s %s",
+			       from, to, head->zone);
+	else if (ev->latest_start_d < row->on_d)
+		text_view_addf(v, ROLE_WARN, INDENT,
+			       "Times  on target %s (ingress needs %s), leave %s; reserve %s to %s %s",
+			       row->text[ROW_ON], latest, row->text[ROW_LEAVE], from, to, head->zone);
+	else
+		text_view_addf(v, ROLE_TEXT, INDENT,
+			       "Times  on target %s, latest %s, leave %s; reserve %s to %s %s",
+			       row->text[ROW_ON], latest, row->text[ROW_LEAVE], from, to, head->zone);
+}
+
+static void chance_line(struct text_view *v, const struct night_row *row)
+{
+	const struct window *w = row->window;
+	char in[16], eg[16], mid[16];
+	if (!row->has_chance) {
+		text_view_add(v, ROLE_WARN, INDENT,
+			      "Chance none can be given; the times are the predicted ones");
+		return;
+	}
+	chance_text(w->chance.ingress, in, sizeof in);
+	chance_text(w->chance.egress, eg, sizeof eg);
+	chance_text(w->chance.mid, mid, sizeof mid);
+	text_view_addf(v, row->chance_role, INDENT,
+		       "Chance done %s %%, ingress %s %%, egress %s %%, mid %s %%, in clear weather",
+		       row->text[ROW_DONE], in, eg, mid);
+}
+
+static void sigma_line(struct text_view *v, const struct night_row *row)
+{
+	const struct window_event *ev = &row->window->event;
+	if (!isnan(ev->sigma_min))
+		text_view_addf(v, ROLE_TEXT, INDENT, "Sigma  mid-time %.1f min, contacts %.1f min",
+			       ev->sigma_min, ev->sigma_contact_min);
+}
+
+/* `ingress (all), flat part (56 %)`: what one cause takes. */
+static void lost_to_cause(const struct window_cover *c, enum cause cause, char *out, size_t n)
+{
+	static const char *const parts[PART_COUNT] = {"baseline before", "ingress", "flat part", "egress",
+						      "baseline after"};
+	size_t used = 0;
+	out[0] = '\0';
+	for (int i = 0; i < PART_COUNT && used < n; i++) {
+		char share[16];
+		if (c->lost_to[i] != cause || isnan(c->share[i]))
+			continue;
+		if (c->share[i] <= 0.0)
+			snprintf(share, sizeof share, "all");
+		else
+			snprintf(share, sizeof share, "%.0f %%",
+				 fmin(fmax(100.0 * (1.0 - c->share[i]), 1.0), 99.0));
+		used +=
+		    (size_t)snprintf(out + used, n - used, "%s%s (%s)", used ? ", " : "", parts[i], share);
+	}
+}
+
+static void lost_line(struct text_view *v, const struct night_row *row)
+{
+	char text[800] = "", parts[300];
+	size_t used = 0;
+	for (int cause = 0; cause < CAUSE_COUNT && used < sizeof text; cause++) {
+		lost_to_cause(&row->window->cover, (enum cause)cause, parts, sizeof parts);
+		if (*parts)
+			used += (size_t)snprintf(text + used, sizeof text - used, "%sto %s: %s",
+						 used ? "; " : "", cause_phrases[cause], parts);
+	}
+	text_view_addf(v, used ? ROLE_WARN : ROLE_TEXT, INDENT, "Lost   %s", used ? text : "nothing");
+}
+
+static void sky_line(struct text_view *v, const struct night_row *row)
+{
+	const struct window *w = row->window;
+	const struct window_sky *s = &w->sky;
+	char text[300], number[NUMBER_TEXT_MAX];
+	number_text_fixed(s->airmass_min, 2, number);
+	int used = snprintf(text, sizeof text, "Sky    least airmass %s; Moon %.0f %% lit, ",
+			    *number ? number : "-", 100.0 * s->moon_lit);
+	if (s->moon_alt_deg > 0.0)
+		used += snprintf(text + used, sizeof text - (size_t)used, "%.0f deg high, ", s->moon_alt_deg);
+	else
+		used += snprintf(text + used, sizeof text - (size_t)used, "down, ");
+	snprintf(text + used, sizeof text - (size_t)used, "%.0f deg away; Sun at %.0f deg (all at mid-time)",
+		 s->moon_sep_deg, s->sun_alt_mid_deg);
+	text_view_add(v, ROLE_TEXT, INDENT, text);
+}
+
+static void star_line(struct text_view *v, const struct night_row *row)
+{
+	const struct window_event *ev = &row->window->event;
+	const struct target *t = ev->prepared->target;
+	char period[NUMBER_TEXT_MAX], depth[NUMBER_TEXT_MAX], band[64], hours[NUMBER_TEXT_MAX];
+	number_text_fixed(t->period_d, 6, period);
+	number_text_fixed(ev->depth_ppt, 1, depth);
+	number_text_fixed((ev->t4_d - ev->t1_d) * 24.0, 2, hours);
+	text_clean(t->band, band, sizeof band);
+	text_view_addf(v, ROLE_TEXT, INDENT,
+		       "Event  epoch %ld, lasts %s h, depth %s%s, period %s d, magnitude %s %s", ev->epoch,
+		       hours, *depth ? depth : "unknown", *depth ? " ppt" : "", period,
+		       row->text[ROW_MAG][0] ? row->text[ROW_MAG] : "unknown", band);
+}
+
+static void flag_lines(struct text_view *v, uint32_t flags, bool grave)
+{
+	const uint32_t first = FLAG_BIT(FLAG_SUN_UP) | FLAG_BIT(FLAG_SUN_NEAR) | FLAG_BIT(FLAG_PHASE_LOST) |
+			       FLAG_BIT(FLAG_SIGMA_UNKNOWN) | FLAG_BIT(FLAG_DOUBTFUL_POSITION);
+	for (int f = 0; f < FLAG_COUNT; f++)
+		if ((flags & FLAG_BIT(f)) && ((first & FLAG_BIT(f)) != 0) == grave)
+			text_view_addf(v, grave ? ROLE_BAD : ROLE_TEXT, INDENT, "%s  %s",
+				       grave ? "!    " : "Doubt", flag_rules[f].sentence);
+}
+
+static void source_line(struct text_view *v, const struct night_row *row)
+{
+	const struct target *t = row->window->event.prepared->target;
+	char source[256], scale[64];
+	text_clean(t->source, source, sizeof source);
+	standard_text(&t->standard, scale, sizeof scale);
+	text_view_addf(v, ROLE_FAINT, INDENT, "Source %s; epoch given in %s", *source ? source : "not said",
+		       scale);
+}
+
+void detail_lines(struct text_view *v, int width, bool roomy, const struct run *r,
+		  const struct night_view *view, const struct night_head *head, const struct night_row *row)
+{
+	text_view_start(v, width);
+	contact_table(v, r, &view->night, head, row);
+	if (roomy)
+		altitude_line(v, &view->night, row);
+	be_there_line(v, r, &view->night, head, row);
+	lost_line(v, row);
+	chance_line(v, row);
+	if (!roomy)
+		altitude_line(v, &view->night, row);
+	flag_lines(v, row->window->event.flags, true);
+	sigma_line(v, row);
+	sky_line(v, row);
+	star_line(v, row);
+	flag_lines(v, row->window->event.flags, false);
+	source_line(v, row);
+}

@@ -1,0 +1,20 @@
+/* SPDX-License-Identifier: MIT
+ * All about one window, and the page's other texts, as lines for a text view. */
+#ifndef WANE_TUI_PAGES_NIGHT_DETAIL_H
+#define WANE_TUI_PAGES_NIGHT_DETAIL_H
+
+#include "tui/pages/night_head.h"
+#include "tui/parts/text_view.h"
+
+/* Contacts in three clocks, altitudes, chances, times to be there, losses, doubts, source; the most needed
+ * first. roomy: more than the first seven lines will be seen at once. */
+void detail_lines(struct text_view *v, int width, bool roomy, const struct run *r,
+		  const struct night_view *view, const struct night_head *head, const struct night_row *row);
+/* Keys, figures, picture of the cover, doubts, cautions. */
+void help_lines(struct text_view *v, int width);
+/* The limits of the run, each with its value and sentence. */
+void limit_lines(struct text_view *v, int width, const struct limits *l, const char *remark);
+/* What to do when there is no site or no target yet. */
+void first_run_lines(struct text_view *v, int width, bool has_site, bool has_targets, const char *db_path);
+
+#endif

@@ -1,0 +1,104 @@
+/* SPDX-License-Identifier: MIT */
+#include "tui/parts/keys.h"
+
+#include "db/text_clean.h"
+#include "tui/parts/grid.h"
+
+#include <stdio.h>
+#include <string.h>
+
+/* The footer shows them in this order, as many as fit. `[`, `O` and `A` to `D` stay free: a slow line can
+ * split an arrow key into them. */
+const struct key keys[] = {
+    {'q', "q", ACT_QUIT, "quit", "Leave wane."},
+    {CONTROL('C'), "^C", ACT_QUIT, NULL, NULL},
+    {'?', "?", ACT_HELP, "help", "Show or leave this page: keys, figures, cautions."},
+    {PRESS_F1, "F1", ACT_HELP, NULL, NULL},
+    {'j', "j", ACT_DOWN, NULL, "Go to the next window."},
+    {PRESS_DOWN, "Down", ACT_DOWN, NULL, NULL},
+    {'k', "k", ACT_UP, NULL, "Go to the window before."},
+    {PRESS_UP, "Up", ACT_UP, NULL, NULL},
+    {'<', "<", ACT_NIGHT_BEFORE, "earlier", "Show the night before."},
+    {PRESS_LEFT, "Left", ACT_NIGHT_BEFORE, NULL, NULL},
+    {'>', ">", ACT_NIGHT_AFTER, "later", "Show the night after."},
+    {PRESS_RIGHT, "Right", ACT_NIGHT_AFTER, NULL, NULL},
+    {'.', ".", ACT_TONIGHT, "tonight", "Come back to tonight and to the window that comes next."},
+    {'d', "d", ACT_DATE, "date", "Type a date: the night that begins on its evening is shown."},
+    {PRESS_ENTER, "Enter", ACT_DETAILS, "details",
+     "Show all about the selected window, or come back to the list."},
+    {'l', "l", ACT_LIMITS, "limits", "Say the limits of this run in sentences."},
+    {'a', "a", ACT_LONG_SHOTS, "long shots",
+     "Show or hide long shots, windows whose better limb has a chance below one half."},
+    {'R', "R", ACT_RED, "red",
+     "Red on black for eyes used to the dark, and back. Other windows and the lines of a terminal "
+     "multiplexer stay as bright as they are."},
+    {PRESS_PAGE_DOWN, "PgDn", ACT_PAGE_DOWN, NULL, "Go a page down."},
+    {CONTROL('F'), "^F", ACT_PAGE_DOWN, NULL, NULL},
+    {' ', "Space", ACT_PAGE_DOWN, NULL, NULL},
+    {PRESS_PAGE_UP, "PgUp", ACT_PAGE_UP, NULL, "Go a page up."},
+    {CONTROL('B'), "^B", ACT_PAGE_UP, NULL, NULL},
+    {'g', "g", ACT_FIRST, NULL, "Go to the first window."},
+    {PRESS_HOME, "Home", ACT_FIRST, NULL, NULL},
+    {'G', "G", ACT_LAST, NULL, "Go to the last window."},
+    {PRESS_END, "End", ACT_LAST, NULL, NULL},
+    {PRESS_ESCAPE, "Esc", ACT_LEAVE, NULL, "Leave a view or a question and change nothing."},
+    {CONTROL('L'), "^L", ACT_REPAINT, NULL, "Draw the whole screen again."},
+    {CONTROL('Z'), "^Z", ACT_SUSPEND, NULL, "Go back to the shell for a while; `fg` comes back."},
+};
+const size_t key_count = sizeof keys / sizeof keys[0];
+
+enum action key_action(uint32_t code)
+{
+	if (code == '\n')
+		code = PRESS_ENTER;
+	for (size_t i = 0; i < key_count; i++)
+		if (keys[i].code == code)
+			return keys[i].action;
+	return ACT_NONE;
+}
+
+void key_labels(enum action action, char *out, size_t n)
+{
+	size_t used = 0;
+	if (n > 0)
+		out[0] = '\0';
+	for (size_t i = 0; i < key_count && used < n; i++)
+		if (keys[i].action == action)
+			used +=
+			    (size_t)snprintf(out + used, n - used, "%s%s", used ? " " : "", keys[i].label);
+}
+
+void key_footer(int columns, char *out, size_t n)
+{
+	size_t used = 0;
+	if (n > 0)
+		out[0] = '\0';
+	for (size_t i = 0; i < key_count; i++) {
+		if (!keys[i].footer)
+			continue;
+		char entry[64];
+		int length =
+		    snprintf(entry, sizeof entry, "%s%s %s", used ? "  " : "", keys[i].label, keys[i].footer);
+		if (length < 0 || used + (size_t)length >= n || (int)used + length > columns)
+			break;
+		memcpy(out + used, entry, (size_t)length + 1);
+		used += (size_t)length;
+	}
+}
+
+void key_called(uint32_t code, char *out, size_t n)
+{
+	for (size_t i = 0; i < key_count; i++)
+		if (keys[i].code == code) {
+			snprintf(out, n, "%s", keys[i].label);
+			return;
+		}
+	if (code < 32) {
+		snprintf(out, n, "^%c", (char)(code + '@'));
+	} else if (code < KEYS_SPECIAL && !codepoint_is_hostile(code) && codepoint_width(code) > 0) {
+		char bytes[4];
+		snprintf(out, n, "%.*s", (int)utf8_encode(code, bytes), bytes);
+	} else {
+		snprintf(out, n, "that key");
+	}
+}

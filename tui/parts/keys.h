@@ -1,0 +1,76 @@
+/* SPDX-License-Identifier: MIT
+ * One table of keys: what is pressed, what it does, the word of the footer and the sentence of the help. */
+#ifndef WANE_TUI_PARTS_KEYS_H
+#define WANE_TUI_PARTS_KEYS_H
+
+#include <stdbool.h>
+#include <stddef.h>
+#include <stdint.h>
+
+/* A key is a Unicode character (control keys are theirs: ^L is 12) or one of these. */
+enum key_code {
+	KEYS_SPECIAL = 0x110000,
+	PRESS_UP,
+	PRESS_DOWN,
+	PRESS_LEFT,
+	PRESS_RIGHT,
+	PRESS_PAGE_UP,
+	PRESS_PAGE_DOWN,
+	PRESS_HOME,
+	PRESS_END,
+	PRESS_DELETE,
+	PRESS_BACKSPACE,
+	PRESS_F1,
+	PRESS_RESIZE,	   /* the terminal has another size */
+	PRESS_PASTE_BEGIN, /* what follows until PASTE_END is pasted text */
+	PRESS_PASTE_END,
+	PRESS_OTHER, /* a key that has no meaning here */
+};
+#define PRESS_ENTER 13u
+#define PRESS_TAB 9u
+#define PRESS_ESCAPE 27u
+#define CONTROL(letter) ((uint32_t)(letter)&0x1Fu)
+
+enum action {
+	ACT_NONE,
+	ACT_UP,
+	ACT_DOWN,
+	ACT_PAGE_UP,
+	ACT_PAGE_DOWN,
+	ACT_FIRST,
+	ACT_LAST,
+	ACT_NIGHT_BEFORE,
+	ACT_NIGHT_AFTER,
+	ACT_TONIGHT,
+	ACT_DATE,
+	ACT_DETAILS,
+	ACT_LONG_SHOTS,
+	ACT_LIMITS,
+	ACT_HELP,
+	ACT_RED,
+	ACT_REPAINT,
+	ACT_SUSPEND,
+	ACT_LEAVE,
+	ACT_QUIT,
+	ACT_COUNT
+};
+
+struct key {
+	uint32_t code;
+	const char *label; /* as it is written on the screen; rows of one action join theirs */
+	enum action action;
+	const char *footer;   /* word of the footer; NULL: in the help only */
+	const char *sentence; /* of the help; NULL in the further rows of an action */
+};
+extern const struct key keys[];
+extern const size_t key_count;
+
+enum action key_action(uint32_t code);
+/* Labels of all keys of an action joined by blanks: `j Down`. */
+void key_labels(enum action action, char *out, size_t n);
+/* `q quit  ? help ...` as far as whole entries fit into a number of columns. */
+void key_footer(int columns, char *out, size_t n);
+/* What a key is called, for `nothing on ...`. */
+void key_called(uint32_t code, char *out, size_t n);
+
+#endif

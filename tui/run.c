@@ -1,0 +1,443 @@
+/* SPDX-License-Identifier: MIT */
+#include "tui/run.h"
+
+#include "db/text_clean.h"
+#include "ephem/siblings.h"
+#include "ephem/stars.h"
+#include "tui/diagnose.h"
+#include "tui/given.h"
+
+#include <math.h>
+#include <stdio.h>
+#include <stdlib.h>
+#include <string.h>
+
+/* One fault of the opening, begun with its word. */
+static enum status worded(struct err *e, const char *word, const struct err *why)
+{
+	return err_set(e, why->status, "%s: %.460s", word, why->text);
+}
+
+/* --- settings, clock, limits --- */
+
+static enum status open_settings(struct run *r, struct err *e)
+{
+	const struct options *o = r->options;
+	const char *path = o->settings ? o->settings : r->env->settings_path;
+	settings_built_in(&r->settings);
+	if (!path[0])
+		return ST_OK;
+	enum status s = settings_read(&r->settings, path, e);
+	if (s != ST_ABSENT)
+		return s;
+	if (o->settings)
+		diagnose("settings", "%s: no such file; what is built in is used", path);
+	return ST_OK;
+}
+
+static enum status open_clock(struct run *r, struct err *e)
+{
+	const struct options *o = r->options;
+	struct err why;
+	r->leap = r->settings.leap;
+	r->clock.leap = &r->leap;
+	r->clock.ut1_utc_s = isnan(o->ut1_utc_s) ? r->settings.ut1_utc_s : o->ut1_utc_s;
+	r->wall = (struct wall_clock){.leap = &r->leap};
+	if (!o->now)
+		return ST_OK;
+	r->wall.fixed = true;
+	if (given_now(&r->leap, o->now, &r->wall.start, &r->wall.running, &why) != ST_OK)
+		return worded(e, "--now", &why);
+	wall_start(&r->wall);
+	return ST_OK;
+}
+
+static enum status open_limits(struct run *r, struct err *e)
+{
+	const struct options *o = r->options;
+	r->limits = r->settings.limits;
+	for (int id = 0; id < LIM_COUNT; id++) {
+		enum status s = !o->limit_given[id]
+				    ? ST_OK
+				    : limits_put(&r->limits, (enum limit_id)id, o->limit[id], FROM_OPTION, e);
+		if (s != ST_OK)
+			return s;
+	}
+	r->kinds = o->kinds ? o->kinds : r->settings.kinds ? r->settings.kinds : KINDS_TRANSIT;
+	return ST_OK;
+}
+
+/* --- store --- */
+
+static bool needs_store(const struct options *o, int needs)
+{
+	bool site = (needs & (NEED_SITE | NEED_FIRST_SITE)) && (o->n_places == 0 || o->n_sites > 0);
+	bool targets = (needs & NEED_TARGETS) && !o->radec;
+	return site || targets || (needs & (NEED_STORE | NEED_WRITE));
+}
+
+static enum status open_store(struct run *r, int needs, struct err *e)
+{
+	const char *path = r->options->db ? r->options->db : r->env->data_path;
+	struct err why;
+	if (!path[0])
+		return err_set(e, ST_ABSENT,
+			       "store: no place for the database: HOME is not set (give --db FILE)");
+	if (strlen(path) >= sizeof r->db_path)
+		return err_set(e, ST_RANGE, "store: the database's path is longer than %zu bytes",
+			       sizeof r->db_path - 1);
+	snprintf(r->db_path, sizeof r->db_path, "%s", path);
+	enum status s = store_open(path, needs & NEED_WRITE ? STORE_WRITE : STORE_READ, &r->store, &why);
+	if (s == ST_ABSENT && !(needs & NEED_WRITE)) {
+		diagnose("store", "%s: no such database yet; it reads as empty", path);
+		return ST_OK;
+	}
+	if (s != ST_OK)
+		return worded(e, "store", &why);
+	if (needs & NEED_WRITE && store_read_only(r->store))
+		return err_set(e, ST_STORE, "store: %s can't be written", path);
+	return ST_OK;
+}
+
+static enum status load_lists(struct run *r, struct err *e)
+{
+	struct err why;
+	if (r->store && sites_load(r->store, &r->sites, &why) != ST_OK)
+		return worded(e, "store", &why);
+	if (r->store && !r->options->radec && targets_load(r->store, &r->targets, &why) != ST_OK)
+		return worded(e, "store", &why);
+	if (r->targets.n_bad > 0)
+		diagnose("store", "%zu left out because their checksums are wrong: %.300s (see wane check)",
+			 r->targets.n_bad, r->targets.bad);
+	return ST_OK;
+}
+
+/* The one target that --radec stands for: a position without an ephemeris. */
+static enum status radec_target(struct run *r, struct err *e)
+{
+	struct err why;
+	struct target t = target_empty();
+	t.name = r->options->radec;
+	if (given_radec(r->options->radec, &t.ra_deg, &t.dec_deg, &why) != ST_OK)
+		return worded(e, "--radec", &why);
+	target_list_free(&r->targets);
+	r->targets.t = malloc(sizeof t);
+	r->targets.doubts = calloc(1, sizeof *r->targets.doubts);
+	if (!r->targets.t || !r->targets.doubts)
+		return err_set(e, ST_MEMORY, "memory: none for a target");
+	r->targets.t[0] = t;
+	r->targets.n = 1;
+	return ST_OK;
+}
+
+/* --- site --- */
+
+static void open_zone(struct run *r)
+{
+	struct err why;
+	zone_close(r->zone);
+	r->zone = NULL;
+	if (r->site.zone[0] && zone_open(r->env->zoneinfo_dir, r->site.zone, &r->zone, &why) != ST_OK)
+		diagnose("zone", "%s; times are shown in UTC", why.text);
+}
+
+static void take_site(struct run *r, const struct site *site)
+{
+	r->site = *site;
+	snprintf(r->site_name, sizeof r->site_name, "%s", site->name);
+	snprintf(r->site_zone, sizeof r->site_zone, "%s", site->zone);
+	r->site.name = r->site_name;
+	r->site.zone = r->site_zone;
+	open_zone(r);
+}
+
+/* Names of the stored sites, for a message. */
+static void list_sites(const struct run *r, char *out, size_t n)
+{
+	size_t used = 0;
+	out[0] = '\0';
+	for (size_t i = 0; i < r->sites.n && used + 100 < n; i++)
+		used +=
+		    (size_t)snprintf(out + used, n - used, "%s%.90s", i ? ", " : "", r->sites.site[i].name);
+	if (r->sites.n == 0)
+		snprintf(out, n, "none is stored");
+}
+
+static enum status find_site(const struct run *r, const char *name, size_t *index, struct err *e)
+{
+	char names[300], got[ERR_QUOTE_MAX];
+	long i = site_list_find(&r->sites, name);
+	if (i >= 0) {
+		*index = (size_t)i;
+		return ST_OK;
+	}
+	list_sites(r, names, sizeof names);
+	err_quote(name, strlen(name), got);
+	return err_set(e, ST_RANGE, "site: no such site (got \"%s\", expected one of: %s)", got, names);
+}
+
+static enum status place_site(const char *text, struct site *site, struct err *e)
+{
+	struct err why;
+	*site = (struct site){.name = text, .zone = ""};
+	return given_place(text, site, &why) == ST_OK ? ST_OK : worded(e, "--place", &why);
+}
+
+static enum status choose_site(struct run *r, int needs, struct err *e)
+{
+	const struct options *o = r->options;
+	struct site place;
+	size_t index = 0;
+	enum status s = ST_OK;
+	char names[300];
+	if (o->n_places > 0) {
+		s = place_site(o->place[0], &place, e);
+		if (s == ST_OK)
+			take_site(r, &place);
+		return s;
+	}
+	if (!(needs & (NEED_SITE | NEED_FIRST_SITE)) && o->n_sites == 0)
+		return ST_OK;
+	if (o->n_sites > 0)
+		s = find_site(r, o->site[0], &index, e);
+	else if (r->settings.site[0]) {
+		if (find_site(r, r->settings.site, &index, e) != ST_OK)
+			s = err_set(e, ST_ABSENT,
+				    "settings: the site \"%.80s\" of the settings file is not stored",
+				    r->settings.site);
+	} else if (r->sites.n == 0 && needs & NEED_SITE)
+		s = err_set(
+		    e, ST_ABSENT,
+		    "site: none is stored: give --place LAT,LON,HEIGHT, or wane site add NAME --place "
+		    "LAT,LON,HEIGHT --zone ZONE");
+	else if (r->sites.n == 0)
+		return ST_OK;
+	else if (r->sites.n > 1 && !(needs & NEED_FIRST_SITE)) {
+		list_sites(r, names, sizeof names);
+		s = err_set(e, ST_ABSENT, "site: several are stored, choose one with --site (%s)", names);
+	}
+	if (s == ST_OK)
+		take_site(r, &r->sites.site[index]);
+	return s;
+}
+
+enum status run_choose_site(struct run *r, size_t index, struct err *e)
+{
+	if (index >= r->sites.n)
+		return err_set(e, ST_RANGE, "site %zu: there are %zu", index, r->sites.n);
+	take_site(r, &r->sites.site[index]);
+	return ST_OK;
+}
+
+enum status run_all_sites(struct run *r, struct site out[], size_t *n, struct err *e)
+{
+	const struct options *o = r->options;
+	enum status s = ST_OK;
+	*n = 0;
+	for (int i = 0; s == ST_OK && i < o->n_places && *n < OPTION_NAMES_MAX; i++)
+		s = place_site(o->place[i], &out[(*n)++], e);
+	for (int i = 0; s == ST_OK && i < o->n_sites && *n < OPTION_NAMES_MAX; i++) {
+		size_t index = 0;
+		s = find_site(r, o->site[i], &index, e);
+		if (s == ST_OK)
+			out[(*n)++] = r->sites.site[index];
+	}
+	if (s == ST_OK && *n == 0)
+		out[(*n)++] = r->site;
+	return s;
+}
+
+/* --- targets made ready --- */
+
+static enum status select_targets(const struct run *r, bool chosen[], struct err *e)
+{
+	const struct options *o = r->options;
+	char got[ERR_QUOTE_MAX];
+	for (size_t i = 0; i < r->targets.n; i++)
+		chosen[i] = o->n_targets == 0 || o->radec;
+	for (int k = 0; k < o->n_targets && !o->radec; k++) {
+		long i = target_list_find(&r->targets, o->target[k]);
+		err_quote(o->target[k], strlen(o->target[k]), got);
+		if (i < 0)
+			return err_set(e, ST_ABSENT,
+				       "target: no such target is stored (got \"%s\"; see wane target list)",
+				       got);
+		chosen[i] = true;
+	}
+	return ST_OK;
+}
+
+static enum status prepare_all(struct run *r, struct err *e)
+{
+	size_t n = r->targets.n;
+	bool *doubtful = calloc(n + 1, sizeof *doubtful), *chosen = calloc(n + 1, sizeof *chosen);
+	uint32_t *star = calloc(n + 1, sizeof *star); /* of prepared[i] */
+	struct err why;
+	enum status s = ST_OK;
+	r->n_prepared = 0;
+	r->star = calloc(n + 1, sizeof *r->star);
+	r->prepared = calloc(n + 1, sizeof *r->prepared);
+	if (!r->memo)
+		r->memo = calloc(1, sizeof *r->memo);
+	if (!doubtful || !chosen || !star || !r->star || !r->prepared || !r->memo)
+		s = err_set(e, ST_MEMORY, "memory: none for %zu targets", n);
+	if (s == ST_OK && stars_group(r->targets.t, n, r->star, doubtful, &why) != ST_OK)
+		s = worded(e, "targets", &why);
+	if (s == ST_OK)
+		s = select_targets(r, chosen, e);
+	/* those asked for first; behind them the rest, which only tell what their siblings need to know */
+	size_t k = 0;
+	for (int wanted = 1; s == ST_OK && wanted >= 0; wanted--) {
+		for (size_t i = 0; i < n; i++) {
+			if (chosen[i] != wanted)
+				continue;
+			star[k] = r->star[i];
+			r->prepared[k++] = prepare_target(&r->targets.t[i], &r->limits, &r->clock, r->memo,
+							  doubtful[i], r->targets.doubts[i] != 0);
+		}
+		r->n_prepared = wanted ? k : r->n_prepared;
+	}
+	if (s == ST_OK && siblings_link(r->prepared, star, n, n, &why) != ST_OK)
+		s = worded(e, "memory", &why);
+	free(star);
+	free(doubtful);
+	free(chosen);
+	return s;
+}
+
+static void drop_lists(struct run *r)
+{
+	free(r->prepared);
+	free(r->star);
+	r->prepared = NULL;
+	r->star = NULL;
+	r->n_prepared = 0;
+	target_list_free(&r->targets);
+	site_list_free(&r->sites);
+}
+
+/* --- open, close --- */
+
+/* *code: the exit code of a fault in the step that comes. */
+static enum status open_steps(struct run *r, int needs, int *code, struct err *e)
+{
+	const struct options *o = r->options;
+	enum status s = open_settings(r, e);
+	*code = 2;
+	if (s == ST_OK)
+		s = open_clock(r, e);
+	if (s == ST_OK)
+		s = open_limits(r, e);
+	if (s != ST_OK) {
+		*code = r->clock.leap ? 2 : 1; /* before the clock only the settings file can be at fault */
+		return s;
+	}
+	*code = 1;
+	if (o->telescope) {
+		char got[ERR_QUOTE_MAX];
+		err_quote(o->telescope, strlen(o->telescope), got);
+		return err_set(e, ST_ABSENT, "telescope: no telescope is stored (got \"%s\")", got);
+	}
+	if (!r->store && needs_store(o, needs))
+		s = open_store(r, needs, e);
+	if (s == ST_OK)
+		s = load_lists(r, e);
+	if (s == ST_OK && o->radec) {
+		s = radec_target(r, e);
+		*code = s == ST_OK || s == ST_MEMORY ? 1 : 2;
+	}
+	if (s == ST_OK) {
+		s = choose_site(r, needs, e);
+		*code = s == ST_ABSENT ? 1 : 2;
+	}
+	if (s == ST_OK && needs & NEED_TARGETS) {
+		s = prepare_all(r, e);
+		*code = 1;
+	}
+	return s;
+}
+
+enum status run_open_on(struct run *r, struct store *store, const struct env *env, const struct options *o,
+			int needs, int *exit_code, struct err *e)
+{
+	*r = (struct run){.env = env, .options = o, .store = store};
+	r->site.name = r->site_name;
+	r->site.zone = r->site_zone;
+	enum status s = open_steps(r, needs, exit_code, e);
+	if (s != ST_OK)
+		run_close(r);
+	else
+		*exit_code = 0;
+	return s;
+}
+
+enum status run_open(struct run *r, const struct env *env, const struct options *o, int needs, int *exit_code,
+		     struct err *e)
+{
+	return run_open_on(r, NULL, env, o, needs, exit_code, e);
+}
+
+void run_close(struct run *r)
+{
+	drop_lists(r);
+	zone_close(r->zone);
+	free(r->memo);
+	store_close(r->store);
+	r->zone = NULL;
+	r->memo = NULL;
+	r->store = NULL;
+}
+
+enum status run_reload(struct run *r, struct err *e)
+{
+	if (!r->store)
+		return ST_OK;
+	drop_lists(r);
+	enum status s = load_lists(r, e);
+	if (s == ST_OK && r->options->radec)
+		s = radec_target(r, e);
+	if (s == ST_OK)
+		s = prepare_all(r, e);
+	if (s != ST_OK || r->options->n_places > 0 || !r->site.name[0])
+		return s;
+	long index = site_list_find(&r->sites, r->site.name);
+	return index >= 0 ? run_choose_site(r, (size_t)index, e)
+			  : ST_OK; /* a removed one stays until another is chosen */
+}
+
+/* --- a night --- */
+
+enum status run_night_at(struct run *r, const struct site *site, int32_t evening_mjd, bool people,
+			 struct night_view *v, struct err *e)
+{
+	const struct options *o = r->options;
+	struct window_choice choice = {
+	    .kinds = r->kinds, .all = o->all, .min_chance = run_min_chance(r, people)};
+	enum status s = night_build(&v->night, site, &r->clock, evening_mjd, r->memo, e);
+	if (s != ST_OK)
+		return s;
+	v->dark = night_dark(&v->night, r->limits.value[LIM_SUN]);
+	return night_windows(&v->night, r->prepared, r->n_prepared, &choice, &v->list, &v->hidden, e);
+}
+
+enum status run_night(struct run *r, int32_t evening_mjd, bool people, struct night_view *v, struct err *e)
+{
+	return run_night_at(r, &r->site, evening_mjd, people, v, e);
+}
+
+double run_min_chance(const struct run *r, bool people)
+{
+	if (!isnan(r->options->min_chance))
+		return r->options->min_chance;
+	return people ? MIN_CHANCE_PEOPLE : MIN_CHANCE_MACHINE;
+}
+
+void night_view_free(struct night_view *v)
+{
+	window_list_free(&v->list);
+}
+
+int32_t run_tonight(const struct run *r)
+{
+	return night_date_of(r->site.lon_east_deg, wall_now(&r->wall));
+}

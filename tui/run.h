@@ -1,0 +1,79 @@
+/* SPDX-License-Identifier: MIT
+ * What one run works with: clock, limits, store, targets and site, put together from the command line, the settings file and the store.
+ * Subcommands and pages get their data from here: store -> arrays -> night -> windows. */
+#ifndef WANE_TUI_RUN_H
+#define WANE_TUI_RUN_H
+
+#include "db/sites.h"
+#include "db/store.h"
+#include "db/targets.h"
+#include "db/text_clean.h"
+#include "ephem/season.h"
+#include "tui/env.h"
+#include "tui/options.h"
+#include "tui/settings.h"
+#include "tui/zone.h"
+
+#include <stdbool.h>
+
+struct run {
+	const struct env *env;
+	const struct options *options;
+	struct leap_table leap;     /* built in, extended by the settings file */
+	struct earth_clock clock;
+	struct wall_clock wall;
+	struct settings settings;   /* as read from the settings file */
+	struct limits limits;       /* of the run: built in < settings < option (targets' own are laid over in prepare_target) */
+	struct store *store;        /* NULL: nothing stored yet */
+	char db_path[512];
+	struct site_list sites;
+	struct target_list targets; /* all that are stored, or the one of --radec */
+	struct site site;           /* the chosen one; name "" when none could be chosen. Its texts are the two below */
+	char site_name[NAME_BYTES_MAX], site_zone[256];
+	struct zone *zone;          /* of the chosen site; NULL: unknown, UTC is shown */
+	uint32_t *star;             /* [targets.n] */
+	struct prepared *prepared;  /* [targets.n]: first those of --target, or all; the others behind them for their siblings' sake */
+	size_t n_prepared;
+	struct sun_memo *memo;
+	int kinds;
+};
+
+/* Options to run. Which of store, site and targets are needed is said by `needs`; a missing store reads as empty with a note on standard error.
+ * NEED_SITE refuses when no site can be chosen; NEED_FIRST_SITE takes the first by name where several are stored and none is named.
+ * Order: --place, --site, the settings file, the only stored one. On failure nothing is left open and e->text begins with its own
+ * `WORD: ` or `FILE:LINE:COLUMN: ` (print with diagnose_whole). Exit code of the fault: 2 for a value outside a range or a site that
+ * does not exist, 1 else. */
+enum run_needs { NEED_STORE = 1, NEED_SITE = 2, NEED_TARGETS = 4, NEED_WRITE = 8, NEED_FIRST_SITE = 16 };
+MUST_USE enum status run_open(struct run *r, const struct env *env, const struct options *o, int needs, int *exit_code, struct err *e);
+/* The same on a store that is open already (demo, tests); it becomes the run's and is closed with it, also on failure. */
+MUST_USE enum status run_open_on(struct run *r, struct store *store, const struct env *env, const struct options *o, int needs,
+				 int *exit_code, struct err *e);
+void run_close(struct run *r);
+/* All sites of a run that may have several: each --place and --site in order, else the chosen one. *n at most OPTION_NAMES_MAX. */
+MUST_USE enum status run_all_sites(struct run *r, struct site out[], size_t *n, struct err *e);
+/* Chooses the site by its place in r->sites (site switch); reopens the zone. */
+MUST_USE enum status run_choose_site(struct run *r, size_t index, struct err *e);
+/* Loads targets and sites again (another program changed the store, or this one did). */
+MUST_USE enum status run_reload(struct run *r, struct err *e);
+
+/* Least chance of a listed window where --min-chance is not given. */
+#define MIN_CHANCE_MACHINE 0.05
+#define MIN_CHANCE_PEOPLE 0.5
+double run_min_chance(const struct run *r, bool people);
+
+/* One night with its windows: of the chosen site, or of any. Start with a zeroed view; it can be filled again and again. The windows borrow
+ * the view's night, the run's targets and the site. */
+struct night_view {
+	struct night night;
+	struct night_dark dark; /* at the run's Sun limit */
+	struct window_list list;
+	long hidden;
+};
+MUST_USE enum status run_night(struct run *r, int32_t evening_mjd, bool people, struct night_view *v, struct err *e);
+MUST_USE enum status run_night_at(struct run *r, const struct site *site, int32_t evening_mjd, bool people, struct night_view *v,
+				  struct err *e);
+void night_view_free(struct night_view *v);
+/* Tonight: the night that contains now. */
+int32_t run_tonight(const struct run *r);
+
+#endif
