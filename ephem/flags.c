@@ -13,6 +13,8 @@ const struct flag_rule flag_rules[FLAG_COUNT] = {
 	[FLAG_RADIUS_RATIO_ASSUMED] = {"radius_ratio_assumed", "Neither depth nor radius ratio is published; a ratio of 0.1 was assumed."},
 	[FLAG_COVARIANCE_ASSUMED_0] = {"covariance_assumed_0", "The covariance of epoch and period is not published and was taken as 0."},
 	[FLAG_CIRCULAR_ASSUMED] = {"circular_assumed", "No eccentricity is published; the occultation was put at half the period, without a chance."},
+	[FLAG_PHASE_ERROR_UNKNOWN] = {"phase_error_unknown", "The error of e cos w is not published: the occultation may be farther off than the "
+							     "sigma says."},
 	[FLAG_STALE] = {"stale", "The error of the mid-time is past the limit at which the pad begins to eat the least baseline."},
 	[FLAG_PHASE_LOST] = {"phase_lost", "The error of the mid-time is beyond a sixth of the period: the count of orbits can't be trusted."},
 	[FLAG_DOUBTFUL_POSITION] = {"doubtful_position", "The position disagrees with that of another planet of the same star."},

@@ -47,5 +47,6 @@ struct target target_empty(void)
 	    .moon_limit_deg = NAN,
 	    .baseline_before_min = NAN,
 	    .baseline_after_min = NAN,
+	    .ecosw_err = NAN,
 	};
 }

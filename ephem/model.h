@@ -40,6 +40,7 @@ struct target {
 	/* a target's own limits; NAN: the run's */
 	double sun_limit_deg, sun_limit_baseline_deg, alt_limit_deg, airmass_limit, moon_limit_deg;
 	double baseline_before_min, baseline_after_min;
+	double ecosw_err; /* error of e cos w, for the time of an occultation; NAN: not published */
 };
 
 /* A target with every number NAN and every text "". */
@@ -52,6 +53,7 @@ struct site {
 	double lon_east_deg; /* -180..180 */
 	double height_m;     /* -450..9000 */
 	const char *zone;    /* IANA name, "" unknown */
+	const struct mask *mask; /* horizon mask (mask.h), borrowed; NULL none */
 };
 
 /* What a run assumes of the Earth's clock. */

@@ -92,6 +92,9 @@ double night_moon_sep_deg(const struct night *n, const struct star *s, double t_
 double night_sun_sep_deg(const struct night *n, const struct star *s, double t_d);
 /* When the star's airless altitude is above a limit, in [0, length]: closed form in hour angle. */
 struct intervals night_star_above(const struct night *n, const struct star *s, double alt_deg);
+/* When the star's apparent altitude is above the site's horizon mask, in [0, length]; all of it without a mask. Edges to 4 ms; gaps in
+ * the mask that the star crosses in under 2 min may be missed. */
+struct intervals night_star_above_mask(const struct night *n, const struct star *s);
 /* When the Moon lets the star be observed: 10 deg away always when up, limit_deg when up and more than half lit; limit 0: always. */
 struct intervals night_moon_clear(const struct night *n, const struct star *s, double limit_deg);
 

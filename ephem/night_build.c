@@ -7,8 +7,8 @@
 #include <math.h>
 
 /* Fits reach half a day beyond both noons. They are made from the memo's half-day values (RUN of them, two to
- * spare at each end); together 2e-4 arcsec for the Moon, 0.1 us of light time for the Earth (measured against
- * the series themselves). */
+ * spare at each end); 5e-5 arcsec for the Moon, 3 ns of light time for the Earth (measured against the series
+ * themselves). */
 #define FIT_FROM_D (-0.5)
 #define FIT_TO_D 1.5
 enum { MOON_TERMS = 9, EARTH_TERMS = 7, RUN = 10 };

@@ -3,6 +3,7 @@
 
 #include "ephem/crossings.h"
 #include "ephem/limits.h"
+#include "ephem/mask.h"
 #include "ephem/units.h"
 
 #include <math.h>
@@ -127,4 +128,33 @@ struct intervals night_star_above(const struct night *n, const struct star *s, d
 		intervals_append(&set, fmax(at - reach, 0.0), fmin(at + reach, n->length_d));
 	}
 	return set;
+}
+
+/* --- horizon mask --- */
+
+#define MASK_STEP_D (2.0 / DAY_MIN)
+#define MASK_AIR_C 10.0 /* refraction at the mask changes by 4 % for 10 C: arcseconds above a few degrees */
+
+struct mask_context {
+	const struct night *night;
+	const struct star *star;
+	double pressure_hpa;
+};
+
+static double above_mask(const void *context, double t_d)
+{
+	const struct mask_context *c = context;
+	struct altaz at = night_star_altaz(c->night, c->star, t_d);
+	return at.alt_deg + refraction_deg(at.alt_deg, c->pressure_hpa, MASK_AIR_C) -
+	       mask_at(c->night->site->mask, at.az_north_deg);
+}
+
+struct intervals night_star_above_mask(const struct night *n, const struct star *s)
+{
+	if (!n->site->mask || n->site->mask->n == 0)
+		return intervals_one(0.0, n->length_d);
+	struct mask_context context = {.night = n, .star = s, .pressure_hpa = pressure_hpa(n->site->height_m)};
+	/* no slope bound: azimuth turns without limit near the zenith */
+	struct curve c = {.at = above_mask, .context = &context, .rate_max = 0.0};
+	return crossings_positive(&c, 0.0, n->length_d, MASK_STEP_D);
 }

@@ -83,7 +83,7 @@ struct prepared prepare_target(const struct target *t, const struct limits *run,
 	}
 	if (p.shape[KIND_TRANSIT].contradictory)
 		p.flags |= FLAG_BIT(FLAG_DOUBTFUL_VALUES);
-	const bool orbit_known = t->ecc >= 0.0 && t->ecc < 1.0 && (t->ecc == 0.0 || !isnan(t->omega_deg));
-	p.occultation_d = orbit_known ? occultation_delay_d(t->period_d, t->ecc, or_zero(t->omega_deg)) : 0.5 * t->period_d;
+	p.orbit_known = t->ecc >= 0.0 && t->ecc < 1.0 && (t->ecc == 0.0 || !isnan(t->omega_deg));
+	p.occultation_d = p.orbit_known ? occultation_delay_d(t->period_d, t->ecc, or_zero(t->omega_deg)) : 0.5 * t->period_d;
 	return p;
 }

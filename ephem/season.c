@@ -1,6 +1,8 @@
 /* SPDX-License-Identifier: MIT */
 #include "ephem/season.h"
 
+#include "ephem/siblings.h"
+
 #include <stdlib.h>
 #include <string.h>
 
@@ -86,6 +88,7 @@ enum status night_windows(const struct night *night, const struct prepared prepa
 			return err_set(e, ST_MEMORY, "no memory for %zu windows", list->n);
 	if (list->n > 1)
 		qsort(list->w, list->n, sizeof *list->w, by_reserve);
+	siblings_mark(night, list);
 	if (hidden)
 		*hidden = not_listed;
 	return ST_OK;

@@ -163,21 +163,23 @@ static int32_t mjd_of(double day)
 struct utc tt_to_utc(const struct leap_table *table, struct tt t)
 {
 	int32_t mjd = mjd_of(t.jd.day - MJD_ZERO_JD + t.jd.frac);
-	/* the latest UTC date whose midnight is not after the instant */
-	for (;; mjd--) {
+	/* The latest UTC date whose midnight is not after the instant: TT is ahead by about a minute, so it
+	 * is this or the one before. Dates that no int holds end at 0 h of the last one that does. */
+	for (int tries = 0; tries < 2; tries++, mjd--) {
 		struct utc midnight = {.mjd = mjd};
 		const struct leap_row *row = row_of(table, mjd);
 		double rate = row && mjd >= row->mjd ? row->drift_s_d / DAY_S : 0.0;
 		double since = (t.jd.day - (mjd + MJD_ZERO_JD)) * DAY_S + t.jd.frac * DAY_S - TT_TAI_S -
 			       leap_tai_minus_utc_s(table, midnight);
 		double sod = since / (1.0 + rate);
-		if (!(sod < 0.0)) {
+		if (sod >= 0.0) {
 			/* before 1972 some dates ended with a step of a fraction of a second: it stays within
 			 * the date */
 			double length = leap_day_length_s(table, mjd);
 			return (struct utc){.mjd = mjd, .sod_s = sod < length ? sod : nextafter(length, 0.0)};
 		}
 	}
+	return (struct utc){.mjd = mjd + 1};
 }
 
 double tdb_minus_tt_s(double jd_tt)
@@ -218,6 +220,8 @@ struct utc utc_from_jd(const struct leap_table *table, struct jd2 jd)
 	struct utc t = {.mjd = mjd_of(whole + carry)};
 	double length = leap_day_length_s(table, t.mjd);
 	t.sod_s = (frac - carry) * length;
+	if (!(t.sod_s >= 0.0)) /* an infinite or missing date */
+		t.sod_s = 0.0;
 	if (t.sod_s >= length) {
 		t.mjd++;
 		t.sod_s = 0.0;

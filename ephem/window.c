@@ -58,6 +58,17 @@ static void event_errors(struct window_event *ev, const struct prepared *p, cons
 		ev->chance_sigma_d = ev->chance_contact_d = NAN;
 }
 
+/* Published error of the mid-time. An occultation's place in the orbit moves by 2 P / pi for each unit of e cos w (Winn 2010,
+ * arXiv:1001.2010, eq. 33, first order). */
+static double event_published_min(const struct prepared *p, enum event_kind kind, long epoch)
+{
+	const double mid_d = ephemeris_published_d(&p->eph, epoch);
+	const double ecosw_err = p->target->ecosw_err;
+	if (kind == KIND_TRANSIT || !(ecosw_err > 0.0))
+		return mid_d * DAY_MIN;
+	return hypot(mid_d, 2.0 * p->eph.period_d / PI * ecosw_err) * DAY_MIN;
+}
+
 /* How far the reserve reaches beyond a contact. */
 static double reserve_d(const struct prepared *p, const struct shape *shape, double published_min, double wanted_d)
 {
@@ -83,8 +94,10 @@ static uint32_t shape_flags(const struct prepared *p, const struct shape *shape,
 		flags |= FLAG_BIT(FLAG_RADIUS_RATIO_ASSUMED);
 	if (shape->grazing)
 		flags |= FLAG_BIT(FLAG_GRAZING);
-	if (kind == KIND_OCCULTATION && isnan(p->target->ecc))
+	if (kind == KIND_OCCULTATION && !p->orbit_known)
 		flags |= FLAG_BIT(FLAG_CIRCULAR_ASSUMED);
+	else if (kind == KIND_OCCULTATION && !(p->target->ecosw_err > 0.0))
+		flags |= FLAG_BIT(FLAG_PHASE_ERROR_UNKNOWN);
 	return flags;
 }
 
@@ -105,7 +118,7 @@ static void make_event(struct window_event *ev, const struct target_night *tn, e
 	ev->before_d = p->baseline_before_d[kind];
 	ev->after_d = p->baseline_after_d[kind];
 	ev->flags = shape_flags(p, shape, kind);
-	const double published_min = ephemeris_published_d(&p->eph, epoch) * DAY_MIN;
+	const double published_min = event_published_min(p, kind, epoch);
 	event_errors(ev, p, shape, published_min);
 	ev->reserve_start_d = ev->t1_d - reserve_d(p, shape, published_min, ev->before_d);
 	ev->reserve_end_d = ev->t4_d + reserve_d(p, shape, published_min, ev->after_d);

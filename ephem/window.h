@@ -21,8 +21,10 @@ struct prepared {
 	double airmass_alt_deg; /* altitude of the airmass limit; 0 without one */
 	double baseline_before_d[2], baseline_after_d[2]; /* by kind (automatic ones follow the duration) */
 	double occultation_d;   /* transit to occultation */
+	bool orbit_known;       /* eccentricity and, where it is not 0, its direction are published; else taken as circular */
 	bool has_ephemeris;     /* epoch and period there and countable */
 	uint32_t flags;         /* those that hold for every window of it */
+	const struct prepared *sibling; /* the next planet of the same star, in a ring (siblings.h); NULL alone */
 };
 /* doubtful_position: found by comparing the target with its siblings (stars.h); doubtful_values: the store kept numbers that can't be true.
  * clock, memo: for epochs in standards other than BJD_TDB. */
@@ -72,12 +74,15 @@ struct window_chance {
 struct window_forecast { /* all NAN until a telescope's forecast exists */
 	double flip_d, exposure_s, noise_ppt_min, depth_snr, timing_s, gain_bits, sigma_after_min, worth;
 };
+enum { SIBLINGS_MAX = 8 };
 struct window {
 	struct window_event event;
 	struct window_sky sky;
 	struct window_cover cover;
 	struct window_chance chance;
 	struct window_forecast forecast;
+	int n_siblings; /* planets of the star that transit within the reserve; siblings_mark fills it */
+	const struct prepared *sibling[SIBLINGS_MAX];
 };
 
 /* A target on a night: its star and the sets in which it can be observed, each by its cause. */
@@ -85,7 +90,7 @@ struct target_night {
 	const struct night *night;
 	const struct prepared *prepared;
 	struct star star;
-	struct intervals sun_limb, sun_baseline, altitude, airmass, moon; /* allowed by each cause, in [0, length] */
+	struct intervals sun_limb, sun_baseline, altitude, mask, airmass, moon; /* allowed by each cause, in [0, length] */
 	struct intervals limb, baseline; /* allowed by all */
 };
 /* Sun sets of one night by limit, so that targets with the same limit share one. Start with n = 0 on every night. */

@@ -11,7 +11,6 @@
 
 #define COVER_WHOLE 0.995            /* a part with less than this has lost something */
 #define DONE_GAP_D (10.0 * MIN_D)    /* a pause that flat part and baselines bear */
-#define MOON_REACH_DEG 10.0          /* the Moon moves less than this against a star in half a day, parallax included */
 #define NEVER_LISTED 0.0005          /* chance below which nothing is hidden from the observer by not being listed */
 
 static const struct intervals *sun_set(const struct night *n, double limit_deg, struct sun_sets *suns)
@@ -25,15 +24,6 @@ static const struct intervals *sun_set(const struct night *n, double limit_deg, 
 	return &suns->set[i];
 }
 
-/* The Moon rules; a star far from the Moon's path of the night needs no search. */
-static struct intervals moon_clear(const struct night *n, const struct star *s, double limit_deg)
-{
-	const double mid_d = 0.5 * n->length_d;
-	if (limit_deg <= 0.0 || night_moon_sep_deg(n, s, mid_d) > fmax(limit_deg, MOON_ALWAYS_DEG) + MOON_REACH_DEG)
-		return intervals_one(0.0, n->length_d);
-	return night_moon_clear(n, s, limit_deg);
-}
-
 struct target_night target_on_night(const struct night *n, const struct prepared *p, const struct star *s, struct sun_sets *suns)
 {
 	const double *limit = p->limits.value;
@@ -41,9 +31,11 @@ struct target_night target_on_night(const struct night *n, const struct prepared
 	tn.sun_limb = *sun_set(n, limit[LIM_SUN], suns);
 	tn.sun_baseline = *sun_set(n, isnan(limit[LIM_SUN_BASELINE]) ? limit[LIM_SUN] : limit[LIM_SUN_BASELINE], suns);
 	tn.altitude = night_star_above(n, s, limit[LIM_ALT]);
+	tn.mask = night_star_above_mask(n, s);
 	tn.airmass = p->airmass_alt_deg > 0.0 ? night_star_above(n, s, p->airmass_alt_deg) : intervals_one(0.0, n->length_d);
-	tn.moon = moon_clear(n, s, limit[LIM_MOON]);
+	tn.moon = night_moon_clear(n, s, limit[LIM_MOON]);
 	struct intervals sky = intervals_and(&tn.altitude, &tn.airmass);
+	sky = intervals_and(&sky, &tn.mask);
 	sky = intervals_and(&sky, &tn.moon);
 	tn.limb = intervals_and(&sky, &tn.sun_limb);
 	tn.baseline = intervals_and(&sky, &tn.sun_baseline);
@@ -67,6 +59,7 @@ static enum cause worst_cause(const struct target_night *tn, struct span part, b
 	const struct intervals *allowed[CAUSE_COUNT] = {
 		[CAUSE_SUN] = limb ? &tn->sun_limb : &tn->sun_baseline,
 		[CAUSE_ALTITUDE] = &tn->altitude,
+		[CAUSE_MASK] = &tn->mask,
 		[CAUSE_MOON] = &tn->moon,
 		[CAUSE_AIRMASS] = &tn->airmass,
 	};

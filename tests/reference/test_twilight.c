@@ -128,6 +128,26 @@ static void random_night(struct rng *r, struct site *site, struct night *n)
 	} while (n->length_d != 1.0);
 }
 
+static void compare_sun(struct tally *w, const struct site *site, const struct night *n)
+{
+	const struct {
+		double limit, dusk, dawn;
+	} rows[] = {
+	    {-50.0 / 60.0, n->times.sunset_d, n->times.sunrise_d},
+	    {-6.0, n->times.civil_dusk_d, n->times.civil_dawn_d},
+	    {-12.0, n->times.nautical_dusk_d, n->times.nautical_dawn_d},
+	    {-18.0, n->times.astronomical_dusk_d, n->times.astronomical_dawn_d},
+	};
+	struct outside o = {.night = n, .site = site};
+	sample(&o);
+	for (size_t k = 0; k < 4; k++) {
+		o.limit_deg = rows[k].limit;
+		struct found f = search(&o);
+		compare(w, &o, &f, rows[k].dusk, f.first_down);
+		compare(w, &o, &f, rows[k].dawn, f.last_up);
+	}
+}
+
 static void sun(void **state)
 {
 	(void)state;
@@ -137,25 +157,34 @@ static void sun(void **state)
 		struct site site;
 		struct night n;
 		random_night(&r, &site, &n);
-		struct outside o = {.night = &n, .site = &site};
-		sample(&o);
-		const struct {
-			double limit, dusk, dawn;
-		} rows[] = {
-		    {-50.0 / 60.0, n.times.sunset_d, n.times.sunrise_d},
-		    {-6.0, n.times.civil_dusk_d, n.times.civil_dawn_d},
-		    {-12.0, n.times.nautical_dusk_d, n.times.nautical_dawn_d},
-		    {-18.0, n.times.astronomical_dusk_d, n.times.astronomical_dawn_d},
-		};
-		for (size_t k = 0; k < 4; k++) {
-			o.limit_deg = rows[k].limit;
-			struct found f = search(&o);
-			compare(&w, &o, &f, rows[k].dusk, f.first_down);
-			compare(&w, &o, &f, rows[k].dawn, f.last_up);
-		}
+		compare_sun(&w, &site, &n);
 	}
 	report("Sun", &w);
 	assert_true(w.compared > 100);
+}
+
+/* Midsummer where the Sun's depth at midnight is within 3 arcmin of a limit: the crossing takes minutes for
+ * an arcsecond. */
+static void grazing_sun(void **state)
+{
+	(void)state;
+	static const struct earth_clock clock = {.leap = &leap_builtin};
+	static const double limits[] = {50.0 / 60.0, 6.0, 12.0, 18.0};
+	struct rng r = rng_open("grazing twilight");
+	struct tally w = {0};
+	for (int i = 0; i < 16; i++) {
+		int year = (int)rng_between(&r, 2000.0, 2051.0);
+		int32_t mjd;
+		assert_int_equal(date_to_mjd((struct date){year, 6, 21}, &mjd, NULL), ST_OK);
+		/* 23.437 deg: the Sun's declination at the solstice */
+		struct site site = {.lat_deg = 90.0 - 23.437 - limits[i % 4] + rng_between(&r, -0.05, 0.05),
+				    .lon_east_deg = rng_between(&r, -180.0, 180.0)};
+		struct night n;
+		assert_int_equal(night_build(&n, &site, &clock, mjd, &memo, NULL), ST_OK);
+		compare_sun(&w, &site, &n);
+	}
+	report("Sun, grazing", &w);
+	assert_true(w.compared > 40);
 }
 
 static void moon(void **state)
@@ -186,6 +215,7 @@ int main(void)
 {
 	const struct CMUnitTest tests[] = {
 	    cmocka_unit_test(sun),
+	    cmocka_unit_test(grazing_sun),
 	    cmocka_unit_test(moon),
 	};
 	return cmocka_run_group_tests_name("twilight", tests, NULL, NULL);

@@ -73,10 +73,10 @@ void driver_key(struct page_driver *d, uint32_t code)
 	driver_draw(d);
 }
 
-void driver_keys(struct page_driver *d, const char *keys)
+void driver_keys(struct page_driver *d, const char *typed)
 {
-	for (; *keys; keys++)
-		driver_key(d, (unsigned char)*keys);
+	for (; *typed; typed++)
+		driver_key(d, (unsigned char)*typed);
 }
 
 static char *screen_text(const struct page_driver *d)

@@ -21,7 +21,7 @@ void driver_size(struct page_driver *d, int rows, int cols);
 /* One key, its want served, the clock's tick, a drawing. */
 void driver_key(struct page_driver *d, uint32_t code);
 /* Each byte a key; `\r` Enter, `\033` Escape. */
-void driver_keys(struct page_driver *d, const char *keys);
+void driver_keys(struct page_driver *d, const char *typed);
 void driver_draw(struct page_driver *d);
 /* Whether a text stands somewhere on the screen, in one row. */
 bool driver_shows(const struct page_driver *d, const char *text);

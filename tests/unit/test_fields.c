@@ -228,7 +228,7 @@ static void test_values(void **state)
 				   (unsigned long long)doubts);
 		check_close(rows[i].field, value_of(&t, f), rows[i].doubt ? (double)NAN : rows[i].value, 0.0);
 		if (rows[i].doubt)
-			assert_true(strlen(field_doubt(f, rows[i].text)) > 5);
+			assert_true(strlen(field_doubt(f, rows[i].text, NULL)) > 5);
 	}
 }
 
@@ -329,7 +329,7 @@ static void test_pairs(void **state)
 			check_fail("%s: doubts %llx", rows[i].what, (unsigned long long)doubts);
 		if (rows[i].doubt) {
 			assert_true(isnan(t.inc_deg));
-			assert_non_null(strstr(field_doubt(FIELD_AT_INC, rows[i].inc), "1 + k"));
+			assert_non_null(strstr(field_doubt(FIELD_AT_INC, rows[i].inc, NULL), "1 + k"));
 		}
 	}
 }

@@ -689,6 +689,27 @@ static void test_wrong_pointer(void **state)
 	sql(s, "UPDATE target SET ephemeris_id = 1 WHERE id = 2", SQLITE_OK);
 	assert_true(faults_of(s, says) > 0);
 	assert_non_null(strstr(says, "another target"));
+	/* good checksums or not, an ephemeris of another star is not used */
+	struct cell cell[ROW_CELLS_MAX];
+	bool found;
+	struct err e = {0};
+	struct target_list list;
+	const struct cell key = cell_int(2);
+	must(cells_bind(s->stmt[SQL_TARGET_BY_ID], 1, &key, 1, &e), &e);
+	must(sql_step(s, SQL_TARGET_BY_ID, &found, &e), &e);
+	assert_true(found);
+	size_t cells = (size_t)sqlite3_column_count(s->stmt[SQL_TARGET_BY_ID]) - 1;
+	cells_read(s->stmt[SQL_TARGET_BY_ID], 0, cell, cells);
+	char text[96];
+	snprintf(text, sizeof text, "UPDATE target SET row_crc = %lu WHERE id = 2",
+		 (unsigned long)row_crc(&s->crc, cell, cells));
+	sql_reset(s, SQL_TARGET_BY_ID);
+	sql(s, text, SQLITE_OK);
+	must(targets_load(s, &list, &e), &e);
+	assert_int_equal(list.n_bad, 1);
+	assert_true(isnan(list.t[target_list_find(&list, "Tern 15 b")].period_d));
+	check_close("the other", list.t[target_list_find(&list, "Tern 14 b")].period_d, 3.5, 0.0);
+	target_list_free(&list);
 	store_close(s);
 }
 

@@ -167,6 +167,43 @@ static void unknown_and_lost(void **state)
 	assert_true(isfinite(w.chance.done));
 }
 
+/* Occultations: the exact delay, errors of e cos w, and what is not known said. */
+static void occultation_by_hand(void **state)
+{
+	const struct night *n = *state;
+	const struct limits l = run_limits(0.0, 0.0);
+	struct target t = circumpolar();
+	t.period_d = 4.0;
+	t.t0_err_d = 1.0 * MIN_D;
+	t.ecc = 0.6;
+	t.omega_deg = 120.0;
+	put_mid(&t, n, 0.5);
+	t.t0 = jd2_add_d(t.t0, -1.124600); /* Kepler's equation: 1.124600 d from transit to occultation (test_ephemeris) */
+	const struct prepared p = prepare_target(&t, &l, &earth, &memo, false, false);
+	struct window_list list = {0};
+	const struct window_choice both = {.kinds = KINDS_OCCULTATION, .all = true};
+	assert_int_equal(night_windows(n, &p, 1, &both, &list, NULL, NULL), ST_OK);
+	assert_int_equal(list.n, 1);
+	check_close("mid", list.w[0].event.mid_d, 0.5, 1e-6);
+	assert_int_equal(list.w[0].event.epoch, 0);
+	check_close("no error of e cos w", list.w[0].event.sigma_min, 1.0, 1e-9);
+	assert_true(list.w[0].event.flags & FLAG_BIT(FLAG_PHASE_ERROR_UNKNOWN));
+	t.ecosw_err = 0.002; /* 2 x 4 d / pi x 0.002 = 7.334 min */
+	const struct prepared q = prepare_target(&t, &l, &earth, &memo, false, false);
+	assert_int_equal(night_windows(n, &q, 1, &both, &list, NULL, NULL), ST_OK);
+	check_close("with it", list.w[0].event.sigma_min, hypot(1.0, 2.0 * 4.0 * DAY_MIN / PI * 0.002), 1e-9);
+	assert_false(list.w[0].event.flags & FLAG_BIT(FLAG_PHASE_ERROR_UNKNOWN));
+	t.ecc = NAN;
+	put_mid(&t, n, 0.5);
+	t.t0 = jd2_add_d(t.t0, -2.0);
+	const struct prepared r = prepare_target(&t, &l, &earth, &memo, false, false);
+	assert_int_equal(night_windows(n, &r, 1, &both, &list, NULL, NULL), ST_OK);
+	check_close("half the period", list.w[0].event.mid_d, 0.5, 1e-9);
+	assert_true(list.w[0].event.flags & FLAG_BIT(FLAG_CIRCULAR_ASSUMED));
+	assert_true(isnan(list.w[0].chance.ingress) && isfinite(list.w[0].event.sigma_min));
+	window_list_free(&list);
+}
+
 /* An event that runs over noon stands in both nights, each with its own part. */
 static void over_noon(void **state)
 {
@@ -250,7 +287,7 @@ int main(void)
 {
 	const struct CMUnitTest tests[] = {
 		cmocka_unit_test(dusk_by_hand), cmocka_unit_test(reserve_by_hand), cmocka_unit_test(unknown_and_lost),
-		cmocka_unit_test(over_noon),	cmocka_unit_test(few_mid_times_in_five_days),
+		cmocka_unit_test(over_noon), cmocka_unit_test(occultation_by_hand),	cmocka_unit_test(few_mid_times_in_five_days),
 	};
 	return cmocka_run_group_tests_name("window", tests, open_night, close_night);
 }
