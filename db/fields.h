@@ -56,8 +56,8 @@ struct field_texts {
 /* Reads the texts into *t (whose text pointers then borrow from texts). Essential faults: ST_SYNTAX / ST_RANGE, *bad_field its index.
  * Other faults: the value becomes NAN, bit (1 << field) set in *doubts, the text stays for the store to keep. */
 MUST_USE enum status fields_read(const struct field_texts *texts, struct target *t, uint64_t *doubts, int *bad_field, struct err *e);
-/* Why a text of a doubtful field can't be true, a short sentence. */
-const char *field_doubt(int field, const char *text);
+/* Why a text of a doubtful field can't be true, a short sentence. *alone (may be NULL): it is bad by itself, not beside others. */
+const char *field_doubt(int field, const char *text, bool *alone);
 /* What is expected of a field, for messages: `a number above 0 d`. */
 void field_expected(int field, char *out, size_t n);
 /* Most bytes that the store keeps of a text field. */

@@ -150,10 +150,12 @@ static void doubt_pairs(struct target *t, uint64_t *doubts)
 		doubt(t, FIELD_AT_INC, doubts);
 }
 
-const char *field_doubt(int field, const char *text)
+const char *field_doubt(int field, const char *text, bool *alone)
 {
 	struct target t = target_empty();
 	enum status s = read_one(field, text, &t, NULL);
+	if (alone)
+		*alone = s != ST_OK;
 	if (s == ST_SYNTAX)
 		return "not a number";
 	if (s != ST_OK)

@@ -143,19 +143,18 @@ static void say_doubts(struct importing *im, const struct csv_row *row, const st
 		if (!doubt && !cut)
 			continue;
 		const struct csv_cell *cell = &row->cell[im->column_of[f]];
-		char expected[128], what[128];
+		char expected[128], what[128] = "too long: cut";
+		bool alone = true;
 		field_expected(f, expected, sizeof expected);
 		if (doubt)
 			snprintf(what, sizeof what, "kept without effect: %s",
-				 field_doubt(f, r->own.texts.text[f]));
-		else
-			snprintf(what, sizeof what, "too long: cut");
+				 field_doubt(f, r->own.texts.text[f], &alone));
 		say(im, (struct import_message){.line = cell->line,
 						.column = cell->column,
 						.field = fields[f].name,
 						.text = what,
 						.got = cell->text,
-						.expected = expected,
+						.expected = alone ? expected : "",
 						.warning = true});
 	}
 }
@@ -239,7 +238,7 @@ static enum status import_into(struct importing *im, struct csv *csv, struct err
 	if (st == ST_OK && im->o->strict && im->report->refused > 0)
 		st = err_set(e, ST_SYNTAX, "nothing was stored: %ld of %ld rows refused", im->report->refused,
 			     im->report->read);
-	if (st == ST_OK && !im->o->dry_run)
+	if (st == ST_OK)
 		return store_commit(im->store, e);
 	store_rollback(im->store);
 	return st;

@@ -171,6 +171,8 @@ struct shape shape_of(const struct target *t, enum event_kind kind)
 		const double transit = contact_duration_d(o.period_d, o.a_rs, o.k, b, inc_deg, o.ecc, o.omega_deg, 1);
 		sign = -1;
 		b = impact_parameter(o.a_rs, inc_deg, o.ecc, o.omega_deg, sign);
+		if (s.ingress_estimated && b > fabs(1.0 - o.k)) /* an assumed b is no reason to deny the event */
+			b = assumed_b(o.k);
 		const double behind = contact_duration_d(o.period_d, o.a_rs, o.k, b, inc_deg, o.ecc, o.omega_deg, sign);
 		const double ratio = transit > 0.0 && behind >= 0.0 ? behind / transit : 1.0;
 		s.occurs = b < 1.0 + o.k;

@@ -3,7 +3,7 @@
 # Then the rules themselves are tried: one breach of each is planted in a copy and must be found. `layers.sh --objects DIR` looks at compiled
 # objects too: nothing in the engine may be writable after loading.
 set -u
-libc='assert|ctype|errno|fcntl|float|inttypes|langinfo|limits|locale|math|poll|pwd|signal|stdarg|stdbool|stddef|stdint|stdio|stdlib|string|strings|time|unistd|wchar|wctype|pthread|termios|sys/[a-z]+'
+libc='assert|ctype|dirent|errno|fcntl|float|inttypes|langinfo|limits|locale|math|poll|pwd|signal|stdarg|stdbool|stddef|stdint|stdio|stdlib|string|strings|time|unistd|wchar|wctype|pthread|termios|sys/[a-z]+'
 
 # find_in WHAT FILES... -- PATTERN: every match is one breach, `WHAT: file:line:text`
 find_in() {
@@ -43,7 +43,7 @@ breaches() {
 	find_in "the clock is read in env.c" $db $(except tui/env.c $tui) -- '\b(time|clock_gettime|gettimeofday|localtime(_r)?|gmtime(_r)?|mktime)\((NULL|&|CLOCK_REALTIME)'
 	find_in "no zone but the site's" $ephem $db $tui -- '\b(setenv|putenv|tzset)\('
 	# shellcheck disable=SC2086
-	drawing=$(grep -lE '"tui/parts/grid\.h"' $tui 2>/dev/null)
+	drawing=$(grep -lE '"tui/parts/grid\.h"' tui/parts/*.[ch] 2>/dev/null)
 	find_in "pages draw into the grid" tui/pages/*.c $drawing -- '\b(printf|vprintf|fprintf|vfprintf|puts|fputs|putchar|fwrite|perror)\('
 	find_in "pages read no files and no store rows" tui/pages/*.c -- '\b(fopen|fread|file_read|targets_load|sites_load|store_open)\('
 	find_in "unbounded or error-blind calls" $ephem $db $tui -- '\b(strcpy|strcat|sprintf|vsprintf|gets|atoi|atol|atof|strtok|alloca)\('

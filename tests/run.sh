@@ -5,7 +5,7 @@
 set -u
 top=$(cd "$(dirname "$0")/.." && pwd) || exit 1
 cd "$top" || exit 1
-limit_s=600 # no test may hang the run
+limit_s=150 # no test may hang the run
 jobs=2
 
 # --- one test: `run.sh --one RESULT PROGRAM`. RESULT gets `passed failed skipped`, RESULT.why the reasons, RESULT.log what it said.
@@ -27,8 +27,8 @@ if [ "${1:-}" = --one ]; then
 		/^[0-9]+ passed, [0-9]+ failed$/ { passed = $1; failed = $3; seen = 1 }
 		/^SKIP: / { reasons++ }
 		END {
-			if (status != 0 && failed == 0 || !seen) failed++ # it died, or never came to its end
-			print passed + 0, failed + 0, skipped > reasons ? skipped : reasons + 0
+			if ((status != 0 && failed == 0) || !seen) failed++ # it died, or never came to its end
+			print passed + 0, failed + 0, (skipped > reasons ? skipped : reasons + 0)
 		}' "$result.log" >"$result"
 	sed -n 's/^SKIP: //p' "$result.log" >"$result.why"
 	read -r passed failed skipped <"$result"
@@ -39,7 +39,9 @@ if [ "${1:-}" = --one ]; then
 	if [ "$failed" = 0 ]; then
 		echo "ok   $line"
 	else
-		printf 'FAIL %s, %s failed (exit status %s)\n%s\n' "$line" "$failed" "$status" "$(tail -n 60 "$result.log")"
+		reason="exit status $status"
+		[ "$status" != 124 ] || reason="stopped after $limit_s s"
+		printf 'FAIL %s, %s failed (%s)\n%s\n' "$line" "$failed" "$reason" "$(tail -n 60 "$result.log")"
 	fi
 	exit 0
 fi

@@ -42,6 +42,19 @@ static void read_user(char *out, size_t n)
 	snprintf(out, n, "%s", name[0] ? name : "unknown");
 }
 
+/* Whether the locale that is asked for writes UTF-8. One that is not installed here (a session from afar) can't be set, but its name still
+ * says what the terminal shows. */
+static bool characters_are_utf8(void)
+{
+	const char *asked[] = {variable("LC_ALL"), variable("LC_CTYPE"), variable("LANG")};
+	if (strcmp(nl_langinfo(CODESET), "UTF-8") == 0)
+		return true;
+	for (size_t i = 0; i < sizeof asked / sizeof asked[0]; i++)
+		if (asked[i][0])
+			return strstr(asked[i], ".UTF-8") || strstr(asked[i], ".utf8") || strstr(asked[i], ".utf-8");
+	return false;
+}
+
 void env_read(struct env *env)
 {
 	memset(env, 0, sizeof *env);
@@ -55,7 +68,7 @@ void env_read(struct env *env)
 		zones = "/usr/share/zoneinfo";
 	snprintf(env->zoneinfo_dir, sizeof env->zoneinfo_dir, "%s", zones);
 	env->no_color = variable("NO_COLOR")[0] != '\0';
-	env->utf8 = strcmp(nl_langinfo(CODESET), "UTF-8") == 0;
+	env->utf8 = characters_are_utf8();
 	env->stdin_tty = isatty(STDIN_FILENO) == 1;
 	env->stdout_tty = isatty(STDOUT_FILENO) == 1;
 }

@@ -92,7 +92,7 @@ enum status given_time(const struct leap_table *leap, const char *text, struct u
 enum status given_night(const struct leap_table *leap, double lon_east_deg, const char *text, int32_t *mjd,
 			struct err *e)
 {
-	struct utc t;
+	struct utc t = {0};
 	if (is_bare_date(text)) {
 		struct date date;
 		enum status s = date_parse(text, &date, e);

@@ -36,7 +36,7 @@ static int open_interface(const struct env *env, const struct options *o)
 	err_clear(&e);
 	code = page_run(&run, run_tonight(&run), &e);
 	if (code != EXIT_DONE && e.text[0])
-		diagnose("interface", "%s (`wane night --plain` prints the night)", e.text);
+		diagnose("interface", "%s", e.text);
 	run_close(&run);
 	return code;
 }
@@ -102,8 +102,8 @@ int main(int argc, char *argv[])
 		return diagnose_whole(&e, EXIT_USAGE);
 	int code = dispatch(&env, &options);
 	struct out standard = {.file = stdout, .to_stdout = true};
-	if (out_commit(&standard, &e) != ST_OK)
-		return diagnose_whole(&e, EXIT_UNMET);
+	if (out_commit(&standard, &e) != ST_OK) /* a command that failed has said why */
+		return code != EXIT_DONE ? code : diagnose_whole(&e, EXIT_UNMET);
 	if (fclose(stdout) != 0) {
 		diagnose("standard output", "%s", strerror(errno));
 		return EXIT_UNMET;

@@ -161,7 +161,7 @@ static enum status add_name(const char **list, int *n, const char *value, struct
 static enum status put_row(struct options *o, const struct option_row *row, const char *value, struct err *e)
 {
 	char *at = (char *)o + row->offset;
-	double number;
+	double number = 0.0;
 	enum status s = ST_OK;
 	if (row->kind != OPT_FLAG && row->kind != OPT_TEXT_OR_EMPTY && !value[0])
 		return err_set(e, ST_SYNTAX, "the value is empty (got \"\", expected %s)", row->argument);
@@ -213,7 +213,7 @@ static enum status named(struct err *e, const char *name, size_t n, enum status 
 
 static enum status unknown(const char *name, size_t n, struct err *e)
 {
-	const char *all[ROW_COUNT + LIM_COUNT];
+	const char *all[ROW_COUNT + LIM_COUNT] = {NULL};
 	char word[ERR_QUOTE_MAX];
 	size_t count = 0;
 	for (int i = 0; i < ROW_COUNT; i++)

@@ -267,27 +267,19 @@ static enum status select_targets(const struct run *r, bool chosen[], struct err
 	return ST_OK;
 }
 
-static enum status prepare_all(struct run *r, struct err *e)
+/* star[n]: scratch, of prepared[i]. */
+static enum status prepare_chosen(struct run *r, bool doubtful[], bool chosen[], uint32_t star[],
+				  struct err *e)
 {
-	size_t n = r->targets.n;
-	bool *doubtful = calloc(n + 1, sizeof *doubtful), *chosen = calloc(n + 1, sizeof *chosen);
-	uint32_t *star = calloc(n + 1, sizeof *star); /* of prepared[i] */
+	size_t n = r->targets.n, k = 0;
 	struct err why;
-	enum status s = ST_OK;
-	r->n_prepared = 0;
-	r->star = calloc(n + 1, sizeof *r->star);
-	r->prepared = calloc(n + 1, sizeof *r->prepared);
-	if (!r->memo)
-		r->memo = calloc(1, sizeof *r->memo);
-	if (!doubtful || !chosen || !star || !r->star || !r->prepared || !r->memo)
-		s = err_set(e, ST_MEMORY, "memory: none for %zu targets", n);
-	if (s == ST_OK && stars_group(r->targets.t, n, r->star, doubtful, &why) != ST_OK)
-		s = worded(e, "targets", &why);
-	if (s == ST_OK)
-		s = select_targets(r, chosen, e);
+	if (stars_group(r->targets.t, n, r->star, doubtful, &why) != ST_OK)
+		return worded(e, "targets", &why);
+	enum status s = select_targets(r, chosen, e);
+	if (s != ST_OK)
+		return s;
 	/* those asked for first; behind them the rest, which only tell what their siblings need to know */
-	size_t k = 0;
-	for (int wanted = 1; s == ST_OK && wanted >= 0; wanted--) {
+	for (int wanted = 1; wanted >= 0; wanted--) {
 		for (size_t i = 0; i < n; i++) {
 			if (chosen[i] != wanted)
 				continue;
@@ -295,10 +287,27 @@ static enum status prepare_all(struct run *r, struct err *e)
 			r->prepared[k++] = prepare_target(&r->targets.t[i], &r->limits, &r->clock, r->memo,
 							  doubtful[i], r->targets.doubts[i] != 0);
 		}
-		r->n_prepared = wanted ? k : r->n_prepared;
+		if (wanted)
+			r->n_prepared = k;
 	}
-	if (s == ST_OK && siblings_link(r->prepared, star, n, n, &why) != ST_OK)
-		s = worded(e, "memory", &why);
+	return siblings_link(r->prepared, star, n, n, &why) == ST_OK ? ST_OK : worded(e, "memory", &why);
+}
+
+static enum status prepare_all(struct run *r, struct err *e)
+{
+	size_t n = r->targets.n;
+	bool *doubtful = calloc(n + 1, sizeof *doubtful), *chosen = calloc(n + 1, sizeof *chosen);
+	uint32_t *star = calloc(n + 1, sizeof *star);
+	enum status s;
+	r->n_prepared = 0;
+	r->star = calloc(n + 1, sizeof *r->star);
+	r->prepared = calloc(n + 1, sizeof *r->prepared);
+	if (!r->memo)
+		r->memo = calloc(1, sizeof *r->memo);
+	if (doubtful && chosen && star && r->star && r->prepared && r->memo)
+		s = prepare_chosen(r, doubtful, chosen, star, e);
+	else
+		s = err_set(e, ST_MEMORY, "memory: none for %zu targets", n);
 	free(star);
 	free(doubtful);
 	free(chosen);

@@ -105,8 +105,8 @@ void settings_built_in(struct settings *s)
 /* `2029-01-01 = 38`: TAI - UTC from that UTC date on. */
 static enum status put_leap(struct settings *s, const struct ini_entry *entry, struct err *e)
 {
-	struct date date;
-	int32_t mjd;
+	struct date date = {0};
+	int32_t mjd = 0;
 	double tai_minus_utc_s;
 	enum status status =
 	    strlen(entry->key) == LEAP_SECTION_KEY_MAX

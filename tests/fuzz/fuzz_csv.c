@@ -63,7 +63,8 @@ static int read_all(const char *data, size_t size, struct text *out, size_t *row
 	}
 	const struct csv_row *header = csv_header(c);
 	property(header->n >= 1 && header->n <= CSV_CELLS_MAX);
-	/* a header of our own: theirs may have stood in a comment, where a number is no column's name either */
+	/* a header of our own: theirs may have stood in a comment, where a number is no column's name either
+	 */
 	if (out)
 		add_bytes(out, "\"header\"\n", 9);
 	struct csv_row row;

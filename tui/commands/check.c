@@ -43,11 +43,11 @@ int command_check(const struct env *env, const struct options *o)
 		return diagnose_whole(&e, code);
 	if (out_open(&out, o->out, o->force, &e) != ST_OK) {
 		run_close(&run);
-		return diagnose_err("--out", &e, EXIT_UNMET);
+		return diagnose_whole(&e, EXIT_UNMET);
 	}
 	code = check_store(&run, out.file);
 	run_close(&run);
 	if (out_commit(&out, &e) != ST_OK)
-		return diagnose_err("--out", &e, EXIT_UNMET);
+		return diagnose_whole(&e, EXIT_UNMET);
 	return code;
 }

@@ -115,9 +115,9 @@ static int convert(struct conversion *c, struct run *r, const struct observer *a
 		return diagnose_err("VALUE", &e,
 				    e.status == ST_RANGE || e.status == ST_SYNTAX ? EXIT_USAGE : EXIT_UNMET);
 	if (out_open(&out, o->out, o->force, &e) != ST_OK)
-		return diagnose_err("--out", &e, EXIT_UNMET);
+		return diagnose_whole(&e, EXIT_UNMET);
 	fprintf(out.file, "%s\n", text);
-	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_err("--out", &e, EXIT_UNMET);
+	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_whole(&e, EXIT_UNMET);
 }
 
 int command_clock(const struct env *env, const struct options *o)

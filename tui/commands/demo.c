@@ -57,7 +57,7 @@ static int show_demo(struct run *r, bool interface)
 	err_clear(&e);
 	int code = page_run(r, mjd, &e);
 	if (code != EXIT_DONE && e.text[0])
-		diagnose("interface", "%s (`wane demo --plain` prints the night)", e.text);
+		diagnose("interface", "%s", e.text);
 	return code;
 }
 

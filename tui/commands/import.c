@@ -52,11 +52,11 @@ static int finish(const struct run *r, enum status s, const struct import_report
 		return diagnose_err("import", e, EXIT_UNMET);
 	say_notes(report);
 	if (out_open(&out, r->options->out, r->options->force, &why) != ST_OK)
-		return diagnose_err("--out", &why, EXIT_UNMET);
+		return diagnose_whole(&why, EXIT_UNMET);
 	fprintf(out.file, "%ld read, %ld new, %ld changed, %ld same, %ld refused\n", report->read,
 		report->added, report->changed, report->same, report->refused);
 	if (out_commit(&out, &why) != ST_OK)
-		return diagnose_err("--out", &why, EXIT_UNMET);
+		return diagnose_whole(&why, EXIT_UNMET);
 	return report->refused > 0 ? EXIT_UNMET : EXIT_DONE;
 }
 

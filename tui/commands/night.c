@@ -15,11 +15,12 @@ static void write_text(FILE *to, const struct run *r, const struct night_view *v
 	text_begin(&t, to, r, false);
 	t.hidden = v->hidden;
 	text_head(&t, &r->site, r->zone, v);
-	/* a night of a clock change has two names; the head says so */
+	/* in a night of a clock change the zone has two names; the head says so */
 	const struct night *n = &v->night;
 	struct local_time from = zone_local(r->zone, night_utc(n, 0.0)),
-			  to_time = zone_local(r->zone, night_utc(n, n->length_d));
-	text_heading(&t, from.offset_s == to_time.offset_s ? from.abbreviation : "local time");
+			  until = zone_local(r->zone, night_utc(n, n->length_d));
+	if (v->list.n > 0)
+		text_heading(&t, from.offset_s == until.offset_s ? from.abbreviation : "local time");
 	text_rows(&t, v, r->zone, false);
 	text_rows(&t, v, r->zone, true);
 	text_foot(&t, n->mjd);
@@ -60,7 +61,7 @@ int night_write(struct run *r, int32_t evening_mjd)
 	if (format_of(r->options, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &e) != ST_OK)
 		return usage_fault("--format", &e);
 	if (out_open(&out, r->options->out, r->options->force, &e) != ST_OK)
-		return diagnose_err("--out", &e, EXIT_UNMET);
+		return diagnose_whole(&e, EXIT_UNMET);
 	if (run_night(r, evening_mjd, format == FORMAT_TEXT, &view, &e) != ST_OK) {
 		out_abandon(&out);
 		night_view_free(&view);
@@ -81,7 +82,7 @@ int night_write(struct run *r, int32_t evening_mjd)
 		diagnose("memory", "none for a long cell");
 		return EXIT_UNMET;
 	}
-	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_err("--out", &e, EXIT_UNMET);
+	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_whole(&e, EXIT_UNMET);
 }
 
 void leap_note(const struct run *r, int32_t last_mjd)

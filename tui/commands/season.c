@@ -4,6 +4,7 @@
 #include "tui/diagnose.h"
 #include "tui/given.h"
 #include "tui/pages/night_head.h"
+#include "tui/parts/text_width.h"
 #include "tui/sheets/out.h"
 #include "tui/sheets/text.h"
 #include "tui/sheets/windows.h"
@@ -103,8 +104,13 @@ static void begin_text(struct season *s, FILE *to, int32_t from, int32_t until)
 	night_name(from, first, sizeof first);
 	night_name(until, last, sizeof last);
 	fprintf(to, "Season: nights %s to %s (%ld)\n", first, last, (long)until - from + 1);
-	for (size_t i = 0; i < s->n_sites; i++)
+	s->text.site_width = 4;
+	for (size_t i = 0; i < s->n_sites; i++) {
+		int width = text_columns(s->site[i].name);
+		width = width > TEXT_NAME_WIDTH_MAX ? TEXT_NAME_WIDTH_MAX : width;
+		s->text.site_width = width > s->text.site_width ? width : s->text.site_width;
 		text_site(&s->text, &s->site[i], s->zone[i]);
+	}
 	text_limits(&s->text);
 	text_heading(&s->text, "local time of the site");
 }
@@ -198,12 +204,12 @@ static int write_season(struct season *s, int32_t from, int32_t until)
 	if (s->format == FORMAT_TEXT)
 		open_zones(s);
 	if (out_open(&out, o->out, o->force, &e) != ST_OK)
-		return diagnose_err("--out", &e, EXIT_UNMET);
+		return diagnose_whole(&e, EXIT_UNMET);
 	if (scan(s, out.file, from, until, &e) != ST_OK) {
 		out_abandon(&out);
 		return diagnose_err("season", &e, EXIT_UNMET);
 	}
-	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_err("--out", &e, EXIT_UNMET);
+	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_whole(&e, EXIT_UNMET);
 }
 
 static void season_free(struct season *s)

@@ -53,7 +53,7 @@ static int write_sites(const struct run *r, const struct site site[], size_t n, 
 	if (format_of(o, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &e) != ST_OK)
 		return usage_fault("--format", &e);
 	if (out_open(&out, o->out, o->force, &e) != ST_OK)
-		return diagnose_err("--out", &e, EXIT_UNMET);
+		return diagnose_whole(&e, EXIT_UNMET);
 	struct csv_out csv = {.file = out.file};
 	struct json json = json_begin(out.file);
 	if (format == FORMAT_CSV)
@@ -74,7 +74,7 @@ static int write_sites(const struct run *r, const struct site site[], size_t n, 
 		json_close(&json, ']');
 	if (format == FORMAT_JSON)
 		json_end(&json);
-	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_err("--out", &e, EXIT_UNMET);
+	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_whole(&e, EXIT_UNMET);
 }
 
 /* --- changing --- */
@@ -122,6 +122,7 @@ static int wanted_site(const struct run *r, bool add, struct site *site)
 	const char *name = o->word[2];
 	struct err e;
 	long index = site_list_find(&r->sites, name);
+	*site = (struct site){.name = name, .zone = ""};
 	if (name_check(name, strlen(name), NULL, &e) != ST_OK)
 		return diagnose_err("name", &e, EXIT_USAGE);
 	if (add && o->n_places == 0) {
@@ -129,7 +130,6 @@ static int wanted_site(const struct run *r, bool add, struct site *site)
 			 "is missing (expected LAT,LON,HEIGHT: degrees north, degrees east, metres)");
 		return EXIT_USAGE;
 	}
-	*site = (struct site){.name = name, .zone = ""};
 	if (o->n_places > 0 && given_place(o->place[0], site, &e) != ST_OK)
 		return diagnose_err("--place", &e, EXIT_USAGE);
 	if (add == (index >= 0)) {

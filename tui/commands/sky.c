@@ -230,12 +230,12 @@ static int write_sky(struct run *r, const struct sky *s, const struct target *t)
 	if (format_of(o, FORMAT_TEXT | FORMAT_JSON, &format, &e) != ST_OK)
 		return usage_fault("--format", &e);
 	if (out_open(&out, o->out, o->force, &e) != ST_OK)
-		return diagnose_err("--out", &e, EXIT_UNMET);
+		return diagnose_whole(&e, EXIT_UNMET);
 	if (format == FORMAT_JSON)
 		write_json(out.file, s, &r->leap, t && !o->radec);
 	else
 		write_text(out.file, s, r, t);
-	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_err("--out", &e, EXIT_UNMET);
+	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_whole(&e, EXIT_UNMET);
 }
 
 static const struct prepared *prepared_of(const struct run *r, const struct target *t)

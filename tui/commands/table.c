@@ -2,6 +2,7 @@
 #include "tui/commands/table.h"
 
 #include "tui/diagnose.h"
+#include "tui/parts/columns.h"
 #include "tui/settings.h"
 #include "tui/sheets/text.h"
 
@@ -118,6 +119,17 @@ int verb_of(const char *command, const char *const verbs[], int n, const struct 
 
 /* --- help --- */
 
+static void columns_help(FILE *to)
+{
+	fputs("\nColumns of csv, keys of json\n", to);
+	for (size_t i = 0; i < column_count; i++)
+		fprintf(to, "  %-24s %s%s%s%s\n", columns[i].name, columns[i].sentence,
+			columns[i].unit[0] ? " [" : "", columns[i].unit, columns[i].unit[0] ? "]" : "");
+	fputs("\nWords in flags\n", to);
+	for (int f = 0; f < FLAG_COUNT; f++)
+		fprintf(to, "  %-24s %s\n", flag_rules[f].word, flag_rules[f].sentence);
+}
+
 void command_help(FILE *to, const struct command *c)
 {
 	fprintf(to, "wane %s %s\n%s\n", c->name, c->arguments, c->help);
@@ -135,6 +147,8 @@ void command_help(FILE *to, const struct command *c)
 	}
 	fputs("\nOptions of every subcommand\n", to);
 	options_help(to, GROUP_COMMON);
+	if (c->groups & GROUP_WINDOWS)
+		columns_help(to);
 	fputs("\nTIME: YYYY-MM-DDTHH:MM[:SS]Z in UTC, or one argument \"2461114.708333 JD_UTC\". An option's "
 	      "value may begin "
 	      "with -.\nExit code: 0 done, 1 the request could not be met, 2 the command line is wrong.\n",
@@ -149,8 +163,10 @@ void general_help(FILE *to)
 	for (size_t i = 0; i < command_count; i++) {
 		char left[160];
 		snprintf(left, sizeof left, "wane %s %s", commands[i].name, commands[i].arguments);
-		fprintf(to, "  %-24s %s%s\n", left, strlen(left) > 24 ? "\n                           " : "",
-			commands[i].help);
+		if (strlen(left) > 24)
+			fprintf(to, "  %s\n  %24s %s\n", left, "", commands[i].help);
+		else
+			fprintf(to, "  %-24s %s\n", left, commands[i].help);
 	}
 	fputs("\n`wane SUBCOMMAND --help` says more.\n\nOptions of every subcommand\n", to);
 	options_help(to, GROUP_COMMON);

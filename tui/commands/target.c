@@ -109,26 +109,36 @@ static enum status in_change(struct run *r, const char *verb, const char *name, 
 	return s;
 }
 
-/* A row of texts as it would be read: faults are told before anything is opened for writing. */
-static enum status row_is_good(const char *name, const struct assignments *a, struct err *e)
+/* The stored texts of a target (run NULL: none) with the assignments over them, read as import would: faults
+ * are told before anything is opened for writing, doubts as they come. */
+static enum status row_is_good(struct run *r, long index, const char *name, const struct assignments *a,
+			       struct err *e)
 {
 	struct field_texts texts;
 	struct target t;
+	struct err why;
 	uint64_t doubts = 0;
 	int bad = 0;
-	struct err why;
+	char *block = NULL;
 	for (int i = 0; i < FIELD_COUNT; i++)
 		texts.text[i] = "";
-	texts.text[0] = name;
+	if (index >= 0) {
+		if (target_texts(r->store, r->targets.t[index].id, &texts, &block, &why) != ST_OK)
+			return err_set(e, why.status, "store: %.440s", why.text);
+	} else {
+		texts.text[0] = name;
+	}
 	for (size_t i = 0; i < a->n; i++)
 		texts.text[a->field[i]] = a->text[i];
-	if (fields_read(&texts, &t, &doubts, &bad, &why) != ST_OK)
-		return err_set(e, why.status, "%s: %.440s", fields[bad].name, why.text);
-	for (int i = 0; i < FIELD_COUNT; i++)
-		if (doubts >> i & 1)
-			diagnose(fields[i].name, "can't be true, kept aside and flagged (got \"%.60s\")",
-				 texts.text[i]);
-	return ST_OK;
+	enum status s = fields_read(&texts, &t, &doubts, &bad, &why);
+	if (s != ST_OK)
+		err_set(e, s, "%s: %.440s", fields[bad].name, why.text);
+	for (size_t i = 0; s == ST_OK && i < a->n; i++)
+		if (doubts >> a->field[i] & 1)
+			diagnose(fields[a->field[i]].name,
+				 "can't be true: kept, flagged and not used (got \"%.60s\")", a->text[i]);
+	free(block);
+	return s;
 }
 
 static int change_target(const struct env *env, const struct options *o, const char *verb)
@@ -144,20 +154,22 @@ static int change_target(const struct env *env, const struct options *o, const c
 		diagnose("target", "nothing to set (expected FIELD=VALUE)");
 		return EXIT_USAGE;
 	}
-	if (add && row_is_good(o->word[2], &a, &e) != ST_OK)
-		return diagnose_whole(&e, EXIT_UNMET);
 	struct options plain = *o;
 	plain.radec = NULL; /* it was a field here, not the run's target */
 	if (run_open(&run, env, &plain, NEED_STORE, &code, &e) != ST_OK)
 		return diagnose_whole(&e, code);
 	long index = target_list_find(&run.targets, o->word[2]);
-	run_close(&run);
 	if (add && index >= 0) {
 		diagnose("target", "\"%.80s\" exists already (wane target set changes it)", o->word[2]);
-		return EXIT_UNMET;
+		code = EXIT_UNMET;
+	} else if (!add && index < 0) {
+		code = no_such_target(o->word[2]);
+	} else if ((add || set) && row_is_good(&run, index, o->word[2], &a, &e) != ST_OK) {
+		code = diagnose_whole(&e, EXIT_UNMET);
 	}
-	if (!add && index < 0)
-		return no_such_target(o->word[2]);
+	run_close(&run);
+	if (code != EXIT_DONE)
+		return code;
 	if (run_open(&run, env, &plain, NEED_STORE | NEED_WRITE, &code, &e) != ST_OK)
 		return diagnose_whole(&e, code);
 	if (in_change(&run, verb, o->word[2], &a, &e) != ST_OK)
@@ -168,24 +180,25 @@ static int change_target(const struct env *env, const struct options *o, const c
 
 /* --- showing --- */
 
+/* The list is that of --target where given. */
 static int show_targets(const struct env *env, const struct options *o, bool list)
 {
 	struct run run;
 	struct err e;
-	int code;
-	size_t first = 0, n;
+	int code, n = 0;
+	const char *const *names = list ? o->target : &o->word[2];
+	const int wanted = list ? o->n_targets : 1;
+	size_t chosen[OPTION_NAMES_MAX];
 	if (run_open(&run, env, o, NEED_STORE, &code, &e) != ST_OK)
 		return diagnose_whole(&e, code);
-	n = run.targets.n;
-	if (!list) {
-		long index = target_list_find(&run.targets, o->word[2]);
+	for (; code == EXIT_DONE && n < wanted; n++) {
+		long index = target_list_find(&run.targets, names[n]);
 		if (index < 0)
-			code = no_such_target(o->word[2]);
-		first = index < 0 ? 0 : (size_t)index;
-		n = 1;
+			code = no_such_target(names[n]);
+		chosen[n] = index < 0 ? 0 : (size_t)index;
 	}
 	if (code == EXIT_DONE)
-		code = targets_write(&run, first, n, list);
+		code = targets_write(&run, wanted ? chosen : NULL, wanted ? (size_t)n : run.targets.n, list);
 	run_close(&run);
 	return code;
 }

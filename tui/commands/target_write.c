@@ -191,7 +191,7 @@ static void begin(struct writer *w, size_t n)
 	}
 }
 
-int targets_write(struct run *r, size_t first, size_t n, bool list)
+int targets_write(struct run *r, const size_t chosen[], size_t n, bool list)
 {
 	const struct options *o = r->options;
 	struct writer w = {.list = list};
@@ -201,13 +201,13 @@ int targets_write(struct run *r, size_t first, size_t n, bool list)
 	if (format_of(o, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &w.format, &e) != ST_OK)
 		return usage_fault("--format", &e);
 	if (out_open(&out, o->out, o->force, &e) != ST_OK)
-		return diagnose_err("--out", &e, EXIT_UNMET);
+		return diagnose_whole(&e, EXIT_UNMET);
 	w.to = out.file;
 	w.csv = (struct csv_out){.file = out.file};
 	w.json = json_begin(out.file);
 	begin(&w, n);
-	for (size_t i = first; s == ST_OK && i < first + n; i++)
-		s = write_one(&w, r, i, &e);
+	for (size_t i = 0; s == ST_OK && i < n; i++)
+		s = write_one(&w, r, chosen ? chosen[i] : i, &e);
 	if (s == ST_OK && w.csv.failed)
 		s = err_set(&e, ST_MEMORY, "no memory for a long cell");
 	if (s != ST_OK) {
@@ -218,5 +218,5 @@ int targets_write(struct run *r, size_t first, size_t n, bool list)
 		json_close(&w.json, ']');
 	if (w.format == FORMAT_JSON)
 		json_end(&w.json);
-	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_err("--out", &e, EXIT_UNMET);
+	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_whole(&e, EXIT_UNMET);
 }

@@ -7,7 +7,7 @@
 
 #include "ephem/number_text.h"
 
-/* Targets [first, first + n) of an open run, in the format asked for, to where --out says: as a list, or one in full. Exit code. */
-int targets_write(struct run *r, size_t first, size_t n, bool list);
+/* Targets chosen[0..n) of an open run (NULL: the first n), in the format asked for, to where --out says: as a list, or one in full. Exit code. */
+int targets_write(struct run *r, const size_t chosen[], size_t n, bool list);
 
 #endif

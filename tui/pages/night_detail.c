@@ -88,11 +88,11 @@ static void be_there_line(struct text_view *v, const struct run *r, const struct
 			       from, to, head->zone);
 	else if (ev->latest_start_d < row->on_d)
 		text_view_addf(v, ROLE_WARN, INDENT,
-			       "Times  on target %s (ingress needs %s), leave %s; reserve %s to %s %s",
+			       "Times  on target %s (ingress: %s), leave %s, reserve %s-%s %s",
 			       row->text[ROW_ON], latest, row->text[ROW_LEAVE], from, to, head->zone);
 	else
 		text_view_addf(v, ROLE_TEXT, INDENT,
-			       "Times  on target %s, latest %s, leave %s; reserve %s to %s %s",
+			       "Times  on target %s, latest %s, leave %s, reserve %s-%s %s",
 			       row->text[ROW_ON], latest, row->text[ROW_LEAVE], from, to, head->zone);
 }
 
@@ -211,11 +211,11 @@ void detail_lines(struct text_view *v, int width, bool roomy, const struct run *
 		  const struct night_view *view, const struct night_head *head, const struct night_row *row)
 {
 	text_view_start(v, width);
+	be_there_line(v, r, &view->night, head, row);
+	lost_line(v, row);
 	contact_table(v, r, &view->night, head, row);
 	if (roomy)
 		altitude_line(v, &view->night, row);
-	be_there_line(v, r, &view->night, head, row);
-	lost_line(v, row);
 	chance_line(v, row);
 	if (!roomy)
 		altitude_line(v, &view->night, row);

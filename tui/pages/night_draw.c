@@ -180,12 +180,17 @@ static void draw_full_head(const struct night_page *p, struct grid *g)
 
 static void draw_short_head(const struct night_page *p, struct grid *g)
 {
+	bool full = text_columns(p->head.next) <= g->cols - 2;
 	draw_pair(g, 0, p->head.name, ROLE_STRONG, p->head.clocks, ROLE_TEXT);
 	if (text_columns(p->head.name) + text_columns(p->head.clocks) + 3 > g->cols) {
 		int used = 3 + text_columns(p->head.name);
 		grid_put(g, 0, used, g->cols - used - 1, p->head.clocks, ROLE_TEXT);
 	}
-	grid_put(g, 1, 1, g->cols - 2, p->head.remark[0] ? p->head.remark : p->head.next, ROLE_KEY);
+	grid_put(g, 1, 1, g->cols - 2,
+		 p->head.remark[0] ? p->head.remark
+		 : full		   ? p->head.next
+				   : p->head.next_short,
+		 ROLE_KEY);
 }
 
 static void draw_footer(const struct night_page *p, struct grid *g)

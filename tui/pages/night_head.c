@@ -227,35 +227,43 @@ static void running_text(const struct night_row *row, double now_d, char *out, s
 	snprintf(out, n, "now: %s", row->name);
 }
 
+/* Pieces joined by `; `. */
+static void join(char *out, size_t n, const char *piece)
+{
+	size_t used = strlen(out);
+	snprintf(out + used, n - used, "%s%s", used && *piece ? "; " : "", piece);
+}
+
 static void next_text(struct night_head *h, const struct night_view *view, const struct night_rows *rows,
 		      double now_d)
 {
 	size_t running, coming;
-	const struct night_row *now = night_rows_best(rows, STATE_NOW, &running),
-			       *next = night_rows_best(rows, STATE_NEXT, &coming);
-	char text[NAME_BYTES_MAX + 100] = "", left[32];
-	h->next[0] = '\0';
-	size_t used = 0;
+	const struct night_row *now = night_rows_best(rows, STATE_NOW, &running);
+	const struct night_row *next = night_rows_best(rows, STATE_NEXT, &coming);
+	char dusk[48] = "", runs[NAME_BYTES_MAX + 100] = "", more[32] = "", comes[NAME_BYTES_MAX + 100],
+	     left[32];
 	if (isfinite(view->dark.dusk_d) && now_d < view->dark.dusk_d) {
 		span_text(view->dark.dusk_d - now_d, left, sizeof left);
-		used += (size_t)snprintf(h->next, sizeof h->next, "dusk in %s", left);
+		snprintf(dusk, sizeof dusk, "dusk in %s", left);
 	}
-	if (now) {
-		running_text(now, now_d, text, sizeof text);
-		used +=
-		    (size_t)snprintf(h->next + used, sizeof h->next - used, "%s%s", used ? "; " : "", text);
-		if (running > 1)
-			used += (size_t)snprintf(h->next + used, sizeof h->next - used, " (%zu more)",
-						 running - 1);
-	}
+	if (now)
+		running_text(now, now_d, runs, sizeof runs);
+	if (running > 1)
+		snprintf(more, sizeof more, " (+%zu)", running - 1);
 	if (next) {
 		span_text(next->on_d - now_d, left, sizeof left);
-		snprintf(h->next + used, sizeof h->next - used, "%snext: %s, on target in %s",
-			 used ? "; " : "", next->name, left);
+		snprintf(comes, sizeof comes, "next: %s, on target in %s", next->name, left);
 	} else {
-		snprintf(h->next + used, sizeof h->next - used, "%s%s", used ? "; " : "",
+		snprintf(comes, sizeof comes, "%s",
 			 rows->n > 0 ? "nothing more comes up tonight" : "no window tonight");
 	}
+	h->next[0] = '\0';
+	join(h->next, sizeof h->next, dusk);
+	join(h->next, sizeof h->next, runs);
+	size_t used = strlen(h->next);
+	snprintf(h->next + used, sizeof h->next - used, "%s", more);
+	join(h->next, sizeof h->next, comes);
+	snprintf(h->next_short, sizeof h->next_short, "%s", next || !now ? comes : runs);
 }
 
 void night_head_tick(struct night_head *h, const struct run *r, const struct night_view *view,
@@ -273,6 +281,7 @@ void night_head_tick(struct night_head *h, const struct run *r, const struct nig
 	}
 	char left[32];
 	span_text(-now_d, left, sizeof left);
+	snprintf(h->next_short, sizeof h->next_short, "%s; . tonight", h->relative);
 	if (now_d < 0.0)
 		snprintf(h->next, sizeof h->next, "This night begins in %s; . comes back to tonight.", left);
 	else

@@ -14,6 +14,7 @@ struct night_head {
 	char remark[200]; /* what is unusual about the night, else "" */
 	/* these change with the clock */
 	char relative[40], clocks[NAME_BYTES_MAX + 160], moon_now[24], next[2 * NAME_BYTES_MAX + 200];
+	char next_short[NAME_BYTES_MAX + 100]; /* what is next, else what runs, for narrow screens */
 	bool tonight;
 };
 /* What holds for a night as long as it is shown. */

@@ -27,8 +27,8 @@ int night_pane_rows(const struct night_page *p)
 	int left = p->grid_rows - night_head_rows(p) - FOOTER_ROWS - RULE_ROWS;
 	if (!full_size(p) || left <= LIST_ROWS_MIN)
 		return 0;
-	/* the list keeps what it fills, and half of the screen if it fills that */
-	int list = (int)p->rows.n < left / 2 ? (int)p->rows.n : (left + 1) / 2;
+	/* the list keeps what it fills, up to a little more than half */
+	int half = left / 2 + 2, list = (int)p->rows.n < half ? (int)p->rows.n : half;
 	int pane = left - (list < LIST_ROWS_MIN ? LIST_ROWS_MIN : list);
 	return pane < p->details.n ? pane : p->details.n;
 }
@@ -86,16 +86,17 @@ static void make_text(struct night_page *p)
 static void settle(struct night_page *p)
 {
 	const struct night_row *row = selected_row(p);
+	bool roomy = p->mode == MODE_DETAILS || p->grid_rows >= PAGE_ROWS_ROOMY;
 	if (row)
-		detail_lines(&p->details, p->grid_cols - 2, p->grid_rows >= PAGE_ROWS_ROOMY, p->run, &p->view,
-			     &p->head, row);
+		detail_lines(&p->details, p->grid_cols - 2, roomy, p->run, &p->view, &p->head, row);
 	else
 		text_view_start(&p->details, p->grid_cols - 2);
-	size_t rows = (size_t)night_list_rows(p);
-	if (p->selected < p->top)
-		p->top = p->selected;
-	if (p->selected >= p->top + rows)
-		p->top = p->selected - rows + 1;
+	/* a row or two round the selected one stay in sight */
+	size_t rows = (size_t)night_list_rows(p), margin = rows > 6 ? 2 : rows > 2 ? 1 : 0;
+	if (p->selected < p->top + margin)
+		p->top = p->selected > margin ? p->selected - margin : 0;
+	if (p->selected + margin >= p->top + rows)
+		p->top = p->selected + margin + 1 - rows;
 	if (p->top + rows > p->rows.n)
 		p->top = p->rows.n > rows ? p->rows.n - rows : 0;
 	make_count(p);
@@ -285,8 +286,8 @@ static bool scroll_key(struct night_page *p, struct text_view *v, enum action ac
 
 static void leave_text(struct night_page *p)
 {
-	p->details.top = 0;
 	p->mode = p->loaded && p->run->targets.n > 0 ? MODE_LIST : MODE_FIRST_RUN;
+	settle(p);
 	make_text(p);
 }
 
@@ -328,6 +329,7 @@ static enum want list_action(struct night_page *p, enum action action)
 		break;
 	case ACT_DETAILS:
 		p->mode = p->rows.n > 0 ? MODE_DETAILS : MODE_LIST;
+		settle(p);
 		break;
 	default:
 		break;

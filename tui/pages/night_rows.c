@@ -11,7 +11,8 @@
 
 const struct row_column row_columns[ROW_CELLS] = {
     [ROW_STATE] = {"state", "", 5, 0, false, NULL,
-		   "now: its time on the telescope runs; next: the one to be on next; past: over. Narrow "
+		   "now: its time on the telescope runs; next: the first to come that is likely to be done; "
+		   "past: over. Narrow "
 		   "screens: N, n, p."},
     [ROW_NAME] = {"target", "", 13, 0, false, NULL, "The target; (occ) marks an occultation."},
     [ROW_ON] = {"be on", NULL, 5, 0, true, "usable_start_utc", NULL},
@@ -31,7 +32,10 @@ const struct row_column row_columns[ROW_CELLS] = {
     [ROW_DEPTH] = {"depth", "ppt", 5, 136, true, "depth_ppt", NULL},
     [ROW_MAG] = {"mag", "", 5, 136, true, NULL, "Magnitude of the star, in the band that its source gives."},
     [ROW_LOST] = {"lost by", "", 12, 74, false, "lost_by", NULL},
-    [ROW_FLAGS] = {"doubts", "", 20, 156, false, "flags", NULL},
+    [ROW_FLAGS] =
+	{"doubts", "", 20, 156, false, NULL,
+	 "What is doubtful, as words; +N counts further doubts that most ephemerides share. The details say "
+	 "them all."},
 };
 
 const char *const cause_phrases[CAUSE_COUNT] = {
@@ -183,17 +187,18 @@ static void fill_figures(struct night_row *row, const struct night_view *view, c
 	}
 }
 
-/* Those that nearly every published ephemeris has come last; that the Sun is up stands with the losses. */
+/* What nearly every published ephemeris has is only counted; that the Sun is up stands with the losses. */
 static void doubts_text(uint32_t flags, char *out, size_t n)
 {
 	const uint32_t common = FLAG_BIT(FLAG_COVARIANCE_ASSUMED_0) | FLAG_BIT(FLAG_DURATION_ERROR_UNKNOWN) |
 				FLAG_BIT(FLAG_INGRESS_ESTIMATED);
-	char rest[160];
+	char count[16];
+	int further = 0;
+	for (uint32_t rest = flags & common; rest; rest &= rest - 1)
+		further++;
 	flags_text(flags & ~common & ~FLAG_BIT(FLAG_SUN_UP), out, n);
-	flags_text(flags & common, rest, sizeof rest);
-	if (*out && *rest)
-		append(out, n, ";");
-	append(out, n, rest);
+	snprintf(count, sizeof count, "%s+%d", *out ? " " : "", further);
+	append(out, n, further ? count : "");
 }
 
 static void fill_row(struct night_row *row, const struct window *w, const struct night_view *view,
@@ -245,6 +250,16 @@ void night_rows_free(struct night_rows *rows)
 	*rows = (struct night_rows){0};
 }
 
+/* Whether a row ahead should be the next one: what is likely to be done goes first, then what comes first. */
+static bool comes_before(const struct night_row *row, const struct night_row *other)
+{
+	if (!other)
+		return true;
+	bool likely = row->window->chance.done >= CHANCE_EVEN,
+	     other_likely = other->window->chance.done >= CHANCE_EVEN;
+	return likely != other_likely ? likely : row->on_d < other->on_d;
+}
+
 void night_rows_tick(struct night_rows *rows, double now_d, bool tonight)
 {
 	static const char *const words[] = {
@@ -252,11 +267,10 @@ void night_rows_tick(struct night_rows *rows, double now_d, bool tonight)
 	struct night_row *next = NULL;
 	for (size_t i = 0; i < rows->n; i++) {
 		struct night_row *row = &rows->row[i];
-		row->state = now_d > row->leave_d		 ? STATE_PAST
-			     : now_d >= row->on_d && row->usable ? STATE_NOW
-								 : STATE_AHEAD;
+		bool begun = now_d >= row->on_d && row->usable;
+		row->state = now_d > row->leave_d ? STATE_PAST : begun ? STATE_NOW : STATE_AHEAD;
 		if (tonight && row->state == STATE_AHEAD && row->usable && row->has_chance &&
-		    !row->long_shot && (!next || row->on_d < next->on_d))
+		    !row->long_shot && comes_before(row, next))
 			next = row;
 	}
 	if (next)

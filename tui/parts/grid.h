@@ -5,6 +5,7 @@
 #define WANE_TUI_PARTS_GRID_H
 
 #include "ephem/err.h"
+#include "tui/parts/text_width.h"
 
 #include <stdbool.h>
 #include <stddef.h>
@@ -79,12 +80,6 @@ void grid_rule(struct grid *g, int row);
 /* Marks cells [col, col + width) of a row as selected. */
 void grid_select(struct grid *g, int row, int col, int width);
 void grid_cursor(struct grid *g, int row, int col, bool shown);
-
-/* Columns of a character: 0 combining, 1, 2 East Asian wide and pictographs (Unicode 15 EastAsianWidth W and
- * F). */
-int codepoint_width(uint32_t cp);
-/* Columns of a text as grid_put would use them in an endless row. */
-int text_columns(const char *text);
 
 /* The grid as lines of UTF-8, trailing blanks cut; for tests. roles: role letters instead (upper case where
  * selected; blank unselected cells of ROLE_TEXT stay blank). Returns the bytes that a long enough buffer

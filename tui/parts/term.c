@@ -8,7 +8,7 @@
 #include <curses.h>
 #include <term.h>
 
-#include <errno.h>
+#include <fcntl.h>
 #include <langinfo.h>
 #include <locale.h>
 #include <math.h>
@@ -199,10 +199,30 @@ enum status term_open(const struct term_options *o, struct err *e)
 	return ST_OK;
 }
 
+static bool line_is_gone(void)
+{
+	struct pollfd fd = {.fd = STDIN_FILENO, .events = POLLIN};
+	return poll(&fd, 1, 0) > 0 && (fd.revents & (POLLHUP | POLLERR | POLLNVAL));
+}
+
+/* What is written to a terminal that is gone must not look like a failure of the program. */
+static void turn_streams_away(void)
+{
+	int nowhere = open("/dev/null", O_RDWR);
+	if (nowhere < 0)
+		return;
+	dup2(nowhere, STDIN_FILENO);
+	dup2(nowhere, STDOUT_FILENO);
+	close(nowhere);
+	clearerr(stdout);
+}
+
 void term_close(void)
 {
 	if (!term.screen)
 		return;
+	if (line_is_gone())
+		turn_streams_away();
 	curs_set(1);
 	send_capability("BD");
 	endwin();
@@ -375,8 +395,9 @@ enum term_event term_wait(double seconds)
 		send_capability("BE");
 		return TERM_WOKEN;
 	}
-	struct pollfd fd = {.fd = STDIN_FILENO, .events = POLLIN};
-	if (ready > 0 && poll(&fd, 1, 0) > 0 && (fd.revents & (POLLHUP | POLLERR | POLLNVAL)))
+	if (ready > 0 && line_is_gone()) {
+		guard_leave();
 		return TERM_LOST;
+	}
 	return TERM_KEYS;
 }

@@ -32,7 +32,7 @@ enum {
 /* Handlers have nothing but globals to work with. */
 static volatile sig_atomic_t end_asked, woken;
 static struct {
-	bool kept, started;
+	bool kept, started, leaving;
 	struct termios modes;
 	int error_fd; /* standard error as it was; -1 when it was left alone */
 	FILE *said;   /* what goes there meanwhile */
@@ -117,8 +117,10 @@ void guard_start(void)
 
 static void stop_handlers(void)
 {
+	/* a lost line signals more than once; the second must not cut short the way out */
+	const struct sigaction ignore = {.sa_handler = SIG_IGN};
 	for (int i = 0; i < QUIET; i++)
-		sigaction(quiet[i], &guard.quiet[i], NULL);
+		sigaction(quiet[i], guard.leaving ? &ignore : &guard.quiet[i], NULL);
 	sigaction(SIGCONT, &guard.cont, NULL);
 	if (!SANITIZED) {
 		stack_t none = {.ss_flags = SS_DISABLE};
@@ -167,7 +169,13 @@ bool guard_take_end(void)
 {
 	bool asked = end_asked;
 	end_asked = 0;
+	guard.leaving |= asked;
 	return asked;
+}
+
+void guard_leave(void)
+{
+	guard.leaving = true;
 }
 
 bool guard_take_woken(void)

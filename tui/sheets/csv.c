@@ -12,10 +12,10 @@ static void begin(struct csv_out *c)
 	c->started = true;
 }
 
-void csv_text(struct csv_out *c, const char *text)
+static void cell(struct csv_out *c, const char *text, bool is_text)
 {
 	char usual[1024];
-	size_t need = csv_cell_write(text, true, usual, sizeof usual);
+	size_t need = csv_cell_write(text, is_text, usual, sizeof usual);
 	begin(c);
 	if (need < sizeof usual) {
 		fputs(usual, c->file);
@@ -26,9 +26,19 @@ void csv_text(struct csv_out *c, const char *text)
 		c->failed = true;
 		return;
 	}
-	csv_cell_write(text, true, large, need + 1);
+	csv_cell_write(text, is_text, large, need + 1);
 	fputs(large, c->file);
 	free(large);
+}
+
+void csv_text(struct csv_out *c, const char *text)
+{
+	cell(c, text, true);
+}
+
+void csv_checked(struct csv_out *c, const char *text)
+{
+	cell(c, text, false);
 }
 
 void csv_number(struct csv_out *c, const char *text)

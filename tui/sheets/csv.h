@@ -14,6 +14,8 @@ struct csv_out {
 
 /* A cell of text: quoted where needed; one that starts with = + - @ gets a leading apostrophe, so that no spreadsheet takes it for a formula. */
 void csv_text(struct csv_out *c, const char *text);
+/* Text that is known to be no formula (a place of the command line): quoted where needed, no apostrophe. */
+void csv_checked(struct csv_out *c, const char *text);
 /* A cell of digits, or empty: as it is. */
 void csv_number(struct csv_out *c, const char *text);
 void csv_end_line(struct csv_out *c);

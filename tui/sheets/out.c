@@ -9,7 +9,6 @@
 #include <stdlib.h>
 #include <string.h>
 #include <sys/stat.h>
-#include <time.h>
 #include <unistd.h>
 
 enum { TEMP_TRIES = 100, STALE_S = 3600 };
@@ -59,25 +58,26 @@ static enum status open_folder(struct out *o, char *path, struct err *e)
 	return o->dir_fd < 0 ? refused(e, slash ? path : ".", errno) : ST_OK;
 }
 
+/* Temporary files that a killed process left behind, judged by the clock of the file system. */
 static void sweep_stale(const struct out *o)
 {
 	int fd = openat(o->dir_fd, ".", O_RDONLY | O_DIRECTORY | O_CLOEXEC);
 	DIR *dir = fd < 0 ? NULL : fdopendir(fd);
 	const struct dirent *entry;
-	struct stat st;
+	struct stat st, own;
 	if (!dir) {
 		if (fd >= 0)
 			close(fd);
 		return;
 	}
-	while ((entry = readdir(dir)) != NULL) {
+	while (fstat(o->fd, &own) == 0 && (entry = readdir(dir)) != NULL) {
 		if (strncmp(entry->d_name, temp_prefix, sizeof temp_prefix - 1) != 0)
 			continue;
 		long pid = strtol(entry->d_name + sizeof temp_prefix - 1, NULL, 10);
 		if (pid <= 0 || kill((pid_t)pid, 0) == 0 || errno != ESRCH)
 			continue;
 		if (fstatat(o->dir_fd, entry->d_name, &st, AT_SYMLINK_NOFOLLOW) == 0 && S_ISREG(st.st_mode) &&
-		    st.st_uid == getuid() && time(NULL) - st.st_mtime > STALE_S)
+		    st.st_uid == getuid() && own.st_mtime - st.st_mtime > STALE_S)
 			unlinkat(o->dir_fd, entry->d_name, 0);
 	}
 	closedir(dir);
@@ -108,7 +108,7 @@ static enum status make_temp(struct out *o, const char *path, mode_t mode, struc
 
 enum status out_open(struct out *o, const char *path, bool force, struct err *e)
 {
-	char whole[OUT_PATH_MAX];
+	char whole[OUT_PATH_MAX] = "";
 	struct stat st;
 	*o = (struct out){.fd = -1, .dir_fd = -1, .force = force};
 	if (!path || strcmp(path, "-") == 0) {
@@ -126,9 +126,9 @@ enum status out_open(struct out *o, const char *path, bool force, struct err *e)
 			s = refused(e, path, EEXIST);
 	}
 	if (s == ST_OK)
-		sweep_stale(o);
-	if (s == ST_OK)
 		s = make_temp(o, path, 0666, e);
+	if (s == ST_OK)
+		sweep_stale(o);
 	if (s != ST_OK)
 		out_abandon(o);
 	return s;

@@ -5,13 +5,13 @@
 #include "ephem/number_text.h"
 #include "tui/cautions.h"
 #include "tui/pages/night_head.h"
-#include "tui/parts/grid.h"
+#include "tui/parts/text_width.h"
 #include "tui/sheets/text_rows.h"
 
 #include <math.h>
 #include <string.h>
 
-enum { NAME_WIDTH_MIN = 6, NAME_WIDTH_MAX = 24 };
+enum { NAME_WIDTH_MIN = 6 };
 
 void text_cell(FILE *to, const char *text, int columns, bool pad)
 {
@@ -50,7 +50,7 @@ void text_begin(struct text_sheet *t, FILE *to, const struct run *r, bool season
 		int columns = text_columns(r->prepared[i].target->name);
 		t->name_width = columns > t->name_width ? columns : t->name_width;
 	}
-	t->name_width = t->name_width > NAME_WIDTH_MAX ? NAME_WIDTH_MAX : t->name_width;
+	t->name_width = t->name_width > TEXT_NAME_WIDTH_MAX ? TEXT_NAME_WIDTH_MAX : t->name_width;
 }
 
 /* --- head --- */
@@ -246,6 +246,13 @@ void text_foot(const struct text_sheet *t, int32_t last_mjd)
 			"everything.",
 			t->hidden, t->hidden == 1 ? "is" : "are");
 	fputc('\n', t->to);
+	if (t->rows > 0 && !t->plain)
+		fputs("on, leave: first and last usable moment of the reserve. sigma: error of the mid-time. "
+		      "bef ingr flat egr aft: "
+		      "usable share of\nthe baseline before, ingress, flat part, egress, baseline after. "
+		      "done: chance of both limbs "
+		      "in clear weather. Then what takes\nthe rest, and marks:\n",
+		      t->to);
 	flag_notes(t);
 	if (last_mjd > t->run->leap.expires_mjd) {
 		struct date d = date_from_mjd(t->run->leap.expires_mjd);

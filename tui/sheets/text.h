@@ -13,10 +13,12 @@ struct text_sheet {
 	const struct run *run;
 	bool plain, season; /* season: rows carry night and site */
 	int name_width;     /* columns of the names, set by text_begin */
+	int site_width;     /* and of the sites, in a season */
 	long rows, hidden, without_chance;
 	long flagged[FLAG_COUNT]; /* rows that carry each flag */
 };
 
+enum { TEXT_NAME_WIDTH_MAX = 24 };
 void text_begin(struct text_sheet *t, FILE *to, const struct run *r, bool season);
 /* Site, both dates, Sun, Moon (in the site's local time and UTC) and limits. */
 void text_head(const struct text_sheet *t, const struct site *site, const struct zone *zone, const struct night_view *v);

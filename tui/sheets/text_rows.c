@@ -7,8 +7,6 @@
 #include <math.h>
 #include <string.h>
 
-enum { SITE_WIDTH = 14 };
-
 char text_mark(int flag)
 {
 	return (char)('a' + flag);
@@ -32,15 +30,14 @@ static void lost_words(const struct window *w, char *out, size_t n)
 static void per_cent(double share, char out[8])
 {
 	double p = floor(100.0 * share + 0.5);
-	if (isnan(share)) {
+	if (isnan(share))
 		snprintf(out, 8, "-");
-		return;
-	}
-	if (p >= 100.0 && share < 0.9995)
-		p = 99.0;
-	if (p <= 0.0 && share > 0.0005)
-		p = 1.0;
-	snprintf(out, 8, "%.0f", p);
+	else if (p < 1.0 && share > 0.0)
+		snprintf(out, 8, "<1");
+	else if (p > 99.0 && share < 0.9995)
+		snprintf(out, 8, ">99");
+	else
+		snprintf(out, 8, "%.0f", p);
 }
 
 static void sigma_text(double sigma_min, char out[NUMBER_TEXT_MAX])
@@ -58,12 +55,12 @@ void text_heading(const struct text_sheet *t, const char *zone_name)
 	}
 	fputc('\n', t->to);
 	if (t->season)
-		fprintf(t->to, "%-23s %-*s ", "night", SITE_WIDTH, "site");
+		fprintf(t->to, "%-23s %-*s ", "night", t->site_width, "site");
 	fprintf(t->to, "%-*s %-5s  %-5s  %-5s  %-5s  %5s  %4s %4s %4s %4s %4s  %4s  %s\n", t->name_width,
 		"target", "on", "T1", "T4", "leave", "sigma", "bef", "ingr", "flat", "egr", "aft", "done",
 		"lost to; marks");
 	if (t->season)
-		fprintf(t->to, "%-23s %-*s ", "", SITE_WIDTH, "");
+		fprintf(t->to, "%-23s %-*s ", "", t->site_width, "");
 	fprintf(t->to, "%-*s %-26s %5s  %24s  %4s\n", t->name_width, "", zone_name, "min",
 		"usable, per cent     ", "%");
 }
@@ -76,7 +73,7 @@ void text_row(const struct text_sheet *t, const struct window *w, const struct n
 	if (t->season) {
 		night_name(n->mjd, name, sizeof name);
 		fprintf(t->to, "%-23s ", name);
-		text_cell(t->to, n->site->name, SITE_WIDTH, true);
+		text_cell(t->to, n->site->name, t->site_width, true);
 		fputc(' ', t->to);
 	}
 	text_cell(t->to, w->event.prepared->target->name, t->name_width, true);

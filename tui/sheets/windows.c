@@ -20,10 +20,15 @@ void window_csv(struct csv_out *c, const struct window *w, const struct night *n
 	for (size_t i = 0; i < column_count; i++) {
 		struct value v = column_value(&columns[i], w, n);
 		value_machine_text(&columns[i], &v, n->clock.leap, text, sizeof text);
-		if (v.type == VALUE_TEXT)
-			csv_text(c, text);
-		else
+		/* a site that is not stored is a place as it was typed, read as numbers: it has to come out
+		 * as it went in */
+		bool place = i == 0 && n->site->id == 0;
+		if (v.type != VALUE_TEXT)
 			csv_number(c, text);
+		else if (place)
+			csv_checked(c, text);
+		else
+			csv_text(c, text);
 	}
 	csv_end_line(c);
 }
