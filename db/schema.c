@@ -199,7 +199,25 @@ static enum status compare_rows(sqlite3_stmt *have, sqlite3_stmt *want, struct e
 	}
 }
 
-enum status schema_compare(sqlite3 *db, struct err *e)
+enum status schema_crc(sqlite3 *db, const struct crc_table *table, uint32_t *crc, struct err *e)
+{
+	sqlite3_stmt *stmt = NULL;
+	int rc = sqlite3_prepare_v2(db, schema_sql, -1, &stmt, NULL);
+	*crc = 0;
+	while (rc == SQLITE_OK && (rc = sqlite3_step(stmt)) == SQLITE_ROW) {
+		struct cell cell[3];
+		cells_read(stmt, 0, cell, 3);
+		const struct cell sum[] = {cell_int(*crc), cell_int(row_crc(table, cell, 3))};
+		*crc = row_crc(table, sum, 2);
+		rc = SQLITE_OK;
+	}
+	(void)sqlite3_finalize(stmt);
+	return rc == SQLITE_DONE
+		   ? ST_OK
+		   : err_set(e, ST_STORE, "database: its schema can't be read: %s", sqlite3_errmsg(db));
+}
+
+static enum status compare_texts(sqlite3 *db, struct err *e)
 {
 	sqlite3 *fresh = NULL;
 	sqlite3_stmt *have = NULL, *want = NULL;
@@ -218,4 +236,11 @@ enum status schema_compare(sqlite3 *db, struct err *e)
 	sqlite3_finalize(want);
 	sqlite3_close(fresh);
 	return s;
+}
+
+enum status schema_compare(sqlite3 *db, const struct crc_table *table, struct err *e)
+{
+	uint32_t crc;
+	enum status s = schema_crc(db, table, &crc, e);
+	return s != ST_OK || crc == SCHEMA_CRC ? s : compare_texts(db, e);
 }

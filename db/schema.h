@@ -4,6 +4,7 @@
 #ifndef WANE_DB_SCHEMA_H
 #define WANE_DB_SCHEMA_H
 
+#include "db/row_crc.h"
 #include "ephem/err.h"
 
 #include <sqlite3.h>
@@ -16,6 +17,10 @@ enum { SCHEMA_VERSION = 1, APPLICATION_ID = 0x77616E65 /* "wane" */ };
 MUST_USE enum status schema_apply(sqlite3 *db, int version, struct err *e);
 /* ST_STORE when db's tables, triggers and indexes are not, text for text, what the steps make. *e names the
  * first difference. */
-MUST_USE enum status schema_compare(sqlite3 *db, struct err *e);
+MUST_USE enum status schema_compare(sqlite3 *db, const struct crc_table *table, struct err *e);
+/* Checksum of those texts; SCHEMA_CRC is that of a fresh store, so that only a store that differs has to be
+ * compared text by text. */
+MUST_USE enum status schema_crc(sqlite3 *db, const struct crc_table *table, uint32_t *crc, struct err *e);
+#define SCHEMA_CRC 0xEEC7E721u
 
 #endif

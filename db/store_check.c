@@ -131,7 +131,7 @@ enum status store_check(struct store *s, void (*say)(void *ctx, const char *line
 			      "damaged: the current ephemeris belongs to another target: ", &why);
 	for (size_t i = 0; st == ST_OK && i < sizeof tables / sizeof tables[0]; i++)
 		st = check_table(&c, &tables[i], &why);
-	if (st == ST_OK && schema_compare(s->db, &why) != ST_OK)
+	if (st == ST_OK && schema_compare(s->db, &s->crc, &why) != ST_OK)
 		fault(&c, why.text);
 	if (st == ST_MEMORY)
 		return err_set(e, st, "%s", why.text);

@@ -289,7 +289,7 @@ static enum status open_file(struct store *s, const char *path, bool empty, stru
 	if (st == ST_OK)
 		st = quick_check(s, path, e);
 	if (st == ST_OK)
-		st = schema_compare(s->db, e);
+		st = schema_compare(s->db, &s->crc, e);
 	return st;
 }
 

@@ -486,6 +486,19 @@ static void test_guards(void **state)
 	store_close(s);
 }
 
+/* The checksum in the source is that of what the steps make. */
+static void test_schema_crc(void **state)
+{
+	(void)state;
+	struct store *s = open_or_fail(NULL, STORE_MEMORY);
+	struct err e = {0};
+	uint32_t crc;
+	must(schema_crc(s->db, &s->crc, &crc, &e), &e);
+	if (crc != SCHEMA_CRC)
+		check_fail("SCHEMA_CRC has to be 0x%08Xu", crc);
+	store_close(s);
+}
+
 static void test_statements_fit_fields(void **state)
 {
 	(void)state;
@@ -866,6 +879,7 @@ int main(void)
 	    IN_PLACE(test_read_only),
 	    IN_PLACE(test_made_by_many),
 	    cmocka_unit_test(test_guards),
+	    cmocka_unit_test(test_schema_crc),
 	    cmocka_unit_test(test_statements_fit_fields),
 	    IN_PLACE(test_rollback),
 	    cmocka_unit_test(test_order_of_calls),

@@ -1,0 +1,79 @@
+# Results in files: whole or not at all, never over another file unasked; standard output that can't be written is a fault.
+. tests/support/check.sh
+
+run() { "$WANE" demo --format csv "$@" >"$scratch/stdout" 2>"$scratch/err" </dev/null; }
+left_over() { find "$1" -name '.wane*' | grep -q .; }
+mkdir "$scratch/d"
+file=$scratch/d/night.csv
+
+run --out "$file"
+check "--out: exit 0" test $? = 0
+check "nothing on standard output" test ! -s "$scratch/stdout"
+"$WANE" demo --format csv </dev/null | cmp -s - "$file"
+check "the file holds the result" test $? = 0
+sum=$(cksum <"$file")
+"$WANE" demo --format json --out "$file" 2>"$scratch/err" </dev/null
+check "an existing file: exit 1" test $? = 1
+check "the message names --force" grep -q -- '--force' "$scratch/err"
+check "the existing file is as it was" test "$(cksum <"$file")" = "$sum"
+chmod 640 "$file"
+"$WANE" demo --format json --out "$file" --force 2>"$scratch/err" </dev/null
+check "--force: exit 0" test $? = 0
+check "--force replaces" test "$(cksum <"$file")" != "$sum"
+check "a replaced file keeps its mode" test "$(stat -c %a "$file")" = 640
+ln -s night.csv "$scratch/d/link.csv"
+run --out "$scratch/d/link.csv" --force
+check "a link is written through" test -L "$scratch/d/link.csv"
+check "to the file behind it" test "$(cksum <"$file")" = "$sum"
+run --out "$scratch/none/a.csv"
+check "no such folder: exit 1" test $? = 1
+run --out "$scratch/d"
+check "a folder: exit 1" test $? = 1
+mkfifo "$scratch/d/pipe"
+run --out "$scratch/d/pipe" --force
+check "a pipe is refused, not waited for" test $? = 1
+check "nothing is left behind" sh -c '! find "$1" -name ".wane*" | grep -q .' - "$scratch/d"
+
+# a file-size limit cuts the writing short
+sum=$(cksum <"$file")
+(
+	ulimit -f 1
+	run --out "$file" --force
+)
+check "a write error: exit 1" test $? = 1
+check "the old file is whole" test "$(cksum <"$file")" = "$sum"
+check "no half file is left" sh -c '! find "$1" -name ".wane*" | grep -q .' - "$scratch/d"
+
+# left-overs of a process that was killed an hour ago are swept, those of others are not
+dead=$scratch/d/.wane-out.4194305.0
+: >"$dead"
+touch -d '2 hours ago' "$dead"
+: >"$scratch/d/.wane-out.$$.7"
+touch -d '2 hours ago' "$scratch/d/.wane-out.$$.7"
+run --out "$scratch/d/new.csv"
+check "a stale file of a dead process is swept" test ! -e "$dead"
+check "that of a living one is not" test -e "$scratch/d/.wane-out.$$.7"
+
+# killed at any moment: the old file or the new one, never a piece of either
+"$WANE" demo --format json </dev/null >"$scratch/json"
+"$WANE" demo --format csv </dev/null >"$scratch/csv"
+torn=0
+for i in 1 2 3 4 5 6 7 8 9 10 11 12 13 14 15 16 17 18 19 20; do
+	cp "$scratch/csv" "$scratch/d/kill.txt"
+	"$WANE" demo --format json --out "$scratch/d/kill.txt" --force </dev/null 2>/dev/null &
+	pid=$!
+	sleep 0.0$(printf %02d "$i")
+	kill -9 $pid 2>/dev/null
+	wait $pid 2>/dev/null
+	cmp -s "$scratch/d/kill.txt" "$scratch/csv" || cmp -s "$scratch/d/kill.txt" "$scratch/json" || torn=$((torn + 1))
+done
+check "20 kills: no torn file" test $torn = 0
+
+"$WANE" demo </dev/null >/dev/full 2>"$scratch/err"
+check "a full standard output: exit 1" test $? = 1
+check "and one line about it" test "$(grep -c '^wane: standard output: ' "$scratch/err")" = 1
+"$WANE" --help >/dev/full 2>"$scratch/err"
+check "--help on a full standard output: exit 1" test $? = 1
+"$WANE" demo </dev/null >&- 2>"$scratch/err"
+check "a closed standard output does not crash it" test $? -le 1
+finish

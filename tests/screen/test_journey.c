@@ -1,0 +1,283 @@
+/* SPDX-License-Identifier: MIT
+ * Journeys through the program on a pseudo-terminal: every way in, about and out. */
+#include "tests/support/check.h"
+#include "tests/support/pty.h"
+
+#include <signal.h>
+#include <stdio.h>
+#include <stdlib.h>
+#include <string.h>
+#include <sys/wait.h>
+#include <unistd.h>
+
+#define NOW "2026-04-23T04:14:05Z"
+#define TERM_USUAL "tmux-256color"
+#define OPENED "tonight, night 22/23 Apr 2026"
+
+static char program[1024];
+static char *demo[] = {program, "demo", "--now", NOW, NULL};
+
+static bool sanitized(void)
+{
+	return strstr(program, "asan") != NULL;
+}
+
+static void open_demo(struct pty *t)
+{
+	pty_open(t, demo, 24, 80, TERM_USUAL, NULL, NULL);
+	pty_wait(t, OPENED);
+}
+
+static void expect_exit(struct pty *t, int code)
+{
+	int status = pty_end(t);
+	if (!WIFEXITED(status) || WEXITSTATUS(status) != code)
+		check_fail("wait status %d, expected exit status %d", status, code);
+}
+
+static void test_about(void **state)
+{
+	struct pty t;
+	(void)state;
+	open_demo(&t);
+	pty_screen(&t, "\033OB\033OBj", "windows");
+	pty_screen(&t, ">", "next night, night 23/24 Apr 2026");
+	pty_screen(&t, "<<", "last night, night 21/22 Apr 2026");
+	pty_screen(&t, ".", OPENED);
+	pty_screen(&t, "d\0252026-05-01\r", "in 9 nights, night 1/2 May 2026");
+	pty_screen(&t, "?", "Keys (q, ? or Esc comes back)");
+	pty_screen(&t, "q", "in 9 nights, night 1/2 May 2026");
+	pty_screen(&t, "l", "Limits of this run");
+	pty_screen(&t, "\033", "in 9 nights, night 1/2 May 2026");
+	pty_screen(&t, "a", "q quit");
+	pty_screen(&t, "R", "q quit");
+	pty_send(&t, "x");
+	pty_wait(&t, "x does nothing here; ? shows the keys.");
+	pty_send(&t, "q");
+	expect_exit(&t, 0);
+	pty_expect_restored(&t);
+	pty_close(&t);
+}
+
+static void test_resize(void **state)
+{
+	struct pty t;
+	(void)state;
+	open_demo(&t);
+	pty_resize(&t, 45, 160);
+	pty_wait(&t, "doubts");
+	pty_resize(&t, 5, 20);
+	pty_wait(&t, "wane needs 24 x 6");
+	for (int i = 1; i < 40; i++)
+		pty_resize(&t, i, 3 * i);
+	pty_resize(&t, 10, 38);
+	pty_wait(&t, "22/23 Apr 2026");
+	pty_resize(&t, 24, 80);
+	pty_wait(&t, OPENED);
+	pty_send(&t, "q");
+	expect_exit(&t, 0);
+	pty_expect_restored(&t);
+	pty_close(&t);
+}
+
+static void test_signals_end_it(void **state)
+{
+	static const int signals[] = {SIGTERM, SIGINT, SIGHUP, SIGQUIT};
+	(void)state;
+	for (size_t i = 0; i < sizeof signals / sizeof signals[0]; i++) {
+		struct pty t;
+		open_demo(&t);
+		kill(t.child, signals[i]);
+		expect_exit(&t, 0);
+		pty_expect_restored(&t);
+		pty_close(&t);
+	}
+}
+
+static void test_crash_restores(void **state)
+{
+	static const int signals[] = {SIGSEGV, SIGABRT, SIGBUS, SIGFPE};
+	(void)state;
+	if (sanitized())
+		check_skip("crash handlers: the sanitizers have their own");
+	for (size_t i = 0; i < sizeof signals / sizeof signals[0]; i++) {
+		struct pty t;
+		open_demo(&t);
+		kill(t.child, signals[i]);
+		int status = pty_end(&t);
+		assert_true(WIFSIGNALED(status));
+		assert_int_equal(WTERMSIG(status), signals[i]);
+		assert_non_null(strstr(t.seen, "wane: crashed"));
+		pty_expect_restored(&t);
+		pty_close(&t);
+	}
+}
+
+static void test_lost_line(void **state)
+{
+	struct pty t;
+	(void)state;
+	/* once with the hang-up signal, once with it ignored, as under nohup */
+	for (int ignored = 0; ignored < 2; ignored++) {
+		char command[1200];
+		snprintf(command, sizeof command, "%s exec %s demo --now " NOW, ignored ? "trap '' HUP;" : "",
+			 program);
+		char *argv[] = {"/bin/sh", "-c", command, NULL};
+		pty_open(&t, argv, 24, 80, TERM_USUAL, NULL, NULL);
+		pty_wait(&t, OPENED);
+		close(t.fd);
+		t.fd = -1;
+		expect_exit(&t, 0);
+		pty_close(&t);
+	}
+}
+
+static void test_suspend_and_resume(void **state)
+{
+	struct pty t;
+	char command[1200];
+	char *argv[] = {"/bin/sh", "-i", NULL};
+	(void)state;
+	pty_open(&t, argv, 24, 80, TERM_USUAL, "PS1", "ready> ");
+	pty_wait(&t, "ready> ");
+	snprintf(command, sizeof command, "%s demo --now " NOW "\n", program);
+	pty_send(&t, command);
+	pty_wait(&t, OPENED);
+	pty_send(&t, "\032");
+	pty_wait(&t, "ready> ");
+	/* the shell's terminal is in order: it echoes, and lines are edited */
+	pty_send(&t, "stty -a | tr ' ;' '\\n\\n' | grep -x -e icanon -e echo | tr '\\n' '+'\n");
+	pty_wait(&t, "icanon+echo+");
+	pty_resize(&t, 45, 160);
+	pty_send(&t, "fg\n");
+	pty_wait(&t, OPENED);
+	pty_screen(&t, "", "doubts");
+	pty_send(&t, "q");
+	pty_wait(&t, "ready> ");
+	pty_send(&t, "echo gone=$?\n");
+	pty_wait(&t, "gone=0");
+	pty_send(&t, "exit\n");
+	expect_exit(&t, 0);
+	pty_close(&t);
+}
+
+/* Without a shell ^Z says so and nothing stops. */
+static void test_suspend_without_a_shell(void **state)
+{
+	struct pty t;
+	(void)state;
+	open_demo(&t);
+	pty_send(&t, "\032");
+	pty_wait(&t, "There is no shell here to come back from.");
+	pty_send(&t, "q");
+	expect_exit(&t, 0);
+	pty_close(&t);
+}
+
+static void test_stopped_from_outside(void **state)
+{
+	struct pty t;
+	(void)state;
+	open_demo(&t);
+	kill(t.child, SIGSTOP);
+	pty_send(&t, ">");
+	kill(t.child, SIGCONT);
+	pty_wait(&t, "next night, night 23/24 Apr 2026");
+	pty_send(&t, "q");
+	expect_exit(&t, 0);
+	pty_expect_restored(&t);
+	pty_close(&t);
+}
+
+static void test_bytes(void **state)
+{
+	struct pty t;
+	(void)state;
+	open_demo(&t);
+	/* a character in two pieces, a broken one that must not swallow what follows, a paste that must not
+	 * quit */
+	pty_send(&t, "\xc3");
+	pty_send(&t, "\xa9");
+	pty_wait(&t, "é does nothing here");
+	pty_screen(&t, "\xff\xe4>", "next night, night 23/24 Apr 2026");
+	pty_send(&t, "\033[200~qqq\033[201~");
+	pty_wait(&t, "Pasted text was left out");
+	pty_screen(&t, ".", OPENED);
+	pty_send(&t, "q");
+	expect_exit(&t, 0);
+	pty_close(&t);
+}
+
+static void test_environment(void **state)
+{
+	struct pty t;
+	(void)state;
+	pty_open(&t, demo, 24, 80, TERM_USUAL, "NO_COLOR", "1");
+	pty_wait(&t, OPENED);
+	pty_send(&t, "R");
+	pty_wait(&t, "Colours are off here");
+	assert_null(strstr(t.seen, "[38;"));
+	assert_null(strstr(t.seen, "[31m"));
+	pty_close(&t);
+
+	pty_open(&t, demo, 24, 80, TERM_USUAL, "LC_ALL", "C");
+	pty_wait(&t, OPENED);
+	pty_screen(&t, "j", "cover");
+	for (size_t i = 0; i < t.n; i++)
+		assert_true((unsigned char)t.seen[i] < 0x80);
+	pty_close(&t);
+
+	/* a locale that is not installed here, as a session from afar may bring */
+	pty_open(&t, demo, 24, 80, TERM_USUAL, "LC_ALL", "xx_XX.UTF-8");
+	pty_wait(&t, OPENED);
+	pty_screen(&t, "", "▸");
+	pty_close(&t);
+
+	/* exported, they would freeze the size */
+	pty_open(&t, demo, 24, 80, TERM_USUAL, "COLUMNS", "40");
+	pty_wait(&t, OPENED);
+	pty_resize(&t, 45, 160);
+	pty_wait(&t, "doubts");
+	pty_close(&t);
+}
+
+static void test_refusals(void **state)
+{
+	static const struct {
+		const char *term, *said;
+	} rows[] = {{"no-such-terminal", "try TERM=xterm-256color"}, {"dumb", "can't place its cursor"}};
+	(void)state;
+	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
+		struct pty t;
+		pty_open(&t, demo, 24, 80, rows[i].term, NULL, NULL);
+		pty_wait(&t, rows[i].said);
+		expect_exit(&t, 1);
+		pty_expect_restored(&t);
+		pty_close(&t);
+	}
+}
+
+int main(void)
+{
+	const struct CMUnitTest tests[] = {
+	    cmocka_unit_test(test_about),
+	    cmocka_unit_test(test_resize),
+	    cmocka_unit_test(test_signals_end_it),
+	    cmocka_unit_test(test_crash_restores),
+	    cmocka_unit_test(test_lost_line),
+	    cmocka_unit_test(test_suspend_and_resume),
+	    cmocka_unit_test(test_suspend_without_a_shell),
+	    cmocka_unit_test(test_stopped_from_outside),
+	    cmocka_unit_test(test_bytes),
+	    cmocka_unit_test(test_environment),
+	    cmocka_unit_test(test_refusals),
+	};
+	const char *given = getenv("WANE");
+	snprintf(program, sizeof program, "%s", given ? given : "build/wane");
+	setenv("LC_ALL", "C.UTF-8", 1);
+	unsetenv("NO_COLOR");
+	unsetenv("LINES");
+	unsetenv("COLUMNS");
+	unsetenv("ESCDELAY");
+	return cmocka_run_group_tests_name("journey", tests, NULL, NULL);
+}

@@ -1,0 +1,348 @@
+/* SPDX-License-Identifier: MIT
+ * The night page as text: kept screens, keys to screens, every size, odd nights. All targets are invented. */
+#include "tests/support/check.h"
+#include "tests/support/golden.h"
+#include "tests/support/page_driver.h"
+
+#include <math.h>
+#include <stdlib.h>
+#include <string.h>
+
+/* Kept screens: keys pressed, size, tier. */
+static void test_golden(void **state)
+{
+	static const struct {
+		const char *name, *keys;
+		int rows, cols;
+		enum tier tier;
+	} rows[] = {
+	    {"night-80x24", "", 24, 80, TIER_UNICODE},
+	    {"night-80x24-basic", "", 24, 80, TIER_BASIC},
+	    {"night-80x24-ascii", "", 24, 80, TIER_ASCII},
+	    {"night-160x45", "", 45, 160, TIER_UNICODE},
+	    {"night-60x18", "", 18, 60, TIER_UNICODE},
+	    {"night-38x10", "", 10, 38, TIER_UNICODE},
+	    {"night-20x5", "", 5, 20, TIER_UNICODE},
+	    {"night-80x24-long-shots", "ajj", 24, 80, TIER_UNICODE},
+	    {"night-80x24-last", "G", 24, 80, TIER_UNICODE},
+	    {"night-80x24-later", ">>", 24, 80, TIER_UNICODE},
+	    {"night-80x24-date", "d", 24, 80, TIER_UNICODE},
+	    {"night-80x24-details", "g\r", 24, 80, TIER_UNICODE},
+	    {"night-100x40-help", "?", 40, 100, TIER_UNICODE},
+	    {"night-80x24-limits", "l", 24, 80, TIER_UNICODE},
+	};
+	(void)state;
+	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
+		struct page_driver d;
+		driver_open(&d, true, rows[i].rows, rows[i].cols, rows[i].tier);
+		driver_keys(&d, rows[i].keys);
+		golden_check(rows[i].name, &d.grid);
+		driver_close(&d);
+	}
+}
+
+/* Keys, then a text that must be on the screen, and one that must not. */
+static void test_keys_to_screens(void **state)
+{
+	static const struct {
+		const char *keys, *shown, *not_shown;
+	} rows[] = {
+	    {"", "▸ now   Tern 18 b", "nan"},
+	    {"j", "▸ now   Tern 18 c", NULL},
+	    {"jjk", "▸ now   Tern 18 c", NULL},
+	    {"kkkkkkkk", "▸ now   Tern 2 c", NULL},
+	    {"g", "1/11 windows, 1 long shot hidden, a shows it", NULL},
+	    {"G", "11/11 windows", "Tern 2 c  "},
+	    {"Gg", "▸ now   Tern 2 c", NULL},
+	    {">", "next night, night 23/24 Apr 2026", "next: "},
+	    {"<", "last night, night 21/22 Apr 2026", "next: "},
+	    {"<<<<", "4 nights ago, night 18/19 Apr 2026", NULL},
+	    {">>>>>>>>>", "in 9 nights, night 1/2 May 2026", NULL},
+	    {">>>>>>>>", "night 30 Apr/1 May 2026", NULL},
+	    {">>>.", "tonight, night 22/23 Apr 2026", NULL},
+	    {"d\0252026-12-31\r", "night 31 Dec 2026/1 Jan 2027", "Evening of"},
+	    {"d\0252026-02-30\r", "Evening of (YYYY-MM-DD): 2026-02-30", NULL},
+	    {"dxyz\033", "night 22/23 Apr 2026", "Evening of"},
+	    {"d\003", "q quit", "Evening of"},
+	    {"a", "4 long shots among them, a hides them", NULL},
+	    {"aa", "1 long shot hidden, a shows it", "among them"},
+	    {"aj", "▸ now   Tern 18 c", NULL},
+	    {"aja", "▸ now   Tern 18 c", NULL},
+	    {"l", "sun_limit_deg: -12 deg (built in)", "q quit"},
+	    {"ll", "q quit", "sun_limit_deg"},
+	    {"l\033", "q quit", NULL},
+	    {"?", "Keys (q, ? or Esc comes back)", "Tern 2 c  "},
+	    {"??", "▸ now   Tern 18 b", NULL},
+	    {"?q", "▸ now   Tern 18 b", NULL},
+	    {"?l", "Limits of this run", "Keys ("},
+	    {"?G", "sun_near: ", "Keys ("},
+	    {"?Gg", "Keys (q", "sun_near: "},
+	    {"?jj", "j Down", "Keys ("},
+	    {"\r", "Tern 18 b, night 22/23 Apr 2026", "q quit"},
+	    {"\r\r", "q quit", NULL},
+	    {"\rq", "q quit", NULL},
+	    {"\ra", "a does nothing here; ? shows the keys.", NULL},
+	    {"x", "x does nothing here; ? shows the keys.", "q quit"},
+	    {"xj", "q quit", "does nothing"},
+	    {"[", "[ does nothing here", NULL},
+	};
+	(void)state;
+	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
+		struct page_driver d;
+		driver_open(&d, true, 24, 80, TIER_UNICODE);
+		driver_keys(&d, rows[i].keys);
+		driver_expect(&d, rows[i].shown);
+		if (rows[i].not_shown)
+			driver_expect_not(&d, rows[i].not_shown);
+		assert_false(d.quit);
+		driver_close(&d);
+	}
+}
+
+static void test_wants(void **state)
+{
+	struct page_driver d;
+	(void)state;
+	driver_open(&d, true, 24, 80, TIER_UNICODE);
+	driver_keys(&d, "R\014\032d\014\032\033");
+	assert_int_equal(d.reds, 1);
+	assert_int_equal(d.repaints, 2);
+	assert_int_equal(d.suspends, 2);
+	assert_false(d.quit);
+	driver_key(&d, 'q');
+	assert_true(d.quit);
+	driver_close(&d);
+}
+
+/* Pasted text is text where something is typed, and nothing elsewhere. */
+static void test_paste(void **state)
+{
+	struct page_driver d;
+	(void)state;
+	driver_open(&d, true, 24, 80, TIER_UNICODE);
+	driver_key(&d, PRESS_PASTE_BEGIN);
+	driver_keys(&d, "qqj>\r");
+	driver_key(&d, PRESS_PASTE_END);
+	assert_false(d.quit);
+	driver_expect(&d, "Pasted text was left out");
+	driver_keys(&d, "d\025");
+	driver_key(&d, PRESS_PASTE_BEGIN);
+	driver_keys(&d, "2026-05-01\r");
+	driver_key(&d, PRESS_PASTE_END);
+	driver_expect(&d, "Evening of (YYYY-MM-DD): 2026-05-01");
+	driver_key(&d, '\r');
+	driver_expect(&d, "night 1/2 May 2026");
+	driver_close(&d);
+}
+
+/* The hardware cursor stands on the selected row, in the typed text, or on the text that is read. */
+static void test_cursor(void **state)
+{
+	struct page_driver d;
+	(void)state;
+	driver_open(&d, true, 24, 80, TIER_UNICODE);
+	const struct cell *at = &d.grid.cell[d.grid.cursor_row * d.grid.cols];
+	assert_int_equal(at->cp, 0x25B8);
+	assert_true(at->selected);
+	assert_false(d.grid.cursor_shown);
+	driver_key(&d, 'd');
+	assert_true(d.grid.cursor_shown);
+	assert_int_equal(d.grid.cursor_row, 23);
+	assert_int_equal(d.grid.cursor_col, 36); /* behind `Evening of (YYYY-MM-DD): 2026-04-22` */
+	driver_close(&d);
+}
+
+/* Every size: nothing outside the grid is touched (sanitizers), the footer or notice is there, the selection
+ * is on the screen. */
+static void test_every_size(void **state)
+{
+	static const char *const typed[] = {"", "G", "?", "l", "\r", "d"};
+	struct page_driver d;
+	(void)state;
+	driver_open(&d, true, 24, 80, TIER_UNICODE);
+	for (size_t k = 0; k < sizeof typed / sizeof typed[0]; k++) {
+		driver_keys(&d, typed[k]);
+		for (int rows = 1; rows <= 60; rows += rows < 26 ? 1 : 9)
+			for (int cols = 1; cols <= 200; cols += cols < 20 ? 3 : cols < 84 ? 4 : 13) {
+				driver_size(&d, rows, cols);
+				assert_true(d.grid.cursor_row < rows && d.grid.cursor_col < cols);
+				if (rows < PAGE_ROWS_MIN || cols < PAGE_COLS_MIN || k > 1)
+					continue;
+				assert_true(driver_shows(&d, "▸"));
+				assert_true(driver_shows(&d, "q quit"));
+				assert_true(d.grid.cell[d.grid.cursor_row * cols].cp == 0x25B8);
+			}
+		driver_keys(&d, k == 0 ? "" : "\033");
+	}
+	driver_close(&d);
+}
+
+/* No figure that can't be computed shows as one, at any width, on any of many nights. */
+static void test_no_nan(void **state)
+{
+	struct page_driver d;
+	(void)state;
+	driver_open(&d, true, 60, 220, TIER_ASCII);
+	d.page->show_long_shots = true;
+	for (int night = -20; night <= 20; night++) {
+		driver_load(&d, FIXTURE_EVENING_MJD + night);
+		driver_draw(&d);
+		for (size_t row = 0; row < d.page->rows.n; row++) {
+			driver_expect_not(&d, "nan");
+			driver_expect_not(&d, "inf");
+			driver_expect_not(&d, "(null)");
+			driver_key(&d, 'j');
+		}
+	}
+	driver_close(&d);
+}
+
+/* The same night seen from elsewhere: what is unusual is said. */
+static void test_odd_nights(void **state)
+{
+	static const struct {
+		double lat_deg;
+		int32_t mjd;
+		const char *shown;
+	} rows[] = {
+	    {69.0, 61211, "No dark hour: the Sun does not get below -12 deg in this night."}, /* 2026-06-20 */
+	    {69.0, 61211, "Sunset --:--  dusk --:--  dawn --:--  sunrise --:--"},
+	    {80.0, 61030, "The Sun stays below -12 deg from noon to noon."}, /* 2025-12-21 */
+	    {80.0, 61211, "No window in this night under these limits."},
+	    {75.0, 61040, "The Sun neither rises nor sets between noon and noon."},
+	};
+	(void)state;
+	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
+		struct page_driver d;
+		driver_open(&d, false, 24, 80, TIER_UNICODE);
+		d.fixture->run.site.lat_deg = rows[i].lat_deg;
+		driver_load(&d, rows[i].mjd);
+		driver_draw(&d);
+		driver_expect(&d, rows[i].shown);
+		driver_expect_not(&d, "nan");
+		driver_close(&d);
+	}
+}
+
+/* 1 November 2026, 02:00 MDT, clocks go back (15 U.S.C. 260a: first Sunday of November). */
+static void test_clock_change(void **state)
+{
+	struct page_driver d;
+	(void)state;
+	driver_open(&d, true, 24, 80, TIER_UNICODE);
+	driver_keys(&d, "d\0252026-10-31\r");
+	driver_expect(&d, "Clocks change in this night at 08:00 UTC, from MDT to MST.");
+	driver_expect(&d, "sunrise 06:44 local 11.5 h below -12 deg");
+	driver_close(&d);
+}
+
+static void test_without_zone(void **state)
+{
+	struct page_driver d;
+	(void)state;
+	driver_open(&d, false, 24, 80, TIER_UNICODE);
+	driver_expect(&d, "Thu 04:14:05 UTC (zone of the site unknown)");
+	driver_expect(&d, "Sunset 02:01  dusk 03:03  dawn 11:28  sunrise 12:30 UTC");
+	driver_expect(&d, "▸ now   Tern 18 b     03:48 04:18 05:12 05:42");
+	driver_close(&d);
+}
+
+static void test_first_run(void **state)
+{
+	(void)state;
+	struct page_driver d;
+	driver_open(&d, true, 24, 80, TIER_UNICODE);
+	night_page_close(d.page);
+	d.fixture->run.targets.n = 0;
+	d.fixture->run.site.name = "";
+	night_page_open(d.page, &d.fixture->run);
+	driver_size(&d, 40, 80);
+	driver_expect(&d, "wane site add");
+	driver_expect(&d, "wane import targets.csv");
+	driver_expect(&d, "wane demo");
+	driver_expect(&d, "Sun: never point a telescope near the Sun.");
+	driver_keys(&d, "j>.da\r?");
+	driver_expect(&d, "Keys (q");
+	driver_keys(&d, "q");
+	driver_expect(&d, "wane demo");
+	assert_false(d.quit);
+	driver_keys(&d, "q");
+	assert_true(d.quit);
+	driver_close(&d);
+}
+
+/* Names that would turn a terminal upside down; the store refuses them, the page does not rely on it. */
+static void test_hostile_names(void **state)
+{
+	static const char *const names[] = {"\033]0;title\007\033[2J",
+					    "a\nb\rc\bd",
+					    "\u202egnirts",
+					    "\xff\xfe\xfd",
+					    "e\u0301\u0301\u0301\u0301\u0301",
+					    "中文中文中文中文中文中文中文中文",
+					    "%s%n%d",
+					    "",
+					    "👩‍🚀 b",
+					    "\u0301"};
+	(void)state;
+	for (size_t i = 0; i < sizeof names / sizeof names[0]; i++) {
+		struct page_driver d;
+		driver_open(&d, true, 24, 80, TIER_UNICODE);
+		for (int t = 0; t < FIXTURE_TARGETS; t++)
+			d.fixture->target[t].name = d.fixture->target[t].source = d.fixture->target[t].band =
+			    names[i];
+		d.fixture->run.site.name = names[i];
+		for (int cols = 24; cols <= 160; cols += 8) {
+			driver_load(&d, FIXTURE_EVENING_MJD);
+			driver_size(&d, 40, cols);
+			for (int c = 0; c < d.grid.rows * d.grid.cols; c++) {
+				uint32_t cp = d.grid.cell[c].cp;
+				assert_true((cp >= ' ' || cp == 0) && cp != 0x7F &&
+					    !(cp >= 0x80 && cp < 0xA0) && cp != 0x202E);
+			}
+		}
+		driver_close(&d);
+	}
+}
+
+/* What comes next counts down, and rows go from next to now to past. */
+static void test_clock(void **state)
+{
+	static const struct {
+		double after_min;
+		const char *shown, *row;
+	} rows[] = {
+	    {0.0, "next: Tern 14 b, on target in 1 h 05 min", "  next  Tern 14 b"},
+	    {64.0, "next: Tern 14 b, on target in 1 min", "  next  Tern 14 b"},
+	    {66.0, "now: Tern 18 b, leave in 22 min (+5); next: Tern 5 b, on target in 1 h 14 min",
+	     "  now   Tern 14 b"},
+	    {283.0, "Tern 14 b", "  past  Tern 14 b"},
+	    {600.0, "nothing more comes up tonight", "  past  Tern 5 b"},
+	    {-150.0, "dusk in 1 h 18 min; next: ", "        Tern 14 b"},
+	};
+	(void)state;
+	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
+		struct page_driver d;
+		driver_open(&d, true, 24, 80, TIER_UNICODE);
+		struct wall_clock *wall = &d.fixture->run.wall;
+		wall->start = utc_add_s(wall->leap, wall->start, 60.0 * rows[i].after_min);
+		driver_draw(&d);
+		driver_expect(&d, rows[i].shown);
+		driver_expect(&d, rows[i].row);
+		driver_close(&d);
+	}
+}
+
+int main(void)
+{
+	const struct CMUnitTest tests[] = {
+	    cmocka_unit_test(test_golden),	 cmocka_unit_test(test_keys_to_screens),
+	    cmocka_unit_test(test_wants),	 cmocka_unit_test(test_paste),
+	    cmocka_unit_test(test_cursor),	 cmocka_unit_test(test_every_size),
+	    cmocka_unit_test(test_no_nan),	 cmocka_unit_test(test_odd_nights),
+	    cmocka_unit_test(test_clock_change), cmocka_unit_test(test_without_zone),
+	    cmocka_unit_test(test_first_run),	 cmocka_unit_test(test_hostile_names),
+	    cmocka_unit_test(test_clock),
+	};
+	return cmocka_run_group_tests_name("night page", tests, NULL, NULL);
+}
