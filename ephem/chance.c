@@ -23,6 +23,7 @@ double chance_in(const struct intervals *set, double mean_d, double sigma_d)
 		return intervals_contain(set, mean_d) ? 1.0 : 0.0;
 	double sum = 0.0;
 	for (int i = 0; i < set->n; i++)
-		sum += normal_between((set->s[i].from_d - mean_d) / sigma_d, (set->s[i].to_d - mean_d) / sigma_d);
+		sum += normal_between((set->s[i].from_d - mean_d) / sigma_d,
+				      (set->s[i].to_d - mean_d) / sigma_d);
 	return fmin(sum, 1.0);
 }

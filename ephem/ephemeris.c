@@ -10,7 +10,8 @@
 double ephemeris_published_d(const struct ephemeris *e, long epoch)
 {
 	const double x = (double)epoch;
-	const double variance = e->c00 + x * (2.0 * e->c01 + x * (e->c11 + e->c02 + x * (e->c12 + 0.25 * x * e->c22)));
+	const double variance =
+	    e->c00 + x * (2.0 * e->c01 + x * (e->c11 + e->c02 + x * (e->c12 + 0.25 * x * e->c22)));
 	return sqrt(fmax(variance, 0.0)) + (isnan(variance) ? NAN : 0.0);
 }
 

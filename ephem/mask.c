@@ -22,7 +22,8 @@ enum status mask_add(struct mask *m, double az_deg, double alt_deg, struct err *
 	if (at < m->n && m->knot[at].az_deg == az) {
 		if (m->knot[at].alt_deg == alt_deg)
 			return ST_OK;
-		return err_set(e, ST_CONFLICT, "azimuth %g deg stands twice, at %g and %g deg of altitude", az_deg, m->knot[at].alt_deg, alt_deg);
+		return err_set(e, ST_CONFLICT, "azimuth %g deg stands twice, at %g and %g deg of altitude",
+			       az_deg, m->knot[at].alt_deg, alt_deg);
 	}
 	if (m->n == MASK_KNOTS_MAX)
 		return err_set(e, ST_MEMORY, "more than %d points in a horizon mask", MASK_KNOTS_MAX);

@@ -66,6 +66,10 @@ struct tt night_tt(const struct night *n, double t_d);
 double night_of_utc(const struct night *n, struct utc t); /* t_d of an instant */
 bool night_covers(double t_d);                            /* the fits hold: -0.5 <= t_d <= 1.5 */
 
+/* Sidereal time as it runs when clock.ut1_utc_s holds at this instant. A night's tables take it at the evening's noon, and run on evenly over
+ * a leap second, as the Earth does; a value published for an instant after the leap second needs this. */
+void night_set_sidereal(struct night *n, struct utc t);
+
 /* --- sky at t (NAN where the fits do not hold) --- */
 double night_lst_rad(const struct night *n, double t_d);
 struct horizon_frame night_horizon(const struct night *n, double t_d);

@@ -194,3 +194,11 @@ enum status night_build(struct night *n, const struct site *site, const struct e
 	find_times(n);
 	return ST_OK;
 }
+
+void night_set_sidereal(struct night *n, struct utc t)
+{
+	double equinoxes;
+	frame_true_of_date(jd2_value(jd2_add_d(n->noon_tt.jd, 0.5)), &equinoxes);
+	double lst = frame_gast_rad(&n->clock, t, equinoxes) + n->lon_rad - n->lst_rate_rad_d * night_of_utc(n, t);
+	n->lst0_rad = lst - TWO_PI * floor(lst / TWO_PI);
+}

@@ -37,11 +37,15 @@ static void prepare_errors(struct prepared *p, const struct target *t)
 			    (isnan(t->t0_period_cov_d2) ? 0 : FLAG_BIT(FLAG_DOUBTFUL_VALUES));
 }
 
-static void prepare_ephemeris(struct prepared *p, const struct target *t, const struct earth_clock *clock, struct sun_memo *memo)
+static void prepare_ephemeris(struct prepared *p, const struct target *t, const struct earth_clock *clock,
+			      struct sun_memo *memo)
 {
 	struct ephemeris *e = &p->eph;
-	*e = (struct ephemeris){.period_d = t->period_d, .dpde_d = or_zero(t->dpde_d), .ttv_min = fmax(or_zero(t->ttv_amp_min), 0.0)};
-	p->has_ephemeris = isfinite(t->t0.day) && t->period_d >= PERIOD_MIN_D && isfinite(t->ra_deg) && isfinite(t->dec_deg);
+	*e = (struct ephemeris){.period_d = t->period_d,
+				.dpde_d = or_zero(t->dpde_d),
+				.ttv_min = fmax(or_zero(t->ttv_amp_min), 0.0)};
+	p->has_ephemeris =
+	    isfinite(t->t0.day) && t->period_d >= PERIOD_MIN_D && isfinite(t->ra_deg) && isfinite(t->dec_deg);
 	if (!p->has_ephemeris)
 		return;
 	const double jd = jd2_value(t->t0) + t->standard.offset_d;
@@ -63,8 +67,9 @@ static double baseline_d(double wanted_min, double t14_d)
 	return fmin(fmax(0.5 * t14_d * DAY_MIN, AUTO_BASELINE_MIN_MIN), AUTO_BASELINE_MAX_MIN) * MIN_D;
 }
 
-struct prepared prepare_target(const struct target *t, const struct limits *run, const struct earth_clock *clock, struct sun_memo *memo,
-			       bool doubtful_position, bool doubtful_values)
+struct prepared prepare_target(const struct target *t, const struct limits *run,
+			       const struct earth_clock *clock, struct sun_memo *memo, bool doubtful_position,
+			       bool doubtful_values)
 {
 	struct prepared p = {.target = t, .limits = limits_for_target(run, t)};
 	prepare_ephemeris(&p, t, clock, memo);
@@ -78,12 +83,15 @@ struct prepared prepare_target(const struct target *t, const struct limits *run,
 		return p;
 	for (int kind = KIND_TRANSIT; kind <= KIND_OCCULTATION; kind++) {
 		p.shape[kind] = shape_of(t, (enum event_kind)kind);
-		p.baseline_before_d[kind] = baseline_d(p.limits.value[LIM_BASELINE_BEFORE], p.shape[kind].t14_d);
-		p.baseline_after_d[kind] = baseline_d(p.limits.value[LIM_BASELINE_AFTER], p.shape[kind].t14_d);
+		p.baseline_before_d[kind] =
+		    baseline_d(p.limits.value[LIM_BASELINE_BEFORE], p.shape[kind].t14_d);
+		p.baseline_after_d[kind] =
+		    baseline_d(p.limits.value[LIM_BASELINE_AFTER], p.shape[kind].t14_d);
 	}
 	if (p.shape[KIND_TRANSIT].contradictory)
 		p.flags |= FLAG_BIT(FLAG_DOUBTFUL_VALUES);
 	p.orbit_known = t->ecc >= 0.0 && t->ecc < 1.0 && (t->ecc == 0.0 || !isnan(t->omega_deg));
-	p.occultation_d = p.orbit_known ? occultation_delay_d(t->period_d, t->ecc, or_zero(t->omega_deg)) : 0.5 * t->period_d;
+	p.occultation_d = p.orbit_known ? occultation_delay_d(t->period_d, t->ecc, or_zero(t->omega_deg))
+					: 0.5 * t->period_d;
 	return p;
 }

@@ -3,8 +3,13 @@
 
 #include "ephem/siblings.h"
 
+#include "ephem/units.h"
+
+#include <math.h>
 #include <stdlib.h>
 #include <string.h>
+
+#define WIDE_SIGMA_D (15.0 * MIN_D)
 
 void window_list_free(struct window_list *list)
 {
@@ -27,7 +32,8 @@ static struct window *list_next(struct window_list *list)
 
 static int by_reserve(const void *left, const void *right)
 {
-	const struct window_event *a = &((const struct window *)left)->event, *b = &((const struct window *)right)->event;
+	const struct window_event *a = &((const struct window *)left)->event,
+				  *b = &((const struct window *)right)->event;
 	if (a->reserve_start_d != b->reserve_start_d)
 		return a->reserve_start_d < b->reserve_start_d ? -1 : 1;
 	const int name = strcmp(a->prepared->target->name, b->prepared->target->name);
@@ -38,15 +44,24 @@ static int by_reserve(const void *left, const void *right)
 	return (a->epoch > b->epoch) - (a->epoch < b->epoch);
 }
 
-static bool add_events(const struct target_night *tn, enum event_kind kind, long first, long last, const struct window_choice *choice,
-		       struct window_list *list, long *hidden)
+/* What is predicted for a neighbouring night belongs to this one only by its chance. */
+static bool is_listed(const struct window *w, const struct window_choice *choice)
+{
+	if (w->event.flags & FLAG_BIT(FLAG_OTHER_NIGHT))
+		return !isnan(w->chance.ingress) && window_hidden(w) &&
+		       (choice->all || window_listed(w, choice->min_chance));
+	return choice->all || window_listed(w, choice->min_chance);
+}
+
+static bool add_events(const struct target_night *tn, enum event_kind kind, long first, long last,
+		       const struct window_choice *choice, struct window_list *list, long *hidden)
 {
 	for (long epoch = first; epoch <= last; epoch++) {
 		struct window *w = list_next(list);
 		if (!w)
 			return false;
 		window_make(w, tn, kind, epoch, STAGE_CHANCE);
-		if (choice->all || window_listed(w, choice->min_chance))
+		if (is_listed(w, choice))
 			list->n++;
 		else if (window_hidden(w))
 			++*hidden;
@@ -54,22 +69,41 @@ static bool add_events(const struct target_night *tn, enum event_kind kind, long
 	return true;
 }
 
-static bool add_target(const struct night *night, const struct prepared *p, const struct window_choice *choice, struct sun_sets *suns,
-		       struct window_list *list, long *hidden)
+/* An error of hours brings the neighbouring epoch into this night: at most one on each side, since beyond P/6
+ * there is no chance. Four times the least error that counts is an hour: from past noon that reaches no dark
+ * sky outside the polar circles. */
+static void widen(const struct prepared *p, long *first, long *last)
+{
+	const double sigma_d = ephemeris_published_d(&p->eph, *first) * p->limits.value[LIM_ERROR_SCALE] +
+			       p->eph.ttv_min * MIN_D;
+	if (sigma_d > WIDE_SIGMA_D) {
+		--*first;
+		++*last;
+	}
+}
+
+static bool add_target(const struct night *night, const struct prepared *p,
+		       const struct window_choice *choice, struct sun_sets *suns, struct window_list *list,
+		       long *hidden)
 {
 	const struct star star = night_star(night, p->target);
 	struct target_night tn;
 	bool ready = false;
 	for (int kind = KIND_TRANSIT; kind <= KIND_OCCULTATION; kind++) {
 		long first, last;
-		if (!(choice->kinds & (kind == KIND_TRANSIT ? KINDS_TRANSIT : KINDS_OCCULTATION)) ||
-		    !window_epochs(night, &star, p, (enum event_kind)kind, &first, &last))
+		if (!(choice->kinds & (kind == KIND_TRANSIT ? KINDS_TRANSIT : KINDS_OCCULTATION)))
+			continue;
+		if (!window_epochs(night, &star, p, (enum event_kind)kind, &first, &last) &&
+		    last != first - 1)
+			continue;
+		widen(p, &first, &last);
+		if (last < first)
 			continue;
 		if (!ready)
 			tn = target_on_night(night, p, &star, suns);
 		ready = true;
 		/* nothing of the night can be used and nobody asked for what is spoilt */
-		if (!choice->all && tn.limb.n == 0)
+		if (!choice->all && choice->min_chance > 0.0 && tn.limb.n == 0)
 			continue;
 		if (!add_events(&tn, (enum event_kind)kind, first, last, choice, list, hidden))
 			return false;
@@ -77,14 +111,16 @@ static bool add_target(const struct night *night, const struct prepared *p, cons
 	return true;
 }
 
-enum status night_windows(const struct night *night, const struct prepared prepared[], size_t n, const struct window_choice *choice,
-			  struct window_list *list, long *hidden, struct err *e)
+enum status night_windows(const struct night *night, const struct prepared prepared[], size_t n,
+			  const struct window_choice *choice, struct window_list *list, long *hidden,
+			  struct err *e)
 {
 	struct sun_sets suns = {.n = 0};
 	long not_listed = 0;
 	list->n = 0;
 	for (size_t i = 0; i < n; i++)
-		if (prepared[i].has_ephemeris && !add_target(night, &prepared[i], choice, &suns, list, &not_listed))
+		if (prepared[i].has_ephemeris &&
+		    !add_target(night, &prepared[i], choice, &suns, list, &not_listed))
 			return err_set(e, ST_MEMORY, "no memory for %zu windows", list->n);
 	if (list->n > 1)
 		qsort(list->w, list->n, sizeof *list->w, by_reserve);

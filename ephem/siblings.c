@@ -23,8 +23,6 @@ enum status siblings_link(struct prepared prepared[], const uint32_t star[], siz
 
 static bool transits_within(const struct night *night, const struct prepared *p, double from_d, double to_d)
 {
-	if (!p->has_ephemeris)
-		return false;
 	const struct star star = night_star(night, p->target);
 	const double half_d = 0.5 * p->shape[KIND_TRANSIT].t14_d;
 	long first, last;
@@ -44,10 +42,13 @@ void siblings_mark(const struct night *night, struct window_list *list)
 		struct window *w = &list->w[i];
 		const struct prepared *self = w->event.prepared;
 		w->n_siblings = 0;
-		for (const struct prepared *p = self->sibling; p && p != self; p = p->sibling)
-			if (w->n_siblings < SIBLINGS_MAX &&
-			    transits_within(night, p, w->event.reserve_start_d, w->event.reserve_end_d))
+		for (const struct prepared *p = self->sibling; p && p != self; p = p->sibling) {
+			if (!p->has_ephemeris)
+				w->event.flags |= FLAG_BIT(FLAG_SIBLINGS_UNKNOWN);
+			else if (w->n_siblings < SIBLINGS_MAX &&
+				 transits_within(night, p, w->event.reserve_start_d, w->event.reserve_end_d))
 				w->sibling[w->n_siblings++] = p;
+		}
 		if (w->n_siblings > 0)
 			w->event.flags |= FLAG_BIT(FLAG_SIBLING_IN_WINDOW);
 	}

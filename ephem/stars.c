@@ -42,7 +42,8 @@ static double apart_arcsec(const struct target *a, const struct target *b)
 	       ARCSEC_RAD;
 }
 
-enum status stars_group(const struct target target[], size_t n, uint32_t star[], bool doubtful[], struct err *e)
+enum status stars_group(const struct target target[], size_t n, uint32_t star[], bool doubtful[],
+			struct err *e)
 {
 	if (n == 0)
 		return ST_OK;
@@ -58,7 +59,8 @@ enum status stars_group(const struct target target[], size_t n, uint32_t star[],
 	size_t first = 0;
 	for (size_t i = 0; i < n; i++) {
 		const struct entry *a = &entry[first], *b = &entry[i];
-		if (a->star_length != b->star_length || memcmp(a->target->name, b->target->name, a->star_length) != 0) {
+		if (a->star_length != b->star_length ||
+		    memcmp(a->target->name, b->target->name, a->star_length) != 0) {
 			first = i;
 			number++;
 		}

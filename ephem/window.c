@@ -15,8 +15,10 @@ const char *const cause_words[CAUSE_COUNT] = {"sun", "altitude", "mask", "moon",
 #define PHASE_LOST_SHARE (1.0 / 6.0)
 
 /* The event belongs to the night when some moment of [T1, T4] lies in [noon, next noon). */
-bool window_epochs(const struct night *n, const struct star *s, const struct prepared *p, enum event_kind kind, long *first, long *last)
+bool window_epochs(const struct night *n, const struct star *s, const struct prepared *p,
+		   enum event_kind kind, long *first, long *last)
 {
+	*first = *last = 0;
 	if (!p->has_ephemeris || !p->shape[kind].occurs)
 		return false;
 	const double half_d = 0.5 * p->shape[kind].t14_d;
@@ -25,12 +27,14 @@ bool window_epochs(const struct night *n, const struct star *s, const struct pre
 	from.jd = jd2_add_d(from.jd, -half_d - shift_d);
 	to.jd = jd2_add_d(to.jd, half_d - shift_d);
 	long end;
-	if (!ephemeris_first_after(&p->eph, from, first) || !ephemeris_first_after(&p->eph, to, &end))
+	if (!ephemeris_first_after(&p->eph, from, first) || !ephemeris_first_after(&p->eph, to, &end)) {
+		*first = *last = 0;
 		return false;
+	}
 	*last = end - 1;
 	if (*last - *first >= EVENTS_PER_NIGHT_MAX)
 		*last = *first + EVENTS_PER_NIGHT_MAX - 1;
-	return *last >= *first;
+	return *last >= *first; /* none: *last is *first - 1 */
 }
 
 static double night_of_offset(const struct target_night *tn, struct tdb mid, double offset_d)
@@ -38,8 +42,10 @@ static double night_of_offset(const struct target_night *tn, struct tdb mid, dou
 	return night_of_bjd(tn->night, &tn->star, (struct tdb){.jd = jd2_add_d(mid.jd, offset_d)});
 }
 
-/* sigma: design words. published and duration errors are scaled by F for pad and chance; the time standard and timing variations are not. */
-static void event_errors(struct window_event *ev, const struct prepared *p, const struct shape *shape, double published_min)
+/* sigma: design words. published and duration errors are scaled by F for pad and chance; the time standard
+ * and timing variations are not. */
+static void event_errors(struct window_event *ev, const struct prepared *p, const struct shape *shape,
+			 double published_min)
 {
 	const struct ephemeris *e = &p->eph;
 	const double fixed_min = hypot(e->systematic_min, e->ttv_min / sqrt(2.0));
@@ -51,15 +57,17 @@ static void event_errors(struct window_event *ev, const struct prepared *p, cons
 	ev->chance_contact_d = hypot(ev->chance_sigma_d, scale * half_t14_min * MIN_D);
 	if (ev->sigma_min > PHASE_LOST_SHARE * e->period_d * DAY_MIN)
 		ev->flags |= FLAG_BIT(FLAG_PHASE_LOST);
-	const double k = p->limits.value[LIM_PAD], spare_min = ev->before_d * DAY_MIN - p->limits.value[LIM_MIN_BASELINE];
-	if (k > 0.0 && spare_min > 0.0 && ev->sigma_min > spare_min / k)
+	const double k = p->limits.value[LIM_PAD];
+	const double spare_min =
+	    fmin(ev->before_d, ev->after_d) * DAY_MIN - p->limits.value[LIM_MIN_BASELINE];
+	if (k > 0.0 && ev->sigma_min > fmax(spare_min, 0.0) / k)
 		ev->flags |= FLAG_BIT(FLAG_STALE);
 	if (ev->flags & (FLAG_BIT(FLAG_PHASE_LOST) | FLAG_BIT(FLAG_CIRCULAR_ASSUMED)))
 		ev->chance_sigma_d = ev->chance_contact_d = NAN;
 }
 
-/* Published error of the mid-time. An occultation's place in the orbit moves by 2 P / pi for each unit of e cos w (Winn 2010,
- * arXiv:1001.2010, eq. 33, first order). */
+/* Published error of the mid-time. An occultation's place in the orbit moves by 2 P / pi for each unit of e
+ * cos w (Winn 2010, arXiv:1001.2010, eq. 33, first order). */
 static double event_published_min(const struct prepared *p, enum event_kind kind, long epoch)
 {
 	const double mid_d = ephemeris_published_d(&p->eph, epoch);
@@ -70,14 +78,17 @@ static double event_published_min(const struct prepared *p, enum event_kind kind
 }
 
 /* How far the reserve reaches beyond a contact. */
-static double reserve_d(const struct prepared *p, const struct shape *shape, double published_min, double wanted_d)
+static double reserve_d(const struct prepared *p, const struct shape *shape, double published_min,
+			double wanted_d)
 {
 	if (isnan(published_min))
 		return wanted_d;
 	const double scale = p->limits.value[LIM_ERROR_SCALE];
 	const double half_t14_min = 0.5 * shape->t14_err_d * DAY_MIN;
-	const double error_min = hypot(hypot(scale * published_min, p->eph.systematic_min), scale * half_t14_min);
-	const double padded_min = p->limits.value[LIM_MIN_BASELINE] + p->limits.value[LIM_PAD] * error_min + p->eph.ttv_min;
+	const double error_min =
+	    hypot(hypot(scale * published_min, p->eph.systematic_min), scale * half_t14_min);
+	const double padded_min =
+	    p->limits.value[LIM_MIN_BASELINE] + p->limits.value[LIM_PAD] * error_min + p->eph.ttv_min;
 	return fmax(wanted_d, padded_min * MIN_D);
 }
 
@@ -101,11 +112,13 @@ static uint32_t shape_flags(const struct prepared *p, const struct shape *shape,
 	return flags;
 }
 
-static void make_event(struct window_event *ev, const struct target_night *tn, enum event_kind kind, long epoch)
+static void make_event(struct window_event *ev, const struct target_night *tn, enum event_kind kind,
+		       long epoch)
 {
 	const struct prepared *p = tn->prepared;
 	const struct shape *shape = &p->shape[kind];
-	*ev = (struct window_event){.prepared = p, .kind = kind, .epoch = epoch, .depth_ppt = shape->depth_ppt};
+	*ev =
+	    (struct window_event){.prepared = p, .kind = kind, .epoch = epoch, .depth_ppt = shape->depth_ppt};
 	ev->mid_bjd = ephemeris_mid(&p->eph, epoch);
 	if (kind == KIND_OCCULTATION)
 		ev->mid_bjd.jd = jd2_add_d(ev->mid_bjd.jd, p->occultation_d);
@@ -123,7 +136,9 @@ static void make_event(struct window_event *ev, const struct target_night *tn, e
 	ev->reserve_start_d = ev->t1_d - reserve_d(p, shape, published_min, ev->before_d);
 	ev->reserve_end_d = ev->t4_d + reserve_d(p, shape, published_min, ev->after_d);
 	ev->latest_start_d = ev->t1_d - p->limits.value[LIM_MIN_BASELINE] * MIN_D;
-	if (ev->t1_d < 0.0 || ev->t4_d > tn->night->length_d)
+	if (ev->t4_d < 0.0 || ev->t1_d >= tn->night->length_d)
+		ev->flags |= FLAG_BIT(FLAG_OTHER_NIGHT);
+	else if (ev->t1_d < 0.0 || ev->t4_d > tn->night->length_d)
 		ev->flags |= FLAG_BIT(FLAG_CROSSES_NOON);
 }
 
@@ -158,7 +173,8 @@ static void make_sky(struct window *w, const struct target_night *tn)
 	}
 }
 
-void window_make(struct window *w, const struct target_night *tn, enum event_kind kind, long epoch, enum stage stage)
+void window_make(struct window *w, const struct target_night *tn, enum event_kind kind, long epoch,
+		 enum stage stage)
 {
 	memset(w, 0, sizeof *w);
 	make_event(&w->event, tn, kind, epoch);

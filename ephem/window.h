@@ -102,7 +102,8 @@ struct sun_sets {
 };
 struct target_night target_on_night(const struct night *n, const struct prepared *p, const struct star *s, struct sun_sets *suns);
 
-/* Epochs whose [T1, T4] touches the night: [*first, *last], false when none. At most EVENTS_PER_NIGHT_MAX. */
+/* Epochs whose [T1, T4] touches the night: [*first, *last], false when none (then *last = *first - 1, where the count is possible at all; else
+ * both 0). At most EVENTS_PER_NIGHT_MAX. */
 enum { EVENTS_PER_NIGHT_MAX = 200 };
 bool window_epochs(const struct night *n, const struct star *s, const struct prepared *p, enum event_kind kind, long *first, long *last);
 /* Fills a window up to a stage. */

@@ -9,9 +9,9 @@
 #include <stdio.h>
 #include <string.h>
 
-#define COVER_WHOLE 0.995            /* a part with less than this has lost something */
-#define DONE_GAP_D (10.0 * MIN_D)    /* a pause that flat part and baselines bear */
-#define NEVER_LISTED 0.0005          /* chance below which nothing is hidden from the observer by not being listed */
+#define COVER_WHOLE 0.995	  /* a part with less than this has lost something */
+#define DONE_GAP_D (10.0 * MIN_D) /* a pause that flat part and baselines bear */
+#define NEVER_LISTED 0.0005 /* chance below which nothing is hidden from the observer by not being listed */
 
 static const struct intervals *sun_set(const struct night *n, double limit_deg, struct sun_sets *suns)
 {
@@ -24,15 +24,18 @@ static const struct intervals *sun_set(const struct night *n, double limit_deg, 
 	return &suns->set[i];
 }
 
-struct target_night target_on_night(const struct night *n, const struct prepared *p, const struct star *s, struct sun_sets *suns)
+struct target_night target_on_night(const struct night *n, const struct prepared *p, const struct star *s,
+				    struct sun_sets *suns)
 {
 	const double *limit = p->limits.value;
 	struct target_night tn = {.night = n, .prepared = p, .star = *s};
 	tn.sun_limb = *sun_set(n, limit[LIM_SUN], suns);
-	tn.sun_baseline = *sun_set(n, isnan(limit[LIM_SUN_BASELINE]) ? limit[LIM_SUN] : limit[LIM_SUN_BASELINE], suns);
+	tn.sun_baseline =
+	    *sun_set(n, isnan(limit[LIM_SUN_BASELINE]) ? limit[LIM_SUN] : limit[LIM_SUN_BASELINE], suns);
 	tn.altitude = night_star_above(n, s, limit[LIM_ALT]);
 	tn.mask = night_star_above_mask(n, s);
-	tn.airmass = p->airmass_alt_deg > 0.0 ? night_star_above(n, s, p->airmass_alt_deg) : intervals_one(0.0, n->length_d);
+	tn.airmass = p->airmass_alt_deg > 0.0 ? night_star_above(n, s, p->airmass_alt_deg)
+					      : intervals_one(0.0, n->length_d);
 	tn.moon = night_moon_clear(n, s, limit[LIM_MOON]);
 	struct intervals sky = intervals_and(&tn.altitude, &tn.airmass);
 	sky = intervals_and(&sky, &tn.mask);
@@ -57,11 +60,11 @@ static void part_ends(const struct window_event *ev, struct span part[PART_COUNT
 static enum cause worst_cause(const struct target_night *tn, struct span part, bool limb)
 {
 	const struct intervals *allowed[CAUSE_COUNT] = {
-		[CAUSE_SUN] = limb ? &tn->sun_limb : &tn->sun_baseline,
-		[CAUSE_ALTITUDE] = &tn->altitude,
-		[CAUSE_MASK] = &tn->mask,
-		[CAUSE_MOON] = &tn->moon,
-		[CAUSE_AIRMASS] = &tn->airmass,
+	    [CAUSE_SUN] = limb ? &tn->sun_limb : &tn->sun_baseline,
+	    [CAUSE_ALTITUDE] = &tn->altitude,
+	    [CAUSE_MASK] = &tn->mask,
+	    [CAUSE_MOON] = &tn->moon,
+	    [CAUSE_AIRMASS] = &tn->airmass,
 	};
 	const double from_d = fmax(part.from_d, 0.0), to_d = fmin(part.to_d, tn->night->length_d);
 	const double inside_d = fmax(to_d - from_d, 0.0);
@@ -95,7 +98,8 @@ static double least_airmass(const struct target_night *tn, const struct interval
 	return best;
 }
 
-static struct intervals usable_between(const struct target_night *tn, const struct window_event *ev, double from_d, double to_d)
+static struct intervals usable_between(const struct target_night *tn, const struct window_event *ev,
+				       double from_d, double to_d)
 {
 	struct intervals all = intervals_clip(&tn->baseline, from_d, ev->t1_d);
 	const struct intervals limb = intervals_clip(&tn->limb, ev->t1_d, ev->t4_d);
@@ -132,7 +136,8 @@ void window_make_cover(struct window *w, const struct target_night *tn)
 		c->lost_to[i] = CAUSE_NONE;
 		if (!(length_d > 0.0))
 			continue;
-		const double overlap_d = intervals_overlap(limb ? &tn->limb : &tn->baseline, part[i].from_d, part[i].to_d);
+		const double overlap_d =
+		    intervals_overlap(limb ? &tn->limb : &tn->baseline, part[i].from_d, part[i].to_d);
 		usable_d += overlap_d;
 		c->share[i] = fmin(overlap_d / length_d, 1.0);
 		if (c->share[i] < COVER_WHOLE)
@@ -158,9 +163,12 @@ void window_make_chance(struct window *w, const struct target_night *tn)
 	/* offsets from the mid-time; the event moves rigidly */
 	const double t1 = ev->t1_d - ev->mid_d, t4 = ev->t4_d - ev->mid_d;
 	const double t2 = flat ? ev->t2_d - ev->mid_d : 0.0, t3 = flat ? ev->t3_d - ev->mid_d : 0.0;
-	const struct intervals limb_in = intervals_fit(&tn->limb, t1, t2), limb_out = intervals_fit(&tn->limb, t3, t4);
-	const struct intervals base_in = intervals_fit(&tn->baseline, t1 - b_d, t1), base_out = intervals_fit(&tn->baseline, t4, t4 + b_d);
-	const struct intervals ingress = intervals_and(&limb_in, &base_in), egress = intervals_and(&limb_out, &base_out);
+	const struct intervals limb_in = intervals_fit(&tn->limb, t1, t2),
+			       limb_out = intervals_fit(&tn->limb, t3, t4);
+	const struct intervals base_in = intervals_fit(&tn->baseline, t1 - b_d, t1),
+			       base_out = intervals_fit(&tn->baseline, t4, t4 + b_d);
+	const struct intervals ingress = intervals_and(&limb_in, &base_in),
+			       egress = intervals_and(&limb_out, &base_out);
 	chance->ingress = chance_in(&ingress, ev->mid_d, ev->chance_contact_d);
 	chance->egress = chance_in(&egress, ev->mid_d, ev->chance_contact_d);
 	chance->mid = chance_in(&tn->limb, ev->mid_d, ev->chance_sigma_d);
@@ -168,9 +176,9 @@ void window_make_chance(struct window *w, const struct target_night *tn)
 	const struct intervals limb_bridged = intervals_bridge(&tn->limb, DONE_GAP_D);
 	const struct intervals base_bridged = intervals_bridge(&tn->baseline, DONE_GAP_D);
 	const struct intervals part[3] = {
-		intervals_fit(&limb_bridged, t2, t3),
-		intervals_fit(&base_bridged, t1 - b_d, t1),
-		intervals_fit(&base_bridged, t4, t4 + b_d),
+	    intervals_fit(&limb_bridged, t2, t3),
+	    intervals_fit(&base_bridged, t1 - b_d, t1),
+	    intervals_fit(&base_bridged, t4, t4 + b_d),
 	};
 	struct intervals done = intervals_and(&limb_in, &limb_out);
 	for (int i = 0; i < 3; i++)
@@ -203,7 +211,8 @@ void lost_by_text(const struct window_cover *c, char *out, size_t n)
 	for (int i = 0; i < PART_COUNT; i++) {
 		if (c->lost_to[i] == CAUSE_NONE)
 			continue;
-		const int wrote = snprintf(out + used, n - used, "%s%s:%s", used > 0 ? ";" : "", part_words[i], cause_words[c->lost_to[i]]);
+		const int wrote = snprintf(out + used, n - used, "%s%s:%s", used > 0 ? ";" : "",
+					   part_words[i], cause_words[c->lost_to[i]]);
 		if (wrote < 0 || (size_t)wrote >= n - used)
 			return;
 		used += (size_t)wrote;

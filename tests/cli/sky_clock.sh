@@ -43,6 +43,13 @@ check "the grid of directions has 30 rows" test "$(wc -l <"$scratch/rows")" = 30
 check "sky: keys in order" test "$(grep -o '^ *"[a-z0-9_]*":' "$scratch/sky" | tr -d ' ":' | tr '\n' ' ')" = \
 	"utc jd_utc bjd_tdb hjd_utc lst_deg ra_deg dec_deg ha_deg alt_deg alt_apparent_deg az_deg parallactic_deg airmass sun_alt_deg sun_az_deg moon_ra_deg moon_dec_deg moon_alt_deg moon_az_deg moon_sep_deg moon_lit sky_mag_arcsec2 sun_sep_deg "
 
+# --- the night of a leap second, UT1 - UTC given for the instant (ERFA 2.0 atco13, no air, dut1 = 0)
+run sky --radec 100,20 --at 2017-01-01T03:00:00Z --place 38.62,-109.36,2100 --format json >"$scratch/sky"
+check "altitude after the leap second" within "$(key alt_deg)" 32.62318 0.0003
+check "azimuth after the leap second" within "$(key az_deg)" 89.54602 0.0003
+run sky --radec 100,20 --at 2016-12-31T23:30:00Z --place 38.62,-109.36,2100 --format json >"$scratch/sky"
+check "altitude before the leap second" within "$(key alt_deg)" -6.43421 0.0003
+
 # --- a target
 db=$scratch/t.db
 "$WANE" target add 'Tern 14 b' --radec 150,10 t0_jd=2461000.5 t0_err_d=0.001 period_d=4 period_err_d=0.00001 time_scale=BJD_TDB --db "$db" 2>/dev/null

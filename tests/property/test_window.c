@@ -1,6 +1,7 @@
 /* SPDX-License-Identifier: MIT
- * Windows against a plain sampler: covers by looking at every few seconds, chances by trying every shift of the event. The sampler asks only
- * for altitudes and distances at single moments and knows nothing of interval sets. */
+ * Windows against a plain sampler: covers by looking at every few seconds, chances by trying every shift of
+ * the event. The sampler asks only for altitudes and distances at single moments and knows nothing of
+ * interval sets. */
 #include "ephem/season.h"
 
 #include "ephem/mask.h"
@@ -25,13 +26,19 @@ struct scene {
 
 static void make_scene(struct scene *s, struct rng *r)
 {
-	s->site = (struct site){.name = "x", .lat_deg = rng_between(r, -70.0, 70.0), .lon_east_deg = rng_between(r, -180.0, 180.0), .height_m = 1500.0, .zone = ""};
+	s->site = (struct site){.name = "x",
+				.lat_deg = rng_between(r, -70.0, 70.0),
+				.lon_east_deg = rng_between(r, -180.0, 180.0),
+				.height_m = 1500.0,
+				.zone = ""};
 	s->mask.n = 0;
 	for (double az = 0.0; az < 360.0; az += rng_between(r, 15.0, 60.0))
 		assert_int_equal(mask_add(&s->mask, az, rng_between(r, 0.0, 45.0), NULL), ST_OK);
 	if (rng_unit(r) < 0.4)
 		s->site.mask = &s->mask;
-	assert_int_equal(night_build(&s->night, &s->site, &earth, 58849 + (int32_t)rng_between(r, 0.0, 9000.0), &memo, NULL), ST_OK);
+	assert_int_equal(night_build(&s->night, &s->site, &earth,
+				     58849 + (int32_t)rng_between(r, 0.0, 9000.0), &memo, NULL),
+			 ST_OK);
 	s->target = target_empty();
 	s->target.name = "Tern 1 b";
 	s->target.ra_deg = rng_between(r, 0.0, 360.0);
@@ -48,9 +55,13 @@ static void make_scene(struct scene *s, struct rng *r)
 	assert_int_equal(standard_parse("BJD_TDB", &s->target.standard, NULL), ST_OK);
 	s->limits = limits_built_in();
 	if (rng_unit(r) < 0.4)
-		assert_int_equal(limits_put(&s->limits, LIM_AIRMASS, rng_between(r, 1.05, 2.5), FROM_OPTION, NULL), ST_OK);
-	assert_int_equal(limits_put(&s->limits, LIM_MOON, rng_unit(r) < 0.2 ? 0.0 : rng_between(r, 15.0, 90.0), FROM_OPTION, NULL), ST_OK);
-	assert_int_equal(limits_put(&s->limits, LIM_ALT, rng_between(r, 5.0, 40.0), FROM_OPTION, NULL), ST_OK);
+		assert_int_equal(
+		    limits_put(&s->limits, LIM_AIRMASS, rng_between(r, 1.05, 2.5), FROM_OPTION, NULL), ST_OK);
+	assert_int_equal(limits_put(&s->limits, LIM_MOON,
+				    rng_unit(r) < 0.2 ? 0.0 : rng_between(r, 15.0, 90.0), FROM_OPTION, NULL),
+			 ST_OK);
+	assert_int_equal(limits_put(&s->limits, LIM_ALT, rng_between(r, 5.0, 40.0), FROM_OPTION, NULL),
+			 ST_OK);
 	s->star = night_star(&s->night, &s->target);
 	s->target.t0 = night_bjd_tdb(&s->night, &s->star, rng_between(r, 0.2, 0.8)).jd;
 	s->prepared = prepare_target(&s->target, &s->limits, &earth, &memo, false, false);
@@ -60,7 +71,8 @@ static void make_scene(struct scene *s, struct rng *r)
 static bool usable_at(const struct scene *s, double t_d, enum limit_id sun)
 {
 	const struct limits *l = &s->prepared.limits;
-	const double sun_limit = isnan(l->value[sun]) ? l->value[LIM_SUN] : l->value[sun], moon_limit = l->value[LIM_MOON];
+	const double sun_limit = isnan(l->value[sun]) ? l->value[LIM_SUN] : l->value[sun],
+		     moon_limit = l->value[LIM_MOON];
 	if (t_d < 0.0 || t_d > s->night.length_d || night_sun_altaz(&s->night, t_d).alt_deg >= sun_limit)
 		return false;
 	const double alt = night_star_altaz(&s->night, &s->star, t_d).alt_deg;
@@ -98,25 +110,32 @@ static void covers(void **state)
 		assert_int_equal(night_windows(&s->night, &s->prepared, 1, &all, &list, NULL, NULL), ST_OK);
 		for (size_t k = 0; k < list.n; k++) {
 			const struct window *w = &list.w[k];
-			const double edge[6] = {w->event.t1_d - w->event.before_d, w->event.t1_d, w->event.t2_d, w->event.t3_d, w->event.t4_d,
+			const double edge[6] = {w->event.t1_d - w->event.before_d,
+						w->event.t1_d,
+						w->event.t2_d,
+						w->event.t3_d,
+						w->event.t4_d,
 						w->event.t4_d + w->event.after_d};
 			if (edge[0] < -0.5 || edge[5] > 1.5)
 				continue;
 			for (int part = 0; part < PART_COUNT; part++) {
 				const bool limb = part != PART_BEFORE && part != PART_AFTER;
-				const double want = sampled_share(s, edge[part], edge[part + 1], limb ? LIM_SUN : LIM_SUN_BASELINE);
+				const double want = sampled_share(s, edge[part], edge[part + 1],
+								  limb ? LIM_SUN : LIM_SUN_BASELINE);
 				check_close(part_words[part], w->cover.share[part], want, 3.0 / 400.0);
 				partial += want > 0.01 && want < 0.99;
 				if (w->cover.lost_to[part] != CAUSE_NONE)
 					lost[w->cover.lost_to[part]]++;
-				assert_true((w->cover.share[part] < 0.995) == (w->cover.lost_to[part] != CAUSE_NONE));
+				assert_true((w->cover.share[part] < 0.995) ==
+					    (w->cover.lost_to[part] != CAUSE_NONE));
 			}
 		}
 		window_list_free(&list);
 	}
 	free(s);
 	/* the loop has seen what it is for */
-	assert_true(partial > 50 && lost[CAUSE_SUN] > 20 && lost[CAUSE_ALTITUDE] > 20 && lost[CAUSE_MOON] > 5 && lost[CAUSE_MASK] > 5 && lost[CAUSE_AIRMASS] > 5);
+	assert_true(partial > 50 && lost[CAUSE_SUN] > 20 && lost[CAUSE_ALTITUDE] > 20 &&
+		    lost[CAUSE_MOON] > 5 && lost[CAUSE_MASK] > 5 && lost[CAUSE_AIRMASS] > 5);
 }
 
 /* Longest stretch without use in [from, to], in minutes; steps of half a minute. */
@@ -165,25 +184,32 @@ static void chances(void **state)
 		s->prepared = prepare_target(&s->target, &s->limits, &earth, &memo, false, false);
 		struct window_list list = {0};
 		const struct window_choice listed = {.kinds = KINDS_TRANSIT, .min_chance = 0.05};
-		assert_int_equal(night_windows(&s->night, &s->prepared, 1, &listed, &list, NULL, NULL), ST_OK);
+		assert_int_equal(night_windows(&s->night, &s->prepared, 1, &listed, &list, NULL, NULL),
+				 ST_OK);
 		for (size_t k = 0; k < list.n; k++) {
 			const struct window *w = &list.w[k];
 			const struct window_event *ev = &w->event;
-			const double b_d = s->prepared.limits.value[LIM_MIN_BASELINE] * MIN_D, sd = ev->chance_contact_d;
+			const double b_d = s->prepared.limits.value[LIM_MIN_BASELINE] * MIN_D,
+				     sd = ev->chance_contact_d;
 			double weight = 0.0, ingress = 0.0, egress = 0.0, done = 0.0;
 			for (int j = -40; j <= 40; j++) {
-				const double shift = j * sd / 8.0, density = exp(-0.5 * (j / 8.0) * (j / 8.0));
-				const double t1 = ev->t1_d + shift, t2 = ev->t2_d + shift, t3 = ev->t3_d + shift, t4 = ev->t4_d + shift;
-				const double limb_in = longest_gap_min(s, t1, t2, LIM_SUN), limb_out = longest_gap_min(s, t3, t4, LIM_SUN);
+				const double shift = j * sd / 8.0,
+					     density = exp(-0.5 * (j / 8.0) * (j / 8.0));
+				const double t1 = ev->t1_d + shift, t2 = ev->t2_d + shift,
+					     t3 = ev->t3_d + shift, t4 = ev->t4_d + shift;
+				const double limb_in = longest_gap_min(s, t1, t2, LIM_SUN),
+					     limb_out = longest_gap_min(s, t3, t4, LIM_SUN);
 				const double base_in = longest_gap_min(s, t1 - b_d, t1, LIM_SUN_BASELINE);
 				const double base_out = longest_gap_min(s, t4, t4 + b_d, LIM_SUN_BASELINE);
 				weight += density;
 				ingress += limb_in == 0.0 && base_in == 0.0 ? density : 0.0;
 				egress += limb_out == 0.0 && base_out == 0.0 ? density : 0.0;
-				done += limb_in == 0.0 && limb_out == 0.0 && bridged(s, t1 - b_d, t1, LIM_SUN_BASELINE) &&
-							bridged(s, t2, t3, LIM_SUN) && bridged(s, t4, t4 + b_d, LIM_SUN_BASELINE)
-						? density
-						: 0.0;
+				done += limb_in == 0.0 && limb_out == 0.0 &&
+						bridged(s, t1 - b_d, t1, LIM_SUN_BASELINE) &&
+						bridged(s, t2, t3, LIM_SUN) &&
+						bridged(s, t4, t4 + b_d, LIM_SUN_BASELINE)
+					    ? density
+					    : 0.0;
 			}
 			/* a step of sigma/8 carries at most 0.05 of the chance; half of one at either end */
 			check_close("ingress", w->chance.ingress, ingress / weight, 0.06);
@@ -197,7 +223,8 @@ static void chances(void **state)
 	assert_true(between > 2);
 }
 
-/* Nights tile time: every epoch of a season stands in at least one night, and in one only unless it runs over noon. */
+/* Nights tile time: every epoch of a season stands in at least one night, and in one only unless it runs over
+ * noon. */
 static void nights_tile_time(void **state)
 {
 	(void)state;
@@ -212,7 +239,8 @@ static void nights_tile_time(void **state)
 		bool crossed = false;
 		for (int d = 0; d < 30; d++) {
 			struct night n;
-			assert_int_equal(night_build(&n, &s->site, &earth, s->night.mjd + d, &memo, NULL), ST_OK);
+			assert_int_equal(night_build(&n, &s->site, &earth, s->night.mjd + d, &memo, NULL),
+					 ST_OK);
 			assert_int_equal(night_windows(&n, &s->prepared, 1, &all, &list, NULL, NULL), ST_OK);
 			for (size_t k = 0; k < list.n; k++) {
 				const struct window_event *ev = &list.w[k].event;
@@ -232,9 +260,9 @@ static void nights_tile_time(void **state)
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
-		cmocka_unit_test(covers),
-		cmocka_unit_test(chances),
-		cmocka_unit_test(nights_tile_time),
+	    cmocka_unit_test(covers),
+	    cmocka_unit_test(chances),
+	    cmocka_unit_test(nights_tile_time),
 	};
 	return cmocka_run_group_tests_name("windows against a sampler", tests, NULL, NULL);
 }

@@ -1,6 +1,7 @@
 /* SPDX-License-Identifier: MIT
- * A window's figures by hand: a circumpolar star, altitude limit 0, no Moon rule, so that the dark time [dusk, dawn] is all that counts.
- * The mid-time lies x minutes after dusk, T14 = 180 min, sigma 8 min, B = 30, b_min = 15, k = 2. */
+ * A window's figures by hand: a circumpolar star, altitude limit 0, no Moon rule, so that the dark time
+ * [dusk, dawn] is all that counts. The mid-time lies x minutes after dusk, T14 = 180 min, sigma 8 min, B =
+ * 30, b_min = 15, k = 2. */
 #include "ephem/window.h"
 
 #include "ephem/season.h"
@@ -12,7 +13,8 @@
 #include <string.h>
 
 static struct sun_memo memo;
-static const struct site tern_hill = {.name = "Tern Hill", .lat_deg = 38.62, .lon_east_deg = -109.36, .height_m = 2100.0, .zone = ""};
+static const struct site tern_hill = {
+    .name = "Tern Hill", .lat_deg = 38.62, .lon_east_deg = -109.36, .height_m = 2100.0, .zone = ""};
 static const struct earth_clock earth = {.leap = &leap_builtin};
 enum { NIGHT_MJD = 61152 }; /* 2026-04-22 */
 
@@ -46,7 +48,8 @@ static void put_mid(struct target *t, const struct night *n, double t_d)
 	t->t0 = night_bjd_tdb(n, &s, t_d).jd;
 }
 
-static struct window window_of(const struct target *t, const struct night *n, const struct limits *l, struct prepared *p)
+static struct window window_of(const struct target *t, const struct night *n, const struct limits *l,
+			       struct prepared *p)
 {
 	struct window w;
 	*p = prepare_target(t, l, &earth, &memo, false, false);
@@ -60,22 +63,50 @@ static struct window window_of(const struct target *t, const struct night *n, co
 	return w;
 }
 
-/* Shares: overlap of each part with [0, dawn), limb 21.2614 min = T14/2 (1 - sqrt((0.9^2 - 0.5^2)/(1.1^2 - 0.5^2))).
- * Chances: ingress and done Phi((x - 105)/8), egress Phi((x + 90 - 21.2614)/8), mid Phi(x/8) with Phi(z) = erfc(-z/sqrt 2)/2. */
+/* Shares: overlap of each part with [0, dawn), limb 21.2614 min = T14/2 (1 - sqrt((0.9^2 - 0.5^2)/(1.1^2 -
+ * 0.5^2))). Chances: ingress and done Phi((x - 105)/8), egress Phi((x + 90 - 21.2614)/8), mid Phi(x/8) with
+ * Phi(z) = erfc(-z/sqrt 2)/2. */
 static const struct {
 	double x_min, share[PART_COUNT], coverage, ingress, egress, mid, done, base_before, base_after;
 	const char *lost_by;
 } rows[] = {
-	{-100, {0, 0, 0, 0, 0.666667}, 0.083333, 0, 0.00004660, 0, 0, 0, 0, "before:sun;ingress:sun;flat:sun;egress:sun;after:sun"},
-	{-85, {0, 0, 0, 0.235168, 1}, 0.145833, 0, 0.02104291, 0, 0, 0, 31, "before:sun;ingress:sun;flat:sun;egress:sun"},
-	{-45, {0, 0, 0.172673, 1, 1}, 0.312500, 0, 0.99849801, 0.00000001, 0, 0, 31, "before:sun;ingress:sun;flat:sun"},
-	{0, {0, 0, 0.5, 1, 1}, 0.5, 0, 1, 0.5, 0, 0, 31, "before:sun;ingress:sun;flat:sun"},
-	{45, {0, 0, 0.827327, 1, 1}, 0.687500, 0, 1, 0.99999999, 0, 0, 31, "before:sun;ingress:sun;flat:sun"},
-	{80, {0, 0.529663, 1, 1, 1}, 0.833333, 0.00088903, 1, 1, 0.00088903, 0, 31, "before:sun;ingress:sun"},
-	{95, {0.166667, 1, 1, 1, 1}, 0.895833, 0.10564977, 1, 1, 0.10564977, 5, 31, "before:sun"},
-	{105, {0.5, 1, 1, 1, 1}, 0.937500, 0.5, 1, 1, 0.5, 15, 31, "before:sun"},
-	{118, {0.933333, 1, 1, 1, 1}, 0.991667, 0.94791872, 1, 1, 0.94791872, 28, 31, "before:sun"},
-	{130, {1, 1, 1, 1, 1}, 1, 0.99911097, 1, 1, 0.99911097, 31, 31, ""},
+    {-100,
+     {0, 0, 0, 0, 0.666667},
+     0.083333,
+     0,
+     0.00004660,
+     0,
+     0,
+     0,
+     0,
+     "before:sun;ingress:sun;flat:sun;egress:sun;after:sun"},
+    {-85,
+     {0, 0, 0, 0.235168, 1},
+     0.145833,
+     0,
+     0.02104291,
+     0,
+     0,
+     0,
+     31,
+     "before:sun;ingress:sun;flat:sun;egress:sun"},
+    {-45,
+     {0, 0, 0.172673, 1, 1},
+     0.312500,
+     0,
+     0.99849801,
+     0.00000001,
+     0,
+     0,
+     31,
+     "before:sun;ingress:sun;flat:sun"},
+    {0, {0, 0, 0.5, 1, 1}, 0.5, 0, 1, 0.5, 0, 0, 31, "before:sun;ingress:sun;flat:sun"},
+    {45, {0, 0, 0.827327, 1, 1}, 0.687500, 0, 1, 0.99999999, 0, 0, 31, "before:sun;ingress:sun;flat:sun"},
+    {80, {0, 0.529663, 1, 1, 1}, 0.833333, 0.00088903, 1, 1, 0.00088903, 0, 31, "before:sun;ingress:sun"},
+    {95, {0.166667, 1, 1, 1, 1}, 0.895833, 0.10564977, 1, 1, 0.10564977, 5, 31, "before:sun"},
+    {105, {0.5, 1, 1, 1, 1}, 0.937500, 0.5, 1, 1, 0.5, 15, 31, "before:sun"},
+    {118, {0.933333, 1, 1, 1, 1}, 0.991667, 0.94791872, 1, 1, 0.94791872, 28, 31, "before:sun"},
+    {130, {1, 1, 1, 1, 1}, 1, 0.99911097, 1, 1, 0.99911097, 31, 31, ""},
 };
 
 static void dusk_by_hand(void **state)
@@ -83,7 +114,8 @@ static void dusk_by_hand(void **state)
 	const struct night *n = *state;
 	const struct limits l = run_limits(0.0, 0.0);
 	const double dusk_d = night_dark(n, -12.0).dusk_d;
-	/* contacts are placed on BJD_TDB: light time moves them by at most 6.1 ms a minute of half the duration (Eastman et al. 2010), 0.01 min */
+	/* contacts are placed on BJD_TDB: light time moves them by at most 6.1 ms a minute of half the
+	 * duration (Eastman et al. 2010), 0.01 min */
 	const double time_min = 0.0101, share = time_min / 20.0, chance = time_min / 8.0 * 0.4;
 	for (size_t i = 0; i < sizeof rows / sizeof *rows; i++) {
 		struct target t = circumpolar();
@@ -102,7 +134,8 @@ static void dusk_by_hand(void **state)
 		check_close("base after", w.cover.base_after_min, rows[i].base_after, time_min);
 		check_close("sigma", ev->sigma_min, 8.0, 1e-9);
 		check_close("sigma of a contact", ev->sigma_contact_min, 8.0, 1e-9);
-		check_close("reserve: 15 + 2 x 8 min before T1", (ev->t1_d - ev->reserve_start_d) * DAY_MIN, 31.0, 1e-9);
+		check_close("reserve: 15 + 2 x 8 min before T1", (ev->t1_d - ev->reserve_start_d) * DAY_MIN,
+			    31.0, 1e-9);
 		check_close("and after T4", (ev->reserve_end_d - ev->t4_d) * DAY_MIN, 31.0, 1e-9);
 		check_close("latest start", (ev->t1_d - ev->latest_start_d) * DAY_MIN, 15.0, 1e-9);
 		check_close("T1", (ev->t1_d - dusk_d) * DAY_MIN, rows[i].x_min - 90.0, time_min);
@@ -125,14 +158,16 @@ static void reserve_by_hand(void **state)
 	put_mid(&t, n, 0.4);
 	struct window w = window_of(&t, n, &l, &p);
 	check_close("sigma", w.event.sigma_min, hypot(8.0, 20.0 / sqrt(2.0)), 1e-6);
-	check_close("sigma of a contact", w.event.sigma_contact_min, hypot(hypot(8.0, 20.0 / sqrt(2.0)), 6.0), 1e-6);
+	check_close("sigma of a contact", w.event.sigma_contact_min, hypot(hypot(8.0, 20.0 / sqrt(2.0)), 6.0),
+		    1e-6);
 	check_close("15 + 2 x 10 + 20", (w.event.t1_d - w.event.reserve_start_d) * DAY_MIN, 55.0, 1e-6);
 	assert_true(w.event.flags & FLAG_BIT(FLAG_STALE)); /* sigma above (30 - 15)/2 = 7.5 min */
 	assert_int_equal(limits_put(&l, LIM_ERROR_SCALE, 3.0, FROM_OPTION, NULL), ST_OK);
 	w = window_of(&t, n, &l, &p);
 	check_close("the printed sigma is not scaled", w.event.sigma_min, hypot(8.0, 20.0 / sqrt(2.0)), 1e-6);
 	check_close("15 + 2 x 30 + 20", (w.event.t1_d - w.event.reserve_start_d) * DAY_MIN, 95.0, 1e-6);
-	check_close("sd of a limb", w.event.chance_contact_d * DAY_MIN, hypot(hypot(24.0, 20.0 / sqrt(2.0)), 18.0), 1e-6);
+	check_close("sd of a limb", w.event.chance_contact_d * DAY_MIN,
+		    hypot(hypot(24.0, 20.0 / sqrt(2.0)), 18.0), 1e-6);
 	/* the source does not say its scale: 49 s for BJD */
 	t.ttv_amp_min = NAN;
 	t.duration_err_h = NAN;
@@ -153,7 +188,8 @@ static void unknown_and_lost(void **state)
 	t.t0_err_d = 0.0; /* zero means unknown */
 	struct window w = window_of(&t, n, &l, &p);
 	assert_true(isnan(w.event.sigma_min) && isnan(w.event.sigma_contact_min));
-	assert_true(isnan(w.chance.ingress) && isnan(w.chance.egress) && isnan(w.chance.mid) && isnan(w.chance.done));
+	assert_true(isnan(w.chance.ingress) && isnan(w.chance.egress) && isnan(w.chance.mid) &&
+		    isnan(w.chance.done));
 	assert_true(w.event.flags & FLAG_BIT(FLAG_SIGMA_UNKNOWN));
 	check_close("R = B", (w.event.t1_d - w.event.reserve_start_d) * DAY_MIN, 30.0, 1e-9);
 	assert_true(window_listed(&w, 0.5) && !window_long_shot(&w));
@@ -167,6 +203,65 @@ static void unknown_and_lost(void **state)
 	assert_true(isfinite(w.chance.done));
 }
 
+/* Predicted for the morning before, with an error of hours: tonight has its chance all the same, and says so.
+ */
+static void chance_of_another_night(void **state)
+{
+	const struct night *n = *state;
+	const struct limits l = run_limits(0.0, 0.0);
+	struct target t = circumpolar();
+	t.period_d = 40.0;
+	t.t0_err_d = 0.2;
+	put_mid(&t, n, -0.2);
+	const struct prepared p = prepare_target(&t, &l, &earth, &memo, false, false);
+	struct window_list list = {0};
+	struct window_choice choice = {.kinds = KINDS_TRANSIT, .min_chance = 0.001};
+	long hidden = 99;
+	assert_int_equal(night_windows(n, &p, 1, &choice, &list, &hidden, NULL), ST_OK);
+	assert_int_equal(list.n, 1);
+	assert_int_equal(hidden, 0);
+	const struct window *w = &list.w[0];
+	assert_true(w->event.flags & FLAG_BIT(FLAG_OTHER_NIGHT));
+	assert_false(w->event.flags & FLAG_BIT(FLAG_CROSSES_NOON));
+	/* by hand: Phi((dawn - T4 - 15 min)/0.2 d) - Phi((dusk - T3)/0.2 d), limb 21.2614 min */
+	const struct night_dark dark = night_dark(n, -12.0);
+	const double hi = (dark.dawn_d - (-0.2 + (90.0 + 15.0) * MIN_D)) / 0.2,
+		     lo = (dark.dusk_d - (-0.2 + (90.0 - 21.261365) * MIN_D)) / 0.2;
+	check_close("egress", w->chance.egress, 0.5 * (erfc(lo / sqrt(2.0)) - erfc(hi / sqrt(2.0))), 1e-4);
+	assert_true(w->chance.egress > 0.005 && w->cover.coverage == 0.0);
+	choice.min_chance = 0.5;
+	assert_int_equal(night_windows(n, &p, 1, &choice, &list, &hidden, NULL), ST_OK);
+	assert_int_equal(list.n, 0);
+	assert_int_equal(hidden, 1);
+	choice.all = true;
+	t.t0_err_d = 0.01; /* now it is quite sure that it is over */
+	const struct prepared q = prepare_target(&t, &l, &earth, &memo, false, false);
+	assert_int_equal(night_windows(n, &q, 1, &choice, &list, &hidden, NULL), ST_OK);
+	assert_int_equal(list.n, 0);
+	window_list_free(&list);
+}
+
+/* Without room between the wanted and the least baseline any error eats into the least one. */
+static void stale_without_room(void **state)
+{
+	const struct night *n = *state;
+	struct limits l = run_limits(0.0, 0.0);
+	struct target t = circumpolar();
+	struct prepared p;
+	put_mid(&t, n, 0.4);
+	t.t0_err_d = 2.0 * MIN_D;
+	struct window w = window_of(&t, n, &l, &p);
+	assert_false(w.event.flags & FLAG_BIT(FLAG_STALE));
+	t.baseline_after_min = 15.0; /* the smaller one decides */
+	w = window_of(&t, n, &l, &p);
+	assert_true(w.event.flags & FLAG_BIT(FLAG_STALE));
+	t.baseline_after_min = NAN;
+	assert_int_equal(limits_put(&l, LIM_PAD, 0.0, FROM_OPTION, NULL), ST_OK); /* no pad eats nothing */
+	t.t0_err_d = 0.1;
+	w = window_of(&t, n, &l, &p);
+	assert_false(w.event.flags & FLAG_BIT(FLAG_STALE));
+}
+
 /* Occultations: the exact delay, errors of e cos w, and what is not known said. */
 static void occultation_by_hand(void **state)
 {
@@ -178,7 +273,8 @@ static void occultation_by_hand(void **state)
 	t.ecc = 0.6;
 	t.omega_deg = 120.0;
 	put_mid(&t, n, 0.5);
-	t.t0 = jd2_add_d(t.t0, -1.124600); /* Kepler's equation: 1.124600 d from transit to occultation (test_ephemeris) */
+	t.t0 = jd2_add_d(
+	    t.t0, -1.124600); /* Kepler's equation: 1.124600 d from transit to occultation (test_ephemeris) */
 	const struct prepared p = prepare_target(&t, &l, &earth, &memo, false, false);
 	struct window_list list = {0};
 	const struct window_choice both = {.kinds = KINDS_OCCULTATION, .all = true};
@@ -219,7 +315,8 @@ static void over_noon(void **state)
 	assert_int_equal(night_build(&next, &tern_hill, &earth, NIGHT_MJD + 1, &memo, NULL), ST_OK);
 	const struct window v = window_of(&t, &next, &l, &q);
 	assert_int_equal(w.event.epoch, v.event.epoch);
-	assert_true((w.event.flags & FLAG_BIT(FLAG_CROSSES_NOON)) && (v.event.flags & FLAG_BIT(FLAG_CROSSES_NOON)));
+	assert_true((w.event.flags & FLAG_BIT(FLAG_CROSSES_NOON)) &&
+		    (v.event.flags & FLAG_BIT(FLAG_CROSSES_NOON)));
 	check_close("one event, two nights", w.event.mid_d - v.event.mid_d, 1.0, 1e-8);
 	/* the star never sets: each night's share of the flat part is what is dark of it */
 	const struct intervals dark = night_sun_below(n, -12.0), dark_next = night_sun_below(&next, -12.0);
@@ -231,7 +328,8 @@ static void over_noon(void **state)
 	check_close("tomorrow's share", v.cover.share[PART_FLAT] * flat_d, tomorrow_d, 1e-9);
 }
 
-/* common practice, no source: of a planet on a 4 to 5 day orbit at most two mid-times fall in 5 days, seldom more than one at one site. */
+/* common practice, no source: of a planet on a 4 to 5 day orbit at most two mid-times fall in 5 days, seldom
+ * more than one at one site. */
 static void few_mid_times_in_five_days(void **state)
 {
 	const struct night *first_night = *state;
@@ -240,7 +338,8 @@ static void few_mid_times_in_five_days(void **state)
 	struct night night[5];
 	int with_two = 0, loops = 200;
 	for (int d = 0; d < 5; d++)
-		assert_int_equal(night_build(&night[d], &tern_hill, &earth, NIGHT_MJD + d, &memo, NULL), ST_OK);
+		assert_int_equal(night_build(&night[d], &tern_hill, &earth, NIGHT_MJD + d, &memo, NULL),
+				 ST_OK);
 	for (int i = 0; i < loops; i++) {
 		struct target t = circumpolar();
 		t.dec_deg = rng_between(&r, -20.0, 80.0);
@@ -286,8 +385,14 @@ static int close_night(void **state)
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
-		cmocka_unit_test(dusk_by_hand), cmocka_unit_test(reserve_by_hand), cmocka_unit_test(unknown_and_lost),
-		cmocka_unit_test(over_noon), cmocka_unit_test(occultation_by_hand),	cmocka_unit_test(few_mid_times_in_five_days),
+	    cmocka_unit_test(dusk_by_hand),
+	    cmocka_unit_test(reserve_by_hand),
+	    cmocka_unit_test(unknown_and_lost),
+	    cmocka_unit_test(over_noon),
+	    cmocka_unit_test(chance_of_another_night),
+	    cmocka_unit_test(stale_without_room),
+	    cmocka_unit_test(occultation_by_hand),
+	    cmocka_unit_test(few_mid_times_in_five_days),
 	};
 	return cmocka_run_group_tests_name("window", tests, open_night, close_night);
 }

@@ -3,6 +3,7 @@
 
 #include "ephem/angle_text.h"
 #include "ephem/barycentre.h"
+#include "ephem/mask.h"
 #include "ephem/number_text.h"
 #include "ephem/units.h"
 #include "tui/commands/direction.h"
@@ -23,7 +24,7 @@ struct sky {
 	double t_d, lst_deg;
 	bool has_star, has_ephemeris;
 	struct jd2 bjd_tdb, hjd_utc;
-	double ra_deg, dec_deg, ha_deg, parallactic, airmass, alt_apparent_deg;
+	double ra_deg, dec_deg, ha_deg, parallactic, airmass, alt_apparent_deg, mask_deg;
 	struct altaz star, sun, moon;
 	double moon_ra_deg, moon_dec_deg, moon_sep_deg, moon_lit, sun_sep_deg;
 	long epoch;
@@ -54,6 +55,8 @@ static void fill_star(struct sky *s, const struct night *n, const struct target 
 	s->alt_apparent_deg =
 	    s->star.alt_deg +
 	    refraction_deg(s->star.alt_deg, pressure_hpa(n->site->height_m), AIR_TEMPERATURE_C);
+	if (n->site->mask)
+		s->mask_deg = mask_at(n->site->mask, s->star.az_north_deg);
 	s->bjd_tdb = night_bjd_tdb(n, &star, s->t_d).jd;
 	s->hjd_utc = jd2_add_d(utc_to_jd(n->clock.leap, s->utc),
 			       night_light_time_s(n, &star, s->t_d, ORIGIN_SUN) / DAY_S);
@@ -97,7 +100,7 @@ static struct sky sky_at(const struct night *n, struct utc utc)
 	s.moon_lit = night_moon_lit(n, s.t_d);
 	s.bjd_tdb = s.hjd_utc = (struct jd2){NAN, NAN};
 	s.star = (struct altaz){NAN, NAN};
-	s.ra_deg = s.dec_deg = s.ha_deg = s.parallactic = s.airmass = s.alt_apparent_deg = NAN;
+	s.ra_deg = s.dec_deg = s.ha_deg = s.parallactic = s.airmass = s.alt_apparent_deg = s.mask_deg = NAN;
 	s.moon_sep_deg = s.sun_sep_deg = s.phase = s.sigma_min = NAN;
 	return s;
 }
@@ -185,6 +188,12 @@ static void star_text(FILE *to, const struct sky *s, const struct target *t)
 		fprintf(to, ", airmass %.2f", s->airmass);
 	fprintf(to, "\n  hour angle %.2f h, parallactic angle %.1f deg, with refraction %.2f deg high\n",
 		s->ha_deg / 15.0, s->parallactic, s->alt_apparent_deg);
+	if (isfinite(s->mask_deg))
+		fprintf(to,
+			s->alt_apparent_deg > s->mask_deg
+			    ? "  above the horizon mask, which is %.1f deg high there\n"
+			    : "  behind the horizon mask, which is %.1f deg high there\n",
+			s->mask_deg);
 	fprintf(to, "  %.1f deg from the Moon, %.1f from the Sun\n", s->moon_sep_deg, s->sun_sep_deg);
 	fprintf(to, "  BJD_TDB %s, HJD_UTC %s\n", bjd, hjd);
 }
@@ -262,6 +271,7 @@ static int show_sky(struct run *r, const char *at)
 	if (night_build(&night, &r->site, &r->clock, night_date_of(r->site.lon_east_deg, utc), r->memo, &e) !=
 	    ST_OK)
 		return diagnose_err("sky", &e, EXIT_UNMET);
+	night_set_sidereal(&night, utc); /* UT1 - UTC is given for this instant, not for the evening's noon */
 	struct sky s = sky_at(&night, utc);
 	if (t)
 		fill_star(&s, &night, t);
