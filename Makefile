@@ -78,7 +78,7 @@ fuzz-targets: $(patsubst %.c,$(B)/%,$(FUZZ))
 
 run:
 	@sh tests/deps.sh build
-	@$(MAKE) --no-print-directory -j2 all
+	@$(MAKE) --no-print-directory -s -j2 all
 	@build/wane demo
 
 check:
@@ -92,7 +92,7 @@ layers:
 	@sh tests/layers.sh
 
 fuzz:
-	@$(MAKE) --no-print-directory -j2 V=fuzz fuzz-targets
+	@$(MAKE) --no-print-directory -s -j2 V=fuzz fuzz-targets
 	@sh tests/fuzz/run.sh build/obj-fuzz/tests/fuzz $(FUZZ_SECONDS)
 
 bench: $(B)/tests/bench/bench

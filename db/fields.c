@@ -81,6 +81,8 @@ const struct field fields[FIELD_COUNT] = {
      "Wanted time before the first contact."},
     {"baseline_after_min", "min", FIELD_NUMBER, T, AT(baseline_after_min), 0, 720, false, false,
      "Wanted time after the fourth contact."},
+    {"ecosw_err", "", FIELD_NUMBER, T, AT(ecosw_err), 0, 1, false, false,
+     "Error of ecc times cos(omega), for the time of an occultation; empty: not published."},
 };
 
 int field_find(const char *name)

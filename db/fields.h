@@ -24,8 +24,8 @@ struct field {
 	bool essential;   /* out of range refuses the row; else the value is kept and flagged as doubtful */
 	const char *sentence;
 };
-enum { FIELD_COUNT = 40 };
-/* In the order of the target table format: name, ra_deg, ... source, t0_period_cov_d2, ... baseline_after_min. */
+enum { FIELD_COUNT = 41 };
+/* In the order of the target table format: name, ra_deg, ... source, t0_period_cov_d2, ... baseline_after_min, ecosw_err. */
 extern const struct field fields[FIELD_COUNT];
 /* Places in the table of the fields that the code knows by name. */
 enum {
@@ -56,8 +56,9 @@ struct field_texts {
 /* Reads the texts into *t (whose text pointers then borrow from texts). Essential faults: ST_SYNTAX / ST_RANGE, *bad_field its index.
  * Other faults: the value becomes NAN, bit (1 << field) set in *doubts, the text stays for the store to keep. */
 MUST_USE enum status fields_read(const struct field_texts *texts, struct target *t, uint64_t *doubts, int *bad_field, struct err *e);
-/* Why a text of a doubtful field can't be true, a short sentence. *alone (may be NULL): it is bad by itself, not beside others. */
-const char *field_doubt(int field, const char *text, bool *alone);
+/* Why a text of a doubtful field can't be true, a short sentence. *beside (may be NULL): what would be right beside the target's other
+ * values; NULL when it is bad by itself (field_expected says what would be right then). */
+const char *field_doubt(int field, const char *text, const char **beside);
 /* What is expected of a field, for messages: `a number above 0 d`. */
 void field_expected(int field, char *out, size_t n);
 /* Most bytes that the store keeps of a text field. */

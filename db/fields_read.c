@@ -150,33 +150,40 @@ static void doubt_pairs(struct target *t, uint64_t *doubts)
 		doubt(t, FIELD_AT_INC, doubts);
 }
 
-const char *field_doubt(int field, const char *text, bool *alone)
+/* What does not fit the other values, and what would. */
+static const struct {
+	int field;
+	const char *why, *expected;
+} misfits[] = {
+    {FIELD_AT_T0_ERR, "an error above the period", "an error of at most period_d"},
+    {FIELD_AT_PERIOD_ERR, "an error above the period", "an error of at most period_d"},
+    {FIELD_AT_COVARIANCE, "a covariance above the product of the errors",
+     "at most t0_err_d times period_err_d, of either sign"},
+    {FIELD_AT_DPDE, "a change as large as the period", "a change below period_d, of either sign"},
+    {FIELD_AT_DURATION, "a duration as long as the period", "a duration below period_d"},
+    {FIELD_AT_DURATION_ERR, "an error above the duration", "an error of at most duration_h"},
+    {FIELD_AT_INC, "an impact parameter above 1 + k: no transit",
+     "an inclination with which the planet crosses the star"},
+};
+
+const char *field_doubt(int field, const char *text, const char **beside)
 {
 	struct target t = target_empty();
 	enum status s = read_one(field, text, &t, NULL);
-	if (alone)
-		*alone = s != ST_OK;
+	if (beside)
+		*beside = NULL;
 	if (s == ST_SYNTAX)
 		return "not a number";
 	if (s != ST_OK)
 		return fields[field].kind == FIELD_TEXT ? "too long" : "out of range";
-	switch (field) { /* good alone: it does not fit the others */
-	case FIELD_AT_T0_ERR:
-	case FIELD_AT_PERIOD_ERR:
-		return "an error above the period";
-	case FIELD_AT_COVARIANCE:
-		return "a covariance above the product of the errors";
-	case FIELD_AT_DPDE:
-		return "a change as large as the period";
-	case FIELD_AT_DURATION:
-		return "a duration as long as the period";
-	case FIELD_AT_DURATION_ERR:
-		return "an error above the duration";
-	case FIELD_AT_INC:
-		return "an impact parameter above 1 + k: no transit";
-	default:
-		return "does not fit the other values";
+	for (size_t i = 0; i < sizeof misfits / sizeof misfits[0]; i++) {
+		if (misfits[i].field != field)
+			continue;
+		if (beside)
+			*beside = misfits[i].expected;
+		return misfits[i].why;
 	}
+	return "does not fit the other values";
 }
 
 enum status fields_read(const struct field_texts *texts, struct target *t, uint64_t *doubts, int *bad_field,

@@ -144,17 +144,17 @@ static void say_doubts(struct importing *im, const struct csv_row *row, const st
 			continue;
 		const struct csv_cell *cell = &row->cell[im->column_of[f]];
 		char expected[128], what[128] = "too long: cut";
-		bool alone = true;
+		const char *beside = NULL;
 		field_expected(f, expected, sizeof expected);
 		if (doubt)
 			snprintf(what, sizeof what, "kept without effect: %s",
-				 field_doubt(f, r->own.texts.text[f], &alone));
+				 field_doubt(f, r->own.texts.text[f], &beside));
 		say(im, (struct import_message){.line = cell->line,
 						.column = cell->column,
 						.field = fields[f].name,
 						.text = what,
 						.got = cell->text,
-						.expected = alone ? expected : "",
+						.expected = beside ? beside : expected,
 						.warning = true});
 	}
 }

@@ -37,7 +37,8 @@
 	"airmass_limit REAL CHECK(airmass_limit BETWEEN 1 AND 40),"                                          \
 	"moon_limit_deg REAL CHECK(moon_limit_deg BETWEEN 0 AND 180),"                                       \
 	"baseline_before_min REAL CHECK(baseline_before_min BETWEEN 0 AND 720),"                             \
-	"baseline_after_min REAL CHECK(baseline_after_min BETWEEN 0 AND 720),"
+	"baseline_after_min REAL CHECK(baseline_after_min BETWEEN 0 AND 720),"                               \
+	"ecosw_err REAL CHECK(ecosw_err BETWEEN 0 AND 1),"
 
 #define ALIAS_BODY                                                                                           \
 	"alias TEXT NOT NULL CHECK(length(alias) BETWEEN 1 AND 80),"                                         \
@@ -50,7 +51,8 @@
 	"lat_deg REAL NOT NULL CHECK(lat_deg BETWEEN -90 AND 90),"                                           \
 	"lon_east_deg REAL NOT NULL CHECK(lon_east_deg BETWEEN -180 AND 180),"                               \
 	"height_m REAL NOT NULL CHECK(height_m BETWEEN -450 AND 9000),"                                      \
-	"zone TEXT NOT NULL,"
+	"zone TEXT NOT NULL,"                                                                                \
+	"mask TEXT NOT NULL CHECK(length(mask) <= 40000)," /* `azimuth altitude;...` [deg]; '' none */
 
 #define SETTING_BODY "key TEXT NOT NULL CHECK(length(key) BETWEEN 1 AND 80), value TEXT NOT NULL,"
 

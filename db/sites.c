@@ -1,6 +1,7 @@
 /* SPDX-License-Identifier: MIT */
 #include "db/sites.h"
 
+#include "db/read_mask.h"
 #include "db/store_parts.h"
 #include "db/text_clean.h"
 
@@ -15,6 +16,7 @@ enum {
 	SITE_LON,
 	SITE_HEIGHT,
 	SITE_ZONE,
+	SITE_MASK,
 	SITE_REMOVED,
 	SITE_REV,
 	SITE_CHANGE,
@@ -52,8 +54,14 @@ static enum status keep_site(struct site_list *out, const struct cell *cell, str
 	char *block = realloc(out->block, (out->n + 1) * room);
 	if (block)
 		out->block = block;
-	if (!list || !block)
+	struct mask *mask = realloc(out->mask, (out->n + 1) * sizeof *mask);
+	if (mask)
+		out->mask = mask;
+	if (!list || !block || !mask)
 		return err_set(e, ST_MEMORY, "database: no memory");
+	if (mask_of_text(cell[SITE_MASK].u.text, &mask[out->n], NULL) != ST_OK)
+		return err_set(e, ST_STORE, "database: damaged: the horizon mask of site %s can't be read",
+			       cell[SITE_NAME].u.text);
 	char *next = block + out->n * room;
 	(void)append(&next, cell[SITE_NAME].u.text);
 	(void)append(&next, cell[SITE_ZONE].u.text);
@@ -66,8 +74,20 @@ static enum status keep_site(struct site_list *out, const struct cell *cell, str
 	for (size_t i = 0; i < out->n; i++) {
 		list[i].name = block + i * room;
 		list[i].zone = list[i].name + strlen(list[i].name) + 1;
+		list[i].mask = mask[i].n > 0 ? &mask[i] : NULL;
 	}
 	return ST_OK;
+}
+
+/* A place that may be wrong would give wrong times: it is named and left out. */
+static void note_bad(struct site_list *out, const struct cell *name)
+{
+	char clean[96];
+	if (out->n_bad++ > 0)
+		return;
+	(void)text_clean(name->type == CELL_TEXT ? name->u.text : "", clean, sizeof clean);
+	snprintf(out->bad, sizeof out->bad, "the checksum of site %s is wrong: left out; see `wane check`",
+		 clean);
 }
 
 enum status sites_load(struct store *s, struct site_list *out, struct err *e)
@@ -78,13 +98,7 @@ enum status sites_load(struct store *s, struct site_list *out, struct err *e)
 	enum status st = ST_OK;
 	while (st == ST_OK && (st = sql_step(s, SQL_SITE_LOAD, &row, e)) == ST_OK && row) {
 		if (!row_read(s, SQL_SITE_LOAD, 0, &site_table, cell)) {
-			char clean[96];
-			(void)text_clean(cell[SITE_NAME].type == CELL_TEXT ? cell[SITE_NAME].u.text : "",
-					 clean, sizeof clean);
-			/* a place that may be wrong gives wrong times: it is not used, and nothing else is
-			 * shown for it */
-			st = err_set(e, ST_STORE, "database: damaged: the checksum of site %s is wrong",
-				     clean);
+			note_bad(out, &cell[SITE_NAME]);
 		} else if (!cell[SITE_REMOVED].u.i) {
 			st = keep_site(out, cell, e);
 		}
@@ -99,6 +113,7 @@ void site_list_free(struct site_list *list)
 {
 	free(list->site);
 	free(list->block);
+	free(list->mask);
 	*list = (struct site_list){0};
 }
 
@@ -147,7 +162,7 @@ static enum status find_site(struct store *s, const char *name, struct row *out,
 enum status site_put(struct store *s, const struct site *site, bool add, struct err *e)
 {
 	struct row old;
-	char key[NAME_KEY_MAX], name[NAME_BYTES_MAX];
+	char key[NAME_KEY_MAX], name[NAME_BYTES_MAX], mask[MASK_TEXT_MAX] = "";
 	const char *start = site->name;
 	size_t n = strlen(site->name);
 	enum status st = name_check(site->name, n, NULL, e);
@@ -158,6 +173,8 @@ enum status site_put(struct store *s, const struct site *site, bool add, struct 
 	text_trim(&start, &n);
 	snprintf(name, sizeof name, "%.*s", (int)n, start);
 	name_key(name, key);
+	if (site->mask)
+		mask_text(site->mask, mask);
 	st = find_site(s, name, &old, e);
 	bool there = st == ST_OK && !old.cell[SITE_REMOVED].u.i;
 	if (there && add)
@@ -169,6 +186,7 @@ enum status site_put(struct store *s, const struct site *site, bool add, struct 
 	    [SITE_LON] = cell_real(site->lon_east_deg),
 	    [SITE_HEIGHT] = cell_real(site->height_m),
 	    [SITE_ZONE] = cell_text(site->zone),
+	    [SITE_MASK] = cell_text(mask),
 	    [SITE_REMOVED] = cell_int(0),
 	};
 	if (st == ST_ABSENT) {

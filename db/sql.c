@@ -11,7 +11,7 @@
 	"note, "                                                                                             \
 	"sun_limit_deg, sun_limit_baseline_deg, alt_limit_deg, airmass_limit, moon_limit_deg, "              \
 	"baseline_before_min, "                                                                              \
-	"baseline_after_min, ephemeris_id"
+	"baseline_after_min, ecosw_err, ephemeris_id"
 #define TARGET_PLAIN "name_key, " TARGET_FIELDS ", as_read, doubts, removed, rev, change_id"
 #define TARGET_COLUMNS                                                                                       \
 	"target.id, name_key, " TARGET_FIELDS                                                                \
@@ -24,7 +24,7 @@
 	"ephemeris.id, " EPHEMERIS_FIELDS ", ephemeris.as_read, ephemeris.doubts, ephemeris.rev, "           \
 	"ephemeris.change_id, ephemeris.row_crc"
 #define ALIAS_PLAIN "alias, alias_key, target_id, removed, rev, change_id"
-#define SITE_PLAIN "name, name_key, lat_deg, lon_east_deg, height_m, zone, removed, rev, change_id"
+#define SITE_PLAIN "name, name_key, lat_deg, lon_east_deg, height_m, zone, mask, removed, rev, change_id"
 #define SETTING_PLAIN "key, value, removed, rev, change_id"
 
 #define FIVE "?, ?, ?, ?, ?"
@@ -36,6 +36,8 @@ const char *const sql_text[SQL_COUNT] = {
     [SQL_ROLLBACK] = "ROLLBACK",
     [SQL_STORE_INFO] = "SELECT id, store_id, rev, row_crc FROM store_info",
 
+    [SQL_DATA_VERSION] = "PRAGMA data_version",
+
     [SQL_CHANGE_NEXT] = "SELECT ifnull(max(id), 0) + 1 FROM change_set",
     [SQL_CHANGE_ADD] = "INSERT INTO change_set(id, utc, who, verb, rev, row_crc) VALUES(" FIVE ", ?)",
 
@@ -45,12 +47,12 @@ const char *const sql_text[SQL_COUNT] = {
 	" FROM target LEFT JOIN ephemeris ON ephemeris.id = target.ephemeris_id ORDER BY name_key",
     [SQL_TARGET_BY_KEY] = "SELECT " TARGET_COLUMNS " FROM target WHERE name_key = ?",
     [SQL_TARGET_BY_ID] = "SELECT " TARGET_COLUMNS " FROM target WHERE id = ?",
-    [SQL_TARGET_ADD] = "INSERT INTO target(id, " TARGET_PLAIN ", row_crc) VALUES(" TEN ", " TEN ", " TEN
-		       ", " FIVE ", ?, ?, ?, ?)",
+    [SQL_TARGET_ADD] =
+	"INSERT INTO target(id, " TARGET_PLAIN ", row_crc) VALUES(" TEN ", " TEN ", " TEN ", " TEN ")",
     [SQL_TARGET_UPDATE] = "UPDATE target SET (" TARGET_PLAIN ", row_crc) = (" TEN ", " TEN ", " TEN ", " FIVE
-			  ", ?, ?, ?) WHERE id = ? AND rev = ?",
+			  ", ?, ?, ?, ?) WHERE id = ? AND rev = ?",
     [SQL_TARGET_KEEP_OLD] = "INSERT INTO target_old(id, " TARGET_PLAIN ", replaced_by, row_crc) VALUES(" TEN
-			    ", " TEN ", " TEN ", " TEN ")",
+			    ", " TEN ", " TEN ", " TEN ", ?)",
 
     [SQL_EPHEMERIS_NEXT] = "SELECT ifnull(max(id), 0) + 1 FROM ephemeris",
     [SQL_EPHEMERIS_BY_ID] = "SELECT " EPHEMERIS_COLUMNS " FROM ephemeris WHERE id = ?",
@@ -72,10 +74,10 @@ const char *const sql_text[SQL_COUNT] = {
     [SQL_SITE_NEXT] = "SELECT ifnull(max(id), 0) + 1 FROM site",
     [SQL_SITE_LOAD] = "SELECT id, " SITE_PLAIN ", row_crc FROM site ORDER BY name_key",
     [SQL_SITE_BY_KEY] = "SELECT id, " SITE_PLAIN ", row_crc FROM site WHERE name_key = ?",
-    [SQL_SITE_ADD] = "INSERT INTO site(id, " SITE_PLAIN ", row_crc) VALUES(" TEN ", ?)",
-    [SQL_SITE_UPDATE] = "UPDATE site SET (" SITE_PLAIN ", row_crc) = (" TEN ") WHERE id = ? AND rev = ?",
+    [SQL_SITE_ADD] = "INSERT INTO site(id, " SITE_PLAIN ", row_crc) VALUES(" TEN ", ?, ?)",
+    [SQL_SITE_UPDATE] = "UPDATE site SET (" SITE_PLAIN ", row_crc) = (" TEN ", ?) WHERE id = ? AND rev = ?",
     [SQL_SITE_KEEP_OLD] =
-	"INSERT INTO site_old(id, " SITE_PLAIN ", replaced_by, row_crc) VALUES(" TEN ", ?, ?)",
+	"INSERT INTO site_old(id, " SITE_PLAIN ", replaced_by, row_crc) VALUES(" TEN ", ?, ?, ?)",
 
     [SQL_ALL_CHANGES] = "SELECT id, utc, who, verb, rev, row_crc FROM change_set",
     [SQL_ALL_TARGETS_OLD] = "SELECT id, " TARGET_PLAIN ", replaced_by, row_crc FROM target_old",

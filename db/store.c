@@ -161,6 +161,15 @@ void store_rollback(struct store *s)
 	s->change_id = 0;
 }
 
+enum status store_data_version(struct store *s, long *version, struct err *e)
+{
+	int64_t number = 0;
+	enum status st = sql_number(s, SQL_DATA_VERSION, &number, e);
+	if (st == ST_OK)
+		*version = (long)number;
+	return st;
+}
+
 enum status store_count(struct store *s, struct store_counts *out, struct err *e)
 {
 	bool row;

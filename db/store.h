@@ -23,6 +23,10 @@ bool store_read_only(const struct store *s); /* opened for writing, but the file
 /* Random id of this store (32 hex digits), made with it. */
 const char *store_id(const struct store *s);
 
+/* A number that changes when another program has changed the file since (SQLite documentation, PRAGMA data_version); own changes leave it.
+ * Cheap: for asking again and again. */
+MUST_USE enum status store_data_version(struct store *s, long *version, struct err *e);
+
 /* A change set: all edits between begin and commit are one undoable step of one transaction (BEGIN IMMEDIATE). utc is the caller's clock,
  * `YYYY-MM-DDTHH:MM:SSZ`; who the user; verb what was done, `import`, `target set`, ... */
 struct change {

@@ -91,26 +91,39 @@ static char *immutable_uri(const char *path)
 	return uri;
 }
 
-/* Reads the two numbers that say whose file it is and how old, with no lock, no journal and no write. */
+static int64_t big_endian(const unsigned char *b)
+{
+	return (int64_t)b[0] << 24 | (int64_t)b[1] << 16 | (int64_t)b[2] << 8 | b[3];
+}
+
+/* Reads the two numbers that say whose file it is and how old, with no lock, no journal and no write: they
+ * stand in the first page, at bytes 68 and 60 (SQLite documentation, Database File Format 1.3). The bytes
+ * come through SQLite's own file, since to open and close it here would drop the locks that this program may
+ * hold on it. */
 static enum status look(const char *path, int64_t *application, int64_t *version, struct err *e)
 {
-	struct store probe = {0};
+	static const char magic[16] = "SQLite format 3";
+	unsigned char head[100] = {0};
+	sqlite3 *db = NULL;
+	sqlite3_file *file = NULL;
 	char *uri = immutable_uri(path);
 	if (!uri)
 		return err_set(e, ST_MEMORY, "database: no memory");
-	int rc = sqlite3_open_v2(uri, &probe.db, SQLITE_OPEN_READONLY | SQLITE_OPEN_URI | SQLITE_OPEN_NOMUTEX,
-				 NULL);
+	int rc =
+	    sqlite3_open_v2(uri, &db, SQLITE_OPEN_READONLY | SQLITE_OPEN_URI | SQLITE_OPEN_NOMUTEX, NULL);
 	free(uri);
-	enum status st = rc == SQLITE_OK ? ST_OK : err_set(e, ST_STORE, "%s: %s", path, sqlite3_errstr(rc));
-	struct err why = {0};
-	if (st == ST_OK)
-		st = ask(&probe, "PRAGMA application_id", application, NULL, 0, &why);
-	if (st == ST_OK)
-		st = ask(&probe, "PRAGMA user_version", version, NULL, 0, &why);
-	if (st != ST_OK && why.status != ST_OK)
-		st = err_set(e, ST_STORE, "%s: not a wane database (%s)", path, sqlite3_errmsg(probe.db));
-	(void)sqlite3_close(probe.db);
-	return st;
+	if (rc == SQLITE_OK)
+		rc = sqlite3_file_control(db, "main", SQLITE_FCNTL_FILE_POINTER, &file);
+	if (rc == SQLITE_OK && file && file->pMethods)
+		rc = file->pMethods->xRead(file, head, (int)sizeof head, 0);
+	(void)sqlite3_close(db);
+	if (rc != SQLITE_OK && rc != SQLITE_IOERR_SHORT_READ)
+		return err_set(e, ST_STORE, "%s: %s", path, sqlite3_errstr(rc));
+	if (rc != SQLITE_OK || memcmp(head, magic, sizeof magic) != 0)
+		return err_set(e, ST_STORE, "%s: not a wane database, nor any other", path);
+	*version = big_endian(head + 60);
+	*application = big_endian(head + 68);
+	return ST_OK;
 }
 
 static enum status accept_versions(const char *path, int64_t application, int64_t version, struct err *e)
@@ -264,6 +277,17 @@ static bool folder_can_be_written(const char *path)
 	return access(folder, W_OK) == 0;
 }
 
+/* A file whose making was cut short may have been undone to nothing just now, by SQLite, from its journal. */
+static enum status look_inside(struct store *s, bool *empty, struct err *e)
+{
+	int64_t version = 0, objects = 0;
+	enum status st = ask(s, "PRAGMA user_version", &version, NULL, 0, e);
+	if (st == ST_OK)
+		st = ask(s, "SELECT count(*) FROM sqlite_schema", &objects, NULL, 0, e);
+	*empty = version == 0 && objects == 0;
+	return st;
+}
+
 /* path: an existing regular file, all symbolic links resolved. */
 static enum status open_file(struct store *s, const char *path, bool empty, struct err *e)
 {
@@ -279,6 +303,10 @@ static enum status open_file(struct store *s, const char *path, bool empty, stru
 	st = s->mode == STORE_READ
 		 ? open_reader(s, path, e)
 		 : open_connection(s, path, SQLITE_OPEN_READWRITE | SQLITE_OPEN_NOFOLLOW, e);
+	if (st == ST_OK)
+		st = look_inside(s, &empty, e);
+	if (st == ST_OK && empty && s->mode == STORE_READ)
+		return err_set(e, ST_ABSENT, "%s: no database there yet", path);
 	if (st == ST_OK && s->mode == STORE_WRITE) {
 		s->read_only = sqlite3_db_readonly(s->db, "main") == 1 || !folder_can_be_written(path);
 		if (!s->read_only)

@@ -209,10 +209,10 @@ static enum status settle(struct loading *l, struct err *e)
 	if (!keep_text(l, l->bad, &bad))
 		return err_set(e, ST_MEMORY, "database: no memory");
 	struct target_list *out = l->out;
-	for (size_t n = 0; n < out->n; n++)
+	for (size_t n = 0; l->place && n < out->n; n++)
 		for (int i = 0; i < TARGET_TEXTS; i++)
 			*text_member(&out->t[n], i) = out->block + l->place[n][i];
-	for (size_t n = 0; n < out->n_alias; n++)
+	for (size_t n = 0; l->alias_place && n < out->n_alias; n++)
 		out->alias[n].key = out->block + l->alias_place[n];
 	out->bad = out->block + bad;
 	return ST_OK;

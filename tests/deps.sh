@@ -2,8 +2,8 @@
 # Debian packages that wane needs: `deps.sh build|tests|all` installs what is missing of them, and does nothing when all is there.
 # build: the program; tests: `make check`; all: static analysis too.
 set -u
-build="gcc make libc6-dev libncurses-dev libnova-dev libsqlite3-dev"
-tests="libcmocka-dev liberfa-dev clang libclang-rt-dev tmux tzdata"
+build="gcc make libc6-dev libncurses-dev libnova-dev libsqlite3-dev tzdata"
+tests="libcmocka-dev liberfa-dev clang libclang-rt-dev locales casacore-data-jpl-de405"
 analysis="clang-tidy cppcheck valgrind"
 case "${1:-all}" in
 build) wanted=$build ;;
@@ -22,7 +22,7 @@ present_elsewhere() {
 	[ "$1" = build ] && return 0
 	printf '#include <stdarg.h>\n#include <stddef.h>\n#include <stdint.h>\n#include <setjmp.h>\n#include <cmocka.h>\n#include <erfa.h>\n' |
 		gcc -x c -fsyntax-only - 2>/dev/null || return 1
-	command -v clang >/dev/null && command -v tmux >/dev/null
+	command -v clang >/dev/null
 }
 
 if command -v dpkg-query >/dev/null 2>&1; then

@@ -5,7 +5,7 @@
 set -u
 top=$(cd "$(dirname "$0")/.." && pwd) || exit 1
 cd "$top" || exit 1
-limit_s=150 # no test may hang the run
+limit_s=${LIMIT_S:-150} # no test may hang the run
 jobs=2
 
 # --- one test: `run.sh --one RESULT PROGRAM`. RESULT gets `passed failed skipped`, RESULT.why the reasons, RESULT.log what it said.
@@ -51,6 +51,11 @@ trap 'rm -rf "$results"' EXIT
 trap 'exit 1' HUP INT TERM
 unset NO_COLOR LINES COLUMNS ESCDELAY MAKEFLAGS MFLAGS
 export LC_ALL=C.UTF-8 TZ=UTC WANE="$top/build/wane" WANE_TOP="$top"
+# a locale with a decimal comma, made here: few machines have one, and numbers must not care
+if [ ! -d build/locale/de_DE.UTF-8 ] && command -v localedef >/dev/null 2>&1; then
+	mkdir -p build/locale && localedef -i de_DE -f UTF-8 build/locale/de_DE.UTF-8 >/dev/null 2>&1
+fi
+[ ! -d build/locale/de_DE.UTF-8 ] || export LOCPATH="$top/build/locale"
 if [ -n "${WANE_DATA:-}" ] && [ ! -d "$WANE_DATA" ]; then
 	echo "DATA: no such folder: $WANE_DATA" >&2
 	exit 2
@@ -63,7 +68,7 @@ finish() {
 	read -r passed failed skipped <<-EOT
 		$(total)
 	EOT
-	why=$(cat "$results"/*.why 2>/dev/null | sort | uniq -c | awk '{ n = $1; $1 = ""; printf "%s%s%s", sep, substr($0, 2), n > 1 ? " (" n ")" : ""; sep = "; " }')
+	why=$(cat "$results"/*.why 2>/dev/null | sort | uniq -c | awk '{ n = $1; $1 = ""; printf "%s%s%s", sep, substr($0, 2), (n > 1 ? " (" n ")" : ""); sep = "; " }')
 	echo "$skipped skipped: ${why:-nothing}"
 	echo "$passed passed, $failed failed"
 	[ "$failed" = 0 ]
@@ -88,7 +93,7 @@ build() { # build NAME ARGUMENTS OF MAKE...: counts as a failure when it fails
 	name=$1
 	shift
 	echo "-- build: $name"
-	make --no-print-directory -j2 "$@" || {
+	make --no-print-directory -s -j2 "$@" || {
 		echo "0 1 0" >"$results/build.result"
 		echo "stopped after: build: $name"
 		finish
@@ -122,7 +127,8 @@ engine_state() { # a stage of its own, for its argument
 sanitized() {
 	build "clang, sanitizers" V=asan tests
 	# shellcheck disable=SC2046
-	WANE="$top/build/obj-asan/wane" stage "clang, address and undefined-behaviour sanitizers" $(programs asan unit reference property screen faults)
+	export WANE="$top/build/obj-asan/wane"
+	stage "clang, address and undefined-behaviour sanitizers" $(programs asan unit reference property screen faults)
 }
 
 # shellcheck disable=SC2046
@@ -142,11 +148,13 @@ asan) sanitized ;;
 soak)
 	build "gcc" all tests
 	jobs=1
+	export LIMIT_S=3600
 	stage "soak" tests/soak/*.sh
 	;;
 golden)
 	build "gcc" all tests
-	WANE_GOLDEN=update stage "screens, rewritten" $(programs release screen) tests/screen/*.sh
+	export WANE_GOLDEN=update
+	stage "screens, rewritten" $(programs release screen) tests/screen/*.sh
 	;;
 *)
 	echo "usage: run.sh [asan|soak|golden]" >&2

@@ -58,6 +58,10 @@ static const struct option_row rows[] = {
     {"--kind", "K", "transit, occultation or both (transit).", GROUP_COMPUTE, OPT_KINDS, AT(kinds), 0, 0},
     {"--threads", "N", "At most this many threads (season runs in one).", GROUP_COMPUTE, OPT_WHOLE,
      AT(threads), 1, 1024},
+    {"--mask", "FILE",
+     "The horizon mask of the site, lines of azimuth, altitude in degrees, in place of the stored one; "
+     "`none`: none.",
+     GROUP_COMPUTE | GROUP_SITE, OPT_TEXT, AT(mask), 0, 0},
     {"--min-chance", "P",
      "List a window when the chance of its ingress or egress reaches P (0.05 in csv and json, 0.5 in text).",
      GROUP_WINDOWS, OPT_NUMBER, AT(min_chance), 0, 1},
@@ -333,31 +337,55 @@ void options_help(FILE *to, int groups)
 	}
 }
 
-/* Edit distance of two words shorter than 64, with a swap of neighbours counted as two. */
+static size_t smaller(size_t a, size_t b)
+{
+	return a < b ? a : b;
+}
+
+/* Edit distance of two words shorter than 64; a swap of neighbours counts as one. */
 static size_t distance(const char *a, const char *b)
 {
-	size_t na = strlen(a), nb = strlen(b), row[64];
-	if (na >= 64 || nb >= 64)
-		return 64;
+	enum { ROOM = 64 };
+	size_t na = strlen(a), nb = strlen(b), rows_of[3][ROOM];
+	size_t *above = rows_of[0], *last = rows_of[1], *row = rows_of[2];
+	if (na >= ROOM || nb >= ROOM)
+		return ROOM;
 	for (size_t j = 0; j <= nb; j++)
-		row[j] = j;
+		last[j] = j;
 	for (size_t i = 1; i <= na; i++) {
-		size_t diagonal = row[0];
 		row[0] = i;
 		for (size_t j = 1; j <= nb; j++) {
-			size_t change = diagonal + (a[i - 1] != b[j - 1]);
-			diagonal = row[j];
-			size_t least = row[j] + 1 < row[j - 1] + 1 ? row[j] + 1 : row[j - 1] + 1;
-			row[j] = change < least ? change : least;
+			row[j] =
+			    smaller(last[j - 1] + (a[i - 1] != b[j - 1]), smaller(last[j], row[j - 1]) + 1);
+			if (i > 1 && j > 1 && a[i - 1] == b[j - 2] && a[i - 2] == b[j - 1])
+				row[j] = smaller(row[j], above[j - 2] + 1);
 		}
+		size_t *free_row = above;
+		above = last;
+		last = row;
+		row = free_row;
 	}
-	return row[nb];
+	return last[nb];
+}
+
+/* A word of this many letters may be two mistakes away from what was meant, or its beginning; a shorter one a
+ * single mistake. */
+enum { NEAR_LETTERS = 6 };
+
+static const char *shortest_from(const char *word, const char *const list[], size_t n)
+{
+	const char *best = NULL;
+	for (size_t i = 0; i < n; i++)
+		if (strncmp(list[i], word, strlen(word)) == 0 && (!best || strlen(list[i]) < strlen(best)))
+			best = list[i];
+	return best;
 }
 
 const char *nearest_word(const char *word, const char *const list[], size_t n)
 {
 	const char *best = NULL;
-	size_t least = strlen(word) / 3 + 1;
+	bool long_enough = strlen(word) - strspn(word, "-") >= NEAR_LETTERS;
+	size_t least = long_enough ? 2 : 1;
 	for (size_t i = 0; i < n; i++) {
 		size_t d = distance(word, list[i]);
 		if (d <= least && (!best || d < least)) {
@@ -365,5 +393,5 @@ const char *nearest_word(const char *word, const char *const list[], size_t n)
 			least = d;
 		}
 	}
-	return best;
+	return best || !long_enough ? best : shortest_from(word, list, n);
 }

@@ -25,7 +25,7 @@ enum option_group {
 
 /* Options of one call, parsed; texts borrow from argv. NULL / NAN / false / 0: not given. */
 struct options {
-	const char *db, *settings, *telescope, *format, *out, *now, *radec, *at, *from, *to, *zone;
+	const char *db, *settings, *telescope, *format, *out, *now, *radec, *at, *from, *to, *zone, *mask;
 	const char *site[OPTION_NAMES_MAX];
 	int n_sites;
 	const char *place[OPTION_NAMES_MAX];

@@ -1,6 +1,7 @@
 /* SPDX-License-Identifier: MIT */
 #include "tui/run.h"
 
+#include "db/read_mask.h"
 #include "db/text_clean.h"
 #include "ephem/siblings.h"
 #include "ephem/stars.h"
@@ -104,6 +105,8 @@ static enum status load_lists(struct run *r, struct err *e)
 	struct err why;
 	if (r->store && sites_load(r->store, &r->sites, &why) != ST_OK)
 		return worded(e, "store", &why);
+	if (r->sites.n_bad > 0)
+		diagnose("store", "%s", r->sites.bad);
 	if (r->store && !r->options->radec && targets_load(r->store, &r->targets, &why) != ST_OK)
 		return worded(e, "store", &why);
 	if (r->targets.n_bad > 0)
@@ -132,6 +135,22 @@ static enum status radec_target(struct run *r, struct err *e)
 
 /* --- site --- */
 
+/* For the site command --mask is what to store, not what to compute with. */
+static enum status open_mask(struct run *r, struct err *e)
+{
+	const char *path = r->options->mask;
+	bool unsorted = false;
+	if (!path || (r->options->n_words > 0 && strcmp(r->options->word[0], "site") == 0))
+		return ST_OK;
+	r->mask_given = true;
+	if (strcmp(path, "none") == 0)
+		return ST_OK;
+	enum status s = mask_read(path, &r->given_mask, &unsorted, e);
+	if (unsorted)
+		diagnose("mask", "the azimuths of %s do not rise from line to line; sorted", path);
+	return s;
+}
+
 static void open_zone(struct run *r)
 {
 	struct err why;
@@ -141,6 +160,18 @@ static void open_zone(struct run *r)
 		diagnose("zone", "%s; times are shown in UTC", why.text);
 }
 
+/* The mask of the chosen site is the run's own: the list that it came from is loaded again now and then. */
+static void take_mask(struct run *r, const struct mask *stored)
+{
+	const bool given = r->mask_given && r->site.id == r->mask_site_id;
+	const struct mask *mask = given ? &r->given_mask : stored;
+	if (mask && mask != &r->site_mask)
+		r->site_mask = *mask;
+	else if (!mask)
+		r->site_mask.n = 0;
+	r->site.mask = r->site_mask.n > 0 ? &r->site_mask : NULL;
+}
+
 static void take_site(struct run *r, const struct site *site)
 {
 	r->site = *site;
@@ -148,6 +179,10 @@ static void take_site(struct run *r, const struct site *site)
 	snprintf(r->site_zone, sizeof r->site_zone, "%s", site->zone);
 	r->site.name = r->site_name;
 	r->site.zone = r->site_zone;
+	if (r->mask_given && !r->mask_taken)
+		r->mask_site_id = site->id;
+	r->mask_taken = r->mask_given;
+	take_mask(r, site->mask);
 	open_zone(r);
 }
 
@@ -242,8 +277,13 @@ enum status run_all_sites(struct run *r, struct site out[], size_t *n, struct er
 		if (s == ST_OK)
 			out[(*n)++] = r->sites.site[index];
 	}
-	if (s == ST_OK && *n == 0)
-		out[(*n)++] = r->site;
+	if (s == ST_OK && *n > 1 && r->mask_given)
+		return err_set(e, ST_RANGE, "--mask: a horizon mask belongs to one site, and %zu are given",
+			       *n);
+	if (s == ST_OK && *n <= 1) {
+		*n = 1;
+		out[0] = r->site;
+	}
 	return s;
 }
 
@@ -355,6 +395,8 @@ static enum status open_steps(struct run *r, int needs, int *code, struct err *e
 		s = radec_target(r, e);
 		*code = s == ST_OK || s == ST_MEMORY ? 1 : 2;
 	}
+	if (s == ST_OK)
+		s = open_mask(r, e);
 	if (s == ST_OK) {
 		s = choose_site(r, needs, e);
 		*code = s == ST_ABSENT ? 1 : 2;

@@ -30,6 +30,11 @@ struct run {
 	struct target_list targets; /* all that are stored, or the one of --radec */
 	struct site site;           /* the chosen one; name "" when none could be chosen. Its texts are the two below */
 	char site_name[NAME_BYTES_MAX], site_zone[256];
+	struct mask site_mask;      /* that of the chosen site; n 0: none */
+	struct mask given_mask;     /* of --mask */
+	bool mask_given;            /* --mask stands for the stored mask of the site chosen first, mask_site_id (0: a place) */
+	bool mask_taken;
+	int64_t mask_site_id;
 	struct zone *zone;          /* of the chosen site; NULL: unknown, UTC is shown */
 	uint32_t *star;             /* [targets.n] */
 	struct prepared *prepared;  /* [targets.n]: first those of --target, or all; the others behind them for their siblings' sake */
@@ -49,9 +54,10 @@ MUST_USE enum status run_open(struct run *r, const struct env *env, const struct
 MUST_USE enum status run_open_on(struct run *r, struct store *store, const struct env *env, const struct options *o, int needs,
 				 int *exit_code, struct err *e);
 void run_close(struct run *r);
-/* All sites of a run that may have several: each --place and --site in order, else the chosen one. *n at most OPTION_NAMES_MAX. */
+/* All sites of a run that may have several: each --place and --site in order, else the chosen one. *n at most OPTION_NAMES_MAX.
+ * ST_RANGE when --mask was given for more than one. */
 MUST_USE enum status run_all_sites(struct run *r, struct site out[], size_t *n, struct err *e);
-/* Chooses the site by its place in r->sites (site switch); reopens the zone. */
+/* Chooses the site by its place in r->sites (site switch); reopens the zone. --mask stays with the site that it was given for. */
 MUST_USE enum status run_choose_site(struct run *r, size_t index, struct err *e);
 /* Loads targets and sites again (another program changed the store, or this one did). */
 MUST_USE enum status run_reload(struct run *r, struct err *e);

@@ -72,6 +72,13 @@ check "20 kills: no torn file" test $torn = 0
 "$WANE" demo </dev/null >/dev/full 2>"$scratch/err"
 check "a full standard output: exit 1" test $? = 1
 check "and one line about it" test "$(grep -c '^wane: standard output: ' "$scratch/err")" = 1
+for command in '--version' 'night --help' 'season 2026-04-22 2026-04-23 --place 38.62,-109.36,2100 --format csv' 'target list --format json' \
+	'site list' 'check' 'sky --place 38.62,-109.36,2100'; do
+	# shellcheck disable=SC2086
+	"$WANE" $command >/dev/full 2>"$scratch/err" </dev/null
+	check "a full standard output: $command: exit 1" test $? = 1
+	check "a full standard output: $command: one line about it" test "$(grep -c 'standard output' "$scratch/err")" = 1
+done
 "$WANE" --help >/dev/full 2>"$scratch/err"
 check "--help on a full standard output: exit 1" test $? = 1
 "$WANE" demo </dev/null >&- 2>"$scratch/err"

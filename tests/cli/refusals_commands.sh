@@ -24,6 +24,8 @@ refuse() {
 refuse 2 'subcommand: unknown (got "nihgt", did you mean night' nihgt
 refuse 2 '--sun-limti: unknown option; did you mean --sun-limit?' night --sun-limti -12
 refuse 2 '--frobnicate: unknown option' night --frobnicate
+refuse 2 '--bogus: unknown option (see wane --help)' night --bogus
+refuse 2 '--pda: unknown option; did you mean --pad?' night --pda 2
 refuse 2 '--from: unknown option of night' night --from JD_UTC
 refuse 2 '--pad: unknown option of import' import x.csv --pad 2
 refuse 2 'an argument too many (got "2026-04-23"' night 2026-04-22 2026-04-23 --site 'Tern Hill'
@@ -106,6 +108,13 @@ refuse 1 'terminal: standard input and output must be a terminal'
 "$WANE" sky "$(printf 'a\033[31mb\007')" --site 'Tern Hill' --db "$db" >"$scratch/out" 2>"$scratch/err"
 check "no control character reaches the terminal" sh -c '! LC_ALL=C grep -q "[[:cntrl:]]" "$1"' - "$scratch/err"
 check "it is shown as what it is" grep -qF '\x1b' "$scratch/err"
+
+# --- a site of which a byte was changed by another hand is left out, and said: it may be another place
+cp "$db" "$scratch/bad.db"
+LC_ALL=C sed -i 's|America/Santiago|America/Sxntiago|' "$scratch/bad.db"
+"$WANE" site list --db "$scratch/bad.db" >"$scratch/out" 2>"$scratch/err"
+check "a damaged site is named" grep -q '^wane: store: the checksum of site Tern South is wrong: left out' "$scratch/err"
+check "the others are listed" test "$(cut -d: -f1 "$scratch/out")" = 'Tern Hill'
 
 # --- the settings file: file, line, column, key
 settings() {

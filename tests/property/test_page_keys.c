@@ -22,8 +22,10 @@ static void check_state(const struct page_driver *d)
 {
 	const struct night_page *p = d->page;
 	assert_true(p->selected < p->rows.n || (p->rows.n == 0 && p->selected == 0));
-	assert_true(p->top <= p->selected);
-	assert_true(p->selected < p->top + (size_t)night_list_rows(p));
+	if (p->mode == MODE_LIST) {
+		assert_true(p->top <= p->selected);
+		assert_true(p->selected < p->top + (size_t)p->shape.list);
+	}
 	assert_true(d->grid.cursor_row >= 0 && d->grid.cursor_row < d->grid.rows);
 	assert_true(d->grid.cursor_col >= 0 && d->grid.cursor_col < d->grid.cols);
 	for (int row = 0; row < d->grid.rows; row++)

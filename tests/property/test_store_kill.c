@@ -5,6 +5,7 @@
 #include "db/targets.h"
 
 #include <signal.h>
+#include <stdbool.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
@@ -12,7 +13,7 @@
 #include <time.h>
 #include <unistd.h>
 
-enum { KILLS = 40, ROWS_EACH = 5 };
+enum { KILLS = 80, ROWS_EACH = 5 };
 
 static const struct change change = {"2026-04-22T03:00:00Z", "test", "import"};
 
@@ -53,6 +54,16 @@ static void say_fault(void *ctx, const char *line)
 	print_message("%s\n", line);
 }
 
+static long made_anew(const char *path)
+{
+	struct store *s;
+	struct err e = {0};
+	if (store_open(path, STORE_WRITE, &s, &e) != ST_OK)
+		check_fail("after a kill, to make it: %s", e.text);
+	store_close(s);
+	return 0;
+}
+
 static long look(const char *path)
 {
 	struct store *s;
@@ -62,7 +73,7 @@ static long look(const char *path)
 	int faults;
 	enum status st = store_open(path, STORE_READ, &s, &e);
 	if (st == ST_ABSENT)
-		return 0; /* killed before there was a schema */
+		return made_anew(path); /* killed before there was a schema */
 	if (st != ST_OK)
 		check_fail("after a kill: %s", e.text);
 	assert_int_equal(store_check(s, say_fault, NULL, &faults, &e), ST_OK);
@@ -74,6 +85,10 @@ static long look(const char *path)
 	target_list_free(&list);
 	assert_int_equal(counts.targets, ROWS_EACH * counts.changes); /* whole change sets only */
 	assert_int_equal(counts.ephemerides, counts.targets);
+	store_close(s);
+	/* a writer finds its way too */
+	if (store_open(path, STORE_WRITE, &s, &e) != ST_OK)
+		check_fail("after a kill, to write: %s", e.text);
 	store_close(s);
 	return counts.changes;
 }
@@ -89,7 +104,14 @@ static void test_kill(void **state)
 	snprintf(path, sizeof path, "%s/wane.db", folder);
 	snprintf(journal, sizeof journal, "%s-journal", path);
 	for (int turn = 0; turn < KILLS; turn++) {
+		/* the first turns are killed while the file itself is being made, and begin anew */
+		bool making = turn < KILLS / 2;
 		int pipes[2], end;
+		if (making) {
+			unlink(journal);
+			unlink(path);
+			acknowledged = 0;
+		}
 		assert_int_equal(pipe(pipes), 0);
 		pid_t pid = fork();
 		assert_true(pid >= 0);
@@ -98,7 +120,7 @@ static void test_kill(void **state)
 			write_on(path, 1000 * turn, pipes[1]);
 		}
 		close(pipes[1]);
-		const struct timespec wait = {0, (long)rng_between(&r, 2e6, 1.2e8)};
+		const struct timespec wait = {0, (long)rng_between(&r, 1e6, making ? 2e7 : 1.2e8)};
 		nanosleep(&wait, NULL);
 		assert_int_equal(kill(pid, SIGKILL), 0);
 		assert_int_equal(waitpid(pid, &end, 0), pid);

@@ -68,7 +68,8 @@ static void test_names(void **state)
 						       "airmass_limit",
 						       "moon_limit_deg",
 						       "baseline_before_min",
-						       "baseline_after_min"};
+						       "baseline_after_min",
+						       "ecosw_err"};
 	static const struct {
 		int at;
 		const char *name;
@@ -186,6 +187,11 @@ static void test_values(void **state)
 	    {"plx_mas", "-0.3", ST_OK, true, 0},
 	    {"pos_epoch_yr", "2016", ST_OK, false, 2016},
 	    {"pos_epoch_yr", "16", ST_OK, true, 0},
+	    {"ecosw_err", "0.0007", ST_OK, false, 0.0007},
+	    {"ecosw_err", "0", ST_OK, false, 0},
+	    {"ecosw_err", "1.01", ST_OK, true, 0},
+	    {"ecosw_err", "-0.001", ST_OK, true, 0},
+	    {"ecosw_err", "small", ST_OK, true, 0},
 	    {"priority", "0", ST_OK, true, 0},
 	    {"priority", "2.5", ST_OK, false, 2.5},
 	    {"sun_limit_deg", "-18", ST_OK, false, -18},
@@ -329,8 +335,46 @@ static void test_pairs(void **state)
 			check_fail("%s: doubts %llx", rows[i].what, (unsigned long long)doubts);
 		if (rows[i].doubt) {
 			assert_true(isnan(t.inc_deg));
-			assert_non_null(strstr(field_doubt(FIELD_AT_INC, rows[i].inc, NULL), "1 + k"));
+			const char *beside = NULL;
+			assert_non_null(strstr(field_doubt(FIELD_AT_INC, rows[i].inc, &beside), "1 + k"));
+			assert_string_equal(beside, "an inclination with which the planet crosses the star");
 		}
+	}
+}
+
+/* Each of the others that don't fit says what would. */
+static void test_what_would_fit(void **state)
+{
+	static const struct {
+		const char *field, *text, *other, *other_text, *expected;
+	} rows[] = {
+	    {"t0_err_d", "4", "note", "", "an error of at most period_d"},
+	    {"period_err_d", "4", "note", "", "an error of at most period_d"},
+	    {"dpde_d", "-0.9", "period_d", "0.8", "a change below period_d, of either sign"},
+	    {"duration_h", "84", "note", "", "a duration below period_d"},
+	    {"duration_err_h", "3", "duration_h", "2", "an error of at most duration_h"},
+	    {"t0_period_cov_d2", "1", "t0_err_d", "0.1",
+	     "at most t0_err_d times period_err_d, of either sign"},
+	};
+	(void)state;
+	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
+		struct field_texts texts = good_row();
+		struct target t;
+		struct err e;
+		uint64_t doubts;
+		int bad_field, f = field_find(rows[i].field);
+		const char *beside = NULL;
+		texts.text[FIELD_AT_PERIOD_ERR] = "0.1";
+		texts.text[field_find(rows[i].other)] = rows[i].other_text;
+		texts.text[f] = rows[i].text;
+		assert_int_equal(fields_read(&texts, &t, &doubts, &bad_field, &e), ST_OK);
+		if (doubts != UINT64_C(1) << f)
+			check_fail("%s: doubts %llx", rows[i].field, (unsigned long long)doubts);
+		(void)field_doubt(f, rows[i].text, &beside);
+		assert_non_null(beside);
+		assert_string_equal(beside, rows[i].expected);
+		(void)field_doubt(f, "soon", &beside); /* bad by itself: the range is what is expected */
+		assert_null(beside);
 	}
 }
 
@@ -434,10 +478,15 @@ static void test_ranges_and_schema(void **state)
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
-	    cmocka_unit_test(test_names),      cmocka_unit_test(test_values),
-	    cmocka_unit_test(test_scales),     cmocka_unit_test(test_names_refused),
-	    cmocka_unit_test(test_pairs),      cmocka_unit_test(test_covariance),
-	    cmocka_unit_test(test_field_text), cmocka_unit_test(test_ranges_and_schema),
+	    cmocka_unit_test(test_names),
+	    cmocka_unit_test(test_values),
+	    cmocka_unit_test(test_scales),
+	    cmocka_unit_test(test_names_refused),
+	    cmocka_unit_test(test_pairs),
+	    cmocka_unit_test(test_covariance),
+	    cmocka_unit_test(test_what_would_fit),
+	    cmocka_unit_test(test_field_text),
+	    cmocka_unit_test(test_ranges_and_schema),
 	};
 	return cmocka_run_group_tests_name("fields", tests, NULL, NULL);
 }

@@ -69,6 +69,32 @@ static long targets_in(struct store *s)
 
 #define HEAD "name,ra_deg,dec_deg,t0_jd,time_scale,period_d\n"
 
+/* --- a doubt beside other values says what would fit them --- */
+
+static void test_doubt_expects(void **state)
+{
+	(void)state;
+	struct store *s = memory_store();
+	struct import_report report;
+	struct said said;
+	struct err e;
+	assert_int_equal(
+	    import(s, "name,ra_deg,dec_deg,k,a_rs,inc_deg,ecosw_err\nTern 1 b,10,20,0.1,10,71.62,\n",
+		   (struct import_options){0}, &report, &said, &e),
+	    ST_OK);
+	assert_string_equal(said.places, "2:23:inc_degW");
+	assert_string_equal(said.last,
+			    "kept without effect: an impact parameter above 1 + k: no transit|71.62|"
+			    "an inclination with which the planet crosses the star");
+	assert_int_equal(import(s,
+				"name,ra_deg,dec_deg,k,a_rs,inc_deg,ecosw_err\nTern 2 b,10,20,0.1,10,181,2\n",
+				(struct import_options){0}, &report, &said, &e),
+			 ST_OK);
+	assert_string_equal(said.places, "2:23:inc_degW 2:27:ecosw_errW");
+	assert_string_equal(said.last, "kept without effect: out of range|2|a number 0..1");
+	store_close(s);
+}
+
 /* --- rows that are refused, one at a time, with the place of the fault --- */
 
 static void test_bad_rows(void **state)
@@ -738,6 +764,7 @@ static void test_prefixes(void **state)
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
+	    cmocka_unit_test(test_doubt_expects),
 	    cmocka_unit_test(test_bad_rows),
 	    cmocka_unit_test(test_bad_files),
 	    cmocka_unit_test(test_doubts),

@@ -24,8 +24,9 @@ static void linear_between_knots(void **state)
 	/* by hand: two-point form; over north 330 (18) to 10 (12) */
 	const struct {
 		double az, alt;
-	} row[] = {{10, 12},   {45, 18.5}, {80, 25}, {140, 17.5},   {200, 10}, {265, 14},	 {330, 18}, {340, 16.5},
-		   {0, 13.5},  {360, 13.5}, {5, 12.75}, {359.999, 13.50015}, {-20, 16.5}, {725, 12.75}};
+	} row[] = {{10, 12},   {45, 18.5},	    {80, 25},	 {140, 17.5}, {200, 10},
+		   {265, 14},  {330, 18},	    {340, 16.5}, {0, 13.5},   {360, 13.5},
+		   {5, 12.75}, {359.999, 13.50015}, {-20, 16.5}, {725, 12.75}};
 	for (size_t i = 0; i < sizeof row / sizeof *row; i++)
 		check_close("mask", mask_at(&m, row[i].az), row[i].alt, 1e-9);
 }
@@ -60,9 +61,9 @@ static void refusals(void **state)
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
-		cmocka_unit_test(linear_between_knots),
-		cmocka_unit_test(few_knots),
-		cmocka_unit_test(refusals),
+	    cmocka_unit_test(linear_between_knots),
+	    cmocka_unit_test(few_knots),
+	    cmocka_unit_test(refusals),
 	};
 	return cmocka_run_group_tests_name("horizon mask", tests, NULL, NULL);
 }

@@ -165,9 +165,22 @@ static void nearest_words(void **state)
 {
 	(void)state;
 	static const char *const list[] = {"night", "season", "sky"};
+	static const char *const options[] = {"--out", "--db", "--pad", "--sun-limit"};
 	assert_string_equal(nearest_word("nigth", list, 3), "night");
 	assert_string_equal(nearest_word("seasons", list, 3), "season");
 	assert_null(nearest_word("telescope", list, 3));
+	/* one mistake in a short word, two in a long one; neighbours that were swapped are one */
+	assert_null(nearest_word("--bogus", options, 4));
+	assert_null(nearest_word("--x", options, 4));
+	assert_string_equal(nearest_word("--uot", options, 4), "--out");
+	assert_string_equal(nearest_word("--pda", options, 4), "--pad");
+	assert_null(nearest_word("--pxx", options, 4));
+	assert_string_equal(nearest_word("--sunlimti", options, 4), "--sun-limit");
+	assert_null(nearest_word("--moonlimti", options, 4));
+	assert_null(nearest_word("", list, 3));
+	/* a beginning */
+	assert_string_equal(nearest_word("--sun-li", options, 4), "--sun-limit");
+	assert_null(nearest_word("--sun", options, 4));
 }
 
 int main(void)

@@ -22,10 +22,11 @@ struct sky_of_four {
 
 static const uint32_t stars[PLANETS] = {0, 0, 0, 1};
 
-static struct sky_of_four *build(void)
+/* d_after_h: when d transits; NAN: nobody knows. */
+static struct sky_of_four *build_with(double d_after_h, int kinds)
 {
 	static const char *const names[PLANETS] = {"Tern 1 b", "Tern 1 c", "Tern 1 d", "Tern 2 b"};
-	static const double after_h[PLANETS] = {0.0, 1.0, 8.0, 0.0};
+	const double after_h[PLANETS] = {0.0, 1.0, d_after_h, 0.0};
 	struct sky_of_four *s = calloc(1, sizeof *s);
 	struct err e;
 	assert_non_null(s);
@@ -42,8 +43,8 @@ static struct sky_of_four *build(void)
 		t->ra_deg = i == 3 ? 190.0 : 180.0;
 		t->dec_deg = 80.0;
 		assert_int_equal(standard_parse("BJD_TDB", &t->standard, &e), ST_OK);
-		t->t0 =
-		    (struct jd2){2461153.5, 0.2 + after_h[i] / 24.0}; /* 2026-04-23, 4.8 h UTC and later */
+		if (!isnan(after_h[i])) /* 2026-04-23, 4.8 h UTC and later */
+			t->t0 = (struct jd2){2461153.5, 0.2 + after_h[i] / 24.0};
 		t->t0_err_d = 1e-4;
 		t->period_d = 20.0;
 		t->period_err_d = 1e-7;
@@ -55,9 +56,15 @@ static struct sky_of_four *build(void)
 		check_fail("%s", e.text);
 	if (night_build(&s->night, &s->site, &s->clock, EVENING_MJD, s->memo, &e) != ST_OK)
 		check_fail("%s", e.text);
-	const struct window_choice choice = {.kinds = KINDS_TRANSIT, .all = true};
+	const struct window_choice choice = {.kinds = kinds, .all = true};
 	if (night_windows(&s->night, s->prepared, PLANETS, &choice, &s->list, NULL, &e) != ST_OK)
 		check_fail("%s", e.text);
+	return s;
+}
+
+static struct sky_of_four *build(void)
+{
+	struct sky_of_four *s = build_with(8.0, KINDS_TRANSIT);
 	assert_int_equal(s->list.n, PLANETS);
 	return s;
 }
@@ -111,11 +118,57 @@ static void only_those_that_transit_meanwhile_are_named(void **state)
 	drop(s);
 }
 
+static bool flagged(const struct window *w, int flag)
+{
+	return (w->event.flags & FLAG_BIT(flag)) != 0;
+}
+
+/* d transits 238.5 h before b; half its period of 20 d later, 1.5 h after b's transit, it stands behind the
+ * star. */
+static void an_occultation_of_a_sibling_does_not_count(void **state)
+{
+	(void)state;
+	struct sky_of_four *s = build_with(-238.5, KINDS_BOTH);
+	assert_int_equal(s->list.n, PLANETS);
+	const struct window *b = window_of(s, 0), *d = window_of(s, 2);
+	assert_int_equal(b->event.kind, KIND_TRANSIT);
+	assert_int_equal(d->event.kind, KIND_OCCULTATION);
+	assert_int_equal(b->n_siblings, 1);
+	assert_ptr_equal(b->sibling[0], &s->prepared[1]);
+	/* while transits of b and c spoil the window of that occultation */
+	assert_int_equal(d->n_siblings, 2);
+	assert_true(flagged(d, FLAG_SIBLING_IN_WINDOW));
+	drop(s);
+}
+
+static void a_sibling_without_an_ephemeris_is_said(void **state)
+{
+	(void)state;
+	struct sky_of_four *s = build_with((double)NAN, KINDS_TRANSIT);
+	assert_int_equal(s->list.n, PLANETS - 1);
+	for (int planet = 0; planet < 2; planet++) {
+		const struct window *w = window_of(s, planet);
+		assert_true(flagged(w, FLAG_SIBLINGS_UNKNOWN));
+		assert_int_equal(w->n_siblings, 1); /* the other one is named all the same */
+		assert_ptr_equal(w->sibling[0], &s->prepared[1 - planet]);
+		assert_true(flagged(w, FLAG_SIBLING_IN_WINDOW));
+	}
+	assert_false(flagged(window_of(s, 3), FLAG_SIBLINGS_UNKNOWN)); /* another star */
+	assert_string_equal(flag_rules[FLAG_SIBLINGS_UNKNOWN].word, "siblings_unknown");
+	drop(s);
+	s = build();
+	for (int planet = 0; planet < PLANETS; planet++)
+		assert_false(flagged(window_of(s, planet), FLAG_SIBLINGS_UNKNOWN));
+	drop(s);
+}
+
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
 	    cmocka_unit_test(planets_of_a_star_form_a_ring),
 	    cmocka_unit_test(only_those_that_transit_meanwhile_are_named),
+	    cmocka_unit_test(an_occultation_of_a_sibling_does_not_count),
+	    cmocka_unit_test(a_sibling_without_an_ephemeris_is_said),
 	};
 	return cmocka_run_group_tests_name("siblings", tests, NULL, NULL);
 }

@@ -17,9 +17,9 @@ static void one_star_one_number(void **state)
 {
 	(void)state;
 	const struct target t[] = {
-		named("Tern 14 b", 10.0, 20.0), named("Tern 1 b", 50.0, 20.0), named("Tern 14 c", 10.0, 20.001),
-		named("Tern 14", 80.0, 0.0),	named("Tern 2c", 90.0, 5.0),   named("Tern 2b", 90.0, 5.5),
-		named("Tern 14 b b", 10.0, 0.0), named("b", 0.0, 0.0),
+	    named("Tern 14 b", 10.0, 20.0),  named("Tern 1 b", 50.0, 20.0), named("Tern 14 c", 10.0, 20.001),
+	    named("Tern 14", 80.0, 0.0),     named("Tern 2c", 90.0, 5.0),   named("Tern 2b", 90.0, 5.5),
+	    named("Tern 14 b b", 10.0, 0.0), named("b", 0.0, 0.0),
 	};
 	enum { N = sizeof t / sizeof *t };
 	uint32_t star[N];
@@ -31,7 +31,8 @@ static void one_star_one_number(void **state)
 	assert_int_not_equal(star[0], star[1]);
 	assert_int_not_equal(star[0], star[6]);
 	assert_int_not_equal(star[7], star[1]);
-	/* 3.6 arcsec is rounding, half a degree is not; both of a pair are doubtful, since nobody can say which is right */
+	/* 3.6 arcsec is rounding, half a degree is not; both of a pair are doubtful, since nobody can say
+	 * which is right */
 	assert_true(doubtful[4] && doubtful[5] && doubtful[0] && doubtful[3]);
 	assert_false(doubtful[1]);
 	struct target near[] = {t[0], t[2]};

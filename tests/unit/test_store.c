@@ -474,7 +474,7 @@ static void test_guards(void **state)
 	    {"UPDATE target SET removed = 2", SQLITE_CONSTRAINT},
 	    {"UPDATE target SET ephemeris_id = 77", SQLITE_CONSTRAINT},
 	    {"INSERT INTO target_alias VALUES(1, 'x', 'x', 77, 0, 1, 1, 0)", SQLITE_CONSTRAINT},
-	    {"INSERT INTO site VALUES(1, 'x', 'x', 91, 0, 0, '', 0, 1, 1, 0)", SQLITE_CONSTRAINT},
+	    {"INSERT INTO site VALUES(1, 'x', 'x', 91, 0, 0, '', '', 0, 1, 1, 0)", SQLITE_CONSTRAINT},
 	    {"INSERT INTO store_info VALUES(2, '0123456789abcdef0123456789abcdef', 1, 0)", SQLITE_CONSTRAINT},
 	    {"UPDATE target SET note = ''", SQLITE_OK}, /* the guards let through what is allowed */
 	};
@@ -818,9 +818,111 @@ static void test_sites(void **state)
 	must(site_put(s, &site, true, &e), &e); /* comes back */
 	commit(s);
 	sql(s, "UPDATE site SET lat_deg = 39", SQLITE_OK);
-	assert_int_equal(sites_load(s, &list, &e), ST_STORE);
-	assert_non_null(strstr(e.text, "checksum"));
+	must(sites_load(s, &list, &e), &e);
+	/* both rows carry another latitude than their checksum now: the one in use and the one that was
+	 * removed */
+	assert_int_equal(list.n, 0);
+	assert_int_equal(list.n_bad, 2);
+	assert_non_null(strstr(list.bad, "checksum of site Arm"));
+	site_list_free(&list);
 	store_close(s);
+}
+
+/* --- horizon masks --- */
+
+static struct mask mask_of(size_t n)
+{
+	struct mask m = {.n = 0};
+	struct err e = {0};
+	for (size_t i = 0; i < n; i++)
+		must(mask_add(&m, 360.0 * (double)i / (double)n, 10.0 * sin((double)i), &e), &e);
+	return m;
+}
+
+static void check_mask(struct store *s, const char *name, const struct mask *want)
+{
+	struct site_list list;
+	struct err e = {0};
+	must(sites_load(s, &list, &e), &e);
+	long at = site_list_find(&list, name);
+	assert_true(at >= 0);
+	const struct mask *got = list.site[at].mask;
+	assert_int_equal(got ? got->n : 0, want->n);
+	for (size_t i = 0; i < want->n; i++) {
+		check_close("azimuth", got->knot[i].az_deg, want->knot[i].az_deg, 0.0);
+		check_close("altitude", got->knot[i].alt_deg, want->knot[i].alt_deg, 0.0);
+	}
+	site_list_free(&list);
+}
+
+static void test_site_masks(void **state)
+{
+	(void)state;
+	struct store *s = open_or_fail(NULL, STORE_MEMORY);
+	struct err e = {0};
+	char says[4096];
+	const struct mask three = mask_of(3), full = mask_of(MASK_KNOTS_MAX), none = {.n = 0};
+	struct site hill = {.name = "Tern Hill", .lat_deg = 38.62, .lon_east_deg = -109.36, .zone = ""},
+		    south = {.name = "Arm", .lat_deg = -30, .lon_east_deg = -70, .zone = "", .mask = &full};
+	begin(s);
+	hill.mask = &three;
+	must(site_put(s, &hill, true, &e), &e);
+	must(site_put(s, &south, true, &e), &e);
+	commit(s);
+	check_mask(s, "Tern Hill", &three);
+	check_mask(s, "Arm", &full);
+	begin(s);
+	hill.mask = NULL;
+	must(site_put(s, &hill, false, &e), &e);
+	commit(s);
+	check_mask(s, "Tern Hill", &none);
+	check_mask(s, "Arm", &full);
+	/* the row before is kept with its mask */
+	sqlite3_stmt *stmt = NULL;
+	assert_int_equal(sqlite3_prepare_v2(s->db, "SELECT mask FROM site_old", -1, &stmt, NULL), SQLITE_OK);
+	assert_int_equal(sqlite3_step(stmt), SQLITE_ROW);
+	assert_int_equal(strncmp((const char *)sqlite3_column_text(stmt, 0), "0 0;120 ", 8), 0);
+	sqlite3_finalize(stmt);
+	assert_int_equal(faults_of(s, says), 0);
+	/* a changed mask is a changed row */
+	sql(s, "UPDATE site SET mask = '0 10' WHERE name = 'Arm'", SQLITE_OK);
+	assert_int_equal(faults_of(s, says), 1);
+	struct site_list list;
+	must(sites_load(s, &list, &e), &e);
+	assert_int_equal(list.n, 1);
+	assert_int_equal(list.n_bad, 1);
+	site_list_free(&list);
+	sql(s, "UPDATE site SET mask = NULL", SQLITE_CONSTRAINT);
+	store_close(s);
+}
+
+/* --- has another program written? --- */
+
+static void test_data_version(void **state)
+{
+	const struct place *p = *state;
+	struct err e = {0};
+	struct store *writer = open_or_fail(p->path, STORE_WRITE),
+		     *reader = open_or_fail(p->path, STORE_READ);
+	long before = 0, after = 0, own = 0, again = 0;
+	must(store_data_version(reader, &before, &e), &e);
+	must(store_data_version(writer, &own, &e), &e);
+	put_one(writer);
+	must(store_data_version(reader, &after, &e), &e);
+	assert_true(after != before);
+	must(store_data_version(reader, &again, &e), &e);
+	assert_int_equal(again, after);
+	must(store_data_version(writer, &again, &e), &e);
+	assert_int_equal(again, own);
+	/* what is given up is no change */
+	begin(writer);
+	const struct field_texts other = row_of("Tern 15 b", "", "");
+	assert_int_equal(put(writer, &other, false), PUT_NEW);
+	store_rollback(writer);
+	must(store_data_version(reader, &again, &e), &e);
+	assert_int_equal(again, after);
+	store_close(reader);
+	store_close(writer);
 }
 
 static void test_site_faults(void **state)
@@ -890,6 +992,8 @@ int main(void)
 	    cmocka_unit_test(test_wrong_pointer),
 	    IN_PLACE(test_flipped_bits),
 	    cmocka_unit_test(test_sites),
+	    cmocka_unit_test(test_site_masks),
+	    IN_PLACE(test_data_version),
 	    cmocka_unit_test(test_site_faults),
 	};
 	return cmocka_run_group_tests_name("store", tests, NULL, NULL);

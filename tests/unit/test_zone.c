@@ -588,6 +588,43 @@ static void test_short_forms(void **state)
 	assert_int_equal(zone_open(s->dir, "Zone", &z, NULL), ST_SYNTAX);
 }
 
+/* Tables that no compiler of zones writes: two changes at one instant, a change to a kind that is not there,
+ * leap seconds counted. */
+static void test_impossible_tables(void **state)
+{
+	struct scratch *s = *state;
+	static const struct {
+		unsigned char at, value;
+		enum status status;
+	} rows[] = {
+	    {0, 'T', ST_OK},	   /* as it is below */
+	    {51, 1, ST_SYNTAX},	   /* the second change as late as the first */
+	    {48, 0xFF, ST_SYNTAX}, /* the second change before the first */
+	    {53, 2, ST_SYNTAX},	   /* of two kinds the third */
+	    {31, 1, ST_SYNTAX},	   /* one leap second */
+	    {39, 0, ST_SYNTAX},	   /* no kind of local time */
+	    {54, 0x7F, ST_SYNTAX}, /* an offset of years */
+	    {58, 2, ST_SYNTAX},	   /* neither standard nor daylight time */
+	    {59, 4, ST_SYNTAX},	   /* an abbreviation behind the end */
+	    {69, 'A', ST_SYNTAX},  /* one without an end */
+	};
+	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
+		unsigned char bytes[128] = "TZif";
+		bytes[35] = 2; /* two changes, */
+		bytes[39] = 2; /* two kinds, */
+		bytes[43] = 4; /* four bytes of abbreviations */
+		memcpy(bytes + 44, "\0\0\0\1\0\0\0\2\0\1", 10);
+		memcpy(bytes + 54, "\0\0\0\0\0\0\0\0\x0E\x10\1\0UTC\0", 16);
+		bytes[rows[i].at] = rows[i].value;
+		scratch_write(s, bytes, 70 + 8); /* room for what a leap second would take */
+		struct zone *z = NULL;
+		enum status status = zone_open(s->dir, "Zone", &z, NULL);
+		if (status != rows[i].status)
+			check_fail("row %zu: status %d, %d expected", i, status, rows[i].status);
+		zone_close(z);
+	}
+}
+
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
@@ -603,6 +640,7 @@ int main(void)
 	    cmocka_unit_test_setup_teardown(test_truncated, scratch_open, scratch_close),
 	    cmocka_unit_test_setup_teardown(test_damaged, scratch_open, scratch_close),
 	    cmocka_unit_test_setup_teardown(test_short_forms, scratch_open, scratch_close),
+	    cmocka_unit_test_setup_teardown(test_impossible_tables, scratch_open, scratch_close),
 	};
 	return cmocka_run_group_tests_name("zone", tests, NULL, NULL);
 }

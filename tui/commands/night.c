@@ -40,7 +40,7 @@ static void write_json(FILE *to, const struct run *r, const struct night_view *v
 	struct json j = json_begin(to);
 	json_open(&j, NULL, '{', false);
 	site_json(&j, "site", &r->site);
-	limits_json(&j, r);
+	limits_json(&j, r, &r->site);
 	night_json(&j, v, r->limits.value[LIM_SUN]);
 	json_open(&j, "windows", '[', false);
 	for (size_t i = 0; i < v->list.n; i++)

@@ -128,7 +128,7 @@ static void begin_json(struct season *s, FILE *to, int32_t from, int32_t until)
 	for (size_t i = 0; i < s->n_sites; i++)
 		site_json(j, NULL, &s->site[i]);
 	json_close(j, ']');
-	limits_json(j, s->run);
+	limits_json(j, s->run, s->n_sites == 1 ? &s->site[0] : NULL);
 	date_json(j, "from", from);
 	date_json(j, "to", until);
 	json_open(j, "windows", '[', false);

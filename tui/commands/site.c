@@ -1,6 +1,7 @@
 /* SPDX-License-Identifier: MIT */
 #include "tui/commands/table.h"
 
+#include "db/read_mask.h"
 #include "ephem/angle_text.h"
 #include "ephem/number_text.h"
 #include "tui/diagnose.h"
@@ -18,15 +19,28 @@
 
 /* --- writing --- */
 
-static void site_line(FILE *to, const struct site *s)
+/* A line; whole: the horizon mask in full behind it, as a file of it is written. */
+static void site_text(FILE *to, const struct site *s, bool whole)
 {
 	char lat[ANGLE_TEXT_MAX], lon[ANGLE_TEXT_MAX], height[NUMBER_TEXT_MAX];
 	lat_text(s->lat_deg, 6, lat);
 	lon_text(s->lon_east_deg, 6, lon);
 	number_text(s->height_m, height);
 	text_cell(to, s->name, NAME_CHARS_MAX, false);
-	fprintf(to, ": %s, %s, %s m, zone %s\n", lat, lon, height,
+	fprintf(to, ": %s, %s, %s m, zone %s", lat, lon, height,
 		s->zone[0] ? s->zone : "not known (UTC is shown)");
+	if (s->mask)
+		fprintf(to, ", horizon mask of %zu point%s", s->mask->n, s->mask->n == 1 ? "" : "s");
+	fputc('\n', to);
+	if (!whole || !s->mask)
+		return;
+	fputs("# az_deg, alt_deg: apparent altitude of the horizon\n", to);
+	for (size_t i = 0; i < s->mask->n; i++) {
+		char az[NUMBER_TEXT_MAX], alt[NUMBER_TEXT_MAX];
+		number_text(s->mask->knot[i].az_deg, az);
+		number_text(s->mask->knot[i].alt_deg, alt);
+		fprintf(to, "%s, %s\n", az, alt);
+	}
 }
 
 static void site_cells(struct csv_out *c, const struct site *s)
@@ -66,9 +80,9 @@ static int write_sites(const struct run *r, const struct site site[], size_t n, 
 		if (format == FORMAT_CSV)
 			site_cells(&csv, &site[i]);
 		else if (format == FORMAT_JSON)
-			site_json(&json, NULL, &site[i]);
+			stored_site_json(&json, &site[i]);
 		else
-			site_line(out.file, &site[i]);
+			site_text(out.file, &site[i], !list);
 	}
 	if (format == FORMAT_JSON && list)
 		json_close(&json, ']');
@@ -115,8 +129,26 @@ static enum status put_in_store(struct run *r, const struct site *site, bool add
 	return s;
 }
 
+/* --mask: *mask is the room for what is read. */
+static int wanted_mask(const struct options *o, struct site *site, struct mask *mask)
+{
+	bool unsorted;
+	struct err e;
+	if (!o->mask)
+		return EXIT_DONE;
+	site->mask = NULL;
+	if (strcmp(o->mask, "none") == 0)
+		return EXIT_DONE;
+	if (mask_read(o->mask, mask, &unsorted, &e) != ST_OK)
+		return diagnose_whole(&e, EXIT_UNMET);
+	if (unsorted)
+		diagnose("mask", "the azimuths of %s do not rise from line to line; sorted", o->mask);
+	site->mask = mask;
+	return EXIT_DONE;
+}
+
 /* What is asked for, checked against what is stored; nothing is written yet. */
-static int wanted_site(const struct run *r, bool add, struct site *site)
+static int wanted_site(const struct run *r, bool add, struct site *site, struct mask *mask)
 {
 	const struct options *o = r->options;
 	const char *name = o->word[2];
@@ -152,18 +184,19 @@ static int wanted_site(const struct run *r, bool add, struct site *site)
 		site->zone = o->zone;
 	if (zone_exists(r, site, &e) != ST_OK)
 		return diagnose_err("--zone", &e, EXIT_UNMET);
-	return EXIT_DONE;
+	return wanted_mask(o, site, mask);
 }
 
 static int change_site(const struct env *env, const struct options *o, bool add)
 {
 	struct run read, write;
 	struct site site;
+	struct mask mask;
 	struct err e;
 	int code;
 	if (run_open(&read, env, o, NEED_STORE, &code, &e) != ST_OK)
 		return diagnose_whole(&e, code);
-	code = wanted_site(&read, add, &site);
+	code = wanted_site(&read, add, &site, &mask);
 	if (code == EXIT_DONE && run_open(&write, env, o, NEED_STORE | NEED_WRITE, &code, &e) != ST_OK) {
 		run_close(&read);
 		return diagnose_whole(&e, code);

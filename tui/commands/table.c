@@ -1,6 +1,7 @@
 /* SPDX-License-Identifier: MIT */
 #include "tui/commands/table.h"
 
+#include "db/fields.h"
 #include "tui/diagnose.h"
 #include "tui/parts/columns.h"
 #include "tui/settings.h"
@@ -40,8 +41,12 @@ const struct command commands[] = {
      "--format csv`.\n",
      0, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, OPTION_NAMES_MAX, command_target},
     {"site", "list | show NAME | add NAME | set NAME | remove NAME", "The stored sites.",
-     "add and set take --place LAT,LON,HEIGHT and --zone ZONE.\n", GROUP_SITE,
-     FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 2, command_site},
+     "add and set take --place LAT,LON,HEIGHT, --zone ZONE and --mask FILE (`none` takes the stored one "
+     "away). A mask file "
+     "has\na point a line: azimuth from north through east, apparent altitude of the horizon, in degrees, 1 "
+     "to 720 of "
+     "them; straight\nlines between. `#` begins a comment.\n",
+     GROUP_SITE, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 2, command_site},
     {"check", "", "Whether the store is sound.", NULL, 0, FORMAT_TEXT, 0, command_check},
     {"demo", "[DATE]", "An invented observatory and list in a throw-away database.",
      "On a terminal the interface opens; else the night is printed.\n", GROUP_COMPUTE | GROUP_WINDOWS,
@@ -130,6 +135,14 @@ static void columns_help(FILE *to)
 		fprintf(to, "  %-24s %s\n", flag_rules[f].word, flag_rules[f].sentence);
 }
 
+static void fields_help(FILE *to)
+{
+	fputs("\nFields of a target, columns of its table\n", to);
+	for (int f = 0; f < FIELD_COUNT; f++)
+		fprintf(to, "  %-24s %s%s%s%s\n", fields[f].name, fields[f].sentence,
+			fields[f].unit[0] ? " [" : "", fields[f].unit, fields[f].unit[0] ? "]" : "");
+}
+
 void command_help(FILE *to, const struct command *c)
 {
 	fprintf(to, "wane %s %s\n%s\n", c->name, c->arguments, c->help);
@@ -149,6 +162,8 @@ void command_help(FILE *to, const struct command *c)
 	options_help(to, GROUP_COMMON);
 	if (c->groups & GROUP_WINDOWS)
 		columns_help(to);
+	if (c->function == command_import || c->function == command_target)
+		fields_help(to);
 	fputs("\nTIME: YYYY-MM-DDTHH:MM[:SS]Z in UTC, or one argument \"2461114.708333 JD_UTC\". An option's "
 	      "value may begin "
 	      "with -.\nExit code: 0 done, 1 the request could not be met, 2 the command line is wrong.\n",

@@ -146,6 +146,13 @@ void text_head(const struct text_sheet *t, const struct site *site, const struct
 	text_limits(t);
 }
 
+/* Points of the horizon mask of the run's site; 0 without one, or where there are several sites. */
+static size_t mask_points(const struct run *r)
+{
+	const bool several = r->options->n_sites + r->options->n_places > 1;
+	return r->site.mask && !several ? r->site.mask->n : 0;
+}
+
 static void baseline_words(double min, char *out, size_t n)
 {
 	char number[NUMBER_TEXT_MAX];
@@ -173,6 +180,8 @@ void text_limits(const struct text_sheet *t)
 	baseline_words(l[LIM_BASELINE_BEFORE], before, sizeof before);
 	baseline_words(l[LIM_BASELINE_AFTER], after, sizeof after);
 	fprintf(t->to, "Limits: Sun below %s deg, target above %s deg", sun, alt);
+	if (mask_points(t->run) > 0)
+		fprintf(t->to, " and the horizon mask");
 	if (airmass[0])
 		fprintf(t->to, " and below airmass %s", airmass);
 	if (l[LIM_MOON] > 0.0)

@@ -75,9 +75,8 @@ void window_json(struct json *j, const struct window *w, const struct night *n)
 	json_close(j, '}');
 }
 
-void site_json(struct json *j, const char *key, const struct site *site)
+static void site_keys(struct json *j, const struct site *site)
 {
-	json_open(j, key, '{', true);
 	json_text(j, "name", site->name);
 	json_exact(j, "latitude_deg", site->lat_deg);
 	json_exact(j, "longitude_east_deg", site->lon_east_deg);
@@ -86,10 +85,31 @@ void site_json(struct json *j, const char *key, const struct site *site)
 		json_text(j, "zone", site->zone);
 	else
 		json_null(j, "zone");
+}
+
+void site_json(struct json *j, const char *key, const struct site *site)
+{
+	json_open(j, key, '{', true);
+	site_keys(j, site);
 	json_close(j, '}');
 }
 
-void limits_json(struct json *j, const struct run *r)
+void stored_site_json(struct json *j, const struct site *site)
+{
+	json_open(j, NULL, '{', true);
+	site_keys(j, site);
+	json_open(j, "mask", '[', true);
+	for (size_t i = 0; site->mask && i < site->mask->n; i++) {
+		json_open(j, NULL, '[', true);
+		json_exact(j, NULL, site->mask->knot[i].az_deg);
+		json_exact(j, NULL, site->mask->knot[i].alt_deg);
+		json_close(j, ']');
+	}
+	json_close(j, ']');
+	json_close(j, '}');
+}
+
+void limits_json(struct json *j, const struct run *r, const struct site *site)
 {
 	json_open(j, "limits", '{', false);
 	for (int id = 0; id < LIM_COUNT; id++) {
@@ -104,6 +124,10 @@ void limits_json(struct json *j, const struct run *r)
 	json_text(j, "kind", kinds_text(r->kinds));
 	json_exact(j, "min_chance", run_min_chance(r, false));
 	json_exact(j, "ut1_utc_s", r->clock.ut1_utc_s);
+	if (site)
+		json_whole(j, "mask_points", site->mask ? (long)site->mask->n : 0);
+	else
+		json_null(j, "mask_points");
 	json_close(j, '}');
 }
 
