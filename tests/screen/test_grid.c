@@ -152,16 +152,49 @@ static void test_glyphs(void **state)
 			char got[16], want[16];
 			grid_glyph(&g, 0, 0, (enum glyph)glyph, ROLE_TEXT);
 			grid_to_text(&g, false, got, sizeof got);
-			snprintf(want, sizeof want, "%s\n", text);
+			snprintf(want, sizeof want, "%s\n", glyph == GLYPH_BLANK ? "" : text);
 			assert_string_equal(got, want);
 			grid_close(&g);
 		}
-	/* every share of a part looks different, in every tier */
+	/* every share of a part looks different, and so does everything on one strip, in every tier */
+	for (int tier = 0; tier < TIER_COUNT; tier++)
+		for (int a = GLYPH_BLANK; a <= GLYPH_NOW; a++)
+			for (int b = a + 1; b <= GLYPH_NOW; b++)
+				assert_string_not_equal(glyph_text((enum glyph)a, (enum tier)tier),
+							glyph_text((enum glyph)b, (enum tier)tier));
 	for (int tier = 0; tier < TIER_COUNT; tier++)
 		for (int a = GLYPH_SHARE_ALL; a <= GLYPH_SHARE_NO_PART; a++)
 			for (int b = a + 1; b <= GLYPH_SHARE_NO_PART; b++)
 				assert_string_not_equal(glyph_text((enum glyph)a, (enum tier)tier),
 							glyph_text((enum glyph)b, (enum tier)tier));
+}
+
+/* 2 x 4 dots; the chart's numbering: Unicode 15.0, Braille Patterns, U+2801 dot 1 .. U+2880 dot 8, dots 1 2 3
+ * 7 at the left from above, 4 5 6 8 at the right. */
+static void test_dots(void **state)
+{
+	static const struct {
+		uint8_t dots;
+		const char *unicode, *other;
+	} rows[] = {
+	    {0x01, "\u2801", "\""}, {0x02, "\u2802", "\""}, {0x04, "\u2804", ","}, {0x08, "\u2840", ","},
+	    {0x10, "\u2808", "\""}, {0x20, "\u2810", "\""}, {0x40, "\u2820", ","}, {0x80, "\u2880", ","},
+	    {0xFF, "\u28FF", ";"},  {0x11, "\u2809", "\""}, {0x88, "\u28C0", ","}, {0x24, "\u2814", ";"},
+	    {0x00, "", ""},
+	};
+	(void)state;
+	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++)
+		for (int tier = 0; tier < TIER_COUNT; tier++) {
+			struct grid g = open_grid(1, 2, (enum tier)tier);
+			char want[8];
+			grid_dots(&g, 0, 0, rows[i].dots, ROLE_TEXT);
+			snprintf(want, sizeof want, "%s\n",
+				 tier == TIER_UNICODE ? rows[i].unicode : rows[i].other);
+			expect(&g, false, want);
+			assert_int_equal(grid_dots(&g, 1, 0, 1, ROLE_TEXT), 0);
+			assert_int_equal(grid_dots(&g, 0, 2, 1, ROLE_TEXT), 0);
+			grid_close(&g);
+		}
 }
 
 static void test_widths(void **state)
@@ -205,7 +238,7 @@ int main(void)
 	    cmocka_unit_test(test_put),	   cmocka_unit_test(test_outside),
 	    cmocka_unit_test(test_halves), cmocka_unit_test(test_right_and_roles),
 	    cmocka_unit_test(test_glyphs), cmocka_unit_test(test_widths),
-	    cmocka_unit_test(test_resize),
+	    cmocka_unit_test(test_dots),   cmocka_unit_test(test_resize),
 	};
 	return cmocka_run_group_tests_name("grid", tests, NULL, NULL);
 }

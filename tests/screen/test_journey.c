@@ -59,13 +59,144 @@ static void test_about(void **state)
 	pty_close(&t);
 }
 
+static void test_find_sort_filter(void **state)
+{
+	struct pty t;
+	(void)state;
+	open_demo(&t);
+	pty_send(&t, "/tern 14\r");
+	pty_screen(&t, "\r", "Tern 14 b, night 22/23 Apr 2026");
+	pty_screen(&t, "\r", "by be-on time");
+	pty_screen(&t, "s", "Sort the list by");
+	pty_screen(&t, "d", "by chance of done");
+	pty_send(&t, "fdane > 1\r");
+	pty_wait(&t, "called"); /* no figure is called \"dane\" */
+	pty_screen(&t, "\025done > 50 & name = 14\r", "1/1 ");
+	pty_screen(&t, "", "where done > 50 & name = 14");
+	pty_screen(&t, "\033", "windows by chance of done");
+	pty_send(&t, "q");
+	expect_exit(&t, 0);
+	pty_expect_restored(&t);
+	pty_close(&t);
+}
+
+/* --- over a database of its own --- */
+
+static char folder[64], database[128];
+
+static void run_wane(const char *arguments)
+{
+	char command[2400];
+	snprintf(command, sizeof command, "exec '%s' --db '%s' %s >/dev/null 2>&1", program, database,
+		 arguments);
+	int status = system(command);
+	if (!WIFEXITED(status) || WEXITSTATUS(status) != 0)
+		check_fail("%s", command);
+}
+
+static void write_target(const char *name)
+{
+	char path[160], import[400];
+	snprintf(path, sizeof path, "%s/one.csv", folder);
+	FILE *f = fopen(path, "w");
+	if (!f)
+		check_fail("%s", path);
+	fprintf(f,
+		"name,ra_deg,dec_deg,t0_jd,t0_err_d,time_scale,period_d,period_err_d,duration_h,k\n"
+		"%s,212.4,38.1,2461153.8013,0.0002,BJD_TDB,3.412877,0.0000003,2.6,0.118\n",
+		name);
+	fclose(f);
+	snprintf(import, sizeof import, "import '%s'", path);
+	run_wane(import);
+	unlink(path);
+}
+
+static void open_database(void)
+{
+	snprintf(folder, sizeof folder, "/tmp/wane-journey-XXXXXX");
+	if (!mkdtemp(folder))
+		check_fail("mkdtemp");
+	snprintf(database, sizeof database, "%s/wane.db", folder);
+	run_wane("site add 'Tern Hill' --place 38.62,-109.36,2100 --zone America/Denver");
+	run_wane("site add 'Far Side' --place 31.2,64.1,1200 --zone Asia/Kabul");
+	write_target("Tern 14 b");
+}
+
+static void close_database(void)
+{
+	static const char *const endings[] = {"", "-wal", "-shm", "-journal"};
+	for (size_t i = 0; i < sizeof endings / sizeof endings[0]; i++) {
+		char path[160];
+		snprintf(path, sizeof path, "%s%s", database, endings[i]);
+		unlink(path);
+	}
+	rmdir(folder);
+}
+
+static void open_on_database(struct pty *t)
+{
+	char *argv[] = {program, "--db", database, "--site", "Tern Hill", "--now", NOW "+", NULL};
+	pty_open(t, argv, 24, 80, TERM_USUAL, NULL, NULL);
+	pty_wait(t, OPENED);
+}
+
+static void test_site_switch(void **state)
+{
+	struct pty t;
+	(void)state;
+	open_database();
+	open_on_database(&t);
+	pty_screen(&t, "", "Tern 14 b");
+	pty_screen(&t, "S", "Stand at which of the stored sites?");
+	pty_screen(&t, "g\r", "Far Side  31.20 N 64.10 E  1200 m");
+	pty_screen(&t, "", "+0430");
+	pty_screen(&t, "S", "Tern Hill  38.62 N");
+	pty_screen(&t, "j\r", "Tern Hill  38.62 N 109.36 W  2100 m");
+	pty_screen(&t, "", OPENED);
+	pty_send(&t, "q");
+	expect_exit(&t, 0);
+	pty_close(&t);
+	close_database();
+}
+
+/* What another program stores comes onto the screen by itself. */
+static void test_changed_from_outside(void **state)
+{
+	struct pty t;
+	(void)state;
+	open_database();
+	open_on_database(&t);
+	pty_screen(&t, "\r", "Tern 14 b, night 22/23 Apr 2026");
+	pty_screen(&t, "\r", "1/1 window");
+	pty_send(&t, "");
+	write_target("Tern 15 b");
+	pty_wait(&t, "Another program changed what is stored; it was read again.");
+	pty_screen(&t, "j", "/2 windows");
+	/* all taken away: back to what to do first, and out of it when something comes */
+	pty_send(&t, "");
+	run_wane("target remove 'Tern 14 b'");
+	pty_wait(&t, "Another program");
+	pty_screen(&t, "g", "1/1 window");
+	pty_send(&t, "");
+	run_wane("target remove 'Tern 15 b'");
+	pty_screen(&t, "", "No targets are stored yet.");
+	pty_send(&t, "");
+	write_target("Tern 16 b");
+	pty_screen(&t, "", "1/1 window");
+	pty_send(&t, "q");
+	expect_exit(&t, 0);
+	pty_expect_restored(&t);
+	pty_close(&t);
+	close_database();
+}
+
 static void test_resize(void **state)
 {
 	struct pty t;
 	(void)state;
 	open_demo(&t);
 	pty_resize(&t, 45, 160);
-	pty_wait(&t, "doubts");
+	pty_wait(&t, "airm");
 	pty_resize(&t, 5, 20);
 	pty_wait(&t, "wane needs 24 x 6");
 	for (int i = 1; i < 40; i++)
@@ -151,7 +282,7 @@ static void test_suspend_and_resume(void **state)
 	pty_resize(&t, 45, 160);
 	pty_send(&t, "fg\n");
 	pty_wait(&t, OPENED);
-	pty_screen(&t, "", "doubts");
+	pty_screen(&t, "", "airm");
 	pty_send(&t, "q");
 	pty_wait(&t, "ready> ");
 	pty_send(&t, "echo gone=$?\n");
@@ -237,7 +368,7 @@ static void test_environment(void **state)
 	pty_open(&t, demo, 24, 80, TERM_USUAL, "COLUMNS", "40");
 	pty_wait(&t, OPENED);
 	pty_resize(&t, 45, 160);
-	pty_wait(&t, "doubts");
+	pty_wait(&t, "airm");
 	pty_close(&t);
 }
 
@@ -261,6 +392,9 @@ int main(void)
 {
 	const struct CMUnitTest tests[] = {
 	    cmocka_unit_test(test_about),
+	    cmocka_unit_test(test_find_sort_filter),
+	    cmocka_unit_test(test_site_switch),
+	    cmocka_unit_test(test_changed_from_outside),
 	    cmocka_unit_test(test_resize),
 	    cmocka_unit_test(test_signals_end_it),
 	    cmocka_unit_test(test_crash_restores),

@@ -5,6 +5,7 @@
 #include "tests/support/page_driver.h"
 
 #include <math.h>
+#include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
 
@@ -20,14 +21,24 @@ static void test_golden(void **state)
 	    {"night-80x24-basic", "", 24, 80, TIER_BASIC},
 	    {"night-80x24-ascii", "", 24, 80, TIER_ASCII},
 	    {"night-160x45", "", 45, 160, TIER_UNICODE},
+	    {"night-160x45-basic", "", 45, 160, TIER_BASIC},
+	    {"night-160x45-ascii", "", 45, 160, TIER_ASCII},
+	    {"night-100x30", "G", 30, 100, TIER_UNICODE},
+	    {"night-250x60", "jj", 60, 250, TIER_UNICODE},
+	    {"night-80x40", "j", 40, 80, TIER_UNICODE},
 	    {"night-60x18", "", 18, 60, TIER_UNICODE},
 	    {"night-38x10", "", 10, 38, TIER_UNICODE},
+	    {"night-38x10-basic", "", 10, 38, TIER_BASIC},
+	    {"night-38x10-ascii", "", 10, 38, TIER_ASCII},
 	    {"night-20x5", "", 5, 20, TIER_UNICODE},
 	    {"night-80x24-long-shots", "ajj", 24, 80, TIER_UNICODE},
 	    {"night-80x24-last", "G", 24, 80, TIER_UNICODE},
 	    {"night-80x24-later", ">>", 24, 80, TIER_UNICODE},
 	    {"night-80x24-date", "d", 24, 80, TIER_UNICODE},
 	    {"night-80x24-details", "g\r", 24, 80, TIER_UNICODE},
+	    {"night-80x24-sort", "s", 24, 80, TIER_UNICODE},
+	    {"night-80x24-filter", "fdone > 50\rsd", 24, 80, TIER_UNICODE},
+	    {"night-80x24-filter-fault", "fdane > 50\r", 24, 80, TIER_UNICODE},
 	    {"night-100x40-help", "?", 40, 100, TIER_UNICODE},
 	    {"night-80x24-limits", "l", 24, 80, TIER_UNICODE},
 	};
@@ -51,7 +62,7 @@ static void test_keys_to_screens(void **state)
 	    {"j", "▸ now   Tern 18 c", NULL},
 	    {"jjk", "▸ now   Tern 18 c", NULL},
 	    {"kkkkkkkk", "▸ now   Tern 2 c", NULL},
-	    {"g", "1/11 windows, 1 long shot hidden, a shows it", NULL},
+	    {"g", "1/11 windows by be-on time, 1 long shot hidden, a shows it", NULL},
 	    {"G", "11/11 windows", "Tern 2 c  "},
 	    {"Gg", "▸ now   Tern 2 c", NULL},
 	    {">", "next night, night 23/24 Apr 2026", "next: "},
@@ -64,7 +75,7 @@ static void test_keys_to_screens(void **state)
 	    {"d\0252026-02-30\r", "Evening of (YYYY-MM-DD): 2026-02-30", NULL},
 	    {"dxyz\033", "night 22/23 Apr 2026", "Evening of"},
 	    {"d\003", "q quit", "Evening of"},
-	    {"a", "4 long shots among them, a hides them", NULL},
+	    {"a", "1 long shot among them, a hides it", NULL},
 	    {"aa", "1 long shot hidden, a shows it", "among them"},
 	    {"aj", "▸ now   Tern 18 c", NULL},
 	    {"aja", "▸ now   Tern 18 c", NULL},
@@ -85,6 +96,41 @@ static void test_keys_to_screens(void **state)
 	    {"x", "x does nothing here; ? shows the keys.", "q quit"},
 	    {"xj", "q quit", "does nothing"},
 	    {"[", "[ does nothing here", NULL},
+	    {"1", "1 does nothing here", NULL},
+	    /* find */
+	    {"/18\r", "2 of 2 with `18`; n next, N before", NULL},
+	    {"/18\r", "▸ now   Tern 18 c", NULL},
+	    {"/18\rn", "▸ now   Tern 18 b", NULL},
+	    {"/18\rN", "1 of 2 with `18`", NULL},
+	    {"/TERN14\r", "▸ next  Tern 14 b", NULL},
+	    {"/nobody\r", "No name in the list holds `nobody`.", NULL},
+	    {"/nobody\r", "▸ now   Tern 18 b", NULL},
+	    {"n", "Nothing was looked for yet; / asks for a name.", NULL},
+	    {"/18\rg/\r", "▸ now   Tern 18 b", NULL},
+	    {"/x\033", "▸ now   Tern 18 b", "Find:"},
+	    /* sort */
+	    {"s", "Sort the list by", "Tern 18 b b"},
+	    {"sn", "by name", NULL},
+	    {"sng", "▸ next  Tern 14 b", NULL},
+	    {"snsn", "by name, turned", NULL},
+	    {"sjjj\r", "by name", NULL},
+	    {"s\033", "by be-on time", "Sort the list"},
+	    {"sd", "by chance of done", NULL},
+	    {"sn><", "by name", NULL},
+	    {"sn", "▸ now   Tern 18 b", NULL},
+	    /* filter */
+	    {"fdone > 50\r", "1/5 of 11 where done > 50 by on, a: 1 more", NULL},
+	    {"fsigma < 1\r", "2/5 of 11 where sigma < 1 by on", NULL},
+	    {"fdone > 50\r\033", "11 windows by be-on time", "where done"},
+	    {"fdone > 50\rf\025\r", "11 windows by be-on time", "where done"},
+	    {"ftern 18\r", "▸ now   Tern 18 b", "Tern 14 b  "},
+	    {"fnobody\r", "No window of this night fits the filter; Esc takes it away.", NULL},
+	    {"fnobody\rj\r?", "Keys (q", NULL},
+	    {"fdone >\r", "nothing stands behind `done >`", NULL},
+	    {"fdone > x\r", "`done >` needs a number (got \"x\")", NULL},
+	    {"fdone > 50\033", "11 windows by be-on time", "Show where"},
+	    /* sites: none is stored in the fixture */
+	    {"S", "No site is stored; `wane site add` stores one.", NULL},
 	};
 	(void)state;
 	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
@@ -156,14 +202,14 @@ static void test_cursor(void **state)
  * is on the screen. */
 static void test_every_size(void **state)
 {
-	static const char *const typed[] = {"", "G", "?", "l", "\r", "d"};
+	static const char *const typed[] = {"", "G", "?", "l", "\r", "d", "s", "/", "f", "fx >\r"};
 	struct page_driver d;
 	(void)state;
 	driver_open(&d, true, 24, 80, TIER_UNICODE);
 	for (size_t k = 0; k < sizeof typed / sizeof typed[0]; k++) {
 		driver_keys(&d, typed[k]);
 		for (int rows = 1; rows <= 60; rows += rows < 26 ? 1 : 9)
-			for (int cols = 1; cols <= 200; cols += cols < 20 ? 3 : cols < 84 ? 4 : 13) {
+			for (int cols = 1; cols <= 300; cols += cols < 20 ? 3 : cols < 84 ? 4 : 13) {
 				driver_size(&d, rows, cols);
 				assert_true(d.grid.cursor_row < rows && d.grid.cursor_col < cols);
 				if (rows < PAGE_ROWS_MIN || cols < PAGE_COLS_MIN || k > 1)
@@ -271,6 +317,73 @@ static void test_first_run(void **state)
 	driver_close(&d);
 }
 
+/* Another stored site: its own night, zone and limits of the sky. The choice of a night follows: tonight
+ * stays tonight. */
+static void test_sites(void **state)
+{
+	static struct site sites[] = {
+	    {.name = "Far Side",
+	     .lat_deg = 31.2,
+	     .lon_east_deg = 64.1,
+	     .height_m = 1200.0,
+	     .zone = "Asia/Kabul"},
+	    {.name = "Tern Hill",
+	     .lat_deg = 38.62,
+	     .lon_east_deg = -109.36,
+	     .height_m = 2100.0,
+	     .zone = "America/Denver"},
+	};
+	struct page_driver d;
+	(void)state;
+	driver_open(&d, true, 24, 80, TIER_UNICODE);
+	struct run *r = &d.fixture->run;
+	snprintf(d.fixture->env.zoneinfo_dir, sizeof d.fixture->env.zoneinfo_dir, "/usr/share/zoneinfo");
+	r->sites = (struct site_list){.n = 2, .site = sites};
+	driver_keys(&d, "S");
+	driver_expect(&d, "▸  Tern Hill  38.62 N 109.36 W  2100 m  America/Denver");
+	driver_keys(&d, "k");
+	driver_expect(&d, "▸  Far Side  31.20 N 64.10 E  1200 m  Asia/Kabul");
+	driver_keys(&d, "\033");
+	driver_expect(&d, "Tern Hill  38.62 N");
+	driver_keys(&d, "Sg\r");
+	driver_expect(&d, " Far Side  31.20 N 64.10 E  1200 m ");
+	driver_expect(&d, "tonight, night 22/23 Apr 2026"); /* 08:44 there: before the noon that ends it */
+	driver_expect(&d, "Thu 08:44:05 +0430");
+	driver_keys(&d, ">SG\r");
+	driver_expect(&d, "Tern Hill  38.62 N");
+	driver_expect(&d, "next night, night 23/24 Apr 2026");
+	driver_close(&d);
+}
+
+/* What the page borrows may be read anew: the same window stays selected, a filter stays. */
+static void test_drop_and_load(void **state)
+{
+	struct page_driver d;
+	(void)state;
+	driver_open(&d, true, 24, 80, TIER_UNICODE);
+	driver_keys(&d, "fdone > 50\rjj");
+	driver_expect(&d, "▸ now   Tern 33 b");
+	night_page_drop(d.page);
+	driver_draw(&d);
+	driver_keys(&d, "jGx?q\rR");
+	driver_load(&d, d.page->wanted_mjd);
+	driver_draw(&d);
+	driver_expect(&d, "▸ now   Tern 33 b");
+	driver_expect(&d, "3/5 of 11 where done > 50");
+	/* nothing left */
+	night_page_drop(d.page);
+	size_t n = d.fixture->run.targets.n;
+	d.fixture->run.targets.n = 0;
+	driver_load(&d, d.page->wanted_mjd);
+	driver_draw(&d);
+	driver_expect(&d, "No targets are stored yet.");
+	d.fixture->run.targets.n = n;
+	driver_load(&d, d.page->wanted_mjd);
+	driver_draw(&d);
+	driver_expect(&d, "▸ now   Tern 33 b");
+	driver_close(&d);
+}
+
 /* Names that would turn a terminal upside down; the store refuses them, the page does not rely on it. */
 static void test_hostile_names(void **state)
 {
@@ -292,9 +405,12 @@ static void test_hostile_names(void **state)
 			d.fixture->target[t].name = d.fixture->target[t].source = d.fixture->target[t].band =
 			    names[i];
 		d.fixture->run.site.name = names[i];
+		struct site site = {.name = names[i], .zone = names[i]};
+		d.fixture->run.sites = (struct site_list){.n = 1, .site = &site};
 		for (int cols = 24; cols <= 160; cols += 8) {
 			driver_load(&d, FIXTURE_EVENING_MJD);
 			driver_size(&d, 40, cols);
+			driver_keys(&d, cols % 3 == 0 ? "sn/e\rnGkf!zz\r" : cols % 3 == 1 ? "\r" : "SG\033");
 			for (int c = 0; c < d.grid.rows * d.grid.cols; c++) {
 				uint32_t cp = d.grid.cell[c].cp;
 				assert_true((cp >= ' ' || cp == 0) && cp != 0x7F &&
@@ -312,9 +428,9 @@ static void test_clock(void **state)
 		double after_min;
 		const char *shown, *row;
 	} rows[] = {
-	    {0.0, "next: Tern 14 b, on target in 1 h 05 min", "  next  Tern 14 b"},
-	    {64.0, "next: Tern 14 b, on target in 1 min", "  next  Tern 14 b"},
-	    {66.0, "now: Tern 18 b, leave in 22 min (+5); next: Tern 5 b, on target in 1 h 14 min",
+	    {0.0, "next: Tern 14 b, be on in 1 h 05 min", "  next  Tern 14 b"},
+	    {64.0, "next: Tern 14 b, be on in 1 min", "  next  Tern 14 b"},
+	    {66.0, "now: Tern 18 b, leave in 22 min (+5); next: Tern 5 b, be on in 1 h 14 min",
 	     "  now   Tern 14 b"},
 	    {283.0, "Tern 14 b", "  past  Tern 14 b"},
 	    {600.0, "nothing more comes up tonight", "  past  Tern 5 b"},
@@ -336,13 +452,14 @@ static void test_clock(void **state)
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
-	    cmocka_unit_test(test_golden),	 cmocka_unit_test(test_keys_to_screens),
-	    cmocka_unit_test(test_wants),	 cmocka_unit_test(test_paste),
-	    cmocka_unit_test(test_cursor),	 cmocka_unit_test(test_every_size),
-	    cmocka_unit_test(test_no_nan),	 cmocka_unit_test(test_odd_nights),
-	    cmocka_unit_test(test_clock_change), cmocka_unit_test(test_without_zone),
-	    cmocka_unit_test(test_first_run),	 cmocka_unit_test(test_hostile_names),
-	    cmocka_unit_test(test_clock),
+	    cmocka_unit_test(test_golden),	  cmocka_unit_test(test_keys_to_screens),
+	    cmocka_unit_test(test_wants),	  cmocka_unit_test(test_paste),
+	    cmocka_unit_test(test_cursor),	  cmocka_unit_test(test_every_size),
+	    cmocka_unit_test(test_no_nan),	  cmocka_unit_test(test_odd_nights),
+	    cmocka_unit_test(test_clock_change),  cmocka_unit_test(test_without_zone),
+	    cmocka_unit_test(test_first_run),	  cmocka_unit_test(test_hostile_names),
+	    cmocka_unit_test(test_clock),	  cmocka_unit_test(test_sites),
+	    cmocka_unit_test(test_drop_and_load),
 	};
 	return cmocka_run_group_tests_name("night page", tests, NULL, NULL);
 }

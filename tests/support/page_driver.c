@@ -9,8 +9,8 @@
 void driver_load(struct page_driver *d, int32_t evening_mjd)
 {
 	struct err e;
-	struct night_view v = fixture_night(d->fixture, evening_mjd, d->page->show_long_shots);
-	if (night_page_take(d->page, &v, &e) != ST_OK)
+	d->page->wanted_mjd = evening_mjd;
+	if (night_page_load(d->page, &d->fixture->run, &e) != ST_OK)
 		check_fail("%s", e.text);
 }
 
@@ -25,7 +25,7 @@ void driver_size(struct page_driver *d, int rows, int cols)
 	struct err e;
 	if (grid_resize(&d->grid, rows, cols, &e) != ST_OK)
 		check_fail("%s", e.text);
-	night_page_size(d->page, d->grid.rows, d->grid.cols);
+	night_page_size(d->page, d->grid.rows, d->grid.cols, d->grid.tier);
 	driver_draw(d);
 }
 
@@ -52,7 +52,7 @@ void driver_close(struct page_driver *d)
 void driver_key(struct page_driver *d, uint32_t code)
 {
 	switch (night_page_key(d->page, code)) {
-	case WANT_NIGHT:
+	case WANT_LOAD:
 		driver_load(d, d->page->wanted_mjd);
 		break;
 	case WANT_QUIT:

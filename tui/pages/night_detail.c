@@ -8,7 +8,15 @@
 #include <stdio.h>
 #include <string.h>
 
-enum { CONTACTS = 5, LABEL_COLUMNS = 6, INDENT = 7, COLUMNS_FOR_BJD = 76, CELL_BYTES = 40 };
+enum {
+	CONTACTS = 5,
+	LABEL_COLUMNS = 6,
+	INDENT = 7,
+	COLUMNS_FOR_RESERVE = 70,
+	COLUMNS_FOR_BJD = 71,
+	COLUMNS_FOR_BJD_FULL = 76,
+	CELL_BYTES = 40
+};
 
 /* One line of the contact table: a label and five cells. */
 static void table_line(struct text_view *v, enum role role, const char *label,
@@ -48,10 +56,11 @@ static void contact_table(struct text_view *v, const struct run *r, const struct
 		table_line(v, ROLE_TEXT, "UTC", cell);
 	}
 	if (v->width >= COLUMNS_FOR_BJD) {
+		int decimals = v->width >= COLUMNS_FOR_BJD_FULL ? 5 : 4;
 		for (int i = 0; i < CONTACTS; i++) {
 			char bjd[NUMBER_TEXT_MAX] = "-";
 			if (night_covers(at_d[i]))
-				number_text_jd2(night_bjd_tdb(night, &row->star, at_d[i]).jd, 5, bjd);
+				number_text_jd2(night_bjd_tdb(night, &row->star, at_d[i]).jd, decimals, bjd);
 			snprintf(cell[i], CELL_BYTES, "%s", bjd);
 		}
 		table_line(v, ROLE_TEXT, "BJD", cell);
@@ -83,17 +92,18 @@ static void be_there_line(struct text_view *v, const struct run *r, const struct
 	local_text(night, r->zone, ev->latest_start_d, false, latest, sizeof latest);
 	local_text(night, r->zone, ev->reserve_start_d, false, from, sizeof from);
 	local_text(night, r->zone, ev->reserve_end_d, false, to, sizeof to);
+	char kept[80] = "";
+	if (v->width >= COLUMNS_FOR_RESERVE)
+		snprintf(kept, sizeof kept, ", reserve %s-%s %s", from, to, head->zone);
 	if (!row->usable)
 		text_view_addf(v, ROLE_BAD, INDENT, "Times  no usable moment in the reserve %s to %s %s",
 			       from, to, head->zone);
 	else if (ev->latest_start_d < row->on_d)
-		text_view_addf(v, ROLE_WARN, INDENT,
-			       "Times  on target %s (ingress: %s), leave %s, reserve %s-%s %s",
-			       row->text[ROW_ON], latest, row->text[ROW_LEAVE], from, to, head->zone);
+		text_view_addf(v, ROLE_WARN, INDENT, "Times  be on %s (the ingress needs %s), leave %s%s",
+			       row->text[ROW_ON], latest, row->text[ROW_LEAVE], kept);
 	else
-		text_view_addf(v, ROLE_TEXT, INDENT,
-			       "Times  on target %s, latest %s, leave %s, reserve %s-%s %s",
-			       row->text[ROW_ON], latest, row->text[ROW_LEAVE], from, to, head->zone);
+		text_view_addf(v, ROLE_TEXT, INDENT, "Times  be on %s, at the latest %s, leave %s%s",
+			       row->text[ROW_ON], latest, row->text[ROW_LEAVE], kept);
 }
 
 static void chance_line(struct text_view *v, const struct night_row *row)

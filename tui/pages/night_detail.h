@@ -11,9 +11,14 @@
 void detail_lines(struct text_view *v, int width, bool roomy, const struct run *r,
 		  const struct night_view *view, const struct night_head *head, const struct night_row *row);
 /* Keys, figures, picture of the cover, doubts, cautions. */
-void help_lines(struct text_view *v, int width);
+void help_lines(struct text_view *v, int width, enum tier tier);
 /* The limits of the run, each with its value and sentence. */
 void limit_lines(struct text_view *v, int width, const struct limits *l, const char *remark);
+/* Choices: CHOICE_FIRST_LINE lines of heading, then a line each, not wrapped. */
+enum { CHOICE_FIRST_LINE = 1 };
+void sort_lines(struct text_view *v, int sort, bool turned);
+/* At most as many sites as a view has lines; the heading says so. */
+void site_lines(struct text_view *v, const struct site_list *sites);
 /* What to do when there is no site or no target yet. */
 void first_run_lines(struct text_view *v, int width, bool has_site, bool has_targets, const char *db_path);
 

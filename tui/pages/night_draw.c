@@ -5,53 +5,7 @@
 #include <stdio.h>
 #include <string.h>
 
-enum { NAME_MIN_COLUMNS = 8, NAME_MAX_COLUMNS = 24, LOST_MAX_COLUMNS = 40, MARK_COLUMNS = 2 };
-
-/* Where each column of the list begins, and how wide it is; width 0: not shown. */
-struct layout {
-	int at[ROW_CELLS], width[ROW_CELLS];
-};
-
-static int give(int *spare, int *width, int most)
-{
-	int more = *spare < most - *width ? *spare : most - *width;
-	more = more < 0 ? 0 : more;
-	*width += more;
-	*spare -= more;
-	return more;
-}
-
-static struct layout lay_out(int cols)
-{
-	struct layout l = {.at = {0}};
-	int used = MARK_COLUMNS;
-	for (int c = 0; c < ROW_CELLS; c++)
-		if (cols >= row_columns[c].from_columns) {
-			l.width[c] = row_columns[c].width;
-			used += l.width[c] + 1;
-		}
-	int spare = cols - used;
-	if (spare < 0) { /* the name gives way, down to what tells targets apart */
-		l.width[ROW_NAME] += spare;
-		l.width[ROW_NAME] =
-		    l.width[ROW_NAME] < NAME_MIN_COLUMNS ? NAME_MIN_COLUMNS : l.width[ROW_NAME];
-	}
-	give(&spare, &l.width[ROW_LOST], 17);
-	give(&spare, &l.width[ROW_NAME], NAME_MAX_COLUMNS - 8);
-	give(&spare, &l.width[ROW_LOST], LOST_MAX_COLUMNS - 14);
-	give(&spare, &l.width[ROW_NAME], NAME_MAX_COLUMNS);
-	give(&spare, &l.width[ROW_LOST], LOST_MAX_COLUMNS);
-	if (l.width[ROW_FLAGS] > 0)
-		give(&spare, &l.width[ROW_FLAGS], 200);
-	int at = MARK_COLUMNS;
-	for (int c = 0; c < ROW_CELLS; c++) {
-		l.at[c] = at;
-		at += l.width[c] > 0 ? l.width[c] + 1 : 0;
-	}
-	return l;
-}
-
-static void put_cell(struct grid *g, int row, const struct layout *l, enum row_cell c, const char *text,
+static void put_cell(struct grid *g, int row, const struct night_layout *l, enum row_cell c, const char *text,
 		     enum role role)
 {
 	if (row_columns[c].right)
@@ -60,15 +14,30 @@ static void put_cell(struct grid *g, int row, const struct layout *l, enum row_c
 		grid_put(g, row, l->at[c], l->width[c], text, role);
 }
 
-static void draw_headings(const struct night_page *p, struct grid *g, int row, const struct layout *l)
+/* The hours of the axis are those of this zone: it stands left of them. */
+static void draw_zone(const struct night_page *p, struct grid *g, int row)
 {
+	int width = text_columns(p->head.zone), at = p->axis_at - 1 - width;
+	grid_put(g, row, at < 0 ? 0 : at, width, p->head.zone, ROLE_FAINT);
+}
+
+static void draw_headings(const struct night_page *p, struct grid *g, int row)
+{
+	const struct night_layout *l = &p->layout;
 	for (int c = 0; c < ROW_CELLS; c++) {
-		if (l->width[c] == 0)
+		if (l->width[c] == 0 || (c == ROW_STRIP && p->axis_in_list))
 			continue;
 		put_cell(g, row, l, (enum row_cell)c, row_columns[c].heading, ROLE_STRONG);
 		put_cell(g, row + 1, l, (enum row_cell)c,
 			 row_columns[c].unit ? row_columns[c].unit : p->head.zone, ROLE_FAINT);
 	}
+	if (!p->axis_in_list)
+		return;
+	draw_zone(p, g, row);
+	grid_put(g, row, p->axis_at, p->axis.cols, p->axis.hours, ROLE_STRONG);
+	axis_draw_band(&p->axis, g, row + 1, p->axis_at, false);
+	if (p->axis.now_col != AXIS_NONE)
+		grid_glyph(g, row + 1, p->axis_at + p->axis.now_col, GLYPH_NOW, ROLE_KEY);
 }
 
 static enum role row_role(const struct night_row *row)
@@ -78,8 +47,10 @@ static enum role row_role(const struct night_row *row)
 	return row->state == STATE_AHEAD ? ROLE_TEXT : ROLE_STRONG;
 }
 
-static void draw_row(struct grid *g, int line, const struct layout *l, const struct night_row *row)
+static void draw_row(const struct night_page *p, struct grid *g, int line, size_t at)
 {
+	const struct night_layout *l = &p->layout;
+	const struct night_row *row = &p->rows.row[at];
 	enum role role = row_role(row), lost_role = role;
 	if (row->window->event.flags & FLAG_BIT(FLAG_SUN_UP))
 		lost_role = ROLE_BAD;
@@ -102,6 +73,10 @@ static void draw_row(struct grid *g, int line, const struct layout *l, const str
 			put_cell(g, line, l, ROW_LOST,
 				 text_columns(row->lost_long) <= l->width[c] ? row->lost_long : row->lost,
 				 lost_role);
+			break;
+		case ROW_STRIP:
+			if (p->axis_in_list)
+				strip_draw(&p->strip[at % STRIP_SLOTS], &p->axis, g, line, l->at[c]);
 			break;
 		case ROW_FLAGS:
 			put_cell(g, line, l, ROW_FLAGS, row->flags, ROLE_FAINT);
@@ -129,19 +104,21 @@ static void draw_short_row(struct grid *g, int line, const struct night_row *row
 
 static void draw_list(const struct night_page *p, struct grid *g, int line)
 {
-	int rows = night_list_rows(p);
-	struct layout l = lay_out(g->cols);
+	int rows = p->shape.list;
 	if (p->rows.n == 0)
-		grid_put(g, line, 1, g->cols - 2, "No window in this night under these limits.", ROLE_TEXT);
+		grid_put(g, line, 1, g->cols - 2,
+			 p->rows.total > 0 ? "No window of this night fits the filter; Esc takes it away."
+					   : "No window in this night under these limits.",
+			 ROLE_TEXT);
 	for (int i = 0; i < rows && p->top + (size_t)i < p->rows.n; i++) {
 		size_t at = p->top + (size_t)i;
 		if (g->cols >= PAGE_COLS_FULL)
-			draw_row(g, line + i, &l, &p->rows.row[at]);
+			draw_row(p, g, line + i, at);
 		else
 			draw_short_row(g, line + i, &p->rows.row[at]);
 		if (at == p->selected) {
 			grid_glyph(g, line + i, 0, GLYPH_SELECTED, ROLE_STRONG);
-			grid_select(g, line + i, 0, g->cols);
+			grid_select(g, line + i, 0, p->axis_in_list ? p->axis_at - 1 : g->cols);
 			grid_cursor(g, line + i, 0, false);
 		}
 	}
@@ -160,50 +137,75 @@ static void draw_pair(struct grid *g, int row, const char *left, enum role left_
 		grid_put(g, row, g->cols - 1 - width, width, right, right_role);
 }
 
+/* The first of some texts that fits, else the last. */
+static const char *fitting(int width, const char *longest, const char *shorter, const char *shortest)
+{
+	if (text_columns(longest) <= width)
+		return longest;
+	return text_columns(shorter) <= width ? shorter : shortest;
+}
+
 static void draw_full_head(const struct night_page *p, struct grid *g)
 {
 	const struct night_head *h = &p->head;
 	char night[120], moon[180];
+	int room = g->cols - 2;
 	snprintf(night, sizeof night, "%s, night %s", h->relative, h->name);
 	snprintf(moon, sizeof moon, "%s%s", h->moon, h->moon_now);
 	/* the night is never left out: a long name of the site gives way */
 	int width = text_columns(night);
 	grid_put(g, 0, 1, g->cols - width - 4, h->site, ROLE_STRONG);
 	grid_put(g, 0, g->cols - 1 - width, width, night, ROLE_STRONG);
-	grid_put(g, 1, 1, g->cols - 2, h->clocks, ROLE_TEXT);
-	grid_put(g, 2, 1, g->cols - 2, h->sun, ROLE_TEXT);
+	grid_put(g, 1, 1, room, fitting(room, h->clocks, h->clocks_short, h->clock), ROLE_TEXT);
+	grid_put(g, 2, 1, room, fitting(room, h->sun, h->sun_short, h->sun_short), ROLE_TEXT);
 	draw_pair(g, 3, moon, ROLE_TEXT, h->limits, ROLE_FAINT);
-	grid_put(g, 4, 1, g->cols - 2, h->next, ROLE_KEY);
+	grid_put(g, 4, 1, room, fitting(room, h->next, h->next_less, h->next_short), ROLE_KEY);
 	if (h->remark[0])
-		grid_put(g, 5, 1, g->cols - 2, h->remark, ROLE_WARN);
+		grid_put(g, 5, 1, room, h->remark, ROLE_WARN);
 }
 
 static void draw_short_head(const struct night_page *p, struct grid *g)
 {
-	bool full = text_columns(p->head.next) <= g->cols - 2;
-	draw_pair(g, 0, p->head.name, ROLE_STRONG, p->head.clocks, ROLE_TEXT);
-	if (text_columns(p->head.name) + text_columns(p->head.clocks) + 3 > g->cols) {
-		int used = 3 + text_columns(p->head.name);
-		grid_put(g, 0, used, g->cols - used - 1, p->head.clocks, ROLE_TEXT);
-	}
-	grid_put(g, 1, 1, g->cols - 2,
-		 p->head.remark[0] ? p->head.remark
-		 : full		   ? p->head.next
-				   : p->head.next_short,
-		 ROLE_KEY);
+	const struct night_head *h = &p->head;
+	int room = g->cols - 2, left = room - text_columns(h->name) - 2;
+	grid_put(g, 0, 1, room, h->name, ROLE_STRONG);
+	if (left > 0)
+		draw_pair(g, 0, h->name, ROLE_STRONG, fitting(left, h->clocks, h->clocks_short, h->clock),
+			  ROLE_TEXT);
+	grid_put(g, 1, 1, room,
+		 h->remark[0] ? h->remark : fitting(room, h->next, h->next_less, h->next_short), ROLE_KEY);
+}
+
+/* The question of a mode, else NULL. */
+static const char *question(enum night_mode mode)
+{
+	return mode == MODE_DATE     ? "Evening of (YYYY-MM-DD): "
+	       : mode == MODE_FIND   ? "Find: "
+	       : mode == MODE_FILTER ? "Show where: "
+				     : NULL;
+}
+
+static void draw_question(const struct night_page *p, struct grid *g, const char *label)
+{
+	static const char hint[] = "Enter takes it, Esc leaves";
+	int row = g->rows - 1, at = 1 + grid_put(g, row, 1, g->cols - 2, label, ROLE_KEY);
+	int width = p->mode == MODE_DATE ? 12 : g->cols - at - (int)sizeof hint - 1;
+	width = width < 12 ? 12 : width > g->cols - at - 1 ? g->cols - at - 1 : width;
+	int rest = at + width + 1;
+	if (p->message[0]) /* what was wrong may be long: it stands above */
+		grid_put(g, row - 1, 1, g->cols - 2, p->message, p->message_role);
+	grid_put(g, row, rest, g->cols - rest - 1, hint, ROLE_FAINT);
+	line_draw(&p->line, g, row, at, width);
 }
 
 static void draw_footer(const struct night_page *p, struct grid *g)
 {
 	int row = g->rows - 1;
 	char text[300];
-	if (p->mode == MODE_DATE) {
-		static const char label[] = "Evening of (YYYY-MM-DD): ";
-		int at = 1 + grid_put(g, row, 1, g->cols - 2, label, ROLE_KEY), width = 12;
-		grid_put(g, row, at + width + 1, g->cols - at - width - 2,
-			 p->message[0] ? p->message : "Enter shows it, Esc leaves",
-			 p->message[0] ? p->message_role : ROLE_FAINT);
-		line_draw(&p->date, g, row, at, width);
+	if (question(p->mode)) {
+		for (int col = 0; p->message[0] && col < g->cols; col++)
+			grid_glyph(g, row - 1, col, GLYPH_BLANK, ROLE_TEXT);
+		draw_question(p, g, question(p->mode));
 		return;
 	}
 	if (p->message[0]) {
@@ -216,11 +218,11 @@ static void draw_footer(const struct night_page *p, struct grid *g)
 
 static void draw_rule(const struct night_page *p, struct grid *g, int row)
 {
-	char text[NAME_BYTES_MAX + 180];
+	char text[sizeof p->count + 8];
 	grid_rule(g, row);
 	snprintf(text, sizeof text, " %s ", p->count);
 	int used = grid_put(g, row, 2, g->cols - 4, text, ROLE_STRONG);
-	if (night_pane_rows(p) == 0 || p->rows.n == 0)
+	if (p->shape.pane == 0 || p->rows.n == 0)
 		return;
 	snprintf(text, sizeof text, " %s ", p->rows.row[p->selected].name);
 	int width = text_columns(text);
@@ -228,46 +230,82 @@ static void draw_rule(const struct night_page *p, struct grid *g, int row)
 		grid_put(g, row, g->cols - 2 - width, width, text, ROLE_STRONG);
 }
 
+/* Sky band, strip, picture of altitudes, and the text of the pane that begins at a row. */
+static void draw_pane(const struct night_page *p, struct grid *g, int row, int text_top)
+{
+	const struct night_shape *s = &p->shape;
+	int at = row;
+	if (s->sky) {
+		draw_zone(p, g, at);
+		axis_draw_band(&p->axis, g, at++, p->axis_at, true);
+		strip_draw(&p->strip[0], &p->axis, g, at++, p->axis_at);
+	}
+	if (s->curve)
+		curve_draw(&p->curve, &p->axis, g, at, p->axis_at);
+	for (int i = 0; i < s->text && text_top + i < p->details.n; i++)
+		grid_put(g, row + s->text_at + i, 1, s->width, p->details.line[text_top + i].text,
+			 p->details.line[text_top + i].role);
+}
+
 static void draw_night(const struct night_page *p, struct grid *g)
 {
-	int head = night_head_rows(p), list = night_list_rows(p), pane = night_pane_rows(p);
-	bool full = g->rows >= PAGE_ROWS_FULL && g->cols >= PAGE_COLS_FULL;
-	if (full)
+	const struct night_shape *s = &p->shape;
+	if (night_page_is_full(p))
 		draw_full_head(p, g);
 	else
 		draw_short_head(p, g);
-	if (g->cols >= PAGE_COLS_FULL) {
-		struct layout l = lay_out(g->cols);
-		draw_headings(p, g, head - 2, &l);
-	}
-	draw_list(p, g, head);
-	draw_rule(p, g, head + list);
-	for (int i = 0; i < pane; i++)
-		grid_put(g, head + list + 1 + i, 1, g->cols - 2, p->details.line[i].text,
-			 p->details.line[i].role);
+	if (g->cols >= PAGE_COLS_FULL)
+		draw_headings(p, g, s->head - 2);
+	draw_list(p, g, s->head);
+	draw_rule(p, g, s->head + s->list);
+	if (s->pane > 0 && p->rows.n > 0)
+		draw_pane(p, g, s->head + s->list + 1, 0);
 	draw_footer(p, g);
+}
+
+static void draw_details(const struct night_page *p, struct grid *g)
+{
+	char title[NAME_BYTES_MAX + 120];
+	int row = 1 + p->shape.text_at, rows = p->shape.text;
+	snprintf(title, sizeof title, "%s, night %s", p->rows.row[p->selected].name, p->head.name);
+	grid_put(g, 0, 1, g->cols - 2, title, ROLE_STRONG);
+	draw_pane(p, g, 1, p->details.top);
+	if (p->details.top > 0)
+		grid_glyph(g, row, g->cols - 1, GLYPH_MORE_ABOVE, ROLE_KEY);
+	if (p->details.top + rows < p->details.n)
+		grid_glyph(g, row + rows - 1, g->cols - 1, GLYPH_MORE_BELOW, ROLE_KEY);
+	grid_cursor(g, row, 0, false);
+}
+
+static void draw_choice(const struct night_page *p, struct grid *g)
+{
+	int row = 1 + CHOICE_FIRST_LINE + p->choice - p->text.top;
+	grid_glyph(g, row, 0, GLYPH_SELECTED, ROLE_STRONG);
+	grid_select(g, row, 0, g->cols);
+	grid_cursor(g, row, 0, false);
 }
 
 static void draw_text(const struct night_page *p, struct grid *g)
 {
-	const struct text_view *v = p->mode == MODE_DETAILS ? &p->details : &p->text;
-	int rows = g->rows - 2;
+	bool choice = p->mode == MODE_SORT || p->mode == MODE_SITES;
 	if (p->mode == MODE_DETAILS && p->rows.n > 0) {
-		char title[NAME_BYTES_MAX + 120];
-		snprintf(title, sizeof title, "%s, night %s", p->rows.row[p->selected].name, p->head.name);
-		grid_put(g, 0, 1, g->cols - 2, title, ROLE_STRONG);
+		draw_details(p, g);
 	} else {
-		grid_put(g, 0, 1, g->cols - 2, p->loaded ? p->head.clocks : "wane", ROLE_FAINT);
+		grid_put(g, 0, 1, g->cols - 2,
+			 p->loaded ? fitting(g->cols - 2, p->head.clocks, p->head.clocks_short, p->head.clock)
+				   : "wane",
+			 ROLE_FAINT);
+		text_view_draw(&p->text, g, 1, g->rows - 2);
+		grid_cursor(g, 1, 0, false);
+		if (choice)
+			draw_choice(p, g);
 	}
-	text_view_draw(v, g, 1, rows);
-	if (p->message[0])
-		grid_put(g, g->rows - 1, 1, g->cols - 2, p->message, p->message_role);
-	else
-		grid_put(g, g->rows - 1, 1, g->cols - 2,
-			 p->mode == MODE_FIRST_RUN ? "q quit  ? help  l limits"
-						   : "q back  j k PgDn PgUp scroll",
-			 ROLE_KEY);
-	grid_cursor(g, 1, 0, false);
+	grid_put(g, g->rows - 1, 1, g->cols - 2,
+		 p->message[0]		     ? p->message
+		 : p->mode == MODE_FIRST_RUN ? "q quit  ? help  l limits"
+		 : choice		     ? "Enter takes it  j k move  Esc leaves"
+					     : "q back  j k PgDn PgUp scroll",
+		 p->message[0] ? p->message_role : ROLE_KEY);
 }
 
 void night_page_draw(const struct night_page *p, struct grid *g)
@@ -278,7 +316,7 @@ void night_page_draw(const struct night_page *p, struct grid *g)
 		grid_put(g, 1, 0, g->cols, "larger, or q quits", ROLE_TEXT);
 		return;
 	}
-	if (p->mode != MODE_LIST && p->mode != MODE_DATE)
+	if (p->mode != MODE_LIST && !question(p->mode))
 		draw_text(p, g);
 	else if (p->loaded)
 		draw_night(p, g);

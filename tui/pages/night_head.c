@@ -97,6 +97,8 @@ static void sun_text(struct night_head *h, const struct run *r, const struct nig
 	number_text_fixed(v->dark.usable_h, 1, hours);
 	snprintf(h->sun, sizeof h->sun, "Sunset %s  dusk %s  dawn %s  sunrise %s %s %s h below %s deg", set,
 		 dusk, dawn, rise, h->zone, hours, limit);
+	snprintf(h->sun_short, sizeof h->sun_short, "dusk %s  dawn %s %s  %s h below %s deg", dusk, dawn,
+		 h->zone, hours, limit);
 	if (!(v->dark.usable_h > 0.0))
 		snprintf(h->remark, sizeof h->remark,
 			 "No dark hour: the Sun does not get below %s deg in this night.", limit);
@@ -180,11 +182,14 @@ static struct jd2 bjd_now(const struct run *r, const struct night *night, const 
 static void clocks_text(struct night_head *h, const struct run *r, const struct night_view *view,
 			const struct night_row *selected, struct utc now)
 {
-	char local[64], utc[64], bjd[NUMBER_TEXT_MAX];
-	clock_text(r->zone, now, local, sizeof local);
+	char utc[64], bjd[NUMBER_TEXT_MAX];
+	clock_text(r->zone, now, h->clock, sizeof h->clock);
 	clock_text(NULL, now, utc, sizeof utc);
-	int used = r->zone ? snprintf(h->clocks, sizeof h->clocks, "%s   %s", local, utc)
-			   : snprintf(h->clocks, sizeof h->clocks, "%s (zone of the site unknown)", utc);
+	if (r->zone)
+		snprintf(h->clocks_short, sizeof h->clocks_short, "%s   %s", h->clock, utc);
+	else
+		snprintf(h->clocks_short, sizeof h->clocks_short, "%s (zone of the site unknown)", utc);
+	int used = snprintf(h->clocks, sizeof h->clocks, "%s", h->clocks_short);
 	if (!selected)
 		return;
 	number_text_jd2(bjd_now(r, &view->night, &selected->star, now), 5, bjd);
@@ -252,13 +257,15 @@ static void next_text(struct night_head *h, const struct night_view *view, const
 		snprintf(more, sizeof more, " (+%zu)", running - 1);
 	if (next) {
 		span_text(next->on_d - now_d, left, sizeof left);
-		snprintf(comes, sizeof comes, "next: %s, on target in %s", next->name, left);
+		snprintf(comes, sizeof comes, "next: %s, be on in %s", next->name, left);
 	} else {
 		snprintf(comes, sizeof comes, "%s",
 			 rows->n > 0 ? "nothing more comes up tonight" : "no window tonight");
 	}
-	h->next[0] = '\0';
+	h->next[0] = h->next_less[0] = '\0';
 	join(h->next, sizeof h->next, dusk);
+	join(h->next_less, sizeof h->next_less, runs);
+	join(h->next_less, sizeof h->next_less, comes);
 	join(h->next, sizeof h->next, runs);
 	size_t used = strlen(h->next);
 	snprintf(h->next + used, sizeof h->next - used, "%s", more);
@@ -286,4 +293,5 @@ void night_head_tick(struct night_head *h, const struct run *r, const struct nig
 		snprintf(h->next, sizeof h->next, "This night begins in %s; . comes back to tonight.", left);
 	else
 		snprintf(h->next, sizeof h->next, "This night is over; . comes back to tonight.");
+	snprintf(h->next_less, sizeof h->next_less, "%s", h->next);
 }

@@ -9,12 +9,15 @@
 
 struct night_head {
 	char site[NAME_BYTES_MAX + 80], name[48];
-	char sun[200], moon[120], limits[120];
+	char sun[200], sun_short[160], moon[120], limits[120]; /* the short ones for narrow screens */
 	char zone[24];	  /* of the times in the list: `MDT`, `local` on a night of a clock change, `UTC` */
 	char remark[200]; /* what is unusual about the night, else "" */
 	/* these change with the clock */
-	char relative[40], clocks[NAME_BYTES_MAX + 160], moon_now[24], next[2 * NAME_BYTES_MAX + 200];
-	char next_short[NAME_BYTES_MAX + 100]; /* what is next, else what runs, for narrow screens */
+	char relative[40], moon_now[24];
+	char clocks[NAME_BYTES_MAX + 160], clocks_short[140], clock[64]; /* three, two, the local one */
+	char next[2 * NAME_BYTES_MAX + 200],
+	    next_less[2 * NAME_BYTES_MAX + 200]; /* the latter without dusk */
+	char next_short[NAME_BYTES_MAX + 100];	 /* what is next, else what runs, for narrow screens */
 	bool tonight;
 };
 /* What holds for a night as long as it is shown. */

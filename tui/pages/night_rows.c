@@ -17,23 +17,25 @@ const struct row_column row_columns[ROW_CELLS] = {
     [ROW_NAME] = {"target", "", 13, 0, false, NULL, "The target; (occ) marks an occultation."},
     [ROW_ON] = {"be on", NULL, 5, 0, true, "usable_start_utc", NULL},
     [ROW_T1] = {"T1", NULL, 5, 0, true, "t1_utc", NULL},
-    [ROW_MID] = {"mid", NULL, 5, 112, true, "mid_utc", NULL},
+    [ROW_MID] = {"mid", NULL, 5, 132, true, "mid_utc", NULL},
     [ROW_T4] = {"T4", NULL, 5, 0, true, "t4_utc", NULL},
     [ROW_LEAVE] = {"leave", NULL, 5, 0, true, "usable_end_utc", NULL},
     [ROW_ERROR] = {"sigma", "min", 5, 0, true, "sigma_min", NULL},
     [ROW_COVER] = {"cover", "BIFEA", 5, 0, false, NULL,
 		   "Usable share of five parts: Before, Ingress, Flat, Egress, After."},
-    [ROW_INGRESS] = {"in", "%", 4, 120, true, "chance_ingress", NULL},
-    [ROW_EGRESS] = {"eg", "%", 4, 120, true, "chance_egress", NULL},
+    [ROW_INGRESS] = {"in", "%", 4, 152, true, "chance_ingress", NULL},
+    [ROW_EGRESS] = {"eg", "%", 4, 152, true, "chance_egress", NULL},
     [ROW_DONE] = {"done", "%", 4, 0, true, "chance_done", NULL},
-    [ROW_ALT] = {"alt", "deg", 4, 96, true, "alt_mid_deg", NULL},
-    [ROW_AIRMASS] = {"airm", "", 5, 104, true, "airmass_mid", NULL},
-    [ROW_MOON] = {"Moon", "deg", 4, 120, true, "moon_sep_deg", NULL},
-    [ROW_DEPTH] = {"depth", "ppt", 5, 136, true, "depth_ppt", NULL},
-    [ROW_MAG] = {"mag", "", 5, 136, true, NULL, "Magnitude of the star, in the band that its source gives."},
+    [ROW_ALT] = {"alt", "deg", 4, 116, true, "alt_mid_deg", NULL},
+    [ROW_AIRMASS] = {"airm", "", 5, 144, true, "airmass_mid", NULL},
+    [ROW_MOON] = {"Moon", "deg", 4, 144, true, "moon_sep_deg", NULL},
+    [ROW_DEPTH] = {"depth", "ppt", 5, 180, true, "depth_ppt", NULL},
+    [ROW_MAG] = {"mag", "", 5, 180, true, NULL, "Magnitude of the star, in the band that its source gives."},
     [ROW_LOST] = {"lost by", "", 12, 74, false, "lost_by", NULL},
+    [ROW_STRIP] = {"strip", "", 20, 100, false, NULL,
+		   "The event drawn as a light curve over the night; see the pictures below."},
     [ROW_FLAGS] =
-	{"doubts", "", 20, 156, false, NULL,
+	{"doubts", "", 20, 200, false, NULL,
 	 "What is doubtful, as words; +N counts further doubts that most ephemerides share. The details say "
 	 "them all."},
 };
@@ -130,7 +132,7 @@ static void lost_text(const struct night_row *row, bool words, char *out, size_t
 	out[0] = '\0';
 	if (w->event.flags & FLAG_BIT(FLAG_SUN_UP))
 		append(out, n, "SUN UP");
-	if (!row->has_chance) {
+	if (!row->has_chance && (words || !*out)) { /* the column of sigma tells it, too */
 		append(out, n, *out ? ", " : "");
 		append(out, n, without_chance(&w->event));
 	}
@@ -232,14 +234,11 @@ enum status night_rows_make(struct night_rows *rows, const struct night_view *vi
 		return err_set(e, ST_MEMORY, "no memory for %zu windows", view->list.n);
 	night_rows_free(rows);
 	rows->row = row;
-	for (int chance = 1; chance >= 0; chance--)
-		for (size_t i = 0; i < view->list.n; i++) {
-			const struct window *w = &view->list.w[i];
-			if (!isnan(w->chance.done) != (chance == 1))
-				continue;
-			fill_row(&rows->row[rows->n], w, view, leap, zone);
-			rows->long_shots += rows->row[rows->n++].long_shot;
-		}
+	for (size_t i = 0; i < view->list.n; i++) {
+		fill_row(&rows->row[i], &view->list.w[i], view, leap, zone);
+		rows->long_shots += rows->row[i].long_shot;
+	}
+	rows->n = rows->total = view->list.n;
 	night_rows_tick(rows, -1.0, false);
 	return ST_OK;
 }
@@ -265,17 +264,17 @@ void night_rows_tick(struct night_rows *rows, double now_d, bool tonight)
 	static const char *const words[] = {
 	    [STATE_AHEAD] = "", [STATE_NEXT] = "next", [STATE_NOW] = "now", [STATE_PAST] = "past"};
 	struct night_row *next = NULL;
-	for (size_t i = 0; i < rows->n; i++) {
+	for (size_t i = 0; i < rows->total; i++) {
 		struct night_row *row = &rows->row[i];
 		bool begun = now_d >= row->on_d && row->usable;
 		row->state = now_d > row->leave_d ? STATE_PAST : begun ? STATE_NOW : STATE_AHEAD;
-		if (tonight && row->state == STATE_AHEAD && row->usable && row->has_chance &&
+		if (tonight && i < rows->n && row->state == STATE_AHEAD && row->usable && row->has_chance &&
 		    !row->long_shot && comes_before(row, next))
 			next = row;
 	}
 	if (next)
 		next->state = STATE_NEXT;
-	for (size_t i = 0; i < rows->n; i++)
+	for (size_t i = 0; i < rows->total; i++)
 		snprintf(rows->row[i].text[ROW_STATE], ROW_CELL_BYTES, "%s", words[rows->row[i].state]);
 }
 

@@ -31,6 +31,7 @@ enum row_cell {
 	ROW_DEPTH,
 	ROW_MAG,
 	ROW_LOST,
+	ROW_STRIP,
 	ROW_FLAGS,
 	ROW_CELLS
 };
@@ -53,7 +54,7 @@ struct night_row {
 	const struct window *window; /* borrowed from the night's list */
 	struct star star;
 	char name[NAME_BYTES_MAX + 8];	      /* an occultation is marked */
-	char text[ROW_CELLS][ROW_CELL_BYTES]; /* but name, cover, lost and flags */
+	char text[ROW_CELLS][ROW_CELL_BYTES]; /* but name, cover, lost, strip and flags */
 	enum glyph cover[PART_COUNT];
 	enum role chance_role;
 	char lost[ROW_LOST_BYTES], lost_long[ROW_LOST_BYTES];
@@ -64,11 +65,12 @@ struct night_row {
 };
 struct night_rows {
 	struct night_row *row; /* the rows'; night_rows_free */
-	size_t n, long_shots;
+	size_t n, total;       /* those behind the first n are left out by a filter */
+	size_t long_shots;     /* of total */
 };
 
-/* Replaces the rows by those of a view, windows without a chance last. zone NULL: UTC. ST_MEMORY: unchanged.
- */
+/* Replaces the rows by those of a view, in its order (night_sort.h and night_filter.h arrange them). zone
+ * NULL: UTC. ST_MEMORY: unchanged. */
 MUST_USE enum status night_rows_make(struct night_rows *rows, const struct night_view *view,
 				     const struct leap_table *leap, const struct zone *zone, struct err *e);
 void night_rows_free(struct night_rows *rows);

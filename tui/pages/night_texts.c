@@ -2,15 +2,17 @@
  * Texts of the page that do not depend on a window: help, limits, first run. */
 #include "tui/pages/night_detail.h"
 
+#include "ephem/angle_text.h"
 #include "ephem/number_text.h"
 #include "tui/cautions.h"
+#include "tui/pages/night_sort.h"
 #include "tui/parts/columns.h"
 #include "tui/parts/keys.h"
 
 #include <math.h>
 #include <stdio.h>
 
-enum { HELP_INDENT = 14, FIGURE_INDENT = 14, PLAIN_INDENT = 2 };
+enum { HELP_INDENT = 14, FIGURE_INDENT = 14, LEGEND_INDENT = 8, PLAIN_INDENT = 2, CHOICE_COLUMNS = 470 };
 
 static void heading(struct text_view *v, const char *text)
 {
@@ -46,21 +48,72 @@ static void figure_lines(struct text_view *v)
 	}
 }
 
-static void cover_legend(struct text_view *v)
+/* What each picture means; glyphs of one line belong together. */
+static const struct {
+	enum glyph glyph[2];
+	const char *sentence;
+} legend[] = {
+    {{GLYPH_SHARE_ALL, GLYPH_COUNT}, "Cover: this part can be observed whole."},
+    {{GLYPH_SHARE_MOST, GLYPH_COUNT}, "Cover: at least half of it."},
+    {{GLYPH_SHARE_SOME, GLYPH_COUNT}, "Cover: less than half."},
+    {{GLYPH_SHARE_NONE, GLYPH_COUNT}, "Cover: nothing of it."},
+    {{GLYPH_SHARE_NO_PART, GLYPH_COUNT}, "Cover: this event has no such part."},
+    {{GLYPH_DAY, GLYPH_COUNT}, "Sky band and strip: the Sun is up."},
+    {{GLYPH_TWILIGHT, GLYPH_COUNT}, "The Sun is down, and above its limit: nothing may be observed."},
+    {{GLYPH_LATE, GLYPH_COUNT}, "Sky band: the Sun is below its limit and above -18 deg."},
+    {{GLYPH_MOON, GLYPH_COUNT},
+     "Sky band: the Moon is up, less than half lit. In the picture of altitudes: where it stands."},
+    {{GLYPH_MOON_BRIGHT, GLYPH_COUNT}, "Sky band: the Moon is up and more than half lit."},
+    {{GLYPH_FREE, GLYPH_COUNT}, "Strip: nothing happens; the star can be observed. Blank: it can't."},
+    {{GLYPH_PAD, GLYPH_COUNT}, "Strip: kept for an event that comes early or late (pad)."},
+    {{GLYPH_BASELINE, GLYPH_COUNT}, "Strip: baseline before or after."},
+    {{GLYPH_INGRESS, GLYPH_EGRESS}, "Strip: ingress, egress."},
+    {{GLYPH_FLAT, GLYPH_MID}, "Strip: flat part, mid-time."},
+    {{GLYPH_LOST_RESERVE, GLYPH_COUNT}, "Strip: pad or baseline that is lost."},
+    {{GLYPH_LOST, GLYPH_LOST_MID},
+     "Strip: ingress, flat part or egress that is lost; mid-time that is lost."},
+    {{GLYPH_EARLIER, GLYPH_LATER}, "Strip: the reserve begins before, or ends after what is shown."},
+    {{GLYPH_NOW, GLYPH_COUNT}, "Now."},
+    {{GLYPH_LIMIT, GLYPH_COUNT}, "Altitudes: the limit."},
+    {{GLYPH_MASK, GLYPH_COUNT}, "Altitudes: the horizon mask in the star's direction."},
+};
+
+static void legend_lines(struct text_view *v, enum tier tier)
 {
-	/* the view is written before the tier of the terminal is known to it: both forms are named */
-	text_view_add(v, ROLE_TEXT, FIGURE_INDENT,
-		      "              In the picture of the cover a full block (#) is a part that can be "
-		      "observed whole, a high one (+) "
-		      "at least half of it, a low one (-) less than half, x none; a dot is a part that this "
-		      "event has not.");
-	text_view_add(v, ROLE_TEXT, FIGURE_INDENT,
-		      "              Under `lost by` the letters B I F E A name the parts, then follows what "
-		      "takes them: Sun, low "
-		      "(altitude), mask, Moon, air (airmass), noon (it runs into the neighbouring night).");
+	text_view_add(
+	    v, ROLE_TEXT, PLAIN_INDENT,
+	    "A strip is the light of the star over the night, high outside the event and low in it. A "
+	    "cell with the middle of a limb or the mid-time shows that; an hour begins in the cell of "
+	    "its first digit. In the picture of altitudes the star's line is whole where the star can "
+	    "be observed and broken where it can't; 1 2 m 3 4 under it are the contacts.");
+	for (size_t i = 0; i < sizeof legend / sizeof legend[0]; i++) {
+		enum glyph second = legend[i].glyph[1];
+		text_view_addf(v, ROLE_TEXT, LEGEND_INDENT, "  %s %s   %s",
+			       glyph_text(legend[i].glyph[0], tier),
+			       second == GLYPH_COUNT ? " " : glyph_text(second, tier), legend[i].sentence);
+	}
+	text_view_add(
+	    v, ROLE_TEXT, PLAIN_INDENT,
+	    "Under `lost by` the letters B I F E A name the parts, then follows what takes them: Sun, "
+	    "low (altitude), mask, Moon, air (airmass), noon (it runs into the neighbouring night).");
 }
 
-void help_lines(struct text_view *v, int width)
+static void filter_lines(struct text_view *v)
+{
+	text_view_add(
+	    v, ROLE_TEXT, PLAIN_INDENT,
+	    "`done > 50 & alt > 40` shows windows for which both are true, `|` between them those for "
+	    "which one is; `on < 23:00` compares with the time as it is shown, 12:00 to 23:59 in the "
+	    "evening; `lost = Moon` and `tags != old` look into texts; a text alone, `tern 1`, is looked "
+	    "for in name and tags, `!tern 1` its absence. What is unknown makes no comparison true.");
+	text_view_add(
+	    v, ROLE_TEXT, PLAIN_INDENT,
+	    "Words: on t1 mid t4 leave sigma cover in eg done alt airm moon depth mag (as in the list, "
+	    "chances in percent), name tags lost doubts state kind, and the column names of `wane night "
+	    "--format csv` (chances as shares).");
+}
+
+void help_lines(struct text_view *v, int width, enum tier tier)
 {
 	text_view_start(v, width);
 	text_view_add(v, ROLE_STRONG, 0, "Keys (q, ? or Esc comes back)");
@@ -68,13 +121,45 @@ void help_lines(struct text_view *v, int width)
 	heading(v, "Cautions");
 	for (size_t i = 0; i < caution_count; i++)
 		text_view_add(v, ROLE_TEXT, PLAIN_INDENT, cautions[i]);
+	heading(v, "Pictures");
+	legend_lines(v, tier);
+	heading(v, "Filter");
+	filter_lines(v);
 	heading(v, "Figures");
 	figure_lines(v);
-	cover_legend(v);
 	heading(v, "Doubts");
 	for (int f = 0; f < FLAG_COUNT; f++)
 		text_view_addf(v, ROLE_TEXT, PLAIN_INDENT, "%s: %s", flag_rules[f].word,
 			       flag_rules[f].sentence);
+}
+
+void sort_lines(struct text_view *v, int sort, bool turned)
+{
+	text_view_start(v, CHOICE_COLUMNS);
+	text_view_add(v, ROLE_STRONG, 0, "Sort the list by");
+	for (int i = 0; i < SORT_COUNT; i++)
+		text_view_addf(v, i == sort ? ROLE_STRONG : ROLE_TEXT, 0, "  %c  %s%s%s", sort_rules[i].key,
+			       sort_rules[i].word, sort_rules[i].greatest_first ? ", greatest first" : "",
+			       i != sort ? ""
+			       : turned	 ? " (now, turned round)"
+					 : " (now; again turns it round)");
+}
+
+void site_lines(struct text_view *v, const struct site_list *sites)
+{
+	size_t most = TEXT_LINES_MAX - CHOICE_FIRST_LINE;
+	text_view_start(v, CHOICE_COLUMNS);
+	text_view_addf(v, ROLE_STRONG, 0, "Stand at which of the stored sites?%s",
+		       sites->n > most ? " (the first of them)" : "");
+	for (size_t i = 0; i < sites->n && i < most; i++) {
+		const struct site *s = &sites->site[i];
+		char name[NAME_BYTES_MAX], zone[80], lat[ANGLE_TEXT_MAX], lon[ANGLE_TEXT_MAX];
+		text_clean(s->name, name, sizeof name);
+		text_clean(s->zone, zone, sizeof zone);
+		lat_text(s->lat_deg, 2, lat);
+		lon_text(s->lon_east_deg, 2, lon);
+		text_view_addf(v, ROLE_TEXT, 0, "  %s  %s %s  %.0f m  %s", name, lat, lon, s->height_m, zone);
+	}
 }
 
 void limit_lines(struct text_view *v, int width, const struct limits *l, const char *remark)

@@ -1,7 +1,8 @@
 /* SPDX-License-Identifier: MIT */
 #include "tui/pages/page_run.h"
 
-#include "tui/pages/night_page.h"
+#include "tui/pages/page.h"
+#include "tui/parts/keys.h"
 #include "tui/parts/term.h"
 
 #include <math.h>
@@ -11,50 +12,47 @@
 
 struct loop {
 	struct run *run;
-	struct night_page *page;
+	const struct page *page; /* the one on the screen */
+	void *state;		 /* its own */
 	struct grid grid;
 	bool over, whole;
+	long data_version; /* of the store, when it was read */
 };
 
-/* The night with all that is hidden otherwise. */
-static enum status add_long_shots(struct run *r, struct night_view *v, struct err *e)
+static void say(struct loop *l, enum role role, const char *text)
 {
-	const struct window_choice choice = {.kinds = r->kinds, .all = true};
-	double min_chance = run_min_chance(r, true);
-	enum status s = night_windows(&v->night, r->prepared, r->n_prepared, &choice, &v->list, NULL, e);
-	size_t kept = 0;
-	for (size_t i = 0; s == ST_OK && i < v->list.n; i++) {
-		const struct window *w = &v->list.w[i];
-		if (r->options->all || window_hidden(w) || window_listed(w, min_chance))
-			v->list.w[kept++] = *w;
-	}
-	v->list.n = kept;
-	v->hidden = 0;
-	return s;
-}
-
-/* The night that the page wants; what was shown stays when it can't be made. */
-static enum status load_night(struct loop *l, struct err *e)
-{
-	struct night_view view = {.hidden = 0};
-	struct run *r = l->run;
-	enum status s = run_night(r, l->page->wanted_mjd, true, &view, e);
-	if (s == ST_OK && l->page->show_long_shots)
-		s = add_long_shots(r, &view, e);
-	if (s != ST_OK) {
-		night_view_free(&view);
-		return s;
-	}
-	return night_page_take(l->page, &view, e);
+	l->page->say(l->state, role, text);
 }
 
 static void reload(struct loop *l)
 {
 	struct err e;
-	if (load_night(l, &e) != ST_OK) {
-		l->page->wanted_mjd = l->page->view.night.mjd;
-		night_page_say(l->page, ROLE_BAD, e.text);
+	if (l->page->load(l->state, l->run, &e) != ST_OK)
+		say(l, ROLE_BAD, e.text);
+}
+
+static long data_version(const struct run *r)
+{
+	long version = 0;
+	return r->store && store_data_version(r->store, &version, NULL) == ST_OK ? version : 0;
+}
+
+/* Another program changed the store: everything is read again. */
+static void follow_store(struct loop *l)
+{
+	struct err e;
+	long version = data_version(l->run);
+	if (version == l->data_version)
+		return;
+	l->data_version = version;
+	l->page->drop(l->state);
+	if (run_reload(l->run, &e) != ST_OK) {
+		l->data_version = -1; /* tried again with the next tick */
+		say(l, ROLE_BAD, e.text);
+		return;
 	}
+	say(l, ROLE_TEXT, "Another program changed what is stored; it was read again.");
+	reload(l);
 }
 
 static void resize(struct loop *l)
@@ -63,18 +61,17 @@ static void resize(struct loop *l)
 	struct err e;
 	term_size(&rows, &cols);
 	if (grid_resize(&l->grid, rows, cols, &e) != ST_OK) {
-		night_page_say(l->page, ROLE_BAD, e.text);
+		say(l, ROLE_BAD, e.text);
 		return;
 	}
-	night_page_size(l->page, l->grid.rows, l->grid.cols);
+	l->page->size(l->state, l->grid.rows, l->grid.cols, l->grid.tier);
 	l->whole = true;
 }
 
 static void change_palette(struct loop *l)
 {
 	if (!term_has_colour()) {
-		night_page_say(l->page, ROLE_WARN,
-			       "Colours are off here (NO_COLOR, or a terminal without them).");
+		say(l, ROLE_WARN, "Colours are off here (NO_COLOR, or a terminal without them).");
 		return;
 	}
 	enum palette usual =
@@ -86,7 +83,7 @@ static void change_palette(struct loop *l)
 static void serve(struct loop *l, enum want want)
 {
 	switch (want) {
-	case WANT_NIGHT:
+	case WANT_LOAD:
 		reload(l);
 		break;
 	case WANT_REPAINT:
@@ -94,7 +91,7 @@ static void serve(struct loop *l, enum want want)
 		break;
 	case WANT_SUSPEND:
 		if (!term_suspend())
-			night_page_say(l->page, ROLE_WARN, "There is no shell here to come back from.");
+			say(l, ROLE_WARN, "There is no shell here to come back from.");
 		l->whole = true;
 		break;
 	case WANT_RED:
@@ -116,7 +113,7 @@ static void drain_keys(struct loop *l)
 		if (code == PRESS_RESIZE)
 			resize(l);
 		else
-			serve(l, night_page_key(l->page, code));
+			serve(l, l->page->key(l->state, code));
 	}
 }
 
@@ -130,8 +127,9 @@ static double to_next_tick_s(const struct run *r, struct utc now)
 static void turn(struct loop *l)
 {
 	struct utc now = wall_now(&l->run->wall);
-	night_page_tick(l->page, now);
-	night_page_draw(l->page, &l->grid);
+	follow_store(l);
+	l->page->tick(l->state, now);
+	l->page->draw(l->state, &l->grid);
 	term_show(&l->grid, l->whole);
 	l->whole = false;
 	switch (term_wait(to_next_tick_s(l->run, now))) {
@@ -150,22 +148,21 @@ static void turn(struct loop *l)
 
 static enum status start(struct loop *l, int32_t evening_mjd, struct err *e)
 {
-	night_page_open(l->page, l->run);
-	l->page->wanted_mjd = evening_mjd;
-	night_page_tick(l->page, wall_now(&l->run->wall));
-	if (l->page->mode == MODE_FIRST_RUN)
-		return ST_OK;
-	return load_night(l, e);
+	l->data_version = data_version(l->run);
+	l->page->open(l->state, l->run);
+	l->page->go_to(l->state, evening_mjd);
+	l->page->tick(l->state, wall_now(&l->run->wall));
+	return l->page->load(l->state, l->run, e);
 }
 
 int page_run(struct run *r, int32_t evening_mjd, struct err *e)
 {
-	struct loop l = {.run = r, .page = malloc(sizeof *l.page)};
+	struct loop l = {.run = r, .page = &page_night, .state = malloc(page_night.bytes)};
 	const struct term_options look = {.utf8 = r->env->utf8,
 					  .no_color = r->env->no_color,
 					  .glyphs = r->settings.glyphs,
 					  .palette = r->settings.palette};
-	if (!l.page) {
+	if (!l.state) {
 		err_set(e, ST_MEMORY, "no memory for the page");
 		return 1;
 	}
@@ -180,7 +177,7 @@ int page_run(struct run *r, int32_t evening_mjd, struct err *e)
 		term_close();
 	}
 	grid_close(&l.grid);
-	night_page_close(l.page);
-	free(l.page);
+	l.page->close(l.state);
+	free(l.state);
 	return s == ST_OK ? 0 : 1;
 }

@@ -16,6 +16,17 @@ static const char *const glyphs[GLYPH_COUNT][TIER_COUNT] = {
     [GLYPH_SHARE_NONE] = {"×", "x", "x"}, [GLYPH_SHARE_NO_PART] = {"·", ".", "."},
     [GLYPH_MORE_ABOVE] = {"↑", "^", "^"}, [GLYPH_MORE_BELOW] = {"↓", "v", "v"},
     [GLYPH_DEGREE] = {"°", "°", "d"},	  [GLYPH_PLUS_MINUS] = {"±", "±", "~"},
+    [GLYPH_BLANK] = {" ", " ", " "},	  [GLYPH_DAY] = {"≡", "%", "%"},
+    [GLYPH_TWILIGHT] = {"=", "=", "="},	  [GLYPH_LATE] = {"-", "-", "-"},
+    [GLYPH_MOON] = {"(", "(", "("},	  [GLYPH_MOON_BRIGHT] = {"O", "O", "O"},
+    [GLYPH_FREE] = {"·", "·", "."},	  [GLYPH_PAD] = {"⠉", "'", "'"},
+    [GLYPH_BASELINE] = {"▔", "¯", "\""},  [GLYPH_INGRESS] = {"╲", "\\", "\\"},
+    [GLYPH_FLAT] = {"▁", "_", "_"},	  [GLYPH_MID] = {"▾", "v", "v"},
+    [GLYPH_EGRESS] = {"╱", "/", "/"},	  [GLYPH_LOST_RESERVE] = {":", ":", ":"},
+    [GLYPH_LOST] = {"!", "!", "!"},	  [GLYPH_LOST_MID] = {"╳", "X", "X"},
+    [GLYPH_EARLIER] = {"«", "«", "<"},	  [GLYPH_LATER] = {"»", "»", ">"},
+    [GLYPH_NOW] = {"¦", "¦", "|"},	  [GLYPH_LIMIT] = {"╌", "-", "-"},
+    [GLYPH_MASK] = {"^", "^", "^"},
 };
 
 const char *glyph_text(enum glyph glyph, enum tier tier)
@@ -157,6 +168,22 @@ int grid_glyph(struct grid *g, int row, int col, enum glyph glyph, enum role rol
 	uint32_t cp = '?';
 	if (utf8_decode(text, strlen(text), &cp) == 0)
 		return 0;
+	set_cell(g, row, col, cp, 1, role);
+	return 1;
+}
+
+int grid_dots(struct grid *g, int row, int col, uint8_t dots, enum role role)
+{
+	/* dots 1 to 3 and 7 of the Unicode chart stand left, 4 to 6 and 8 right, from above */
+	static const uint8_t chart[8] = {0, 1, 2, 6, 3, 4, 5, 7};
+	if (row < 0 || row >= g->rows || col < 0 || col >= g->cols || dots == 0)
+		return 0;
+	uint32_t cp = 0x2800;
+	for (int bit = 0; bit < 8; bit++)
+		if (dots & (1u << bit))
+			cp |= 1u << chart[bit];
+	if (g->tier != TIER_UNICODE)
+		cp = !(dots & 0xCCu) ? '"' : !(dots & 0x33u) ? ',' : ';';
 	set_cell(g, row, col, cp, 1, role);
 	return 1;
 }

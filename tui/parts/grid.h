@@ -43,6 +43,30 @@ enum glyph {
 	GLYPH_MORE_BELOW,
 	GLYPH_DEGREE,
 	GLYPH_PLUS_MINUS,
+	GLYPH_BLANK,
+	/* the sky over the night: strokes count the light of the Sun */
+	GLYPH_DAY,	   /* the Sun is up */
+	GLYPH_TWILIGHT,	   /* it is set, and above its limit */
+	GLYPH_LATE,	   /* below its limit, above -18 deg */
+	GLYPH_MOON,	   /* the Moon is up, less than half lit */
+	GLYPH_MOON_BRIGHT, /* up and more than half lit */
+	/* an event over the night: a light curve, high where the star is whole, low where it wanes */
+	GLYPH_FREE,	/* nothing is planned; the star could be observed */
+	GLYPH_PAD,	/* kept for an event that comes early or late */
+	GLYPH_BASELINE, /* wanted baseline */
+	GLYPH_INGRESS,
+	GLYPH_FLAT,
+	GLYPH_MID,
+	GLYPH_EGRESS,
+	GLYPH_LOST_RESERVE, /* pad or baseline that can't be observed */
+	GLYPH_LOST,	    /* ingress, flat part or egress that can't be observed */
+	GLYPH_LOST_MID,
+	GLYPH_EARLIER, /* it begins before the axis */
+	GLYPH_LATER,   /* it ends after it */
+	GLYPH_NOW,
+	/* in the picture of altitudes */
+	GLYPH_LIMIT,
+	GLYPH_MASK,
 	GLYPH_COUNT
 };
 /* Text of a glyph in a tier, UTF-8, one column wide (the degree sign of ASCII is `d`). */
@@ -75,6 +99,9 @@ int grid_put(struct grid *g, int row, int col, int width, const char *text, enum
 /* The same, ending at the right edge of the width. */
 int grid_put_right(struct grid *g, int row, int col, int width, const char *text, enum role role);
 int grid_glyph(struct grid *g, int row, int col, enum glyph glyph, enum role role);
+/* A cell of a plot, 2 x 4 dots: bit 4 * column + row, rows from above. Braille where the tier has it, else
+ * what tells its upper from its lower half. */
+int grid_dots(struct grid *g, int row, int col, uint8_t dots, enum role role);
 /* Fills a whole row with a rule. */
 void grid_rule(struct grid *g, int row);
 /* Marks cells [col, col + width) of a row as selected. */

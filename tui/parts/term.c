@@ -243,7 +243,11 @@ void term_size(int *rows, int *cols)
  */
 static void fill(cchar_t *out, const struct cell *c)
 {
-	struct look look = look_of(term.palette, term.many_colours, (enum role)c->role);
+	/* a lit bar has one look: colours are hard to tell in it, and changes of look are what costs to send
+	 */
+	bool bar = c->selected && term.palette != PALETTE_RED;
+	enum role role = bar ? ROLE_STRONG : (enum role)c->role;
+	struct look look = look_of(term.palette, term.many_colours, role);
 	attr_t attr = look.attr;
 	if (c->selected)
 		attr |= term.palette == PALETTE_RED ? A_BOLD
@@ -257,8 +261,31 @@ static void fill(cchar_t *out, const struct cell *c)
 		text[0] = L'?';
 		text[1] = L'\0';
 	}
-	short pair = term.palette == PALETTE_NONE ? 0 : (short)(c->role + 1);
+	short pair = term.palette == PALETTE_NONE ? 0 : (short)(role + 1);
 	setcchar(out, text, attr, pair, NULL);
+}
+
+static bool is_plain_blank(const struct cell *c)
+{
+	return c->cp == ' ' && c->mark[0] == 0 && !c->selected;
+}
+
+/* A blank shows nothing of a role: the few between two texts of one role take it, so that they are sent
+ * without switching looks to and fro. Every palette has one background for all roles. Returns the role for
+ * column col; *until: where the run of blanks ends for which it holds. */
+static enum role sent_role(const struct cell *line, int col, int cols, int *until)
+{
+	enum { RUN_MAX = 20 };
+	enum role own = (enum role)line[col].role;
+	*until = col + 1;
+	if (!is_plain_blank(&line[col]))
+		return own;
+	while (*until < cols && is_plain_blank(&line[*until]))
+		++*until;
+	if (col == 0 || *until == cols || *until - col > RUN_MAX)
+		return own;
+	const struct cell *left = &line[col - 1], *right = &line[*until];
+	return !left->selected && !right->selected && left->role == right->role ? (enum role)left->role : own;
 }
 
 static bool line_room(int cols)
@@ -281,11 +308,17 @@ void term_show(const struct grid *g, bool whole)
 		return;
 	erase();
 	for (int row = 0; row < g->rows && row < rows; row++) {
-		int n = 0;
+		const struct cell *line = &g->cell[row * g->cols];
+		int n = 0, until = 0;
+		enum role role = ROLE_TEXT;
 		for (int col = 0; col < g->cols && col < cols; col++) {
-			const struct cell *c = &g->cell[row * g->cols + col];
+			struct cell cell = line[col];
+			const struct cell *c = &cell;
 			if (c->width == 0)
 				continue;
+			if (col >= until)
+				role = sent_role(line, col, g->cols, &until);
+			cell.role = (uint8_t)role;
 			fill(&term.line[n++], c);
 			/* a `?` for a wide character takes one column: the second one is a blank */
 			if (c->width == 2 && wcwidth((wchar_t)c->cp) != 2) {

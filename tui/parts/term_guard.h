@@ -19,7 +19,8 @@ void guard_give_back(void);
 void guard_inside_mask(sigset_t *mask);
 /* Whether such a signal came since the last call. */
 bool guard_take_end(void);
-/* The program is about to leave for another reason: further such signals are ignored from guard_give_back on, as after an end. */
+/* The program is about to leave for another reason: further such signals are ignored from guard_give_back on,
+ * as after an end. */
 void guard_leave(void);
 bool guard_take_woken(void);
 /* Stops the process group's turn as ^Z does; false when no shell could wake it. */
