@@ -68,7 +68,12 @@ static enum status read_scale(const char *text, struct target *t, struct err *e)
 		i += length;
 	}
 	enum status s = read_text(FIELD_AT_SCALE, text, t, e);
-	return s == ST_OK ? standard_parse(text, &t->standard, e) : s;
+	if (s != ST_OK || standard_parse(text, &t->standard, NULL) == ST_OK)
+		return s;
+	(void)out_of_range(FIELD_AT_SCALE, text, "not a time scale", e);
+	if (e)
+		e->status = ST_SYNTAX;
+	return ST_SYNTAX;
 }
 
 static enum status read_one(int field, const char *text, struct target *t, struct err *e)
@@ -130,9 +135,12 @@ static double impact(const struct target *t)
 	return b * (1.0 - t->ecc * t->ecc) / (1.0 + t->ecc * sin(t->omega_deg * DEG_RAD));
 }
 
-/* Values that can't be true together. Comparisons with NAN are false: what is missing raises no doubt. */
+/* A period that is not counted, and values that can't be true together. Comparisons with NAN are false: what
+ * is missing raises no doubt. */
 static void doubt_pairs(struct target *t, uint64_t *doubts)
 {
+	if (t->period_d < PERIOD_MIN_D)
+		doubt(t, FIELD_AT_PERIOD, doubts);
 	if (t->t0_err_d > t->period_d)
 		doubt(t, FIELD_AT_T0_ERR, doubts);
 	if (t->period_err_d > t->period_d)
@@ -155,6 +163,7 @@ static const struct {
 	int field;
 	const char *why, *expected;
 } misfits[] = {
+    {FIELD_AT_PERIOD, "too short to be counted", "a period of at least 0.01 d"},
     {FIELD_AT_T0_ERR, "an error above the period", "an error of at most period_d"},
     {FIELD_AT_PERIOD_ERR, "an error above the period", "an error of at most period_d"},
     {FIELD_AT_COVARIANCE, "a covariance above the product of the errors",

@@ -5,13 +5,12 @@
 #include "db/target_rows.h"
 #include "db/text_clean.h"
 #include "db/write_csv.h"
+#include "ephem/near_word.h"
 
 #include <math.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
-
-enum { GOT_BYTES = 100 };
 
 struct importing {
 	struct store *store;
@@ -25,18 +24,25 @@ struct importing {
 
 static void say(struct importing *im, struct import_message m)
 {
-	char got[GOT_BYTES];
-	(void)text_clean(m.got, got, sizeof got);
+	char got[ERR_QUOTE_MAX];
+	err_quote(m.got, strlen(m.got), got);
 	m.got = got;
 	if (im->say)
 		im->say(im->ctx, &m);
 }
 
-/* A fault of the file as a whole: said with its place, and summed up in *e. */
+/* A fault of the file as a whole: said with its place. */
 static enum status file_fault(struct importing *im, struct import_message m, struct err *e)
 {
 	say(im, m);
-	return err_set(e, ST_SYNTAX, "nothing was stored: %s%s%s", m.field, *m.field ? ": " : "", m.text);
+	return err_set(e, ST_SYNTAX, "nothing was stored");
+}
+
+/* One whose text holds what was got and expected. */
+static struct import_message whole_message(long line, long column, const char *field, const struct err *why)
+{
+	return (struct import_message){
+	    .line = line, .column = column, .field = field, .text = why->text, .got = "", .expected = ""};
 }
 
 /* Parsers say `what (got "...", expected ...)`; got and expected are told apart from what by the message
@@ -72,6 +78,28 @@ static int field_of_header(const char *text, size_t n)
 	return field_find(name);
 }
 
+/* A column that is nobody's: left out, and which one may have been meant. */
+static void say_unknown(struct importing *im, const struct csv_cell *cell)
+{
+	const char *names[FIELD_COUNT], *near;
+	char name[ERR_QUOTE_MAX], expected[80] = "a column of wane import --help";
+	for (int f = 0; f < FIELD_COUNT; f++)
+		names[f] = fields[f].name;
+	err_quote(cell->text, cell->length, name);
+	for (char *c = name; *c; c++)
+		*c = (char)(*c >= 'A' && *c <= 'Z' ? *c - 'A' + 'a' : *c);
+	near = nearest_word(name, names, FIELD_COUNT);
+	if (near)
+		snprintf(expected, sizeof expected, "did you mean %s?", near);
+	say(im, (struct import_message){.line = cell->line,
+					.column = cell->column,
+					.field = "column",
+					.text = "unknown, left out",
+					.got = cell->text,
+					.expected = expected,
+					.warning = true});
+}
+
 static enum status map_columns(struct importing *im, const struct csv_row *header, struct err *e)
 {
 	im->columns = header->n;
@@ -83,14 +111,12 @@ static enum status map_columns(struct importing *im, const struct csv_row *heade
 		struct import_message m = {
 		    .line = cell->line, .column = cell->column, .field = "", .expected = ""};
 		if (f < 0) {
-			m.warning = true;
-			m.text = "unknown column, left out";
-			m.got = cell->text;
-			say(im, m);
+			say_unknown(im, cell);
 		} else if (im->column_of[f] >= 0) {
 			m.field = fields[f].name;
 			m.text = "the column stands twice";
 			m.got = cell->text;
+			m.expected = "each column once";
 			return file_fault(im, m, e);
 		} else {
 			im->column_of[f] = (int)i;
@@ -104,8 +130,8 @@ static enum status map_columns(struct importing *im, const struct csv_row *heade
 			    (struct import_message){.line = header->line,
 						    .column = 1,
 						    .field = fields[needed[i]].name,
-						    .text = "the table has no such column",
-						    .got = "",
+						    .text = "the header has no such column",
+						    .got = header->cell[0].text,
 						    .expected = "columns name, ra_deg, dec_deg and others"},
 			    e);
 	return ST_OK;
@@ -123,15 +149,16 @@ static bool empty_from(const struct csv_row *row, size_t from)
 
 static void say_cells(struct importing *im, const struct csv_row *row)
 {
-	char text[80], expected[48];
+	char text[80], got[48], expected[48];
 	snprintf(text, sizeof text, "%s cells than the header names",
 		 row->n < im->columns ? "fewer" : "more");
-	snprintf(expected, sizeof expected, "%zu cells, not %zu", im->columns, row->n);
+	snprintf(got, sizeof got, "%zu", row->n);
+	snprintf(expected, sizeof expected, "%zu cells", im->columns);
 	say(im, (struct import_message){.line = row->line,
 					.column = 1,
-					.field = "",
+					.field = "row",
 					.text = text,
-					.got = row->cell[0].text,
+					.got = got,
 					.expected = expected});
 }
 
@@ -166,6 +193,7 @@ static void count(struct import_report *report, enum put_result result, const st
 	report->same += result == PUT_SAME;
 	report->doubtful += r->doubts != 0;
 	report->scale_assumed += isfinite(r->t.t0.day) && r->t.standard.claim != SCALE_STATED;
+	report->too_short += (r->doubts >> FIELD_AT_PERIOD & 1) != 0;
 	report->no_ephemeris += !isfinite(r->t.t0.day) || !isfinite(r->t.period_d);
 }
 
@@ -201,29 +229,36 @@ static enum status take_row(struct importing *im, const struct csv_row *row, str
 	return st;
 }
 
+/* What csv_next gave, unless that was the end. */
+static enum status take_next(struct importing *im, int got, const struct csv_row *row,
+			     struct import_message bad, struct reading *r, struct err *e)
+{
+	if (got == CSV_BAD_ROW) {
+		im->report->read++;
+		im->report->refused++;
+		say(im, bad);
+		return ST_OK;
+	}
+	/* a line of separators says nothing */
+	return empty_from(row, 0) ? ST_OK : take_row(im, row, r, e);
+}
+
 static enum status take_rows(struct importing *im, struct csv *csv, struct err *e)
 {
 	struct csv_row row;
 	struct err why;
 	long line, column;
-	int more = 0;
+	int more = CSV_END;
 	struct reading *r = malloc(sizeof *r);
 	enum status st = r ? ST_OK : err_set(e, ST_MEMORY, "no memory for an import");
-	while (st == ST_OK && (more = csv_next(csv, &row, &line, &column, &why)) > 0)
-		if (!empty_from(&row, 0)) /* a line of separators says nothing */
-			st = take_row(im, &row, r, e);
+	while (st == ST_OK && (more = csv_next(csv, &row, &line, &column, &why)) != CSV_END &&
+	       more != CSV_BROKEN)
+		st = take_next(im, more, &row, whole_message(line, column, "row", &why), r, e);
 	free(r);
-	if (st == ST_OK && more < 0 && why.status == ST_MEMORY)
+	if (st == ST_OK && more == CSV_BROKEN && why.status == ST_MEMORY)
 		return err_set(e, ST_MEMORY, "%s", why.text);
-	if (st == ST_OK && more < 0)
-		return file_fault(im,
-				  (struct import_message){.line = line,
-							  .column = column,
-							  .field = "",
-							  .text = why.text,
-							  .got = "",
-							  .expected = ""},
-				  e);
+	if (st == ST_OK && more == CSV_BROKEN)
+		return file_fault(im, whole_message(line, column, "row", &why), e);
 	return st;
 }
 
@@ -257,14 +292,8 @@ enum status import_targets(struct store *s, const char *data, size_t n, const st
 	*report = (struct import_report){0};
 	enum status st = csv_open(data, n, &csv, &line, &column, &why);
 	if (st == ST_SYNTAX)
-		return file_fault(&im,
-				  (struct import_message){.line = line,
-							  .column = column,
-							  .field = "",
-							  .text = why.text,
-							  .got = "",
-							  .expected = ""},
-				  e);
+		return file_fault(
+		    &im, whole_message(line, column, file_looks_like(data, n) ? "file" : "header", &why), e);
 	if (st != ST_OK)
 		return err_set(e, st, "%s", why.text);
 	st = map_columns(&im, csv_header(csv), e);

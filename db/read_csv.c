@@ -1,6 +1,7 @@
 /* SPDX-License-Identifier: MIT */
 #include "db/read_csv.h"
 
+#include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
 
@@ -9,7 +10,8 @@ struct csv {
 	size_t n, at;
 	long line, column; /* of data[at] */
 	char separator;
-	bool ended; /* an error was met, or the end */
+	bool ended;	/* an error was met, or the end */
+	size_t cell_at; /* where the cell being read begins in data */
 	/* the row being read: texts one after the other, cells that point into them */
 	char *text;
 	size_t text_used, text_room;
@@ -78,18 +80,56 @@ struct place {
 	long line, column;
 };
 
+enum { GOT_BYTES = 80 }; /* more of a cell than a message shows */
+
+/* `why (got "the cell, up to its line's end", expected ...)` */
+static void say_cell(const struct csv *c, enum status s, const char *why, const char *expected, struct err *e)
+{
+	char got[ERR_QUOTE_MAX];
+	size_t n = 0;
+	const char *text = c->data + c->cell_at;
+	while (n < GOT_BYTES && c->cell_at + n < c->n && text[n] != '\n' && text[n] != '\r' &&
+	       (text[n] != c->separator || text[0] == '"'))
+		n++;
+	err_quote(text, n, got);
+	err_set(e, s, "%s (got \"%s\", expected %s)", why, got, expected);
+}
+
 static int fail(struct csv *c, struct place at, struct place *where, enum status s, struct err *e,
-		const char *why)
+		const char *why, const char *expected)
 {
 	c->ended = true;
 	*where = at;
-	err_set(e, s, "%s", why);
-	return -1;
+	if (s == ST_MEMORY)
+		err_set(e, s, "%s", why);
+	else
+		say_cell(c, s, why, expected, e);
+	return CSV_BROKEN;
 }
 
-/* One cell from the current place up to the separator or line end. 1 good, -1 a fault at *where. */
-static int read_cell(struct csv *c, size_t index, struct place *where, struct err *e)
+/* The first fault of a row that is read on all the same. */
+struct row_fault {
+	bool met;
+	struct place at;
+	struct err why;
+};
+
+static void note_fault(const struct csv *c, struct row_fault *f, struct place at, const char *why,
+		       const char *expected)
 {
+	if (f->met)
+		return;
+	f->met = true;
+	f->at = at;
+	say_cell(c, ST_SYNTAX, why, expected, &f->why);
+}
+
+/* One cell from the current place up to the separator or line end. CSV_ROW good, or read on behind a fault
+ * that is noted; CSV_BROKEN a fault at *where; CSV_BAD_ROW what follows in this line is of no use. */
+static int read_cell(struct csv *c, size_t index, struct row_fault *bad, struct place *where, struct err *e)
+{
+	static const char doubled[] = "a cell in quotes, with quotes inside it doubled";
+	c->cell_at = c->at;
 	struct place begin = {c->line, c->column};
 	bool quoted = !at_end(c) && c->data[c->at] == '"', open = quoted;
 	size_t start = c->text_used;
@@ -98,64 +138,79 @@ static int read_cell(struct csv *c, size_t index, struct place *where, struct er
 	for (;;) {
 		if (at_end(c) && open)
 			return fail(c, begin, where, ST_SYNTAX, e,
-				    "the quote that opens this cell is never closed");
+				    "the quote that opens this cell is never closed", "a closing quote");
 		if (!open && (at_line_end(c) || c->data[c->at] == c->separator))
 			break;
 		struct place here = {c->line, c->column};
 		char byte = c->data[c->at];
 		if (byte == '\0')
-			return fail(c, here, where, ST_SYNTAX, e, "a NUL byte can't stand in a table");
+			note_fault(c, bad, here, "a NUL byte can't stand in a table", "text");
 		if (byte == '"') {
-			if (!open)
-				return fail(c, here, where, ST_SYNTAX, e,
-					    quoted ? "text after the closing quote of a cell"
-						   : "a quote inside a cell that doesn't begin with one");
+			if (!open) {
+				note_fault(c, bad, here,
+					   quoted ? "text after the closing quote of a cell"
+						  : "a quote inside a cell that doesn't begin with one",
+					   doubled);
+				return CSV_BAD_ROW;
+			}
 			step(c);
 			if (at_end(c) || c->data[c->at] != '"') {
 				open = false;
 				continue;
 			}
 		} else if (quoted && !open) {
-			return fail(c, here, where, ST_SYNTAX, e, "text after the closing quote of a cell");
+			note_fault(c, bad, here, "text after the closing quote of a cell", doubled);
+			return CSV_BAD_ROW;
 		}
 		if (c->text_used - start >= CSV_CELL_BYTES_MAX)
-			return fail(c, begin, where, ST_SYNTAX, e, "this cell is longer than 65536 bytes");
-		if (!keep(c, byte))
-			return fail(c, begin, where, ST_MEMORY, e, "no memory for a row of the table");
+			note_fault(c, bad, begin, "this cell is too long", "at most 65536 bytes");
+		else if (!keep(c, byte))
+			return fail(c, begin, where, ST_MEMORY, e, "no memory for a row of the table", "");
 		step(c);
 	}
 	size_t length = c->text_used - start;
 	if (!keep(c, '\0'))
-		return fail(c, begin, where, ST_MEMORY, e, "no memory for a row of the table");
+		return fail(c, begin, where, ST_MEMORY, e, "no memory for a row of the table", "");
 	c->start[index] = start;
 	c->cell[index] =
 	    (struct csv_cell){.length = length, .line = begin.line, .column = begin.column, .quoted = quoted};
-	return 1;
+	return CSV_ROW;
 }
 
 static int read_row(struct csv *c, struct csv_row *row, struct place *where, struct err *e)
 {
 	size_t n = 0;
+	struct row_fault bad = {.met = false};
+	int s = CSV_ROW;
 	c->text_used = 0;
 	row->line = c->line;
-	for (;;) {
-		if (n == CSV_CELLS_MAX)
-			return fail(c, (struct place){c->line, c->column}, where, ST_SYNTAX, e,
-				    "more than 1024 cells in one row");
-		int s = read_cell(c, n, where, e);
-		if (s < 0)
+	while (s == CSV_ROW) {
+		if (n == CSV_CELLS_MAX) {
+			c->cell_at = c->at;
+			note_fault(c, &bad, (struct place){c->line, c->column}, "too many cells in one row",
+				   "at most 1024");
+			break;
+		}
+		s = read_cell(c, n, &bad, where, e);
+		if (s == CSV_BROKEN)
 			return s;
 		n++;
 		if (at_line_end(c))
 			break;
-		step(c); /* the separator */
+		if (s == CSV_ROW)
+			step(c); /* the separator */
 	}
 	skip_line(c);
+	if (bad.met) {
+		*where = bad.at;
+		*e = bad.why;
+		return CSV_BAD_ROW;
+	}
 	for (size_t i = 0; i < n; i++)
 		c->cell[i].text = c->text + c->start[i];
 	row->n = n;
 	row->cell = c->cell;
-	return 1;
+	return CSV_ROW;
 }
 
 /* Whether the line here holds nothing but blanks. */
@@ -276,12 +331,16 @@ static enum status comment_header(struct csv *c, struct mark comment, size_t cel
 		step(c);
 	bool fits =
 	    !at_line_end(c) && read_row(c, &row, &where, &why) > 0 && row.n == cells && row_is_header(&row);
-	enum status s = fits ? keep_header(c, &row, e)
-			     : err_set(e, ST_SYNTAX,
-				       "no header: neither this first row nor the last # line before it (%zu "
-				       "cells wanted) names the columns",
-				       cells);
+	enum status s = fits ? keep_header(c, &row, e) : ST_SYNTAX;
 	go_back(c, data);
+	if (!fits) {
+		char expected[48];
+		c->cell_at = c->at;
+		snprintf(expected, sizeof expected, "the names of %zu columns", cells);
+		say_cell(c, ST_SYNTAX,
+			 "no header: neither this first row nor the last # line before it is one", expected,
+			 e);
+	}
 	return s;
 }
 
@@ -297,7 +356,7 @@ static enum status find_header(struct csv *c, struct err *e)
 		skip_line(c);
 	}
 	if (at_end(c) && !commented)
-		return err_set(e, ST_SYNTAX, "the table is empty");
+		return err_set(e, ST_SYNTAX, "the table is empty (got \"\", expected a header)");
 	struct csv_row row;
 	struct place where = {c->line, c->column};
 	struct err why = {0};
@@ -308,7 +367,8 @@ static enum status find_header(struct csv *c, struct err *e)
 		while (!at_line_end(c) && (c->data[c->at] == '#' || c->data[c->at] == ' '))
 			step(c);
 		if (at_line_end(c) || read_row(c, &row, &where, &why) < 0)
-			return err_set(e, ST_SYNTAX, "the table is empty: comments only");
+			return err_set(e, ST_SYNTAX,
+				       "the table is empty: comments only (got \"#\", expected a header)");
 		return keep_header(c, &row, e);
 	}
 	c->separator = line_separator(c);
@@ -319,18 +379,25 @@ static enum status find_header(struct csv *c, struct err *e)
 	if (commented)
 		return comment_header(c, comment, row.n, data, e);
 	go_back(c, data);
-	return err_set(e, ST_SYNTAX, "no header: the first row holds numbers, not column names");
+	c->cell_at = c->at;
+	say_cell(c, ST_SYNTAX, "no header: the first row holds numbers", "names of columns", e);
+	return ST_SYNTAX;
 }
 
 /* --- open, close --- */
+
+enum { LOOK_BYTES = 16 }; /* of a file that is no table, shown in the message */
 
 enum status csv_open(const char *data, size_t n, struct csv **out, long *line, long *column, struct err *e)
 {
 	*out = NULL;
 	*line = *column = 1;
 	const char *looks = file_looks_like(data, n);
-	if (looks)
-		return err_set(e, ST_SYNTAX, "%s (expected a UTF-8 text table)", looks);
+	if (looks) {
+		char got[ERR_QUOTE_MAX];
+		err_quote(data, n < LOOK_BYTES ? n : LOOK_BYTES, got);
+		return err_set(e, ST_SYNTAX, "%s (got \"%s\", expected a UTF-8 text table)", looks, got);
+	}
 	struct csv *c = calloc(1, sizeof *c);
 	if (!c)
 		return err_set(e, ST_MEMORY, "no memory to read a table");

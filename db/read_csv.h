@@ -28,7 +28,10 @@ struct csv; /* opaque reader */
  * get the place of the fault. */
 MUST_USE enum status csv_open(const char *data, size_t n, struct csv **out, long *line, long *column, struct err *e);
 const struct csv_row *csv_header(const struct csv *c);
-/* 1 a row, 0 the end, -1 an error with its place in *line, *column (an unclosed quote, an overlong cell, a NUL). After -1 nothing more. */
+/* What csv_next gives: a row; the end; an error after which nothing more comes (a quote that is never closed, no memory); a row that can't be
+ * read (a NUL byte, a quote within an unquoted cell, text after a closing quote, an overlong cell, too many cells), left out up to the end of its
+ * line, after which reading goes on. Of the latter two *line, *column are the place of the fault, and *e is `what (got "...", expected ...)`. */
+enum { CSV_ROW = 1, CSV_END = 0, CSV_BROKEN = -1, CSV_BAD_ROW = -2 };
 int csv_next(struct csv *c, struct csv_row *row, long *line, long *column, struct err *e);
 void csv_close(struct csv *c);
 /* What bytes that are no table look like, one sentence; NULL when nothing speaks against text. */

@@ -8,6 +8,8 @@
 #include <stdlib.h>
 #include <string.h>
 
+enum { LOOK_BYTES = 16 }; /* of a file that is no text, shown in the message */
+
 /* The texts of one line, as places in the data; a value that was quoted is unquoted into the block. */
 struct line {
 	const char *s;
@@ -17,7 +19,7 @@ struct line {
 
 struct parser {
 	struct ini *out;
-	size_t room;
+	size_t room, section_room;
 	char *next; /* free place in the block */
 	const char *section;
 	long *line, *column;
@@ -29,11 +31,15 @@ static bool blank(char c)
 	return c == ' ' || c == '\t';
 }
 
-static enum status fault(struct parser *p, const struct line *l, size_t at, const char *why)
+/* What is wrong at a place of a line; got: the line from `from` on. */
+static enum status fault(struct parser *p, const struct line *l, size_t at, size_t from, const char *why,
+			 const char *expected)
 {
+	char got[ERR_QUOTE_MAX];
 	*p->line = l->number;
 	*p->column = (long)at + 1;
-	return err_set(p->e, ST_SYNTAX, "%s", why);
+	err_quote(l->s + from, l->n - from, got);
+	return err_set(p->e, ST_SYNTAX, "%s (got \"%s\", expected %s)", why, got, expected);
 }
 
 static const char *copy(struct parser *p, const char *s, size_t n)
@@ -51,25 +57,40 @@ static bool word_char(char c)
 	       c == '-' || c == '.';
 }
 
+static enum status add_section(struct parser *p, struct ini_section section)
+{
+	struct ini *out = p->out;
+	if (out->n_sections == p->section_room) {
+		size_t room = p->section_room ? 2 * p->section_room : 8;
+		struct ini_section *list = realloc(out->section, room * sizeof *list);
+		if (!list)
+			return err_set(p->e, ST_MEMORY, "no memory for settings");
+		out->section = list;
+		p->section_room = room;
+	}
+	out->section[out->n_sections++] = section;
+	return ST_OK;
+}
+
 static enum status read_section(struct parser *p, const struct line *l, size_t at)
 {
 	size_t from = at + 1, to = from;
 	while (to < l->n && l->s[to] != ']')
 		to++;
 	if (to == l->n)
-		return fault(p, l, at, "the section is not closed with ]");
+		return fault(p, l, at, at, "section: never closed", "[name]");
 	size_t rest = to + 1;
 	while (rest < l->n && blank(l->s[rest]))
 		rest++;
 	if (rest < l->n)
-		return fault(p, l, rest, "text after the section");
+		return fault(p, l, rest, rest, "section: text behind it", "the end of the line");
 	const char *name = l->s + from;
 	size_t n = to - from;
 	text_trim(&name, &n);
 	if (n == 0)
-		return fault(p, l, at, "the section has no name");
+		return fault(p, l, at, at, "section: no name", "[name]");
 	p->section = copy(p, name, n);
-	return ST_OK;
+	return add_section(p, (struct ini_section){p->section, l->number, (long)(name - l->s) + 1});
 }
 
 /* The quoted value that starts at `at`; *value into the block. */
@@ -80,16 +101,18 @@ static enum status read_quoted(struct parser *p, const struct line *l, size_t at
 	for (; i < l->n && l->s[i] != '"'; i++) {
 		if (l->s[i] == '\\') {
 			if (i + 1 == l->n || (l->s[i + 1] != '"' && l->s[i + 1] != '\\'))
-				return fault(p, l, i, "only \\\" and \\\\ may follow a backslash");
+				return fault(p, l, i, i, "value: a backslash before another character",
+					     "\\\" or \\\\");
 			i++;
 		}
 		*p->next++ = l->s[i];
 	}
 	if (i == l->n)
-		return fault(p, l, at, "the quote is never closed");
+		return fault(p, l, at, at, "value: the quote is never closed", "a closing quote");
 	for (i++; i < l->n; i++)
 		if (!blank(l->s[i]))
-			return fault(p, l, i, "text after the closing quote");
+			return fault(p, l, i, i, "value: text after the closing quote",
+				     "the end of the line");
 	*p->next++ = '\0';
 	*value = start;
 	return ST_OK;
@@ -103,8 +126,10 @@ static enum status add_entry(struct parser *p, const struct line *l, struct ini_
 		    strcmp(out->entry[i].key, entry.key) == 0) {
 			*p->line = l->number;
 			*p->column = entry.key_column;
-			return err_set(p->e, ST_SYNTAX, "`%s` was already given in line %ld", entry.key,
-				       out->entry[i].line);
+			return err_set(p->e, ST_SYNTAX,
+				       "%.60s: given twice (got \"%.60s\", expected each key once; it stands "
+				       "in line %ld)",
+				       entry.key, entry.key, out->entry[i].line);
 		}
 	if (out->n == p->room) {
 		size_t room = p->room ? 2 * p->room : 32;
@@ -125,12 +150,12 @@ static enum status read_pair(struct parser *p, const struct line *l, size_t at)
 	while (end < l->n && word_char(l->s[end]))
 		end++;
 	if (end == at)
-		return fault(p, l, at, "expected `key = value`, [section] or a comment");
+		return fault(p, l, at, at, "row: no key", "key = value, [section] or a comment");
 	entry.key = copy(p, l->s + at, end - at);
 	while (end < l->n && blank(l->s[end]))
 		end++;
 	if (end == l->n || l->s[end] != '=')
-		return fault(p, l, end, "expected = after the key");
+		return fault(p, l, end, at, "key: no = behind it", "key = value");
 	for (end++; end < l->n && blank(l->s[end]); end++)
 		;
 	entry.value_column = (long)end + 1;
@@ -153,9 +178,9 @@ static enum status read_line(struct parser *p, const struct line *l)
 		uint32_t cp;
 		size_t length = utf8_decode(l->s + i, l->n - i, &cp);
 		if (length == 0)
-			return fault(p, l, i, "not UTF-8");
+			return fault(p, l, i, i, "row: not UTF-8", "UTF-8 text");
 		if (cp != '\t' && codepoint_is_hostile(cp))
-			return fault(p, l, i, "a control or invisible character");
+			return fault(p, l, i, i, "row: a control or invisible character", "text");
 		i += length;
 	}
 	size_t at = 0;
@@ -171,8 +196,11 @@ enum status ini_parse(const char *data, size_t n, struct ini *out, long *line, l
 	*out = (struct ini){0};
 	*line = *column = 1;
 	const char *looks = n ? file_looks_like(data, n) : NULL;
-	if (looks)
-		return err_set(e, ST_SYNTAX, "%s (expected settings as text)", looks);
+	if (looks) {
+		char got[ERR_QUOTE_MAX];
+		err_quote(data, n < LOOK_BYTES ? n : LOOK_BYTES, got);
+		return err_set(e, ST_SYNTAX, "file: %s (got \"%s\", expected settings as text)", looks, got);
+	}
 	if (n >= 3 && memcmp(data, "\xEF\xBB\xBF", 3) == 0) {
 		data += 3;
 		n -= 3;
@@ -204,6 +232,7 @@ enum status ini_parse(const char *data, size_t n, struct ini *out, long *line, l
 void ini_free(struct ini *ini)
 {
 	free(ini->entry);
+	free(ini->section);
 	free(ini->block);
 	*ini = (struct ini){0};
 }

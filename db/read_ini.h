@@ -13,12 +13,18 @@ struct ini_entry {
 	const char *key, *value;
 	long line, key_column, value_column;
 };
+struct ini_section {
+	const char *name;
+	long line, column; /* of the name */
+};
 struct ini {
-	size_t n;
-	struct ini_entry *entry; /* in file order */
+	size_t n, n_sections;
+	struct ini_entry *entry;     /* in file order */
+	struct ini_section *section; /* each time that one begins */
 	char *block;             /* owns the texts */
 };
-/* ST_SYNTAX with *line, *column of the fault. The same key twice in a section is a fault. */
+/* ST_SYNTAX with *line, *column of the fault; *e is `FIELD: what (got "...", expected ...)`, FIELD one of file, row, section, key, value or the
+ * key's name. The same key twice in a section is a fault. */
 MUST_USE enum status ini_parse(const char *data, size_t n, struct ini *out, long *line, long *column, struct err *e);
 void ini_free(struct ini *ini);
 

@@ -9,7 +9,7 @@
 #include <stdlib.h>
 #include <string.h>
 
-enum { CELLS = 2 };
+enum { CELLS = 2, LOOK_BYTES = 16 /* of a file that is no text, shown in the message */ };
 static const char *const cell_words[CELLS] = {"az_deg", "alt_deg"};
 static const struct {
 	double min, max;
@@ -112,7 +112,7 @@ static enum status read_point(const char *name, const struct line *l, struct mas
 		const char *at = l->cell[l->n > CELLS ? CELLS : 0].text;
 		size_t length = l->cell[l->n > CELLS ? CELLS : 0].length;
 		err_quote(at, length, got);
-		snprintf(why, sizeof why, "%s (got \"%s\", expected az_deg, alt_deg)",
+		snprintf(why, sizeof why, "row: %s (got \"%s\", expected az_deg, alt_deg)",
 			 l->n > CELLS ? "more than two cells" : "one cell only", got);
 		return refuse(name, l, at, ST_SYNTAX, why, e);
 	}
@@ -122,7 +122,11 @@ static enum status read_point(const char *name, const struct line *l, struct mas
 	if (s != ST_OK)
 		return s;
 	s = mask_add(out, *az_deg, alt_deg, &inner);
-	return s == ST_OK ? ST_OK : refuse(name, l, l->cell[0].text, ST_RANGE, inner.text, e);
+	if (s == ST_OK)
+		return ST_OK;
+	err_quote(l->cell[0].text, l->cell[0].length, got);
+	snprintf(why, sizeof why, "row: %.240s (got \"%s\")", inner.text, got);
+	return refuse(name, l, l->cell[0].text, ST_RANGE, why, e);
 }
 
 /* data without a byte-order mark. */
@@ -142,7 +146,8 @@ static enum status read_lines(const char *name, const char *data, size_t n, stru
 		l.number++;
 		const char *nul = memchr(text, '\0', length);
 		if (nul)
-			return refuse(name, &l, nul, ST_SYNTAX, "a NUL byte: this is no text", e);
+			return refuse(name, &l, nul, ST_SYNTAX,
+				      "row: a NUL byte (got \"\\x00\", expected text)", e);
 		const char *comment = memchr(text, '#', length);
 		cut(&l, text, comment ? (size_t)(comment - text) : length);
 		if (l.n == 0 || (l.n == 1 && l.cell[0].length == 0))
@@ -158,7 +163,8 @@ static enum status read_lines(const char *name, const char *data, size_t n, stru
 	}
 	if (s == ST_OK && out->n == 0)
 		s = err_set(e, ST_SYNTAX,
-			    "%.200s:%ld:1: no point of a horizon mask (expected lines of az_deg, alt_deg)",
+			    "%.200s:%ld:1: row: no point of a horizon mask (got \"\", expected lines of "
+			    "az_deg, alt_deg)",
 			    name, l.number > 0 ? l.number : 1);
 	return s;
 }
@@ -169,8 +175,12 @@ enum status mask_parse(const char *name, const char *data, size_t n, struct mask
 	const char *looks = n > 0 ? file_looks_like(data, n) : NULL;
 	*out = (struct mask){.n = 0};
 	*unsorted = false;
-	if (looks)
-		return err_set(e, ST_SYNTAX, "%.200s:1:1: %s", name, looks);
+	if (looks) {
+		char got[ERR_QUOTE_MAX];
+		err_quote(data, n < LOOK_BYTES ? n : LOOK_BYTES, got);
+		return err_set(e, ST_SYNTAX, "%.200s:1:1: file: %s (got \"%s\", expected a horizon mask)",
+			       name, looks, got);
+	}
 	size_t mark = n >= 3 && memcmp(data, "\xEF\xBB\xBF", 3) == 0 ? 3 : 0;
 	return read_lines(name, n > 0 ? data + mark : "", n - mark, out, unsorted, e);
 }

@@ -4,6 +4,12 @@
 #include <stdlib.h>
 #include <string.h>
 
+const char *store_where(const struct store *s)
+{
+	const char *path = s->db ? sqlite3_db_filename(s->db, "main") : NULL;
+	return path && *path ? path : "database";
+}
+
 enum status store_fault(const struct store *s, int rc, struct err *e)
 {
 	switch (rc & 0xFF) {
@@ -11,16 +17,18 @@ enum status store_fault(const struct store *s, int rc, struct err *e)
 		return err_set(e, ST_MEMORY, "database: no memory");
 	case SQLITE_BUSY:
 	case SQLITE_LOCKED:
-		return err_set(e, ST_STORE, "database: another program is writing to it (waited 5 s)");
+		return err_set(e, ST_STORE, "%.300s: another program is writing to it (waited 5 s)",
+			       store_where(s));
 	case SQLITE_FULL:
-		return err_set(e, ST_STORE, "database: no space left where it lies");
+		return err_set(e, ST_STORE, "%.300s: no space left where it lies", store_where(s));
 	case SQLITE_READONLY:
-		return err_set(e, ST_STORE, "database: it or its folder can't be written");
+		return err_set(e, ST_STORE, "%.300s: it or its folder can't be written", store_where(s));
 	case SQLITE_CORRUPT:
 	case SQLITE_NOTADB:
-		return err_set(e, ST_STORE, "database: damaged: %s", sqlite3_errmsg(s->db));
+		return err_set(e, ST_STORE, "%.300s: damaged: %s", store_where(s), sqlite3_errmsg(s->db));
 	default:
-		return err_set(e, ST_STORE, "database: %s (code %d)", sqlite3_errmsg(s->db), rc);
+		return err_set(e, ST_STORE, "%.300s: %s (code %d)", store_where(s), sqlite3_errmsg(s->db),
+			       rc);
 	}
 }
 
@@ -100,8 +108,8 @@ enum status row_find(struct store *s, enum sql_id id, struct cell key, const str
 	if (st == ST_OK && !found)
 		st = ST_ABSENT;
 	if (st == ST_OK && !row_read(s, id, 0, table, out->cell))
-		st = err_set(e, ST_STORE, "database: damaged: the checksum of row %lld of table %s is wrong",
-			     (long long)sqlite3_column_int64(s->stmt[id], 0), table->name);
+		st = err_set(e, ST_STORE, "%.300s: damaged: the checksum of row %lld of table %s is wrong",
+			     store_where(s), (long long)sqlite3_column_int64(s->stmt[id], 0), table->name);
 	if (st == ST_OK)
 		st = own_texts(out, e);
 	sql_reset(s, id);

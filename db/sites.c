@@ -3,6 +3,7 @@
 
 #include "db/read_mask.h"
 #include "db/store_parts.h"
+#include "db/target_rows.h"
 #include "db/text_clean.h"
 
 #include <stdio.h>
@@ -195,7 +196,8 @@ enum status site_put(struct store *s, const struct site *site, bool add, struct 
 		cell[0] = cell_int(id);
 		if (st == ST_OK)
 			st = row_add(s, &site_table, cell, e);
-	} else if (st == ST_OK) {
+	} else if (st == ST_OK &&
+		   !cells_same(&cell[SITE_NAME], &old.cell[SITE_NAME], SITE_REMOVED - SITE_NAME + 1)) {
 		st = row_replace(s, &site_table, &old, cell, e);
 	}
 	row_free(&old);

@@ -27,7 +27,7 @@ static enum status read_id(struct store *s, struct err *e)
 	bool row;
 	enum status st = sql_step(s, SQL_STORE_INFO, &row, e);
 	if (st == ST_OK && (!row || !row_read(s, SQL_STORE_INFO, 0, &info_table, cell)))
-		st = err_set(e, ST_STORE, "database: damaged: its own id can't be read");
+		st = err_set(e, ST_STORE, "%.300s: damaged: its own id can't be read", store_where(s));
 	if (st == ST_OK)
 		snprintf(s->id, sizeof s->id, "%s", cell[1].u.text);
 	sql_reset(s, SQL_STORE_INFO);
@@ -124,7 +124,7 @@ enum status store_begin(struct store *s, const struct change *c, struct err *e)
 	if (s->in_change)
 		return err_set(e, ST_STORE, "database: a change set is open already");
 	if (s->mode == STORE_READ || s->read_only)
-		return err_set(e, ST_STORE, "database: it or its folder can't be written");
+		return err_set(e, ST_STORE, "%.300s: it or its folder can't be written", store_where(s));
 	if (strlen(c->utc) >= UTC_BYTES)
 		return err_set(e, ST_SYNTAX, "a change needs a time like 2026-04-22T03:00:00Z");
 	(void)text_clean(c->utc, s->utc, sizeof s->utc);

@@ -90,6 +90,11 @@ static void row_doubts(struct checking *c, const struct cell *cell)
 	cells_read(c->s->stmt[SQL_TARGET_LOAD], TARGET_CELLS + 1, ephemeris, EPHEMERIS_CELLS);
 	if (ephemeris[EPHEMERIS_DOUBTS].type == CELL_INT)
 		doubts |= (uint64_t)ephemeris[EPHEMERIS_DOUBTS].u.i;
+	struct target t = target_empty();
+	if (ephemeris[EPHEMERIS_DOUBTS].type == CELL_INT)
+		fields_from_cells(ephemeris + EPHEMERIS_FIELDS, HOME_EPHEMERIS, &t);
+	if (t.period_d < PERIOD_MIN_D) /* stored before this was a doubt */
+		doubts |= UINT64_C(1) << FIELD_AT_PERIOD;
 	tell_doubts(c, cell[TARGET_FIELDS].u.text, doubts);
 }
 

@@ -24,6 +24,8 @@ struct store {
 	struct crc_table crc;
 };
 
+/* The store's file for messages; `database` for one in memory. */
+const char *store_where(const struct store *s);
 /* Turns an SQLite result into a status and a sentence. */
 enum status store_fault(const struct store *s, int rc, struct err *e);
 

@@ -109,6 +109,8 @@ static enum status keep_target(struct loading *l, const struct cell *cell, const
 		if (standard_parse(t.time_scale, &t.standard, e) != ST_OK)
 			return err_set(e, ST_STORE, "database: damaged: time scale of %s", t.name);
 	}
+	if (t.period_d < PERIOD_MIN_D) /* stored before this was a doubt */
+		doubts |= UINT64_C(1) << FIELD_AT_PERIOD;
 	for (int i = 0; i < TARGET_TEXTS; i++)
 		if (!keep_text(l, *text_member(&t, i), &l->place[l->out->n][i]))
 			return err_set(e, ST_MEMORY, "database: no memory");

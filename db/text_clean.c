@@ -99,7 +99,7 @@ static enum status bad_character(struct err *e, size_t *bad_at, size_t at, uint3
 {
 	if (bad_at)
 		*bad_at = at;
-	return err_set(e, ST_SYNTAX, "a name can't hold U+%04X (%s) at byte %zu", (unsigned)cp, why, at + 1);
+	return err_set(e, ST_SYNTAX, "a name can't hold U+%04X, %s, at byte %zu", (unsigned)cp, why, at + 1);
 }
 
 enum status name_check(const char *s, size_t n, size_t *bad_at, struct err *e)

@@ -9,6 +9,10 @@
 
 #include <stdint.h>
 
+/* A shorter period is not counted: such a target has no events. No planet is known to orbit so fast, and a night holds at most 200 events of a
+ * target (EVENTS_PER_NIGHT_MAX), twice what this period brings. */
+#define PERIOD_MIN_D 0.01
+
 struct target {
 	int64_t id, ephemeris_id; /* keys in the store; 0 when not stored */
 	const char *name;         /* UTF-8, 1..80 characters, printable */

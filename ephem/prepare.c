@@ -7,8 +7,6 @@
 
 #include <math.h>
 
-/* Below this the night would hold more events than are listed; no planet is known to orbit so fast. */
-#define PERIOD_MIN_D (1.0 / EVENTS_PER_NIGHT_MAX)
 #define AUTO_BASELINE_MIN_MIN 20.0
 #define AUTO_BASELINE_MAX_MIN 60.0
 

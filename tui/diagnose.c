@@ -43,16 +43,20 @@ void diagnoses_add(struct diagnoses *d, bool doubt, long line, long column, cons
 {
 	long *count = doubt ? &d->doubts : &d->faults;
 	char *out = doubt ? d->doubt[*count % DIAGNOSES_SHOWN] : d->fault[*count % DIAGNOSES_SHOWN];
-	char quoted[ERR_QUOTE_MAX + 300] = "", safe[ERR_QUOTE_MAX];
+	char quoted[ERR_QUOTE_MAX + 300] = "";
 	if ((*count)++ >= DIAGNOSES_SHOWN)
 		return;
 	if (!strstr(text, "(got \"")) {
-		err_quote(got, strlen(got), safe);
-		snprintf(quoted, sizeof quoted, " (got \"%s\"%s%.250s)", safe,
-			 expected[0] ? ", expected " : "", expected);
+		bool guess =
+		    strncmp(expected, "did you mean ", 13) == 0; /* in the place of what is expected */
+		snprintf(quoted, sizeof quoted, " (got \"%.*s\"%s%.250s)", ERR_QUOTE_MAX, got,
+			 !expected[0] ? ""
+			 : guess      ? ", "
+				      : ", expected ",
+			 expected);
 	}
-	snprintf(out, DIAGNOSIS_BYTES, "wane: %.200s:%ld:%ld: %.40s%s%.300s%s", d->file, line, column, field,
-		 field[0] ? ": " : "", text, quoted);
+	snprintf(out, DIAGNOSIS_BYTES, "wane: %.200s:%ld:%ld: %.40s: %.300s%s", d->file, line, column, field,
+		 text, quoted);
 }
 
 void diagnoses_print(const struct diagnoses *d, FILE *to)

@@ -23,8 +23,8 @@ struct diagnoses {
 	char fault[DIAGNOSES_SHOWN][DIAGNOSIS_BYTES];
 	char doubt[DIAGNOSES_SHOWN][DIAGNOSIS_BYTES];
 };
-/* `wane: FILE:LINE:COLUMN: FIELD: text (got "...", expected ...)`; field "" leaves it out, got and expected are left out when the text quotes
- * already; expected "" too. */
+/* `wane: FILE:LINE:COLUMN: FIELD: text (got "...", expected ...)`; got and expected are left out when the text quotes already, expected "" too.
+ * got: as err_quote shows it. */
 void diagnoses_add(struct diagnoses *d, bool doubt, long line, long column, const char *field, const char *text, const char *got,
 		   const char *expected);
 void diagnoses_print(const struct diagnoses *d, FILE *to);

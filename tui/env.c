@@ -42,8 +42,8 @@ static void read_user(char *out, size_t n)
 	snprintf(out, n, "%s", name[0] ? name : "unknown");
 }
 
-/* Whether the locale that is asked for writes UTF-8. One that is not installed here (a session from afar) can't be set, but its name still
- * says what the terminal shows. */
+/* Whether the locale that is asked for writes UTF-8. One that is not installed here (a login from afar) can't
+ * be set, but its name still says what the terminal shows. */
 static bool characters_are_utf8(void)
 {
 	const char *asked[] = {variable("LC_ALL"), variable("LC_CTYPE"), variable("LANG")};
@@ -51,7 +51,8 @@ static bool characters_are_utf8(void)
 		return true;
 	for (size_t i = 0; i < sizeof asked / sizeof asked[0]; i++)
 		if (asked[i][0])
-			return strstr(asked[i], ".UTF-8") || strstr(asked[i], ".utf8") || strstr(asked[i], ".utf-8");
+			return strstr(asked[i], ".UTF-8") || strstr(asked[i], ".utf8") ||
+			       strstr(asked[i], ".utf-8");
 	return false;
 }
 

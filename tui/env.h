@@ -10,6 +10,7 @@
 struct env {
 	char data_path[512];     /* default database: $XDG_DATA_HOME/wane/wane.db ("" when no home is known) */
 	char settings_path[512]; /* default settings: $XDG_CONFIG_HOME/wane/settings.ini */
+	bool settings_apart;      /* the demo: the settings file is not read */
 	char state_dir[512];     /* $XDG_STATE_HOME/wane */
 	char user[64];           /* for change sets; "unknown" */
 	char zoneinfo_dir[256];  /* $TZDIR or /usr/share/zoneinfo */

@@ -74,18 +74,12 @@ static bool looks_julian(const char *text, size_t *number_length)
 enum status given_time(const struct leap_table *leap, const char *text, struct utc *out, struct err *e)
 {
 	size_t length;
-	struct date date;
-	enum status s;
 	if (looks_julian(text, &length))
 		return julian_time(leap, text, length, out, e);
-	if (is_bare_date(text)) {
-		s = date_parse(text, &date, e);
-		*out = (struct utc){0};
-		if (s == ST_OK)
-			s = date_to_mjd(date, &out->mjd, e);
-	} else {
-		s = utc_parse(leap, text, out, e);
-	}
+	if (is_bare_date(text)) /* that is a night, not an instant */
+		return quoted(e, ST_SYNTAX, "a date without a time", text,
+			      "YYYY-MM-DDTHH:MM[:SS]Z or \"2461114.708333 JD_UTC\"");
+	enum status s = utc_parse(leap, text, out, e);
 	return s == ST_OK ? year_in_range(out->mjd, text, e) : s;
 }
 

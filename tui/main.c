@@ -12,12 +12,14 @@
 #include <string.h>
 #include <unistd.h>
 
-/* A closed standard stream would give its number to the next file that is opened: the database. */
+/* A closed standard stream would give its number to the next file that is opened: the database. What is
+ * written to a standard output that was closed fails, as it should: its place is taken by a file that can
+ * only be read. */
 static void keep_streams(void)
 {
 	for (int fd = 0; fd <= 2; fd++)
 		if (fcntl(fd, F_GETFD) < 0 && errno == EBADF)
-			(void)!open("/dev/null", fd == 0 ? O_RDONLY : O_WRONLY);
+			(void)!open("/dev/null", fd == 2 ? O_WRONLY : O_RDONLY);
 }
 
 static int open_interface(const struct env *env, const struct options *o)
@@ -82,8 +84,8 @@ static int dispatch(const struct env *env, const struct options *o)
 		char got[ERR_QUOTE_MAX];
 		const char *extra = o->word[c->words_max + 1];
 		err_quote(extra, strlen(extra), got);
-		diagnose(c->name, "an argument too many (got \"%s\", expected wane %s %s)", got, c->name,
-			 c->arguments);
+		diagnose(c->name, "an argument too many (got \"%s\", expected wane %s%s%s)", got, c->name,
+			 c->arguments[0] ? " " : "", c->arguments);
 		return EXIT_USAGE;
 	}
 	return c->function(env, o);

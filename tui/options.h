@@ -5,6 +5,7 @@
 
 #include "ephem/err.h"
 #include "ephem/limits.h"
+#include "ephem/near_word.h"
 
 #include <stdbool.h>
 #include <stdint.h>
@@ -59,7 +60,5 @@ MUST_USE enum status limit_parse(enum limit_id id, const char *text, double *val
 /* `transit`, `occultation`, `both`. */
 MUST_USE enum status kinds_parse(const char *text, int *kinds, struct err *e);
 const char *kinds_text(int kinds);
-/* The word of the list (NULL-terminated by n) that is nearest to a mistyped one; NULL when none is near. */
-const char *nearest_word(const char *word, const char *const list[], size_t n);
 
 #endif

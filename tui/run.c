@@ -26,7 +26,7 @@ static enum status open_settings(struct run *r, struct err *e)
 	const struct options *o = r->options;
 	const char *path = o->settings ? o->settings : r->env->settings_path;
 	settings_built_in(&r->settings);
-	if (!path[0])
+	if (!path[0] || (r->env->settings_apart && !o->settings))
 		return ST_OK;
 	enum status s = settings_read(&r->settings, path, e);
 	if (s != ST_ABSENT)
@@ -106,12 +106,13 @@ static enum status load_lists(struct run *r, struct err *e)
 	if (r->store && sites_load(r->store, &r->sites, &why) != ST_OK)
 		return worded(e, "store", &why);
 	if (r->sites.n_bad > 0)
-		diagnose("store", "%s", r->sites.bad);
+		diagnose("store", "%s: %s", r->db_path, r->sites.bad);
 	if (r->store && !r->options->radec && targets_load(r->store, &r->targets, &why) != ST_OK)
 		return worded(e, "store", &why);
 	if (r->targets.n_bad > 0)
-		diagnose("store", "%zu left out because their checksums are wrong: %.300s (see wane check)",
-			 r->targets.n_bad, r->targets.bad);
+		diagnose("store",
+			 "%s: %zu left out because their checksums are wrong: %.300s (see wane check)",
+			 r->db_path, r->targets.n_bad, r->targets.bad);
 	return ST_OK;
 }
 
@@ -264,17 +265,34 @@ enum status run_choose_site(struct run *r, size_t index, struct err *e)
 	return ST_OK;
 }
 
+static bool same_place(const struct site *a, const struct site *b)
+{
+	return !(a->lat_deg < b->lat_deg || a->lat_deg > b->lat_deg || a->lon_east_deg < b->lon_east_deg ||
+		 a->lon_east_deg > b->lon_east_deg || a->height_m < b->height_m || a->height_m > b->height_m);
+}
+
+/* A site or place that was named twice is one: a stored site by its key, a place by what it stands for. */
+static bool has_site(const struct site list[], size_t n, const struct site *site)
+{
+	for (size_t i = 0; i < n; i++)
+		if (list[i].id == site->id && (site->id != 0 || same_place(&list[i], site)))
+			return true;
+	return false;
+}
+
 enum status run_all_sites(struct run *r, struct site out[], size_t *n, struct err *e)
 {
 	const struct options *o = r->options;
 	enum status s = ST_OK;
 	*n = 0;
-	for (int i = 0; s == ST_OK && i < o->n_places && *n < OPTION_NAMES_MAX; i++)
-		s = place_site(o->place[i], &out[(*n)++], e);
+	for (int i = 0; s == ST_OK && i < o->n_places && *n < OPTION_NAMES_MAX; i++) {
+		s = place_site(o->place[i], &out[*n], e);
+		*n += s == ST_OK && !has_site(out, *n, &out[*n]);
+	}
 	for (int i = 0; s == ST_OK && i < o->n_sites && *n < OPTION_NAMES_MAX; i++) {
 		size_t index = 0;
 		s = find_site(r, o->site[i], &index, e);
-		if (s == ST_OK)
+		if (s == ST_OK && !has_site(out, *n, &r->sites.site[index]))
 			out[(*n)++] = r->sites.site[index];
 	}
 	if (s == ST_OK && *n > 1 && r->mask_given)
@@ -454,41 +472,4 @@ enum status run_reload(struct run *r, struct err *e)
 	long index = site_list_find(&r->sites, r->site.name);
 	return index >= 0 ? run_choose_site(r, (size_t)index, e)
 			  : ST_OK; /* a removed one stays until another is chosen */
-}
-
-/* --- a night --- */
-
-enum status run_night_at(struct run *r, const struct site *site, int32_t evening_mjd, bool people,
-			 struct night_view *v, struct err *e)
-{
-	const struct options *o = r->options;
-	struct window_choice choice = {
-	    .kinds = r->kinds, .all = o->all, .min_chance = run_min_chance(r, people)};
-	enum status s = night_build(&v->night, site, &r->clock, evening_mjd, r->memo, e);
-	if (s != ST_OK)
-		return s;
-	v->dark = night_dark(&v->night, r->limits.value[LIM_SUN]);
-	return night_windows(&v->night, r->prepared, r->n_prepared, &choice, &v->list, &v->hidden, e);
-}
-
-enum status run_night(struct run *r, int32_t evening_mjd, bool people, struct night_view *v, struct err *e)
-{
-	return run_night_at(r, &r->site, evening_mjd, people, v, e);
-}
-
-double run_min_chance(const struct run *r, bool people)
-{
-	if (!isnan(r->options->min_chance))
-		return r->options->min_chance;
-	return people ? MIN_CHANCE_PEOPLE : MIN_CHANCE_MACHINE;
-}
-
-void night_view_free(struct night_view *v)
-{
-	window_list_free(&v->list);
-}
-
-int32_t run_tonight(const struct run *r)
-{
-	return night_date_of(r->site.lon_east_deg, wall_now(&r->wall));
 }

@@ -12,6 +12,7 @@
 #include "tui/env.h"
 #include "tui/options.h"
 #include "tui/settings.h"
+#include "tui/sheets/out.h"
 #include "tui/zone.h"
 
 #include <stdbool.h>
@@ -54,6 +55,8 @@ MUST_USE enum status run_open(struct run *r, const struct env *env, const struct
 MUST_USE enum status run_open_on(struct run *r, struct store *store, const struct env *env, const struct options *o, int needs,
 				 int *exit_code, struct err *e);
 void run_close(struct run *r);
+/* out_open for the run's --out. Refused, whatever --force says: the database of the run, its journal, the settings file. */
+MUST_USE enum status run_out_open(const struct run *r, struct out *out, struct err *e);
 /* All sites of a run that may have several: each --place and --site in order, else the chosen one. *n at most OPTION_NAMES_MAX.
  * ST_RANGE when --mask was given for more than one. */
 MUST_USE enum status run_all_sites(struct run *r, struct site out[], size_t *n, struct err *e);

@@ -103,22 +103,59 @@ void settings_built_in(struct settings *s)
 }
 
 /* `2029-01-01 = 38`: TAI - UTC from that UTC date on. */
-static enum status put_leap(struct settings *s, const struct ini_entry *entry, struct err *e)
+static enum status put_leap(struct settings *s, const struct ini_entry *entry, bool *key_fault, struct err *e)
 {
 	struct date date = {0};
 	int32_t mjd = 0;
 	double tai_minus_utc_s;
-	enum status status =
-	    strlen(entry->key) == LEAP_SECTION_KEY_MAX
-		? date_parse(entry->key, &date, e)
-		: err_set(e, ST_SYNTAX, "not a date (expected YYYY-MM-DD = TAI less UTC in seconds)");
+	*key_fault = true;
+	enum status status = date_parse(entry->key, &date, e);
 	if (status == ST_OK)
 		status = date_to_mjd(date, &mjd, e);
+	if (status == ST_OK && date.day != 1)
+		return err_set(
+		    e, ST_RANGE,
+		    "not the first of a month (got \"%s\", expected YYYY-MM-01: a leap second ends a "
+		    "month, as a rule June or December)",
+		    entry->key);
+	*key_fault = status != ST_OK;
 	if (status == ST_OK)
 		status = number_parse(entry->value, strlen(entry->value), &tai_minus_utc_s, NULL, e);
 	if (status == ST_OK)
 		status = leap_extend(&s->leap, mjd, tai_minus_utc_s, e);
 	return status;
+}
+
+/* `FILE:LINE:COLUMN: FIELD: what (got "...", ...)`; got is what stands there, where the text does not quote
+ * it itself. */
+static enum status at_place(const char *path, long line, long column, const char *field, const char *got,
+			    const struct err *why, struct err *e)
+{
+	char quoted[ERR_QUOTE_MAX + 16] = "", safe[ERR_QUOTE_MAX];
+	if (!strstr(why->text, "(got \"")) {
+		err_quote(got, strlen(got), safe);
+		snprintf(quoted, sizeof quoted, " (got \"%s\")", safe);
+	}
+	return err_set(e, why->status, "%.120s:%ld:%ld: %.60s: %.230s%s", path, line, column, field,
+		       why->text, quoted);
+}
+
+static enum status unknown(const char *what, const char *word, const char *const list[], size_t n,
+			   const char *otherwise, struct err *e)
+{
+	char got[ERR_QUOTE_MAX];
+	const char *near = nearest_word(word, list, n);
+	err_quote(word, strlen(word), got);
+	if (near)
+		return err_set(e, ST_SYNTAX, "unknown %s (got \"%s\", did you mean %s?)", what, got, near);
+	return err_set(e, ST_SYNTAX, "unknown %s (got \"%s\", expected %s)", what, got, otherwise);
+}
+
+static enum status elsewhere(const struct ini_entry *entry, const char *section, struct err *e)
+{
+	return err_set(e, ST_SYNTAX,
+		       "a key of another section (got \"%.60s\" in [%.60s], expected it in [%s])", entry->key,
+		       entry->section, section);
 }
 
 static enum status unknown_key(const struct ini_entry *entry, struct err *e)
@@ -127,18 +164,33 @@ static enum status unknown_key(const struct ini_entry *entry, struct err *e)
 	size_t n = 0;
 	for (size_t i = 0; i < ROWS; i++) {
 		if (strcmp(rows[i].key, entry->key) == 0)
-			return err_set(e, ST_SYNTAX, "this key belongs into section [%s]", rows[i].section);
+			return elsewhere(entry, rows[i].section, e);
 		all[n++] = rows[i].key;
 	}
 	for (int id = 0; id < LIM_COUNT; id++) {
 		if (strcmp(limit_rules[id].key, entry->key) == 0)
-			return err_set(e, ST_SYNTAX, "this key belongs into section [limits]");
+			return elsewhere(entry, "limits", e);
 		all[n++] = limit_rules[id].key;
 	}
-	const char *near = nearest_word(entry->key, all, n);
-	if (near)
-		return err_set(e, ST_SYNTAX, "unknown key; did you mean %s?", near);
-	return err_set(e, ST_SYNTAX, "unknown key");
+	return unknown("key", entry->key, all, n, "a key of wane --help", e);
+}
+
+/* Every section of the file must be one of ours, also one without keys. */
+static enum status check_sections(const struct ini *ini, const char *path, struct err *e)
+{
+	for (size_t i = 0; i < ini->n_sections; i++) {
+		const struct ini_section *s = &ini->section[i];
+		bool known = false;
+		struct err why;
+		for (size_t k = 0; k < SECTIONS; k++)
+			known = known || strcmp(sections[k], s->name) == 0;
+		if (known)
+			continue;
+		(void)unknown("section", s->name, sections, SECTIONS, "run, limits, screen or leap_seconds",
+			      &why);
+		return at_place(path, s->line, s->column, "section", s->name, &why, e);
+	}
+	return ST_OK;
 }
 
 static enum status put_limit(struct settings *s, int id, const char *value, struct err *e)
@@ -153,17 +205,17 @@ static enum status put_entry(struct settings *s, const struct ini_entry *entry, 
 			     struct err *e)
 {
 	*key_fault = true;
-	bool section = false;
-	for (size_t i = 0; i < SECTIONS; i++)
-		section = section || strcmp(sections[i], entry->section) == 0;
-	if (!section)
-		return err_set(
-		    e, ST_SYNTAX,
-		    "no such section (got \"%.60s\", expected [run], [limits], [screen] or [leap_seconds])",
-		    entry->section);
+	if (!entry->section[0])
+		return err_set(e, ST_SYNTAX,
+			       "no section before it (got \"%.60s\", expected a line such as [run])",
+			       entry->key);
+	if (strcmp(entry->section, "leap_seconds") == 0 && strlen(entry->key) != LEAP_SECTION_KEY_MAX)
+		return err_set(e, ST_SYNTAX,
+			       "not a date (got \"%.60s\", expected YYYY-MM-DD = TAI less UTC in seconds)",
+			       entry->key);
 	*key_fault = false;
 	if (strcmp(entry->section, "leap_seconds") == 0)
-		return put_leap(s, entry, e);
+		return put_leap(s, entry, key_fault, e);
 	for (size_t i = 0; i < ROWS; i++)
 		if (strcmp(rows[i].section, entry->section) == 0 && strcmp(rows[i].key, entry->key) == 0)
 			return rows[i].put(s, entry->value, e);
@@ -173,13 +225,6 @@ static enum status put_entry(struct settings *s, const struct ini_entry *entry, 
 				return put_limit(s, id, entry->value, e);
 	*key_fault = true;
 	return unknown_key(entry, e);
-}
-
-static enum status at_place(const char *path, long line, long column, const char *key, const struct err *why,
-			    struct err *e)
-{
-	return err_set(e, why->status, "%.120s:%ld:%ld: %.60s%s%.300s", path, line, column, key,
-		       key[0] ? ": " : "", why->text);
 }
 
 enum status settings_read(struct settings *s, const char *path, struct err *e)
@@ -202,7 +247,8 @@ enum status settings_read(struct settings *s, const char *path, struct err *e)
 	status = ini_parse(data, n, &ini, &line, &column, &why);
 	free(data);
 	if (status != ST_OK)
-		return at_place(path, line, column, "", &why, e);
+		return err_set(e, status, "%.120s:%ld:%ld: %.360s", path, line, column, why.text);
+	status = check_sections(&ini, path, e);
 	for (size_t i = 0; status == ST_OK && i < ini.n; i++) {
 		const struct ini_entry *entry = &ini.entry[i];
 		bool key_fault;
@@ -210,7 +256,7 @@ enum status settings_read(struct settings *s, const char *path, struct err *e)
 		if (status != ST_OK)
 			status =
 			    at_place(path, entry->line, key_fault ? entry->key_column : entry->value_column,
-				     entry->key, &why, e);
+				     entry->key, key_fault ? entry->key : entry->value, &why, e);
 	}
 	ini_free(&ini);
 	if (status != ST_OK) {

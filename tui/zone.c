@@ -164,6 +164,10 @@ static bool name_allowed(const char *name)
 	size_t n = strlen(name);
 	if (n == 0 || n >= ZONE_NAME_MAX || name[n - 1] == '/')
 		return false;
+	/* zones begin with a capital; what does not is another file of that folder, or a copy of all zones
+	 * (`posix/`) */
+	if (name[0] < 'A' || name[0] > 'Z')
+		return false;
 	if (strspn(name, "ABCDEFGHIJKLMNOPQRSTUVWXYZabcdefghijklmnopqrstuvwxyz0123456789_+-./") != n)
 		return false;
 	for (size_t i = 0; i < n; i++) {

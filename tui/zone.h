@@ -12,7 +12,7 @@
 
 struct zone; /* opaque */
 enum { ZONE_NAME_MAX = 64 };
-/* name: `America/Denver`; letters, digits, `_ + - .` and `/`, no absolute path, no part that starts with a dot. ST_SYNTAX it can't be a name,
+/* name: `America/Denver`; begins with a capital (`posix/`, `right/`, `posixrules`, `tzdata.zi` are no zones); letters, digits, `_ + - .` and `/`, no part that starts with a dot. ST_SYNTAX it can't be a name,
  * ST_ABSENT no such zone, ST_IO it can't be read, ST_SYNTAX a damaged file. *out is the caller's: zone_close. */
 MUST_USE enum status zone_open(const char *zoneinfo_dir, const char *name, struct zone **out, struct err *e);
 void zone_close(struct zone *z); /* NULL is fine */

@@ -90,13 +90,13 @@ refuse() { # refuse PLACE-AND-REASON FILE-TEXT
 }
 refuse '2:1: az_deg: out of range (got "361", expected 0 to 360 deg)' '10, 5\n361, 5\n'
 refuse '1:5: alt_deg: out of range (got "95", expected -10 to 90 deg)' '10, 95\n'
-refuse '3:1: azimuth 80 deg stands twice, at 25 and 26 deg of altitude' '80, 25\n10, 1\n80, 26\n'
-refuse '1:1: no point of a horizon mask' '# nothing\n'
+refuse '3:1: row: azimuth 80 deg stands twice, at 25 and 26 deg of altitude' '80, 25\n10, 1\n80, 26\n'
+refuse '1:1: row: no point of a horizon mask' '# nothing\n'
 refuse '1:5: alt_deg: ' '10, high\n'
 awk 'BEGIN { for (i = 0; i <= 720; i++) print i / 2.01 ", 1" }' >"$scratch/many.csv"
 quiet site set "$hill" --mask "$scratch/many.csv" >"$scratch/out"
 check "721 points: exit 1" test $? = 1
-check "721 points: the line" grep -qF "wane: $scratch/many.csv:721:1: more than 720 points" "$scratch/err"
+check "721 points: the line" grep -qF "wane: $scratch/many.csv:721:1: row: more than 720 points" "$scratch/err"
 quiet night 2026-04-22 --mask "$scratch/no.csv" >"$scratch/out"
 check "no such file: exit 1" test $? = 1
 check "no such file: said" grep -q "^wane: $scratch/no.csv: No such file" "$scratch/err"

@@ -81,6 +81,41 @@ for command in '--version' 'night --help' 'season 2026-04-22 2026-04-23 --place 
 done
 "$WANE" --help >/dev/full 2>"$scratch/err"
 check "--help on a full standard output: exit 1" test $? = 1
-"$WANE" demo </dev/null >&- 2>"$scratch/err"
-check "a closed standard output does not crash it" test $? -le 1
+for command in demo 'season 2026-04-22 2026-04-23 --place 38.62,-109.36,2100' --version; do
+	# shellcheck disable=SC2086
+	"$WANE" $command </dev/null >&- 2>"$scratch/err"
+	check "a closed standard output, a result due: $command: exit 1" test $? = 1
+	check "and one line about it: $command" test "$(grep -c '^wane: standard output: ' "$scratch/err")" = 1
+done
+"$WANE" demo --out "$scratch/closed.txt" </dev/null >&- 2>"$scratch/err"
+check "a closed standard output with --out: exit 0" test $? = 0
+check "the result is in the file" test -s "$scratch/closed.txt"
+
+# --- the files that are in use are never replaced
+db=$scratch/w.db
+"$WANE" site add 'Tern Hill' --place 38.62,-109.36,2100 --zone America/Denver --db "$db" >/dev/null 2>&1
+printf '[limits]\npad = 3\n' >"$scratch/s.ini"
+ln -s w.db "$scratch/w.link"
+ln "$db" "$scratch/w.hard"
+mkdir -p "$XDG_CONFIG_HOME/wane"
+printf '[limits]\npad = 3\n' >"$XDG_CONFIG_HOME/wane/settings.ini"
+sum=$(cat "$db" "$scratch/s.ini" "$XDG_CONFIG_HOME/wane/settings.ini" | cksum)
+# in_use WHAT FILE ARGUMENTS...
+in_use() {
+	file=$1 target=$2
+	shift 2
+	"$WANE" "$@" --out "$target" --force >"$scratch/stdout" 2>"$scratch/err" </dev/null
+	check "--out on $file: exit 1: $*" test $? = 1
+	check "--out on $file: $(cat "$scratch/err")" grep -q "^wane: --out: .* is $file: a result never replaces it" "$scratch/err"
+	check "--out on $file: all is as it was" test "$(cat "$db" "$scratch/s.ini" "$XDG_CONFIG_HOME/wane/settings.ini" | cksum)" = "$sum"
+}
+for path in "$db" "$scratch/d/../w.db" "$scratch/w.link" "$scratch/w.hard"; do
+	in_use 'the database' "$path" night 2026-04-22 --db "$db"
+	in_use 'the database' "$path" target list --db "$scratch/w.link"
+done
+in_use 'the journal of the database' "$db-journal" site list --db "$db"
+in_use 'the journal of the database' "$db-journal" check --db "$scratch/w.link"
+in_use 'the settings file' "$scratch/s.ini" season 2026-04-22 2026-04-22 --db "$db" --settings "$scratch/s.ini"
+in_use 'the settings file' "$XDG_CONFIG_HOME/wane/settings.ini" demo
+in_use 'the settings file' "$XDG_CONFIG_HOME/wane/settings.ini" clock 2461114.5 --from JD_TT --to JD_TDB
 finish

@@ -78,8 +78,13 @@ refuse 2 'more than one star is named' sky 'Tern 14 b' --radec 150,10 --site 'Te
 refuse 2 'no such verb (got "lst"' target lst
 refuse 2 'NAME: is missing' site show
 refuse 2 'field: unknown (got "perid_d", did you mean period_d)' target set 'Tern 14 b' perid_d=3
-refuse 2 'field: expected FIELD=VALUE' target set 'Tern 14 b' period_d
+refuse 2 'field: no value (got "period_d", expected FIELD=VALUE)' target set 'Tern 14 b' period_d
 refuse 2 'period_d: given twice' target set 'Tern 14 b' period_d=3 period_d=4
+refuse 2 'name: given twice' target add 'Tern 950 b' --radec 1,1 name='Tern 951 b'
+refuse 2 'site: nothing to set' site set 'Tern Hill'
+refuse 2 '--at: a date without a time (got "2026-04-22", expected YYYY-MM-DDTHH:MM' sky --at 2026-04-22 --site 'Tern Hill'
+refuse 2 '--now: a date without a time' night --now 2026-04-22 --site 'Tern Hill'
+refuse 2 'an argument too many (got ")", expected wane check)' check ')'
 refuse 2 '--place: is missing' site add 'Tern North'
 refuse 2 'name: ' site add "$(printf 'a\033b')" --place 1,1,1
 
@@ -93,6 +98,10 @@ refuse 1 'site: "tern-hill" exists already' site add 'tern-hill' --place 1,1,1
 refuse 1 'site: no such site is stored' site remove Nowhere
 refuse 1 '--zone: ' site add 'Tern North' --place 1,1,1 --zone Europe/Madird
 refuse 1 '--zone: ' site add 'Tern North' --place 1,1,1 --zone ../../etc/passwd
+for zone in posixrules posix/America/Denver right/America/Denver localtime tzdata.zi zone.tab; do
+	refuse 1 "--zone: not a time zone's name (got \"$zone\"" site add 'Tern North' --place 1,1,1 --zone "$zone"
+done
+refuse 1 'time_scale: not a time scale (got "foo", expected BJD_TDB, HJD_UTC, JD_UTC and the like' target add 'Tern 950 b' --radec 1,1 time_scale=foo
 refuse 1 'exists already' target add 'TERN-14 B' --radec 1,1
 refuse 1 'ra_deg: missing' target add 'Tern 999 b'
 refuse 1 'period_d: ' target set 'Tern 14 b' period_d=-3
@@ -113,7 +122,7 @@ check "it is shown as what it is" grep -qF '\x1b' "$scratch/err"
 cp "$db" "$scratch/bad.db"
 LC_ALL=C sed -i 's|America/Santiago|America/Sxntiago|' "$scratch/bad.db"
 "$WANE" site list --db "$scratch/bad.db" >"$scratch/out" 2>"$scratch/err"
-check "a damaged site is named" grep -q '^wane: store: the checksum of site Tern South is wrong: left out' "$scratch/err"
+check "a damaged site is named" grep -q "^wane: store: $scratch/bad.db: the checksum of site Tern South is wrong: left out" "$scratch/err"
 check "the others are listed" test "$(cut -d: -f1 "$scratch/out")" = 'Tern Hill'
 
 # --- the settings file: file, line, column, key
@@ -126,10 +135,12 @@ settings() {
 	check "settings: $text: $(head -n 1 "$scratch/err")" grep -qF -- "wane: $scratch/s.ini:$text" "$scratch/err"
 }
 settings 1 '2:17: sun_limit_deg: out of range (got "12", expected -30 to 0)' '[limits]\nsun_limit_deg = 12\n'
-settings 1 '2:1: sun_limt_deg: unknown key; did you mean sun_limit_deg?' '[limits]\nsun_limt_deg = -12\n'
-settings 1 '3:1: `pad` was already given' '[limits]\npad = 2\npad = 3\n'
-settings 1 '1:1: ' '[limits\n'
-settings 1 '2:8: the quote is never closed' '[run]\nsite = "\n'
+settings 1 '2:1: sun_limt_deg: unknown key (got "sun_limt_deg", did you mean sun_limit_deg?)' '[limits]\nsun_limt_deg = -12\n'
+settings 1 '3:1: pad: given twice (got "pad", expected each key once' '[limits]\npad = 2\npad = 3\n'
+settings 1 '1:1: section: never closed' '[limits\n'
+settings 1 '1:2: section: unknown section (got "limts", did you mean limits?)' '[limts]\npad = 2\n'
+settings 1 '2:1: 2029-02-14: not the first of a month' '[leap_seconds]\n2029-02-14 = 38\n'
+settings 1 '2:8: value: the quote is never closed' '[run]\nsite = "\n'
 refuse 1 'this is a folder' night --settings "$scratch" --site 'Tern Hill'
 printf '[run]\nsite = "Tern West"\n' >"$scratch/s.ini"
 refuse 1 'settings: the site "Tern West" of the settings file is not stored' night --settings "$scratch/s.ini"
@@ -163,6 +174,24 @@ row '3:1: name: ' ',150,10,2461000.5,0.001,BJD_TDB,3,0.00001'
 row '3:1: name: ' 'Tern\0033 902,150,10,2461000.5,0.001,BJD_TDB,3,0.00001'
 row '3:1: name: ' 'Tern \0342\0200\0256902,150,10,2461000.5,0.001,BJD_TDB,3,0.00001'
 
+row '3:11: row: a NUL byte' 'Tern 902 b\0000,150,10,2461000.5,0.001,BJD_TDB,3,0.00001'
+row '3:5: row: a quote inside a cell' 'Tern" 902 b,150,10,2461000.5,0.001,BJD_TDB,3,0.00001'
+row '3:13: row: text after the closing quote' '"Tern 902 b"x,150,10,2461000.5,0.001,BJD_TDB,3,0.00001'
+row '3:12: ra_deg: ' 'Tern 902 b,1\0033[31m,10,2461000.5,0.001,BJD_TDB,3,0.00001'
+
+# a quote that is never closed refuses the file, and the reason is said once
+printf '%s\n%s\n"Tern 902 b,1\n' "$head" "$good" >"$scratch/t.csv"
+"$WANE" import "$scratch/t.csv" --db "$db" >"$scratch/out" 2>"$scratch/err"
+check "an unclosed quote: exit 1" test $? = 1
+check "an unclosed quote: where" grep -qF "wane: $scratch/t.csv:3:1: row: the quote that opens this cell is never closed (got " "$scratch/err"
+check "an unclosed quote: said once" test "$(grep -c 'never closed' "$scratch/err")" = 1
+printf 'name,ra_deg,dec_deg,perid_d\nTern 902 b,1,1,3\n' >"$scratch/t.csv"
+"$WANE" import "$scratch/t.csv" --dry-run --db "$db" >"$scratch/out" 2>"$scratch/err"
+check "an unknown column: which may be meant" grep -qF "wane: $scratch/t.csv:1:21: column: unknown, left out (got \"perid_d\", did you mean period_d?)" "$scratch/err"
+printf '%s\n' "$head" >"$scratch/t.csv"
+"$WANE" import "$scratch/t.csv" --dry-run --db "$db" >"$scratch/out" 2>/dev/null
+check "a header alone: exit 0" test $? = 0
+
 # the first 20, then a count
 {
 	echo "$head"
@@ -177,4 +206,27 @@ check "all refused: exit 1" test $? = 1
 check "twenty places" test "$(grep -c "^wane: $scratch/t.csv:" "$scratch/err")" = 20
 check "then a count" grep -q '^wane: more: 10 more not shown (10 refused, 0 doubtful)' "$scratch/err"
 check "nothing to store makes no store" test ! -e "$scratch/new.db"
+
+# --- setting what is set already writes nothing
+"$WANE" target set 'Tern 14 b' mag=11.5 priority=2 --db "$db" >/dev/null 2>&1
+sum=$(cksum <"$db")
+"$WANE" target set 'Tern 14 b' mag=11.5 --db "$db" >/dev/null 2>&1
+check "target set to the same: exit 0" test $? = 0
+check "target set to the same writes nothing" test "$(cksum <"$db")" = "$sum"
+"$WANE" site set 'Tern Hill' --zone America/Denver --place 38.62,-109.36,2100 --db "$db" >/dev/null 2>&1
+check "site set to the same: exit 0" test $? = 0
+check "site set to the same writes nothing" test "$(cksum <"$db")" = "$sum"
+
+# --- a period too short to be counted is told wherever it matters
+printf '%s\n%s\nTern 903 b,150,10,2461000.5,0.001,BJD_TDB,0.0099,1e-9\nTern 904 b,150,10,2461000.5,0.001,BJD_TDB,0.01,1e-9\n' "$head" "$good" >"$scratch/t.csv"
+"$WANE" import "$scratch/t.csv" --db "$db" >"$scratch/out" 2>"$scratch/err"
+check "a short period: stored" test "$(cat "$scratch/out")" = "3 read, 3 new, 0 changed, 0 same, 0 refused"
+check "a short period: said at import" grep -qF 'period_d: kept without effect: too short to be counted (got "0.0099", expected a period of at least 0.01 d)' "$scratch/err"
+check "a short period: in target show" sh -c '"$1" target show "Tern 903 b" --db "$2" | grep -q "period_d .*0.0099 d.*too short to be counted"' - "$WANE" "$db"
+check "a short period: in check" sh -c '"$1" check --db "$2" | grep -q "^doubt: Tern 903 b: period_d"' - "$WANE" "$db"
+"$WANE" night 2026-04-22 --site 'Tern Hill' --db "$db" >"$scratch/out" 2>/dev/null
+check "a short period: in the night" grep -q "^1 target can't be counted, the period is below 0.01 d: Tern 903 b" "$scratch/out"
+"$WANE" season 2026-04-22 2026-04-22 --site 'Tern Hill' --format csv --db "$db" 2>"$scratch/err" >"$scratch/out"
+check "a short period: beside a table" grep -q "^wane: targets: 1 target can't be counted" "$scratch/err"
+check "the shortest that is counted has its events" sh -c 'test "$("$1" night 2026-04-22 --site "Tern Hill" --all --target "Tern 904 b" --format csv --db "$2" 2>/dev/null | wc -l)" -ge 100' - "$WANE" "$db"
 finish

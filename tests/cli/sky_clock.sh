@@ -75,4 +75,42 @@ check "the Earth's centre is told of" grep -q "Earth's centre" "$scratch/err"
 run clock 2461114.5 --from JD_UTC --to BJD_TDB >/dev/null
 check "light time without a direction: exit 1" test $? = 1
 check "and the reason" grep -q '^wane: direction: ' "$scratch/err"
+run clock 2031-01-01T00:00Z --from UTC --to JD_TT >/dev/null
+check "UTC beyond the leap-second table is told of" grep -q '^wane: leap seconds: the table is known to be complete until' "$scratch/err"
+run clock 2461114.5 --from JD_UTC --to JD_TT >/dev/null
+check "UTC within it is not" sh -c '! grep -q "leap seconds" "$1"' - "$scratch/err"
+# Denver is 7 h behind UTC in winter (IANA time zone database)
+check "a leap second in local time" grep -q '^Time: 2016-12-31T23:59:60Z, 16:59:60 MST' <<-EOT
+	$(run site add 'Tern Hill' --place 38.62,-109.36,2100 --zone America/Denver >/dev/null && run sky --at 2016-12-31T23:59:60Z)
+EOT
+check "-0 is 0" sh -c '"$1" night 2026-04-22 --place 38.62,-109.36,2100 --sun-limit -0 --format json --db "$2" 2>/dev/null | grep -q "\"sun_limit_deg\": 0,"' - "$WANE" "$db"
+
+# --- near the end of the dates: the place as usual, no next mid-time
+"$WANE" sky 'tern14b' --at 2100-12-31T22:00Z --place 38.62,-109.36,2100 --db "$db" --format json >"$scratch/sky" 2>"$scratch/err"
+check "sky at the end of the dates: exit 0: $(cat "$scratch/err")" test $? = 0
+check "sky at the end: a place" sh -c 'test "$1" != null && test -n "$1"' - "$(key alt_deg)"
+check "sky at the end: no next mid-time" test "$(key next_mid_bjd_tdb)$(key next_mid_utc)" = nullnull
+check "sky at the end: an epoch" test "$(key epoch)" -gt 6000
+
+# --- the night of a clock change: Denver goes from UTC-6 to UTC-7 on 1 Nov 2026 at 08:00 UTC (IANA time zone database); one transit
+# 01:30 MDT to 01:30 MST has its mid-time at 08:00 UTC
+"$WANE" target add 'Tern 20 b' --radec 30,35 t0_jd=2461345.833333 t0_err_d=0.0001 period_d=4 period_err_d=0.00001 duration_h=1 time_scale=JD_UTC --db "$db" 2>/dev/null
+set -- --target 'Tern 20 b' --site 'Tern Hill' --db "$db"
+"$WANE" site add 'Tern Hill' --place 38.62,-109.36,2100 --zone America/Denver --db "$db" >/dev/null 2>&1
+"$WANE" night 2026-10-31 --all "$@" >"$scratch/text" 2>/dev/null
+check "the head says what the mark means" grep -qF 'from MDT to MST: in the table a time with * is MST, one without is MDT.' "$scratch/text"
+check "the repeated hour is told apart: $(grep '^Tern 20 b' "$scratch/text")" grep -q '^Tern 20 b .* 01:30  01:30\* ' "$scratch/text"
+"$WANE" season 2026-10-31 2026-11-01 --all "$@" >"$scratch/text" 2>/dev/null
+check "a season says so too" grep -q 'there a time with \* is one after the change' "$scratch/text"
+check "a season marks it" grep -q 'Tern 20 b .* 01:30  01:30\* ' "$scratch/text"
+"$WANE" season 2026-11-02 2026-11-03 --all "$@" >"$scratch/text" 2>/dev/null
+check "no change, no mark" sh -c '! grep -q "[0-9]\*" "$1" && ! grep -q "clocks change" "$1"' - "$scratch/text"
+
+# --- a site that is named twice is one
+"$WANE" season 2026-10-31 2026-11-01 --all --target 'Tern 20 b' --site 'Tern Hill' --format csv --db "$db" >"$scratch/one" 2>/dev/null
+"$WANE" season 2026-10-31 2026-11-01 --all --target 'Tern 20 b' --site 'Tern Hill' --site tern-HILL --format csv --db "$db" 2>/dev/null | cmp -s - "$scratch/one"
+check "a site named twice" test $? = 0
+"$WANE" season 2026-10-31 2026-11-01 --all --target 'Tern 20 b' --place 38.62,-109.36,2100 --format csv --db "$db" >"$scratch/one" 2>/dev/null
+"$WANE" season 2026-10-31 2026-11-01 --all --target 'Tern 20 b' --place 38.62,-109.36,2100 --place 38.62,-109.36,2100 --format csv --db "$db" 2>/dev/null | cmp -s - "$scratch/one"
+check "a place named twice" test $? = 0
 finish

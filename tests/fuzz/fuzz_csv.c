@@ -69,7 +69,11 @@ static int read_all(const char *data, size_t size, struct text *out, size_t *row
 		add_bytes(out, "\"header\"\n", 9);
 	struct csv_row row;
 	int more;
-	while ((more = csv_next(c, &row, &line, &column, &e)) == 1) {
+	while ((more = csv_next(c, &row, &line, &column, &e)) == CSV_ROW || more == CSV_BAD_ROW) {
+		if (more == CSV_BAD_ROW) {
+			property(line >= 1 && column >= 1 && e.text[0] != '\0' && !strchr(e.text, '\n'));
+			continue;
+		}
 		check_row(&row, &last_line);
 		if (out)
 			add_quoted(out, &row);

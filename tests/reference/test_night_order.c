@@ -1,7 +1,9 @@
 /* SPDX-License-Identifier: MIT
  * What a night holds depends on its date and site only: the same bits in whatever order nights are built,
  * with an empty or a full memo, and whatever libnova was asked before (its nutation answers for any date
- * within 0.1 d of the last one). */
+ * within 0.1 d of the last one). This is the one test that includes libnova itself: what is tried is whether
+ * calls that others make to that library change the engine's answers, and such a call can only be made
+ * directly. */
 #include "ephem/night.h"
 #include "ephem/series_nova.h"
 

@@ -121,11 +121,23 @@ static void test_bad_rows(void **state)
 	     "too small|0|a number above 0"},
 	    {HEAD "Tern 1 b,10,20,2459000.5,BJD_TDB,-3\n", "2:34:period_d", "1 0 0 0 1", "|-3|"},
 	    {HEAD "Tern 1 b,10,20,2459000.5,BJD_TDB,3d\n", "2:34:period_d", "1 0 0 0 1", "|3d|"},
-	    {HEAD "Tern 1 b,10,20\n", "2:1:", "1 0 0 0 1", "fewer cells"},
-	    {HEAD "Tern 1 b,10,20,,,,7\n", "2:1:", "1 0 0 0 1", "more cells"},
+	    {HEAD "Tern 1 b,10,20\n", "2:1:row", "1 0 0 0 1", "fewer cells than the header names|3|6 cells"},
+	    {HEAD "Tern 1 b,10,20,,,,7\n", "2:1:row", "1 0 0 0 1",
+	     "more cells than the header names|7|6 cells"},
 	    {HEAD "Tern 1 b,10,20,,,,,,\n", "", "1 1 0 0 0", ""}, /* a tail of nothing */
 	    {HEAD ",,,,,\n\n,,,,,\n", "", "0 0 0 0 0", ""},	  /* rows of nothing */
 	    {HEAD "\"Tern\n1 b\",10,20,,,\n", "2:1:name", "1 0 0 0 1", "U+000A"},
+	    /* what breaks a row breaks that row alone */
+	    {HEAD "Tern\" 2 b,10,20,,,\nTern 3 b,10,20,,,\n", "2:5:row", "2 1 0 0 1",
+	     "a quote inside a cell that doesn't begin with one (got \"Tern\" 2 b\", expected a cell in "
+	     "quotes"},
+	    {HEAD "\"Tern 2\" b,10,20,,,\nTern 3 b,10,20,,,\n", "2:9:row", "2 1 0 0 1",
+	     "text after the closing quote of a cell (got \"\"Tern 2\" b,10,20,,,\", expected"},
+	    /* what is hostile is shown as what it is */
+	    {HEAD "Tern 1 b,1\x1b[31m0,20,,,\n", "2:10:ra_deg", "1 0 0 0 1", "|1\\x1b[31m0|"},
+	    {HEAD "Tern 1 b,10,2\xE2\x80\xAE"
+		  "0,,,\n",
+	     "2:13:dec_deg", "1 0 0 0 1", "|2U+202E0|"},
 	    {HEAD "Tern 1 b,x,20,,,\nTern 2 b,10,20,,,\nTern 3 b,10,x,,,\n", "2:10:ra_deg 4:13:dec_deg",
 	     "3 1 0 0 2", ""},
 	};
@@ -147,6 +159,43 @@ static void test_bad_rows(void **state)
 	}
 }
 
+/* A NUL byte, and a cell over 64 KiB: the rows around are taken. */
+static void test_bad_bytes(void **state)
+{
+	static const char before[] = HEAD "Tern 1 b,10,20,,,\n", after[] = ",20,,,\nTern 3 b,10,20,,,\n";
+	(void)state;
+	for (int i = 0; i < 3; i++) {
+		struct store *s = memory_store();
+		struct import_report report;
+		struct said said = {.places = ""};
+		struct err e;
+		char *data = malloc(200000);
+		assert_non_null(data);
+		size_t n =
+		    (size_t)snprintf(data, 200000, "%s%s", before, i == 0 ? "Tern 2 b,1" : "Tern 2 b,");
+		if (i == 0) {
+			data[n++] = '\0';
+		} else {
+			if (i == 2)
+				data[n++] = '"';
+			memset(data + n, '7', 70000);
+			n += 70000;
+			if (i == 2)
+				data[n++] = '"';
+		}
+		n += (size_t)snprintf(data + n, 200000 - n, "%s", after);
+		const struct import_options o = {.change = change};
+		assert_int_equal(import_targets(s, data, n, &o, &report, note, &said, &e), ST_OK);
+		check_counts("bad bytes", &report, "3 2 0 0 1");
+		assert_string_equal(said.places, i == 0 ? "3:11:row" : "3:10:row");
+		assert_non_null(strstr(
+		    said.last, i == 0 ? "a NUL byte can't stand in a table (got \"1\\x00\", expected text)"
+				      : "this cell is too long (got \""));
+		free(data);
+		store_close(s);
+	}
+}
+
 /* --- files that are refused as a whole --- */
 
 static void test_bad_files(void **state)
@@ -154,15 +203,18 @@ static void test_bad_files(void **state)
 	static const struct {
 		const char *data, *places, *says;
 	} rows[] = {
-	    {"", "1:1:", "empty"},
-	    {"name,dec_deg\nTern 1 b,20\n", "1:1:ra_deg", "ra_deg: the table has no such column"},
-	    {"ra_deg,dec_deg\n10,20\n", "1:1:name", "name"},
-	    {"x\n1\n", "1:1:W 1:1:name", "name"},
-	    {"name,ra_deg,dec_deg,ra_deg\nTern 1 b,1,2,3\n", "1:21:ra_deg", "twice"},
-	    {"Tern 1 b,10,20\n", "1:1:", "no header"},
-	    {HEAD "Tern 1 b,10,20,,,\nTern 2 b,\"10,20,,,\n", "3:10:", "never closed"},
-	    {HEAD "Tern 1 b,10,20,,,\nTern\" 2 b,10,20,,,\n", "3:5:", "a quote inside"},
-	    {"\x1F\x8B\x08", "1:1:", "gzip"},
+	    {"", "1:1:file", "the file is empty (got \"\", expected a UTF-8 text table)"},
+	    {"name,dec_deg\nTern 1 b,20\n", "1:1:ra_deg", "the header has no such column|name|columns name"},
+	    {"ra_deg,dec_deg\n10,20\n", "1:1:name", "no such column|ra_deg|"},
+	    {"x\n1\n", "1:1:columnW 1:1:name", "no such column|x|"},
+	    {"name,ra_deg,dec_deg,ra_deg\nTern 1 b,1,2,3\n", "1:21:ra_deg", "twice|ra_deg|each column once"},
+	    {"Tern 1 b,10,20\n", "1:1:header",
+	     "no header: the first row holds numbers (got \"Tern 1 b\", expected names of columns)"},
+	    {HEAD "Tern 1 b,10,20,,,\nTern 2 b,\"10,20,,,\n", "3:10:row",
+	     "the quote that opens this cell is never closed (got \"\"10,20,,,\", expected a closing quote)"},
+	    {"na\x1bme\",x\n", "1:6:header", "(got \"na\\x1bme\"\", "},
+	    {"\x1F\x8B\x08", "1:1:file",
+	     "this is a gzip file: unpack it first (got \"\\x1f\\x8b\\x08\", expected a UTF-8 text table)"},
 	};
 	(void)state;
 	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
@@ -171,8 +223,10 @@ static void test_bad_files(void **state)
 		struct said said;
 		struct err e;
 		enum status st = import(s, rows[i].data, (struct import_options){0}, &report, &said, &e);
-		if (st != ST_SYNTAX || !strstr(e.text, rows[i].says) || !strstr(e.text, "nothing was stored"))
-			check_fail("row %zu: status %d: %s", i, (int)st, e.text);
+		/* the reason is said once, with its place */
+		if (st != ST_SYNTAX || !strstr(said.last, rows[i].says) ||
+		    strcmp(e.text, "nothing was stored") != 0)
+			check_fail("row %zu: status %d: %s (%s)", i, (int)st, e.text, said.last);
 		if (strcmp(said.places, rows[i].places) != 0)
 			check_fail("row %zu: said %s (%s), want %s", i, said.places, said.last,
 				   rows[i].places);
@@ -195,8 +249,14 @@ static void test_doubts(void **state)
 	     "as long as the period"},
 	    {"name,ra_deg,dec_deg,period_err_d,period_d\nTern 1 b,10,20,5,3\n", "2:16:period_err_dW",
 	     "above the period|5|"},
-	    {"name,ra_deg,dec_deg,color\nTern 1 b,10,20,red\n", "1:21:W", "unknown column, left out|color|"},
-	    {"name,ra_deg,dec_deg,\nTern 1 b,10,20,\n", "1:21:W", "unknown column"},
+	    {"name,ra_deg,dec_deg,t0_jd,period_d\nTern 1 b,10,20,2461000.5,0.0099\n", "2:26:period_dW",
+	     "too short to be counted|0.0099|a period of at least 0.01 d"},
+	    {"name,ra_deg,dec_deg,color\nTern 1 b,10,20,red\n", "1:21:columnW",
+	     "unknown, left out|color|a column"},
+	    {"name,ra_deg,dec_deg,perid_d\nTern 1 b,10,20,3\n", "1:21:columnW",
+	     "unknown, left out|perid_d|did you mean period_d?"},
+	    {"name,ra_deg,dec_deg,\x1b[2J\nTern 1 b,10,20,3\n", "1:21:columnW", "|\\x1b[2J|"},
+	    {"name,ra_deg,dec_deg,\nTern 1 b,10,20,\n", "1:21:columnW", "unknown, left out||"},
 	};
 	(void)state;
 	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
@@ -209,7 +269,8 @@ static void test_doubts(void **state)
 		check_counts(rows[i].data, &report, "1 1 0 0 0");
 		if (strcmp(said.places, rows[i].places) != 0 || !strstr(said.last, rows[i].says))
 			check_fail("row %zu: said %s (%s)", i, said.places, said.last);
-		assert_int_equal(report.doubtful, i < 4);
+		assert_int_equal(report.doubtful, i < 5);
+		assert_int_equal(report.too_short, i == 4);
 		store_close(s);
 	}
 }
@@ -766,6 +827,7 @@ int main(void)
 	const struct CMUnitTest tests[] = {
 	    cmocka_unit_test(test_doubt_expects),
 	    cmocka_unit_test(test_bad_rows),
+	    cmocka_unit_test(test_bad_bytes),
 	    cmocka_unit_test(test_bad_files),
 	    cmocka_unit_test(test_doubts),
 	    cmocka_unit_test(test_doubt_is_kept),

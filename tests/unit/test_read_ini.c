@@ -51,22 +51,23 @@ static void test_table(void **state)
 	    {"name = \xCF\x80 x", "/name=\xCF\x80 x@1:8;"},
 	    {"a-b.c_D9 = 1", "/a-b.c_D9=1@1:12;"},
 	    {"[x]\na=1\n[y]\na=2", "x/a=1@2:3;y/a=2@4:3;"},
-	    {"a\rb", "! 1:2: expected = after the key"},
-	    {"a", "! 1:2: expected = after the key"},
-	    {"x\n= 1", "! 1:2: expected ="},
-	    {"= 1", "! 1:1: expected `key = value`"},
-	    {"a b = 1", "! 1:3: expected ="},
-	    {"[x", "! 1:1: the section is not closed"},
-	    {"[]", "! 1:1: the section has no name"},
-	    {"[x] y", "! 1:5: text after the section"},
-	    {"\n a = \"x", "! 2:6: the quote is never closed"},
-	    {"a = \"x\" y", "! 1:9: text after the closing quote"},
-	    {"a = \"\\n\"", "! 1:6: only"},
-	    {"a=1\n\na = 2", "! 3:1: `a` was already given in line 1"},
-	    {"a = x\x1B", "! 1:6: a control or invisible"},
-	    {"a = \xE2\x80\xAEx", "! 1:5: a control or invisible"},
-	    {"a = \xE9", "! 1:5: not UTF-8"},
-	    {"\x1F\x8B", "! 1:1: this is a gzip file"},
+	    {"a\rb", "! 1:2: key: no = behind it (got \"a"},
+	    {"a", "! 1:2: key: no = behind it (got \"a"},
+	    {"x\n= 1", "! 1:2: key: no = behind"},
+	    {"= 1", "! 1:1: row: no key (got \"= 1\", expected key = value"},
+	    {"a b = 1", "! 1:3: key: no = behind"},
+	    {"[x", "! 1:1: section: never closed (got \"[x\", expected [name])"},
+	    {"[]", "! 1:1: section: no name"},
+	    {"[x] y", "! 1:5: section: text behind it (got \"y\""},
+	    {"\n a = \"x", "! 2:6: value: the quote is never closed"},
+	    {"a = \"x\" y", "! 1:9: value: text after the closing quote"},
+	    {"a = \"\\n\"", "! 1:6: value: a backslash"},
+	    {"a=1\n\na = 2",
+	     "! 3:1: a: given twice (got \"a\", expected each key once; it stands in line 1)"},
+	    {"a = x\x1B", "! 1:6: row: a control or invisible character (got \"\\x1b\", expected text)"},
+	    {"a = \xE2\x80\xAEx", "! 1:5: row: a control or invisible character (got \"U+202Ex\""},
+	    {"a = \xE9", "! 1:5: row: not UTF-8 (got \"\\xe9\""},
+	    {"\x1F\x8B", "! 1:1: file: this is a gzip file: unpack it first (got \"\\x1f\\x8b\""},
 	};
 	(void)state;
 	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
@@ -84,7 +85,7 @@ static void test_nul(void **state)
 	char out[128];
 	(void)state;
 	parse("ab=1\nc=\0\n", 9, out, sizeof out);
-	assert_int_equal(strncmp(out, "! 2:3: a control", 16), 0);
+	assert_int_equal(strncmp(out, "! 2:3: row: a control", 21), 0);
 }
 
 /* Any bytes: it ends, and never reads or writes beyond its blocks. */

@@ -66,9 +66,9 @@ static void faults_have_a_place(void **state)
 		size_t n; /* 0: strlen */
 		const char *says;
 	} rows[] = {
-	    {"", 0, "m.csv:1:1: no point"},
-	    {"# nothing\n\n", 0, "m.csv:2:1: no point"},
-	    {"az_deg, alt_deg\n", 0, "m.csv:1:1: no point"},
+	    {"", 0, "m.csv:1:1: row: no point"},
+	    {"# nothing\n\n", 0, "m.csv:2:1: row: no point"},
+	    {"az_deg, alt_deg\n", 0, "m.csv:1:1: row: no point"},
 	    {"10, 5\n361, 5\n", 0, "m.csv:2:1: az_deg: out of range (got \"361\", expected 0 to 360 deg)"},
 	    {"-1, 5\n", 0, "m.csv:1:1: az_deg: out of range"},
 	    {"10, 91\n", 0, "m.csv:1:5: alt_deg: out of range (got \"91\", expected -10 to 90 deg)"},
@@ -77,15 +77,15 @@ static void faults_have_a_place(void **state)
 	    {"10, 5x\n", 0, "m.csv:1:6: alt_deg: "},
 	    {"10, nan\n", 0, "m.csv:1:5: alt_deg: "},
 	    {"10,5;6\n", 0, "m.csv:1:3: az_deg: decimal comma"},
-	    {"10\n", 0, "m.csv:1:1: one cell only (got \"10\""},
-	    {"10,\n", 0, "m.csv:1:1: one cell only"},
-	    {"10, 5, 6\n", 0, "m.csv:1:8: more than two cells (got \"6\""},
+	    {"10\n", 0, "m.csv:1:1: row: one cell only (got \"10\""},
+	    {"10,\n", 0, "m.csv:1:1: row: one cell only"},
+	    {"10, 5, 6\n", 0, "m.csv:1:8: row: more than two cells (got \"6\""},
 	    {"alt_deg, az_deg\n", 0, "m.csv:1:1: az_deg: "},
 	    {"1, 1\naz_deg, alt_deg\n", 0, "m.csv:2:1: az_deg: "},
-	    {"80, 25\n10, 1\n80, 26\n", 0, "m.csv:3:1: azimuth 80 deg stands twice"},
-	    {"0, 5\n360, 6\n", 0, "m.csv:2:1: azimuth 360 deg stands twice"},
-	    {"10, 5\n2\0000, 5\n", 13, "m.csv:2:2: a NUL byte"},
-	    {"\x1F\x8B\x08", 0, "m.csv:1:1: this is a gzip file"},
+	    {"80, 25\n10, 1\n80, 26\n", 0, "m.csv:3:1: row: azimuth 80 deg stands twice"},
+	    {"0, 5\n360, 6\n", 0, "m.csv:2:1: row: azimuth 360 deg stands twice"},
+	    {"10, 5\n2\0000, 5\n", 13, "m.csv:2:2: row: a NUL byte"},
+	    {"\x1F\x8B\x08", 0, "m.csv:1:1: file: this is a gzip file"},
 	};
 	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
 		struct mask m;
@@ -127,7 +127,8 @@ static void as_many_as_720(void **state)
 	mask_text(&back, again);
 	assert_string_equal(again, text);
 	assert_int_equal(parse(file, used, &m, &unsorted, &e), ST_RANGE);
-	assert_string_equal(e.text, "m.csv:721:1: more than 720 points in a horizon mask");
+	assert_string_equal(
+	    e.text, "m.csv:721:1: row: more than 720 points in a horizon mask (got \"358.50208044382799\")");
 }
 
 static void stored_texts_are_checked(void **state)

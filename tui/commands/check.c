@@ -41,7 +41,7 @@ int command_check(const struct env *env, const struct options *o)
 	int code;
 	if (run_open(&run, env, o, NEED_STORE, &code, &e) != ST_OK)
 		return diagnose_whole(&e, code);
-	if (out_open(&out, o->out, o->force, &e) != ST_OK) {
+	if (run_out_open(&run, &out, &e) != ST_OK) {
 		run_close(&run);
 		return diagnose_whole(&e, EXIT_UNMET);
 	}

@@ -114,7 +114,9 @@ static int convert(struct conversion *c, struct run *r, const struct observer *a
 	if (to_tt(c, r, at, n, &t, &e) != ST_OK || from_tt(c, r, at, n, t, text, &e) != ST_OK)
 		return diagnose_err("VALUE", &e,
 				    e.status == ST_RANGE || e.status == ST_SYNTAX ? EXIT_USAGE : EXIT_UNMET);
-	if (out_open(&out, o->out, o->force, &e) != ST_OK)
+	if (c->from.clock == CLOCK_UTC || c->to.clock == CLOCK_UTC)
+		leap_note(r, tt_to_utc(&r->leap, t).mjd);
+	if (run_out_open(r, &out, &e) != ST_OK)
 		return diagnose_whole(&e, EXIT_UNMET);
 	fprintf(out.file, "%s\n", text);
 	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_whole(&e, EXIT_UNMET);

@@ -74,7 +74,7 @@ int command_demo(const struct env *env, const struct options *o)
 		return EXIT_USAGE;
 	if (!demo.now)
 		demo.now = interface ? DEMO_NOW "+" : DEMO_NOW;
-	apart.settings_path[0] = '\0'; /* the demo is the same for everyone; --settings still works */
+	apart.settings_apart = true; /* the demo is the same for everyone; --settings still works */
 	if (store_open("demo", STORE_MEMORY, &store, &e) != ST_OK)
 		return diagnose_err("demo", &e, EXIT_UNMET);
 	if (fill_demo(store, &e) != ST_OK) {

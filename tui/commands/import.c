@@ -19,6 +19,9 @@ static void say_notes(const struct import_report *r)
 	if (r->doubtful > 0)
 		diagnose("import", "%ld stored with a value that can't be true (kept aside and flagged)",
 			 r->doubtful);
+	if (r->too_short > 0)
+		diagnose("import", "%ld can't be counted: a period below %g d (no event of theirs is listed)",
+			 r->too_short, PERIOD_MIN_D);
 	if (r->scale_assumed > 0)
 		diagnose("import",
 			 "%ld do not say their time standard: used as BJD_TDB with a systematic error",
@@ -51,7 +54,7 @@ static int finish(const struct run *r, enum status s, const struct import_report
 	if (s != ST_OK)
 		return diagnose_err("import", e, EXIT_UNMET);
 	say_notes(report);
-	if (out_open(&out, r->options->out, r->options->force, &why) != ST_OK)
+	if (run_out_open(r, &out, &why) != ST_OK)
 		return diagnose_whole(&why, EXIT_UNMET);
 	fprintf(out.file, "%ld read, %ld new, %ld changed, %ld same, %ld refused\n", report->read,
 		report->added, report->changed, report->same, report->refused);

@@ -3,6 +3,7 @@
 
 #include "tui/diagnose.h"
 #include "tui/given.h"
+#include "tui/parts/clock_mark.h"
 #include "tui/sheets/out.h"
 #include "tui/sheets/text.h"
 #include "tui/sheets/windows.h"
@@ -17,10 +18,9 @@ static void write_text(FILE *to, const struct run *r, const struct night_view *v
 	text_head(&t, &r->site, r->zone, v);
 	/* in a night of a clock change the zone has two names; the head says so */
 	const struct night *n = &v->night;
-	struct local_time from = zone_local(r->zone, night_utc(n, 0.0)),
-			  until = zone_local(r->zone, night_utc(n, n->length_d));
+	struct local_time noon = zone_local(r->zone, night_utc(n, 0.0));
 	if (v->list.n > 0)
-		text_heading(&t, from.offset_s == until.offset_s ? from.abbreviation : "local time");
+		text_heading(&t, clocks_change(n, r->zone) ? "local time" : noon.abbreviation);
 	text_rows(&t, v, r->zone, false);
 	text_rows(&t, v, r->zone, true);
 	text_foot(&t, n->mjd);
@@ -60,7 +60,7 @@ int night_write(struct run *r, int32_t evening_mjd)
 	enum format format;
 	if (format_of(r->options, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &e) != ST_OK)
 		return usage_fault("--format", &e);
-	if (out_open(&out, r->options->out, r->options->force, &e) != ST_OK)
+	if (run_out_open(r, &out, &e) != ST_OK)
 		return diagnose_whole(&e, EXIT_UNMET);
 	if (run_night(r, evening_mjd, format == FORMAT_TEXT, &view, &e) != ST_OK) {
 		out_abandon(&out);
@@ -74,8 +74,10 @@ int night_write(struct run *r, int32_t evening_mjd)
 		whole = write_csv(out.file, &view);
 	else
 		write_json(out.file, r, &view);
-	if (format != FORMAT_TEXT)
+	if (format != FORMAT_TEXT) {
 		leap_note(r, evening_mjd);
+		uncounted_note(r);
+	}
 	night_view_free(&view);
 	if (!whole) {
 		out_abandon(&out);
@@ -93,6 +95,13 @@ void leap_note(const struct run *r, int32_t last_mjd)
 			 "the table is known to be complete until %04d-%02d-%02d; later UTC times may be off "
 			 "by a second",
 			 d.year, d.month, d.day);
+}
+
+void uncounted_note(const struct run *r)
+{
+	char text[600];
+	if (uncounted_text(r, text, sizeof text) > 0)
+		diagnose("targets", "%s", text);
 }
 
 bool one_site(const struct options *o, const char *command)

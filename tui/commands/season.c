@@ -97,6 +97,22 @@ static void date_json(struct json *j, const char *key, int32_t mjd)
 	json_text(j, key, text);
 }
 
+/* Whether the clocks of one of the sites change in one of the nights. */
+static bool any_change(const struct season *s, int32_t from, int32_t until)
+{
+	for (size_t i = 0; i < s->n_sites; i++) {
+		const double noon_s =
+		    43200.0 - 240.0 * s->site[i].lon_east_deg; /* UTC of the local mean noon */
+		for (int32_t mjd = from; mjd <= until; mjd++) {
+			struct utc noon = utc_add_s(&s->run->leap, (struct utc){.mjd = mjd}, noon_s);
+			struct utc next = utc_add_s(&s->run->leap, (struct utc){.mjd = mjd + 1}, noon_s);
+			if (zone_local(s->zone[i], noon).offset_s != zone_local(s->zone[i], next).offset_s)
+				return true;
+		}
+	}
+	return false;
+}
+
 static void begin_text(struct season *s, FILE *to, int32_t from, int32_t until)
 {
 	char first[64], last[64];
@@ -112,6 +128,12 @@ static void begin_text(struct season *s, FILE *to, int32_t from, int32_t until)
 		text_site(&s->text, &s->site[i], s->zone[i]);
 	}
 	text_limits(&s->text);
+	if (any_change(s, from, until))
+		fprintf(to,
+			s->text.plain
+			    ? "In some of these nights the clocks change: each local time says which it is.\n"
+			    : "In some of these nights the clocks change: there a time with * is one after "
+			      "the change, one without is before it.\n");
 	text_heading(&s->text, "local time of the site");
 }
 
@@ -155,8 +177,10 @@ static void end(struct season *s, int32_t until)
 		json_close(&s->json, '}');
 		json_end(&s->json);
 	}
-	if (s->format != FORMAT_TEXT)
+	if (s->format != FORMAT_TEXT) {
 		leap_note(s->run, until);
+		uncounted_note(s->run);
+	}
 }
 
 static enum status scan(struct season *s, FILE *to, int32_t from, int32_t until, struct err *e)
@@ -203,7 +227,7 @@ static int write_season(struct season *s, int32_t from, int32_t until)
 	}
 	if (s->format == FORMAT_TEXT)
 		open_zones(s);
-	if (out_open(&out, o->out, o->force, &e) != ST_OK)
+	if (run_out_open(s->run, &out, &e) != ST_OK)
 		return diagnose_whole(&e, EXIT_UNMET);
 	if (scan(s, out.file, from, until, &e) != ST_OK) {
 		out_abandon(&out);

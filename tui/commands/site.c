@@ -66,7 +66,7 @@ static int write_sites(const struct run *r, const struct site site[], size_t n, 
 	enum format format;
 	if (format_of(o, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &e) != ST_OK)
 		return usage_fault("--format", &e);
-	if (out_open(&out, o->out, o->force, &e) != ST_OK)
+	if (run_out_open(r, &out, &e) != ST_OK)
 		return diagnose_whole(&e, EXIT_UNMET);
 	struct csv_out csv = {.file = out.file};
 	struct json json = json_begin(out.file);
@@ -157,6 +157,10 @@ static int wanted_site(const struct run *r, bool add, struct site *site, struct 
 	*site = (struct site){.name = name, .zone = ""};
 	if (name_check(name, strlen(name), NULL, &e) != ST_OK)
 		return diagnose_err("name", &e, EXIT_USAGE);
+	if (!add && o->n_places == 0 && !o->zone && !o->mask) {
+		diagnose("site", "nothing to set (expected --place, --zone or --mask)");
+		return EXIT_USAGE;
+	}
 	if (add && o->n_places == 0) {
 		diagnose("--place",
 			 "is missing (expected LAT,LON,HEIGHT: degrees north, degrees east, metres)");

@@ -22,7 +22,8 @@
 struct sky {
 	struct utc utc;
 	double t_d, lst_deg;
-	bool has_star, has_ephemeris;
+	bool has_star, has_ephemeris,
+	    has_next; /* has_next: the next mid-time lies within the dates of the program */
 	struct jd2 bjd_tdb, hjd_utc;
 	double ra_deg, dec_deg, ha_deg, parallactic, airmass, alt_apparent_deg, mask_deg;
 	struct altaz star, sun, moon;
@@ -85,9 +86,10 @@ static enum status fill_ephemeris(struct sky *s, struct run *r, const struct nig
 	s->sigma_min = hypot(hypot(published * DAY_MIN, p->eph.systematic_min), p->eph.ttv_min / sqrt(2.0));
 	enum status st =
 	    standard_to_tt(r->memo, &at, &utc_at_site, s->next_mid.jd, night_star(n, p->target).icrs, &tt, e);
+	s->has_next = st == ST_OK;
 	if (st == ST_OK)
 		s->next_mid_utc = tt_to_utc(&r->leap, tt);
-	return st;
+	return st == ST_RANGE ? ST_OK : st;
 }
 
 static struct sky sky_at(const struct night *n, struct utc utc)
@@ -152,10 +154,15 @@ static void write_json(FILE *to, const struct sky *s, const struct leap_table *l
 	if (with_target && s->has_ephemeris) {
 		json_whole(&j, "epoch", s->epoch);
 		json_number(&j, "phase", s->phase, 6);
-		jd_json(&j, "next_mid_bjd_tdb", s->next_mid.jd, 6);
 		utc_text(leap, s->next_mid_utc, 0, text);
-		json_text(&j, "next_mid_utc", text);
-		json_number(&j, "sigma_min", s->sigma_min, 3);
+		if (s->has_next) {
+			jd_json(&j, "next_mid_bjd_tdb", s->next_mid.jd, 6);
+			json_text(&j, "next_mid_utc", text);
+		} else {
+			json_null(&j, "next_mid_bjd_tdb");
+			json_null(&j, "next_mid_utc");
+		}
+		json_number(&j, "sigma_min", s->has_next ? s->sigma_min : NAN, 3);
 	} else if (with_target) {
 		static const char *const keys[] = {"epoch", "phase", "next_mid_bjd_tdb", "next_mid_utc",
 						   "sigma_min"};
@@ -209,10 +216,14 @@ static void write_text(FILE *to, const struct sky *s, const struct run *r, const
 	struct local_time l = zone_local(r->zone, utc_rounded(&r->leap, s->utc, 0));
 	long sec = (long)l.sod_s;
 	fprintf(to, "Time: %s, %02ld:%02ld:%02ld %s, JD_UTC %s, local sidereal time %.4f h\n", utc,
-		sec / 3600, sec / 60 % 60, sec % 60, l.abbreviation, jd, s->lst_deg / 15.0);
+		sec / 3600, sec / 60 % 60, sec % 60 + (l.leap_second ? 1 : 0), l.abbreviation, jd,
+		s->lst_deg / 15.0);
 	if (t)
 		star_text(to, s, t);
-	if (t && s->has_ephemeris) {
+	if (t && s->has_ephemeris && !s->has_next) {
+		fprintf(to, "  orbit %ld, phase %.4f; the next mid-time is later than this program counts\n",
+			s->epoch, s->phase);
+	} else if (t && s->has_ephemeris) {
 		utc_text(&r->leap, s->next_mid_utc, 0, next);
 		number_text_jd2(s->next_mid.jd, 6, bjd);
 		fprintf(to, "  orbit %ld, phase %.4f; next mid-time %s (BJD_TDB %s)", s->epoch, s->phase,
@@ -222,7 +233,9 @@ static void write_text(FILE *to, const struct sky *s, const struct run *r, const
 		else
 			fputs(", error not known\n", to);
 	} else if (t && !r->options->radec) {
-		fputs("  no ephemeris is stored\n", to);
+		fputs(isfinite(t->t0.day) ? "  its ephemeris can't be counted: see wane target show\n"
+					  : "  no ephemeris is stored\n",
+		      to);
 	}
 	direction_words(to, "Sun", &s->sun);
 	fputs(s->sun.alt_deg > -0.8333 ? ": it is up, never point near it\n" : "\n", to);
@@ -238,7 +251,7 @@ static int write_sky(struct run *r, const struct sky *s, const struct target *t)
 	enum format format;
 	if (format_of(o, FORMAT_TEXT | FORMAT_JSON, &format, &e) != ST_OK)
 		return usage_fault("--format", &e);
-	if (out_open(&out, o->out, o->force, &e) != ST_OK)
+	if (run_out_open(r, &out, &e) != ST_OK)
 		return diagnose_whole(&e, EXIT_UNMET);
 	if (format == FORMAT_JSON)
 		write_json(out.file, s, &r->leap, t && !o->radec);

@@ -48,6 +48,8 @@ int command_check(const struct env *env, const struct options *o);
 int night_write(struct run *r, int32_t evening_mjd);
 /* Says on standard error that a date lies beyond the leap-second table, if so. */
 void leap_note(const struct run *r, int32_t last_mjd);
+/* Says on standard error which targets have too short a period to be counted, if any. */
+void uncounted_note(const struct run *r);
 /* False, and said, when several sites or places are given to a subcommand that takes one. */
 bool one_site(const struct options *o, const char *command);
 /* A usage fault: said, and exit code 2. */

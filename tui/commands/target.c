@@ -25,11 +25,16 @@ static int no_such_target(const char *name)
 
 /* --- FIELD=VALUE --- */
 
+static enum status assign_twice(int field, struct err *e)
+{
+	return err_set(e, ST_SYNTAX, "%s: given twice", fields[field].name);
+}
+
 static enum status assign(struct assignments *a, int field, const char *text, struct err *e)
 {
 	for (size_t i = 0; i < a->n; i++)
 		if (a->field[i] == field)
-			return err_set(e, ST_SYNTAX, "%s: given twice", fields[field].name);
+			return assign_twice(field, e);
 	a->field[a->n] = field;
 	a->text[a->n++] = text;
 	return ST_OK;
@@ -47,6 +52,13 @@ static enum status unknown_field(const char *word, size_t n, struct err *e)
 		       near ? near : "");
 }
 
+static enum status not_an_assignment(const char *word, struct err *e)
+{
+	char got[ERR_QUOTE_MAX];
+	err_quote(word, strlen(word), got);
+	return err_set(e, ST_SYNTAX, "field: no value (got \"%s\", expected FIELD=VALUE)", got);
+}
+
 static enum status read_words(const struct options *o, struct assignments *a, struct err *e)
 {
 	double ra, dec;
@@ -60,8 +72,9 @@ static enum status read_words(const struct options *o, struct assignments *a, st
 		snprintf(name, sizeof name, "%.*s", n < sizeof name ? (int)n : 0, o->word[i]);
 		int field = field_find(name);
 		if (!equals)
-			return err_set(e, ST_SYNTAX, "field: expected FIELD=VALUE (got \"%.60s\")",
-				       o->word[i]);
+			return not_an_assignment(o->word[i], e);
+		if (field == FIELD_AT_NAME && strcmp(o->word[1], "add") == 0)
+			return assign_twice(field, e);
 		s = field < 0 ? unknown_field(o->word[i], n, e) : assign(a, field, equals + 1, e);
 	}
 	if (s != ST_OK || !o->radec)
@@ -109,6 +122,17 @@ static enum status in_change(struct run *r, const char *verb, const char *name, 
 	return s;
 }
 
+static void say_doubt(int field, const char *text)
+{
+	char got[ERR_QUOTE_MAX], expected[128];
+	const char *beside = NULL;
+	const char *why = field_doubt(field, text, &beside);
+	err_quote(text, strlen(text), got);
+	field_expected(field, expected, sizeof expected);
+	diagnose(fields[field].name, "kept, flagged and not used: %s (got \"%s\", expected %s)", why, got,
+		 beside ? beside : expected);
+}
+
 /* The stored texts of a target (run NULL: none) with the assignments over them, read as import would: faults
  * are told before anything is opened for writing, doubts as they come. */
 static enum status row_is_good(struct run *r, long index, const char *name, const struct assignments *a,
@@ -135,8 +159,7 @@ static enum status row_is_good(struct run *r, long index, const char *name, cons
 		err_set(e, s, "%s: %.440s", fields[bad].name, why.text);
 	for (size_t i = 0; s == ST_OK && i < a->n; i++)
 		if (doubts >> a->field[i] & 1)
-			diagnose(fields[a->field[i]].name,
-				 "can't be true: kept, flagged and not used (got \"%.60s\")", a->text[i]);
+			say_doubt(a->field[i], a->text[i]);
 	free(block);
 	return s;
 }

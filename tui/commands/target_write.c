@@ -119,8 +119,10 @@ static void show_text(FILE *to, const struct target *t, uint64_t doubts, const s
 			continue;
 		fprintf(to, "  %-22s ", fields[i].name);
 		text_cell(to, texts->text[i], 200, false);
-		fprintf(to, "%s%s%s\n", fields[i].unit[0] ? " " : "", fields[i].unit,
-			doubts >> i & 1 ? "  (can't be true: not used)" : "");
+		fprintf(to, "%s%s", fields[i].unit[0] ? " " : "", fields[i].unit);
+		if (doubts >> i & 1)
+			fprintf(to, "  (can't be true: not used, %s)", field_doubt(i, texts->text[i], NULL));
+		fputc('\n', to);
 	}
 	fprintf(to, "Ephemeris versions: %zu\n", n);
 	for (size_t i = 0; i < n; i++) {
@@ -200,7 +202,7 @@ int targets_write(struct run *r, const size_t chosen[], size_t n, bool list)
 	enum status s = ST_OK;
 	if (format_of(o, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &w.format, &e) != ST_OK)
 		return usage_fault("--format", &e);
-	if (out_open(&out, o->out, o->force, &e) != ST_OK)
+	if (run_out_open(r, &out, &e) != ST_OK)
 		return diagnose_whole(&e, EXIT_UNMET);
 	w.to = out.file;
 	w.csv = (struct csv_out){.file = out.file};

@@ -40,6 +40,34 @@ static enum status resolve(const char *path, char out[OUT_PATH_MAX], struct err 
 	return ST_OK;
 }
 
+/* Device and inode of the folder that a path's last part stands in. */
+static bool folder_of(const char *path, struct stat *st)
+{
+	const char *slash = strrchr(path, '/');
+	char folder[OUT_PATH_MAX];
+	size_t n = slash ? (size_t)(slash - path) : 0;
+	if (n >= sizeof folder)
+		return false;
+	memcpy(folder, path, n);
+	folder[n] = '\0';
+	return stat(!slash ? "." : n == 0 ? "/" : folder, st) == 0;
+}
+
+bool out_same_file(const char *a, const char *b)
+{
+	struct stat of_a, of_b;
+	bool is_a = stat(a, &of_a) == 0, is_b = stat(b, &of_b) == 0;
+	if (is_a != is_b)
+		return false;
+	if (!is_a) { /* neither exists: the names decide */
+		const char *name_a = strrchr(a, '/'), *name_b = strrchr(b, '/');
+		if (strcmp(name_a ? name_a + 1 : a, name_b ? name_b + 1 : b) != 0 || !folder_of(a, &of_a) ||
+		    !folder_of(b, &of_b))
+			return false;
+	}
+	return of_a.st_dev == of_b.st_dev && of_a.st_ino == of_b.st_ino;
+}
+
 /* Folder opened, last part into o->name. */
 static enum status open_folder(struct out *o, char *path, struct err *e)
 {

@@ -21,6 +21,8 @@ struct out {
  * O_NOFOLLOW; its name holds the process id, and left-overs of dead processes older than an hour are swept. An existing target is refused
  * without force (ST_CONFLICT), as is anything but a regular file. Release with out_commit or out_abandon. */
 MUST_USE enum status out_open(struct out *o, const char *path, bool force, struct err *e);
+/* Whether two paths lead to one file: equal device and inode behind all links; where one does not exist yet, an equal name in one folder. */
+bool out_same_file(const char *a, const char *b);
 /* Everything written reaches the disk (file, name), or nothing of it: ST_IO with the reason and the old file whole. A replaced file's mode bits
  * are kept. Standard output: flushed and checked. */
 MUST_USE enum status out_commit(struct out *o, struct err *e);

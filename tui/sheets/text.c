@@ -1,10 +1,12 @@
 /* SPDX-License-Identifier: MIT */
 #include "tui/sheets/text.h"
 
+#include "db/fields.h"
 #include "ephem/angle_text.h"
 #include "ephem/number_text.h"
 #include "tui/cautions.h"
 #include "tui/pages/night_head.h"
+#include "tui/parts/clock_mark.h"
 #include "tui/parts/text_width.h"
 #include "tui/sheets/text_rows.h"
 
@@ -28,6 +30,33 @@ void text_cell(FILE *to, const char *text, int columns, bool pad)
 		fputc(' ', to);
 }
 
+long uncounted_text(const struct run *r, char *out, size_t n)
+{
+	enum { NAMES_MAX = 5 };
+	char names[400] = "";
+	long count = 0;
+	out[0] = '\0';
+	for (size_t i = 0; i < r->n_prepared; i++) {
+		const struct target *t = r->prepared[i].target;
+		bool doubtful = r->targets.doubts[t - r->targets.t] >> FIELD_AT_PERIOD & 1;
+		if (r->prepared[i].has_ephemeris || !isfinite(t->t0.day) ||
+		    !(doubtful || isfinite(t->period_d)))
+			continue;
+		char clean[NAME_BYTES_MAX];
+		(void)text_clean(t->name, clean, sizeof clean);
+		size_t used = strlen(names);
+		if (count < NAMES_MAX && used + strlen(clean) + 8 < sizeof names)
+			snprintf(names + used, sizeof names - used, "%s%s", count ? ", " : "", clean);
+		else if (count == NAMES_MAX)
+			snprintf(names + used, sizeof names - used, ", ...");
+		count++;
+	}
+	if (count > 0)
+		snprintf(out, n, "%ld target%s can't be counted, the period is below %g d: %s", count,
+			 count == 1 ? "" : "s", PERIOD_MIN_D, names);
+	return count;
+}
+
 void text_clock(const struct night *n, const struct zone *zone, double t_d, bool with_zone,
 		char out[CLOCK_BYTES])
 {
@@ -35,11 +64,12 @@ void text_clock(const struct night *n, const struct zone *zone, double t_d, bool
 		snprintf(out, CLOCK_BYTES, "%s", with_zone ? "does not happen" : "--:--");
 		return;
 	}
-	struct local_time l = zone_local(zone, utc_add_s(n->clock.leap, night_utc(n, t_d), 30.0));
+	struct utc utc = utc_add_s(n->clock.leap, night_utc(n, t_d), 30.0);
+	struct local_time l = zone_local(zone, utc);
 	int minute = (int)(l.sod_s / 60.0);
 	minute = minute > 1439 ? 1439 : minute;
 	snprintf(out, CLOCK_BYTES, "%02d:%02d%s%s", minute / 60, minute % 60, with_zone ? " " : "",
-		 with_zone ? l.abbreviation : "");
+		 with_zone ? l.abbreviation : clock_mark(n, zone, utc));
 }
 
 void text_begin(struct text_sheet *t, FILE *to, const struct run *r, bool season)
@@ -123,6 +153,16 @@ void text_site(const struct text_sheet *t, const struct site *site, const struct
 	fprintf(t->to, ", times in %s\n", zone ? site->zone : "UTC (its zone is not known)");
 }
 
+static void change_line(const struct text_sheet *t, const char *from, const char *until)
+{
+	fprintf(t->to, "The clocks change this night, from %s to %s: ", from, until);
+	if (t->plain)
+		fprintf(t->to, "each local time says which it is.\n");
+	else
+		fprintf(t->to, "in the table a time with %s is %s, one without is %s.\n", CLOCK_MARK, until,
+			from);
+}
+
 void text_head(const struct text_sheet *t, const struct site *site, const struct zone *zone,
 	       const struct night_view *v)
 {
@@ -134,13 +174,9 @@ void text_head(const struct text_sheet *t, const struct site *site, const struct
 	fputc('\n', t->to);
 	if (!zone)
 		fputs("The site's time zone is not known: all times are UTC.\n", t->to);
-	struct local_time from = zone_local(zone, night_utc(n, 0.0)),
-			  to = zone_local(zone, night_utc(n, n->length_d));
-	if (from.offset_s != to.offset_s)
-		fprintf(t->to,
-			"The clocks change this night, from %s to %s: each local time is what the clocks "
-			"show then.\n",
-			from.abbreviation, to.abbreviation);
+	if (clocks_change(n, zone))
+		change_line(t, zone_local(zone, night_utc(n, 0.0)).abbreviation,
+			    zone_local(zone, night_utc(n, n->length_d)).abbreviation);
 	sun_lines(t, v, zone);
 	moon_line(t, v, zone);
 	text_limits(t);
@@ -243,6 +279,7 @@ static void flag_notes(const struct text_sheet *t)
 void text_foot(const struct text_sheet *t, int32_t last_mjd)
 {
 	const char *s = t->rows == 1 ? "" : "s";
+	char uncounted[600];
 	fputc('\n', t->to);
 	if (t->rows == 0)
 		fprintf(t->to, "No window is listed.");
@@ -255,6 +292,8 @@ void text_foot(const struct text_sheet *t, int32_t last_mjd)
 			"everything.",
 			t->hidden, t->hidden == 1 ? "is" : "are");
 	fputc('\n', t->to);
+	if (uncounted_text(t->run, uncounted, sizeof uncounted) > 0)
+		fprintf(t->to, "%s.\n", uncounted);
 	if (t->rows > 0 && !t->plain)
 		fputs("on, leave: first and last usable moment of the reserve. sigma: error of the mid-time. "
 		      "bef ingr flat egr aft: "

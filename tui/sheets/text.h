@@ -19,6 +19,8 @@ struct text_sheet {
 };
 
 enum { TEXT_NAME_WIDTH_MAX = 24 };
+/* The targets whose period is too short to be counted: how many of the run's, and a sentence; 0 and "" none. */
+long uncounted_text(const struct run *r, char *out, size_t n);
 void text_begin(struct text_sheet *t, FILE *to, const struct run *r, bool season);
 /* Site, both dates, Sun, Moon (in the site's local time and UTC) and limits. */
 void text_head(const struct text_sheet *t, const struct site *site, const struct zone *zone, const struct night_view *v);
@@ -35,7 +37,7 @@ void text_foot(const struct text_sheet *t, int32_t last_mjd);
 /* The cautions alone. */
 void text_cautions(FILE *to);
 
-/* `20:57`, or with the zone `20:57 MDT`; not finite: `--:--`, or `does not happen` with the zone. */
+/* `20:57`, on a night of a clock change `01:30*` from the change on; or with the zone `20:57 MDT`; not finite: `--:--`, or `does not happen` with the zone. */
 enum { CLOCK_BYTES = 48 };
 void text_clock(const struct night *n, const struct zone *zone, double t_d, bool with_zone, char out[CLOCK_BYTES]);
 /* Text cleaned and cut to a number of columns, padded to it with blanks where pad. */

@@ -79,10 +79,10 @@ void text_row(const struct text_sheet *t, const struct window *w, const struct n
 	text_cell(t->to, w->event.prepared->target->name, t->name_width, true);
 	for (size_t i = 0; i < sizeof at / sizeof at[0]; i++) {
 		text_clock(n, zone, at[i], false, clock);
-		fprintf(t->to, "%s%s", i ? "  " : " ", clock);
+		fprintf(t->to, " %-6s", clock); /* the mark of a clock change takes the blank behind */
 	}
 	sigma_text(w->event.sigma_min, sigma);
-	fprintf(t->to, "  %5s ", sigma);
+	fprintf(t->to, " %5s ", sigma);
 	for (int part = 0; part < PART_COUNT; part++) {
 		per_cent(w->cover.share[part], share);
 		fprintf(t->to, " %4s", share);
