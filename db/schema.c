@@ -107,6 +107,8 @@ static const char *const step_1[] = {
     "dpde_d REAL CHECK(dpde_d BETWEEN -1 AND 1),"
     "dpde_err_d REAL CHECK(dpde_err_d BETWEEN 0 AND 1),"
     "ttv_amp_min REAL CHECK(ttv_amp_min BETWEEN 0 AND 1e5),"
+    "t0_dpde_cov_d2 REAL CHECK(t0_dpde_cov_d2 BETWEEN -1e6 AND 1e6),"
+    "period_dpde_cov_d2 REAL CHECK(period_dpde_cov_d2 BETWEEN -1e6 AND 1e6),"
     "entered_utc TEXT NOT NULL CHECK(length(entered_utc) BETWEEN 17 AND 23)," READ_BODY REV_BODY CRC_BODY
     ", UNIQUE(target_id, version), CHECK((t0_day IS NULL) = (t0_frac IS NULL))) STRICT;",
 

@@ -19,7 +19,8 @@
 	"target.change_id, target.row_crc"
 #define EPHEMERIS_FIELDS                                                                                     \
 	"target_id, version, t0_day, t0_frac, t0_err_d, time_scale, period_d, period_err_d, source, "        \
-	"t0_period_cov_d2, dpde_d, dpde_err_d, ttv_amp_min, entered_utc"
+	"t0_period_cov_d2, dpde_d, dpde_err_d, ttv_amp_min, "                                                \
+	"t0_dpde_cov_d2, period_dpde_cov_d2, entered_utc"
 #define EPHEMERIS_COLUMNS                                                                                    \
 	"ephemeris.id, " EPHEMERIS_FIELDS ", ephemeris.as_read, ephemeris.doubts, ephemeris.rev, "           \
 	"ephemeris.change_id, ephemeris.row_crc"
@@ -83,7 +84,7 @@ const char *const sql_text[SQL_COUNT] = {
     [SQL_EPHEMERIS_OF_TARGET] =
 	"SELECT " EPHEMERIS_COLUMNS " FROM ephemeris WHERE target_id = ? ORDER BY version",
     [SQL_EPHEMERIS_ADD] = "INSERT INTO ephemeris(id, " EPHEMERIS_FIELDS
-			  ", as_read, doubts, rev, change_id, row_crc) VALUES(" TEN ", " TEN ")",
+			  ", as_read, doubts, rev, change_id, row_crc) VALUES(" TEN ", " TEN ", ?, ?)",
     [SQL_CHANGE_OF_EPHEMERIS] = "SELECT who FROM change_set WHERE id = ?",
 
     [SQL_ALIAS_NEXT] = "SELECT ifnull(max(id), 0) + 1 FROM target_alias",
