@@ -13,16 +13,17 @@
 double drift_sigma_min(const struct ephemeris *e, long epoch);
 
 /* The epochs between which sigma stays below a limit: closed form for a linear ephemeris (the two roots of s(E) = limit, evaluated without
- * cancellation), bisection to whole epochs for a quadratic one. */
+ * cancellation), bisection for a quadratic one, whose sigma may dip twice: the later dip is told. */
 struct drift_span {
 	bool known;      /* sigma can be computed at all */
 	bool never;      /* below the limit at every epoch (sigma_P 0) */
 	bool always;     /* above it at every epoch */
-	double from_epoch, to_epoch; /* real-valued; +-INFINITY where it never leaves */
+	double from_epoch, to_epoch; /* real-valued; +-INFINITY where it never leaves; NAN when unknown or always above */
 };
 struct drift_span drift_below(const struct ephemeris *e, double limit_min);
 
-/* Variance of the prediction at epoch F after one observation at epoch E with precision s: V(F,F) - V(F,E)^2/(V(E,E) + s^2). */
+/* Variance of the prediction at epoch F after one observation at epoch E with precision s: V(F,F) - V(F,E)^2/(V(E,E) + s^2).
+ * Timing variations add to s^2 and, with the time standard, to what is left, as in ephemeris_update followed by drift_sigma_min. */
 double refresh_sigma_min(const struct ephemeris *e, long observed_epoch, double precision_min, long at_epoch);
 /* log2(1 + V(E,E)/s^2)/2 bits. */
 double refresh_bits(const struct ephemeris *e, long observed_epoch, double precision_min);

@@ -58,16 +58,21 @@ struct epoch_guess {
 	long epoch;
 	bool safe;              /* 3 sigma of the prediction and the time's error stay below half a period */
 	double wrong_chance;    /* that the nearest count is wrong: erfc(P / (2 sqrt 2 s)) */
-	double period_before_d, period_after_d; /* the period implied by epoch - 1 and epoch + 1 as the count, keeping T0 */
+	double period_before_d, period_after_d; /* the period implied by epoch - 1 and epoch + 1 as the count, keeping T0; NAN for epoch 0 */
+	double off_d;   /* the time less the mid-time of that epoch: near half a period it fits neither neighbour */
+	double sigma_d; /* of off_d: prediction (drift_sigma_min) and the time's error */
 };
-/* delay_d: 0 for a transit. Sigma unknown: not safe. */
+/* delay_d: 0 for a transit. Sigma unknown: not safe, chance NAN. An ephemeris that can't be counted: epoch 0, not safe, all NAN. */
 struct epoch_guess epoch_of(const struct ephemeris *eph, struct tdb mid, double err_d, double delay_d);
 
 /* --- a published prior and new times --- */
 struct update {
 	double z; /* innovation in units of its own error; |z| > 3: look before accepting */
 };
-/* eph's covariance is updated in place (quadratic too); order of times does not matter but for rounding. ST_RANGE without a covariance. */
+/* eph and its covariance are updated in place (quadratic too); order of times does not matter but for rounding. Whether the time is used is the caller's
+ * affair, as is that it was not part of the prior. Numbers at epoch 0 keep fewer digits the farther the data are from it: a parabola from thousands of
+ * orbits off is better fitted anew. ST_RANGE without a covariance, with one that can't be, for an error not above 0 or a period that would not be above 0:
+ * eph stays as it was. */
 MUST_USE enum status ephemeris_update(struct ephemeris *eph, const struct mid_time *t, struct update *out, struct err *e);
 
 #endif
