@@ -4,6 +4,7 @@
 #include "db/fields.h"
 #include "tui/diagnose.h"
 #include "tui/parts/columns.h"
+#include "tui/parts/drift_columns.h"
 #include "tui/settings.h"
 #include "tui/sheets/text.h"
 
@@ -31,12 +32,59 @@ const struct command commands[] = {
      "BJD_UTC, "
      "BJD_TT,\nBJD_TDB; an offset is written behind it: BJD_TDB-2457000.\n",
      GROUP_COMPUTE | GROUP_CLOCK, FORMAT_TEXT, 2, command_clock},
+    {"drift", "[TARGET...]",
+     "How far each ephemeris has drifted, when it goes stale, which window refreshes it.",
+     "Refresh is searched at the sites of the run for targets whose error passes the limit before --at, and "
+     "for "
+     "those named.\nOnly transits. The first adequate window, within a year: a chance of done of at least "
+     "0.5, and it "
+     "brings the error at\n--at below the limit. The best one, within half a year: the greatest chance of "
+     "done times "
+     "gain in bits among those before\nthe stale date (after it where none comes before). A mid-time is "
+     "assumed to "
+     "have --precision. Text is sorted by stale_on,\ncsv and json by target. --against JSON: {\"target\", "
+     "\"current\", \"against\", \"limit_min\", \"parted_on\",\n\"gaps\": [{\"at_utc\", "
+     "\"gap_min\", \"error_min\"}]}.\n",
+     GROUP_COMPUTE | GROUP_DRIFT, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, OPTION_NAMES_MAX - 1,
+     command_drift},
+    {"midtime",
+     "list TARGET | add TARGET MID ERR | import TARGET FILE | exclude TARGET EPOCH | include TARGET EPOCH | "
+     "remove TARGET "
+     "EPOCH",
+     "Measured mid-times of a target.",
+     "ERR in days. A table has the columns mid_jd, err_d and, where known, epoch, time_scale, kind (transit "
+     "or\n"
+     "occultation), source, used (1 or 0). An occultation carries the epoch of the transit before it; N + "
+     "0.5 is read as\n"
+     "that. Without an epoch it is counted, outward from where the ephemeris is known best, and refused with "
+     "the\n"
+     "candidates where 3 sigma reach half a period. A refused row refuses the file. More than 3 sigma from "
+     "the\n"
+     "prediction is a warning. exclude keeps a time and leaves it out of fits; remove takes it out of the "
+     "lists; --kind\n"
+     "says which of an epoch (transit).\n",
+     GROUP_MIDTIME, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 4, command_midtime},
+    {"refit", "TARGET", "Linear and quadratic fit to a target's mid-times, with residuals.",
+     "Errors are formal; scale_factor is max(1, sqrt(chi2/dof)), at the top that of the linear fit. "
+     "Residuals are\n"
+     "against the linear fit; an outlier (robust z above 4) is marked and stays in the fit. --jitter fit is "
+     "estimated\n"
+     "with the linear model, or with the one that is adopted. --adopt makes a new version at epoch 0 of the "
+     "target's\n"
+     "count, errors scaled unless --formal.\n",
+     GROUP_REFIT, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 1, command_refit},
+    {"history", "[TARGET]", "What was changed, when and by whom, the newest first.", NULL, 0,
+     FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 1, command_history},
+    {"undo", "", "Takes a change back, as a change of its own.",
+     "Refused where something was changed again since; both values are shown then.\n", GROUP_UNDO,
+     FORMAT_TEXT, 0, command_undo},
     {"import", "FILE", "Targets from a table (CSV; `-` is standard input).",
      "A bad row refuses that row only; --strict refuses the file. A known target's changed ephemeris is "
      "stored beside the\n"
      "old one and made current only with --adopt.\n",
      GROUP_IMPORT, FORMAT_TEXT, 1, command_import},
-    {"target", "list | show NAME | add NAME | set NAME FIELD=VALUE... | remove NAME", "The stored targets.",
+    {"target", "list | show NAME | add NAME | set NAME FIELD=VALUE... | remove NAME | adopt NAME VERSION",
+     "The stored targets.",
      "add takes --radec and FIELD=VALUE too; FIELD= clears. Fields are the columns of `wane target list "
      "--format csv`.\n",
      0, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, OPTION_NAMES_MAX, command_target},
@@ -135,6 +183,15 @@ static void columns_help(FILE *to)
 		fprintf(to, "  %-24s %s\n", flag_rules[f].word, flag_rules[f].sentence);
 }
 
+static void drift_help(FILE *to)
+{
+	fputs("\nColumns of csv, keys of json\n", to);
+	for (size_t i = 0; i < drift_column_count; i++)
+		fprintf(to, "  %-24s %s%s%s%s\n", drift_columns[i].name, drift_columns[i].sentence,
+			drift_columns[i].unit[0] ? " [" : "", drift_columns[i].unit,
+			drift_columns[i].unit[0] ? "]" : "");
+}
+
 static void fields_help(FILE *to)
 {
 	fputs("\nFields of a target, columns of its table\n", to);
@@ -162,6 +219,8 @@ void command_help(FILE *to, const struct command *c)
 	options_help(to, GROUP_COMMON);
 	if (c->groups & GROUP_WINDOWS)
 		columns_help(to);
+	if (c->groups & GROUP_DRIFT)
+		drift_help(to);
 	if (c->function == command_import || c->function == command_target)
 		fields_help(to);
 	fputs("\nTIME: YYYY-MM-DDTHH:MM[:SS]Z in UTC, or one argument \"2461114.708333 JD_UTC\". An option's "

@@ -42,6 +42,11 @@ int command_clock(const struct env *env, const struct options *o);
 int command_night(const struct env *env, const struct options *o);
 int command_season(const struct env *env, const struct options *o);
 int command_demo(const struct env *env, const struct options *o);
+int command_drift(const struct env *env, const struct options *o);
+int command_midtime(const struct env *env, const struct options *o);
+int command_refit(const struct env *env, const struct options *o);
+int command_history(const struct env *env, const struct options *o);
+int command_undo(const struct env *env, const struct options *o);
 int command_check(const struct env *env, const struct options *o);
 
 /* Shared by night and demo: writes one night of an open run in the format asked for. */

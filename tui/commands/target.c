@@ -1,6 +1,7 @@
 /* SPDX-License-Identifier: MIT */
 #include "tui/commands/target_write.h"
 
+#include "db/history.h"
 #include "tui/diagnose.h"
 #include "tui/given.h"
 
@@ -101,6 +102,36 @@ static enum status add_in_store(struct run *r, const char *name, const struct as
 	return target_put(r->store, &texts, true, &result, e);
 }
 
+static enum status adopt_in_store(struct run *r, const char *name, int version, struct err *e)
+{
+	long index = target_list_find(&r->targets, name);
+	if (index < 0)
+		return err_set(e, ST_ABSENT, "no such target is stored");
+	return ephemeris_adopt(r->store, r->targets.t[index].id, version, e);
+}
+
+/* Whether the target has the version that is to be adopted. */
+static enum status version_is_there(struct run *r, long index, const char *text, struct err *e)
+{
+	struct ephemeris_row *row = NULL;
+	size_t n = 0;
+	bool found = false;
+	char list[160] = "";
+	enum status s = ephemeris_versions(r->store, r->targets.t[index].id, &row, &n, e);
+	for (size_t i = 0; s == ST_OK && i < n; i++) {
+		found = found || row[i].version == (int)strtol(text, NULL, 10);
+		if (strlen(list) + 16 < sizeof list)
+			snprintf(list + strlen(list), sizeof list - strlen(list), "%s%d", i ? ", " : "",
+				 row[i].version);
+	}
+	free(row);
+	if (s == ST_OK && !found)
+		s = err_set(e, ST_ABSENT,
+			    "VERSION: no such version of it is stored (got \"%.20s\", expected %s)", text,
+			    list[0] ? list : "none: it has no ephemeris");
+	return s;
+}
+
 static enum status in_change(struct run *r, const char *verb, const char *name, const struct assignments *a,
 			     struct err *e)
 {
@@ -113,6 +144,8 @@ static enum status in_change(struct run *r, const char *verb, const char *name, 
 		s = add_in_store(r, name, a, e);
 	else if (strcmp(verb, "target set") == 0)
 		s = target_set(r->store, name, a->field, a->text, a->n, e);
+	else if (strcmp(verb, "target adopt") == 0)
+		s = adopt_in_store(r, name, (int)strtol(r->options->word[3], NULL, 10), e);
 	else
 		s = target_remove(r->store, name, e);
 	if (s == ST_OK)
@@ -171,7 +204,8 @@ static int change_target(const struct env *env, const struct options *o, const c
 	struct err e;
 	int code;
 	bool add = strcmp(verb, "target add") == 0, set = strcmp(verb, "target set") == 0;
-	if (read_words(o, &a, &e) != ST_OK)
+	a.n = 0;
+	if (strcmp(verb, "target adopt") != 0 && read_words(o, &a, &e) != ST_OK)
 		return diagnose_whole(&e, EXIT_USAGE);
 	if (set && a.n == 0) {
 		diagnose("target", "nothing to set (expected FIELD=VALUE)");
@@ -187,6 +221,9 @@ static int change_target(const struct env *env, const struct options *o, const c
 		code = EXIT_UNMET;
 	} else if (!add && index < 0) {
 		code = no_such_target(o->word[2]);
+	} else if (strcmp(verb, "target adopt") == 0) {
+		if (version_is_there(&run, index, o->word[3], &e) != ST_OK)
+			code = diagnose_whole(&e, EXIT_UNMET);
 	} else if ((add || set) && row_is_good(&run, index, o->word[2], &a, &e) != ST_OK) {
 		code = diagnose_whole(&e, EXIT_UNMET);
 	}
@@ -226,12 +263,32 @@ static int show_targets(const struct env *env, const struct options *o, bool lis
 	return code;
 }
 
+static int adopt_version(const struct env *env, const struct options *o)
+{
+	char got[ERR_QUOTE_MAX];
+	if (o->n_words != 4) {
+		diagnose(
+		    "target",
+		    "expected wane target adopt NAME VERSION (wane target show NAME lists the versions)");
+		return EXIT_USAGE;
+	}
+	if (strspn(o->word[3], "0123456789") != strlen(o->word[3]) || strlen(o->word[3]) > 9) {
+		err_quote(o->word[3], strlen(o->word[3]), got);
+		diagnose("VERSION",
+			 "not the number of a version (got \"%s\", expected as wane target show says)", got);
+		return EXIT_USAGE;
+	}
+	return change_target(env, o, "target adopt");
+}
+
 int command_target(const struct env *env, const struct options *o)
 {
-	static const char *const verbs[] = {"list", "show", "add", "set", "remove"};
-	int verb = verb_of("target", verbs, 5, o);
+	static const char *const verbs[] = {"list", "show", "add", "set", "remove", "adopt"};
+	int verb = verb_of("target", verbs, 6, o);
 	if (verb < 0)
 		return EXIT_USAGE;
+	if (verb == 5)
+		return adopt_version(env, o);
 	if ((verb == 1 || verb == 4) && o->n_words > 3) {
 		diagnose("target", "an argument too many (got \"%.60s\")", o->word[3]);
 		return EXIT_USAGE;

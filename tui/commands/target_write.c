@@ -126,10 +126,12 @@ static void show_text(FILE *to, const struct target *t, uint64_t doubts, const s
 	}
 	fprintf(to, "Ephemeris versions: %zu\n", n);
 	for (size_t i = 0; i < n; i++) {
-		fprintf(to, "  %d%s  T0 %s %s, P %s d, entered %s; ", row[i].version,
+		fprintf(to, "  %d%s  T0 %s %s, P %s d, entered %s by ", row[i].version,
 			row[i].current ? " (current)" : "", row[i].t0_text,
 			row[i].scale[0] ? row[i].scale : "(scale not said)", row[i].period_text,
 			row[i].entered_utc);
+		text_cell(to, row[i].who[0] ? row[i].who : "unknown", 40, false);
+		fputs("; ", to);
 		text_cell(to, row[i].source[0] ? row[i].source : "no source", 100, false);
 		fputc('\n', to);
 	}
