@@ -42,7 +42,7 @@ static void read_user(char *out, size_t n)
 	snprintf(out, n, "%s", name[0] ? name : "unknown");
 }
 
-/* Whether the locale that is asked for writes UTF-8. One that is not installed here (a session from afar) can't be set, but its name still
+/* Whether the locale that is asked for writes UTF-8. One that is not installed here (a login from afar) can't be set, but its name still
  * says what the terminal shows. */
 static bool characters_are_utf8(void)
 {

@@ -358,7 +358,7 @@ static void test_environment(void **state)
 		assert_true((unsigned char)t.seen[i] < 0x80);
 	pty_close(&t);
 
-	/* a locale that is not installed here, as a session from afar may bring */
+	/* a locale that is not installed here, as a login from afar may bring */
 	pty_open(&t, demo, 24, 80, TERM_USUAL, "LC_ALL", "xx_XX.UTF-8");
 	pty_wait(&t, OPENED);
 	pty_screen(&t, "", "▸");

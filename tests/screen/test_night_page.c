@@ -277,8 +277,103 @@ static void test_clock_change(void **state)
 	(void)state;
 	driver_open(&d, true, 24, 80, TIER_UNICODE);
 	driver_keys(&d, "d\0252026-10-31\r");
-	driver_expect(&d, "Clocks change in this night at 08:00 UTC, from MDT to MST.");
-	driver_expect(&d, "sunrise 06:44 local 11.5 h below -12 deg");
+	driver_expect(&d, "Times with * are MST, the others MDT: the clocks change at 08:00 UTC.");
+	driver_expect(&d, "dusk 19:17  dawn 05:45* local  11.5 h below -12 deg");
+	driver_keys(&d, "<");
+	driver_expect_not(&d, "*");
+	driver_close(&d);
+}
+
+static void count_marks(const struct page_driver *d, const struct night_row *row, double change_h,
+			size_t *before, size_t *behind)
+{
+	static const enum row_cell times[] = {ROW_T1, ROW_MID, ROW_T4};
+	const struct window_event *ev = &row->window->event;
+	const double at_d[] = {ev->t1_d, ev->mid_d, ev->t4_d};
+	const struct night *n = &d->page->view.night;
+	for (size_t k = 0; k < 3; k++) {
+		/* the list rounds to minutes */
+		struct utc t = utc_add_s(n->clock.leap, night_utc(n, at_d[k]), 30.0);
+		bool late = t.mjd > n->mjd + 1 || (t.mjd == n->mjd + 1 && t.sod_s >= change_h * 3600.0);
+		if ((strchr(row->text[times[k]], 0x2a) != NULL) != late)
+			check_fail("%d: %s shows %s, %g h UTC", n->mjd, row->name, row->text[times[k]],
+				   t.sod_s / 3600.0);
+		*before += !late;
+		*behind += late;
+	}
+}
+
+/* Every local time of a night of a clock change tells its zone: 15 U.S.C. 260a, first Sunday of November and
+ * second one of March at 02:00, here 08:00 and 09:00 UTC. */
+static void test_marked_times(void **state)
+{
+	static const struct {
+		int32_t evening_mjd;
+		double change_h;
+	} nights[] = {
+	    {60980, 8.0}, /* 2025-11-01 */
+	    {61106, 9.0}, /* 2026-03-07 */
+	    {61344, 8.0}, /* 2026-10-31 */
+	    {61477, 9.0}, /* 2027-03-13 */
+	    {61715, 8.0}, /* 2027-11-06 */
+	};
+	struct page_driver d;
+	(void)state;
+	driver_open(&d, true, 45, 160, TIER_UNICODE);
+	d.page->show_long_shots = true;
+	size_t before = 0, behind = 0;
+	for (size_t night = 0; night < sizeof nights / sizeof nights[0]; night++) {
+		driver_load(&d, nights[night].evening_mjd);
+		driver_draw(&d);
+		if (d.page->rows.n > 0) /* the mark stands in the list */
+			driver_expect(&d, d.page->rows.row[d.page->selected].text[ROW_T4]);
+		for (size_t i = 0; i < d.page->rows.n; i++)
+			count_marks(&d, &d.page->rows.row[i], nights[night].change_h, &before, &behind);
+	}
+	assert_true(before > 4 && behind > 4);
+	driver_keys(&d, "d2026-10-31\r");
+	driver_keys(&d, "G");
+	driver_expect(&d, "*");
+	driver_expect(&d, "02* ");
+	golden_check("night-160x45-clock-change", &d.grid);
+	driver_size(&d, 24, 80);
+	golden_check("night-80x24-clock-change", &d.grid);
+	driver_size(&d, 10, 38);
+	golden_check("night-38x10-clock-change", &d.grid);
+	driver_close(&d);
+}
+
+/* The date that is offered gives way to the first character, and stays for a key that edits it. */
+static void test_offered_date(void **state)
+{
+	static const struct {
+		const char *keys, *shown;
+	} rows[] = {
+	    {"d", "Evening of (YYYY-MM-DD): 2026-04-22 "},
+	    {"d2", "Evening of (YYYY-MM-DD): 2 "},
+	    {"d2026-03-08", "Evening of (YYYY-MM-DD): 2026-03-08 "},
+	    {"d2026-03-08\r", "night 8/9 Mar 2026"},
+	    {"d\1773", "Evening of (YYYY-MM-DD): 2026-04-23 "},
+	    {"d\0059", "Evening of (YYYY-MM-DD): 2026-04-229 "},
+	    {"d\r", "tonight, night 22/23 Apr 2026"},
+	    {"d\033", "tonight, night 22/23 Apr 2026"},
+	    {"fdone > 50\rf | on < 22:00\r", "where done > 50 | on < 22:00"},
+	};
+	(void)state;
+	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
+		struct page_driver d;
+		driver_open(&d, true, 24, 80, TIER_UNICODE);
+		driver_keys(&d, rows[i].keys);
+		driver_expect(&d, rows[i].shown);
+		driver_close(&d);
+	}
+	struct page_driver d;
+	driver_open(&d, true, 24, 80, TIER_UNICODE);
+	driver_key(&d, 'd');
+	driver_key(&d, PRESS_PASTE_BEGIN);
+	driver_keys(&d, "2026-05-01");
+	driver_key(&d, PRESS_PASTE_END);
+	driver_expect(&d, "Evening of (YYYY-MM-DD): 2026-05-01 ");
 	driver_close(&d);
 }
 
@@ -459,7 +554,8 @@ int main(void)
 	    cmocka_unit_test(test_clock_change),  cmocka_unit_test(test_without_zone),
 	    cmocka_unit_test(test_first_run),	  cmocka_unit_test(test_hostile_names),
 	    cmocka_unit_test(test_clock),	  cmocka_unit_test(test_sites),
-	    cmocka_unit_test(test_drop_and_load),
+	    cmocka_unit_test(test_drop_and_load), cmocka_unit_test(test_marked_times),
+	    cmocka_unit_test(test_offered_date),
 	};
 	return cmocka_run_group_tests_name("night page", tests, NULL, NULL);
 }

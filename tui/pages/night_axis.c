@@ -2,6 +2,7 @@
 #include "tui/pages/night_axis.h"
 
 #include "ephem/units.h"
+#include "tui/parts/clock_mark.h"
 
 #include <math.h>
 #include <stdio.h>
@@ -55,13 +56,16 @@ static void write_hours(struct night_axis *a, const struct night *night, const s
 	for (double t = noon_quarter_d; t < a->to_d; t += QUARTER_D) {
 		int col = axis_col(a, t);
 		/* half a second on: a leap second or rounding does not push the hour back */
-		double s = zone_local(zone, utc_add_s(night->clock.leap, night_utc(night, t), 0.5)).sod_s;
+		struct utc utc = utc_add_s(night->clock.leap, night_utc(night, t), 0.5);
+		double s = zone_local(zone, utc).sod_s;
 		int hour = (int)(s / 3600.0);
 		if (col < free_from || col + LABEL_COLUMNS > a->cols || s - 3600.0 * hour > 2.0 ||
 		    hour % step)
 			continue;
 		a->hours[col] = (char)('0' + hour / 10);
 		a->hours[col + 1] = (char)('0' + hour % 10);
+		if (*clock_mark(night, zone, utc) && col + LABEL_COLUMNS < a->cols)
+			a->hours[col + LABEL_COLUMNS] = *CLOCK_MARK;
 		free_from = col + LABEL_COLUMNS + 1;
 	}
 }

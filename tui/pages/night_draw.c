@@ -8,7 +8,9 @@
 static void put_cell(struct grid *g, int row, const struct night_layout *l, enum row_cell c, const char *text,
 		     enum role role)
 {
-	if (row_columns[c].right)
+	if (!row_columns[c].unit && text_columns(text) == l->width[c] + 1) /* the mark of a clock change */
+		grid_put(g, row, l->at[c], l->width[c] + 1, text, role);
+	else if (row_columns[c].right)
 		grid_put_right(g, row, l->at[c], l->width[c], text, role);
 	else
 		grid_put(g, row, l->at[c], l->width[c], text, role);
@@ -97,7 +99,7 @@ static void draw_short_row(struct grid *g, int line, const struct night_row *row
 	char times[40];
 	snprintf(times, sizeof times, "%-5s %s-%s", row->text[ROW_ON], row->text[ROW_T1], row->text[ROW_T4]);
 	grid_put(g, line, 1, 1, letters[row->state], role);
-	int col = 3 + grid_put(g, line, 3, 17, times, role);
+	int col = 3 + grid_put(g, line, 3, 19, times, role);
 	grid_put_right(g, line, col + 1, 4, row->text[ROW_DONE], row->chance_role);
 	grid_put(g, line, col + 6, g->cols - col - 6, row->name, role);
 }

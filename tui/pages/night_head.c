@@ -4,6 +4,7 @@
 #include "ephem/angle_text.h"
 #include "ephem/number_text.h"
 #include "ephem/units.h"
+#include "tui/parts/clock_mark.h"
 
 #include <math.h>
 #include <stdio.h>
@@ -46,11 +47,12 @@ void local_text(const struct night *night, const struct zone *zone, double t_d, 
 	}
 	double step_s = seconds ? 1.0 : 60.0;
 	struct utc t = utc_add_s(night->clock.leap, night_utc(night, t_d), 0.5 * step_s);
+	const char *mark = clock_mark(night, zone, t);
 	long s = (long)floor(zone_local(zone, t).sod_s);
 	if (seconds)
-		snprintf(out, n, "%02ld:%02ld:%02ld", s / 3600 % 24, s / 60 % 60, s % 60);
+		snprintf(out, n, "%02ld:%02ld:%02ld%s", s / 3600 % 24, s / 60 % 60, s % 60, mark);
 	else
-		snprintf(out, n, "%02ld:%02ld", s / 3600 % 24, s / 60 % 60);
+		snprintf(out, n, "%02ld:%02ld%s", s / 3600 % 24, s / 60 % 60, mark);
 }
 
 static void site_text(struct night_head *h, const struct site *site)
@@ -81,8 +83,9 @@ static void zone_text(struct night_head *h, const struct run *r, const struct ni
 	char when[16];
 	local_text(night, NULL, to, false, when, sizeof when);
 	snprintf(h->zone, sizeof h->zone, "local");
-	snprintf(h->remark, sizeof h->remark, "Clocks change in this night at %s UTC, from %s to %s.", when,
-		 a.abbreviation, b.abbreviation);
+	snprintf(h->remark, sizeof h->remark,
+		 "Times with " CLOCK_MARK " are %s, the others %s: the clocks change at %s UTC.",
+		 b.abbreviation, a.abbreviation, when);
 }
 
 static void sun_text(struct night_head *h, const struct run *r, const struct night_view *v)
@@ -99,14 +102,20 @@ static void sun_text(struct night_head *h, const struct run *r, const struct nig
 		 dusk, dawn, rise, h->zone, hours, limit);
 	snprintf(h->sun_short, sizeof h->sun_short, "dusk %s  dawn %s %s  %s h below %s deg", dusk, dawn,
 		 h->zone, hours, limit);
+	size_t used = strlen(h->remark); /* that clocks change */
+	if (used > 0)
+		used += (size_t)snprintf(h->remark + used, sizeof h->remark - used, " ");
+	char *remark = h->remark + used;
+	size_t room = sizeof h->remark - used;
 	if (!(v->dark.usable_h > 0.0))
-		snprintf(h->remark, sizeof h->remark,
-			 "No dark hour: the Sun does not get below %s deg in this night.", limit);
+		snprintf(remark, room, "No dark hour: the Sun does not get below %s deg in this night.",
+			 limit);
 	else if (isnan(v->dark.dusk_d) && isnan(v->dark.dawn_d))
-		snprintf(h->remark, sizeof h->remark, "The Sun stays below %s deg from noon to noon.", limit);
+		snprintf(remark, room, "The Sun stays below %s deg from noon to noon.", limit);
 	else if (isnan(t->sunset_d) && isnan(t->sunrise_d))
-		snprintf(h->remark, sizeof h->remark,
-			 "The Sun neither rises nor sets between noon and noon.");
+		snprintf(remark, room, "The Sun neither rises nor sets between noon and noon.");
+	else if (used > 0)
+		remark[-1] = '\0';
 }
 
 static void moon_text(struct night_head *h, const struct run *r, const struct night_view *v)

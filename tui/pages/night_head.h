@@ -29,7 +29,8 @@ void night_head_tick(struct night_head *h, const struct run *r, const struct nig
 void night_name(int32_t evening_mjd, char *out, size_t n);
 /* `42 min`, `2 h 05 min`, `3 d 4 h`; whole minutes that are left. */
 void span_text(double days, char *out, size_t n);
-/* Local time of a moment of the night, rounded: `22:56`, or with seconds; `--:--` when it does not happen. */
+/* Local time of a moment of the night, rounded: `22:56`, or with seconds; `--:--` when it does not happen.
+ * Behind a change of the clocks with CLOCK_MARK: 16 bytes hold it. */
 void local_text(const struct night *night, const struct zone *zone, double t_d, bool seconds, char *out,
 		size_t n);
 

@@ -40,7 +40,10 @@ static void ask(struct night_page *p, enum night_mode mode)
 	struct date d = date_from_mjd(p->view.night.mjd);
 	if (mode == MODE_DATE)
 		snprintf(text, sizeof text, "%04d-%02d-%02d", d.year % 10000, d.month, d.day);
-	line_set(&p->line, mode == MODE_FILTER ? p->filter_text : text);
+	if (mode == MODE_DATE)
+		line_offer(&p->line, text);
+	else
+		line_set(&p->line, mode == MODE_FILTER ? p->filter_text : text);
 	p->mode = mode;
 }
 

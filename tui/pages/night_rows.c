@@ -2,6 +2,7 @@
 #include "tui/pages/night_rows.h"
 
 #include "ephem/number_text.h"
+#include "tui/parts/clock_mark.h"
 #include "tui/parts/columns.h"
 
 #include <math.h>
@@ -152,6 +153,8 @@ static void figure(const char *name, const struct night_row *row, const struct n
 		return;
 	struct value v = column_value(&columns[at], row->window, &view->night);
 	value_people_text(&columns[at], &v, leap, zone, out, ROW_CELL_BYTES);
+	if (v.type == VALUE_UTC)
+		append(out, ROW_CELL_BYTES, clock_mark(&view->night, zone, utc_add_s(leap, v.utc, 30.0)));
 }
 
 static void fill_figures(struct night_row *row, const struct night_view *view, const struct leap_table *leap,

@@ -40,6 +40,12 @@ void line_set(struct line_edit *line, const char *text)
 	}
 }
 
+void line_offer(struct line_edit *line, const char *text)
+{
+	line_set(line, text);
+	line->offered = line->n > 0;
+}
+
 static int word_start(const struct line_edit *line)
 {
 	int at = line->at;
@@ -50,7 +56,8 @@ static int word_start(const struct line_edit *line)
 	return at;
 }
 
-bool line_key(struct line_edit *line, uint32_t code)
+/* Keys that move in the text or take from it; true when it was one. */
+static bool edit_key(struct line_edit *line, uint32_t code)
 {
 	switch (code) {
 	case CONTROL('A'):
@@ -90,11 +97,20 @@ bool line_key(struct line_edit *line, uint32_t code)
 		take_out(line, word_start(line), line->at);
 		return true;
 	default:
-		break;
-	}
-	if (code < 32 || code >= KEYS_SPECIAL)
 		return false;
-	put_in(line, code);
+	}
+}
+
+bool line_key(struct line_edit *line, uint32_t code)
+{
+	bool typed = code >= 32 && code < KEYS_SPECIAL && code != 0x7F;
+	if (!typed && !edit_key(line, code))
+		return false;
+	if (typed && line->offered)
+		line_set(line, "");
+	line->offered = false;
+	if (typed)
+		put_in(line, code);
 	return true;
 }
 
@@ -132,5 +148,7 @@ void line_draw(const struct line_edit *line, struct grid *g, int row, int col, i
 		grid_put(g, row, col + used, w, bytes, ROLE_STRONG);
 		used += w;
 	}
+	if (line->offered)
+		grid_select(g, row, col, used);
 	grid_cursor(g, row, col + before, true);
 }

@@ -13,9 +13,12 @@
 enum { LINE_CHARS_MAX = 64 };
 struct line_edit {
 	uint32_t cp[LINE_CHARS_MAX];
-	int n, at; /* characters, and the one before which the cursor stands */
+	int n, at;    /* characters, and the one before which the cursor stands */
+	bool offered; /* the first character that is typed takes the place of the whole text */
 };
 void line_set(struct line_edit *line, const char *text);
+/* The same with a text that is only offered: shown as selected until a key edits it; typing replaces it. */
+void line_offer(struct line_edit *line, const char *text);
 /* True when the key belongs to the editor (hostile characters are taken and dropped). Enter, Esc and unknown
  * special keys do not. */
 bool line_key(struct line_edit *line, uint32_t code);

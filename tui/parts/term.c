@@ -119,7 +119,7 @@ enum tier term_tier(void)
 
 /* --- opening and closing --- */
 
-/* A session from afar may name a locale that is not installed here; its characters are UTF-8 all the same.
+/* A login from afar may name a locale that is not installed here; its characters are UTF-8 all the same.
  * Numbers stay in the C locale. */
 static void choose_characters(const struct term_options *o)
 {

@@ -187,8 +187,8 @@ bool guard_take_woken(void)
 
 bool guard_stop(void)
 {
-	/* a session leader, or a group whose parent is in another session, has nobody who could wake it; the
-	 * kernel would not stop it */
+	/* the first process of a login, or a group whose parent is in another one, has nobody who could wake
+	 * it; the kernel would not stop it */
 	if (getsid(0) == getpid() || getsid(getppid()) != getsid(0))
 		return false;
 	return raise(SIGTSTP) == 0;
