@@ -125,6 +125,12 @@ static void fill(struct ephemeris_row *out, const struct cell *cell, int64_t cur
 	    .current = cell[0].u.i == current,
 	    .t0_err_d = t.t0_err_d,
 	    .period_err_d = t.period_err_d,
+	    .t0_period_cov_d2 = t.t0_period_cov_d2,
+	    .dpde_d = t.dpde_d,
+	    .dpde_err_d = t.dpde_err_d,
+	    .ttv_amp_min = t.ttv_amp_min,
+	    .t0_dpde_cov_d2 = t.t0_dpde_cov_d2,
+	    .period_dpde_cov_d2 = t.period_dpde_cov_d2,
 	};
 	snprintf(out->source, sizeof out->source, "%s", t.source);
 	snprintf(out->entered_utc, sizeof out->entered_utc, "%s", cell[EPHEMERIS_ENTERED].u.text);

@@ -83,6 +83,10 @@ const struct field fields[FIELD_COUNT] = {
      "Wanted time after the fourth contact."},
     {"ecosw_err", "", FIELD_NUMBER, T, AT(ecosw_err), 0, 1, false, false,
      "Error of ecc times cos(omega), for the time of an occultation; empty: not published."},
+    {"t0_dpde_cov_d2", "d2", FIELD_NUMBER, E, AT(t0_dpde_cov_d2), -1e6, 1e6, false, false,
+     "Covariance of t0_jd and dpde_d; empty: not published, taken as 0."},
+    {"period_dpde_cov_d2", "d2", FIELD_NUMBER, E, AT(period_dpde_cov_d2), -1e6, 1e6, false, false,
+     "Covariance of period_d and dpde_d; empty: not published, taken as 0."},
 };
 
 int field_find(const char *name)

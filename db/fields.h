@@ -24,8 +24,9 @@ struct field {
 	bool essential;   /* out of range refuses the row; else the value is kept and flagged as doubtful */
 	const char *sentence;
 };
-enum { FIELD_COUNT = 41 };
-/* In the order of the target table format: name, ra_deg, ... source, t0_period_cov_d2, ... baseline_after_min, ecosw_err. */
+enum { FIELD_COUNT = 43 };
+/* In the order of the target table format: name, ra_deg, ... source, t0_period_cov_d2, ... baseline_after_min, ecosw_err, t0_dpde_cov_d2,
+ * period_dpde_cov_d2. */
 extern const struct field fields[FIELD_COUNT];
 /* Places in the table of the fields that the code knows by name. */
 enum {
@@ -42,7 +43,10 @@ enum {
 	FIELD_AT_SOURCE = 22,
 	FIELD_AT_COVARIANCE = 23,
 	FIELD_AT_DPDE = 24,
-	FIELD_AT_DURATION_ERR = 26
+	FIELD_AT_DPDE_ERR = 25,
+	FIELD_AT_DURATION_ERR = 26,
+	FIELD_AT_T0_DPDE_COV = 41,
+	FIELD_AT_PERIOD_DPDE_COV = 42
 };
 /* Longest text of a FIELD_TEXT, FIELD_SCALE or doubtful value in the store [bytes]; a longer text is cut and flagged. */
 enum { FIELD_TEXT_MAX = 255, FIELD_NOTE_MAX = 2000 };

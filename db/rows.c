@@ -89,12 +89,12 @@ static enum status own_texts(struct row *row, struct err *e)
 	return ST_OK;
 }
 
-enum status row_find(struct store *s, enum sql_id id, struct cell key, const struct table *table,
-		     struct row *out, struct err *e)
+enum status row_find_by(struct store *s, enum sql_id id, const struct cell *key, size_t n_keys,
+			const struct table *table, struct row *out, struct err *e)
 {
 	bool found = false;
 	*out = (struct row){.n = table->cells};
-	enum status st = cells_bind(s->stmt[id], 1, &key, 1, e);
+	enum status st = cells_bind(s->stmt[id], 1, key, n_keys, e);
 	if (st == ST_OK)
 		st = sql_step(s, id, &found, e);
 	if (st == ST_OK && !found)
@@ -106,6 +106,12 @@ enum status row_find(struct store *s, enum sql_id id, struct cell key, const str
 		st = own_texts(out, e);
 	sql_reset(s, id);
 	return st;
+}
+
+enum status row_find(struct store *s, enum sql_id id, struct cell key, const struct table *table,
+		     struct row *out, struct err *e)
+{
+	return row_find_by(s, id, &key, 1, table, out, e);
 }
 
 enum status row_next_id(struct store *s, const struct table *table, int64_t *id, struct err *e)
@@ -138,7 +144,11 @@ enum status change_needed(struct store *s, struct err *e)
 	enum status st = sql_number(s, SQL_CHANGE_NEXT, &id, e);
 	if (st != ST_OK)
 		return st;
-	const struct cell cell[] = {cell_int(id), cell_text(s->utc), cell_text(s->who), cell_text(s->verb),
+	const struct cell cell[] = {cell_int(id),
+				    cell_text(s->utc),
+				    cell_text(s->who),
+				    cell_text(s->verb),
+				    s->undoes ? cell_int(s->undoes) : (struct cell){.type = CELL_NULL},
 				    cell_int(1)};
 	st = write_row(s, SQL_CHANGE_ADD, cell, sizeof cell / sizeof cell[0], e);
 	if (st == ST_OK)

@@ -54,6 +54,9 @@
 	"zone TEXT NOT NULL,"                                                                                \
 	"mask TEXT NOT NULL CHECK(length(mask) <= 40000)," /* `azimuth altitude;...` [deg]; '' none */
 
+/* What became of a mid-time: counted in fits, or taken out of the lists. Its id is that of the mid-time. */
+#define MARK_BODY "used INTEGER NOT NULL CHECK(used IN (0, 1)),"
+
 #define SETTING_BODY "key TEXT NOT NULL CHECK(length(key) BETWEEN 1 AND 80), value TEXT NOT NULL,"
 
 #define READ_BODY                                                                                            \
@@ -77,12 +80,16 @@ static const char *const step_1[] = {
     "CREATE TABLE change_set(id INTEGER PRIMARY KEY,"
     "utc TEXT NOT NULL CHECK(length(utc) BETWEEN 17 AND 23),"
     "who TEXT NOT NULL, verb TEXT NOT NULL,"
+    "undoes INTEGER REFERENCES change_set(id) CHECK(undoes BETWEEN 1 AND id - 1)," /* NULL: no undo */
     "rev INTEGER NOT NULL CHECK(rev = 1)," CRC_BODY ") STRICT;",
 
     /* the pointer to the current version is checked at commit: target and first ephemeris come in together */
     "CREATE TABLE target(id INTEGER PRIMARY KEY," TARGET_BODY
     "ephemeris_id INTEGER REFERENCES ephemeris(id) DEFERRABLE INITIALLY DEFERRED," READ_BODY REMOVED_BODY
-	REV_BODY CRC_BODY ", UNIQUE(name_key)) STRICT;",
+	REV_BODY CRC_BODY ") STRICT;",
+    /* a removed target leaves its name to others */
+    "CREATE UNIQUE INDEX target_listed ON target(name_key) WHERE removed = 0;",
+    "CREATE INDEX target_removed ON target(name_key) WHERE removed = 1;",
     "CREATE TABLE target_old(id INTEGER NOT NULL REFERENCES target(id)," TARGET_BODY
     "ephemeris_id INTEGER," READ_BODY REMOVED_BODY REV_BODY OLD_TAIL,
 
@@ -100,11 +107,31 @@ static const char *const step_1[] = {
     "dpde_d REAL CHECK(dpde_d BETWEEN -1 AND 1),"
     "dpde_err_d REAL CHECK(dpde_err_d BETWEEN 0 AND 1),"
     "ttv_amp_min REAL CHECK(ttv_amp_min BETWEEN 0 AND 1e5),"
+    "t0_dpde_cov_d2 REAL CHECK(t0_dpde_cov_d2 BETWEEN -1e6 AND 1e6),"
+    "period_dpde_cov_d2 REAL CHECK(period_dpde_cov_d2 BETWEEN -1e6 AND 1e6),"
     "entered_utc TEXT NOT NULL CHECK(length(entered_utc) BETWEEN 17 AND 23)," READ_BODY REV_BODY CRC_BODY
     ", UNIQUE(target_id, version), CHECK((t0_day IS NULL) = (t0_frac IS NULL))) STRICT;",
 
     /* the deferred reference is looked up with each new ephemeris */
     "CREATE INDEX target_by_ephemeris ON target(ephemeris_id);",
+
+    "CREATE TABLE midtime(id INTEGER PRIMARY KEY,"
+    "target_id INTEGER NOT NULL REFERENCES target(id),"
+    "epoch INTEGER NOT NULL CHECK(epoch BETWEEN -2000000000 AND 2000000000),"
+    "kind TEXT NOT NULL CHECK(kind IN ('transit', 'occultation'))," /* an occultation: that after transit
+								       epoch */
+    "mid_day REAL NOT NULL CHECK(mid_day BETWEEN -3e6 AND 3e6),"
+    "mid_frac REAL NOT NULL CHECK(mid_frac >= 0 AND mid_frac < 1),"
+    "mid_text TEXT NOT NULL CHECK(length(mid_text) BETWEEN 1 AND 64)," /* as read, offset not added */
+    "time_scale TEXT NOT NULL CHECK(length(time_scale) <= 127),"
+    "err_d REAL NOT NULL CHECK(err_d > 0 AND err_d <= 100),"
+    "source TEXT NOT NULL CHECK(length(source) <= 255),"
+    "entered_utc TEXT NOT NULL CHECK(length(entered_utc) BETWEEN 17 AND 23)," REV_BODY CRC_BODY ") STRICT;",
+    "CREATE INDEX midtime_by_target ON midtime(target_id, epoch);",
+    "CREATE TABLE midtime_mark(id INTEGER PRIMARY KEY REFERENCES midtime(id)," MARK_BODY REMOVED_BODY REV_BODY
+	CRC_BODY ") STRICT;",
+    "CREATE TABLE midtime_mark_old(id INTEGER NOT NULL REFERENCES midtime_mark(id)," MARK_BODY REMOVED_BODY
+	REV_BODY OLD_TAIL,
 
     "CREATE TABLE target_alias(id INTEGER PRIMARY KEY," ALIAS_BODY REMOVED_BODY REV_BODY CRC_BODY
     ", UNIQUE(alias_key)) STRICT;",
@@ -123,6 +150,16 @@ static const char *const step_1[] = {
     "BEGIN SELECT raise(ABORT, 'an ephemeris version is never changed'); END;",
     "CREATE TRIGGER ephemeris_no_delete BEFORE DELETE ON ephemeris "
     "BEGIN SELECT raise(ABORT, 'an ephemeris version is never deleted'); END;",
+    "CREATE TRIGGER midtime_no_update BEFORE UPDATE ON midtime "
+    "BEGIN SELECT raise(ABORT, 'a mid-time is never changed'); END;",
+    "CREATE TRIGGER midtime_no_delete BEFORE DELETE ON midtime "
+    "BEGIN SELECT raise(ABORT, 'a mid-time is never deleted'); END;",
+    "CREATE TRIGGER midtime_mark_no_delete BEFORE DELETE ON midtime_mark "
+    "BEGIN SELECT raise(ABORT, 'a mid-time is marked as removed, never deleted'); END;",
+    "CREATE TRIGGER midtime_mark_old_no_update BEFORE UPDATE ON midtime_mark_old "
+    "BEGIN SELECT raise(ABORT, 'history is never changed'); END;",
+    "CREATE TRIGGER midtime_mark_old_no_delete BEFORE DELETE ON midtime_mark_old "
+    "BEGIN SELECT raise(ABORT, 'history is never deleted'); END;",
     "CREATE TRIGGER change_set_no_update BEFORE UPDATE ON change_set "
     "BEGIN SELECT raise(ABORT, 'a change set is never changed'); END;",
     "CREATE TRIGGER change_set_no_delete BEFORE DELETE ON change_set "

@@ -2,29 +2,16 @@
 #include "db/sites.h"
 
 #include "db/read_mask.h"
-#include "db/store_parts.h"
+#include "db/site_rows.h"
 #include "db/text_clean.h"
 
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
 
-enum {
-	SITE_NAME = 1,
-	SITE_KEY,
-	SITE_LAT,
-	SITE_LON,
-	SITE_HEIGHT,
-	SITE_ZONE,
-	SITE_MASK,
-	SITE_REMOVED,
-	SITE_REV,
-	SITE_CHANGE,
-	SITE_CELLS
-};
 enum { ZONE_BYTES_MAX = 63 };
 
-static const struct table site_table = {
+const struct table site_table = {
     .name = "site",
     .cells = SITE_CELLS,
     .rev_at = SITE_REV,

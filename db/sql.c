@@ -19,13 +19,35 @@
 	"target.change_id, target.row_crc"
 #define EPHEMERIS_FIELDS                                                                                     \
 	"target_id, version, t0_day, t0_frac, t0_err_d, time_scale, period_d, period_err_d, source, "        \
-	"t0_period_cov_d2, dpde_d, dpde_err_d, ttv_amp_min, entered_utc"
+	"t0_period_cov_d2, dpde_d, dpde_err_d, ttv_amp_min, "                                                \
+	"t0_dpde_cov_d2, period_dpde_cov_d2, entered_utc"
 #define EPHEMERIS_COLUMNS                                                                                    \
 	"ephemeris.id, " EPHEMERIS_FIELDS ", ephemeris.as_read, ephemeris.doubts, ephemeris.rev, "           \
 	"ephemeris.change_id, ephemeris.row_crc"
 #define ALIAS_PLAIN "alias, alias_key, target_id, removed, rev, change_id"
 #define SITE_PLAIN "name, name_key, lat_deg, lon_east_deg, height_m, zone, mask, removed, rev, change_id"
 #define SETTING_PLAIN "key, value, removed, rev, change_id"
+
+#define MIDTIME_PLAIN                                                                                        \
+	"target_id, epoch, kind, mid_day, mid_frac, mid_text, time_scale, err_d, source, entered_utc, rev, " \
+	"change_id"
+#define MARK_PLAIN "used, removed, rev, change_id"
+#define MIDTIME_JOIN                                                                                         \
+	"SELECT m.id, target_id, epoch, kind, mid_day, mid_frac, mid_text, time_scale, err_d, source, "      \
+	"entered_utc, m.rev, m.change_id, m.row_crc, k.id, used, removed, k.rev, k.change_id, k.row_crc, "   \
+	"who FROM midtime m JOIN midtime_mark k ON k.id = m.id JOIN change_set c ON c.id = m.change_id "
+
+/* Of a family of a table and its old rows. A row that one change set wrote more than once has old rows that
+ * this same set replaced: what was before is the one that another wrote. */
+#define TOUCHED(table)                                                                                       \
+	"SELECT id FROM " table " WHERE change_id = ?1 UNION SELECT id FROM " table                          \
+	"_old WHERE change_id = ?1 ORDER BY 1"
+#define AFTER(table, columns)                                                                                \
+	"SELECT id, " columns ", replaced_by, row_crc FROM " table                                           \
+	"_old WHERE id = ? AND change_id = ? ORDER BY rev DESC LIMIT 1"
+#define BEFORE(table, columns)                                                                               \
+	"SELECT id, " columns ", replaced_by, row_crc FROM " table                                           \
+	"_old WHERE id = ? AND replaced_by = ? AND change_id <> replaced_by"
 
 #define FIVE "?, ?, ?, ?, ?"
 #define TEN FIVE ", " FIVE
@@ -39,13 +61,16 @@ const char *const sql_text[SQL_COUNT] = {
     [SQL_DATA_VERSION] = "PRAGMA data_version",
 
     [SQL_CHANGE_NEXT] = "SELECT ifnull(max(id), 0) + 1 FROM change_set",
-    [SQL_CHANGE_ADD] = "INSERT INTO change_set(id, utc, who, verb, rev, row_crc) VALUES(" FIVE ", ?)",
+    [SQL_CHANGE_ADD] =
+	"INSERT INTO change_set(id, utc, who, verb, undoes, rev, row_crc) VALUES(" FIVE ", ?, ?)",
 
     [SQL_TARGET_NEXT] = "SELECT ifnull(max(id), 0) + 1 FROM target",
     [SQL_TARGET_LOAD] =
 	"SELECT " TARGET_COLUMNS ", " EPHEMERIS_COLUMNS
 	" FROM target LEFT JOIN ephemeris ON ephemeris.id = target.ephemeris_id ORDER BY name_key",
-    [SQL_TARGET_BY_KEY] = "SELECT " TARGET_COLUMNS " FROM target WHERE name_key = ?",
+    [SQL_TARGET_BY_KEY] = "SELECT " TARGET_COLUMNS
+			  " FROM target WHERE name_key = ?1 AND removed = 0 UNION ALL SELECT " TARGET_COLUMNS
+			  " FROM target WHERE name_key = ?1 AND removed = 1 ORDER BY removed, 1 DESC LIMIT 1",
     [SQL_TARGET_BY_ID] = "SELECT " TARGET_COLUMNS " FROM target WHERE id = ?",
     [SQL_TARGET_ADD] =
 	"INSERT INTO target(id, " TARGET_PLAIN ", row_crc) VALUES(" TEN ", " TEN ", " TEN ", " TEN ")",
@@ -59,7 +84,7 @@ const char *const sql_text[SQL_COUNT] = {
     [SQL_EPHEMERIS_OF_TARGET] =
 	"SELECT " EPHEMERIS_COLUMNS " FROM ephemeris WHERE target_id = ? ORDER BY version",
     [SQL_EPHEMERIS_ADD] = "INSERT INTO ephemeris(id, " EPHEMERIS_FIELDS
-			  ", as_read, doubts, rev, change_id, row_crc) VALUES(" TEN ", " TEN ")",
+			  ", as_read, doubts, rev, change_id, row_crc) VALUES(" TEN ", " TEN ", ?, ?)",
     [SQL_CHANGE_OF_EPHEMERIS] = "SELECT who FROM change_set WHERE id = ?",
 
     [SQL_ALIAS_NEXT] = "SELECT ifnull(max(id), 0) + 1 FROM target_alias",
@@ -79,11 +104,64 @@ const char *const sql_text[SQL_COUNT] = {
     [SQL_SITE_KEEP_OLD] =
 	"INSERT INTO site_old(id, " SITE_PLAIN ", replaced_by, row_crc) VALUES(" TEN ", ?, ?, ?)",
 
-    [SQL_ALL_CHANGES] = "SELECT id, utc, who, verb, rev, row_crc FROM change_set",
+    [SQL_MIDTIME_NEXT] = "SELECT ifnull(max(id), 0) + 1 FROM midtime",
+    [SQL_MIDTIME_LOAD] = MIDTIME_JOIN "WHERE target_id = ?",
+    [SQL_MIDTIMES_BY_ID] = MIDTIME_JOIN "ORDER BY m.id",
+    [SQL_MIDTIME_OF_EPOCH] = MIDTIME_JOIN "WHERE target_id = ? AND epoch = ? AND kind = ? ORDER BY m.id",
+    [SQL_MIDTIME_BY_ID] = "SELECT id, " MIDTIME_PLAIN ", row_crc FROM midtime WHERE id = ?",
+    [SQL_MIDTIME_ADD] = "INSERT INTO midtime(id, " MIDTIME_PLAIN ", row_crc) VALUES(" TEN ", ?, ?, ?, ?)",
+    [SQL_MARK_BY_ID] = "SELECT id, " MARK_PLAIN ", row_crc FROM midtime_mark WHERE id = ?",
+    [SQL_MARK_ADD] = "INSERT INTO midtime_mark(id, " MARK_PLAIN ", row_crc) VALUES(" FIVE ", ?)",
+    [SQL_MARK_UPDATE] =
+	"UPDATE midtime_mark SET (" MARK_PLAIN ", row_crc) = (" FIVE ") WHERE id = ? AND rev = ?",
+    [SQL_MARK_KEEP_OLD] =
+	"INSERT INTO midtime_mark_old(id, " MARK_PLAIN ", replaced_by, row_crc) VALUES(" FIVE ", ?, ?)",
+
+    [SQL_EPHEMERIS_OF_VERSION] =
+	"SELECT " EPHEMERIS_COLUMNS " FROM ephemeris WHERE target_id = ? AND version = ?",
+    [SQL_ALIAS_BY_ID] = "SELECT id, " ALIAS_PLAIN ", row_crc FROM target_alias WHERE id = ?",
+    [SQL_SITE_BY_ID] = "SELECT id, " SITE_PLAIN ", row_crc FROM site WHERE id = ?",
+
+    [SQL_HISTORY_CHANGES] =
+	"SELECT id, utc, who, verb, undoes, rev, row_crc FROM change_set ORDER BY id DESC",
+    [SQL_HISTORY_ROWS] =
+	"SELECT change_id, 0, id, name, 0 FROM target UNION ALL "
+	"SELECT change_id, 0, id, name, 0 FROM target_old WHERE replaced_by <> change_id UNION ALL "
+	"SELECT e.change_id, 1, target_id, name, version FROM ephemeris e JOIN target t ON t.id = target_id "
+	"UNION ALL "
+	"SELECT a.change_id, 2, target_id, alias, 0 FROM target_alias a UNION ALL "
+	"SELECT change_id, 2, target_id, alias, 0 FROM target_alias_old WHERE replaced_by <> change_id "
+	"UNION ALL "
+	"SELECT change_id, 3, 0, name, 0 FROM site UNION ALL "
+	"SELECT change_id, 3, 0, name, 0 FROM site_old WHERE replaced_by <> change_id UNION ALL "
+	"SELECT k.change_id, 4, target_id, name, epoch FROM midtime_mark k JOIN midtime m ON m.id = k.id "
+	"JOIN target t ON t.id = target_id UNION ALL "
+	"SELECT k.change_id, 4, target_id, name, epoch FROM midtime_mark_old k JOIN midtime m ON m.id = k.id "
+	"JOIN target t ON t.id = target_id WHERE k.replaced_by <> k.change_id "
+	"ORDER BY 1 DESC, 2, 3",
+
+    [SQL_TARGET_TOUCHED] = TOUCHED("target"),
+    [SQL_TARGET_AFTER] = AFTER("target", TARGET_PLAIN),
+    [SQL_TARGET_BEFORE] = BEFORE("target", TARGET_PLAIN),
+    [SQL_ALIAS_TOUCHED] = TOUCHED("target_alias"),
+    [SQL_ALIAS_AFTER] = AFTER("target_alias", ALIAS_PLAIN),
+    [SQL_ALIAS_BEFORE] = BEFORE("target_alias", ALIAS_PLAIN),
+    [SQL_SITE_TOUCHED] = TOUCHED("site"),
+    [SQL_SITE_AFTER] = AFTER("site", SITE_PLAIN),
+    [SQL_SITE_BEFORE] = BEFORE("site", SITE_PLAIN),
+    [SQL_MARK_TOUCHED] = TOUCHED("midtime_mark"),
+    [SQL_MARK_AFTER] = AFTER("midtime_mark", MARK_PLAIN),
+    [SQL_MARK_BEFORE] = BEFORE("midtime_mark", MARK_PLAIN),
+    [SQL_CHANGE_BY_ID] = "SELECT id, utc, who, verb, undoes, rev, row_crc FROM change_set WHERE id = ?",
+
+    [SQL_ALL_CHANGES] = "SELECT id, utc, who, verb, undoes, rev, row_crc FROM change_set",
     [SQL_ALL_TARGETS_OLD] = "SELECT id, " TARGET_PLAIN ", replaced_by, row_crc FROM target_old",
     [SQL_ALL_EPHEMERIDES] = "SELECT " EPHEMERIS_COLUMNS " FROM ephemeris",
     [SQL_ALL_ALIASES_OLD] = "SELECT id, " ALIAS_PLAIN ", replaced_by, row_crc FROM target_alias_old",
     [SQL_ALL_SITES_OLD] = "SELECT id, " SITE_PLAIN ", replaced_by, row_crc FROM site_old",
+    [SQL_ALL_MIDTIMES] = "SELECT id, " MIDTIME_PLAIN ", row_crc FROM midtime",
+    [SQL_ALL_MARKS] = "SELECT id, " MARK_PLAIN ", row_crc FROM midtime_mark",
+    [SQL_ALL_MARKS_OLD] = "SELECT id, " MARK_PLAIN ", replaced_by, row_crc FROM midtime_mark_old",
     [SQL_ALL_SETTINGS] = "SELECT id, " SETTING_PLAIN ", row_crc FROM setting",
     [SQL_ALL_SETTINGS_OLD] = "SELECT id, " SETTING_PLAIN ", replaced_by, row_crc FROM setting_old",
     [SQL_INTEGRITY] = "PRAGMA integrity_check",
@@ -91,6 +169,9 @@ const char *const sql_text[SQL_COUNT] = {
     [SQL_WRONG_POINTERS] =
 	"SELECT target.name FROM target JOIN ephemeris ON ephemeris.id = target.ephemeris_id "
 	"WHERE ephemeris.target_id <> target.id",
+    [SQL_MISSING_MARKS] =
+	"SELECT midtime.id FROM midtime LEFT JOIN midtime_mark ON midtime_mark.id = midtime.id "
+	"WHERE midtime_mark.id IS NULL",
     [SQL_COUNTS] = "SELECT (SELECT count(*) FROM target WHERE removed = 0), "
 		   "(SELECT count(*) FROM ephemeris WHERE t0_day IS NOT NULL AND period_d IS NOT NULL), "
 		   "(SELECT count(*) FROM site WHERE removed = 0), (SELECT count(*) FROM change_set)",

@@ -132,7 +132,7 @@ enum status store_begin(struct store *s, const struct change *c, struct err *e)
 	(void)text_clean(c->verb, s->verb, sizeof s->verb);
 	enum status st = run(s, SQL_BEGIN, e);
 	s->in_change = st == ST_OK;
-	s->change_id = 0;
+	s->change_id = s->undoes = 0;
 	return st;
 }
 

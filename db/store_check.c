@@ -1,7 +1,10 @@
 /* SPDX-License-Identifier: MIT
  * Everything that can be checked of a store. SQLite's own checks see the pages; most flipped bits of a value
  * they don't: the checksums of the rows do. */
+#include "db/change_rows.h"
+#include "db/midtime_rows.h"
 #include "db/schema.h"
+#include "db/site_rows.h"
 #include "db/target_rows.h"
 #include "db/text_clean.h"
 
@@ -55,14 +58,17 @@ static const struct whole_table {
 	size_t cells;
 	int name_at, doubts_at; /* -1 none */
 } tables[] = {
-    {SQL_ALL_CHANGES, "change_set", 5, -1, -1},
+    {SQL_ALL_CHANGES, "change_set", CHANGE_CELLS, -1, -1},
     {SQL_TARGET_LOAD, "target", TARGET_CELLS, TARGET_FIELDS, TARGET_DOUBTS},
     {SQL_ALL_TARGETS_OLD, "target_old", TARGET_CELLS + 1, -1, -1},
     {SQL_ALL_EPHEMERIDES, "ephemeris", EPHEMERIS_CELLS, -1, -1},
     {SQL_ALIAS_LOAD, "target_alias", ALIAS_CELLS, -1, -1},
     {SQL_ALL_ALIASES_OLD, "target_alias_old", ALIAS_CELLS + 1, -1, -1},
-    {SQL_SITE_LOAD, "site", 11, -1, -1},
-    {SQL_ALL_SITES_OLD, "site_old", 12, -1, -1},
+    {SQL_SITE_LOAD, "site", SITE_CELLS, -1, -1},
+    {SQL_ALL_SITES_OLD, "site_old", SITE_CELLS + 1, -1, -1},
+    {SQL_ALL_MIDTIMES, "midtime", MIDTIME_CELLS, -1, -1},
+    {SQL_ALL_MARKS, "midtime_mark", MARK_CELLS, -1, -1},
+    {SQL_ALL_MARKS_OLD, "midtime_mark_old", MARK_CELLS + 1, -1, -1},
     {SQL_ALL_SETTINGS, "setting", 6, -1, -1},
     {SQL_ALL_SETTINGS_OLD, "setting_old", 7, -1, -1},
     {SQL_STORE_INFO, "store_info", 3, -1, -1},
@@ -129,6 +135,8 @@ enum status store_check(struct store *s, void (*say)(void *ctx, const char *line
 	if (st == ST_OK)
 		st = findings(&c, SQL_WRONG_POINTERS, 0,
 			      "damaged: the current ephemeris belongs to another target: ", &why);
+	if (st == ST_OK)
+		st = findings(&c, SQL_MISSING_MARKS, 0, "damaged: a mid-time without its mark: ", &why);
 	for (size_t i = 0; st == ST_OK && i < sizeof tables / sizeof tables[0]; i++)
 		st = check_table(&c, &tables[i], &why);
 	if (st == ST_OK && schema_compare(s->db, &s->crc, &why) != ST_OK)

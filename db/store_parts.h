@@ -19,6 +19,7 @@ struct store {
 	bool read_only;
 	bool in_change;
 	int64_t change_id; /* 0 until the change set has a row: one that changes nothing leaves none */
+	int64_t undoes;	   /* the change set that this one takes back; 0 none */
 	char utc[UTC_BYTES], who[WHO_BYTES], verb[VERB_BYTES];
 	char id[33];
 	struct crc_table crc;
@@ -57,6 +58,9 @@ bool row_read(struct store *s, enum sql_id id, int first, const struct table *ta
  * its checksum is wrong. */
 MUST_USE enum status row_find(struct store *s, enum sql_id id, struct cell key, const struct table *table,
 			      struct row *out, struct err *e);
+/* The same for more than one key. */
+MUST_USE enum status row_find_by(struct store *s, enum sql_id id, const struct cell *key, size_t n_keys,
+				 const struct table *table, struct row *out, struct err *e);
 /* Id for a new row. */
 MUST_USE enum status row_next_id(struct store *s, const struct table *table, int64_t *id, struct err *e);
 /* Adds a row: rev becomes 1, the change and the checksum are filled in. */

@@ -47,6 +47,7 @@ struct ephemeris_row {
 	bool current;
 	char source[256], entered_utc[24], who[64], t0_text[64], scale[64], period_text[64];
 	double t0_err_d, period_err_d;
+	double t0_period_cov_d2, dpde_d, dpde_err_d, ttv_amp_min, t0_dpde_cov_d2, period_dpde_cov_d2; /* NAN: not given */
 };
 MUST_USE enum status ephemeris_versions(struct store *s, int64_t target_id, struct ephemeris_row **out, size_t *n, struct err *e);
 

@@ -1,5 +1,6 @@
 /* SPDX-License-Identifier: MIT
  * Writing targets into the store. */
+#include "db/history.h"
 #include "db/target_rows.h"
 #include "db/text_clean.h"
 
@@ -7,22 +8,31 @@
 #include <string.h>
 
 /* The target called so, or that has the alias. ST_ABSENT without a message when there is none; a removed one
- * is found too. */
+ * is found too, but a listed one before it. */
 static enum status find_target(struct store *s, const char *name, struct row *out, struct err *e)
 {
 	char key[NAME_KEY_MAX];
 	name_key(name, key);
 	enum status st = row_find(s, SQL_TARGET_BY_KEY, cell_text(key), &target_table, out, e);
-	if (st != ST_ABSENT)
+	bool removed = st == ST_OK && out->cell[TARGET_REMOVED].u.i;
+	if (st != ST_ABSENT && !removed)
 		return st;
-	struct row alias;
-	st = row_find(s, SQL_ALIAS_BY_KEY, cell_text(key), &alias_table, &alias, e);
-	if (st == ST_OK && alias.cell[ALIAS_REMOVED].u.i)
-		st = ST_ABSENT;
-	if (st == ST_OK)
-		st = row_find(s, SQL_TARGET_BY_ID, alias.cell[ALIAS_TARGET], &target_table, out, e);
+	struct row alias, other = {0};
+	enum status found = row_find(s, SQL_ALIAS_BY_KEY, cell_text(key), &alias_table, &alias, e);
+	if (found == ST_OK && alias.cell[ALIAS_REMOVED].u.i)
+		found = ST_ABSENT;
+	if (found == ST_OK)
+		found = row_find(s, SQL_TARGET_BY_ID, alias.cell[ALIAS_TARGET], &target_table, &other, e);
 	row_free(&alias);
-	return st;
+	if (found == ST_OK && removed && other.cell[TARGET_REMOVED].u.i)
+		found = ST_ABSENT; /* both are removed: the name goes before the alias */
+	if (found == ST_OK) {
+		row_free(out);
+		*out = other;
+		return ST_OK;
+	}
+	row_free(&other);
+	return found == ST_ABSENT ? st : found;
 }
 
 static enum status find_listed(struct store *s, const char *name, struct row *out, struct err *e)
@@ -235,7 +245,7 @@ enum status target_set(struct store *s, const char *name, const int field[], con
 		char key[NAME_KEY_MAX];
 		name_key(r.t.name, key);
 		enum status found = find_target(s, r.t.name, &other, NULL);
-		if (found == ST_OK && other.cell[0].u.i != old.cell[0].u.i)
+		if (found == ST_OK && other.cell[0].u.i != old.cell[0].u.i && !other.cell[TARGET_REMOVED].u.i)
 			st = err_set(e, ST_CONFLICT, "another target has the name \"%s\" already", r.t.name);
 		row_free(&other);
 	}
@@ -259,10 +269,36 @@ enum status target_remove(struct store *s, const char *name, struct err *e)
 	return st;
 }
 
+/* A new row, or the one that the name had when it was taken away. */
+static enum status put_alias(struct store *s, const char *alias, struct cell target_id, struct err *e)
+{
+	struct row had;
+	char key[NAME_KEY_MAX];
+	name_key(alias, key);
+	enum status st = row_find(s, SQL_ALIAS_BY_KEY, cell_text(key), &alias_table, &had, e);
+	struct cell cell[ROW_CELLS_MAX] = {
+	    [ALIAS_NAME] = cell_text(alias),
+	    [ALIAS_KEY] = cell_text(key),
+	    [ALIAS_TARGET] = target_id,
+	    [ALIAS_REMOVED] = cell_int(0),
+	};
+	if (st == ST_OK) {
+		st = row_replace(s, &alias_table, &had, cell, e);
+	} else if (st == ST_ABSENT) {
+		int64_t id = 0;
+		st = row_next_id(s, &alias_table, &id, e);
+		cell[0] = cell_int(id);
+		if (st == ST_OK)
+			st = row_add(s, &alias_table, cell, e);
+	}
+	row_free(&had);
+	return st;
+}
+
 enum status target_alias_add(struct store *s, const char *name, const char *alias, struct err *e)
 {
 	struct row old, other;
-	char key[NAME_KEY_MAX], trimmed[NAME_BYTES_MAX];
+	char trimmed[NAME_BYTES_MAX];
 	const char *start = alias;
 	size_t n = strlen(alias);
 	enum status st = name_check(alias, n, NULL, e);
@@ -278,22 +314,43 @@ enum status target_alias_add(struct store *s, const char *name, const char *alia
 	}
 	st = find_target(s, trimmed, &other, e);
 	bool same = st == ST_OK && other.cell[0].u.i == old.cell[0].u.i;
-	if (st == ST_OK && !same)
+	bool given_up = st == ST_OK && other.cell[TARGET_REMOVED].u.i;
+	if (st == ST_OK && !same && !given_up)
 		st = err_set(e, ST_CONFLICT, "another target has the name \"%s\" already", trimmed);
 	row_free(&other);
-	if (st == ST_ABSENT) {
-		struct cell cell[ROW_CELLS_MAX];
-		int64_t id = 0;
-		st = row_next_id(s, &alias_table, &id, e);
-		name_key(trimmed, key);
-		cell[0] = cell_int(id);
-		cell[ALIAS_NAME] = cell_text(trimmed);
-		cell[ALIAS_KEY] = cell_text(key);
-		cell[ALIAS_TARGET] = old.cell[0];
-		cell[ALIAS_REMOVED] = cell_int(0);
-		if (st == ST_OK)
-			st = row_add(s, &alias_table, cell, e);
-	}
+	if (st == ST_ABSENT || (st == ST_OK && given_up))
+		st = put_alias(s, trimmed, old.cell[0], e);
 	row_free(&old);
+	return st;
+}
+
+enum status ephemeris_adopt(struct store *s, int64_t target_id, int version, struct err *e)
+{
+	struct row old, ephemeris = {0};
+	struct row_texts own;
+	struct reading r;
+	int bad_field;
+	bool changed;
+	const struct cell key[] = {cell_int(target_id), cell_int(version)};
+	enum status st = row_find(s, SQL_TARGET_BY_ID, key[0], &target_table, &old, e);
+	if (st == ST_ABSENT || (st == ST_OK && old.cell[TARGET_REMOVED].u.i))
+		st = err_set(e, ST_ABSENT, "no such target");
+	if (st == ST_OK) {
+		st = row_find_by(s, SQL_EPHEMERIS_OF_VERSION, key, 2, &ephemeris_table, &ephemeris, e);
+		if (st == ST_ABSENT)
+			err_set(e, st, "%s has no ephemeris version %d", old.cell[TARGET_FIELDS].u.text,
+				version);
+	}
+	if (st == ST_OK) {
+		/* whether other values of the target can be true may hang on the period */
+		row_texts_clear(&own);
+		row_texts_of_cells(&own, old.cell, HOME_TARGET);
+		row_texts_of_cells(&own, ephemeris.cell, HOME_EPHEMERIS);
+		st = reading_make(&own.texts, &r, &bad_field, e);
+	}
+	if (st == ST_OK)
+		st = replace_target(s, &old, &r, ephemeris.cell[0], &changed, e);
+	row_free(&old);
+	row_free(&ephemeris);
 	return st;
 }

@@ -61,6 +61,15 @@ bool ephemeris_first_after(const struct ephemeris *e, struct tdb t, long *epoch)
 	return true;
 }
 
+bool ephemeris_nearest(const struct ephemeris *e, struct tdb t, long *epoch)
+{
+	if (!ephemeris_first_after(e, t, epoch))
+		return false;
+	if (-ephemeris_mid_after_d(e, *epoch - 1, t) < ephemeris_mid_after_d(e, *epoch, t))
+		(*epoch)--;
+	return true;
+}
+
 double ephemeris_phase(const struct ephemeris *e, struct tdb t)
 {
 	const double x = epoch_at(e, t);

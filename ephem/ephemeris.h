@@ -27,6 +27,8 @@ double ephemeris_mid_after_d(const struct ephemeris *e, long epoch, struct tdb f
 /* Epoch of the first mid-time at or after t (true); false when the ephemeris can't be counted there (period not above 0 or not finite, a count
  * beyond 1e9, a quadratic term that turns the clock back). */
 bool ephemeris_first_after(const struct ephemeris *e, struct tdb t, long *epoch);
+/* Epoch of the mid-time nearest to t; false as above. */
+bool ephemeris_nearest(const struct ephemeris *e, struct tdb t, long *epoch);
 /* Phase of a time in [0, 1), of the transit count. NAN as above. */
 double ephemeris_phase(const struct ephemeris *e, struct tdb t);
 /* From transit to the following occultation [d], exact for any eccentricity (closed form; Winn 2010, arXiv:1001.2010, section 2).

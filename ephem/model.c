@@ -48,5 +48,7 @@ struct target target_empty(void)
 	    .baseline_before_min = NAN,
 	    .baseline_after_min = NAN,
 	    .ecosw_err = NAN,
+	    .t0_dpde_cov_d2 = NAN,
+	    .period_dpde_cov_d2 = NAN,
 	};
 }

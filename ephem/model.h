@@ -40,6 +40,8 @@ struct target {
 	/* a target's own limits; NAN: the run's */
 	double sun_limit_deg, sun_limit_baseline_deg, alt_limit_deg, airmass_limit, moon_limit_deg;
 	double baseline_before_min, baseline_after_min;
+	/* covariances of a quadratic ephemeris; NAN: not published, taken as 0 */
+	double t0_dpde_cov_d2, period_dpde_cov_d2;
 	double ecosw_err; /* error of e cos w, for the time of an occultation; NAN: not published */
 };
 

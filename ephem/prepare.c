@@ -30,6 +30,10 @@ static void prepare_errors(struct prepared *p, const struct target *t)
 	e->c00 = t->t0_err_d * t->t0_err_d;
 	e->c11 = t->period_err_d * t->period_err_d;
 	e->c22 = t->dpde_err_d > 0.0 ? t->dpde_err_d * t->dpde_err_d : 0.0;
+	if (fabs(t->t0_dpde_cov_d2) <= t->t0_err_d * t->dpde_err_d * (1.0 + 1e-9))
+		e->c02 = t->t0_dpde_cov_d2;
+	if (fabs(t->period_dpde_cov_d2) <= t->period_err_d * t->dpde_err_d * (1.0 + 1e-9))
+		e->c12 = t->period_dpde_cov_d2;
 	if (fabs(t->t0_period_cov_d2) <= t->t0_err_d * t->period_err_d * (1.0 + 1e-9))
 		e->c01 = t->t0_period_cov_d2;
 	else

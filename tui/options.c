@@ -25,68 +25,115 @@ struct option_row {
 	int groups;
 	enum option_kind kind;
 	size_t offset;
-	double min, max; /* OPT_NUMBER, OPT_WHOLE */
+	double min, max;  /* OPT_NUMBER, OPT_WHOLE */
+	const char *only; /* stands for its name behind this subcommand alone; NULL: everywhere */
 };
 
 #define AT(member) offsetof(struct options, member)
 
 static const struct option_row rows[] = {
     {"--db", "FILE", "The database (default $XDG_DATA_HOME/wane/wane.db; a missing one reads as empty).",
-     GROUP_COMMON, OPT_TEXT, AT(db), 0, 0},
+     GROUP_COMMON, OPT_TEXT, AT(db), 0, 0, NULL},
     {"--settings", "FILE", "The settings file (default $XDG_CONFIG_HOME/wane/settings.ini).", GROUP_COMMON,
-     OPT_TEXT, AT(settings), 0, 0},
-    {"--site", "NAME", "A stored site; again for more in season.", GROUP_COMMON, OPT_SITES, 0, 0, 0},
+     OPT_TEXT, AT(settings), 0, 0, NULL},
+    {"--site", "NAME", "A stored site; again for more in season.", GROUP_COMMON, OPT_SITES, 0, 0, 0, NULL},
     {"--place", "LAT,LON,HEIGHT",
      "Stands for a stored site: degrees north, degrees east, metres (or with letters: 38.62N,109.36W,2100).",
-     GROUP_COMMON, OPT_PLACES, 0, 0, 0},
-    {"--telescope", "NAME", "A stored telescope.", GROUP_COMMON, OPT_TEXT, AT(telescope), 0, 0},
-    {"--target", "NAME", "Only this target; again for more.", GROUP_COMMON, OPT_TARGETS, 0, 0, 0},
+     GROUP_COMMON, OPT_PLACES, 0, 0, 0, NULL},
+    {"--telescope", "NAME", "A stored telescope.", GROUP_COMMON, OPT_TEXT, AT(telescope), 0, 0, NULL},
+    {"--target", "NAME", "Only this target; again for more.", GROUP_COMMON, OPT_TARGETS, 0, 0, 0, NULL},
     {"--radec", "RA,DEC", "Stands for a stored target: ICRS degrees, or hh:mm:ss.s,+dd:mm:ss.", GROUP_COMMON,
-     OPT_TEXT, AT(radec), 0, 0},
-    {"--format", "F", "How the result is written.", GROUP_COMMON, OPT_TEXT, AT(format), 0, 0},
+     OPT_TEXT, AT(radec), 0, 0, NULL},
+    {"--format", "F", "How the result is written.", GROUP_COMMON, OPT_TEXT, AT(format), 0, 0, NULL},
     {"--plain", NULL, "Text with one record a paragraph: words, no glyphs, nothing told by position.",
-     GROUP_COMMON, OPT_FLAG, AT(plain), 0, 0},
+     GROUP_COMMON, OPT_FLAG, AT(plain), 0, 0, NULL},
     {"--out", "FILE", "Write the result to a file, whole or not at all.", GROUP_COMMON, OPT_TEXT, AT(out), 0,
-     0},
-    {"--force", NULL, "Let --out replace a file that exists.", GROUP_COMMON, OPT_FLAG, AT(force), 0, 0},
+     0, NULL},
+    {"--force", NULL, "Let --out replace a file that exists.", GROUP_COMMON, OPT_FLAG, AT(force), 0, 0, NULL},
     {"--now", "TIME", "Take this as the present: a frozen clock; `TIME+` starts there and runs.",
-     GROUP_COMMON, OPT_TEXT, AT(now), 0, 0},
-    {"--help", NULL, "This text.", GROUP_COMMON, OPT_FLAG, AT(help), 0, 0},
-    {"--version", NULL, "The version.", GROUP_COMMON, OPT_FLAG, AT(version), 0, 0},
+     GROUP_COMMON, OPT_TEXT, AT(now), 0, 0, NULL},
+    {"--help", NULL, "This text.", GROUP_COMMON, OPT_FLAG, AT(help), 0, 0, NULL},
+    {"--version", NULL, "The version.", GROUP_COMMON, OPT_FLAG, AT(version), 0, 0, NULL},
     {"--ut1-utc", "S", "UT1 less UTC in seconds, within 0.9 (0; 1 s turns the sky by 15 arcsec).",
-     GROUP_COMPUTE, OPT_NUMBER, AT(ut1_utc_s), -0.9, 0.9},
-    {"--kind", "K", "transit, occultation or both (transit).", GROUP_COMPUTE, OPT_KINDS, AT(kinds), 0, 0},
+     GROUP_COMPUTE, OPT_NUMBER, AT(ut1_utc_s), -0.9, 0.9, NULL},
+    {"--kind", "K", "transit, occultation or both (transit).", GROUP_COMPUTE | GROUP_MIDTIME, OPT_KINDS,
+     AT(kinds), 0, 0, NULL},
     {"--threads", "N", "At most this many threads (season runs in one).", GROUP_COMPUTE, OPT_WHOLE,
-     AT(threads), 1, 1024},
+     AT(threads), 1, 1024, NULL},
     {"--mask", "FILE",
      "The horizon mask of the site, lines of azimuth, altitude in degrees, in place of the stored one; "
      "`none`: none.",
-     GROUP_COMPUTE | GROUP_SITE, OPT_TEXT, AT(mask), 0, 0},
+     GROUP_COMPUTE | GROUP_SITE, OPT_TEXT, AT(mask), 0, 0, NULL},
     {"--min-chance", "P",
      "List a window when the chance of its ingress or egress reaches P (0.05 in csv and json, 0.5 in text).",
-     GROUP_WINDOWS, OPT_NUMBER, AT(min_chance), 0, 1},
-    {"--all", NULL, "Every event of the nights, with what spoils it.", GROUP_WINDOWS, OPT_FLAG, AT(all), 0,
-     0},
-    {"--at", "TIME", "The instant (default now).", GROUP_SKY, OPT_TEXT, AT(at), 0, 0},
-    {"--from", "SCALE", "The time standard of VALUE.", GROUP_CLOCK, OPT_TEXT, AT(from), 0, 0},
-    {"--to", "SCALE", "The time standard wanted.", GROUP_CLOCK, OPT_TEXT, AT(to), 0, 0},
+     GROUP_WINDOWS, OPT_NUMBER, AT(min_chance), 0, 1, NULL},
+    {"--all", NULL, "Every event of the nights, with what spoils it.", GROUP_WINDOWS, OPT_FLAG, AT(all), 0, 0,
+     NULL},
+    {"--at", "TIME", "The instant (sky: default now; drift: a date, default today + 3 years).",
+     GROUP_SKY | GROUP_DRIFT, OPT_TEXT, AT(at), 0, 0, NULL},
+    {"--from", "SCALE", "The time standard of VALUE.", GROUP_CLOCK, OPT_TEXT, AT(from), 0, 0, NULL},
+    {"--to", "SCALE", "The time standard wanted.", GROUP_CLOCK, OPT_TEXT, AT(to), 0, 0, NULL},
     {"--dry-run", NULL, "Say what would be done and change nothing.", GROUP_IMPORT, OPT_FLAG, AT(dry_run), 0,
-     0},
-    {"--strict", NULL, "One bad row refuses the whole file.", GROUP_IMPORT, OPT_FLAG, AT(strict), 0, 0},
+     0, NULL},
+    {"--strict", NULL, "One bad row refuses the whole file.", GROUP_IMPORT, OPT_FLAG, AT(strict), 0, 0, NULL},
     {"--adopt", NULL, "Make changed ephemerides of known targets the current ones.", GROUP_IMPORT, OPT_FLAG,
-     AT(adopt), 0, 0},
+     AT(adopt), 0, 0, NULL},
     {"--zone", "ZONE", "The site's IANA time zone, as in America/Denver.", GROUP_SITE, OPT_TEXT_OR_EMPTY,
-     AT(zone), 0, 0},
+     AT(zone), 0, 0, NULL},
+    {"--limit", "MIN",
+     "The error beyond which an ephemeris is stale, in minutes (each target's own: wanted less least "
+     "baseline, over pad).",
+     GROUP_DRIFT, OPT_NUMBER, AT(drift_limit_min), 0, 1e6, NULL},
+    {"--precision", "MIN",
+     "Precision that a refreshing mid-time is assumed to have, in minutes (refresh_precision_min of the "
+     "settings; 1).",
+     GROUP_DRIFT, OPT_NUMBER, AT(precision_min), 0.001, 1000, NULL},
+    {"--sort", "COLUMN", "Sort by this column, from the least; -COLUMN: from the greatest; empty cells last.",
+     GROUP_DRIFT, OPT_TEXT, AT(sort), 0, 0, NULL},
+    {"--no-refresh", NULL, "Leave out the search for windows that would refresh.", GROUP_DRIFT, OPT_FLAG,
+     AT(no_refresh), 0, 0, NULL},
+    {"--against", "VERSION",
+     "Of one target: another version of its ephemeris (wane target show lists them) laid against the current "
+     "one.",
+     GROUP_DRIFT, OPT_TEXT, AT(against), 0, 0, NULL},
+    {"--epoch", "N",
+     "Orbits since T0 (N + 0.5: the occultation after transit N); without it, it is counted where that is "
+     "safe.",
+     GROUP_MIDTIME, OPT_TEXT, AT(epoch), 0, 0, NULL},
+    {"--scale", "SCALE", "The time standard of mid-times that do not say theirs.", GROUP_MIDTIME, OPT_TEXT,
+     AT(scale), 0, 0, NULL},
+    {"--source", "TEXT", "Where the mid-time comes from.", GROUP_MIDTIME, OPT_TEXT_OR_EMPTY, AT(source), 0, 0,
+     NULL},
+    {"--jitter", "S", "Seconds added to every error in quadrature; `fit`: estimated from the scatter.",
+     GROUP_REFIT, OPT_TEXT, AT(jitter), 0, 0, NULL},
+    {"--ref-epoch", "N", "The epoch of T0 (0); `best`: the centre of the data.", GROUP_REFIT, OPT_TEXT,
+     AT(ref_epoch), 0, 0, NULL},
+    {"--adopt", "MODEL", "Make `linear`, `quadratic` or `prior` (with --prior) the current ephemeris.",
+     GROUP_REFIT, OPT_TEXT, AT(adopt_fit), 0, 0, "refit"},
+    {"--formal", NULL, "Adopt formal errors, not those scaled by the scatter.", GROUP_REFIT, OPT_FLAG,
+     AT(formal), 0, 0, NULL},
+    {"--prior", NULL, "Also add the mid-times to the current ephemeris as it is published.", GROUP_REFIT,
+     OPT_FLAG, AT(with_prior), 0, 0, NULL},
+    {"--change", "N", "Which change (wane history numbers them); without it, the newest.", GROUP_UNDO,
+     OPT_WHOLE, AT(change), 1, 2147483647, NULL},
 };
-enum { ROW_COUNT = sizeof rows / sizeof rows[0], GIVEN_LIMITS = 32 /* bit of limit 0 in `given` */ };
+enum { ROW_COUNT = sizeof rows / sizeof rows[0], GIVEN_LIMITS = 50 /* bit of limit 0 in `given` */ };
 _Static_assert((int)ROW_COUNT <= (int)GIVEN_LIMITS && (int)GIVEN_LIMITS + LIM_COUNT <= 64, "one bit a row");
 
-static int row_find(const char *name, size_t n)
+/* A row of the subcommand's own goes before one of the same name. */
+static int row_find(const struct options *o, const char *name, size_t n)
 {
-	for (int i = 0; i < ROW_COUNT; i++)
-		if (strlen(rows[i].name) == n && memcmp(rows[i].name, name, n) == 0)
+	const char *command = o->n_words > 0 ? o->word[0] : "";
+	int found = -1;
+	for (int i = 0; i < ROW_COUNT; i++) {
+		if (strlen(rows[i].name) != n || memcmp(rows[i].name, name, n) != 0)
+			continue;
+		if (rows[i].only && strcmp(rows[i].only, command) == 0)
 			return i;
-	return -1;
+		if (!rows[i].only && found < 0)
+			found = i;
+	}
+	return found;
 }
 
 static int limit_find(const char *name, size_t n)
@@ -237,7 +284,7 @@ static enum status take_option(struct options *o, int argc, char *const argv[], 
 {
 	const char *arg = argv[*i], *equals = strchr(arg, '=');
 	size_t n = equals ? (size_t)(equals - arg) : strlen(arg);
-	int row = row_find(arg, n), id = row < 0 ? limit_find(arg, n) : -1;
+	int row = row_find(o, arg, n), id = row < 0 ? limit_find(arg, n) : -1;
 	if (row < 0 && id < 0)
 		return unknown(arg, n, e);
 	bool flag = row >= 0 && rows[row].kind == OPT_FLAG;
@@ -274,7 +321,8 @@ static bool is_option(const char *arg)
 
 enum status options_parse(struct options *o, int argc, char *const argv[], struct err *e)
 {
-	*o = (struct options){.min_chance = NAN, .ut1_utc_s = NAN};
+	*o = (struct options){
+	    .min_chance = NAN, .ut1_utc_s = NAN, .drift_limit_min = NAN, .precision_min = NAN};
 	bool words_only = false;
 	for (int i = 1; i < argc; i++) {
 		enum status s = ST_OK;

@@ -21,6 +21,10 @@ enum option_group {
 	GROUP_CLOCK = 16,
 	GROUP_IMPORT = 32,
 	GROUP_SITE = 64,
+	GROUP_DRIFT = 128,
+	GROUP_MIDTIME = 256,
+	GROUP_REFIT = 512,
+	GROUP_UNDO = 1024,
 };
 
 /* Options of one call, parsed; texts borrow from argv. NULL / NAN / false / 0: not given. */
@@ -35,6 +39,11 @@ struct options {
 	bool plain, force, all, dry_run, strict, adopt, help, version;
 	double min_chance; /* NAN not given */
 	double ut1_utc_s;  /* NAN not given */
+	/* drift, midtime, refit, undo */
+	const char *sort, *against, *epoch, *scale, *source, *jitter, *ref_epoch, *adopt_fit;
+	bool no_refresh, formal, with_prior;
+	double drift_limit_min, precision_min; /* NAN not given */
+	int change;                            /* 0 not given */
 	int kinds;         /* KINDS_*; 0 not given */
 	int threads;       /* 0 not given */
 	bool limit_given[LIM_COUNT];

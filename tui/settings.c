@@ -42,6 +42,20 @@ static enum status put_ut1_utc(struct settings *s, const char *value, struct err
 	return ST_OK;
 }
 
+static enum status put_precision(struct settings *s, const char *value, struct err *e)
+{
+	double v;
+	char got[ERR_QUOTE_MAX];
+	enum status status = number_parse(value, strlen(value), &v, NULL, e);
+	if (status != ST_OK)
+		return status;
+	err_quote(value, strlen(value), got);
+	if (!(v >= 0.001 && v <= 1000.0))
+		return err_set(e, ST_RANGE, "out of range (got \"%s\", expected 0.001 to 1000 min)", got);
+	s->refresh_precision_min = v;
+	return ST_OK;
+}
+
 static enum status put_kinds(struct settings *s, const char *value, struct err *e)
 {
 	return kinds_parse(value, &s->kinds, e);
@@ -88,6 +102,8 @@ static const struct setting_row rows[] = {
     {"run", "ut1_utc_s", "-0.9 to 0.9", "0", "UT1 less UTC in seconds; 1 s turns the sky by 15 arcsec.",
      put_ut1_utc},
     {"run", "kind", "transit, occultation or both", "transit", "Which events are listed.", put_kinds},
+    {"run", "refresh_precision_min", "0.001 to 1000", "1",
+     "Precision in minutes that a mid-time which refreshes an ephemeris is assumed to have.", put_precision},
     {"screen", "glyphs", "auto, unicode, basic or ascii", "auto", "What the pages are drawn with.",
      put_glyphs},
     {"screen", "palette", "normal, red, contrast or none", "normal",
@@ -99,7 +115,8 @@ enum { SECTIONS = sizeof sections / sizeof sections[0] };
 
 void settings_built_in(struct settings *s)
 {
-	*s = (struct settings){.limits = limits_built_in(), .leap = leap_builtin};
+	*s = (struct settings){
+	    .limits = limits_built_in(), .leap = leap_builtin, .refresh_precision_min = 1.0};
 }
 
 /* `2029-01-01 = 38`: TAI - UTC from that UTC date on. */

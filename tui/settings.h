@@ -18,6 +18,7 @@ struct settings {
 	char site[328];   /* default site; "" none */
 	double ut1_utc_s; /* 0 */
 	int kinds;        /* KINDS_*; 0 not given */
+	double refresh_precision_min; /* of a mid-time that would refresh an ephemeris; 1 */
 	enum glyphs glyphs;
 	enum palette palette;
 	struct limits limits;   /* built in, with those of the file laid over */

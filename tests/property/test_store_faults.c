@@ -1,9 +1,10 @@
 /* SPDX-License-Identifier: MIT
  * Every write, sync, truncation and deletion of a file, and every allocation of the database library, fails
- * once in turn, or from then on. An import is then stored whole or not at all, says so, and the same store
- * works again when the fault is over. */
+ * once in turn, or from then on. An import, or its undo, is then stored whole or not at all, says so, and the
+ * same store works again when the fault is over. */
 #include "tests/support/check.h"
 
+#include "db/history.h"
 #include "db/import.h"
 #include "db/targets.h"
 
@@ -180,16 +181,25 @@ static enum status import(struct store *s, const char *table, struct err *e)
 	return import_targets(s, table, strlen(table), &o, &report, NULL, NULL, e);
 }
 
-/* `targets ephemerides changes`, and that nothing is damaged. */
-static void look(struct store *s, char out[64])
+static enum status undo(struct store *s, struct err *e)
 {
+	int64_t undone;
+	return history_undo(s, 0, &change, &undone, e);
+}
+
+/* `targets ephemerides changes digest`, and that nothing is damaged. */
+enum { LOOK = 96 };
+static void look(struct store *s, char out[LOOK])
+{
+	char digest[33];
 	struct store_counts counts;
 	struct err e = {0};
 	int faults = -1;
-	if (store_check(s, NULL, NULL, &faults, &e) != ST_OK || store_count(s, &counts, &e) != ST_OK)
+	if (store_check(s, NULL, NULL, &faults, &e) != ST_OK || store_count(s, &counts, &e) != ST_OK ||
+	    store_digest(s, digest, &e) != ST_OK)
 		check_fail("%s", e.text);
 	assert_int_equal(faults, 0);
-	snprintf(out, 64, "%ld %ld %ld", counts.targets, counts.ephemerides, counts.changes);
+	snprintf(out, LOOK, "%ld %ld %ld %s", counts.targets, counts.ephemerides, counts.changes, digest);
 }
 
 /* One fault at call number `at`; false when the import was over before. */
@@ -197,7 +207,7 @@ static bool one_fault(const char *path, long at)
 {
 	struct store *s;
 	struct err e = {0}, fine = {0};
-	char was[64], is[64];
+	char was[LOOK], is[LOOK];
 	unlink(path);
 	if (store_open(path, STORE_WRITE, &s, &fine) != ST_OK || import(s, before_table, &fine) != ST_OK)
 		check_fail("%s", fine.text);
@@ -211,7 +221,7 @@ static bool one_fault(const char *path, long at)
 		check_fail("call %ld: fails without a word", at);
 	look(s, is);
 	/* told to be stored: it is. Told to have failed: nothing of it is there. */
-	if (strcmp(is, st == ST_OK ? "5 5 2" : was) != 0)
+	if ((st == ST_OK ? strncmp(is, "5 5 2 ", 6) : strcmp(is, was)) != 0)
 		check_fail("call %ld: status %d (%s), but there is %s", at, (int)st, e.text, is);
 	/* a fresh look from the file agrees, and the same store goes on */
 	struct store *other;
@@ -223,7 +233,42 @@ static bool one_fault(const char *path, long at)
 	if (import(s, more_table, &fine) != ST_OK)
 		check_fail("call %ld: the store works no more: %s", at, fine.text);
 	look(s, is);
-	assert_string_equal(is, "5 5 2");
+	assert_memory_equal(is, "5 5 2 ", 6);
+	store_close(s);
+	return reached;
+}
+
+/* The same for an undo: `before` is what it leads to. */
+static bool one_fault_of_undo(const char *path, long at)
+{
+	struct store *s;
+	struct err e = {0}, fine = {0};
+	char before[LOOK], was[LOOK], is[LOOK];
+	unlink(path);
+	if (store_open(path, STORE_WRITE, &s, &fine) != ST_OK || import(s, before_table, &fine) != ST_OK)
+		check_fail("%s", fine.text);
+	look(s, before);
+	if (import(s, more_table, &fine) != ST_OK)
+		check_fail("%s", fine.text);
+	look(s, was);
+	met = false;
+	calls_left = at;
+	enum status st = undo(s, &e);
+	calls_left = -1;
+	bool reached = met;
+	if (st != ST_OK && !*e.text)
+		check_fail("call %ld: fails without a word", at);
+	look(s, is);
+	const char *digest = strrchr(st == ST_OK ? before : was, ' ');
+	if (strcmp(strrchr(is, ' '), digest) != 0 || (st != ST_OK && strcmp(is, was) != 0))
+		check_fail("call %ld: status %d (%s), but there is %s", at, (int)st, e.text, is);
+	if (st != ST_OK && undo(s, &fine) != ST_OK)
+		check_fail("call %ld: the store works no more: %s", at, fine.text);
+	store_close(s);
+	if (store_open(path, STORE_READ, &s, &fine) != ST_OK)
+		check_fail("call %ld: %s", at, fine.text);
+	look(s, is);
+	assert_string_equal(strrchr(is, ' '), strrchr(before, ' '));
 	store_close(s);
 	return reached;
 }
@@ -240,6 +285,12 @@ static void every_fault(const char *what, int code, bool lasting)
 		at++;
 	print_message("%s%s: %ld points\n", what, lasting ? ", for good" : "", at);
 	assert_true(at > 10);
+	if (lasting) { /* once is enough for the same statements */
+		for (at = 0; one_fault_of_undo(path, at);)
+			at++;
+		print_message("%s, for good, undo: %ld points\n", what, at);
+		assert_true(at > 10);
+	}
 	assert_int_equal(unlink(path), 0);
 	assert_int_equal(rmdir(folder), 0);
 }

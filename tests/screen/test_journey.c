@@ -59,6 +59,32 @@ static void test_about(void **state)
 	pty_close(&t);
 }
 
+/* The drift page and back: the night stays as it was; residuals, the chosen date, a resize on the way. */
+static void test_drift(void **state)
+{
+	struct pty t;
+	(void)state;
+	open_demo(&t);
+	pty_screen(&t, ">", "next night, night 23/24 Apr 2026");
+	pty_screen(&t, "3", "Drift of the ephemerides");
+	pty_screen(&t, "", "targets by stale on");
+	pty_screen(&t, "sm", "targets by target");
+	pty_screen(&t, "t2031-01-01\r", "date 2031-01-01");
+	pty_screen(&t, "\r", "No fit: ");
+	pty_screen(&t, "q", "targets by target");
+	pty_screen(&t, "?", "Keys (q, ? or Esc comes back)");
+	pty_screen(&t, "1", "next night, night 23/24 Apr 2026");
+	pty_screen(&t, "3", "Keys (q, ? or Esc comes back)");
+	pty_screen(&t, "q", "date 2031-01-01");
+	pty_screen(&t, "1", "next night, night 23/24 Apr 2026");
+	pty_send(&t, "3");
+	pty_wait(&t, "Drift of");
+	pty_send(&t, "q");
+	expect_exit(&t, 0);
+	pty_expect_restored(&t);
+	pty_close(&t);
+}
+
 static void test_find_sort_filter(void **state)
 {
 	struct pty t;
@@ -391,6 +417,7 @@ static void test_refusals(void **state)
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
+	    cmocka_unit_test(test_drift),
 	    cmocka_unit_test(test_about),
 	    cmocka_unit_test(test_find_sort_filter),
 	    cmocka_unit_test(test_site_switch),

@@ -69,7 +69,9 @@ static void test_names(void **state)
 						       "moon_limit_deg",
 						       "baseline_before_min",
 						       "baseline_after_min",
-						       "ecosw_err"};
+						       "ecosw_err",
+						       "t0_dpde_cov_d2",
+						       "period_dpde_cov_d2"};
 	static const struct {
 		int at;
 		const char *name;

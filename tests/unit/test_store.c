@@ -148,9 +148,11 @@ static void spill(const char *path, const char *data, size_t n)
 /* FNV-1a over every value of every table. */
 static uint64_t digest(struct store *s)
 {
-	static const char *const tables[] = {"store_info", "change_set",   "target",	       "target_old",
-					     "ephemeris",  "target_alias", "target_alias_old", "site",
-					     "site_old",   "setting",	   "setting_old"};
+	static const char *const tables[] = {
+	    "store_info", "change_set",	  "target",	      "target_old",
+	    "ephemeris",  "target_alias", "target_alias_old", "site",
+	    "site_old",	  "midtime",	  "midtime_mark",     "midtime_mark_old",
+	    "setting",	  "setting_old"};
 	uint64_t h = 14695981039346656037u;
 	for (size_t i = 0; i < sizeof tables / sizeof tables[0]; i++) {
 		char text[64];

@@ -1,0 +1,288 @@
+/* SPDX-License-Identifier: MIT
+ * Random edits, undone and done again at random: whatever the order, the digest after an undo is that before
+ * the change, one that is refused changes nothing, and the store stays sound. */
+#include "tests/support/check.h"
+
+#include "db/history.h"
+#include "db/midtimes.h"
+#include "db/sites.h"
+#include "db/targets.h"
+
+#include <stdbool.h>
+#include <stdio.h>
+#include <stdlib.h>
+#include <string.h>
+
+enum { RUNS = 25, EDITS = 60, NAMES = 5 };
+
+static const struct change change = {"2026-04-22T03:00:00Z", "test", "edit"};
+
+static void must(enum status st, const struct err *e)
+{
+	if (st != ST_OK)
+		check_fail("status %d: %s", (int)st, e->text);
+}
+
+static int pick(struct rng *r, int n)
+{
+	return (int)(rng_unit(r) * n);
+}
+
+struct digest {
+	char text[33];
+};
+
+static struct digest digest_of(struct store *s)
+{
+	struct digest d;
+	struct err e = {0};
+	must(store_digest(s, d.text, &e), &e);
+	return d;
+}
+
+static bool same(const struct digest *a, const struct digest *b)
+{
+	return strcmp(a->text, b->text) == 0;
+}
+
+static long changes_in(struct store *s)
+{
+	struct store_counts counts;
+	struct err e = {0};
+	must(store_count(s, &counts, &e), &e);
+	return counts.changes;
+}
+
+/* --- one edit; what can't be done now is left --- */
+
+static enum status put_target(struct store *s, struct rng *r, const char *name, struct err *e)
+{
+	struct field_texts texts;
+	enum put_result result;
+	char t0[32], mag[16];
+	for (int f = 0; f < FIELD_COUNT; f++)
+		texts.text[f] = "";
+	snprintf(t0, sizeof t0, "2459000.%d", pick(r, 4));
+	snprintf(mag, sizeof mag, "%d", 9 + pick(r, 3));
+	texts.text[FIELD_AT_NAME] = name;
+	texts.text[FIELD_AT_RA] = "10";
+	texts.text[FIELD_AT_DEC] = "20";
+	texts.text[field_find("mag")] = mag;
+	if (pick(r, 4) > 0) {
+		texts.text[FIELD_AT_T0] = t0;
+		texts.text[FIELD_AT_SCALE] = "BJD_TDB";
+		texts.text[FIELD_AT_PERIOD] = "3.5";
+	}
+	return target_put(s, &texts, pick(r, 2), &result, e);
+}
+
+static enum status set_target(struct store *s, struct rng *r, const char *name, const char *other,
+			      struct err *e)
+{
+	static const int places[] = {FIELD_AT_NAME, FIELD_AT_PERIOD, FIELD_AT_DURATION};
+	char text[32];
+	const char *value = text;
+	int field = places[pick(r, 3)];
+	snprintf(text, sizeof text, "%d.5", 1 + pick(r, 3));
+	if (field == FIELD_AT_NAME)
+		value = other;
+	return target_set(s, name, &field, &value, 1, e);
+}
+
+static enum status edit_time(struct store *s, struct rng *r, int64_t target, struct err *e)
+{
+	long n, epoch = pick(r, 3);
+	bool added;
+	enum event_kind kind = pick(r, 3) ? KIND_TRANSIT : KIND_OCCULTATION;
+	const struct midtime_row row = {.epoch = epoch,
+					.kind = kind,
+					.mid_text = "as read",
+					.mid = {2459000.0 + (double)epoch, 0.25 * pick(r, 3)},
+					.time_scale = "HJD_UTC",
+					.err_d = 0.001,
+					.source = "",
+					.used = pick(r, 4) > 0};
+	switch (pick(r, 4)) {
+	case 0:
+		return midtime_use(s, target, epoch, kind, pick(r, 2), &n, e);
+	case 1:
+		return midtime_remove(s, target, epoch, kind, &n, e);
+	default:
+		return midtime_add(s, target, &row, &added, e);
+	}
+}
+
+static enum status edit_site(struct store *s, struct rng *r, struct err *e)
+{
+	char name[16];
+	snprintf(name, sizeof name, "Hill %d", pick(r, 2));
+	const struct site site = {
+	    .name = name, .lat_deg = 38, .lon_east_deg = -109, .height_m = 2000 + pick(r, 3), .zone = ""};
+	return pick(r, 3) ? site_put(s, &site, false, e) : site_remove(s, name, e);
+}
+
+static enum status edit(struct store *s, struct rng *r, struct err *e)
+{
+	char name[24], other[24];
+	int number = pick(r, NAMES);
+	snprintf(name, sizeof name, "Tern %d b", number);
+	snprintf(other, sizeof other, "Tern %d b", pick(r, NAMES + 2));
+	switch (pick(r, 9)) {
+	case 0:
+	case 1:
+		return put_target(s, r, name, e);
+	case 2:
+		return set_target(s, r, name, other, e);
+	case 3:
+		return target_remove(s, name, e);
+	case 4:
+		return target_alias_add(s, name, other, e);
+	case 5:
+		return ephemeris_adopt(s, 1 + number, 1 + pick(r, 3), e);
+	case 6:
+	case 7:
+		return edit_time(s, r, 1 + number, e);
+	default:
+		return edit_site(s, r, e);
+	}
+}
+
+/* A change set of 1..4 edits; true when it left a row. An edit that is refused takes the set with it. */
+static bool edit_some(struct store *s, struct rng *r)
+{
+	struct err e = {0};
+	long had = changes_in(s);
+	enum status st = ST_OK;
+	must(store_begin(s, &change, &e), &e);
+	for (int n = 1 + pick(r, 4); st == ST_OK && n > 0; n--)
+		st = edit(s, r, &e);
+	if (st != ST_OK && st != ST_ABSENT && st != ST_CONFLICT)
+		check_fail("an edit: %s", e.text);
+	if (st == ST_OK)
+		must(store_commit(s, &e), &e);
+	else
+		store_rollback(s);
+	return changes_in(s) > had;
+}
+
+/* --- the loops --- */
+
+static void say(void *ctx, const char *line)
+{
+	(void)ctx;
+	print_message("%s\n", line);
+}
+
+static void sound(struct store *s)
+{
+	struct err e = {0};
+	int faults = -1;
+	must(store_check(s, say, NULL, &faults, &e), &e);
+	assert_int_equal(faults, 0);
+}
+
+/* Edits on a stack: the newest can always be undone, an undo can always be undone at once. */
+static void test_stack(void **state)
+{
+	struct rng r = rng_open("undo, a stack");
+	long edits = 0, undos = 0;
+	(void)state;
+	for (int run = 0; run < RUNS; run++) {
+		struct store *s;
+		struct err e = {0};
+		struct digest stack[EDITS + 1];
+		size_t n = 0;
+		must(store_open(NULL, STORE_MEMORY, &s, &e), &e);
+		stack[0] = digest_of(s);
+		for (int i = 0; i < EDITS; i++) {
+			int64_t undone, again;
+			struct digest is;
+			if (n == 0 || pick(&r, 3) > 0) {
+				if (edit_some(s, &r))
+					stack[++n] = digest_of(s);
+				edits++;
+				continue;
+			}
+			must(history_undo(s, 0, &change, &undone, &e), &e);
+			is = digest_of(s);
+			if (!same(&is, &stack[n - 1]))
+				check_fail("run %d, edit %d: undo of %lld leaves another digest", run, i,
+					   (long long)undone);
+			undos++;
+			if (pick(&r, 3) == 0) {
+				must(history_undo(s, changes_in(s), &change, &again, &e), &e);
+				is = digest_of(s);
+				if (!same(&is, &stack[n]))
+					check_fail("run %d, edit %d: undo of an undo leaves another digest",
+						   run, i);
+			} else {
+				n--;
+			}
+		}
+		while (n-- > 0) {
+			int64_t undone;
+			must(history_undo(s, 0, &change, &undone, &e), &e);
+			struct digest is = digest_of(s);
+			if (!same(&is, &stack[n]))
+				check_fail("run %d: on the way back", run);
+		}
+		sound(s);
+		store_close(s);
+	}
+	print_message("%ld edits, %ld undos\n", edits, undos);
+}
+
+/* Any change in any order: done or refused, and an undo that was done is undone by the next. */
+static void test_any(void **state)
+{
+	struct rng r = rng_open("undo, any change");
+	long done = 0, conflicts = 0, absent = 0;
+	(void)state;
+	for (int run = 0; run < RUNS; run++) {
+		struct store *s;
+		struct err e = {0};
+		must(store_open(NULL, STORE_MEMORY, &s, &e), &e);
+		for (int i = 0; i < EDITS; i++) {
+			int64_t undone, id;
+			if (pick(&r, 2) || changes_in(s) == 0) {
+				(void)edit_some(s, &r);
+				continue;
+			}
+			id = 1 + pick(&r, (int)changes_in(s));
+			struct digest before = digest_of(s);
+			long had = changes_in(s);
+			enum status st = history_undo(s, id, &change, &undone, &e);
+			if (st == ST_OK) {
+				done++;
+				assert_int_equal(undone, id);
+				assert_int_equal(changes_in(s), had + 1);
+				must(history_undo(s, had + 1, &change, &undone, &e), &e);
+			} else if (st == ST_CONFLICT || st == ST_ABSENT) {
+				conflicts += st == ST_CONFLICT;
+				absent += st == ST_ABSENT;
+				assert_int_equal(changes_in(s), had);
+			} else {
+				check_fail("run %d, edit %d: status %d: %s", run, i, (int)st, e.text);
+			}
+			struct digest is = digest_of(s);
+			if (!same(&is, &before))
+				check_fail("run %d, edit %d: undo of %lld, status %d: another digest", run, i,
+					   (long long)id, (int)st);
+			struct target_list list;
+			must(targets_load(s, &list, &e), &e);
+			assert_int_equal(list.n_bad, 0);
+			target_list_free(&list);
+		}
+		sound(s);
+		store_close(s);
+	}
+	print_message("%ld undone, %ld refused as changed since, %ld as undone already\n", done, conflicts,
+		      absent);
+	assert_true(done > 50 && conflicts > 50 && absent > 5);
+}
+
+int main(void)
+{
+	const struct CMUnitTest tests[] = {cmocka_unit_test(test_stack), cmocka_unit_test(test_any)};
+	return cmocka_run_group_tests_name("undo", tests, NULL, NULL);
+}
