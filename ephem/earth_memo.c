@@ -6,10 +6,10 @@
 
 #include <math.h>
 
-/* The Earth's month and year need close nodes; the Sun follows the giants, and what the inner planets do to
- * it is below 3 ms of light. */
-#define EARTH_NODE_D 2.0
-#define SUN_NODE_D 64.0
+/* Wide nodes, since dates may scatter over decades. What falls between them: the Earth's month (16 ms of
+ * light) and what the inner planets do to the Sun (3 ms). */
+#define EARTH_NODE_D 8.0
+#define SUN_NODE_D 256.0
 #define FIRST_JD 2305447.5 /* 1600-01-01 */
 #define LAST_JD 2634167.5  /* 2500-01-01 */
 

@@ -1,6 +1,6 @@
 /* SPDX-License-Identifier: MIT
  * Light time to the barycentre for many targets at scattered dates: the Earth's and the Sun's places are taken from a few
- * remembered nodes (cubic between four), where barycentre.h asks the series each time. Geocentric, good to 2 ms. */
+ * remembered nodes (cubic between four), where barycentre.h asks the series each time. Geocentric, good to 0.01 s. */
 #ifndef WANE_EPHEM_EARTH_MEMO_H
 #define WANE_EPHEM_EARTH_MEMO_H
 
@@ -9,7 +9,7 @@
 
 #include <stdint.h>
 
-enum { EARTH_MEMO_CELLS = 1024 };
+enum { EARTH_MEMO_CELLS = 2048 };
 /* Start with all bytes 0; the caller owns it. A value depends on its date only, never on what was asked before. */
 struct earth_memo {
 	int32_t earth_key[EARTH_MEMO_CELLS], sun_key[EARTH_MEMO_CELLS]; /* node number + 1; 0 empty */

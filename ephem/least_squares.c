@@ -132,18 +132,18 @@ static int distinct_epochs(const long epoch[], size_t n)
 }
 
 /* The line through the first and the last of the times: any line near the data would do, what it leaves is
- * fitted. */
-static void set_frame(const struct mid_time t[], bool every_one, size_t n, double jitter_d,
+ * fitted. `some` is any that counts. */
+static void set_frame(const struct mid_time t[], size_t some, bool every_one, size_t n, double jitter_d,
 		      struct ls_frame *f)
 {
-	const struct mid_time *first = NULL, *last = NULL;
+	const struct mid_time *first = &t[some], *last = first;
 	double w_sum = 0.0, wx_sum = 0.0;
 	for (size_t i = 0; i < n; i++) {
 		if (!t[i].used && !every_one)
 			continue;
-		if (!first || t[i].epoch < first->epoch)
+		if (t[i].epoch < first->epoch)
 			first = &t[i];
-		if (!last || t[i].epoch > last->epoch)
+		if (t[i].epoch > last->epoch)
 			last = &t[i];
 	}
 	for (size_t i = 0; i < n; i++) {
@@ -169,12 +169,13 @@ enum status ls_points_of(const struct mid_time t[], size_t n, bool every_one, in
 		return err_set(e, ST_RANGE, "a fit has 2 or 3 terms, not %d", terms);
 	if (!(jitter_d >= 0.0 && jitter_d <= ERROR_MAX_D))
 		return err_set(e, ST_RANGE, "a jitter of %g d; it must be 0 or more", jitter_d);
-	size_t used = 0;
+	size_t used = 0, some = 0;
 	for (size_t i = 0; i < n; i++)
 		if (t[i].used || every_one) {
 			const enum status s = check_time(&t[i], e);
 			if (s)
 				return s;
+			some = i;
 			used++;
 		}
 	if (used < (size_t)terms)
@@ -192,7 +193,7 @@ enum status ls_points_of(const struct mid_time t[], size_t n, bool every_one, in
 		return err_set(e, ST_RANGE, "the times are of %d epoch%s; a %s fit needs %d or more",
 			       distinct, distinct == 1 ? "" : "s", terms == 2 ? "linear" : "quadratic",
 			       terms);
-	set_frame(t, every_one, n, jitter_d, &out->frame);
+	set_frame(t, some, every_one, n, jitter_d, &out->frame);
 	const struct ls_frame *f = &out->frame;
 	for (size_t i = 0, k = 0; i < n; i++) {
 		if (!t[i].used && !every_one)

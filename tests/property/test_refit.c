@@ -121,7 +121,7 @@ static void update_equals_batch(void **state)
 			ok(refit(v.t, start, terms, REF_EPOCH_BEST, 0.0, &best[0], &e), &e);
 			ok(refit(v.t, n, terms, REF_EPOCH_BEST, 0.0, &best[1], &e), &e);
 			share +=
-			    1e-12 * (first.cov[0][0] / best[0].cov[0][0] + all.cov[0][0] / best[1].cov[0][0]);
+			    5e-12 * (first.cov[0][0] / best[0].cov[0][0] + all.cov[0][0] / best[1].cov[0][0]);
 		}
 		same_predictions(&batch, &grown, &v, share);
 		same_predictions(&batch, &reverse, &v, share);
@@ -175,7 +175,7 @@ static void order_of_times_is_nothing(void **state)
 		ok(refit_jitter(v.t, v.n, 3, &jitter_b, &e), &e);
 		const struct ephemeris x = fit_ephemeris(&a, 1.0), y = fit_ephemeris(&b, 1.0);
 		same_predictions(&x, &y, &v, 1e-8);
-		check_close("jitter", jitter_b, jitter_a, 1e-4 * jitter_a + 1e-9);
+		check_close("jitter", jitter_b, jitter_a, 1e-4 * jitter_a + 1e-8);
 	}
 }
 
@@ -269,9 +269,11 @@ static void jitter_comes_back(void **state)
 		}
 		print_message("jitter %g d: mean of log(found/planted) %.4f, none found %d of %d\n",
 			      planted[k], log_ratio, none, LOOPS);
-		/* maximum likelihood is low by about (terms + 1/2) / 2n where the errors are well below it */
-		if (k > 1)
-			check_close("mean of log(found/planted)", log_ratio, -3.5 / (2.0 * TIMES_MAX),
+		/* mean of log sqrt(chi2 / n), chi2 of n - 3 degrees of freedom, where the errors do not
+		 * matter */
+		if (k == 3)
+			check_close("mean of log(found/planted)", log_ratio,
+				    0.5 * (log((TIMES_MAX - 3.0) / TIMES_MAX) - 1.0 / (TIMES_MAX - 3.0)),
 				    5.0 / sqrt(2.0 * TIMES_MAX * LOOPS));
 		if (k == 0)
 			assert_true(none > LOOPS / 3); /* half of them in the limit */

@@ -41,6 +41,7 @@ static void every_key_is_read(void **state)
 	struct err e;
 	write_file(
 	    "[run]\nsite = \"Tern Hill\"\nut1_utc_s = -0.25\nkind = occultation\n"
+	    "refresh_precision_min = 0.5\n"
 	    "[limits]\nsun_limit_deg = -15\nsun_limit_baseline_deg = -9\nalt_limit_deg = 25\nmoon_limit_deg "
 	    "= 0\n"
 	    "airmass_limit = 2.5\nbaseline_before_min = auto\nbaseline_after_min = 45\nmin_baseline_min = "
@@ -51,6 +52,7 @@ static void every_key_is_read(void **state)
 	assert_true(s.found);
 	assert_string_equal(s.site, "Tern Hill");
 	check_close("ut1_utc_s", s.ut1_utc_s, -0.25, 0.0);
+	check_close("refresh_precision_min", s.refresh_precision_min, 0.5, 0.0);
 	assert_int_equal(s.kinds, KINDS_OCCULTATION);
 	assert_int_equal(s.glyphs, GLYPHS_ASCII);
 	assert_int_equal(s.palette, PALETTE_RED);

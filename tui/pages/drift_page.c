@@ -266,7 +266,7 @@ enum status drift_page_load(struct drift_page *p, struct run *run, struct err *e
 bool drift_page_change(struct drift_page *p, struct run *run)
 {
 	struct err e;
-	char said[160] = "";
+	char said[MARKED_BYTES] = "";
 	enum status s = ST_OK;
 	if (p->wanted_change == CHANGE_COUNT)
 		s = residual_view_count(&p->residuals, run, said, &e);

@@ -1,13 +1,11 @@
 /* SPDX-License-Identifier: MIT */
 #include "tui/pages/residual_view.h"
 
-#include "db/history.h"
 #include "ephem/number_text.h"
 #include "ephem/units.h"
 
 #include <math.h>
 #include <stdio.h>
-#include <stdlib.h>
 #include <string.h>
 
 enum { TEXT_ROWS_MOST = 12, BAR_DOTS = 64 };
@@ -227,92 +225,19 @@ bool residual_view_turn(struct residual_view *v)
 
 /* --- changing --- */
 
-/* The run's own store where that is the only one (in memory), else the file, opened for writing as long as it
- * takes. */
-static enum status open_to_write(struct run *run, struct store **out, struct err *e)
-{
-	*out = run->store;
-	if (!run->db_path[0])
-		return run->store ? ST_OK : err_set(e, ST_ABSENT, "nothing is stored");
-	enum status s = store_open(run->db_path, STORE_WRITE, out, e);
-	if (s == ST_OK && store_read_only(*out)) {
-		store_close(*out);
-		return err_set(e, ST_STORE, "the database can't be written");
-	}
-	return s;
-}
-
-static void close_written(struct run *run, struct store *s)
-{
-	if (s != run->store)
-		store_close(s);
-}
-
-enum status residual_view_count(struct residual_view *v, struct run *run, char said[static 160],
+enum status residual_view_count(struct residual_view *v, struct run *run, char said[static MARKED_BYTES],
 				struct err *e)
 {
-	struct store *store;
-	char utc[UTC_TEXT_MAX];
 	if (!v->shown)
 		return err_set(e, ST_ABSENT, "no mid-time is chosen");
 	const struct midtime_row *row = &v->fits.list.row[v->chosen];
-	bool use = !row->used;
-	long n = 0;
-	utc_text(&run->leap, wall_now(&run->wall), 0, utc);
-	const struct change change = {
-	    .utc = utc, .who = run->env->user, .verb = use ? "midtime include" : "midtime exclude"};
-	enum status s = open_to_write(run, &store, e);
-	if (s != ST_OK)
-		return s;
-	s = store_begin(store, &change, e);
-	if (s == ST_OK) {
-		s = midtime_use(store, v->prepared->target->id, row->epoch, row->kind, use, &n, e);
-		if (s == ST_OK)
-			s = store_commit(store, e);
-		if (s != ST_OK)
-			store_rollback(store);
-	}
-	close_written(run, store);
-	if (s == ST_OK)
-		snprintf(said, 160, "%ld mid-time%s of epoch %ld %s; u takes it back.", n, n == 1 ? "" : "s",
-			 row->epoch, use ? "included" : "excluded");
-	return s;
+	return midtime_mark(run, v->prepared->target->id, row->epoch, row->kind, !row->used, said, e);
 }
 
-/* The newest change of the target that is no undo and holds; 0 none. */
-static int64_t newest_change(const struct change_row *row, size_t n)
+enum status residual_view_undo(struct residual_view *v, struct run *run, char said[static MARKED_BYTES],
+			       struct err *e)
 {
-	for (size_t i = 0; i < n; i++)
-		if (!row[i].undone && strcmp(row[i].verb, "undo") != 0)
-			return row[i].id;
-	return 0;
-}
-
-enum status residual_view_undo(struct residual_view *v, struct run *run, char said[static 160], struct err *e)
-{
-	struct store *store;
-	struct change_row *row = NULL;
-	char utc[UTC_TEXT_MAX];
-	size_t n = 0;
-	int64_t undone = 0;
-	utc_text(&run->leap, wall_now(&run->wall), 0, utc);
-	const struct change change = {.utc = utc, .who = run->env->user, .verb = "undo"};
-	enum status s = open_to_write(run, &store, e);
-	if (s != ST_OK)
-		return s;
-	s = history_list(store, v->prepared->target->id, &row, &n, e);
-	int64_t id = s == ST_OK ? newest_change(row, n) : 0;
-	if (s == ST_OK)
-		s = id ? history_undo(store, id, &change, &undone, e)
-		       : err_set(e, ST_ABSENT, "there is no change of this target to take back");
-	if (s == ST_OK)
-		for (size_t i = 0; i < n; i++)
-			if (row[i].id == undone)
-				snprintf(said, 160, "Taken back: change %lld, %.40s (%.60s).",
-					 (long long)undone, row[i].verb, row[i].what);
-	free(row);
-	close_written(run, store);
-	return s;
+	return midtime_mark_undo(run, v->prepared->target->id, said, e);
 }
 
 /* --- drawing --- */

@@ -5,6 +5,7 @@
 #define WANE_TUI_PAGES_RESIDUAL_VIEW_H
 
 #include "tui/fit_view.h"
+#include "tui/midtime_mark.h"
 #include "tui/parts/plot.h"
 #include "tui/parts/text_view.h"
 
@@ -33,11 +34,11 @@ void residual_view_choose(struct residual_view *v, long to);
 /* Lays against the other fit; false where there is no quadratic one. */
 bool residual_view_turn(struct residual_view *v);
 /* Stores whether the times of the chosen epoch and kind count; *said tells what was done. */
-MUST_USE enum status residual_view_count(struct residual_view *v, struct run *run, char said[static 160],
-					 struct err *e);
+MUST_USE enum status residual_view_count(struct residual_view *v, struct run *run,
+					 char said[static MARKED_BYTES], struct err *e);
 /* Takes back the newest change of the target. */
-MUST_USE enum status residual_view_undo(struct residual_view *v, struct run *run, char said[static 160],
-					struct err *e);
+MUST_USE enum status residual_view_undo(struct residual_view *v, struct run *run,
+					char said[static MARKED_BYTES], struct err *e);
 void residual_view_draw(const struct residual_view *v, struct grid *g);
 
 #endif
