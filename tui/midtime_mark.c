@@ -7,6 +7,9 @@
 #include <stdlib.h>
 #include <string.h>
 
+/* Verbs of the change sets. */
+static const char *const marks[] = {"midtime exclude", "midtime include"};
+
 /* The run's own store where that is the only one (in memory), else the file. */
 static enum status open_to_write(struct run *run, struct store **out, struct err *e)
 {
@@ -39,7 +42,7 @@ enum status midtime_mark(struct run *run, int64_t target_id, long epoch, enum ev
 	struct store *store;
 	char utc[UTC_TEXT_MAX];
 	long n = 0;
-	const struct change change = change_of(run, use ? "midtime include" : "midtime exclude", utc);
+	const struct change change = change_of(run, marks[use], utc);
 	enum status s = open_to_write(run, &store, e);
 	if (s != ST_OK)
 		return s;
@@ -58,11 +61,12 @@ enum status midtime_mark(struct run *run, int64_t target_id, long epoch, enum ev
 	return s;
 }
 
-/* The newest change of the target that is no undo and holds; NULL none. */
-static const struct change_row *newest_change(const struct change_row *row, size_t n)
+/* The newest mark of the target that holds; NULL none. */
+static const struct change_row *newest_mark(const struct change_row *row, size_t n)
 {
 	for (size_t i = 0; i < n; i++)
-		if (!row[i].undone && strcmp(row[i].verb, "undo") != 0)
+		if (!row[i].undone &&
+		    (strcmp(row[i].verb, marks[0]) == 0 || strcmp(row[i].verb, marks[1]) == 0))
 			return &row[i];
 	return NULL;
 }
@@ -80,10 +84,13 @@ enum status midtime_mark_undo(struct run *run, int64_t target_id, char said[stat
 	if (s != ST_OK)
 		return s;
 	s = history_list(store, target_id, &row, &n, e);
-	const struct change_row *newest = s == ST_OK ? newest_change(row, n) : NULL;
+	const struct change_row *newest = s == ST_OK ? newest_mark(row, n) : NULL;
 	if (s == ST_OK)
-		s = newest ? history_undo(store, newest->id, &change, &undone, e)
-			   : err_set(e, ST_ABSENT, "there is no change of this target to take back");
+		s = newest
+			? history_undo(store, newest->id, &change, &undone, e)
+			: err_set(
+			      e, ST_ABSENT,
+			      "no mid-time of this target was excluded or included that could be taken back");
 	if (s == ST_OK)
 		snprintf(said, MARKED_BYTES, "Taken back: change %lld, %.40s (%.60s).", (long long)undone,
 			 newest->verb, newest->what);

@@ -15,7 +15,7 @@ enum { MARKED_BYTES = 160 };
  * time; ST_STORE: the file can't be written. */
 MUST_USE enum status midtime_mark(struct run *run, int64_t target_id, long epoch, enum event_kind kind,
 				  bool use, char said[static MARKED_BYTES], struct err *e);
-/* Takes back the newest change of the target that is no undo and holds. ST_ABSENT: none; ST_CONFLICT as
+/* Takes back the newest such change of the target that holds, whoever made it. ST_ABSENT: none; ST_CONFLICT as
  * history_undo. */
 MUST_USE enum status midtime_mark_undo(struct run *run, int64_t target_id, char said[static MARKED_BYTES],
 				       struct err *e);

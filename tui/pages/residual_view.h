@@ -36,7 +36,7 @@ bool residual_view_turn(struct residual_view *v);
 /* Stores whether the times of the chosen epoch and kind count; *said tells what was done. */
 MUST_USE enum status residual_view_count(struct residual_view *v, struct run *run,
 					 char said[static MARKED_BYTES], struct err *e);
-/* Takes back the newest change of the target. */
+/* Takes back the newest of these changes of the target. */
 MUST_USE enum status residual_view_undo(struct residual_view *v, struct run *run,
 					char said[static MARKED_BYTES], struct err *e);
 void residual_view_draw(const struct residual_view *v, struct grid *g);

@@ -55,7 +55,7 @@ static const struct key residuals[] = {
     {'m', "m", ACT_MODEL, "model", "Lay the mid-times against the other fit: linear or quadratic."},
     {'x', "x", ACT_COUNT_IN_FIT, "exclude or include",
      "Take the mid-times of the chosen epoch out of the fit, or in again; stored at once as one change."},
-    {'u', "u", ACT_UNDO, "undo", "Take back the newest change of this target; the undo is a change, too."},
+    {'u', "u", ACT_UNDO, "undo", "Take back the newest exclusion or inclusion of this target; that is a change, too."},
     {'R', "R", ACT_RED, "red", "Red on black, and back."},
     {PRESS_PAGE_DOWN, "PgDn", ACT_PAGE_DOWN, NULL, "Go ten mid-times on."},
     {PRESS_PAGE_UP, "PgUp", ACT_PAGE_UP, NULL, "Go ten mid-times back."},
