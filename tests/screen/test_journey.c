@@ -1,5 +1,7 @@
 /* SPDX-License-Identifier: MIT
  * Journeys through the program on a pseudo-terminal: every way in, about and out. */
+#include "db/midtimes.h"
+#include "db/targets.h"
 #include "tests/support/check.h"
 #include "tests/support/pty.h"
 
@@ -53,6 +55,32 @@ static void test_about(void **state)
 	pty_screen(&t, "R", "q quit");
 	pty_send(&t, "x");
 	pty_wait(&t, "x does nothing here; ? shows the keys.");
+	pty_send(&t, "q");
+	expect_exit(&t, 0);
+	pty_expect_restored(&t);
+	pty_close(&t);
+}
+
+/* The drift page and back: the night stays as it was; residuals, the chosen date, a resize on the way. */
+static void test_drift(void **state)
+{
+	struct pty t;
+	(void)state;
+	open_demo(&t);
+	pty_screen(&t, ">", "next night, night 23/24 Apr 2026");
+	pty_screen(&t, "3", "Drift of the ephemerides");
+	pty_screen(&t, "", "targets by stale on");
+	pty_screen(&t, "sm", "targets by target");
+	pty_screen(&t, "t2031-01-01\r", "date 2031-01-01");
+	pty_screen(&t, "\r", "No fit: ");
+	pty_screen(&t, "q", "targets by target");
+	pty_screen(&t, "?", "Keys (q, ? or Esc comes back)");
+	pty_screen(&t, "1", "next night, night 23/24 Apr 2026");
+	pty_screen(&t, "3", "Keys (q, ? or Esc comes back)");
+	pty_screen(&t, "q", "date 2031-01-01");
+	pty_screen(&t, "1", "next night, night 23/24 Apr 2026");
+	pty_send(&t, "3");
+	pty_wait(&t, "Drift of");
 	pty_send(&t, "q");
 	expect_exit(&t, 0);
 	pty_expect_restored(&t);
@@ -183,6 +211,62 @@ static void test_changed_from_outside(void **state)
 	pty_send(&t, "");
 	write_target("Tern 16 b");
 	pty_screen(&t, "", "1/1 window");
+	pty_send(&t, "q");
+	expect_exit(&t, 0);
+	pty_expect_restored(&t);
+	pty_close(&t);
+	close_database();
+}
+
+static void store_times(void)
+{
+	const struct change change = {.utc = "2026-04-22T18:00:00Z", .who = "tester", .verb = "midtime add"};
+	struct target_list list = {.n = 0};
+	struct store *s = NULL;
+	struct err e = {.text = ""};
+	if (store_open(database, STORE_WRITE, &s, &e) != ST_OK || targets_load(s, &list, &e) != ST_OK ||
+	    store_begin(s, &change, &e) != ST_OK)
+		check_fail("%s", e.text);
+	for (long epoch = -400; epoch < 0; epoch += 50) {
+		char text[40];
+		bool added;
+		double days = 0.8013 + 3.412877 * (double)epoch + (epoch % 100 ? 2e-4 : -2e-4);
+		snprintf(text, sizeof text, "%.6f", 2461153.0 + days);
+		const struct midtime_row row = {.epoch = epoch,
+						.kind = KIND_TRANSIT,
+						.mid_text = text,
+						.mid = jd2_normal(2461153.0, days),
+						.time_scale = "BJD_TDB",
+						.err_d = 3e-4,
+						.source = "invented",
+						.used = true};
+		if (midtime_add(s, list.t[0].id, &row, &added, &e) != ST_OK)
+			check_fail("%s", e.text);
+	}
+	if (store_commit(s, &e) != ST_OK)
+		check_fail("%s", e.text);
+	target_list_free(&list);
+	store_close(s);
+}
+
+/* A mid-time is taken out of the fit and comes back, in a database that the interface has open for reading.
+ */
+static void test_residuals(void **state)
+{
+	struct pty t;
+	(void)state;
+	open_database();
+	store_times();
+	open_on_database(&t);
+	pty_screen(&t, "3", "1/1 target by stale on");
+	pty_screen(&t, "\r", "Linear fit to 8 of 8 mid-times");
+	pty_screen(&t, "j", "transit of epoch -350");
+	pty_screen(&t, "x", "Linear fit to 7 of 8 mid-times");
+	pty_screen(&t, "m", "Quadratic fit to 7 of 8 mid-times");
+	pty_screen(&t, "m", "EXCLUDED");
+	pty_screen(&t, "u", "Linear fit to 8 of 8 mid-times");
+	pty_screen(&t, "u", "transit of epoch -350"); /* nothing more to take back */
+	pty_screen(&t, "q", "1/1 target by stale on");
 	pty_send(&t, "q");
 	expect_exit(&t, 0);
 	pty_expect_restored(&t);
@@ -391,6 +475,8 @@ static void test_refusals(void **state)
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
+	    cmocka_unit_test(test_drift),
+	    cmocka_unit_test(test_residuals),
 	    cmocka_unit_test(test_about),
 	    cmocka_unit_test(test_find_sort_filter),
 	    cmocka_unit_test(test_site_switch),

@@ -96,7 +96,7 @@ static void test_keys_to_screens(void **state)
 	    {"x", "x does nothing here; ? shows the keys.", "q quit"},
 	    {"xj", "q quit", "does nothing"},
 	    {"[", "[ does nothing here", NULL},
-	    {"1", "1 does nothing here", NULL},
+	    {"2", "2 does nothing here", NULL},
 	    /* find */
 	    {"/18\r", "2 of 2 with `18`; n next, N before", NULL},
 	    {"/18\r", "▸ now   Tern 18 c", NULL},

@@ -203,7 +203,7 @@ static void test_help(void **state)
 			check_fail("not in the help: %s", row_columns[c].heading);
 	}
 	/* and every picture, alone or as the second of a pair */
-	for (int glyph = GLYPH_DAY; glyph < GLYPH_COUNT; glyph++) {
+	for (int glyph = GLYPH_DAY; glyph <= GLYPH_MASK; glyph++) {
 		char alone[32], second[32];
 		snprintf(alone, sizeof alone, "\n   %s ", glyph_text((enum glyph)glyph, TIER_UNICODE));
 		snprintf(second, sizeof second, " %s   ", glyph_text((enum glyph)glyph, TIER_UNICODE));

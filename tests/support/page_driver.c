@@ -67,6 +67,9 @@ void driver_key(struct page_driver *d, uint32_t code)
 	case WANT_RED:
 		d->reds++;
 		break;
+	case WANT_NIGHT_PAGE:
+	case WANT_DRIFT_PAGE:
+	case WANT_CHANGE: /* the loop's affair */
 	case WANT_NOTHING:
 		break;
 	}

@@ -332,6 +332,10 @@ static enum want common_action(struct night_page *p, enum action action, bool *t
 		return WANT_SUSPEND;
 	case ACT_RED:
 		return WANT_RED;
+	case ACT_NIGHT_PAGE:
+		return WANT_NIGHT_PAGE;
+	case ACT_DRIFT_PAGE:
+		return WANT_DRIFT_PAGE;
 	case ACT_QUIT:
 	case ACT_LEAVE:
 		if (reading)

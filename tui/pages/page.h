@@ -14,6 +14,9 @@ enum want {
 	WANT_REPAINT,
 	WANT_SUSPEND,
 	WANT_RED,
+	WANT_NIGHT_PAGE,
+	WANT_DRIFT_PAGE,
+	WANT_CHANGE, /* call change: the state says what */
 	WANT_QUIT
 };
 
@@ -35,8 +38,15 @@ struct page {
 	/* A message until the next key. */
 	void (*say)(void *state, enum role role, const char *text);
 	void (*draw)(const void *state, struct grid *g);
+	/* Changes what is stored as the state wants and says what was done; true: all lists are to be read
+	 * again. NULL: never wanted. */
+	bool (*change)(void *state, struct run *run);
+	/* Whether slow work waits, and one piece of it, done while no key is pressed; NULL: never. */
+	bool (*work_waits)(const void *state);
+	void (*work)(void *state, struct run *run);
 };
 
 extern const struct page page_night; /* the home page */
+extern const struct page page_drift;
 
 #endif

@@ -10,10 +10,17 @@
 
 #define FROZEN_CLOCK_WAIT_S 3600.0
 
+#define QUIET_S 0.06 /* without a key before a piece of slow work begins */
+
+enum { PAGE_NIGHT, PAGE_DRIFT, PAGES };
+static const struct page *const pages[PAGES] = {&page_night, &page_drift};
+
 struct loop {
 	struct run *run;
 	const struct page *page; /* the one on the screen */
 	void *state;		 /* its own */
+	void *states[PAGES];	 /* NULL: not opened yet */
+	int32_t evening_mjd;	 /* to begin with */
 	struct grid grid;
 	bool over, whole;
 	long data_version; /* of the store, when it was read */
@@ -37,21 +44,61 @@ static long data_version(const struct run *r)
 	return r->store && store_data_version(r->store, &version, NULL) == ST_OK ? version : 0;
 }
 
-/* Another program changed the store: everything is read again. */
-static void follow_store(struct loop *l)
+/* What pages borrow is about to be made anew. */
+static void drop_all(struct loop *l)
+{
+	for (int i = 0; i < PAGES; i++)
+		if (l->states[i])
+			pages[i]->drop(l->states[i]);
+}
+
+/* All lists are read again; said: what the user is told. */
+static void read_again(struct loop *l, const char *said)
 {
 	struct err e;
-	long version = data_version(l->run);
-	if (version == l->data_version)
-		return;
-	l->data_version = version;
-	l->page->drop(l->state);
+	l->data_version = data_version(l->run);
+	drop_all(l);
 	if (run_reload(l->run, &e) != ST_OK) {
 		l->data_version = -1; /* tried again with the next tick */
 		say(l, ROLE_BAD, e.text);
 		return;
 	}
-	say(l, ROLE_TEXT, "Another program changed what is stored; it was read again.");
+	if (said)
+		say(l, ROLE_TEXT, said);
+	reload(l);
+}
+
+/* Another program changed the store: everything is read again. */
+static void follow_store(struct loop *l)
+{
+	if (data_version(l->run) != l->data_version)
+		read_again(l, "Another program changed what is stored; it was read again.");
+}
+
+/* A page is opened when it is shown first, and loads what it shows each time: the site may be another one. */
+static bool show_page(struct loop *l, int which)
+{
+	if (!l->states[which]) {
+		l->states[which] = malloc(pages[which]->bytes);
+		if (!l->states[which]) {
+			say(l, ROLE_BAD, "no memory for the page");
+			return false;
+		}
+		pages[which]->open(l->states[which], l->run);
+		pages[which]->go_to(l->states[which], l->evening_mjd);
+	}
+	l->page = pages[which];
+	l->state = l->states[which];
+	l->page->tick(l->state, wall_now(&l->run->wall));
+	return true;
+}
+
+static void turn_to_page(struct loop *l, int which)
+{
+	if (l->page == pages[which] || !show_page(l, which))
+		return;
+	l->page->drop(l->state);
+	l->page->size(l->state, l->grid.rows, l->grid.cols, l->grid.tier);
 	reload(l);
 }
 
@@ -97,6 +144,16 @@ static void serve(struct loop *l, enum want want)
 	case WANT_RED:
 		change_palette(l);
 		break;
+	case WANT_NIGHT_PAGE:
+		turn_to_page(l, PAGE_NIGHT);
+		break;
+	case WANT_DRIFT_PAGE:
+		turn_to_page(l, PAGE_DRIFT);
+		break;
+	case WANT_CHANGE:
+		if (l->page->change(l->state, l->run))
+			read_again(l, NULL);
+		break;
 	case WANT_QUIT:
 		l->over = true;
 		break;
@@ -105,16 +162,20 @@ static void serve(struct loop *l, enum want want)
 	}
 }
 
-/* All keys that wait, before anything is drawn: a slow line then drops frames and not keys. */
-static void drain_keys(struct loop *l)
+/* All keys that wait, before anything is drawn: a slow line then drops frames and not keys. False: there was
+ * none. */
+static bool drain_keys(struct loop *l)
 {
 	uint32_t code;
+	bool any = false;
 	while (!l->over && term_key(&code)) {
+		any = true;
 		if (code == PRESS_RESIZE)
 			resize(l);
 		else
 			serve(l, l->page->key(l->state, code));
 	}
+	return any;
 }
 
 static double to_next_tick_s(const struct run *r, struct utc now)
@@ -132,7 +193,9 @@ static void turn(struct loop *l)
 	l->page->draw(l->state, &l->grid);
 	term_show(&l->grid, l->whole);
 	l->whole = false;
-	switch (term_wait(to_next_tick_s(l->run, now))) {
+	bool works = l->page->work_waits && l->page->work_waits(l->state);
+	double tick_s = to_next_tick_s(l->run, now);
+	switch (term_wait(works ? fmin(tick_s, QUIET_S) : tick_s)) {
 	case TERM_ENDED:
 	case TERM_LOST:
 		l->over = true;
@@ -143,30 +206,40 @@ static void turn(struct loop *l)
 	case TERM_KEYS:
 		break;
 	}
-	drain_keys(l);
+	if (!drain_keys(l) && works && !l->over)
+		l->page->work(l->state, l->run);
 }
 
-static enum status start(struct loop *l, int32_t evening_mjd, struct err *e)
+static enum status start(struct loop *l, struct err *e)
 {
 	l->data_version = data_version(l->run);
-	l->page->open(l->state, l->run);
-	l->page->go_to(l->state, evening_mjd);
-	l->page->tick(l->state, wall_now(&l->run->wall));
+	l->states[PAGE_NIGHT] = malloc(page_night.bytes);
+	if (!l->states[PAGE_NIGHT])
+		return err_set(e, ST_MEMORY, "no memory for the page");
+	l->page->open(l->states[PAGE_NIGHT], l->run);
+	l->page->go_to(l->states[PAGE_NIGHT], l->evening_mjd);
+	if (!show_page(l, PAGE_NIGHT))
+		return err_set(e, ST_MEMORY, "no memory for the page");
 	return l->page->load(l->state, l->run, e);
+}
+
+static void close_pages(struct loop *l)
+{
+	for (int i = 0; i < PAGES; i++)
+		if (l->states[i]) {
+			pages[i]->close(l->states[i]);
+			free(l->states[i]);
+		}
 }
 
 int page_run(struct run *r, int32_t evening_mjd, struct err *e)
 {
-	struct loop l = {.run = r, .page = &page_night, .state = malloc(page_night.bytes)};
+	struct loop l = {.run = r, .page = &page_night, .evening_mjd = evening_mjd};
 	const struct term_options look = {.utf8 = r->env->utf8,
 					  .no_color = r->env->no_color,
 					  .glyphs = r->settings.glyphs,
 					  .palette = r->settings.palette};
-	if (!l.state) {
-		err_set(e, ST_MEMORY, "no memory for the page");
-		return 1;
-	}
-	enum status s = start(&l, evening_mjd, e);
+	enum status s = start(&l, e);
 	if (s == ST_OK)
 		s = term_open(&look, e);
 	if (s == ST_OK) {
@@ -177,7 +250,6 @@ int page_run(struct run *r, int32_t evening_mjd, struct err *e)
 		term_close();
 	}
 	grid_close(&l.grid);
-	l.page->close(l.state);
-	free(l.state);
+	close_pages(&l);
 	return s == ST_OK ? 0 : 1;
 }

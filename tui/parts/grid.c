@@ -26,7 +26,10 @@ static const char *const glyphs[GLYPH_COUNT][TIER_COUNT] = {
     [GLYPH_LOST] = {"!", "!", "!"},	  [GLYPH_LOST_MID] = {"╳", "X", "X"},
     [GLYPH_EARLIER] = {"«", "«", "<"},	  [GLYPH_LATER] = {"»", "»", ">"},
     [GLYPH_NOW] = {"¦", "¦", "|"},	  [GLYPH_LIMIT] = {"╌", "-", "-"},
-    [GLYPH_MASK] = {"^", "^", "^"},
+    [GLYPH_MASK] = {"^", "^", "^"},	  [GLYPH_CHOSEN] = {"┊", ":", ":"},
+    [GLYPH_AFTER] = {"∙", "·", "+"},	  [GLYPH_POINT] = {"●", "*", "*"},
+    [GLYPH_POINT_OUT] = {"○", "o", "o"},  [GLYPH_POINT_CHOSEN] = {"◆", "#", "#"},
+    [GLYPH_ERROR_BAR] = {"│", "|", "|"},  [GLYPH_ZERO] = {"╌", "-", "-"},
 };
 
 const char *glyph_text(enum glyph glyph, enum tier tier)

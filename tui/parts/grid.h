@@ -67,6 +67,14 @@ enum glyph {
 	/* in the picture of altitudes */
 	GLYPH_LIMIT,
 	GLYPH_MASK,
+	/* in plots of errors and residuals */
+	GLYPH_CHOSEN,	    /* the chosen date */
+	GLYPH_AFTER,	    /* what a refresh leaves of an error */
+	GLYPH_POINT,	    /* a measured time */
+	GLYPH_POINT_OUT,    /* one that does not count in the fit */
+	GLYPH_POINT_CHOSEN, /* the selected one */
+	GLYPH_ERROR_BAR,
+	GLYPH_ZERO, /* what the fit says */
 	GLYPH_COUNT
 };
 /* Text of a glyph in a tier, UTF-8, one column wide (the degree sign of ASCII is `d`). */

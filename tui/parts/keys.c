@@ -32,6 +32,9 @@ const struct key keys[] = {
      "Show only windows of which a sentence is true, such as `done > 50 & alt > 40`, or whose name or tags "
      "hold a word. An empty sentence, or Esc in the list, shows all again."},
     {'s', "s", ACT_SORT, "sort", "Choose by what the list is sorted; the same choice again turns it round."},
+    {'3', "3", ACT_DRIFT_PAGE, "drift",
+     "Show the drift page: how ephemerides age and what would refresh them."},
+    {'1', "1", ACT_NIGHT_PAGE, NULL, "Show the night page, this one."},
     {'d', "d", ACT_DATE, "date", "Type a date: the night that begins on its evening is shown."},
     {'S', "S", ACT_SITE, "site", "Choose another of the stored sites."},
     {'l', "l", ACT_LIMITS, "limits", "Say the limits of this run in sentences."},
@@ -56,43 +59,66 @@ const struct key keys[] = {
 };
 const size_t key_count = sizeof keys / sizeof keys[0];
 
-enum action key_action(uint32_t code)
+static struct key_table night_keys(void)
+{
+	return (struct key_table){keys, key_count};
+}
+
+enum action key_action_in(const struct key_table *t, uint32_t code)
 {
 	if (code == '\n')
 		code = PRESS_ENTER;
-	for (size_t i = 0; i < key_count; i++)
-		if (keys[i].code == code)
-			return keys[i].action;
+	for (size_t i = 0; i < t->n; i++)
+		if (t->key[i].code == code)
+			return t->key[i].action;
 	return ACT_NONE;
+}
+
+enum action key_action(uint32_t code)
+{
+	const struct key_table t = night_keys();
+	return key_action_in(&t, code);
+}
+
+void key_labels_in(const struct key_table *t, enum action action, char *out, size_t n)
+{
+	size_t used = 0;
+	if (n > 0)
+		out[0] = '\0';
+	for (size_t i = 0; i < t->n && used < n; i++)
+		if (t->key[i].action == action)
+			used +=
+			    (size_t)snprintf(out + used, n - used, "%s%s", used ? " " : "", t->key[i].label);
 }
 
 void key_labels(enum action action, char *out, size_t n)
 {
-	size_t used = 0;
-	if (n > 0)
-		out[0] = '\0';
-	for (size_t i = 0; i < key_count && used < n; i++)
-		if (keys[i].action == action)
-			used +=
-			    (size_t)snprintf(out + used, n - used, "%s%s", used ? " " : "", keys[i].label);
+	const struct key_table t = night_keys();
+	key_labels_in(&t, action, out, n);
 }
 
-void key_footer(int columns, char *out, size_t n)
+void key_footer_in(const struct key_table *t, int columns, char *out, size_t n)
 {
 	size_t used = 0;
 	if (n > 0)
 		out[0] = '\0';
-	for (size_t i = 0; i < key_count; i++) {
-		if (!keys[i].footer)
+	for (size_t i = 0; i < t->n; i++) {
+		if (!t->key[i].footer)
 			continue;
 		char entry[64];
-		int length =
-		    snprintf(entry, sizeof entry, "%s%s %s", used ? "  " : "", keys[i].label, keys[i].footer);
+		int length = snprintf(entry, sizeof entry, "%s%s %s", used ? "  " : "", t->key[i].label,
+				      t->key[i].footer);
 		if (length < 0 || used + (size_t)length >= n || (int)used + length > columns)
 			break;
 		memcpy(out + used, entry, (size_t)length + 1);
 		used += (size_t)length;
 	}
+}
+
+void key_footer(int columns, char *out, size_t n)
+{
+	const struct key_table t = night_keys();
+	key_footer_in(&t, columns, out, n);
 }
 
 void key_called(uint32_t code, char *out, size_t n)

@@ -56,8 +56,15 @@ enum action {
 	ACT_RED,
 	ACT_REPAINT,
 	ACT_SUSPEND,
+	ACT_NIGHT_PAGE,
+	ACT_DRIFT_PAGE,
 	ACT_LEAVE,
 	ACT_QUIT,
+	/* of the drift page alone */
+	ACT_AT,
+	ACT_MODEL,
+	ACT_COUNT_IN_FIT,
+	ACT_UNDO,
 	ACT_COUNT
 };
 
@@ -68,9 +75,19 @@ struct key {
 	const char *footer;   /* word of the footer; NULL: in the help only */
 	const char *sentence; /* of the help; NULL in the further rows of an action */
 };
-extern const struct key keys[];
+/* The keys of a page, in the order of its footer. */
+struct key_table {
+	const struct key *key;
+	size_t n;
+};
+extern const struct key keys[]; /* of the night page */
 extern const size_t key_count;
+extern const struct key_table drift_keys, residual_keys; /* of the drift page and of its view of residuals */
 
+enum action key_action_in(const struct key_table *t, uint32_t code);
+void key_labels_in(const struct key_table *t, enum action action, char *out, size_t n);
+void key_footer_in(const struct key_table *t, int columns, char *out, size_t n);
+/* The same of the night page. */
 enum action key_action(uint32_t code);
 /* Labels of all keys of an action joined by blanks: `j Down`. */
 void key_labels(enum action action, char *out, size_t n);

@@ -1,0 +1,100 @@
+/* SPDX-License-Identifier: MIT */
+#include "tui/midtime_mark.h"
+
+#include "db/history.h"
+
+#include <stdio.h>
+#include <stdlib.h>
+#include <string.h>
+
+/* Verbs of the change sets. */
+static const char *const marks[] = {"midtime exclude", "midtime include"};
+
+/* The run's own store where that is the only one (in memory), else the file. */
+static enum status open_to_write(struct run *run, struct store **out, struct err *e)
+{
+	*out = run->store;
+	if (!run->db_path[0])
+		return run->store ? ST_OK : err_set(e, ST_ABSENT, "nothing is stored");
+	enum status s = store_open(run->db_path, STORE_WRITE, out, e);
+	if (s == ST_OK && store_read_only(*out)) {
+		store_close(*out);
+		return err_set(e, ST_STORE, "the database can't be written");
+	}
+	return s;
+}
+
+static void close_written(struct run *run, struct store *s)
+{
+	if (s != run->store)
+		store_close(s);
+}
+
+static struct change change_of(const struct run *run, const char *verb, char utc[static UTC_TEXT_MAX])
+{
+	utc_text(&run->leap, wall_now(&run->wall), 0, utc);
+	return (struct change){.utc = utc, .who = run->env->user, .verb = verb};
+}
+
+enum status midtime_mark(struct run *run, int64_t target_id, long epoch, enum event_kind kind, bool use,
+			 char said[static MARKED_BYTES], struct err *e)
+{
+	struct store *store;
+	char utc[UTC_TEXT_MAX];
+	long n = 0;
+	const struct change change = change_of(run, marks[use], utc);
+	enum status s = open_to_write(run, &store, e);
+	if (s != ST_OK)
+		return s;
+	s = store_begin(store, &change, e);
+	if (s == ST_OK) {
+		s = midtime_use(store, target_id, epoch, kind, use, &n, e);
+		if (s == ST_OK)
+			s = store_commit(store, e);
+		if (s != ST_OK)
+			store_rollback(store);
+	}
+	close_written(run, store);
+	if (s == ST_OK)
+		snprintf(said, MARKED_BYTES, "%ld mid-time%s of epoch %ld %s; u takes it back.", n,
+			 n == 1 ? "" : "s", epoch, use ? "included" : "excluded");
+	return s;
+}
+
+/* The newest mark of the target that holds; NULL none. */
+static const struct change_row *newest_mark(const struct change_row *row, size_t n)
+{
+	for (size_t i = 0; i < n; i++)
+		if (!row[i].undone &&
+		    (strcmp(row[i].verb, marks[0]) == 0 || strcmp(row[i].verb, marks[1]) == 0))
+			return &row[i];
+	return NULL;
+}
+
+enum status midtime_mark_undo(struct run *run, int64_t target_id, char said[static MARKED_BYTES],
+			      struct err *e)
+{
+	struct store *store;
+	struct change_row *row = NULL;
+	char utc[UTC_TEXT_MAX];
+	size_t n = 0;
+	int64_t undone;
+	const struct change change = change_of(run, "undo", utc);
+	enum status s = open_to_write(run, &store, e);
+	if (s != ST_OK)
+		return s;
+	s = history_list(store, target_id, &row, &n, e);
+	const struct change_row *newest = s == ST_OK ? newest_mark(row, n) : NULL;
+	if (s == ST_OK)
+		s = newest
+			? history_undo(store, newest->id, &change, &undone, e)
+			: err_set(
+			      e, ST_ABSENT,
+			      "no mid-time of this target was excluded or included that could be taken back");
+	if (s == ST_OK)
+		snprintf(said, MARKED_BYTES, "Taken back: change %lld, %.40s (%.60s).", (long long)undone,
+			 newest->verb, newest->what);
+	free(row);
+	close_written(run, store);
+	return s;
+}
