@@ -43,12 +43,12 @@ enum status midtime_say_twice(const struct midtime_table *t,
 			      void (*say)(void *ctx, const struct import_message *m), void *ctx,
 			      struct err *e)
 {
-	const struct midtime_text **sorted = malloc((t->n + 1) * sizeof *sorted);
+	const struct midtime_text **sorted = malloc((t->n + 1) * sizeof(const struct midtime_text *));
 	if (!sorted)
 		return err_set(e, ST_MEMORY, "no memory to read a table");
 	for (size_t i = 0; i < t->n; i++)
 		sorted[i] = &t->row[i];
-	qsort(sorted, t->n, sizeof *sorted, by_content_and_line);
+	qsort(sorted, t->n, sizeof(const struct midtime_text *), by_content_and_line);
 	for (size_t i = 1; i < t->n; i++) {
 		char text[80];
 		if (by_content(&sorted[i - 1], &sorted[i]) != 0)

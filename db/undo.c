@@ -258,7 +258,7 @@ static enum status put_back(const struct undoing *u, int64_t id, enum pass pass,
 {
 	const struct family *f = u->f;
 	struct row now = {0}, before = {0};
-	struct cell image[ROW_CELLS_MAX];
+	struct cell image[ROW_CELLS_MAX] = {0};
 	enum status st = row_find(u->s, f->by_id, cell_int(id), f->table, &now, e);
 	if (st == ST_ABSENT)
 		st = err_set(e, ST_STORE, "database: damaged: row %lld of table %s is missing", (long long)id,

@@ -42,7 +42,7 @@ enum status drift_choice_of(const struct run *r, struct drift_choice *out, struc
 	    .refresh = !o->no_refresh,
 	    .named = o->n_targets > 0,
 	};
-	if (o->at && given_time(&r->leap, o->at, &out->at, &why) != ST_OK)
+	if (o->at && given_day_or_time(&r->leap, o->at, &out->at, &why) != ST_OK)
 		return err_set(e, why.status, "--at: %.460s", why.text);
 	return ST_OK;
 }

@@ -83,6 +83,18 @@ enum status given_time(const struct leap_table *leap, const char *text, struct u
 	return s == ST_OK ? year_in_range(out->mjd, text, e) : s;
 }
 
+enum status given_day_or_time(const struct leap_table *leap, const char *text, struct utc *out, struct err *e)
+{
+	if (!is_bare_date(text))
+		return given_time(leap, text, out, e);
+	struct date date;
+	*out = (struct utc){0};
+	enum status s = date_parse(text, &date, e);
+	if (s == ST_OK)
+		s = date_to_mjd(date, &out->mjd, e);
+	return s == ST_OK ? year_in_range(out->mjd, text, e) : s;
+}
+
 enum status given_night(const struct leap_table *leap, double lon_east_deg, const char *text, int32_t *mjd,
 			struct err *e)
 {

@@ -15,6 +15,8 @@ enum { GIVEN_YEAR_MIN = 1900, GIVEN_YEAR_MAX = 2100 };
 /* `YYYY-MM-DDTHH:MM[:SS[.s]][Z]`, or `2461114.708333 JD_UTC` (or another JD or MJD without light time). A bare `YYYY-MM-DD` is a night, not an instant:
  * ST_SYNTAX. */
 MUST_USE enum status given_time(const struct leap_table *leap, const char *text, struct utc *out, struct err *e);
+/* The same where a day is enough: a bare date is its 0 h UTC. */
+MUST_USE enum status given_day_or_time(const struct leap_table *leap, const char *text, struct utc *out, struct err *e);
 /* A night: a bare date is its evening; an instant is the night that contains it at that longitude. */
 MUST_USE enum status given_night(const struct leap_table *leap, double lon_east_deg, const char *text, int32_t *mjd, struct err *e);
 /* Whether the text can be read as a night at all (before a site is known). */

@@ -25,6 +25,7 @@ check "drift csv: header" test "$(head -n 1 "$scratch/d.csv")" = "$header"
 check "drift csv: every target" test "$(wc -l <"$scratch/d.csv")" = 51
 check "without a site the refresh columns are empty" test "$(cut -d, -f13-16 "$scratch/d.csv" | sed 1d | sort -u)" = ',,,'
 check "and that is said" grep -q '^wane: site: none is chosen' "$scratch/err"
+check "--at takes a bare date" test "$("$WANE" drift --db "$db" --no-refresh --at 2030-01-02 --format csv 2>/dev/null | cut -d, -f5 | sed 1d | sort -u)" = 2030-01-02T00:00:00Z
 check "--at is today + 3 years" test "$(cut -d, -f5 "$scratch/d.csv" | sed 1d | sort -u)" = 2029-04-23T03:00:00Z
 check "29 February + 3 years" test "$(quiet drift 'Tern 1 b' --now 2028-02-29T12:00Z --no-refresh --format csv | sed 1d | cut -d, -f5)" = 2031-02-28T12:00:00Z
 check "the default limit is (30 - 15) / 2" test "$(cut -d, -f7 "$scratch/d.csv" | sed 1d | sort -u)" = 7.500
