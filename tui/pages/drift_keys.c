@@ -329,23 +329,18 @@ static enum want common_action(struct drift_page *p, enum action action, bool *t
 
 static void say_unknown(struct drift_page *p, uint32_t code)
 {
-	char name[32], text[DRIFT_MESSAGE_BYTES];
-	key_called(code, name, sizeof name);
-	snprintf(text, sizeof text, "%s does nothing here; ? shows the keys.", name);
+	char text[DRIFT_MESSAGE_BYTES];
+	key_unknown_text(code, text, sizeof text);
 	drift_page_say(p, ROLE_WARN, text);
 }
 
-/* Pasted text is text where something is typed, and nothing elsewhere. */
 static bool paste_key(struct drift_page *p, uint32_t code)
 {
-	if (code == PRESS_PASTE_BEGIN || code == PRESS_PASTE_END) {
-		p->pasting = code == PRESS_PASTE_BEGIN;
-		if (p->pasting && !asking(p))
-			drift_page_say(p, ROLE_WARN,
-				       "Pasted text was left out: nothing is being typed here.");
-		return true;
-	}
-	return p->pasting && !asking(p);
+	const char *left_out;
+	const bool taken = key_paste(&p->pasting, asking(p), code, &left_out);
+	if (left_out)
+		drift_page_say(p, ROLE_WARN, left_out);
+	return taken;
 }
 
 enum want drift_page_key(struct drift_page *p, uint32_t code)

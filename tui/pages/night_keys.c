@@ -365,22 +365,18 @@ static enum want common_action(struct night_page *p, enum action action, bool *t
 
 static void say_unknown(struct night_page *p, uint32_t code)
 {
-	char name[32], text[MESSAGE_BYTES];
-	key_called(code, name, sizeof name);
-	snprintf(text, sizeof text, "%s does nothing here; ? shows the keys.", name);
+	char text[MESSAGE_BYTES];
+	key_unknown_text(code, text, sizeof text);
 	night_page_say(p, ROLE_WARN, text);
 }
 
 static bool paste_key(struct night_page *p, uint32_t code)
 {
-	if (code == PRESS_PASTE_BEGIN || code == PRESS_PASTE_END) {
-		p->pasting = code == PRESS_PASTE_BEGIN;
-		if (p->pasting && !asking(p))
-			night_page_say(p, ROLE_WARN,
-				       "Pasted text was left out: nothing is being typed here.");
-		return true;
-	}
-	return p->pasting && !asking(p);
+	const char *left_out;
+	const bool taken = key_paste(&p->pasting, asking(p), code, &left_out);
+	if (left_out)
+		night_page_say(p, ROLE_WARN, left_out);
+	return taken;
 }
 
 enum want night_page_key(struct night_page *p, uint32_t code)

@@ -137,3 +137,22 @@ void key_called(uint32_t code, char *out, size_t n)
 		snprintf(out, n, "that key");
 	}
 }
+
+void key_unknown_text(uint32_t code, char *out, size_t n)
+{
+	char name[32];
+	key_called(code, name, sizeof name);
+	snprintf(out, n, "%s does nothing here; ? shows the keys.", name);
+}
+
+bool key_paste(bool *pasting, bool asking, uint32_t code, const char **left_out)
+{
+	const bool edge = code == PRESS_PASTE_BEGIN || code == PRESS_PASTE_END;
+	*left_out = NULL;
+	if (edge) {
+		*pasting = code == PRESS_PASTE_BEGIN;
+		if (*pasting && !asking)
+			*left_out = "Pasted text was left out: nothing is being typed here.";
+	}
+	return edge || (*pasting && !asking);
+}

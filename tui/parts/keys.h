@@ -96,4 +96,10 @@ void key_footer(int columns, char *out, size_t n);
 /* What a key is called, for `nothing on ...`. */
 void key_called(uint32_t code, char *out, size_t n);
 
+/* What is said of a key that does nothing. */
+void key_unknown_text(uint32_t code, char *out, size_t n);
+/* Bracketed paste: text where something is typed (asking), and left out elsewhere. True: the key is dealt
+ * with. *left_out is set to a message when a paste begins that nobody asked for, else NULL. */
+bool key_paste(bool *pasting, bool asking, uint32_t code, const char **left_out);
+
 #endif
