@@ -173,7 +173,7 @@ void field_text(const struct target *t, int field, char *out, size_t n)
 	case FIELD_DEC: {
 		double value;
 		memcpy(&value, at, sizeof value);
-		number_text(value, number);
+		number_text(value + 0.0, number); /* no -0: the store keeps 0 */
 		break;
 	}
 	}

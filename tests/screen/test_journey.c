@@ -42,7 +42,7 @@ static void test_about(void **state)
 	struct pty t;
 	(void)state;
 	open_demo(&t);
-	pty_screen(&t, "\033OB\033OBj", "windows");
+	pty_screen(&t, "\033OB\033OBj", "window");
 	pty_screen(&t, ">", "next night, night 23/24 Apr 2026");
 	pty_screen(&t, "<<", "last night, night 21/22 Apr 2026");
 	pty_screen(&t, ".", OPENED);
@@ -99,9 +99,9 @@ static void test_find_sort_filter(void **state)
 	pty_screen(&t, "d", "by chance of done");
 	pty_send(&t, "fdane > 1\r");
 	pty_wait(&t, "called"); /* no figure is called \"dane\" */
-	pty_screen(&t, "\025done > 50 & name = 14\r", "1/1 ");
+	pty_screen(&t, "\025done > 50 & name = 14\r", "window 1 of 1 ");
 	pty_screen(&t, "", "where done > 50 & name = 14");
-	pty_screen(&t, "\033", "windows by chance of done");
+	pty_screen(&t, "\033", "by chance of done");
 	pty_send(&t, "q");
 	expect_exit(&t, 0);
 	pty_expect_restored(&t);
@@ -195,22 +195,22 @@ static void test_changed_from_outside(void **state)
 	open_database();
 	open_on_database(&t);
 	pty_screen(&t, "\r", "Tern 14 b, night 22/23 Apr 2026");
-	pty_screen(&t, "\r", "1/1 window");
+	pty_screen(&t, "\r", "window 1 of 1");
 	pty_send(&t, "");
 	write_target("Tern 15 b");
 	pty_wait(&t, "Another program changed what is stored; it was read again.");
-	pty_screen(&t, "j", "/2 windows");
+	pty_screen(&t, "j", "of 2");
 	/* all taken away: back to what to do first, and out of it when something comes */
 	pty_send(&t, "");
 	run_wane("target remove 'Tern 14 b'");
 	pty_wait(&t, "Another program");
-	pty_screen(&t, "g", "1/1 window");
+	pty_screen(&t, "g", "window 1 of 1");
 	pty_send(&t, "");
 	run_wane("target remove 'Tern 15 b'");
 	pty_screen(&t, "", "No targets are stored yet.");
 	pty_send(&t, "");
 	write_target("Tern 16 b");
-	pty_screen(&t, "", "1/1 window");
+	pty_screen(&t, "", "window 1 of 1");
 	pty_send(&t, "q");
 	expect_exit(&t, 0);
 	pty_expect_restored(&t);

@@ -62,8 +62,8 @@ static void test_keys_to_screens(void **state)
 	    {"j", "▸ now   Tern 18 c", NULL},
 	    {"jjk", "▸ now   Tern 18 c", NULL},
 	    {"kkkkkkkk", "▸ now   Tern 2 c", NULL},
-	    {"g", "1/11 windows by be-on time, 1 long shot hidden, a shows it", NULL},
-	    {"G", "11/11 windows", "Tern 2 c  "},
+	    {"g", "window 1 of 11 by be-on time, 1 long shot hidden, a shows it", NULL},
+	    {"G", "window 11 of 11", "Tern 2 c  "},
 	    {"Gg", "▸ now   Tern 2 c", NULL},
 	    {">", "next night, night 23/24 Apr 2026", "next: "},
 	    {"<", "last night, night 21/22 Apr 2026", "next: "},
@@ -119,16 +119,16 @@ static void test_keys_to_screens(void **state)
 	    {"sn><", "by name", NULL},
 	    {"sn", "▸ now   Tern 18 b", NULL},
 	    /* filter */
-	    {"fdone > 50\r", "1/5 of 11 where done > 50 by on, a: 1 more", NULL},
-	    {"fsigma < 1\r", "2/5 of 11 where sigma < 1 by on", NULL},
-	    {"fdone > 50\r\033", "11 windows by be-on time", "where done"},
-	    {"fdone > 50\rf\025\r", "11 windows by be-on time", "where done"},
+	    {"fdone > 50\r", "1/5 out of 11 where done > 50 by on, a: 1 more", NULL},
+	    {"fsigma < 1\r", "2/5 out of 11 where sigma < 1 by on", NULL},
+	    {"fdone > 50\r\033", "of 11 by be-on time", "where done"},
+	    {"fdone > 50\rf\025\r", "of 11 by be-on time", "where done"},
 	    {"ftern 18\r", "▸ now   Tern 18 b", "Tern 14 b  "},
 	    {"fnobody\r", "No window of this night fits the filter; Esc takes it away.", NULL},
 	    {"fnobody\rj\r?", "Keys (q", NULL},
 	    {"fdone >\r", "nothing stands behind `done >`", NULL},
 	    {"fdone > x\r", "`done >` needs a number (got \"x\")", NULL},
-	    {"fdone > 50\033", "11 windows by be-on time", "Show where"},
+	    {"fdone > 50\033", "of 11 by be-on time", "Show where"},
 	    /* sites: none is stored in the fixture */
 	    {"S", "No site is stored; `wane site add` stores one.", NULL},
 	};
@@ -464,7 +464,7 @@ static void test_drop_and_load(void **state)
 	driver_load(&d, d.page->wanted_mjd);
 	driver_draw(&d);
 	driver_expect(&d, "▸ now   Tern 33 b");
-	driver_expect(&d, "3/5 of 11 where done > 50");
+	driver_expect(&d, "3/5 out of 11 where done > 50");
 	/* nothing left */
 	night_page_drop(d.page);
 	size_t n = d.fixture->run.targets.n;

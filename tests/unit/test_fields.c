@@ -479,18 +479,26 @@ static void test_ranges_and_schema(void **state)
 	store_close(s);
 }
 
+/* The store keeps no sign of zero, so `-0` has to differ from what a zero is printed as: only then its own
+ * text is kept. */
+static void test_no_minus_zero(void **state)
+{
+	(void)state;
+	char text[64];
+	struct target t = target_empty();
+	t.dec_deg = -0.0;
+	field_text(&t, field_find("dec_deg"), text, sizeof text);
+	assert_string_equal(text, "0");
+}
+
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
-	    cmocka_unit_test(test_names),
-	    cmocka_unit_test(test_values),
-	    cmocka_unit_test(test_scales),
-	    cmocka_unit_test(test_names_refused),
-	    cmocka_unit_test(test_pairs),
-	    cmocka_unit_test(test_covariance),
-	    cmocka_unit_test(test_what_would_fit),
-	    cmocka_unit_test(test_field_text),
-	    cmocka_unit_test(test_ranges_and_schema),
+	    cmocka_unit_test(test_no_minus_zero), cmocka_unit_test(test_names),
+	    cmocka_unit_test(test_values),	  cmocka_unit_test(test_scales),
+	    cmocka_unit_test(test_names_refused), cmocka_unit_test(test_pairs),
+	    cmocka_unit_test(test_covariance),	  cmocka_unit_test(test_what_would_fit),
+	    cmocka_unit_test(test_field_text),	  cmocka_unit_test(test_ranges_and_schema),
 	};
 	return cmocka_run_group_tests_name("fields", tests, NULL, NULL);
 }

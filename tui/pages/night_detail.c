@@ -207,6 +207,22 @@ static void flag_lines(struct text_view *v, uint32_t flags, bool grave)
 				       grave ? "!    " : "Doubt", flag_rules[f].sentence);
 }
 
+/* Limits of the target that differ from the run's. */
+static void own_limits_line(struct text_view *v, const struct limits *l)
+{
+	char text[400] = "", value[NUMBER_TEXT_MAX];
+	size_t used = 0;
+	for (int i = 0; i < LIM_COUNT && used < sizeof text; i++) {
+		if (l->source[i] != FROM_TARGET)
+			continue;
+		number_text(l->value[i], value);
+		used += (size_t)snprintf(text + used, sizeof text - used, "%s%s %s", used ? ", " : "",
+					 limit_rules[i].key, value);
+	}
+	if (used)
+		text_view_addf(v, ROLE_WARN, INDENT, "Limits of its own: %s", text);
+}
+
 static void source_line(struct text_view *v, const struct night_row *row)
 {
 	const struct target *t = row->window->event.prepared->target;
@@ -230,6 +246,7 @@ void detail_lines(struct text_view *v, int width, bool roomy, const struct run *
 	if (!roomy)
 		altitude_line(v, &view->night, row);
 	flag_lines(v, row->window->event.flags, true);
+	own_limits_line(v, &row->window->event.prepared->limits);
 	sigma_line(v, row);
 	sky_line(v, row);
 	star_line(v, row);

@@ -138,11 +138,19 @@ static void moon_text(struct night_head *h, const struct run *r, const struct ni
 	snprintf(h->moon, sizeof h->moon, "Moon %s lit, %s", lit, order);
 }
 
-static void limits_text(struct night_head *h, const struct limits *l)
+/* The Moon's limit that holds tonight: the longer one only from a Moon that is more than half lit while it is
+ * up. */
+static double moon_limit_deg(const struct night *n, const struct limits *l)
+{
+	const struct intervals bright = intervals_and(&n->moon_up, &n->moon_bright);
+	return bright.n > 0 ? fmax(l->value[LIM_MOON], MOON_ALWAYS_DEG) : MOON_ALWAYS_DEG;
+}
+
+static void limits_text(struct night_head *h, const struct night *night, const struct limits *l)
 {
 	char alt[NUMBER_TEXT_MAX], moon[NUMBER_TEXT_MAX], airmass[NUMBER_TEXT_MAX];
 	number_text(l->value[LIM_ALT], alt);
-	number_text(l->value[LIM_MOON], moon);
+	number_text(moon_limit_deg(night, l), moon);
 	number_text(l->value[LIM_AIRMASS], airmass);
 	int used = snprintf(h->limits, sizeof h->limits, "altitude > %s", alt);
 	if (*airmass)
@@ -162,7 +170,7 @@ void night_head_make(struct night_head *h, const struct run *r, const struct nig
 	zone_text(h, r, &view->night);
 	sun_text(h, r, view);
 	moon_text(h, r, view);
-	limits_text(h, &r->limits);
+	limits_text(h, &view->night, &r->limits);
 }
 
 /* --- with the clock --- */

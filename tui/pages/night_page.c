@@ -30,15 +30,12 @@ static void write_count(struct night_page *p, bool brief)
 	const struct sort_rule *rule = &sort_rules[p->sort];
 	hidden_text(p, brief, hidden, sizeof hidden);
 	if (p->filter.n > 0)
-		snprintf(where, sizeof where, " of %zu where %s", p->rows.total, p->filter_text);
+		snprintf(where, sizeof where, " out of %zu where %s", p->rows.total, p->filter_text);
 	snprintf(by, sizeof by, " by %s%s", brief ? rule->short_word : rule->word,
 		 p->sort_turned ? ", turned" : "");
 	if (p->rows.n > 0)
-		snprintf(p->count, sizeof p->count, "%zu/%zu%s%s%s%s", p->selected + 1, p->rows.n,
-			 brief		  ? ""
-			 : p->rows.n == 1 ? " window"
-					  : " windows",
-			 where, by, hidden);
+		snprintf(p->count, sizeof p->count, brief ? "%zu/%zu%s%s%s" : "window %zu of %zu%s%s%s",
+			 p->selected + 1, p->rows.n, where, by, hidden);
 	else
 		snprintf(p->count, sizeof p->count, "no window%s%s", where, hidden);
 }

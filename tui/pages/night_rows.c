@@ -141,6 +141,9 @@ static void lost_text(const struct night_row *row, bool words, char *out, size_t
 	if (*parts && *out)
 		append(out, n, ", ");
 	append(out, n, *parts || *out ? parts : "nothing");
+	const uint32_t worse = FLAG_BIT(FLAG_PHASE_LOST) | FLAG_BIT(FLAG_SIGMA_UNKNOWN);
+	if ((w->event.flags & FLAG_BIT(FLAG_STALE)) && !(w->event.flags & worse) && (words || !*parts))
+		append(out, n, ", stale");
 }
 
 /* A figure as the column table prints it for people. */
