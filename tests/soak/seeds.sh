@@ -1,7 +1,8 @@
-# The property loops again and again, each time with other random numbers: SOAK_ROUNDS seeds (default 10), from the date, printed.
+# The property loops again and again, each time with other random numbers: SOAK_ROUNDS seeds (default 10) from SOAK_SEED (default the date),
+# printed.
 . tests/support/check.sh
 
-seed=$(date +%Y%m%d)
+seed=${SOAK_SEED:-$(date +%Y%m%d)}
 round=0
 while [ "$round" -lt "${SOAK_ROUNDS:-10}" ]; do
 	round=$((round + 1))
