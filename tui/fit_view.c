@@ -60,6 +60,17 @@ static void add_to_prior(struct fit_view *v, const struct prepared *p, double ji
 	v->prior_z_rms = n > 0 ? sqrt(sum / (double)n) : NAN;
 }
 
+/* Too few times for a fit of their own are enough for a prior with errors. */
+static enum status prior_alone(struct fit_view *v, const struct prepared *p, double jitter_d, enum status why)
+{
+	if (why != ST_RANGE || v->used == 0)
+		return why;
+	for (size_t i = 0; i < v->list.n; i++)
+		v->z_robust[i] = (double)NAN;
+	add_to_prior(v, p, jitter_d);
+	return v->has_prior ? ST_OK : why;
+}
+
 static enum status make_fits(struct fit_view *v, const struct prepared *p, const struct fit_choice *choice,
 			     struct err *e)
 {
@@ -70,8 +81,15 @@ static enum status make_fits(struct fit_view *v, const struct prepared *p, const
 		s = refit_jitter(v->time, n, choice->jitter_terms, &jitter_d, e);
 	if (s == ST_OK)
 		s = refit(v->time, n, LINEAR_TERMS, choice->ref_epoch, jitter_d, &v->linear, e);
+	for (size_t i = 0; i < n; i++) {
+		v->used += v->time[i].used;
+		v->same_source =
+		    v->same_source || (v->time[i].used && same_source(p->target, &v->list.row[i]));
+	}
+	v->double_counting = v->same_source || strstr(p->target->source, "mid-times") != NULL;
+	v->has_linear = s == ST_OK;
 	if (s != ST_OK)
-		return s;
+		return choice->with_prior ? prior_alone(v, p, jitter_d, s) : s;
 	v->has_quadratic =
 	    refit(v->time, n, QUADRATIC_TERMS, v->linear.ref_epoch, jitter_d, &v->quadratic, NULL) == ST_OK;
 	if (v->has_quadratic)
@@ -79,12 +97,8 @@ static enum status make_fits(struct fit_view *v, const struct prepared *p, const
 	if (s == ST_OK)
 		s = refit_outliers(v->time, n, v->prefers_quadratic ? QUADRATIC_TERMS : LINEAR_TERMS,
 				   v->z_robust, e);
-	for (size_t i = 0; s == ST_OK && i < n; i++) {
+	for (size_t i = 0; s == ST_OK && i < n; i++)
 		v->outliers += v->time[i].used && fit_is_outlier(v, i);
-		v->same_source =
-		    v->same_source || (v->time[i].used && same_source(p->target, &v->list.row[i]));
-	}
-	v->double_counting = v->same_source || strstr(p->target->source, "mid-times") != NULL;
 	if (s == ST_OK && choice->with_prior)
 		add_to_prior(v, p, jitter_d);
 	return s;
@@ -178,7 +192,7 @@ enum status fit_adopt(struct run *r, const struct prepared *p, const struct fit_
 	const bool stated = v->unstated == 0 && (fit || eph.systematic_min <= 0.0);
 	snprintf(next_text(&a, FIELD_AT_SCALE), sizeof a.room[0], "%s", stated ? "BJD_TDB" : "BJD");
 	snprintf(next_text(&a, FIELD_AT_SOURCE), sizeof a.room[0],
-		 fit ? "refit of %zu mid-times" : "current ephemeris and %zu mid-times", v->linear.n);
+		 fit ? "refit of %zu mid-times" : "current ephemeris and %zu mid-times", v->used);
 	enum status s = target_set(r->store, p->target->name, a.field, a.text, a.n, e);
 	return s == ST_OK ? current_version(r, p->target->id, version, e) : s;
 }

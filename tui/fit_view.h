@@ -20,6 +20,8 @@ struct fit_view {
 	double *z_robust;	  /* [list.n]; above OUTLIER_Z: to be looked at */
 	long outliers, unstated;  /* used times that are outliers; that do not say their standard */
 	struct fit linear, quadratic;
+	size_t used;		  /* times that count */
+	bool has_linear;	  /* false: too few times for a fit of their own; then only the prior stands */
 	bool has_quadratic, prefers_quadratic, has_prior;
 	struct ephemeris prior; /* the current ephemeris with the used times added, as if none were part of it */
 	double prior_z_rms;	/* of the times as they came in */
@@ -28,8 +30,8 @@ struct fit_view {
 };
 #define OUTLIER_Z 4.0 /* common practice, no source */
 
-/* Replaces a view (start with a zeroed one) by the fits to the mid-times of the run's prepared target p. ST_RANGE: too few or unfit times;
- * *e says why. */
+/* Replaces a view (start with a zeroed one) by the fits to the mid-times of the run's prepared target p. ST_RANGE: too few or unfit times
+ * (with a prior that has errors one time is enough); *e says why. */
 MUST_USE enum status fit_view_make(struct fit_view *v, struct run *r, const struct prepared *p, const struct fit_choice *choice,
 				   struct err *e);
 void fit_view_free(struct fit_view *v);

@@ -182,4 +182,23 @@ check "remove" test "$(quiet midtime remove 'Tern 14 b' "$(quiet midtime list 'T
 check "a removed one is gone" test "$(quiet midtime list 'Tern 14 b' --format csv | wc -l)" = 1
 check "undo brings it back" sh -c '"$1" undo --db "$2" >/dev/null 2>&1 && "$1" midtime list "Tern 14 b" --db "$2" --format csv | grep -q 2461153.7988' - "$WANE" "$db"
 check "the store is sound" sh -c '"$1" check --db "$2" | grep -q "^sound"' - "$WANE" "$db"
+# --- one night's mid-time put back into a published ephemeris: too few for a fit of its own, enough for the prior
+one=$scratch/one.db
+"$WANE" target add 'Tern 14 b' --radec 150,10 t0_jd=2460000.5 t0_err_d=0.001 period_d=4 period_err_d=0.00001 time_scale=BJD_TDB --db "$one" 2>/dev/null
+"$WANE" midtime add 'Tern 14 b' 2461200.5005 0.0005 --scale BJD_TDB --db "$one" >/dev/null 2>&1
+"$WANE" refit 'Tern 14 b' --db "$one" >/dev/null 2>&1
+check "one mid-time is no fit" test $? = 1
+"$WANE" refit 'Tern 14 b' --prior --format json --db "$one" >"$scratch/one.json" 2>/dev/null
+check "one mid-time and a prior: exit 0" test $? = 0
+check "no fit of its own" grep -q '"linear": null' "$scratch/one.json"
+"$WANE" refit 'Tern 14 b' --prior --db "$one" >"$scratch/one.txt" 2>/dev/null
+check "and nothing that is no number" test -z "$(grep -i 'nan' "$scratch/one.txt" "$scratch/one.json")"
+"$WANE" refit 'Tern 14 b' --prior --adopt linear --db "$one" >/dev/null 2>&1
+check "which can't be adopted" test $? = 1
+"$WANE" refit 'Tern 14 b' --prior --adopt prior --db "$one" >/dev/null 2>&1
+check "the prior can" test $? = 0
+# by hand (Kalman 1960): V(E,E) = 0.001^2 + (300 x 1e-5)^2 = 1e-5 d^2, s^2 = 2.5e-7; V' = V s^2/(V + s^2): 0.000493865 d = 0.7112 min at epoch 300
+"$WANE" drift 'Tern 14 b' --no-refresh --now 2026-06-09T00:00Z --at 2026-06-09T12:00Z --format csv --db "$one" 2>/dev/null | sed 1d | cut -d, -f6 >"$scratch/one.sigma"
+check "sigma at the observed epoch: $(cat "$scratch/one.sigma")" awk '{ exit !($1 > 0.7105 && $1 < 0.7125) }' "$scratch/one.sigma"
+
 finish

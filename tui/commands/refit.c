@@ -74,7 +74,7 @@ static void say_doubts(const struct fit_view *v, bool with_prior)
 			 "%ld of %zu times do not say their time standard and were used as BJD_TDB: an "
 			 "adopted fit is "
 			 "marked scale_assumed",
-			 v->unstated, v->linear.n);
+			 v->unstated, v->used);
 	if (v->outliers > 0)
 		diagnose("refit",
 			 "%ld outlier%s (robust z above %g) %s in the fit: look, then wane midtime exclude",
@@ -148,10 +148,12 @@ static int refit_open(struct run *r, enum model model, const struct fit_choice *
 	if (fit_view_make(&v, r, &r->prepared[0], choice, &e) != ST_OK)
 		return diagnose_err("refit", &e, EXIT_UNMET);
 	int code = EXIT_DONE;
-	if ((model == MODEL_QUADRATIC && !v.has_quadratic) || (model == MODEL_PRIOR && !v.has_prior)) {
+	if ((model == MODEL_LINEAR && !v.has_linear) || (model == MODEL_QUADRATIC && !v.has_quadratic) ||
+	    (model == MODEL_PRIOR && !v.has_prior)) {
 		diagnose("--adopt", "there is no such fit: %s",
-			 model == MODEL_PRIOR ? "the current ephemeris has no errors"
-					      : "three mid-times of different epochs are needed");
+			 model == MODEL_PRIOR	 ? "the current ephemeris has no errors"
+			 : model == MODEL_LINEAR ? "two mid-times of different epochs are needed"
+						 : "three mid-times of different epochs are needed");
 		code = EXIT_UNMET;
 	}
 	if (code == EXIT_DONE)

@@ -18,14 +18,15 @@ static const char *kind_word(enum event_kind kind)
 	return kind == KIND_TRANSIT ? "transit" : "occultation";
 }
 
-/* One residual, against the linear fit. */
+/* One residual, against the linear fit; NAN without one. */
 struct residual {
 	double oc_min, err_min, z;
 };
 
-static struct residual residual_of(const struct fit *f, const struct mid_time *t)
+static struct residual residual_of(const struct fit_view *v, const struct mid_time *t)
 {
-	const double oc_d = fit_residual_d(f, t), err_d = hypot(t->err_d, f->jitter_d);
+	const double oc_d = v->has_linear ? fit_residual_d(&v->linear, t) : (double)NAN;
+	const double err_d = hypot(t->err_d, v->has_linear ? v->linear.jitter_d : 0.0);
 	return (struct residual){oc_d * DAY_MIN, err_d * DAY_MIN, oc_d / err_d};
 }
 
@@ -90,7 +91,7 @@ static void residuals_json(struct json *j, const struct fit_view *v)
 	char digits[NUMBER_TEXT_MAX];
 	json_open(j, "residuals", '[', false);
 	for (size_t i = 0; i < v->list.n; i++) {
-		const struct residual r = residual_of(&v->linear, &v->time[i]);
+		const struct residual r = residual_of(v, &v->time[i]);
 		json_open(j, NULL, '{', true);
 		json_whole(j, "epoch", v->time[i].epoch);
 		json_text(j, "kind", kind_word(v->time[i].kind));
@@ -112,14 +113,22 @@ void fits_json(FILE *to, const char *target, const struct fit_view *v)
 	struct json j = json_begin(to);
 	json_open(&j, NULL, '{', false);
 	json_text(&j, "target", target);
-	json_whole(&j, "n", (long)v->linear.n);
-	json_whole(&j, "dof_linear", v->linear.dof);
-	json_whole(&j, "ref_epoch", v->linear.ref_epoch);
-	exact(&j, "jitter_s", v->linear.jitter_d * DAY_S, true);
-	fit_json(&j, "linear", &v->linear, true);
+	json_whole(&j, "n", (long)v->used);
+	if (v->has_linear) {
+		json_whole(&j, "dof_linear", v->linear.dof);
+		json_whole(&j, "ref_epoch", v->linear.ref_epoch);
+	} else {
+		json_null(&j, "dof_linear");
+		json_null(&j, "ref_epoch");
+	}
+	exact(&j, "jitter_s", v->linear.jitter_d * DAY_S, v->has_linear);
+	fit_json(&j, "linear", &v->linear, v->has_linear);
 	fit_json(&j, "quadratic", &v->quadratic, v->has_quadratic);
-	exact(&j, "scale_factor", fit_scale_factor(&v->linear), true);
-	json_text(&j, "preferred", v->prefers_quadratic ? "quadratic" : "linear");
+	exact(&j, "scale_factor", fit_scale_factor(&v->linear), v->has_linear);
+	if (v->has_linear)
+		json_text(&j, "preferred", v->prefers_quadratic ? "quadratic" : "linear");
+	else
+		json_null(&j, "preferred");
 	residuals_json(&j, v);
 	json_whole(&j, "outliers", v->outliers);
 	if (v->has_prior)
@@ -136,7 +145,7 @@ bool fits_csv(FILE *to, const struct fit_view *v)
 	char digits[NUMBER_TEXT_MAX];
 	fputs("epoch,kind,mid_bjd_tdb,oc_min,err_min,z,used,z_robust,outlier\n", to);
 	for (size_t i = 0; i < v->list.n; i++) {
-		const struct residual r = residual_of(&v->linear, &v->time[i]);
+		const struct residual r = residual_of(v, &v->time[i]);
 		const double numbers[] = {r.oc_min, r.err_min, r.z};
 		snprintf(digits, sizeof digits, "%ld", v->time[i].epoch);
 		csv_number(&c, digits);
@@ -187,19 +196,21 @@ static void fit_text(FILE *to, const char *name, const struct fit *f)
 
 static void residuals_text(FILE *to, const struct fit_view *v)
 {
-	char oc[NUMBER_TEXT_MAX], quad[NUMBER_TEXT_MAX], err[NUMBER_TEXT_MAX], mid[NUMBER_TEXT_MAX];
+	char oc[NUMBER_TEXT_MAX], quad[NUMBER_TEXT_MAX], err[NUMBER_TEXT_MAX], mid[NUMBER_TEXT_MAX],
+	    z[NUMBER_TEXT_MAX];
 	fprintf(to, "Residuals, observed less computed, in minutes\n%9s %-11s %17s %10s %10s %9s %7s\n",
 		"epoch", "kind", "mid BJD_TDB", "linear", "quadratic", "error", "z");
 	for (size_t i = 0; i < v->list.n; i++) {
 		const struct mid_time *t = &v->time[i];
-		const struct residual r = residual_of(&v->linear, t);
+		const struct residual r = residual_of(v, t);
 		number_text_jd2(t->mid.jd, 6, mid);
 		number_text_fixed(r.oc_min, 3, oc);
 		number_text_fixed(v->has_quadratic ? fit_residual_d(&v->quadratic, t) * DAY_MIN : NAN, 3,
 				  quad);
 		number_text_fixed(r.err_min, 3, err);
-		fprintf(to, "%9ld %-11s %17s %10s %10s %9s %7.2f", t->epoch, kind_word(t->kind), mid, oc,
-			quad[0] ? quad : "-", err, r.z);
+		number_text_fixed(r.z, 2, z);
+		fprintf(to, "%9ld %-11s %17s %10s %10s %9s %7s", t->epoch, kind_word(t->kind), mid,
+			oc[0] ? oc : "-", quad[0] ? quad : "-", err, z[0] ? z : "-");
 		fputs(fit_is_outlier(v, i) ? "  OUTLIER" : "", to);
 		fputs(t->used ? "" : "  excluded", to);
 		if (v->list.row[i].source[0]) {
@@ -224,18 +235,23 @@ static void prior_text(FILE *to, const struct ephemeris *e)
 void fits_text(FILE *to, const char *target, const struct fit_view *v)
 {
 	text_cell(to, target, 80, false);
-	fprintf(to, ": %zu of %zu mid-times used", v->linear.n, v->list.n);
+	fprintf(to, ": %zu of %zu mid-times used", v->used, v->list.n);
 	if (v->linear.jitter_d > 0.0)
 		fprintf(to, ", %.2f s added to every error in quadrature", v->linear.jitter_d * DAY_S);
 	fputc('\n', to);
-	fit_text(to, "linear", &v->linear);
+	if (v->has_linear)
+		fit_text(to, "linear", &v->linear);
+	else
+		fputs("too few mid-times for a fit of their own\n", to);
 	if (v->has_quadratic)
 		fit_text(to, "quadratic", &v->quadratic);
-	fprintf(to,
-		"preferred: %s (the quadratic one when BIC falls by more than 10, its term is beyond 3 "
-		"scaled sigma, 8 "
-		"times are there,\n  and dropping any one time keeps that)\n",
-		v->prefers_quadratic ? "quadratic" : "linear");
+	if (v->has_linear)
+		fprintf(
+		    to,
+		    "preferred: %s (the quadratic one when BIC falls by more than 10, its term is beyond 3 "
+		    "scaled sigma, 8 "
+		    "times are there,\n  and dropping any one time keeps that)\n",
+		    v->prefers_quadratic ? "quadratic" : "linear");
 	if (v->has_prior)
 		prior_text(to, &v->prior);
 	residuals_text(to, v);
