@@ -179,8 +179,8 @@ enum status ls_points_of(const struct mid_time t[], size_t n, bool every_one, in
 			used++;
 		}
 	if (used < (size_t)terms)
-		return err_set(e, ST_RANGE, "%zu times; a %s fit needs %d or more", used,
-			       terms == 2 ? "linear" : "quadratic", terms);
+		return err_set(e, ST_RANGE, "%zu time%s; a %s fit needs %d or more", used,
+			       used == 1 ? "" : "s", terms == 2 ? "linear" : "quadratic", terms);
 	out->p = calloc(used, sizeof *out->p);
 	out->epoch = calloc(used, sizeof *out->epoch);
 	if (!out->p || !out->epoch)

@@ -130,7 +130,7 @@ plant tui/pages/planted.c 'char *f(void) { return getenv("X"); }' "the environme
 plant tui/pages/planted.c 'long f(void) { return time(NULL); }' "the clock is read in env.c"
 plant tui/zone.c 'void f(void) { setenv("TZ", "UTC", 1); }' "no zone but the site"
 plant db/planted.c 'void f(char *a) { strcpy(a, "x"); }' "unbounded"
-plant tests/unit/planted.c 'void f(void) { assert_float_equal(1, 1, 1); }' "doubles are compared"
+plant tests/unit/planted.c 'void f(void) { assert_float_''equal(1, 1, 1); }' "doubles are compared"
 plant ephem/planted.c "/* TO""DO */" "unfinished marks"
 plant db/text_clean.c "$(seq 500 | sed 's|.*|/* & */|')" "read in one sitting"
 plant ephem/units.c '#include "ephem/err.h"' "includes its own header first"

@@ -441,7 +441,7 @@ static void refusals(void **state)
 	(void)state;
 	struct mid_time t[EIGHT];
 	eight(t);
-	expect_refused(t, 1, 2, 0.0, "1 times; a linear fit needs 2 or more");
+	expect_refused(t, 1, 2, 0.0, "1 time; a linear fit needs 2 or more");
 	expect_refused(t, 2, 3, 0.0, "2 times; a quadratic fit needs 3 or more");
 	expect_refused(t, EIGHT, 4, 0.0, "2 or 3 terms");
 	expect_refused(t, EIGHT, 2, -1e-4, "jitter");
