@@ -52,3 +52,37 @@ struct target target_empty(void)
 	    .period_dpde_cov_d2 = NAN,
 	};
 }
+
+struct telescope telescope_empty(void)
+{
+	return (struct telescope){
+	    .name = "",
+	    .slew_deg_s = NAN,
+	    .settle_min = NAN,
+	    .filter_min = NAN,
+	    .field_arcmin = NAN,
+	    .alt_min_deg = NAN,
+	    .alt_max_deg = NAN,
+	    .ha_east_h = NAN,
+	    .ha_west_h = NAN,
+	    .zenith_deg = NAN,
+	    .flip_min = NAN,
+	    .flip_before_min = NAN,
+	    .flip_after_min = NAN,
+	    .aperture_m = NAN,
+	    .obstruction = NAN,
+	    .throughput = NAN,
+	    .band = "",
+	    .pixel_arcsec = NAN,
+	    .gain_e_adu = NAN,
+	    .read_noise_e = NAN,
+	    .dark_e_s = NAN,
+	    .full_well_e = NAN,
+	    .defocus_px = NAN,
+	    .exposure_s = NAN,
+	    .dead_s = NAN,
+	    .red_noise_ppt = NAN,
+	    .blocks = "",
+	    .note = "",
+	};
+}

@@ -62,6 +62,38 @@ struct site {
 	const struct mask *mask; /* horizon mask (mask.h), borrowed; NULL none */
 };
 
+enum mount_kind { MOUNT_UNKNOWN, MOUNT_GERMAN, MOUNT_FORK, MOUNT_ALTAZ };
+
+/* A telescope of a site. What is NAN is not known; the functions that need it say what stands for it. */
+struct telescope {
+	int64_t id, site_id; /* 0 when not stored */
+	const char *name;    /* "" none */
+	/* moving */
+	double slew_deg_s;   /* speed of a move */
+	double settle_min;   /* centring and settling after each move */
+	double filter_min;   /* change of filter between neighbours that need different ones */
+	double field_arcmin; /* stars closer together than half of it share a pointing; NAN: only planets of one star */
+	/* mount */
+	enum mount_kind mount;
+	double alt_min_deg, alt_max_deg;
+	double ha_east_h, ha_west_h;            /* how far from the meridian it reaches on either side [hours] */
+	double zenith_deg;                      /* radius round the zenith that it can't follow through */
+	double flip_min;                        /* what a meridian flip takes */
+	double flip_before_min, flip_after_min; /* how far it may track short of, and past, the meridian */
+	/* light */
+	double aperture_m, obstruction; /* obstruction: of the diameter, 0..1 */
+	double throughput;              /* optics, filter and detector, 0..1 */
+	const char *band;               /* the observing band; "" not given */
+	double pixel_arcsec, gain_e_adu, read_noise_e, dark_e_s, full_well_e;
+	double defocus_px;              /* radius of the defocused image */
+	double exposure_s;              /* NAN: to be chosen */
+	double dead_s;                  /* between exposures */
+	double red_noise_ppt;           /* noise floor of a whole event */
+	/* standing blocks of every night: `evening-6..evening-9=evening flats;...` (tui/plan_time.h) */
+	const char *blocks, *note;
+};
+struct telescope telescope_empty(void); /* every number NAN, every text "" */
+
 /* What a run assumes of the Earth's clock. */
 struct earth_clock {
 	const struct leap_table *leap;

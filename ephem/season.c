@@ -100,7 +100,7 @@ static bool add_target(const struct night *night, const struct prepared *p,
 		if (last < first)
 			continue;
 		if (!ready)
-			tn = target_on_night(night, p, &star, suns);
+			tn = target_on_night(night, p, &star, suns, choice->free);
 		ready = true;
 		/* nothing of the night can be used and nobody asked for what is spoilt */
 		if (!choice->all && choice->min_chance > 0.0 && tn.limb.n == 0)

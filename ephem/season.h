@@ -16,6 +16,7 @@ struct window_choice {
 	int kinds;
 	bool all;          /* every event of the night, whatever spoils it */
 	double min_chance; /* otherwise: see window_listed */
+	const struct free_time *free; /* what is left of the night; NULL: all of it */
 };
 /* Replaces the list's contents by the night's windows of prepared[n], sorted by reserve start, then target name, kind, epoch. Windows borrow
  * prepared[] and the night. *hidden (may be NULL) counts events that are usable for some moment or have a chance of at least 0.0005 but are not listed. */

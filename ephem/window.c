@@ -9,7 +9,8 @@
 #include <string.h>
 
 const char *const part_words[PART_COUNT] = {"before", "ingress", "flat", "egress", "after"};
-const char *const cause_words[CAUSE_COUNT] = {"sun", "altitude", "mask", "moon", "airmass", "noon"};
+const char *const cause_words[CAUSE_COUNT] = {"sun",	   "altitude", "mask",	"moon", "airmass",
+					      "allotment", "cloud",    "block", "noon"};
 
 #define SUN_NEAR_DEG 45.0 /* keep-out round the Sun while it is up (common practice, no source) */
 #define PHASE_LOST_SHARE (1.0 / 6.0)
@@ -77,19 +78,24 @@ static double event_published_min(const struct prepared *p, enum event_kind kind
 	return hypot(mid_d, 2.0 * p->eph.period_d / PI * ecosw_err) * DAY_MIN;
 }
 
-/* How far the reserve reaches beyond a contact. */
-static double reserve_d(const struct prepared *p, const struct shape *shape, double published_min,
-			double wanted_d)
+/* What a reserve holds for the errors of a contact; 0 when they are unknown. */
+static double pad_of(const struct prepared *p, const struct shape *shape, double published_min)
 {
 	if (isnan(published_min))
-		return wanted_d;
+		return 0.0;
 	const double scale = p->limits.value[LIM_ERROR_SCALE];
 	const double half_t14_min = 0.5 * shape->t14_err_d * DAY_MIN;
 	const double error_min =
 	    hypot(hypot(scale * published_min, p->eph.systematic_min), scale * half_t14_min);
-	const double padded_min =
-	    p->limits.value[LIM_MIN_BASELINE] + p->limits.value[LIM_PAD] * error_min + p->eph.ttv_min;
-	return fmax(wanted_d, padded_min * MIN_D);
+	return (p->limits.value[LIM_PAD] * error_min + p->eph.ttv_min) * MIN_D;
+}
+
+/* How far the reserve reaches beyond a contact. */
+static double reserve_d(const struct prepared *p, double published_min, double pad_d, double wanted_d)
+{
+	if (isnan(published_min))
+		return wanted_d;
+	return fmax(wanted_d, p->limits.value[LIM_MIN_BASELINE] * MIN_D + pad_d);
 }
 
 static uint32_t shape_flags(const struct prepared *p, const struct shape *shape, enum event_kind kind)
@@ -133,8 +139,9 @@ static void make_event(struct window_event *ev, const struct target_night *tn, e
 	ev->flags = shape_flags(p, shape, kind);
 	const double published_min = event_published_min(p, kind, epoch);
 	event_errors(ev, p, shape, published_min);
-	ev->reserve_start_d = ev->t1_d - reserve_d(p, shape, published_min, ev->before_d);
-	ev->reserve_end_d = ev->t4_d + reserve_d(p, shape, published_min, ev->after_d);
+	ev->pad_d = pad_of(p, shape, published_min);
+	ev->reserve_start_d = ev->t1_d - reserve_d(p, published_min, ev->pad_d, ev->before_d);
+	ev->reserve_end_d = ev->t4_d + reserve_d(p, published_min, ev->pad_d, ev->after_d);
 	ev->latest_start_d = ev->t1_d - p->limits.value[LIM_MIN_BASELINE] * MIN_D;
 	if (ev->t4_d < 0.0 || ev->t1_d >= tn->night->length_d)
 		ev->flags |= FLAG_BIT(FLAG_OTHER_NIGHT);

@@ -35,7 +35,19 @@ enum part { PART_BEFORE, PART_INGRESS, PART_FLAT, PART_EGRESS, PART_AFTER, PART_
 extern const char *const part_words[PART_COUNT];
 
 /* What takes time, in the order in which ties are decided. */
-enum cause { CAUSE_SUN, CAUSE_ALTITUDE, CAUSE_MASK, CAUSE_MOON, CAUSE_AIRMASS, CAUSE_NOON, CAUSE_COUNT, CAUSE_NONE = -1 };
+enum cause {
+	CAUSE_SUN,
+	CAUSE_ALTITUDE,
+	CAUSE_MASK,
+	CAUSE_MOON,
+	CAUSE_AIRMASS,
+	CAUSE_ALLOTMENT, /* the time is not the team's */
+	CAUSE_CLOUD,     /* lost */
+	CAUSE_BLOCK,     /* taken by a block */
+	CAUSE_NOON,
+	CAUSE_COUNT,
+	CAUSE_NONE = -1
+};
 extern const char *const cause_words[CAUSE_COUNT];
 
 enum stage { STAGE_EVENT, STAGE_SKY, STAGE_COVER, STAGE_CHANCE, STAGE_FORECAST };
@@ -50,6 +62,7 @@ struct window_event {
 	double chance_sigma_d, chance_contact_d; /* with error scale: what the chances use; NAN: no chance */
 	double before_d, after_d;             /* wanted baselines B */
 	double reserve_start_d, reserve_end_d, latest_start_d;
+	double pad_d;          /* what the reserve holds for the errors of a contact, b_min not in it; 0 when they are unknown */
 	double depth_ppt;
 	uint32_t flags;
 };
@@ -85,12 +98,21 @@ struct window {
 	const struct prepared *sibling[SIBLINGS_MAX];
 };
 
+/* What is left of a night for observing, apart from sky and target: sets in which it is allowed, each by its cause. */
+struct free_time {
+	struct intervals allotted, clear, unblocked; /* times of the night; may reach beyond [0, length] */
+};
+struct free_time free_time_whole(void); /* nothing is taken */
+/* All three at once. */
+struct intervals free_time_all(const struct free_time *f);
+
 /* A target on a night: its star and the sets in which it can be observed, each by its cause. */
 struct target_night {
 	const struct night *night;
 	const struct prepared *prepared;
 	struct star star;
 	struct intervals sun_limb, sun_baseline, altitude, mask, airmass, moon; /* allowed by each cause, in [0, length] */
+	const struct free_time *free; /* borrowed; NULL: the whole night */
 	struct intervals limb, baseline; /* allowed by all */
 };
 /* Sun sets of one night by limit, so that targets with the same limit share one. Start with n = 0 on every night. */
@@ -100,7 +122,8 @@ struct sun_sets {
 	double limit_deg[SUN_SETS_MAX];
 	struct intervals set[SUN_SETS_MAX];
 };
-struct target_night target_on_night(const struct night *n, const struct prepared *p, const struct star *s, struct sun_sets *suns);
+struct target_night target_on_night(const struct night *n, const struct prepared *p, const struct star *s, struct sun_sets *suns,
+				    const struct free_time *free);
 
 /* Epochs whose [T1, T4] touches the night: [*first, *last], false when none (then *last = *first - 1, where the count is possible at all; else
  * both 0). At most EVENTS_PER_NIGHT_MAX. */

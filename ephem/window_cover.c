@@ -24,11 +24,23 @@ static const struct intervals *sun_set(const struct night *n, double limit_deg, 
 	return &suns->set[i];
 }
 
+struct free_time free_time_whole(void)
+{
+	const struct intervals all = intervals_one(-1e3, 1e3);
+	return (struct free_time){all, all, all};
+}
+
+struct intervals free_time_all(const struct free_time *f)
+{
+	const struct intervals ours = intervals_and(&f->allotted, &f->clear);
+	return intervals_and(&ours, &f->unblocked);
+}
+
 struct target_night target_on_night(const struct night *n, const struct prepared *p, const struct star *s,
-				    struct sun_sets *suns)
+				    struct sun_sets *suns, const struct free_time *free)
 {
 	const double *limit = p->limits.value;
-	struct target_night tn = {.night = n, .prepared = p, .star = *s};
+	struct target_night tn = {.night = n, .prepared = p, .star = *s, .free = free};
 	tn.sun_limb = *sun_set(n, limit[LIM_SUN], suns);
 	tn.sun_baseline =
 	    *sun_set(n, isnan(limit[LIM_SUN_BASELINE]) ? limit[LIM_SUN] : limit[LIM_SUN_BASELINE], suns);
@@ -40,6 +52,10 @@ struct target_night target_on_night(const struct night *n, const struct prepared
 	struct intervals sky = intervals_and(&tn.altitude, &tn.airmass);
 	sky = intervals_and(&sky, &tn.mask);
 	sky = intervals_and(&sky, &tn.moon);
+	if (free) {
+		const struct intervals left = free_time_all(free);
+		sky = intervals_and(&sky, &left);
+	}
 	tn.limb = intervals_and(&sky, &tn.sun_limb);
 	tn.baseline = intervals_and(&sky, &tn.sun_baseline);
 	return tn;
@@ -65,6 +81,9 @@ static enum cause worst_cause(const struct target_night *tn, struct span part, b
 	    [CAUSE_MASK] = &tn->mask,
 	    [CAUSE_MOON] = &tn->moon,
 	    [CAUSE_AIRMASS] = &tn->airmass,
+	    [CAUSE_ALLOTMENT] = tn->free ? &tn->free->allotted : NULL,
+	    [CAUSE_CLOUD] = tn->free ? &tn->free->clear : NULL,
+	    [CAUSE_BLOCK] = tn->free ? &tn->free->unblocked : NULL,
 	};
 	const double from_d = fmax(part.from_d, 0.0), to_d = fmin(part.to_d, tn->night->length_d);
 	const double inside_d = fmax(to_d - from_d, 0.0);

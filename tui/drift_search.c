@@ -114,7 +114,7 @@ static void look_at(struct search *s, struct drift_row *row)
 		if (hopeless(s, row, &star, epoch))
 			continue;
 		if (!ready)
-			tn = target_on_night(&s->night, p, &star, &s->suns);
+			tn = target_on_night(&s->night, p, &star, &s->suns, NULL);
 		ready = true;
 		if (tn.limb.n == 0)
 			return;

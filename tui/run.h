@@ -77,6 +77,8 @@ struct night_view {
 	struct night_dark dark; /* at the run's Sun limit */
 	struct window_list list;
 	long hidden;
+	struct free_time free; /* the site's allotments of that night, less what a plan takes */
+	bool cut;	       /* an allotment, a block or lost time cuts it */
 };
 MUST_USE enum status run_night(struct run *r, int32_t evening_mjd, bool people, struct night_view *v, struct err *e);
 MUST_USE enum status run_night_at(struct run *r, const struct site *site, int32_t evening_mjd, bool people, struct night_view *v,

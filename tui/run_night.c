@@ -46,10 +46,12 @@ enum status run_night_at(struct run *r, const struct site *site, int32_t evening
 {
 	const struct options *o = r->options;
 	struct window_choice choice = {
-	    .kinds = r->kinds, .all = o->all, .min_chance = run_min_chance(r, people)};
+	    .kinds = r->kinds, .all = o->all, .min_chance = run_min_chance(r, people), .free = &v->free};
 	enum status s = night_build(&v->night, site, &r->clock, evening_mjd, r->memo, e);
 	if (s != ST_OK)
 		return s;
+	v->free = free_time_whole();
+	v->cut = false;
 	v->dark = night_dark(&v->night, r->limits.value[LIM_SUN]);
 	return night_windows(&v->night, r->prepared, r->n_prepared, &choice, &v->list, &v->hidden, e);
 }

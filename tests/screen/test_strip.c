@@ -237,7 +237,7 @@ static void test_curve(void **state)
 		const struct window *win = &v.list.w[w];
 		struct star star = night_star(&v.night, win->event.prepared->target);
 		struct intervals dark = night_sun_below(&v.night, -12.0);
-		curve_make(&c, ROWS, &a, win, &v.night, &star);
+		curve_make(&c, ROWS, &a, win, &v.night, &star, NULL);
 		assert_int_equal(c.rows, ROWS);
 		for (int col = 0; col < COLS; col++) {
 			double t = axis_time(&a, col + 0.25);
@@ -258,7 +258,7 @@ static void test_curve(void **state)
 		/* (90 - 30) / 90 of 35 steps: dot 23, row 5 */
 		assert_string_equal(c.label[5], "30");
 	}
-	curve_make(&c, 2, &a, &v.list.w[0], &v.night, &(struct star){0});
+	curve_make(&c, 2, &a, &v.list.w[0], &v.night, &(struct star){0}, NULL);
 	assert_int_equal(c.rows, 0);
 	night_view_free(&v);
 	fixture_close(f);
@@ -279,7 +279,7 @@ static void test_curve_mask(void **state)
 	axis_make(&a, &v.night, f->run.zone, -12.0, COLS);
 	const struct window *w = &v.list.w[0];
 	struct star star = night_star(&v.night, w->event.prepared->target);
-	curve_make(&c, ROWS, &a, w, &v.night, &star);
+	curve_make(&c, ROWS, &a, w, &v.night, &star, NULL);
 	int dot = (int)floor((90.0 - 40.0) / 90.0 * (4 * ROWS - 1) + 0.5), seen = 0;
 	for (int col = 0; col < COLS; col++)
 		seen += c.cell[dot / 4][col].glyph == GLYPH_MASK;

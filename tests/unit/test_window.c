@@ -58,7 +58,7 @@ static struct window window_of(const struct target *t, const struct night *n, co
 	long first = 99, last = 99;
 	assert_true(window_epochs(n, &s, p, KIND_TRANSIT, &first, &last));
 	struct sun_sets suns = {.n = 0};
-	const struct target_night tn = target_on_night(n, p, &s, &suns);
+	const struct target_night tn = target_on_night(n, p, &s, &suns, NULL);
 	window_make(&w, &tn, KIND_TRANSIT, first, STAGE_FORECAST);
 	return w;
 }

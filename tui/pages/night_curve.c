@@ -81,10 +81,10 @@ static void label(struct curve *c, double alt_deg)
 }
 
 void curve_make(struct curve *c, int rows, const struct night_axis *axis, const struct window *w,
-		const struct night *night, const struct star *star)
+		const struct night *night, const struct star *star, const struct free_time *free)
 {
 	struct sun_sets suns = {.n = 0};
-	struct target_night tn = target_on_night(night, w->event.prepared, star, &suns);
+	struct target_night tn = target_on_night(night, w->event.prepared, star, &suns, free);
 	double limit = w->event.prepared->limits.value[LIM_ALT];
 	c->rows = rows > CURVE_ROWS_MAX ? CURVE_ROWS_MAX : rows < CURVE_ROWS_MIN ? 0 : rows;
 	c->cols = axis->cols;

@@ -21,7 +21,7 @@ struct curve {
 /* From 90 degrees at the top to 0 at the foot. The target's line is whole where the target can be observed
  * and broken where it can't. site's mask is compared with apparent altitudes and drawn as airless ones. */
 void curve_make(struct curve *c, int rows, const struct night_axis *axis, const struct window *w,
-		const struct night *night, const struct star *star);
+		const struct night *night, const struct star *star, const struct free_time *free);
 /* Draws rows + 1 rows, labels left of col. */
 void curve_draw(const struct curve *c, const struct night_axis *axis, struct grid *g, int row, int col);
 

@@ -141,7 +141,8 @@ static void make_strip(struct night_page *p, size_t row, struct strip *s)
 {
 	if (s->row == row)
 		return;
-	strip_of_window(s, &p->axis, p->rows.row[row].window, &p->view.night, &p->rows.row[row].star);
+	strip_of_window(s, &p->axis, p->rows.row[row].window, &p->view.night, &p->rows.row[row].star,
+			&p->view.free);
 	s->row = row;
 }
 
@@ -155,5 +156,6 @@ void night_page_make_pictures(struct night_page *p)
 			make_strip(p, i, &p->strip[i % STRIP_SLOTS]);
 	else
 		make_strip(p, p->selected, &p->strip[0]);
-	curve_make(&p->curve, p->shape.curve, &p->axis, row->window, &p->view.night, &row->star);
+	curve_make(&p->curve, p->shape.curve, &p->axis, row->window, &p->view.night, &row->star,
+		   &p->view.free);
 }

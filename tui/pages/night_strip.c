@@ -111,10 +111,10 @@ void strip_make(struct strip *s, const struct night_axis *axis, const struct win
 }
 
 void strip_of_window(struct strip *s, const struct night_axis *axis, const struct window *w,
-		     const struct night *night, const struct star *star)
+		     const struct night *night, const struct star *star, const struct free_time *free)
 {
 	struct sun_sets suns = {.n = 0};
-	struct target_night tn = target_on_night(night, w->event.prepared, star, &suns);
+	struct target_night tn = target_on_night(night, w->event.prepared, star, &suns, free);
 	strip_make(s, axis, w, &(struct strip_sky){&night->sun_up, &tn.sun_limb, &tn.limb});
 }
 

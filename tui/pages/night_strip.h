@@ -26,7 +26,7 @@ void strip_make(struct strip *s, const struct night_axis *axis, const struct win
 		const struct strip_sky *sky);
 /* The same with the sky of the window's target on its night. */
 void strip_of_window(struct strip *s, const struct night_axis *axis, const struct window *w,
-		     const struct night *night, const struct star *star);
+		     const struct night *night, const struct star *star, const struct free_time *free);
 /* now_col of the axis shows as a line, but for limbs, mid-time and losses. */
 void strip_draw(const struct strip *s, const struct night_axis *axis, struct grid *g, int row, int col);
 
