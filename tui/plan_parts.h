@@ -29,6 +29,8 @@ MUST_USE enum status member_target(struct plan_view *v, struct plan_member_view 
 const char *item_key(struct plan_view *v, const struct plan_item_view *item);
 /* Which prepared target of the run has this id, or, 0, this name; NULL none. */
 const struct prepared *run_prepared(const struct run *r, int64_t id, const char *name);
+/* Id of the run's telescope; 0 the site's unnamed one. */
+int64_t plan_telescope_id(const struct run *r);
 
 /* --- the user's choices --- */
 enum choice_kind { CHOICE_PIN, CHOICE_DROP, CHOICE_BLOCK, CHOICE_LOST, CHOICE_POOR, CHOICE_KINDS };
