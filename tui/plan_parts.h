@@ -75,6 +75,8 @@ MUST_USE enum status blocks_resolve(struct plan_view *v, const struct plan_choic
 				    const struct plan_wish *wish, struct echo *echo, struct err *e);
 /* Takes blocks and lost time off the free time of the night. */
 void blocks_free_time(const struct plan_view *v, const struct night *night, struct free_time *free);
+/* Marks the blocks in which the Sun is not well below the horizon. */
+void blocks_near_sun(struct plan_view *v);
 /* Share of its worth that poor time takes of an event: by the share of [T1, T4] in it, 1 - 1/N^2. */
 double poor_share(const struct plan_view *v, const struct night *night, const struct window *w);
 
@@ -102,6 +104,9 @@ MUST_USE enum status plan_stand(struct plan_view *v, const struct plan_wish *wis
 /* The running order of v->night: items, left out, worth. */
 MUST_USE enum status plan_propose(struct plan_view *v, const struct plan_choices *c, const struct plan_standing *standing, bool costs,
 				  struct err *e);
+/* Why an offer of a plan was left out, in words; items are named by v and by what stands. The view's. */
+const char *left_words(struct plan_view *v, const struct night_plan *p, const struct plan_offer offer[],
+		       const struct plan_left *left, const struct plan_standing *standing, const size_t fixed_item[]);
 /* Sentences of what to do when the first limb is missed, for every item of the finished order. */
 void plan_if_missed(struct plan_view *v);
 /* Items in the light of the night: in_day; order numbers. */
