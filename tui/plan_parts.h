@@ -7,12 +7,18 @@
 #include "tui/plan_make.h"
 #include "tui/plan_time.h"
 
+struct plan_choices;
+
 /* --- memory: zeroed pieces that live until plan_view_free; NULL, and v->arena marked, when there is none --- */
 void *plan_alloc(struct plan_view *v, size_t n, size_t size);
 const char *plan_copy(struct plan_view *v, const char *text); /* "" when there is no memory: ask plan_memory at the end */
 const char *plan_copy_n(struct plan_view *v, const char *text, size_t n);
 /* ST_MEMORY when some piece could not be had since the view began. */
 MUST_USE enum status plan_memory(const struct plan_view *v, struct err *e);
+
+/* The choices that a view was made with, for storing it. NULL until they are set. */
+void plan_choices_set(struct plan_view *v, const struct plan_choices *c);
+const struct plan_choices *plan_choices_of(const struct plan_view *v);
 
 /* --- figures --- */
 /* A member has a text more than there are columns: the pad of the reserve [min], which says when to be on target for the egress alone. */
@@ -89,6 +95,11 @@ MUST_USE enum status stored_view(struct plan_view *v, const struct plan_row *row
 MUST_USE enum status stored_moves(struct plan_view *v, double moved_min, struct err *e);
 /* Items of earlier editions that are in this one no more. */
 MUST_USE enum status stored_gone(struct plan_view *v, const struct plan_row *row, struct err *e);
+
+/* Effective limits and rules of moving, `name=value` with a tab between; NULL no memory. */
+const char *plan_limits_text(struct plan_view *v);
+/* What was left out, a line each: target, kind, epoch, reason, cost. NULL no memory. */
+const char *left_text(struct plan_view *v);
 
 /* --- proposals --- */
 /* What stands when a plan is worked out anew. */
