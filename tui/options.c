@@ -40,7 +40,7 @@ static const struct option_row rows[] = {
     {"--place", "LAT,LON,HEIGHT",
      "Stands for a stored site: degrees north, degrees east, metres (or with letters: 38.62N,109.36W,2100).",
      GROUP_COMMON, OPT_PLACES, 0, 0, 0, NULL},
-    {"--telescope", "NAME", "A stored telescope.", GROUP_COMMON, OPT_TEXT, AT(telescope), 0, 0, NULL},
+    {"--telescope", "NAME", "A stored telescope of the site (the only one, where it has one).", GROUP_COMMON, OPT_TEXT, AT(telescope), 0, 0, NULL},
     {"--target", "NAME", "Only this target; again for more.", GROUP_COMMON, OPT_TARGETS, 0, 0, 0, NULL},
     {"--radec", "RA,DEC", "Stands for a stored target: ICRS degrees, or hh:mm:ss.s,+dd:mm:ss.", GROUP_COMMON,
      OPT_TEXT, AT(radec), 0, 0, NULL},
@@ -64,6 +64,8 @@ static const struct option_row rows[] = {
      "The horizon mask of the site, lines of azimuth, altitude in degrees, in place of the stored one; "
      "`none`: none.",
      GROUP_COMPUTE | GROUP_SITE, OPT_TEXT, AT(mask), 0, 0, NULL},
+    {"--no-allotments", NULL, "The whole night, whatever time is allotted of it (wane allot list).",
+     GROUP_COMPUTE, OPT_FLAG, AT(no_allotments), 0, 0, NULL},
     {"--min-chance", "P",
      "List a window when the chance of its ingress or egress reaches P (0.05 in csv and json, 0.5 in text).",
      GROUP_WINDOWS, OPT_NUMBER, AT(min_chance), 0, 1, NULL},
@@ -80,6 +82,10 @@ static const struct option_row rows[] = {
      AT(adopt), 0, 0, NULL},
     {"--zone", "ZONE", "The site's IANA time zone, as in America/Denver.", GROUP_SITE, OPT_TEXT_OR_EMPTY,
      AT(zone), 0, 0, NULL},
+    {"--half", "RULE",
+     "Where the site's nights are halved: `dark` (between dusk and dawn), `sunset` (between sunset and "
+     "sunrise) or HH:MM of its clocks.",
+     GROUP_SITE, OPT_TEXT, AT(half), 0, 0, NULL},
     {"--limit", "MIN",
      "The error beyond which an ephemeris is stale, in minutes (each target's own: wanted less least "
      "baseline, over pad).",

@@ -30,14 +30,14 @@ enum option_group {
 
 /* Options of one call, parsed; texts borrow from argv. NULL / NAN / false / 0: not given. */
 struct options {
-	const char *db, *settings, *telescope, *format, *out, *now, *radec, *at, *from, *to, *zone, *mask;
+	const char *db, *settings, *telescope, *format, *out, *now, *radec, *at, *from, *to, *zone, *mask, *half;
 	const char *site[OPTION_NAMES_MAX];
 	int n_sites;
 	const char *place[OPTION_NAMES_MAX];
 	int n_places;
 	const char *target[OPTION_NAMES_MAX];
 	int n_targets;
-	bool plain, force, all, dry_run, strict, adopt, help, version;
+	bool plain, force, all, dry_run, strict, adopt, help, version, no_allotments;
 	double min_chance; /* NAN not given */
 	double ut1_utc_s;  /* NAN not given */
 	/* drift, midtime, refit, undo */

@@ -1,6 +1,6 @@
 /* SPDX-License-Identifier: MIT
  * What comes out of an open run: where its result goes, and its nights. */
-#include "tui/run.h"
+#include "tui/run_parts.h"
 
 #include <math.h>
 #include <stdio.h>
@@ -52,6 +52,8 @@ enum status run_night_at(struct run *r, const struct site *site, int32_t evening
 		return s;
 	v->free = free_time_whole();
 	v->cut = false;
+	v->night.telescope = r->has_telescope && site->id == r->telescope.site_id ? &r->telescope : NULL;
+	run_cut_by_allotments(r, v);
 	v->dark = night_dark(&v->night, r->limits.value[LIM_SUN]);
 	return night_windows(&v->night, r->prepared, r->n_prepared, &choice, &v->list, &v->hidden, e);
 }

@@ -89,8 +89,8 @@ const struct command commands[] = {
      "--format csv`.\n",
      0, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, OPTION_NAMES_MAX, command_target},
     {"site", "list | show NAME | add NAME | set NAME | remove NAME", "The stored sites.",
-     "add and set take --place LAT,LON,HEIGHT, --zone ZONE and --mask FILE (`none` takes the stored one "
-     "away). A mask file "
+     "add and set take --place LAT,LON,HEIGHT, --zone ZONE, --half RULE and --mask FILE (`none` takes the "
+     "stored one away). A mask file "
      "has\na point a line: azimuth from north through east, apparent altitude of the horizon, in degrees, 1 "
      "to 720 of "
      "them; straight\nlines between. `#` begins a comment.\n",
