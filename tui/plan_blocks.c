@@ -105,12 +105,6 @@ void echo_add(struct echo *echo, const char *what, const struct plan_clock *cloc
 
 /* --- to instants --- */
 
-struct plan_clock plan_clock_of(const struct run *r, const struct night *night)
-{
-	return (struct plan_clock){
-	    .night = night, .zone = r->zone, .leap = &r->leap, .sun_limit_deg = r->limits.value[LIM_SUN]};
-}
-
 int64_t plan_telescope_id(const struct run *r)
 {
 	return r->telescope.id;
@@ -208,7 +202,7 @@ static int by_time(const void *a, const void *b)
 enum status blocks_resolve(struct plan_view *v, const struct plan_choices *c, const struct plan_clock *clock,
 			   const struct plan_wish *wish, struct echo *echo, struct err *e)
 {
-	const char *blocks = v->run->telescope.blocks ? v->run->telescope.blocks : "";
+	const char *blocks = v->run->telescope.blocks;
 	enum status s = ST_OK;
 	v->n_blocks = 0;
 	for (size_t i = 0; s == ST_OK && i < c->n; i++)

@@ -1,7 +1,6 @@
 /* SPDX-License-Identifier: MIT
  * The plan of a night: as it is stored, or worked out anew from what is stored and what is wished. */
 #include "db/history.h"
-#include "ephem/siblings.h"
 #include "ephem/units.h"
 #include "tui/plan_parts.h"
 
@@ -110,7 +109,7 @@ void plan_finish(struct plan_view *v)
 static enum status as_stored(struct plan_view *v, struct run *r, const struct plan_row *row,
 			     struct night_view *night, double moved_min, struct err *e)
 {
-	enum status s = v->n_blocks > 0 ? cut_night(v, r, night, e) : ST_OK;
+	enum status s = cut_night(v, r, night, e);
 	if (s == ST_OK)
 		s = stored_moves(v, moved_min, e);
 	if (s == ST_OK)
@@ -140,11 +139,9 @@ static enum status has_window(const struct plan_view *v, const char *word, const
 		       word, MIN_CHANCE_MACHINE, got);
 }
 
-static enum status wished_windows(const struct plan_view *v, const struct plan_wish *w,
-				  const struct plan_standing *standing, struct err *e)
+static enum status wished_windows(const struct plan_view *v, const struct plan_wish *w, struct err *e)
 {
 	enum status s = ST_OK;
-	(void)standing;
 	for (int i = 0; s == ST_OK && i < w->n_pin; i++)
 		s = has_window(v, "pin", w->pin[i], e);
 	for (int i = 0; s == ST_OK && i < w->n_drop; i++)
@@ -156,19 +153,19 @@ static enum status make_anew(struct plan_view *v, struct run *r, const struct pl
 			     struct plan_choices *c, struct night_view *night, struct echo *echo,
 			     struct err *e)
 {
-	const struct plan_clock clock = plan_clock_of(r, &night->night);
+	const struct plan_clock clock = run_plan_clock(r, &night->night);
 	struct plan_standing standing;
 	if (wish->afresh)
 		c->n = 0;
 	enum status s = choices_wish(v, c, wish, e);
 	if (s == ST_OK)
-		s = wished_windows(v, wish, &standing, e);
-	if (s == ST_OK)
 		s = blocks_resolve(v, c, &clock, wish, echo, e);
 	if (s == ST_OK)
-		s = plan_stand(v, wish, &clock, c, echo, &standing, e);
-	if (s == ST_OK && v->n_blocks > 0)
 		s = cut_night(v, r, night, e);
+	if (s == ST_OK)
+		s = wished_windows(v, wish, e);
+	if (s == ST_OK)
+		s = plan_stand(v, wish, &clock, c, echo, &standing, e);
 	if (s == ST_OK)
 		s = head_of_made(v, e);
 	if (s == ST_OK)
@@ -183,7 +180,7 @@ static enum status get(struct run *r, int32_t evening_mjd, const struct plan_wis
 	struct plan_choices *c = plan_alloc(v, 1, sizeof *c);
 	if (!c)
 		return plan_memory(v, e);
-	enum status s = plan_night(r, evening_mjd, night, e);
+	enum status s = run_night_free(r, &r->site, evening_mjd, night, e);
 	if (s == ST_OK && row->id != 0)
 		s = stored_view(v, row, c, e);
 	if (s != ST_OK)

@@ -68,8 +68,6 @@ struct event_name {
 };
 MUST_USE enum status event_name_find(const struct run *r, const char *text, struct event_name *out, struct err *e);
 
-/* Times of a night as they are typed. */
-struct plan_clock plan_clock_of(const struct run *r, const struct night *night);
 /* v->block from choices and standing blocks; echo (may be NULL) gets a line for each time in `wish`. */
 struct echo {
 	char *text; /* the caller's to free */

@@ -100,6 +100,8 @@ struct night_view {
 MUST_USE enum status run_night(struct run *r, int32_t evening_mjd, bool people, struct night_view *v, struct err *e);
 MUST_USE enum status run_night_at(struct run *r, const struct site *site, int32_t evening_mjd, bool people, struct night_view *v,
 				  struct err *e);
+/* The same without its windows, which stay as they were: for those who cut the night further before they ask for them. */
+MUST_USE enum status run_night_free(struct run *r, const struct site *site, int32_t evening_mjd, struct night_view *v, struct err *e);
 void night_view_free(struct night_view *v);
 /* Says on standard error which allotments of the night allot nothing, and that none is stored for it where other nights have some. */
 void run_night_notes(const struct night_view *v);
