@@ -116,6 +116,14 @@ MUST_USE enum status plan_propose(struct plan_view *v, const struct plan_choices
 /* Why an offer of a plan was left out, in words; items are named by v and by what stands. The view's. */
 const char *left_words(struct plan_view *v, const struct night_plan *p, const struct plan_offer offer[],
 		       const struct plan_left *left, const struct plan_standing *standing, const size_t fixed_item[]);
+/* --- words --- */
+/* `02:11 MDT`, with the date where it is neither that of the evening nor the next. */
+enum { PLAN_CLOCK_BYTES = 48, PLAN_NAME_BYTES = 2 * NAME_BYTES_MAX };
+void plan_clock_words(const struct plan_view *v, struct utc t, char out[PLAN_CLOCK_BYTES]);
+/* `Tern 3 b`, `Tern 3 b with Tern 3 c` */
+void plan_item_name(const struct plan_item_view *item, char out[PLAN_NAME_BYTES]);
+/* snprintf that cuts between characters. */
+void plan_put_words(char *out, size_t room, const char *format, ...) __attribute__((format(printf, 3, 4)));
 /* Sentences of what to do when the first limb is missed, for every item of the finished order. */
 void plan_if_missed(struct plan_view *v);
 /* Items in the light of the night: in_day; order numbers. */
