@@ -57,6 +57,10 @@ int64_t order_relaxed(struct order_net *net, const int64_t gain[]);
 /* Ranks of the last relaxed answer in order of time; returns how many. */
 int order_chain(const struct order_net *net, int chain[]);
 
+/* The same from behind: end[j], the greatest sum of an order that begins with rank j; beyond is for its own
+ * use [n + 1]. */
+void order_ends(struct order_net *net, const int64_t gain[], int64_t end[], int64_t beyond[]);
+
 /* The best order in which every event is taken once, as ranks in order of time. */
 struct order_found {
 	int n;
@@ -67,5 +71,25 @@ struct order_found {
 };
 MUST_USE enum status order_split(struct order_net *net, int n_events, long looks_max, struct order_found *out,
 				 struct err *e);
+
+/* Makes orders that take every event once; *found keeps the best of them. */
+struct order_maker {
+	struct order_net *net;
+	struct order_found *found;
+	size_t words;	/* of a set of events; 0: no memory for such sets */
+	uint64_t *held; /* [n][words]: events of the best order that ends with a rank */
+	int64_t *value, *top;
+	int *before, *chain;
+	int *owner; /* [n_events]: place in a chain of the item that holds it, or -1 */
+	bool *kept;
+};
+MUST_USE enum status order_maker_open(struct order_maker *m, struct order_net *net, int n_events,
+				      struct order_found *found, struct err *e);
+void order_maker_close(struct order_maker *m); /* after a failed order_maker_open too */
+/* From a relaxed answer. */
+void order_make_from_chain(struct order_maker *m, const int chain[], int n);
+/* By gains (ORDER_BARRED: not to be taken): each rank follows the best order that holds none of its events.
+ * Good, not always the best. */
+void order_make_from_gains(struct order_maker *m, const int64_t gain[]);
 
 #endif

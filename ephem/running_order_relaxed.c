@@ -104,6 +104,28 @@ int64_t order_relaxed(struct order_net *net, const int64_t gain[])
 	return net->top[net->n];
 }
 
+void order_ends(struct order_net *net, const int64_t gain[], int64_t end[], int64_t beyond[])
+{
+	int64_t surely = 0; /* best end of those that surely may follow: beyond[k] is for all ranks below k */
+	for (int i = 0; i < net->n; i++)
+		end[i] = beyond[i + 1] = 0;
+	beyond[0] = 0;
+	for (int i = net->n - 1; i >= 0; i--) {
+		surely = beyond[i + 1] > surely ? beyond[i + 1] : surely;
+		if (gain[i] <= ORDER_BARRED / 2) {
+			end[i] = ORDER_BARRED;
+			continue;
+		}
+		end[i] =
+		    gain[i] + (end[i] > surely ? end[i] : surely); /* so far it held the best near follower */
+		int64_t *below = &beyond[net->sure[i]];
+		*below = end[i] > *below ? end[i] : *below;
+		for (int k = net->sure[i]; k < net->near[i]; k++)
+			if (end[i] > end[k] && near_pair(net, k, i))
+				end[k] = end[i];
+	}
+}
+
 int order_chain(const struct order_net *net, int chain[])
 {
 	int n = 0;

@@ -12,7 +12,7 @@
 #include <stdlib.h>
 #include <string.h>
 
-enum { ROOT_ROUNDS = 60, BRANCH_ROUNDS = 8, PATIENCE = 4 };
+enum { ROOT_ROUNDS = 60, BRANCH_ROUNDS = 8, PATIENCE = 4, MAKE_EVERY = 8 };
 /* After so many looks an order that only has fewer items for the same worth is no longer looked for. */
 enum { TIE_LOOKS = 3000 };
 #define SUM_MAX ((int64_t)1 << 61)
@@ -22,17 +22,19 @@ struct search {
 	int n_events, n_shared;
 	int *shared;		 /* events with two holders or more */
 	int64_t *fee;		 /* [n_events] */
-	int *count, *owner;	 /* [n_events]: times taken; rank of a repair that holds it, or -1 */
+	int *count;		 /* [n_events]: times taken */
 	int *holder_at, *holder; /* [n_events + 1]; ranks that hold an event, ascending */
 	int *barred;		 /* [n]: branches that bar the rank */
 	int64_t *gain;		 /* [n] */
 	int *plain, *chain;	 /* [n] */
-	bool *kept;		 /* [n] */
 	long looks, looks_max;
 	double stride;
-	bool cut_short;
-	int64_t open; /* bound of branches that were not looked into */
+	int64_t *end, *beyond; /* of order_ends */
+	int *hopeless,
+	    n_hopeless; /* ranks barred for their bound, each branch's above those of the branches over it */
+	int64_t open;	/* bound of branches that were not looked into */
 	struct order_found *found;
+	struct order_maker maker;
 };
 struct cut {
 	int event, rank; /* holders below the rank, and those from it on */
@@ -59,58 +61,8 @@ static bool closed(const struct search *s, int64_t bound)
 	       (s->looks > TIE_LOOKS && amount(scale, bound) <= amount(scale, s->found->score));
 }
 
-/* Of two items with an event in common the lesser goes. */
-static void keep_each_event_once(struct search *s, const int chain[], int n)
-{
-	const struct order_net *net = s->net;
-	for (int k = 0; k < n; k++) {
-		const struct order_spot *spot = &net->spot[chain[k]];
-		int64_t others = 0;
-		for (int i = 0; i < spot->n_events; i++) {
-			int owner = s->owner[spot->event[i]];
-			if (owner >= 0 && s->kept[owner])
-				others += net->score[chain[owner]];
-		}
-		s->kept[k] = others < net->score[chain[k]];
-		for (int i = 0; s->kept[k] && i < spot->n_events; i++) {
-			int owner = s->owner[spot->event[i]];
-			if (owner >= 0)
-				s->kept[owner] = false;
-			s->owner[spot->event[i]] = k;
-		}
-	}
-	for (int k = 0; k < n; k++)
-		for (int i = 0; i < net->spot[chain[k]].n_events; i++)
-			s->owner[net->spot[chain[k]].event[i]] = -1;
-}
-
-/* Makes an order out of a relaxed answer and keeps it when it is the best so far. */
-static void offer(struct search *s, const int chain[], int n)
-{
-	struct order_net *net = s->net;
-	struct order_found *found = s->found;
-	keep_each_event_once(s, chain, n);
-	int64_t score = 0;
-	int last = -1;
-	for (int k = 0; k < n; k++) {
-		if (s->kept[k] && last >= 0 && !order_may_follow(net, last, chain[k]))
-			s->kept[k] = false; /* gaps that break the triangle inequality, or by a rounding */
-		if (!s->kept[k])
-			continue;
-		last = chain[k];
-		score += net->score[last];
-	}
-	if (score <= found->score)
-		return;
-	found->score = score;
-	found->n = 0;
-	for (int k = 0; k < n; k++)
-		if (s->kept[k])
-			found->chain[found->n++] = chain[k];
-}
-
-/* Relaxed answer of this branch under the fees (NULL: none), offered; *n is its length. Returns the bound
- * that it gives. */
+/* Relaxed answer of this branch under the fees (NULL: none), made into an order; *n is its length. Returns
+ * the bound that it gives. */
 static int64_t look(struct search *s, const int64_t fee[], int chain[], int *n)
 {
 	const struct order_net *net = s->net;
@@ -125,7 +77,7 @@ static int64_t look(struct search *s, const int64_t fee[], int chain[], int *n)
 	for (int i = 0; fee && i < s->n_shared && sum < SUM_MAX; i++)
 		sum += fee[s->shared[i]];
 	*n = order_chain(net, chain);
-	offer(s, chain, *n);
+	order_make_from_chain(&s->maker, chain, *n);
 	return sum < SUM_MAX ? tightened(s, sum) : INT64_MAX;
 }
 
@@ -200,6 +152,8 @@ static bool narrow(struct search *s, int rounds, int64_t *bound, struct cut *cut
 			s->stride *= 0.5;
 			idle = 0;
 		}
+		if (round % MAKE_EVERY == MAKE_EVERY - 1)
+			order_make_from_gains(&s->maker, s->gain);
 		adjust_fees(s, b, s->chain, n);
 	}
 	count_events(s, s->plain, n_plain);
@@ -214,22 +168,46 @@ static void bar(struct search *s, struct cut cut, bool late, int by)
 			s->barred[s->holder[k]] += by;
 }
 
+/* Bars what no order better than the best found can hold, by the bound of the orders that hold it. What is
+ * barred goes on the heap of the branch. */
+static void bar_hopeless(struct search *s)
+{
+	struct order_net *net = s->net;
+	int n;
+	int64_t bound = look(s, s->fee, s->chain, &n);
+	if (bound == INT64_MAX)
+		return;
+	int64_t fees = 0;
+	for (int i = 0; i < s->n_shared; i++)
+		fees += s->fee[s->shared[i]];
+	order_ends(net, s->gain, s->end, s->beyond);
+	for (int j = 0; j < net->n; j++) {
+		if (s->barred[j] || !closed(s, tightened(s, net->value[j] + s->end[j] - s->gain[j] + fees)))
+			continue;
+		s->barred[j]++;
+		s->hopeless[s->n_hopeless++] = j;
+	}
+}
+
 /* Each level bars an item more, so it ends. */
 static void explore(struct search *s, int rounds, int64_t bound)
 {
 	struct cut cut;
 	if (s->looks >= s->looks_max) {
-		s->cut_short = true;
 		s->open = bound > s->open ? bound : s->open;
 		return;
 	}
 	if (!narrow(s, rounds, &bound, &cut))
 		return;
+	int heap = s->n_hopeless;
+	bar_hopeless(s);
 	for (int side = 0; side < 2 && !closed(s, bound); side++) {
 		bar(s, cut, side == 0, 1);
 		explore(s, BRANCH_ROUNDS, bound);
 		bar(s, cut, side == 0, -1);
 	}
+	while (s->n_hopeless > heap)
+		s->barred[s->hopeless[--s->n_hopeless]]--;
 }
 
 static void list_holders(struct search *s)
@@ -242,7 +220,6 @@ static void list_holders(struct search *s)
 		if (s->holder_at[event + 1] > 1)
 			s->shared[s->n_shared++] = event;
 		s->holder_at[event + 1] += s->holder_at[event];
-		s->owner[event] = -1;
 	}
 	for (int j = 0; j < net->n; j++)
 		for (int i = 0; i < net->spot[j].n_events; i++) {
@@ -270,16 +247,17 @@ static bool search_open(struct search *s)
 	s->shared = calloc(events, sizeof *s->shared);
 	s->fee = calloc(events, sizeof *s->fee);
 	s->count = calloc(events, sizeof *s->count);
-	s->owner = calloc(events, sizeof *s->owner);
 	s->holder_at = calloc(events + 1, sizeof *s->holder_at);
 	s->holder = calloc(held, sizeof *s->holder);
 	s->barred = calloc(n, sizeof *s->barred);
 	s->gain = calloc(n, sizeof *s->gain);
+	s->end = calloc(n, sizeof *s->end);
+	s->beyond = calloc(n + 1, sizeof *s->beyond);
+	s->hopeless = calloc(n, sizeof *s->hopeless);
 	s->plain = calloc(n, sizeof *s->plain);
 	s->chain = calloc(n, sizeof *s->chain);
-	s->kept = calloc(n, sizeof *s->kept);
-	return s->shared && s->fee && s->count && s->owner && s->holder_at && s->holder && s->barred &&
-	       s->gain && s->plain && s->chain && s->kept;
+	return s->shared && s->fee && s->count && s->holder_at && s->holder && s->barred && s->gain &&
+	       s->plain && s->chain;
 }
 
 static void search_close(struct search *s)
@@ -287,14 +265,15 @@ static void search_close(struct search *s)
 	free(s->shared);
 	free(s->fee);
 	free(s->count);
-	free(s->owner);
 	free(s->holder_at);
 	free(s->holder);
 	free(s->barred);
 	free(s->gain);
+	free(s->end);
+	free(s->beyond);
+	free(s->hopeless);
 	free(s->plain);
 	free(s->chain);
-	free(s->kept);
 }
 
 enum status order_split(struct order_net *net, int n_events, long looks_max, struct order_found *out,
@@ -314,13 +293,16 @@ enum status order_split(struct order_net *net, int n_events, long looks_max, str
 	int64_t relaxed = out->score;
 	out->score = 0;
 	out->n = 0;
-	bool good = search_open(&s);
-	if (good) {
+	enum status status = order_maker_open(&s.maker, net, n_events, out, e);
+	if (status == ST_OK && !search_open(&s))
+		status = err_set(e, ST_MEMORY, "no memory for a running order of %d items", net->n);
+	if (status == ST_OK) {
 		list_holders(&s);
 		explore(&s, ROOT_ROUNDS, relaxed);
 		out->bound = s.open > out->score ? s.open : out->score;
 		out->optimal = amount(&net->scale, out->bound) <= amount(&net->scale, out->score);
 	}
 	search_close(&s);
-	return good ? ST_OK : err_set(e, ST_MEMORY, "no memory for a running order of %d items", net->n);
+	order_maker_close(&s.maker);
+	return status;
 }
