@@ -39,6 +39,17 @@ void sheet_instant(const struct plan_view *v, const struct zone *zone, struct ut
 	snprintf(out, SHEET_TIME_BYTES, "%s %s %s", date, clock, l.abbreviation);
 }
 
+void sheet_both(const struct plan_view *v, struct utc t, char out[SHEET_BOTH_BYTES])
+{
+	char local[SHEET_TIME_BYTES], utc[SHEET_TIME_BYTES];
+	sheet_instant(v, v->run->zone, t, local);
+	sheet_instant(v, NULL, t, utc);
+	if (v->run->zone)
+		snprintf(out, SHEET_BOTH_BYTES, "%s (%s)", local, utc);
+	else
+		snprintf(out, SHEET_BOTH_BYTES, "%s", utc);
+}
+
 void sheet_local(const struct plan_view *v, struct utc t, bool with_date, char out[SHEET_TIME_BYTES])
 {
 	char clock[8], date[SHEET_DATE_BYTES];
