@@ -4,7 +4,8 @@
  * tries each way of each event with each way of every other.
  *
  * The hundredths of a half minute are chosen so that no comparison is a tie by accident: events and sky at
- * .00, clouds at .20, blocks, allotments and `now` at .30, pads at .07, moves at .40. */
+ * .00, clouds at .20, blocks, allotments and `now` at .30, what has begun at .15, pads at .07, moves at .40.
+ */
 #include "ephem/night_plan.h"
 
 #include "ephem/units.h"
@@ -63,12 +64,12 @@ static int draw_steps(struct rng *r, int lo_min, int hi_min)
 	return draw(r, 2 * lo_min, 2 * hi_min) * STEP;
 }
 
-static void draw_event(struct rng *r, struct scene *s, int i)
+static void draw_event(struct rng *r, struct scene *s, int i, int places)
 {
 	struct event *ev = &s->event[i];
 	const int half = draw_steps(r, 20, 90), mid = draw_steps(r, 360, 820);
 	*ev = (struct event){
-	    .t1 = mid - half, .t4 = mid + half, .star = draw(r, 0, 3) * 60, .field = draw(r, 0, 1)};
+	    .t1 = mid - half, .t4 = mid + half, .star = draw(r, 0, places) * 60, .field = draw(r, 0, 1)};
 	ev->limb = draw(r, 0, 5) == 0 ? 0 : draw_steps(r, 4, 15);
 	ev->pad = draw_steps(r, 0, 25) + 7;
 	ev->reserve = draw(r, 0, 1) ? 30 * UNITS : draw_steps(r, 15, 60);
@@ -78,7 +79,7 @@ static void draw_event(struct rng *r, struct scene *s, int i)
 	ev->to = ev->t4 + ev->reserve;
 	ev->priority = draw(r, 0, 2) == 0 ? rng_between(r, 0.5, 3.0) : (double)NAN;
 	ev->ingress = rng_unit(r);
-	ev->egress = rng_unit(r);
+	ev->egress = draw(r, 0, 3) ? rng_unit(r) : ev->ingress;
 	ev->done = rng_unit(r) * fmin(ev->ingress, ev->egress);
 	if (draw(r, 0, 6) == 0)
 		ev->done = ev->ingress = ev->egress = NAN;
@@ -97,8 +98,9 @@ static void draw_event(struct rng *r, struct scene *s, int i)
 static void draw_scene(struct rng *r, struct scene *s)
 {
 	*s = (struct scene){.n = draw(r, 1, OFFERS), .now = -1, .field_shared = draw(r, 0, 1)};
+	const int places = draw(r, 0, 3);
 	for (int i = 0; i < s->n; i++) {
-		draw_event(r, s, i);
+		draw_event(r, s, i, places);
 		s->pinned[i] = draw(r, 0, 9) == 0;
 		s->dropped[i] = draw(r, 0, 14) == 0;
 	}
@@ -117,7 +119,7 @@ static void draw_scene(struct rng *r, struct scene *s)
 	if (draw(r, 0, 3) == 0)
 		s->now = draw_steps(r, 300, 600) + 30;
 	if (draw(r, 0, 3) == 0) {
-		const int from = draw_steps(r, 300, 600);
+		const int from = draw_steps(r, 300, 600) + 15;
 		s->fixed[s->n_fixed] = (struct closed){from, from + draw_steps(r, 20, 180)};
 		s->fixed_star[s->n_fixed++] = draw(r, 0, 3) * 60;
 	}
