@@ -38,7 +38,7 @@ static void night_line(FILE *to, const struct plan_view *v)
 	night_name(v->night->night.mjd, name, sizeof name);
 	place_words(v, place);
 	plan_standing_words(v, standing, sizeof standing);
-	fprintf(to, "Night %s at %s (%s)\n", name, place, standing);
+	fprintf(to, "Night %s at %s. Plan: %s.\n", name, place, standing);
 }
 
 static void put_figure(FILE *to, const char *before, const char *figure, const char *behind)
@@ -77,10 +77,12 @@ static void member_words(FILE *to, const struct plan_view *v, const struct plan_
 	}
 }
 
-static void item_words(FILE *to, const struct plan_view *v, const struct plan_item_view *item)
+static void item_words(FILE *to, const struct plan_view *v, const struct plan_item_view *item, bool gone)
 {
 	char line[LINE_BYTES];
 	night_line(to, v);
+	if (gone)
+		fputs("CANCELLED: it is in the plan no more.\n", to);
 	fprintf(to, "state: %s", plan_state_words[item->state]);
 	plan_line(item->cause, line, sizeof line);
 	put_figure(to, ", because of ", line, "");
@@ -195,7 +197,7 @@ static void put_item(struct ics *c, const struct plan_view *v, const struct plan
 	FILE *to = words_open(&text, &n, c);
 	if (!to)
 		return;
-	item_words(to, v, item);
+	item_words(to, v, item, gone);
 	plan_names(item, names);
 	for (size_t i = 0; i < item->n; i++)
 		kind[item->member[i].kind] = true;

@@ -45,9 +45,10 @@ void plan_standing_words(const struct plan_view *v, char *out, size_t size)
 {
 	char draft[200];
 	plan_line(v->draft, draft, sizeof draft);
-	if (v->stored)
-		snprintf(out, size, "%sdraft %s, edition %d", v->kept ? "the kept plan: " : "", draft,
-			 v->edition);
+	if (v->kept)
+		snprintf(out, size, "kept plan (draft %s, edition %d)", draft, v->edition);
+	else if (v->stored)
+		snprintf(out, size, "draft %s, edition %d, not kept", draft, v->edition);
 	else if (draft[0])
 		snprintf(out, size, "a proposal from draft %s, not stored", draft);
 	else

@@ -51,7 +51,7 @@ void plan_star_words(const struct plan_member_view *m, char *out, size_t size);
 /* `ephemeris version 2, entered 2026-03-02, BJD_TDB, from SOURCE`. */
 void plan_ephemeris_words(const struct plan_member_view *m, char *out, size_t size);
 
-/* `kept plan, draft main, edition 3`; `draft windy, edition 1`; `a proposal, not stored`. */
+/* `kept plan (draft main, edition 3)`; `draft windy, edition 1, not kept`; `a proposal, not stored`. */
 void plan_standing_words(const struct plan_view *v, char *out, size_t size);
 
 #endif
