@@ -1,0 +1,110 @@
+/* SPDX-License-Identifier: MIT
+ * What the files of a plan share: memory of a view, texts of a window, the user's choices, stored plans. Nothing else includes it but tests. */
+#ifndef WANE_TUI_PLAN_PARTS_H
+#define WANE_TUI_PLAN_PARTS_H
+
+#include "db/plans.h"
+#include "tui/plan_make.h"
+#include "tui/plan_time.h"
+
+/* --- memory: zeroed pieces that live until plan_view_free; NULL, and v->arena marked, when there is none --- */
+void *plan_alloc(struct plan_view *v, size_t n, size_t size);
+const char *plan_copy(struct plan_view *v, const char *text); /* "" when there is no memory: ask plan_memory at the end */
+const char *plan_copy_n(struct plan_view *v, const char *text, size_t n);
+/* ST_MEMORY when some piece could not be had since the view began. */
+MUST_USE enum status plan_memory(const struct plan_view *v, struct err *e);
+
+/* --- figures --- */
+/* A member has a text more than there are columns: the pad of the reserve [min], which says when to be on target for the egress alone. */
+const char *member_pad(const struct plan_member_view *m);
+/* Figures of a window of the night's list as texts. Worth and variant are the caller's. */
+void member_from_window(struct plan_view *v, struct plan_member_view *m, const struct window *w, const struct night *n);
+/* The same from a stored text, `name=value` with a tab between; names that are no column any more are passed over. */
+void member_from_text(struct plan_view *v, struct plan_member_view *m, const char *text);
+/* The text to store; NULL no memory. The view's. */
+const char *member_text(struct plan_view *v, const struct plan_member_view *m);
+/* Position, magnitude, ephemeris of a member as the run knows them now. */
+MUST_USE enum status member_target(struct plan_view *v, struct plan_member_view *m, struct err *e);
+/* Key of an item: `S<site>/O<telescope>/T<target>:transit:<epoch>:<branch>`, several windows joined by `+` in the order of these texts. */
+const char *item_key(struct plan_view *v, const struct plan_item_view *item);
+/* Which prepared target of the run has this id, or, 0, this name; NULL none. */
+const struct prepared *run_prepared(const struct run *r, int64_t id, const char *name);
+/* Id of the run's telescope; 0 the site's unnamed one. */
+int64_t plan_telescope_id(const struct run *r);
+
+/* --- the user's choices --- */
+enum choice_kind { CHOICE_PIN, CHOICE_DROP, CHOICE_BLOCK, CHOICE_LOST, CHOICE_POOR, CHOICE_KINDS };
+struct plan_choice {
+	enum choice_kind kind;
+	const char *text; /* as typed */
+};
+enum { CHOICES_MAX = 320, POOR_NOISE_MAX = 20 };
+struct plan_choices {
+	size_t n;
+	struct plan_choice choice[CHOICES_MAX];
+	size_t n_missed;
+	const char *missed[CHOICES_MAX]; /* keys of items that were never begun */
+};
+/* Stored lines to choices and blocks as they were shown. A line that can't be read is passed over. */
+void choices_read(struct plan_view *v, struct plan_choices *c, const char *lines);
+/* Lines to store: choices, then v's blocks as resolved, then items that were never begun. NULL no memory. */
+const char *choices_text(struct plan_view *v, const struct plan_choices *c);
+/* What is wished, laid over what is stored: a pin takes the drop of the same event away and the other way round. */
+MUST_USE enum status choices_wish(struct plan_view *v, struct plan_choices *c, const struct plan_wish *wish, struct err *e);
+/* Whether anything is wished at all. */
+bool wish_any(const struct plan_wish *wish);
+
+/* A target of the run by what was typed: `NAME` or `NAME@EPOCH`. */
+struct event_name {
+	const struct target *target;
+	bool one; /* the epoch was given */
+	long epoch;
+};
+MUST_USE enum status event_name_find(const struct run *r, const char *text, struct event_name *out, struct err *e);
+
+/* Times of a night as they are typed. */
+struct plan_clock plan_clock_of(const struct run *r, const struct night *night);
+/* v->block from choices and standing blocks; echo (may be NULL) gets a line for each time in `wish`. */
+struct echo {
+	char *text; /* the caller's to free */
+	size_t n;
+	bool failed;
+};
+void echo_add(struct echo *echo, const char *what, const struct plan_clock *clock, double from_d, double to_d);
+MUST_USE enum status blocks_resolve(struct plan_view *v, const struct plan_choices *c, const struct plan_clock *clock,
+				    const struct plan_wish *wish, struct echo *echo, struct err *e);
+/* Takes blocks and lost time off the free time of the night. */
+void blocks_free_time(const struct plan_view *v, const struct night *night, struct free_time *free);
+/* Share of its worth that poor time takes of an event: by the share of [T1, T4] in it, 1 - 1/N^2. */
+double poor_share(const struct plan_view *v, const struct night *night, const struct window *w);
+
+/* --- stored plans --- */
+/* The plan that a wish is about; *out zeroed, ST_OK and id 0 when there is none. */
+MUST_USE enum status stored_find(struct run *r, int32_t evening_mjd, const char *draft, struct plan_row *out, struct err *e);
+/* Fills a view from it: items, blocks, left out; choices for working it out anew. */
+MUST_USE enum status stored_view(struct plan_view *v, const struct plan_row *row, struct plan_choices *c, struct err *e);
+/* What today's ephemerides would move. */
+MUST_USE enum status stored_moves(struct plan_view *v, double moved_min, struct err *e);
+/* Items of earlier editions that are in this one no more. */
+MUST_USE enum status stored_gone(struct plan_view *v, const struct plan_row *row, struct err *e);
+
+/* --- proposals --- */
+/* What stands when a plan is worked out anew. */
+struct plan_standing {
+	size_t n;
+	const struct plan_item_view **item; /* all that stay in the list, in order of time */
+	bool *fixed;			    /* they take the telescope's time still */
+	double not_before_d;
+};
+/* Sorts the items of a stored plan into those that stand and those to be planned anew. */
+MUST_USE enum status plan_stand(struct plan_view *v, const struct plan_wish *wish, const struct plan_clock *clock,
+				struct plan_choices *c, struct echo *echo, struct plan_standing *out, struct err *e);
+/* The running order of v->night: items, left out, worth. */
+MUST_USE enum status plan_propose(struct plan_view *v, const struct plan_choices *c, const struct plan_standing *standing, bool costs,
+				  struct err *e);
+/* Sentences of what to do when the first limb is missed, for every item of the finished order. */
+void plan_if_missed(struct plan_view *v);
+/* Items in the light of the night: in_day; order numbers. */
+void plan_finish(struct plan_view *v);
+
+#endif
