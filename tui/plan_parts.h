@@ -113,9 +113,10 @@ MUST_USE enum status plan_stand(struct plan_view *v, const struct plan_wish *wis
 /* The running order of v->night: items, left out, worth. */
 MUST_USE enum status plan_propose(struct plan_view *v, const struct plan_choices *c, const struct plan_standing *standing, bool costs,
 				  struct err *e);
-/* Why an offer of a plan was left out, in words; items are named by v and by what stands. The view's. */
+/* Why an offer of a plan was left out, in words. fixed_item: which standing item each fixed one is; costs: whether they were worked out. The view's. */
 const char *left_words(struct plan_view *v, const struct night_plan *p, const struct plan_offer offer[],
-		       const struct plan_left *left, const struct plan_standing *standing, const size_t fixed_item[]);
+		       const struct plan_left *left, const struct plan_standing *standing, const size_t fixed_item[],
+		       bool costs);
 /* --- words --- */
 /* `02:11 MDT`, with the date where it is neither that of the evening nor the next. */
 enum { PLAN_CLOCK_BYTES = 48, PLAN_NAME_BYTES = 2 * NAME_BYTES_MAX };

@@ -179,7 +179,8 @@ static enum status put_items(struct plan_view *v, const struct making *m,
 	return s;
 }
 
-static void put_left(struct plan_view *v, const struct making *m, const struct plan_standing *standing)
+static void put_left(struct plan_view *v, const struct making *m, const struct plan_standing *standing,
+		     bool costs)
 {
 	const struct night_plan *p = &m->plan;
 	v->left = plan_alloc(v, p->n_left, sizeof *v->left);
@@ -190,7 +191,7 @@ static void put_left(struct plan_view *v, const struct making *m, const struct p
 		    .target = plan_copy(v, w->event.prepared->target->name),
 		    .kind = w->event.kind,
 		    .epoch = w->event.epoch,
-		    .reason = left_words(v, p, m->offer, &p->left[i], standing, m->fixed_item),
+		    .reason = left_words(v, p, m->offer, &p->left[i], standing, m->fixed_item, costs),
 		    .cost = p->left[i].cost,
 		};
 	}
@@ -234,7 +235,7 @@ enum status plan_propose(struct plan_view *v, const struct plan_choices *c,
 		v->bound = m.plan.bound;
 		v->optimal = m.plan.optimal;
 		s = put_items(v, &m, standing, e);
-		put_left(v, &m, standing);
+		put_left(v, &m, standing, costs);
 		night_plan_free(&m.plan);
 	}
 	free(m.offer);
