@@ -69,7 +69,7 @@ static enum status split_choice(const struct plan_choice *c, struct typed_block 
 		return split_block(c->text, strlen(c->text), out, e);
 	if (c->kind == CHOICE_POOR)
 		return split_poor(c->text, out, e);
-	*out = (struct typed_block){.label = "lost", .noise = 1.0};
+	*out = (struct typed_block){.label = "lost time", .noise = 1.0};
 	return trimmed(c->text, strlen(c->text), out->span, sizeof out->span) ? ST_OK
 									      : wrong(c->text, "FROM..TO", e);
 }

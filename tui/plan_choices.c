@@ -63,7 +63,7 @@ static void read_line(struct plan_view *v, struct plan_choices *c, const char *l
 
 void choices_read(struct plan_view *v, struct plan_choices *c, const char *lines)
 {
-	c->n = c->n_missed = 0;
+	c->n = c->n_missed = c->n_reopened = 0;
 	while (*lines) {
 		const size_t n = strcspn(lines, "\n");
 		read_line(v, c, lines, n);

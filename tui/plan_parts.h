@@ -50,6 +50,9 @@ struct plan_choices {
 	struct plan_choice choice[CHOICES_MAX];
 	size_t n_missed;
 	const char *missed[CHOICES_MAX]; /* keys of items that were never begun */
+	/* not stored: keys of items that had begun and were let go of though a limb is ahead; planned anew they lose their mark */
+	size_t n_reopened;
+	const char *reopened[CHOICES_MAX];
 };
 /* Stored lines to choices and blocks as they were shown. A line that can't be read is passed over. */
 void choices_read(struct plan_view *v, struct plan_choices *c, const char *lines);
@@ -105,6 +108,9 @@ struct plan_standing {
 	size_t n;
 	const struct plan_item_view **item; /* all that stay in the list, in order of time */
 	bool *fixed;			    /* they take the telescope's time still */
+	/* let go of, offered anew for the sake of a limb ahead; they stay in the list as lost where nothing comes of that */
+	size_t n_reopened;
+	const struct plan_item_view **reopened;
 	double not_before_d;
 };
 /* Sorts the items of a stored plan into those that stand and those to be planned anew. */
