@@ -95,6 +95,25 @@ static const char *worth_words(const struct night_plan *p, const struct plan_lef
 	return one ? "which is worth more" : "which are worth more";
 }
 
+/* Pins that found their place: which of them are in the way is not known one by one. */
+static void other_pins(const struct night_plan *p, const struct plan_offer offer[],
+		       const struct plan_standing *standing, const size_t fixed_item[], char *out, size_t n)
+{
+	char names[WORDS_BYTES / 2] = "", one[NAME_BYTES_MAX];
+	int shown = 0;
+	for (size_t i = 0; i < p->n_items; i++) {
+		bool pinned = p->item[i].fixed >= 0;
+		for (int k = 0; k < p->item[i].n; k++)
+			pinned = pinned || offer[p->item[i].member[k].offer].pinned;
+		if (!pinned)
+			continue;
+		const size_t used = strlen(names);
+		item_name(p, i, offer, standing, fixed_item, one, sizeof one);
+		plan_put_words(names + used, sizeof names - used, "%s%s", shown++ ? ", " : "", one);
+	}
+	plan_put_words(out, n, "pinned, but it clashes with what is pinned too or has begun: %s", names);
+}
+
 static void clash(const struct night_plan *p, const struct plan_offer offer[], const struct plan_left *left,
 		  const struct plan_standing *standing, const size_t fixed_item[], bool costs, char *out,
 		  size_t n)
@@ -110,7 +129,7 @@ static void clash(const struct night_plan *p, const struct plan_offer offer[], c
 	if (left->reason == LEFT_PINS && shown > 0)
 		plan_put_words(out, n, "pinned, but it clashes with %s", names);
 	else if (left->reason == LEFT_PINS)
-		plan_put_words(out, n, "pinned, but it clashes with other pins or with what has begun");
+		other_pins(p, offer, standing, fixed_item, out, n);
 	else if (shown > 0)
 		plan_put_words(out, n, "clashes with %s%s, %s", names,
 			       left->n_clash > shown ? " and others" : "", worth_words(p, left));
