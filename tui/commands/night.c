@@ -106,12 +106,17 @@ int night_write(struct run *r, int32_t evening_mjd)
 	}
 	bool whole = true;
 	run_night_notes(&view);
-	if (format == FORMAT_TEXT)
-		write_text(out.file, r, &view);
-	else if (format == FORMAT_CSV)
+	if (format == FORMAT_CSV)
 		whole = write_csv(out.file, &view);
-	else
-		write_json(out.file, r, &view);
+	else {
+		struct order order;
+		order_open(&order, r, evening_mjd);
+		if (format == FORMAT_TEXT)
+			write_text(out.file, r, &view, &order);
+		else
+			write_json(out.file, r, &view, &order);
+		order_close(&order);
+	}
 	if (format != FORMAT_TEXT) {
 		leap_note(r, evening_mjd);
 		uncounted_note(r);
