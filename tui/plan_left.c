@@ -100,7 +100,6 @@ static void other_pins(const struct night_plan *p, const struct plan_offer offer
 		       const struct plan_standing *standing, const size_t fixed_item[], char *out, size_t n)
 {
 	char names[WORDS_BYTES / 2] = "", one[NAME_BYTES_MAX];
-	int shown = 0;
 	for (size_t i = 0; i < p->n_items; i++) {
 		bool pinned = p->item[i].fixed >= 0;
 		for (int k = 0; k < p->item[i].n; k++)
@@ -109,7 +108,8 @@ static void other_pins(const struct night_plan *p, const struct plan_offer offer
 			continue;
 		const size_t used = strlen(names);
 		item_name(p, i, offer, standing, fixed_item, one, sizeof one);
-		plan_put_words(names + used, sizeof names - used, "%s%s", shown++ ? ", " : "", one);
+		if (!strstr(names, one)) /* two events of one target */
+			plan_put_words(names + used, sizeof names - used, "%s%s", used ? ", " : "", one);
 	}
 	plan_put_words(out, n, "pinned, but it clashes with what is pinned too or has begun: %s", names);
 }

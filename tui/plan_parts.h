@@ -82,7 +82,7 @@ MUST_USE enum status blocks_resolve(struct plan_view *v, const struct plan_choic
 				    const struct plan_wish *wish, struct echo *echo, struct err *e);
 /* Takes blocks and lost time off the free time of the night. */
 void blocks_free_time(const struct plan_view *v, const struct night *night, struct free_time *free);
-/* Marks the blocks in which the Sun is not well below the horizon. */
+/* Marks the blocks in which the telescope does something while the Sun is not well below the horizon. */
 void blocks_near_sun(struct plan_view *v);
 /* Share of its worth that poor time takes of an event: by the share of [T1, T4] in it, 1 - 1/N^2. */
 double poor_share(const struct plan_view *v, const struct night *night, const struct window *w);

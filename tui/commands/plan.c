@@ -157,6 +157,9 @@ static int write_plan(struct run *r, struct plan_view *v, enum format format, st
 	}
 	if (out_commit(out, &e) != ST_OK)
 		return diagnose_whole(&e, EXIT_UNMET);
+	for (size_t i = 0; i < v->n_left; i++)
+		if (strncmp(v->left[i].reason, "pinned", strlen("pinned")) == 0)
+			diagnose("plan", "%.200s: %.400s", v->left[i].target, v->left[i].reason);
 	if (!v->stored)
 		diagnose("plan",
 			 "shown, not stored (--keep stores and keeps it, --save stores it as a draft)");
