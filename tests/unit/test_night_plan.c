@@ -151,6 +151,11 @@ static void test_ways_of_one(void **state)
 	static const struct way_row unknown[] = {
 	    {"no chance: whole only", VARIANT_WHOLE, 510.0, 690.0, 525.0, 0.07}};
 	check_ways_of(s, "one window", 0, unknown, 1);
+	s->input.not_before_d = 515.0 * MIN_D; /* a late start that is forced is taken all the same */
+	static const struct way_row late[] = {
+	    {"no chance, late", VARIANT_SHORT, 520.5, 690.0, 525.0, 0.07 * 0.95}};
+	check_ways_of(s, "one window", 0, late, 1);
+	s->input.not_before_d = -INFINITY;
 	w->cover.limb_usable = false;
 	check_ways_of(s, "one window", 0, NULL, 0);
 	w->chance = (struct window_chance){.ingress = 0.3, .egress = 0.0, .mid = 0.5, .done = 0.0};
@@ -346,6 +351,45 @@ static void test_siblings_apart(void **state)
 	assert_int_equal(p.n_items, 2);
 	check_item("after the block, and the move", &p.item[1], 697.5, 880.0, 0.9 * 0.95);
 	check_close("slew by: from the block", p.item[1].slew_by_d * DAY_MIN, 692.0, TOLERANCE_MIN);
+	night_plan_free(&p);
+	scene_close(s);
+}
+
+/* What lies in the time of a joint item is left out of it where it is worth more later: C's ingress,
+ * 650..705, is in the time of A and B, 510..730, but its egress, 775..830, is worth more. */
+static void test_joint_without(void **state)
+{
+	(void)state;
+	struct plan_scene *s = scene_open();
+	const struct prepared *b = scene_planet(s, "Tern 1 b", 100.0, 20.0);
+	event(s, b, 600.0)->chance = (struct window_chance){0.0, 0.0, 0.9, 0.9};
+	event(s, b, 640.0)->chance = (struct window_chance){0.0, 0.0, 0.9, 0.9};
+	event(s, b, 740.0)->chance = (struct window_chance){0.1, 0.95, 0.5, 0.0};
+	struct night_plan p = plan(s);
+	assert_int_equal(p.n_items, 2);
+	check_item("A and B", &p.item[0], 510.0, 730.0, 1.8);
+	check_item("C's egress", &p.item[1], 775.0, 830.0, 0.38);
+	night_plan_free(&p);
+	scene_close(s);
+}
+
+/* Sixty stars of one field at nearly the same time: the eight that are worth most. */
+static void test_crowded_field(void **state)
+{
+	(void)state;
+	static char names[60][16];
+	struct plan_scene *s = scene_open();
+	s->rules.field_deg = 0.5;
+	for (int i = 0; i < 60; i++) {
+		snprintf(names[i], sizeof names[i], "Tern %d b", i + 1);
+		event(s, scene_planet(s, names[i], 100.0 + 0.005 * i, 0.0), 600.0)->chance =
+		    (struct window_chance){0.0, 0.0, 0.9, i % 7 == 0 ? 0.9 : 0.2};
+	}
+	struct night_plan p = plan(s);
+	assert_int_equal(p.n_items, 1);
+	assert_int_equal(p.item[0].n, PLAN_MEMBERS_MAX);
+	check_item("eight of the nine", &p.item[0], 510.0, 690.0, 8 * 0.9);
+	assert_int_equal(p.n_left, 52);
 	night_plan_free(&p);
 	scene_close(s);
 }
@@ -682,6 +726,8 @@ int main(void)
 	    cmocka_unit_test(test_short_where_it_helps),
 	    cmocka_unit_test(test_siblings_joint),
 	    cmocka_unit_test(test_siblings_apart),
+	    cmocka_unit_test(test_joint_without),
+	    cmocka_unit_test(test_crowded_field),
 	    cmocka_unit_test(test_consecutive_events),
 	    cmocka_unit_test(test_many_consecutive_events),
 	    cmocka_unit_test(test_transit_and_occultation),
