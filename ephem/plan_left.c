@@ -112,20 +112,32 @@ static enum status explain(struct plan_order *k, const struct night_plan *out, s
 	return ST_OK;
 }
 
+static enum status explain_all(struct plan_order *k, struct night_plan *out, bool planned[], bool held[],
+			       struct err *e)
+{
+	for (size_t i = 0; i < out->n_items; i++)
+		for (int j = 0; j < out->item[i].n; j++)
+			planned[out->item[i].member[j].offer] = true;
+	for (size_t i = 0; i < k->in->n; i++) {
+		if (planned[i] || k->in->offer[i].settled)
+			continue;
+		const enum status st = explain(k, out, i, &out->left[out->n_left++], held, e);
+		if (st != ST_OK)
+			return st;
+	}
+	return ST_OK;
+}
+
 enum status plan_left_out(struct plan_order *k, struct night_plan *out, struct err *e)
 {
 	const size_t n = k->in->n;
 	bool *held = malloc((n + 1) * sizeof *held), *planned = calloc(n + 1, sizeof *planned);
+	enum status st;
 	out->left = malloc((n + 1) * sizeof *out->left);
-	enum status st = ST_OK;
-	if (!held || !planned || !out->left)
+	if (held && planned && out->left)
+		st = explain_all(k, out, planned, held, e);
+	else
 		st = err_set(e, ST_MEMORY, "no memory for what a plan of %zu windows leaves out", n);
-	for (size_t i = 0; st == ST_OK && i < out->n_items; i++)
-		for (int j = 0; j < out->item[i].n; j++)
-			planned[out->item[i].member[j].offer] = true;
-	for (size_t i = 0; st == ST_OK && i < n; i++)
-		if (!planned[i] && !k->in->offer[i].settled)
-			st = explain(k, out, i, &out->left[out->n_left++], held, e);
 	free(held);
 	free(planned);
 	return st;
