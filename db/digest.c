@@ -4,6 +4,7 @@
 #include "db/history.h"
 
 #include "db/midtime_rows.h"
+#include "db/plan_rows.h"
 #include "db/site_rows.h"
 #include "db/target_rows.h"
 #include "db/telescope_rows.h"
@@ -118,6 +119,9 @@ static enum status hash_targets(struct store *s, struct hash *h, struct listed *
 	return st;
 }
 
+/* removed_at of rows that are never removed. */
+enum { NOWHERE = ROW_CELLS_MAX };
+
 /* Rows that hang on a target (of_target: where its id stands), or on none (0). */
 static enum status hash_rows(struct store *s, struct hash *h, const struct listed *l, enum sql_id id,
 			     const struct table *t, size_t removed_at, size_t of_target, struct err *e)
@@ -128,7 +132,8 @@ static enum status hash_rows(struct store *s, struct hash *h, const struct liste
 	while (st == ST_OK && (st = sql_step(s, id, &row, e)) == ST_OK && row) {
 		if (!row_read(s, id, 0, t, cell))
 			st = damaged(s, id, t, e);
-		else if (!cell[removed_at].u.i && (!of_target || is_listed(l, cell[of_target].u.i)))
+		else if ((removed_at == NOWHERE || !cell[removed_at].u.i) &&
+			 (!of_target || is_listed(l, cell[of_target].u.i)))
 			hash_row(h, cell, t);
 	}
 	sql_reset(s, id);
@@ -153,6 +158,23 @@ static enum status hash_midtimes(struct store *s, struct hash *h, const struct l
 	return st;
 }
 
+/* What hangs on no target. */
+static const struct {
+	enum sql_id id;
+	const struct table *table;
+	size_t removed_at;
+} others[] = {
+    {SQL_SITE_LOAD, &site_table, SITE_REMOVED},
+    {SQL_TELESCOPE_LOAD, &telescope_rows, TELESCOPE_REMOVED},
+    {SQL_ALLOTMENT_LOAD, &allotment_rows, ALLOTMENT_REMOVED},
+    {SQL_ALL_SETTINGS, &setting_rows, SETTING_REMOVED},
+    {SQL_ALL_PLANS, &plan_rows, PLAN_REMOVED},
+    {SQL_HELD_EDITIONS, &edition_rows, NOWHERE},
+    {SQL_HELD_ITEMS, &item_rows, NOWHERE},
+    {SQL_HELD_WINDOWS, &window_rows, NOWHERE},
+    {SQL_HELD_PLAN_MARKS, &plan_mark_rows, PLAN_MARK_REMOVED},
+};
+
 enum status store_digest(struct store *s, char out[33], struct err *e)
 {
 	struct hash h = {0x6C62272E07BB0142u, 0x62B821756295C58Du};
@@ -162,14 +184,8 @@ enum status store_digest(struct store *s, char out[33], struct err *e)
 		st = hash_rows(s, &h, &l, SQL_ALIAS_LOAD, &alias_table, ALIAS_REMOVED, ALIAS_TARGET, e);
 	if (st == ST_OK)
 		st = hash_midtimes(s, &h, &l, e);
-	if (st == ST_OK)
-		st = hash_rows(s, &h, &l, SQL_SITE_LOAD, &site_table, SITE_REMOVED, 0, e);
-	if (st == ST_OK)
-		st = hash_rows(s, &h, &l, SQL_TELESCOPE_LOAD, &telescope_rows, TELESCOPE_REMOVED, 0, e);
-	if (st == ST_OK)
-		st = hash_rows(s, &h, &l, SQL_ALLOTMENT_LOAD, &allotment_rows, ALLOTMENT_REMOVED, 0, e);
-	if (st == ST_OK)
-		st = hash_rows(s, &h, &l, SQL_ALL_SETTINGS, &setting_rows, SETTING_REMOVED, 0, e);
+	for (size_t i = 0; st == ST_OK && i < sizeof others / sizeof others[0]; i++)
+		st = hash_rows(s, &h, &l, others[i].id, others[i].table, others[i].removed_at, 0, e);
 	free(l.id);
 	snprintf(out, 33, "%016llx%016llx", (unsigned long long)h.high, (unsigned long long)h.low);
 	return st;

@@ -3,6 +3,7 @@
 #include "db/history.h"
 
 #include "db/change_rows.h"
+#include "db/plan_rows.h"
 #include "db/telescope_rows.h"
 #include "db/text_clean.h"
 
@@ -81,10 +82,13 @@ enum touched {
 	TOUCHED_TELESCOPE,
 	TOUCHED_ALLOTMENT,
 	TOUCHED_SETTING,
+	TOUCHED_PLAN,
+	TOUCHED_MARK,
 	TOUCHED_KINDS
 };
 static const char *const touched_plural[TOUCHED_KINDS] = {
-    "targets", "ephemerides", "other names", "sites", "mid-times", "telescopes", "allotments", "settings"};
+    "targets",	  "ephemerides", "other names", "sites", "mid-times",
+    "telescopes", "allotments",	 "settings",	"plans", "marks"};
 
 /* The rows of one kind that one change set wrote. */
 struct tally {
@@ -132,6 +136,10 @@ static void say_tally(const struct tally tally[TOUCHED_KINDS], enum touched kind
 		snprintf(out, size, "allotment from %s, %s", night, t->name);
 	else if (kind == TOUCHED_SETTING)
 		snprintf(out, size, "setting %s", t->name);
+	else if (kind == TOUCHED_PLAN)
+		snprintf(out, size, "plan of %s, draft %s", night, t->name);
+	else if (kind == TOUCHED_MARK)
+		snprintf(out, size, "%s, plan of %s", t->name, night);
 	else
 		snprintf(out, size, "mid-time of %s, epoch %lld", t->name, (long long)t->number);
 }

@@ -36,6 +36,44 @@
 	"full_well_e, defocus_px, exposure_s, dead_s, red_noise_ppt, blocks, note, removed, rev, change_id"
 #define ALLOTMENT_PLAIN "site_id, telescope_id, first_mjd, last_mjd, span, note, removed, rev, change_id"
 
+#define PLAN_PLAIN                                                                                           \
+	"site_id, telescope_id, night_mjd, draft, draft_key, kept, edition, removed, rev, "                  \
+	"change_id"
+#define EDITION_PLAIN                                                                                        \
+	"plan_id, edition, limits, leap_date, worth, bound, optimal, choices, left_out, "                    \
+	"items, rev, change_id"
+#define ITEM_PLAIN                                                                                           \
+	"edition_id, place, item_key, slew_by_utc, start_utc, latest_start_utc, end_utc, "                   \
+	"worth, windows, rev, change_id"
+#define WINDOW_PLAIN                                                                                         \
+	"item_id, place, target_id, ephemeris_id, target, kind, epoch, variant, worth, "                     \
+	"figures, rev, change_id"
+#define PLAN_MARK_PLAIN "plan_id, item_key, state, cause, note, marked_utc, removed, rev, change_id"
+/* the same with their row's id and checksum, of joined tables */
+#define PLAN_COLUMNS                                                                                         \
+	"p.id, p.site_id, p.telescope_id, p.night_mjd, p.draft, p.draft_key, p.kept, "                       \
+	"p.edition, p.removed, p.rev, p.change_id, p.row_crc"
+#define EDITION_COLUMNS                                                                                      \
+	"e.id, e.plan_id, e.edition, e.limits, e.leap_date, e.worth, e.bound, e.optimal, "                   \
+	"e.choices, e.left_out, e.items, e.rev, e.change_id, e.row_crc"
+#define ITEM_COLUMNS                                                                                         \
+	"i.id, i.edition_id, i.place, i.item_key, i.slew_by_utc, i.start_utc, "                              \
+	"i.latest_start_utc, i.end_utc, i.worth, i.windows, i.rev, i.change_id, i.row_crc"
+#define WINDOW_COLUMNS                                                                                       \
+	"w.id, w.item_id, w.place, w.target_id, w.ephemeris_id, w.target, w.kind, w.epoch, "                 \
+	"w.variant, w.worth, w.figures, w.rev, w.change_id, w.row_crc"
+#define PLAN_MARK_COLUMNS                                                                                    \
+	"k.id, k.plan_id, k.item_key, k.state, k.cause, k.note, k.marked_utc, k.removed, "                   \
+	"k.rev, k.change_id, k.row_crc"
+/* the edition that holds of each listed plan */
+#define HELD "FROM plan p JOIN plan_edition e ON e.plan_id = p.id AND e.edition = p.edition "
+/* a mark in words: the first target of the newest item that has its key */
+#define MARK_WORDS                                                                                           \
+	"ifnull((SELECT w.target FROM plan_edition e JOIN plan_item i ON i.edition_id = e.id "               \
+	"JOIN plan_window w ON w.item_id = i.id WHERE e.plan_id = k.plan_id AND i.item_key = k.item_key "    \
+	"ORDER BY i.id DESC, w.place LIMIT 1), k.item_key) || "                                              \
+	"CASE k.removed WHEN 1 THEN ' unmarked' ELSE ' marked ' || k.state END"
+
 #define MIDTIME_PLAIN                                                                                        \
 	"target_id, epoch, kind, mid_day, mid_frac, mid_text, time_scale, err_d, source, entered_utc, rev, " \
 	"change_id"
@@ -164,6 +202,50 @@ const char *const sql_text[SQL_COUNT] = {
     [SQL_SETTING_KEEP_OLD] =
 	"INSERT INTO setting_old(id, " SETTING_PLAIN ", replaced_by, row_crc) VALUES(" FIVE ", ?, ?, ?)",
 
+    [SQL_PLAN_NEXT] = "SELECT ifnull(max(id), 0) + 1 FROM plan",
+    [SQL_PLAN_LOAD] =
+	"SELECT " PLAN_COLUMNS ", " EDITION_COLUMNS ", c.id, utc, who, verb, undoes, c.rev, c.row_crc "
+	"FROM plan p LEFT JOIN plan_edition e ON e.plan_id = p.id AND e.edition = p.edition "
+	"LEFT JOIN change_set c ON c.id = e.change_id "
+	"WHERE (?1 = 0 OR site_id = ?1) AND night_mjd BETWEEN ?2 AND ?3 "
+	"ORDER BY night_mjd, ifnull(telescope_id, 0), draft_key, p.id",
+    [SQL_PLAN_DRAFT] = "SELECT id, " PLAN_PLAIN ", row_crc FROM plan WHERE site_id = ? AND night_mjd = ? AND "
+		       "ifnull(telescope_id, 0) = ? AND draft_key = ? AND removed = 0",
+    [SQL_PLAN_KEPT] = "SELECT id, " PLAN_PLAIN ", row_crc FROM plan WHERE site_id = ? AND night_mjd = ? AND "
+		      "ifnull(telescope_id, 0) = ? AND kept = 1 AND removed = 0",
+    [SQL_PLAN_BY_ID] = "SELECT id, " PLAN_PLAIN ", row_crc FROM plan WHERE id = ?",
+    [SQL_PLAN_ADD] = "INSERT INTO plan(id, " PLAN_PLAIN ", row_crc) VALUES(" TEN ", ?, ?)",
+    [SQL_PLAN_UPDATE] = "UPDATE plan SET (" PLAN_PLAIN ", row_crc) = (" TEN ", ?) WHERE id = ? AND rev = ?",
+    [SQL_PLAN_KEEP_OLD] =
+	"INSERT INTO plan_old(id, " PLAN_PLAIN ", replaced_by, row_crc) VALUES(" TEN ", ?, ?, ?)",
+    [SQL_EDITION_NEXT] = "SELECT ifnull(max(id), 0) + 1 FROM plan_edition",
+    [SQL_EDITION_LAST] = "SELECT ifnull(max(edition), 0) FROM plan_edition WHERE plan_id = ?",
+    [SQL_EDITION_OF_PLAN] =
+	"SELECT id, " EDITION_PLAIN ", row_crc FROM plan_edition WHERE plan_id = ? AND edition = ?",
+    [SQL_EDITION_ADD] =
+	"INSERT INTO plan_edition(id, " EDITION_PLAIN ", row_crc) VALUES(" TEN ", ?, ?, ?, ?)",
+    [SQL_ITEM_NEXT] = "SELECT ifnull(max(id), 0) + 1 FROM plan_item",
+    [SQL_ITEMS_OF_EDITION] =
+	"SELECT id, " ITEM_PLAIN ", row_crc FROM plan_item WHERE edition_id = ? ORDER BY place",
+    [SQL_ITEM_KNOWN] = "SELECT count(*) FROM plan_edition e JOIN plan_item i ON i.edition_id = e.id "
+		       "WHERE plan_id = ? AND item_key = ?",
+    [SQL_ITEM_ADD] = "INSERT INTO plan_item(id, " ITEM_PLAIN ", row_crc) VALUES(" TEN ", ?, ?, ?)",
+    [SQL_WINDOW_NEXT] = "SELECT ifnull(max(id), 0) + 1 FROM plan_window",
+    [SQL_WINDOWS_OF_EDITION] = "SELECT " WINDOW_COLUMNS " FROM plan_item i JOIN plan_window w ON w.item_id = "
+			       "i.id WHERE edition_id = ? ORDER BY i.place, w.place",
+    [SQL_WINDOW_ADD] = "INSERT INTO plan_window(id, " WINDOW_PLAIN ", row_crc) VALUES(" TEN ", ?, ?, ?, ?)",
+    [SQL_PLAN_MARK_NEXT] = "SELECT ifnull(max(id), 0) + 1 FROM plan_mark",
+    [SQL_PLAN_MARKS_OF_PLAN] =
+	"SELECT id, " PLAN_MARK_PLAIN ", row_crc FROM plan_mark WHERE plan_id = ? ORDER BY id",
+    [SQL_PLAN_MARK_BY_KEY] =
+	"SELECT id, " PLAN_MARK_PLAIN ", row_crc FROM plan_mark WHERE plan_id = ? AND item_key = ?",
+    [SQL_PLAN_MARK_BY_ID] = "SELECT id, " PLAN_MARK_PLAIN ", row_crc FROM plan_mark WHERE id = ?",
+    [SQL_PLAN_MARK_ADD] = "INSERT INTO plan_mark(id, " PLAN_MARK_PLAIN ", row_crc) VALUES(" TEN ", ?)",
+    [SQL_PLAN_MARK_UPDATE] =
+	"UPDATE plan_mark SET (" PLAN_MARK_PLAIN ", row_crc) = (" TEN ") WHERE id = ? AND rev = ?",
+    [SQL_PLAN_MARK_KEEP_OLD] =
+	"INSERT INTO plan_mark_old(id, " PLAN_MARK_PLAIN ", replaced_by, row_crc) VALUES(" TEN ", ?, ?)",
+
     [SQL_HISTORY_CHANGES] =
 	"SELECT id, utc, who, verb, undoes, rev, row_crc FROM change_set ORDER BY id DESC",
     [SQL_HISTORY_ROWS] =
@@ -188,6 +270,14 @@ const char *const sql_text[SQL_COUNT] = {
 	"UNION ALL "
 	"SELECT change_id, 7, 0, key, 0 FROM setting UNION ALL "
 	"SELECT change_id, 7, 0, key, 0 FROM setting_old WHERE replaced_by <> change_id "
+	"UNION ALL "
+	"SELECT change_id, 8, 0, draft, night_mjd FROM plan UNION ALL "
+	"SELECT change_id, 8, 0, draft, night_mjd FROM plan_old WHERE replaced_by <> change_id UNION ALL "
+	"SELECT k.change_id, 9, 0, " MARK_WORDS
+	", night_mjd FROM plan_mark k JOIN plan p ON p.id = k.plan_id "
+	"UNION ALL "
+	"SELECT k.change_id, 9, 0, " MARK_WORDS ", night_mjd FROM plan_mark_old k "
+	"JOIN plan p ON p.id = k.plan_id WHERE k.replaced_by <> k.change_id "
 	"ORDER BY 1 DESC, 2, 3",
 
     [SQL_TARGET_TOUCHED] = TOUCHED("target"),
@@ -211,6 +301,12 @@ const char *const sql_text[SQL_COUNT] = {
     [SQL_SETTING_TOUCHED] = TOUCHED("setting"),
     [SQL_SETTING_AFTER] = AFTER("setting", SETTING_PLAIN),
     [SQL_SETTING_BEFORE] = BEFORE("setting", SETTING_PLAIN),
+    [SQL_PLAN_TOUCHED] = TOUCHED("plan"),
+    [SQL_PLAN_AFTER] = AFTER("plan", PLAN_PLAIN),
+    [SQL_PLAN_BEFORE] = BEFORE("plan", PLAN_PLAIN),
+    [SQL_PLAN_MARK_TOUCHED] = TOUCHED("plan_mark"),
+    [SQL_PLAN_MARK_AFTER] = AFTER("plan_mark", PLAN_MARK_PLAIN),
+    [SQL_PLAN_MARK_BEFORE] = BEFORE("plan_mark", PLAN_MARK_PLAIN),
     [SQL_CHANGE_BY_ID] = "SELECT id, utc, who, verb, undoes, rev, row_crc FROM change_set WHERE id = ?",
 
     [SQL_ALL_CHANGES] = "SELECT id, utc, who, verb, undoes, rev, row_crc FROM change_set",
@@ -225,6 +321,21 @@ const char *const sql_text[SQL_COUNT] = {
     [SQL_ALL_SETTINGS_OLD] = "SELECT id, " SETTING_PLAIN ", replaced_by, row_crc FROM setting_old",
     [SQL_ALL_TELESCOPES_OLD] = "SELECT id, " TELESCOPE_PLAIN ", replaced_by, row_crc FROM telescope_old",
     [SQL_ALL_ALLOTMENTS_OLD] = "SELECT id, " ALLOTMENT_PLAIN ", replaced_by, row_crc FROM allotment_old",
+    [SQL_ALL_PLANS] = "SELECT id, " PLAN_PLAIN ", row_crc FROM plan ORDER BY id",
+    [SQL_ALL_PLANS_OLD] = "SELECT id, " PLAN_PLAIN ", replaced_by, row_crc FROM plan_old",
+    [SQL_ALL_EDITIONS] = "SELECT id, " EDITION_PLAIN ", row_crc FROM plan_edition",
+    [SQL_ALL_ITEMS] = "SELECT id, " ITEM_PLAIN ", row_crc FROM plan_item",
+    [SQL_ALL_WINDOWS] = "SELECT id, " WINDOW_PLAIN ", row_crc FROM plan_window",
+    [SQL_ALL_PLAN_MARKS] = "SELECT id, " PLAN_MARK_PLAIN ", row_crc FROM plan_mark",
+    [SQL_ALL_PLAN_MARKS_OLD] = "SELECT id, " PLAN_MARK_PLAIN ", replaced_by, row_crc FROM plan_mark_old",
+    [SQL_HELD_EDITIONS] = "SELECT " EDITION_COLUMNS " " HELD "WHERE removed = 0 ORDER BY p.id",
+    [SQL_HELD_ITEMS] = "SELECT " ITEM_COLUMNS " " HELD
+		       "JOIN plan_item i ON i.edition_id = e.id WHERE removed = 0 ORDER BY p.id, i.place",
+    [SQL_HELD_WINDOWS] = "SELECT " WINDOW_COLUMNS " " HELD
+			 "JOIN plan_item i ON i.edition_id = e.id JOIN plan_window w ON w.item_id = i.id "
+			 "WHERE removed = 0 ORDER BY p.id, i.place, w.place",
+    [SQL_HELD_PLAN_MARKS] = "SELECT " PLAN_MARK_COLUMNS " FROM plan p JOIN plan_mark k ON k.plan_id = p.id "
+			    "WHERE p.removed = 0 ORDER BY k.id",
     [SQL_INTEGRITY] = "PRAGMA integrity_check",
     [SQL_FOREIGN_KEYS] = "PRAGMA foreign_key_check",
     [SQL_WRONG_POINTERS] =
@@ -233,6 +344,12 @@ const char *const sql_text[SQL_COUNT] = {
     [SQL_MISSING_MARKS] =
 	"SELECT midtime.id FROM midtime LEFT JOIN midtime_mark ON midtime_mark.id = midtime.id "
 	"WHERE midtime_mark.id IS NULL",
+    [SQL_WRONG_WINDOWS] = "SELECT w.id FROM plan_window w JOIN ephemeris x ON x.id = w.ephemeris_id "
+			  "WHERE x.target_id <> w.target_id",
+    [SQL_MISSING_ITEMS] = "SELECT id FROM plan_edition WHERE items <> "
+			  "(SELECT count(*) FROM plan_item WHERE edition_id = plan_edition.id)",
+    [SQL_MISSING_WINDOWS] = "SELECT id FROM plan_item WHERE windows <> "
+			    "(SELECT count(*) FROM plan_window WHERE item_id = plan_item.id)",
     [SQL_COUNTS] = "SELECT (SELECT count(*) FROM target WHERE removed = 0), "
 		   "(SELECT count(*) FROM ephemeris WHERE t0_day IS NOT NULL AND period_d IS NOT NULL), "
 		   "(SELECT count(*) FROM site WHERE removed = 0), (SELECT count(*) FROM change_set)",

@@ -70,6 +70,32 @@ enum sql_id {
 	SQL_SETTING_ADD,
 	SQL_SETTING_UPDATE,
 	SQL_SETTING_KEEP_OLD,
+	SQL_PLAN_NEXT,
+	SQL_PLAN_LOAD, /* of a site (0 all) and nights: each with the edition that holds and its change set */
+	SQL_PLAN_DRAFT, /* the listed one of a site, night, telescope (0 none) and draft */
+	SQL_PLAN_KEPT,	/* the kept one of a site, night and telescope (0 none) */
+	SQL_PLAN_BY_ID,
+	SQL_PLAN_ADD,
+	SQL_PLAN_UPDATE,
+	SQL_PLAN_KEEP_OLD,
+	SQL_EDITION_NEXT,
+	SQL_EDITION_LAST, /* the highest number of a plan, 0 none */
+	SQL_EDITION_OF_PLAN,
+	SQL_EDITION_ADD,
+	SQL_ITEM_NEXT,
+	SQL_ITEMS_OF_EDITION,
+	SQL_ITEM_KNOWN, /* how many items of a plan have a key */
+	SQL_ITEM_ADD,
+	SQL_WINDOW_NEXT,
+	SQL_WINDOWS_OF_EDITION, /* in the order of their items */
+	SQL_WINDOW_ADD,
+	SQL_PLAN_MARK_NEXT,
+	SQL_PLAN_MARKS_OF_PLAN,
+	SQL_PLAN_MARK_BY_KEY, /* of a plan */
+	SQL_PLAN_MARK_BY_ID,
+	SQL_PLAN_MARK_ADD,
+	SQL_PLAN_MARK_UPDATE,
+	SQL_PLAN_MARK_KEEP_OLD,
 	SQL_HISTORY_CHANGES, /* newest first */
 	SQL_HISTORY_ROWS,    /* every row that a change set left behind, by change set */
 	/* of a table family: ids of the rows that a change set wrote; the row as it left it (when replaced
@@ -95,6 +121,12 @@ enum sql_id {
 	SQL_SETTING_TOUCHED,
 	SQL_SETTING_AFTER,
 	SQL_SETTING_BEFORE,
+	SQL_PLAN_TOUCHED,
+	SQL_PLAN_AFTER,
+	SQL_PLAN_BEFORE,
+	SQL_PLAN_MARK_TOUCHED,
+	SQL_PLAN_MARK_AFTER,
+	SQL_PLAN_MARK_BEFORE,
 	SQL_CHANGE_BY_ID,
 	SQL_ALL_CHANGES, /* whole tables, for the check */
 	SQL_ALL_TARGETS_OLD,
@@ -108,10 +140,24 @@ enum sql_id {
 	SQL_ALL_SETTINGS_OLD,
 	SQL_ALL_TELESCOPES_OLD,
 	SQL_ALL_ALLOTMENTS_OLD,
+	SQL_ALL_PLANS,
+	SQL_ALL_PLANS_OLD,
+	SQL_ALL_EDITIONS,
+	SQL_ALL_ITEMS,
+	SQL_ALL_WINDOWS,
+	SQL_ALL_PLAN_MARKS,
+	SQL_ALL_PLAN_MARKS_OLD,
+	SQL_HELD_EDITIONS, /* what listed plans show */
+	SQL_HELD_ITEMS,
+	SQL_HELD_WINDOWS,
+	SQL_HELD_PLAN_MARKS,
 	SQL_INTEGRITY,
 	SQL_FOREIGN_KEYS,
 	SQL_WRONG_POINTERS,
 	SQL_MISSING_MARKS,
+	SQL_WRONG_WINDOWS,
+	SQL_MISSING_ITEMS,
+	SQL_MISSING_WINDOWS,
 	SQL_COUNTS,
 	SQL_COUNT
 };

@@ -3,6 +3,7 @@
  * they don't: the checksums of the rows do. */
 #include "db/change_rows.h"
 #include "db/midtime_rows.h"
+#include "db/plan_rows.h"
 #include "db/schema.h"
 #include "db/site_rows.h"
 #include "db/target_rows.h"
@@ -33,15 +34,15 @@ static void fault(struct checking *c, const char *line)
 	tell(c, line);
 }
 
-/* Runs a check whose rows are its findings; the text of column `at` goes behind `what`. An answer `ok` is
- * none. */
-static enum status findings(struct checking *c, enum sql_id id, int at, const char *what, struct err *e)
+/* Runs a check whose rows are its findings; the text of the first column goes behind `what`. An answer `ok`
+ * is none. */
+static enum status findings(struct checking *c, enum sql_id id, const char *what, struct err *e)
 {
 	bool row = false;
 	char line[400];
 	enum status st;
 	while ((st = sql_step(c->s, id, &row, e)) == ST_OK && row) {
-		const char *text = (const char *)sqlite3_column_text(c->s->stmt[id], at);
+		const char *text = (const char *)sqlite3_column_text(c->s->stmt[id], 0);
 		if (text && strcmp(text, "ok") == 0)
 			continue;
 		snprintf(line, sizeof line, "%s%s", what, text ? text : "?");
@@ -76,6 +77,13 @@ static const struct whole_table {
     {SQL_ALL_TELESCOPES_OLD, "telescope_old", TELESCOPE_CELLS + 1, -1, -1},
     {SQL_ALLOTMENT_LOAD, "allotment", ALLOTMENT_CELLS, -1, -1},
     {SQL_ALL_ALLOTMENTS_OLD, "allotment_old", ALLOTMENT_CELLS + 1, -1, -1},
+    {SQL_ALL_PLANS, "plan", PLAN_CELLS, PLAN_DRAFT, -1},
+    {SQL_ALL_PLANS_OLD, "plan_old", PLAN_CELLS + 1, -1, -1},
+    {SQL_ALL_EDITIONS, "plan_edition", EDITION_CELLS, -1, -1},
+    {SQL_ALL_ITEMS, "plan_item", ITEM_CELLS, -1, -1},
+    {SQL_ALL_WINDOWS, "plan_window", WINDOW_CELLS, WINDOW_TARGET, -1},
+    {SQL_ALL_PLAN_MARKS, "plan_mark", PLAN_MARK_CELLS, -1, -1},
+    {SQL_ALL_PLAN_MARKS_OLD, "plan_mark_old", PLAN_MARK_CELLS + 1, -1, -1},
     {SQL_STORE_INFO, "store_info", 3, -1, -1},
 };
 
@@ -133,20 +141,29 @@ static enum status check_table(struct checking *c, const struct whole_table *t, 
 	return st;
 }
 
+/* Statements whose rows are findings. */
+static const struct {
+	enum sql_id id;
+	const char *what;
+} questions[] = {
+    {SQL_INTEGRITY, "damaged: "},
+    {SQL_FOREIGN_KEYS, "damaged: a row points nowhere, in table "},
+    {SQL_WRONG_POINTERS, "damaged: the current ephemeris belongs to another target: "},
+    {SQL_MISSING_MARKS, "damaged: a mid-time without its mark: "},
+    {SQL_WRONG_WINDOWS, "damaged: a planned window's ephemeris belongs to another target: "},
+    {SQL_MISSING_ITEMS, "damaged: items are missing in edition row "},
+    {SQL_MISSING_WINDOWS, "damaged: windows are missing in item row "},
+};
+
 enum status store_check(struct store *s, void (*say)(void *ctx, const char *line), void *ctx, int *faults,
 			struct err *e)
 {
 	struct checking c = {s, say, ctx, faults};
 	struct err why;
 	*faults = 0;
-	enum status st = findings(&c, SQL_INTEGRITY, 0, "damaged: ", &why);
-	if (st == ST_OK)
-		st = findings(&c, SQL_FOREIGN_KEYS, 0, "damaged: a row points nowhere, in table ", &why);
-	if (st == ST_OK)
-		st = findings(&c, SQL_WRONG_POINTERS, 0,
-			      "damaged: the current ephemeris belongs to another target: ", &why);
-	if (st == ST_OK)
-		st = findings(&c, SQL_MISSING_MARKS, 0, "damaged: a mid-time without its mark: ", &why);
+	enum status st = ST_OK;
+	for (size_t i = 0; st == ST_OK && i < sizeof questions / sizeof questions[0]; i++)
+		st = findings(&c, questions[i].id, questions[i].what, &why);
 	for (size_t i = 0; st == ST_OK && i < sizeof tables / sizeof tables[0]; i++)
 		st = check_table(&c, &tables[i], &why);
 	if (st == ST_OK && schema_compare(s->db, &s->crc, &why) != ST_OK)

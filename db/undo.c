@@ -6,6 +6,7 @@
 
 #include "db/change_rows.h"
 #include "db/midtime_rows.h"
+#include "db/plan_rows.h"
 #include "db/site_rows.h"
 #include "db/target_rows.h"
 #include "db/telescope_rows.h"
@@ -38,6 +39,10 @@ static const struct family {
      SQL_ALLOTMENT_BY_ID, SQL_ALLOTMENT_AFTER, SQL_ALLOTMENT_BEFORE},
     {&setting_rows, "setting", SETTING_KEY, SETTING_REMOVED, 0, SQL_SETTING_TOUCHED, SQL_SETTING_BY_ID,
      SQL_SETTING_AFTER, SQL_SETTING_BEFORE},
+    {&plan_rows, "plan", PLAN_DRAFT, PLAN_REMOVED, PLAN_KEY, SQL_PLAN_TOUCHED, SQL_PLAN_BY_ID, SQL_PLAN_AFTER,
+     SQL_PLAN_BEFORE},
+    {&plan_mark_rows, "mark", PLAN_MARK_KEY, PLAN_MARK_REMOVED, 0, SQL_PLAN_MARK_TOUCHED, SQL_PLAN_MARK_BY_ID,
+     SQL_PLAN_MARK_AFTER, SQL_PLAN_MARK_BEFORE},
 };
 enum { FAMILIES = sizeof families / sizeof families[0] };
 
@@ -110,6 +115,17 @@ static void midtime_title(const struct undoing *u, const struct cell *cell, char
 	row_free(&midtime);
 }
 
+static void mark_title(const struct undoing *u, const struct cell *cell, const char *key, char *out,
+		       size_t size)
+{
+	struct row plan;
+	char title[PLAN_TITLE_MAX] = "a plan";
+	if (row_find(u->s, SQL_PLAN_BY_ID, cell[PLAN_MARK_PLAN], &plan_rows, &plan, NULL) == ST_OK)
+		plan_title(plan.cell[PLAN_NIGHT].u.i, plan.cell[PLAN_DRAFT].u.text, title);
+	row_free(&plan);
+	snprintf(out, size, "mark of %.55s in %.90s", key, title);
+}
+
 static void row_title(const struct undoing *u, const struct cell *cell, char *out, size_t size)
 {
 	char quoted[ERR_QUOTE_MAX], first[NIGHT_TEXT_MAX], last[NIGHT_TEXT_MAX];
@@ -123,6 +139,12 @@ static void row_title(const struct undoing *u, const struct cell *cell, char *ou
 		night_date_text(cell[ALLOTMENT_FIRST].u.i, first);
 		night_date_text(cell[ALLOTMENT_LAST].u.i, last);
 		snprintf(out, size, "allotment of %s..%s, %s", first, last, quoted);
+	} else if (u->f->table == &plan_rows) {
+		char title[PLAN_TITLE_MAX];
+		plan_title(cell[PLAN_NIGHT].u.i, name->u.text, title);
+		snprintf(out, size, "%s", title);
+	} else if (u->f->table == &plan_mark_rows) {
+		mark_title(u, cell, quoted, out, size);
 	} else {
 		snprintf(out, size, "%s %s", u->f->what, quoted);
 	}
@@ -139,6 +161,8 @@ static void value_text(const struct undoing *u, size_t at, const struct cell *c,
 		snprintf(out, ERR_QUOTE_MAX, "version %lld",
 			 (long long)(found ? ephemeris.cell[EPHEMERIS_VERSION].u.i : 0));
 		row_free(&ephemeris);
+	} else if (u->f->table == &plan_rows && at == PLAN_KEPT) {
+		snprintf(out, ERR_QUOTE_MAX, "%s", c->u.i ? "kept" : "not kept");
 	} else if (c->type == CELL_TEXT) {
 		err_quote(c->u.text, (size_t)c->length, out);
 	} else if (c->type == CELL_NULL) {
@@ -181,13 +205,12 @@ static enum status say_changed(const struct undoing *u, const struct cell *left,
 	    change, by);
 }
 
-static enum status name_taken(const struct undoing *u, const struct cell *image, struct err *e)
+static enum status name_taken(const struct undoing *u, const struct cell *image, const char *what,
+			      struct err *e)
 {
 	char title[160];
 	row_title(u, image, title, sizeof title);
-	return err_set(e, ST_CONFLICT,
-		       "%s can't come back: its %s belongs to another by now; nothing was undone", title,
-		       u->f->table == &allotment_rows ? "time" : "name");
+	return err_set(e, ST_CONFLICT, "%s can't come back: %s by now; nothing was undone", title, what);
 }
 
 /* Whether a listed target other than id has the name. */
@@ -230,11 +253,25 @@ static enum status allotted_twice(const struct undoing *u, const struct cell *im
 	return st == ST_ABSENT ? ST_OK : st;
 }
 
+/* Whether a listed plan other than that of the image has its draft's name, or is the kept one. */
+static enum status planned_twice(const struct undoing *u, const struct cell *image, enum sql_id id,
+				 size_t n_keys, bool *taken, struct err *e)
+{
+	struct row other;
+	const struct cell keys[] = {image[PLAN_SITE], image[PLAN_NIGHT],
+				    cell_int(id_of_cell(&image[PLAN_TELESCOPE])), image[PLAN_KEY]};
+	enum status st = row_find_by(u->s, id, keys, n_keys, &plan_rows, &other, e);
+	*taken = st == ST_OK && other.cell[0].u.i != image[0].u.i;
+	row_free(&other);
+	return st == ST_ABSENT ? ST_OK : st;
+}
+
 /* Whether the name of a row that comes back is still free. A site keeps its row as long as its name, and so
  * do telescopes and settings. */
 static enum status name_free(const struct undoing *u, const struct cell *image, struct err *e)
 {
 	bool taken = false;
+	const char *what = "its name belongs to another";
 	enum status st = ST_OK;
 	if (image[u->f->removed_at].u.i)
 		return ST_OK;
@@ -246,8 +283,15 @@ static enum status name_free(const struct undoing *u, const struct cell *image, 
 		st = target_called(u, image[ALIAS_KEY], image[ALIAS_TARGET].u.i, &taken, e);
 	} else if (u->f->table == &allotment_rows) {
 		st = allotted_twice(u, image, &taken, e);
+		what = "its time is allotted again";
+	} else if (u->f->table == &plan_rows) {
+		st = planned_twice(u, image, SQL_PLAN_DRAFT, 4, &taken, e);
+		if (st == ST_OK && !taken && image[PLAN_KEPT].u.i) {
+			st = planned_twice(u, image, SQL_PLAN_KEPT, 3, &taken, e);
+			what = "another plan of that night is kept";
+		}
 	}
-	return st == ST_OK && taken ? name_taken(u, image, e) : st;
+	return st == ST_OK && taken ? name_taken(u, image, what, e) : st;
 }
 
 /* --- one row --- */
@@ -288,6 +332,17 @@ static enum status find_image(const struct undoing *u, const struct row *now, st
 	return ST_OK;
 }
 
+/* Whether a listed row that stays listed has to let go of something first: its name, where two have changed
+ * theirs with each other; that it is the kept plan of its night, where another comes back as that. */
+static bool lets_go(const struct family *f, const struct cell *now, const struct cell *image)
+{
+	if (now[f->removed_at].u.i)
+		return false;
+	if (f->table == &plan_rows)
+		return now[PLAN_KEPT].u.i && !image[PLAN_KEPT].u.i;
+	return f->table == &target_table && !cells_same(&image[f->key_at], &now[f->key_at], 1);
+}
+
 static enum status put_back(const struct undoing *u, int64_t id, enum pass pass, struct err *e)
 {
 	const struct family *f = u->f;
@@ -302,10 +357,7 @@ static enum status put_back(const struct undoing *u, int64_t id, enum pass pass,
 	if (st == ST_OK)
 		st = find_image(u, &now, &before, image, e);
 	bool out = st == ST_OK && image[f->removed_at].u.i;
-	/* a row that gets another name lets go of its own first: two may have changed theirs with each other
-	 */
-	bool parked = st == ST_OK && !out && f->table == &target_table && !now.cell[f->removed_at].u.i &&
-		      !cells_same(&image[f->key_at], &now.cell[f->key_at], 1);
+	bool parked = st == ST_OK && !out && lets_go(f, now.cell, image);
 	if (parked && pass == PASS_OUT) {
 		memcpy(image, now.cell, sizeof image);
 		image[f->removed_at] = cell_int(1);

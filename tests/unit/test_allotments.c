@@ -136,7 +136,7 @@ static void test_undo(void **state)
 	assert_int_equal(history_undo(s, 3, &change, &undone, &e), ST_CONFLICT);
 	assert_string_equal(e.text,
 			    "allotment of 2026-04-22..2026-04-24, first-half can't come back: its time "
-			    "belongs to another by now; nothing was undone");
+			    "is allotted again by now; nothing was undone");
 	must(history_undo(s, 4, &change, &undone, &e), &e);
 	must(history_undo(s, 3, &change, &undone, &e), &e);
 	is = digest_now(s);
