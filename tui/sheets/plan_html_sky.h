@@ -25,6 +25,8 @@ struct plan_sky {
 	size_t *track;	      /* [n_items]: which row of alt_deg is the item's star; SIZE_MAX: its position is not known */
 	size_t tracks;
 	double *alt_deg; /* [tracks][samples] airless */
+	size_t *first_member;	  /* [n_items]: where an item's members begin in usable */
+	struct intervals *usable; /* the usable parts of each member's reserve */
 };
 /* False: no memory; *s is freed then. */
 bool plan_sky_prepare(const struct plan_view *v, struct plan_sky *s);
