@@ -70,6 +70,7 @@ $(B)/tests/fuzz/%: $(B)/tests/fuzz/%.o $(B)/wane.a
 $(B)/tests/bench/%: $(B)/tests/bench/%.o $(B)/wane.a
 	@$(CC) $(LINK) $^ $(LIBS) -o $@
 
+$(B)/tests/property/test_ics: TESTLIBS += -lical
 $(B)/tests/%: $(B)/tests/%.o $(call obj,$(SUPPORT)) $(B)/wane.a
 	@$(CC) $(LINK) $^ $(LIBS) $(TESTLIBS) -o $@
 

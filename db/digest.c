@@ -6,6 +6,7 @@
 #include "db/midtime_rows.h"
 #include "db/site_rows.h"
 #include "db/target_rows.h"
+#include "db/telescope_rows.h"
 
 #include <stdio.h>
 #include <stdlib.h>
@@ -163,6 +164,12 @@ enum status store_digest(struct store *s, char out[33], struct err *e)
 		st = hash_midtimes(s, &h, &l, e);
 	if (st == ST_OK)
 		st = hash_rows(s, &h, &l, SQL_SITE_LOAD, &site_table, SITE_REMOVED, 0, e);
+	if (st == ST_OK)
+		st = hash_rows(s, &h, &l, SQL_TELESCOPE_LOAD, &telescope_rows, TELESCOPE_REMOVED, 0, e);
+	if (st == ST_OK)
+		st = hash_rows(s, &h, &l, SQL_ALLOTMENT_LOAD, &allotment_rows, ALLOTMENT_REMOVED, 0, e);
+	if (st == ST_OK)
+		st = hash_rows(s, &h, &l, SQL_ALL_SETTINGS, &setting_rows, SETTING_REMOVED, 0, e);
 	free(l.id);
 	snprintf(out, 33, "%016llx%016llx", (unsigned long long)h.high, (unsigned long long)h.low);
 	return st;

@@ -3,6 +3,7 @@
 #include "db/history.h"
 
 #include "db/change_rows.h"
+#include "db/telescope_rows.h"
 #include "db/text_clean.h"
 
 #include <stdio.h>
@@ -77,17 +78,20 @@ enum touched {
 	TOUCHED_ALIAS,
 	TOUCHED_SITE,
 	TOUCHED_MIDTIME,
+	TOUCHED_TELESCOPE,
+	TOUCHED_ALLOTMENT,
+	TOUCHED_SETTING,
 	TOUCHED_KINDS
 };
-static const char *const touched_plural[TOUCHED_KINDS] = {"targets", "ephemerides", "other names", "sites",
-							  "mid-times"};
+static const char *const touched_plural[TOUCHED_KINDS] = {
+    "targets", "ephemerides", "other names", "sites", "mid-times", "telescopes", "allotments", "settings"};
 
 /* The rows of one kind that one change set wrote. */
 struct tally {
 	long n;
 	int64_t target_id; /* of the first */
 	bool one_target;   /* they all belong to it */
-	int64_t number;	   /* of the first: version or epoch */
+	int64_t number;	   /* of the first: version, epoch or night */
 	char name[96];	   /* of the first */
 };
 
@@ -106,6 +110,8 @@ static void say_tally(const struct tally tally[TOUCHED_KINDS], enum touched kind
 {
 	const struct tally *t = &tally[kind];
 	const struct tally *target = &tally[TOUCHED_TARGET];
+	char night[NIGHT_TEXT_MAX];
+	night_date_text(t->number, night);
 	bool named = target->n == 1 && target->target_id == t->target_id;
 	const char *of = named ? "" : " of ", *name = named ? "" : t->name;
 	if (t->n > 1 && kind == TOUCHED_MIDTIME && t->one_target)
@@ -120,6 +126,12 @@ static void say_tally(const struct tally tally[TOUCHED_KINDS], enum touched kind
 		snprintf(out, size, "other name %s", t->name);
 	else if (kind == TOUCHED_SITE)
 		snprintf(out, size, "site %s", t->name);
+	else if (kind == TOUCHED_TELESCOPE)
+		snprintf(out, size, "telescope %s", t->name);
+	else if (kind == TOUCHED_ALLOTMENT)
+		snprintf(out, size, "allotment from %s, %s", night, t->name);
+	else if (kind == TOUCHED_SETTING)
+		snprintf(out, size, "setting %s", t->name);
 	else
 		snprintf(out, size, "mid-time of %s, epoch %lld", t->name, (long long)t->number);
 }

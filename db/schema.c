@@ -1,6 +1,8 @@
 /* SPDX-License-Identifier: MIT */
 #include "db/schema.h"
 
+#include "db/schema_parts.h"
+
 #include <stdio.h>
 #include <string.h>
 
@@ -62,15 +64,6 @@
 #define READ_BODY                                                                                            \
 	"as_read TEXT NOT NULL,"   /* texts as read: field=text, tab between */                              \
 	"doubts INTEGER NOT NULL," /* bit of each field whose text can't be true */
-
-#define REV_BODY                                                                                             \
-	"rev INTEGER NOT NULL CHECK(rev BETWEEN 1 AND 1000000000),"                                          \
-	"change_id INTEGER NOT NULL REFERENCES change_set(id),"
-#define REMOVED_BODY "removed INTEGER NOT NULL CHECK(removed IN (0, 1)),"
-#define CRC_BODY "row_crc INTEGER NOT NULL CHECK(row_crc BETWEEN 0 AND 4294967295)"
-#define OLD_TAIL                                                                                             \
-	"replaced_by INTEGER NOT NULL REFERENCES change_set(id)," CRC_BODY                                   \
-	", PRIMARY KEY(id, rev)) STRICT, WITHOUT ROWID;"
 
 static const char *const step_1[] = {
     "CREATE TABLE store_info(id INTEGER PRIMARY KEY CHECK(id = 1),"
@@ -185,7 +178,7 @@ static const char *const step_1[] = {
     NULL,
 };
 
-static const char *const *const steps[SCHEMA_VERSION] = {step_1};
+static const char *const *const steps[SCHEMA_VERSION] = {step_1, schema_step_2};
 
 static enum status run(sqlite3 *db, const char *sql, struct err *e)
 {

@@ -10,7 +10,7 @@
 #include <sqlite3.h>
 #include <stdbool.h>
 
-enum { SCHEMA_VERSION = 1, APPLICATION_ID = 0x77616E65 /* "wane" */ };
+enum { SCHEMA_VERSION = 2, APPLICATION_ID = 0x77616E65 /* "wane" */ };
 
 /* Runs the steps from `version` on; the caller holds the transaction. Sets application_id and user_version.
  */
@@ -21,6 +21,6 @@ MUST_USE enum status schema_compare(sqlite3 *db, const struct crc_table *table, 
 /* Checksum of those texts; SCHEMA_CRC is that of a fresh store, so that only a store that differs has to be
  * compared text by text. */
 MUST_USE enum status schema_crc(sqlite3 *db, const struct crc_table *table, uint32_t *crc, struct err *e);
-#define SCHEMA_CRC 0x54FD9329u
+#define SCHEMA_CRC 0xF43AA500u
 
 #endif

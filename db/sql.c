@@ -28,6 +28,14 @@
 #define SITE_PLAIN "name, name_key, lat_deg, lon_east_deg, height_m, zone, mask, removed, rev, change_id"
 #define SETTING_PLAIN "key, value, removed, rev, change_id"
 
+/* the fields in the order of their table (telescopes.c) */
+#define TELESCOPE_PLAIN                                                                                      \
+	"site_id, name, name_key, slew_deg_s, settle_min, filter_min, field_arcmin, mount, alt_min_deg, "    \
+	"alt_max_deg, ha_east_h, ha_west_h, zenith_deg, flip_min, flip_before_min, flip_after_min, "         \
+	"aperture_m, obstruction, throughput, band, pixel_arcsec, gain_e_adu, read_noise_e, dark_e_s, "      \
+	"full_well_e, defocus_px, exposure_s, dead_s, red_noise_ppt, blocks, note, removed, rev, change_id"
+#define ALLOTMENT_PLAIN "site_id, telescope_id, first_mjd, last_mjd, span, note, removed, rev, change_id"
+
 #define MIDTIME_PLAIN                                                                                        \
 	"target_id, epoch, kind, mid_day, mid_frac, mid_text, time_scale, err_d, source, entered_utc, rev, " \
 	"change_id"
@@ -122,6 +130,40 @@ const char *const sql_text[SQL_COUNT] = {
     [SQL_ALIAS_BY_ID] = "SELECT id, " ALIAS_PLAIN ", row_crc FROM target_alias WHERE id = ?",
     [SQL_SITE_BY_ID] = "SELECT id, " SITE_PLAIN ", row_crc FROM site WHERE id = ?",
 
+    [SQL_TELESCOPE_NEXT] = "SELECT ifnull(max(id), 0) + 1 FROM telescope",
+    [SQL_TELESCOPE_LOAD] =
+	"SELECT id, " TELESCOPE_PLAIN ", row_crc FROM telescope ORDER BY site_id, name_key",
+    [SQL_TELESCOPE_BY_KEY] =
+	"SELECT id, " TELESCOPE_PLAIN ", row_crc FROM telescope WHERE site_id = ? AND name_key = ?",
+    [SQL_TELESCOPE_BY_ID] = "SELECT id, " TELESCOPE_PLAIN ", row_crc FROM telescope WHERE id = ?",
+    [SQL_TELESCOPE_ADD] = "INSERT INTO telescope(id, " TELESCOPE_PLAIN ", row_crc) VALUES(" TEN ", " TEN
+			  ", " TEN ", " FIVE ", ?)",
+    [SQL_TELESCOPE_UPDATE] = "UPDATE telescope SET (" TELESCOPE_PLAIN ", row_crc) = (" TEN ", " TEN ", " TEN
+			     ", " FIVE ") WHERE id = ? AND rev = ?",
+    [SQL_TELESCOPE_KEEP_OLD] = "INSERT INTO telescope_old(id, " TELESCOPE_PLAIN
+			       ", replaced_by, row_crc) VALUES(" TEN ", " TEN ", " TEN ", " FIVE ", ?, ?)",
+
+    [SQL_ALLOTMENT_NEXT] = "SELECT ifnull(max(id), 0) + 1 FROM allotment",
+    [SQL_ALLOTMENT_LOAD] = "SELECT id, " ALLOTMENT_PLAIN ", row_crc FROM allotment ORDER BY first_mjd, id",
+    [SQL_ALLOTMENT_SAME] =
+	"SELECT id, " ALLOTMENT_PLAIN ", row_crc FROM allotment WHERE site_id = ? AND "
+	"ifnull(telescope_id, 0) = ? AND first_mjd = ? AND last_mjd = ? AND span = ? AND removed = 0",
+    [SQL_ALLOTMENT_BY_ID] = "SELECT id, " ALLOTMENT_PLAIN ", row_crc FROM allotment WHERE id = ?",
+    [SQL_ALLOTMENT_ADD] = "INSERT INTO allotment(id, " ALLOTMENT_PLAIN ", row_crc) VALUES(" TEN ", ?)",
+    [SQL_ALLOTMENT_UPDATE] =
+	"UPDATE allotment SET (" ALLOTMENT_PLAIN ", row_crc) = (" TEN ") WHERE id = ? AND rev = ?",
+    [SQL_ALLOTMENT_KEEP_OLD] =
+	"INSERT INTO allotment_old(id, " ALLOTMENT_PLAIN ", replaced_by, row_crc) VALUES(" TEN ", ?, ?)",
+
+    [SQL_SETTING_NEXT] = "SELECT ifnull(max(id), 0) + 1 FROM setting",
+    [SQL_SETTING_BY_KEY] = "SELECT id, " SETTING_PLAIN ", row_crc FROM setting WHERE key = ?",
+    [SQL_SETTING_BY_ID] = "SELECT id, " SETTING_PLAIN ", row_crc FROM setting WHERE id = ?",
+    [SQL_SETTING_ADD] = "INSERT INTO setting(id, " SETTING_PLAIN ", row_crc) VALUES(" FIVE ", ?, ?)",
+    [SQL_SETTING_UPDATE] =
+	"UPDATE setting SET (" SETTING_PLAIN ", row_crc) = (" FIVE ", ?) WHERE id = ? AND rev = ?",
+    [SQL_SETTING_KEEP_OLD] =
+	"INSERT INTO setting_old(id, " SETTING_PLAIN ", replaced_by, row_crc) VALUES(" FIVE ", ?, ?, ?)",
+
     [SQL_HISTORY_CHANGES] =
 	"SELECT id, utc, who, verb, undoes, rev, row_crc FROM change_set ORDER BY id DESC",
     [SQL_HISTORY_ROWS] =
@@ -138,6 +180,14 @@ const char *const sql_text[SQL_COUNT] = {
 	"JOIN target t ON t.id = target_id UNION ALL "
 	"SELECT k.change_id, 4, target_id, name, epoch FROM midtime_mark_old k JOIN midtime m ON m.id = k.id "
 	"JOIN target t ON t.id = target_id WHERE k.replaced_by <> k.change_id "
+	"UNION ALL "
+	"SELECT change_id, 5, 0, name, 0 FROM telescope UNION ALL "
+	"SELECT change_id, 5, 0, name, 0 FROM telescope_old WHERE replaced_by <> change_id UNION ALL "
+	"SELECT change_id, 6, 0, span, first_mjd FROM allotment UNION ALL "
+	"SELECT change_id, 6, 0, span, first_mjd FROM allotment_old WHERE replaced_by <> change_id "
+	"UNION ALL "
+	"SELECT change_id, 7, 0, key, 0 FROM setting UNION ALL "
+	"SELECT change_id, 7, 0, key, 0 FROM setting_old WHERE replaced_by <> change_id "
 	"ORDER BY 1 DESC, 2, 3",
 
     [SQL_TARGET_TOUCHED] = TOUCHED("target"),
@@ -152,6 +202,15 @@ const char *const sql_text[SQL_COUNT] = {
     [SQL_MARK_TOUCHED] = TOUCHED("midtime_mark"),
     [SQL_MARK_AFTER] = AFTER("midtime_mark", MARK_PLAIN),
     [SQL_MARK_BEFORE] = BEFORE("midtime_mark", MARK_PLAIN),
+    [SQL_TELESCOPE_TOUCHED] = TOUCHED("telescope"),
+    [SQL_TELESCOPE_AFTER] = AFTER("telescope", TELESCOPE_PLAIN),
+    [SQL_TELESCOPE_BEFORE] = BEFORE("telescope", TELESCOPE_PLAIN),
+    [SQL_ALLOTMENT_TOUCHED] = TOUCHED("allotment"),
+    [SQL_ALLOTMENT_AFTER] = AFTER("allotment", ALLOTMENT_PLAIN),
+    [SQL_ALLOTMENT_BEFORE] = BEFORE("allotment", ALLOTMENT_PLAIN),
+    [SQL_SETTING_TOUCHED] = TOUCHED("setting"),
+    [SQL_SETTING_AFTER] = AFTER("setting", SETTING_PLAIN),
+    [SQL_SETTING_BEFORE] = BEFORE("setting", SETTING_PLAIN),
     [SQL_CHANGE_BY_ID] = "SELECT id, utc, who, verb, undoes, rev, row_crc FROM change_set WHERE id = ?",
 
     [SQL_ALL_CHANGES] = "SELECT id, utc, who, verb, undoes, rev, row_crc FROM change_set",
@@ -162,8 +221,10 @@ const char *const sql_text[SQL_COUNT] = {
     [SQL_ALL_MIDTIMES] = "SELECT id, " MIDTIME_PLAIN ", row_crc FROM midtime",
     [SQL_ALL_MARKS] = "SELECT id, " MARK_PLAIN ", row_crc FROM midtime_mark",
     [SQL_ALL_MARKS_OLD] = "SELECT id, " MARK_PLAIN ", replaced_by, row_crc FROM midtime_mark_old",
-    [SQL_ALL_SETTINGS] = "SELECT id, " SETTING_PLAIN ", row_crc FROM setting",
+    [SQL_ALL_SETTINGS] = "SELECT id, " SETTING_PLAIN ", row_crc FROM setting ORDER BY key",
     [SQL_ALL_SETTINGS_OLD] = "SELECT id, " SETTING_PLAIN ", replaced_by, row_crc FROM setting_old",
+    [SQL_ALL_TELESCOPES_OLD] = "SELECT id, " TELESCOPE_PLAIN ", replaced_by, row_crc FROM telescope_old",
+    [SQL_ALL_ALLOTMENTS_OLD] = "SELECT id, " ALLOTMENT_PLAIN ", replaced_by, row_crc FROM allotment_old",
     [SQL_INTEGRITY] = "PRAGMA integrity_check",
     [SQL_FOREIGN_KEYS] = "PRAGMA foreign_key_check",
     [SQL_WRONG_POINTERS] =

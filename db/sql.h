@@ -13,8 +13,8 @@ enum sql_id {
 	SQL_CHANGE_NEXT,
 	SQL_CHANGE_ADD,
 	SQL_TARGET_NEXT,
-	SQL_TARGET_LOAD, /* each target with its current ephemeris, columns of the one behind those of the
-			    other */
+	SQL_TARGET_LOAD,   /* each target with its current ephemeris, columns of the one behind those of the
+			      other */
 	SQL_TARGET_BY_KEY, /* the listed one, else the newest that was removed */
 	SQL_TARGET_BY_ID,
 	SQL_TARGET_ADD,
@@ -50,6 +50,26 @@ enum sql_id {
 	SQL_EPHEMERIS_OF_VERSION,
 	SQL_ALIAS_BY_ID,
 	SQL_SITE_BY_ID,
+	SQL_TELESCOPE_NEXT,
+	SQL_TELESCOPE_LOAD,
+	SQL_TELESCOPE_BY_KEY, /* of a site */
+	SQL_TELESCOPE_BY_ID,
+	SQL_TELESCOPE_ADD,
+	SQL_TELESCOPE_UPDATE,
+	SQL_TELESCOPE_KEEP_OLD,
+	SQL_ALLOTMENT_NEXT,
+	SQL_ALLOTMENT_LOAD,
+	SQL_ALLOTMENT_SAME, /* the listed one of a site, telescope (0 none), nights and span */
+	SQL_ALLOTMENT_BY_ID,
+	SQL_ALLOTMENT_ADD,
+	SQL_ALLOTMENT_UPDATE,
+	SQL_ALLOTMENT_KEEP_OLD,
+	SQL_SETTING_NEXT,
+	SQL_SETTING_BY_KEY,
+	SQL_SETTING_BY_ID,
+	SQL_SETTING_ADD,
+	SQL_SETTING_UPDATE,
+	SQL_SETTING_KEEP_OLD,
 	SQL_HISTORY_CHANGES, /* newest first */
 	SQL_HISTORY_ROWS,    /* every row that a change set left behind, by change set */
 	/* of a table family: ids of the rows that a change set wrote; the row as it left it (when replaced
@@ -66,6 +86,15 @@ enum sql_id {
 	SQL_MARK_TOUCHED,
 	SQL_MARK_AFTER,
 	SQL_MARK_BEFORE,
+	SQL_TELESCOPE_TOUCHED,
+	SQL_TELESCOPE_AFTER,
+	SQL_TELESCOPE_BEFORE,
+	SQL_ALLOTMENT_TOUCHED,
+	SQL_ALLOTMENT_AFTER,
+	SQL_ALLOTMENT_BEFORE,
+	SQL_SETTING_TOUCHED,
+	SQL_SETTING_AFTER,
+	SQL_SETTING_BEFORE,
 	SQL_CHANGE_BY_ID,
 	SQL_ALL_CHANGES, /* whole tables, for the check */
 	SQL_ALL_TARGETS_OLD,
@@ -77,6 +106,8 @@ enum sql_id {
 	SQL_ALL_MARKS_OLD,
 	SQL_ALL_SETTINGS,
 	SQL_ALL_SETTINGS_OLD,
+	SQL_ALL_TELESCOPES_OLD,
+	SQL_ALL_ALLOTMENTS_OLD,
 	SQL_INTEGRITY,
 	SQL_FOREIGN_KEYS,
 	SQL_WRONG_POINTERS,

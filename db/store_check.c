@@ -6,6 +6,7 @@
 #include "db/schema.h"
 #include "db/site_rows.h"
 #include "db/target_rows.h"
+#include "db/telescope_rows.h"
 #include "db/text_clean.h"
 
 #include <stdio.h>
@@ -69,8 +70,12 @@ static const struct whole_table {
     {SQL_ALL_MIDTIMES, "midtime", MIDTIME_CELLS, -1, -1},
     {SQL_ALL_MARKS, "midtime_mark", MARK_CELLS, -1, -1},
     {SQL_ALL_MARKS_OLD, "midtime_mark_old", MARK_CELLS + 1, -1, -1},
-    {SQL_ALL_SETTINGS, "setting", 6, -1, -1},
-    {SQL_ALL_SETTINGS_OLD, "setting_old", 7, -1, -1},
+    {SQL_ALL_SETTINGS, "setting", SETTING_CELLS, SETTING_KEY, -1},
+    {SQL_ALL_SETTINGS_OLD, "setting_old", SETTING_CELLS + 1, -1, -1},
+    {SQL_TELESCOPE_LOAD, "telescope", TELESCOPE_CELLS, TELESCOPE_NAME, -1},
+    {SQL_ALL_TELESCOPES_OLD, "telescope_old", TELESCOPE_CELLS + 1, -1, -1},
+    {SQL_ALLOTMENT_LOAD, "allotment", ALLOTMENT_CELLS, -1, -1},
+    {SQL_ALL_ALLOTMENTS_OLD, "allotment_old", ALLOTMENT_CELLS + 1, -1, -1},
     {SQL_STORE_INFO, "store_info", 3, -1, -1},
 };
 

@@ -136,6 +136,28 @@ enum status name_check(const char *s, size_t n, size_t *bad_at, struct err *e)
 	return ST_OK;
 }
 
+enum status text_check(const char *what, const char *s, size_t chars_max, struct err *e)
+{
+	char got[ERR_QUOTE_MAX];
+	size_t n = strlen(s), chars = 0;
+	err_quote(s, n, got);
+	for (size_t i = 0; i < n; chars++) {
+		uint32_t cp;
+		size_t length = utf8_decode(s + i, n - i, &cp);
+		if (length == 0 || codepoint_is_hostile(cp))
+			return err_set(
+			    e, ST_SYNTAX,
+			    "%s: a control, invisible or invalid character at byte %zu (got \"%s\", "
+			    "expected printable characters)",
+			    what, i + 1, got);
+		i += length;
+	}
+	if (chars > chars_max)
+		return err_set(e, ST_RANGE, "%s: too long (got \"%s\", expected at most %zu characters)",
+			       what, got, chars_max);
+	return ST_OK;
+}
+
 void name_key(const char *name, char out[NAME_KEY_MAX])
 {
 	size_t n = strlen(name), used = 0;

@@ -20,6 +20,9 @@ int codepoint_is_hostile(uint32_t cp);
 /* A name or key: 1..80 characters after trimming, valid UTF-8, nothing hostile, no leading combining mark. ST_SYNTAX names the first
  * bad character as U+XXXX and its byte offset in *bad_at (may be NULL). */
 MUST_USE enum status name_check(const char *s, size_t n, size_t *bad_at, struct err *e);
+/* A text of one line, at most chars_max characters, "" too: valid UTF-8, nothing hostile (ST_SYNTAX, the message names the first bad
+ * character), not too long (ST_RANGE). `what` begins the message. */
+MUST_USE enum status text_check(const char *what, const char *s, size_t chars_max, struct err *e);
 /* Key under which two names are one: ASCII letters lowered, blanks, hyphens (U+2010..2015 too), underscores and U+00A0 dropped. */
 void name_key(const char *name, char out[NAME_KEY_MAX]);
 /* Takes blanks and tabs off both ends of (*s)[0..*n). */

@@ -8,6 +8,7 @@
 #include "db/midtime_rows.h"
 #include "db/site_rows.h"
 #include "db/target_rows.h"
+#include "db/telescope_rows.h"
 #include "ephem/number_text.h"
 
 #include <stdio.h>
@@ -18,15 +19,25 @@
  * pointer in one of these. */
 static const struct family {
 	const struct table *table;
+	const char *what;	   /* in words */
+	size_t title_at;	   /* the text that names a row */
 	size_t removed_at, key_at; /* key_at: a name folded; 0 none */
 	enum sql_id touched, by_id, after, before;
 } families[] = {
-    {&target_table, TARGET_REMOVED, TARGET_KEY, SQL_TARGET_TOUCHED, SQL_TARGET_BY_ID, SQL_TARGET_AFTER,
-     SQL_TARGET_BEFORE},
-    {&alias_table, ALIAS_REMOVED, ALIAS_KEY, SQL_ALIAS_TOUCHED, SQL_ALIAS_BY_ID, SQL_ALIAS_AFTER,
-     SQL_ALIAS_BEFORE},
-    {&site_table, SITE_REMOVED, SITE_KEY, SQL_SITE_TOUCHED, SQL_SITE_BY_ID, SQL_SITE_AFTER, SQL_SITE_BEFORE},
-    {&mark_rows, MARK_REMOVED, 0, SQL_MARK_TOUCHED, SQL_MARK_BY_ID, SQL_MARK_AFTER, SQL_MARK_BEFORE},
+    {&target_table, "target", TARGET_FIELDS, TARGET_REMOVED, TARGET_KEY, SQL_TARGET_TOUCHED, SQL_TARGET_BY_ID,
+     SQL_TARGET_AFTER, SQL_TARGET_BEFORE},
+    {&alias_table, "other name", ALIAS_NAME, ALIAS_REMOVED, ALIAS_KEY, SQL_ALIAS_TOUCHED, SQL_ALIAS_BY_ID,
+     SQL_ALIAS_AFTER, SQL_ALIAS_BEFORE},
+    {&site_table, "site", SITE_NAME, SITE_REMOVED, SITE_KEY, SQL_SITE_TOUCHED, SQL_SITE_BY_ID, SQL_SITE_AFTER,
+     SQL_SITE_BEFORE},
+    {&mark_rows, "mid-time", 0, MARK_REMOVED, 0, SQL_MARK_TOUCHED, SQL_MARK_BY_ID, SQL_MARK_AFTER,
+     SQL_MARK_BEFORE},
+    {&telescope_rows, "telescope", TELESCOPE_NAME, TELESCOPE_REMOVED, TELESCOPE_KEY, SQL_TELESCOPE_TOUCHED,
+     SQL_TELESCOPE_BY_ID, SQL_TELESCOPE_AFTER, SQL_TELESCOPE_BEFORE},
+    {&allotment_rows, "allotment", ALLOTMENT_SPAN, ALLOTMENT_REMOVED, 0, SQL_ALLOTMENT_TOUCHED,
+     SQL_ALLOTMENT_BY_ID, SQL_ALLOTMENT_AFTER, SQL_ALLOTMENT_BEFORE},
+    {&setting_rows, "setting", SETTING_KEY, SETTING_REMOVED, 0, SQL_SETTING_TOUCHED, SQL_SETTING_BY_ID,
+     SQL_SETTING_AFTER, SQL_SETTING_BEFORE},
 };
 enum { FAMILIES = sizeof families / sizeof families[0] };
 
@@ -80,22 +91,10 @@ static enum status stands_for(const struct undoing *u, int64_t row_id, int64_t r
 
 /* --- why not --- */
 
-static void row_title(const struct undoing *u, const struct cell *cell, char *out, size_t size)
+static void midtime_title(const struct undoing *u, const struct cell *cell, char *out, size_t size)
 {
 	char quoted[ERR_QUOTE_MAX];
 	struct row midtime, target;
-	if (u->f->table != &mark_rows) {
-		const char *what = u->f->table == &target_table ? "target"
-				   : u->f->table == &site_table ? "site"
-								: "other name";
-		const struct cell *name =
-		    &cell[u->f->table == &target_table
-			      ? (int)TARGET_FIELDS
-			      : (u->f->table == &site_table ? (int)SITE_NAME : (int)ALIAS_NAME)];
-		err_quote(name->u.text, (size_t)name->length, quoted);
-		snprintf(out, size, "%s %s", what, quoted);
-		return;
-	}
 	snprintf(out, size, "mid-time %lld", (long long)cell[0].u.i);
 	if (row_find(u->s, SQL_MIDTIME_BY_ID, cell[0], &midtime_rows, &midtime, NULL) == ST_OK) {
 		if (row_find(u->s, SQL_TARGET_BY_ID, midtime.cell[MIDTIME_TARGET], &target_table, &target,
@@ -109,6 +108,24 @@ static void row_title(const struct undoing *u, const struct cell *cell, char *ou
 		row_free(&target);
 	}
 	row_free(&midtime);
+}
+
+static void row_title(const struct undoing *u, const struct cell *cell, char *out, size_t size)
+{
+	char quoted[ERR_QUOTE_MAX], first[NIGHT_TEXT_MAX], last[NIGHT_TEXT_MAX];
+	const struct cell *name = &cell[u->f->title_at];
+	if (u->f->table == &mark_rows) {
+		midtime_title(u, cell, out, size);
+		return;
+	}
+	err_quote(name->u.text, (size_t)name->length, quoted);
+	if (u->f->table == &allotment_rows) {
+		night_date_text(cell[ALLOTMENT_FIRST].u.i, first);
+		night_date_text(cell[ALLOTMENT_LAST].u.i, last);
+		snprintf(out, size, "allotment of %s..%s, %s", first, last, quoted);
+	} else {
+		snprintf(out, size, "%s %s", u->f->what, quoted);
+	}
 }
 
 static void value_text(const struct undoing *u, size_t at, const struct cell *c, char out[ERR_QUOTE_MAX])
@@ -169,7 +186,8 @@ static enum status name_taken(const struct undoing *u, const struct cell *image,
 	char title[160];
 	row_title(u, image, title, sizeof title);
 	return err_set(e, ST_CONFLICT,
-		       "%s can't come back: its name belongs to another by now; nothing was undone", title);
+		       "%s can't come back: its %s belongs to another by now; nothing was undone", title,
+		       u->f->table == &allotment_rows ? "time" : "name");
 }
 
 /* Whether a listed target other than id has the name. */
@@ -199,7 +217,21 @@ static enum status alias_called(const struct undoing *u, struct cell key, int64_
 	return st == ST_ABSENT ? ST_OK : st;
 }
 
-/* Whether the name of a row that comes back is still free. A site keeps its row as long as its name. */
+/* Whether a listed allotment other than that of the image says the same. */
+static enum status allotted_twice(const struct undoing *u, const struct cell *image, bool *taken,
+				  struct err *e)
+{
+	struct row other;
+	const struct cell keys[] = {image[ALLOTMENT_SITE], cell_int(id_of_cell(&image[ALLOTMENT_TELESCOPE])),
+				    image[ALLOTMENT_FIRST], image[ALLOTMENT_LAST], image[ALLOTMENT_SPAN]};
+	enum status st = row_find_by(u->s, SQL_ALLOTMENT_SAME, keys, 5, &allotment_rows, &other, e);
+	*taken = st == ST_OK && other.cell[0].u.i != image[0].u.i;
+	row_free(&other);
+	return st == ST_ABSENT ? ST_OK : st;
+}
+
+/* Whether the name of a row that comes back is still free. A site keeps its row as long as its name, and so
+ * do telescopes and settings. */
 static enum status name_free(const struct undoing *u, const struct cell *image, struct err *e)
 {
 	bool taken = false;
@@ -212,6 +244,8 @@ static enum status name_free(const struct undoing *u, const struct cell *image, 
 			st = alias_called(u, image[TARGET_KEY], image[0].u.i, &taken, e);
 	} else if (u->f->table == &alias_table) {
 		st = target_called(u, image[ALIAS_KEY], image[ALIAS_TARGET].u.i, &taken, e);
+	} else if (u->f->table == &allotment_rows) {
+		st = allotted_twice(u, image, &taken, e);
 	}
 	return st == ST_OK && taken ? name_taken(u, image, e) : st;
 }

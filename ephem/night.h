@@ -31,6 +31,7 @@ struct night_dark {
 
 struct night {
 	const struct site *site;
+	const struct telescope *telescope; /* that it is planned for; borrowed; NULL none. Named in rows; nothing here is computed from it */
 	struct earth_clock clock;
 	int32_t mjd;          /* date of the evening */
 	struct tt noon_tt;

@@ -3,7 +3,7 @@
 # build: the program; tests: `make check`; all: static analysis too.
 set -u
 build="gcc make libc6-dev libncurses-dev libnova-dev libsqlite3-dev tzdata"
-tests="libcmocka-dev liberfa-dev clang libclang-rt-dev locales casacore-data-jpl-de405"
+tests="libcmocka-dev liberfa-dev clang libclang-rt-dev locales casacore-data-jpl-de405 libical-dev python3-icalendar"
 analysis="clang-tidy cppcheck valgrind"
 case "${1:-all}" in
 build) wanted=$build ;;
@@ -20,7 +20,7 @@ present_elsewhere() {
 	printf '#include <curses.h>\n#include <libnova/libnova.h>\n#include <sqlite3.h>\nint main(void) { return 0; }\n' |
 		gcc -x c -fsyntax-only - 2>/dev/null || return 1
 	[ "$1" = build ] && return 0
-	printf '#include <stdarg.h>\n#include <stddef.h>\n#include <stdint.h>\n#include <setjmp.h>\n#include <cmocka.h>\n#include <erfa.h>\n' |
+	printf '#include <stdarg.h>\n#include <stddef.h>\n#include <stdint.h>\n#include <setjmp.h>\n#include <cmocka.h>\n#include <erfa.h>\n#include <libical/ical.h>\n' |
 		gcc -x c -fsyntax-only - 2>/dev/null || return 1
 	command -v clang >/dev/null
 }

@@ -15,6 +15,7 @@ enum option_kind {
 	OPT_SITES,
 	OPT_PLACES,
 	OPT_TARGETS,
+	OPT_VALUES,
 	OPT_NUMBER,
 	OPT_WHOLE,
 	OPT_KINDS
@@ -40,7 +41,8 @@ static const struct option_row rows[] = {
     {"--place", "LAT,LON,HEIGHT",
      "Stands for a stored site: degrees north, degrees east, metres (or with letters: 38.62N,109.36W,2100).",
      GROUP_COMMON, OPT_PLACES, 0, 0, 0, NULL},
-    {"--telescope", "NAME", "A stored telescope.", GROUP_COMMON, OPT_TEXT, AT(telescope), 0, 0, NULL},
+    {"--telescope", "NAME", "A stored telescope of the site (the only one, where it has one).", GROUP_COMMON,
+     OPT_TEXT, AT(telescope), 0, 0, NULL},
     {"--target", "NAME", "Only this target; again for more.", GROUP_COMMON, OPT_TARGETS, 0, 0, 0, NULL},
     {"--radec", "RA,DEC", "Stands for a stored target: ICRS degrees, or hh:mm:ss.s,+dd:mm:ss.", GROUP_COMMON,
      OPT_TEXT, AT(radec), 0, 0, NULL},
@@ -64,6 +66,8 @@ static const struct option_row rows[] = {
      "The horizon mask of the site, lines of azimuth, altitude in degrees, in place of the stored one; "
      "`none`: none.",
      GROUP_COMPUTE | GROUP_SITE, OPT_TEXT, AT(mask), 0, 0, NULL},
+    {"--no-allotments", NULL, "The whole night, whatever time is allotted of it (wane allot list).",
+     GROUP_COMPUTE, OPT_FLAG, AT(no_allotments), 0, 0, NULL},
     {"--min-chance", "P",
      "List a window when the chance of its ingress or egress reaches P (0.05 in csv and json, 0.5 in text).",
      GROUP_WINDOWS, OPT_NUMBER, AT(min_chance), 0, 1, NULL},
@@ -80,6 +84,10 @@ static const struct option_row rows[] = {
      AT(adopt), 0, 0, NULL},
     {"--zone", "ZONE", "The site's IANA time zone, as in America/Denver.", GROUP_SITE, OPT_TEXT_OR_EMPTY,
      AT(zone), 0, 0, NULL},
+    {"--half", "RULE",
+     "Where the site's nights are halved: `dark` (between dusk and dawn), `sunset` (between sunset and "
+     "sunrise) or HH:MM of its clocks.",
+     GROUP_SITE, OPT_TEXT, AT(half), 0, 0, NULL},
     {"--limit", "MIN",
      "The error beyond which an ephemeris is stale, in minutes (each target's own: wanted less least "
      "baseline, over pad).",
@@ -116,9 +124,51 @@ static const struct option_row rows[] = {
      OPT_FLAG, AT(with_prior), 0, 0, NULL},
     {"--change", "N", "Which change (wane history numbers them); without it, the newest.", GROUP_UNDO,
      OPT_WHOLE, AT(change), 1, 2147483647, NULL},
+    {"--pin", "T", "This event is planned wherever it can be; T is NAME or NAME@EPOCH; again for more.",
+     GROUP_PLAN, OPT_VALUES, AT(pin), 0, 0, NULL},
+    {"--drop", "T", "This event is not planned; again for more.", GROUP_PLAN, OPT_VALUES, AT(drop), 0, 0,
+     NULL},
+    {"--free", "T", "Takes the pin or the drop of an event back.", GROUP_PLAN, OPT_VALUES, AT(free_event), 0,
+     0, NULL},
+    {"--block", "FROM..TO=TEXT", "Time that something else takes; again for more.", GROUP_PLAN, OPT_VALUES,
+     AT(block), 0, 0, NULL},
+    {"--unblock", "TEXT", "Takes the block with this text back.", GROUP_PLAN, OPT_VALUES, AT(unblock), 0, 0,
+     NULL},
+    {"--lost", "FROM..TO", "Time that was lost, or will be; again for more.", GROUP_PLAN, OPT_VALUES,
+     AT(lost), 0, 0, NULL},
+    {"--poor", "FROM..TO xN",
+     "Time with N times the noise (1 to 20): until noise is forecast, the worth of what lies in it is "
+     "divided by N*N, by the share of T1 to T4.",
+     GROUP_PLAN, OPT_VALUES, AT(poor), 0, 0, NULL},
+    {"--unlost", "FROM..TO", "Takes lost or poor time back, by its span as it was typed.", GROUP_PLAN,
+     OPT_VALUES, AT(unlost), 0, 0, NULL},
+    {"--from", "TIME", "Plan what is left of the night from this time (22:40, 05:40Z, dusk+20m).", GROUP_PLAN,
+     OPT_TEXT, AT(plan_from), 0, 0, "plan"},
+    {"--afresh", NULL, "Take over no choice of the stored plan; what is marked stands.", GROUP_PLAN, OPT_FLAG,
+     AT(afresh), 0, 0, NULL},
+    {"--draft", "NAME", "Which draft of the night (the kept one, else `main`).", GROUP_PLAN, OPT_TEXT,
+     AT(draft), 0, 0, NULL},
+    {"--keep", NULL, "Store the plan and keep it: it is the one that holds for the night.", GROUP_PLAN,
+     OPT_FLAG, AT(keep), 0, 0, NULL},
+    {"--save", NULL, "Store the plan as a draft, without keeping it.", GROUP_PLAN, OPT_FLAG, AT(save), 0, 0,
+     NULL},
+    {"--mark", "T=STATE",
+     "Say what became of an item of the stored plan, at once: started, done, partly or lost; `planned` takes "
+     "that back.",
+     GROUP_PLAN, OPT_VALUES, AT(mark), 0, 0, NULL},
+    {"--cause", "TEXT", "With --mark: what took it.", GROUP_PLAN, OPT_TEXT, AT(cause), 0, 0, NULL},
+    {"--note", "TEXT", "With --mark: whatever should be known.", GROUP_PLAN, OPT_TEXT, AT(note), 0, 0,
+     "plan"},
+    {"--list", NULL, "The stored drafts of the night.", GROUP_PLAN, OPT_FLAG, AT(list), 0, 0, NULL},
+    {"--compare", "DRAFT", "What is different in another draft, in words.", GROUP_PLAN, OPT_TEXT, AT(compare),
+     0, 0, NULL},
+    {"--remove", "DRAFT", "Take a draft out of the lists.", GROUP_PLAN, OPT_TEXT, AT(remove_draft), 0, 0,
+     NULL},
+    {"--moved", "MIN", "From how many minutes a stored mid-time counts as moved (2).", GROUP_PLAN, OPT_NUMBER,
+     AT(moved_min), 0, 1e6, NULL},
 };
-enum { ROW_COUNT = sizeof rows / sizeof rows[0], GIVEN_LIMITS = 50 /* bit of limit 0 in `given` */ };
-_Static_assert((int)ROW_COUNT <= (int)GIVEN_LIMITS && (int)GIVEN_LIMITS + LIM_COUNT <= 64, "one bit a row");
+enum { ROW_COUNT = sizeof rows / sizeof rows[0] };
+_Static_assert((int)ROW_COUNT <= (int)OPTION_ROWS_MAX, "a flag for each row");
 
 /* A row of the subcommand's own goes before one of the same name. */
 static int row_find(const struct options *o, const char *name, size_t n)
@@ -233,6 +283,10 @@ static enum status put_row(struct options *o, const struct option_row *row, cons
 	case OPT_TARGETS:
 		s = add_name(o->target, &o->n_targets, value, e);
 		break;
+	case OPT_VALUES:
+		s = add_name(((struct option_values *)(void *)at)->text,
+			     &((struct option_values *)(void *)at)->n, value, e);
+		break;
 	case OPT_NUMBER:
 		s = number_between(value, row->min, row->max, &number, e);
 		if (s == ST_OK)
@@ -299,10 +353,9 @@ static enum status take_option(struct options *o, int argc, char *const argv[], 
 		value = argv[++*i];
 	}
 	if (row >= 0) {
-		o->given |= (uint64_t)1 << row;
+		o->given[row] = true;
 		return named(e, arg, n, put_row(o, &rows[row], value, e));
 	}
-	o->given |= (uint64_t)1 << (GIVEN_LIMITS + id);
 	enum status s = limit_parse((enum limit_id)id, value, &o->limit[id], e);
 	if (s == ST_OK) {
 		o->limit_given[id] = true;
@@ -321,8 +374,11 @@ static bool is_option(const char *arg)
 
 enum status options_parse(struct options *o, int argc, char *const argv[], struct err *e)
 {
-	*o = (struct options){
-	    .min_chance = NAN, .ut1_utc_s = NAN, .drift_limit_min = NAN, .precision_min = NAN};
+	*o = (struct options){.min_chance = NAN,
+			      .ut1_utc_s = NAN,
+			      .drift_limit_min = NAN,
+			      .precision_min = NAN,
+			      .moved_min = NAN};
 	bool words_only = false;
 	for (int i = 1; i < argc; i++) {
 		enum status s = ST_OK;
@@ -341,10 +397,10 @@ enum status options_parse(struct options *o, int argc, char *const argv[], struc
 enum status options_allowed(const struct options *o, int groups, const char *command, struct err *e)
 {
 	for (int i = 0; i < ROW_COUNT; i++)
-		if (o->given >> i & 1 && !(rows[i].groups & (groups | GROUP_COMMON)))
+		if (o->given[i] && !(rows[i].groups & (groups | GROUP_COMMON)))
 			return err_set(e, ST_SYNTAX, "%s: unknown option of %s", rows[i].name, command);
 	for (int id = 0; id < LIM_COUNT; id++)
-		if (o->given >> (GIVEN_LIMITS + id) & 1 && !(groups & GROUP_COMPUTE))
+		if (o->limit_given[id] && limit_rules[id].option && !(groups & GROUP_COMPUTE))
 			return err_set(e, ST_SYNTAX, "%s: unknown option of %s", limit_rules[id].option,
 				       command);
 	return ST_OK;

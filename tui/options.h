@@ -8,7 +8,6 @@
 #include "ephem/near_word.h"
 
 #include <stdbool.h>
-#include <stdint.h>
 #include <stdio.h>
 
 enum { OPTION_NAMES_MAX = 64 };
@@ -26,18 +25,26 @@ enum option_group {
 	GROUP_MIDTIME = 256,
 	GROUP_REFIT = 512,
 	GROUP_UNDO = 1024,
+	GROUP_PLAN = 2048,
 };
 
+/* The values of an option that may be given again and again. */
+struct option_values {
+	const char *text[OPTION_NAMES_MAX];
+	int n;
+};
+
+enum { OPTION_ROWS_MAX = 96 };
 /* Options of one call, parsed; texts borrow from argv. NULL / NAN / false / 0: not given. */
 struct options {
-	const char *db, *settings, *telescope, *format, *out, *now, *radec, *at, *from, *to, *zone, *mask;
+	const char *db, *settings, *telescope, *format, *out, *now, *radec, *at, *from, *to, *zone, *mask, *half;
 	const char *site[OPTION_NAMES_MAX];
 	int n_sites;
 	const char *place[OPTION_NAMES_MAX];
 	int n_places;
 	const char *target[OPTION_NAMES_MAX];
 	int n_targets;
-	bool plain, force, all, dry_run, strict, adopt, help, version;
+	bool plain, force, all, dry_run, strict, adopt, help, version, no_allotments;
 	double min_chance; /* NAN not given */
 	double ut1_utc_s;  /* NAN not given */
 	/* drift, midtime, refit, undo */
@@ -45,13 +52,18 @@ struct options {
 	bool no_refresh, formal, with_prior;
 	double drift_limit_min, precision_min; /* NAN not given */
 	int change;                            /* 0 not given */
+	/* plan */
+	struct option_values pin, drop, free_event, block, unblock, lost, unlost, poor, mark;
+	const char *draft, *plan_from, *compare, *remove_draft, *cause, *note;
+	bool afresh, keep, save, list;
+	double moved_min; /* NAN not given */
 	int kinds;         /* KINDS_*; 0 not given */
 	int threads;       /* 0 not given */
 	bool limit_given[LIM_COUNT];
 	double limit[LIM_COUNT];
 	const char *word[OPTION_NAMES_MAX]; /* positional arguments, the subcommand first */
 	int n_words;
-	uint64_t given; /* bit per row of the table */
+	bool given[OPTION_ROWS_MAX]; /* by row of the table */
 };
 
 /* Reads argv[1..argc). A word that begins with `--` is an option, `--name=value` too; whatever follows an option with an argument is its value.

@@ -12,6 +12,10 @@ struct plan_wish {
 	int n_pin, n_drop, n_block, n_lost, n_poor;
 	bool afresh;			 /* nothing of what is stored is taken over, marks apart */
 	const char *from;		 /* plan what is left of the night from this time; NULL */
+	/* taken back: pins and drops of an event, blocks by their text, lost and poor time by its span as it was typed */
+	const char *const *free, *const *unblock, *const *unlost;
+	int n_free, n_unblock, n_unlost;
+	bool costs;			 /* say what each one left out would cost: a running order for each */
 	double moved_min;		 /* from how many minutes a member counts as moved; NAN: 2 */
 };
 /* The plan of a night. Nothing wished and a stored plan: as it is stored, compared with today's ephemerides. Else worked out anew from what is stored and what is wished, what has

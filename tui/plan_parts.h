@@ -7,12 +7,18 @@
 #include "tui/plan_make.h"
 #include "tui/plan_time.h"
 
+struct plan_choices;
+
 /* --- memory: zeroed pieces that live until plan_view_free; NULL, and v->arena marked, when there is none --- */
 void *plan_alloc(struct plan_view *v, size_t n, size_t size);
 const char *plan_copy(struct plan_view *v, const char *text); /* "" when there is no memory: ask plan_memory at the end */
 const char *plan_copy_n(struct plan_view *v, const char *text, size_t n);
 /* ST_MEMORY when some piece could not be had since the view began. */
 MUST_USE enum status plan_memory(const struct plan_view *v, struct err *e);
+
+/* The choices that a view was made with, for storing it. NULL until they are set. */
+void plan_choices_set(struct plan_view *v, const struct plan_choices *c);
+const struct plan_choices *plan_choices_of(const struct plan_view *v);
 
 /* --- figures --- */
 /* A member has a text more than there are columns: the pad of the reserve [min], which says when to be on target for the egress alone. */
@@ -62,8 +68,6 @@ struct event_name {
 };
 MUST_USE enum status event_name_find(const struct run *r, const char *text, struct event_name *out, struct err *e);
 
-/* Times of a night as they are typed. */
-struct plan_clock plan_clock_of(const struct run *r, const struct night *night);
 /* v->block from choices and standing blocks; echo (may be NULL) gets a line for each time in `wish`. */
 struct echo {
 	char *text; /* the caller's to free */
@@ -75,6 +79,8 @@ MUST_USE enum status blocks_resolve(struct plan_view *v, const struct plan_choic
 				    const struct plan_wish *wish, struct echo *echo, struct err *e);
 /* Takes blocks and lost time off the free time of the night. */
 void blocks_free_time(const struct plan_view *v, const struct night *night, struct free_time *free);
+/* Marks the blocks in which the Sun is not well below the horizon. */
+void blocks_near_sun(struct plan_view *v);
 /* Share of its worth that poor time takes of an event: by the share of [T1, T4] in it, 1 - 1/N^2. */
 double poor_share(const struct plan_view *v, const struct night *night, const struct window *w);
 
@@ -87,6 +93,11 @@ MUST_USE enum status stored_view(struct plan_view *v, const struct plan_row *row
 MUST_USE enum status stored_moves(struct plan_view *v, double moved_min, struct err *e);
 /* Items of earlier editions that are in this one no more. */
 MUST_USE enum status stored_gone(struct plan_view *v, const struct plan_row *row, struct err *e);
+
+/* Effective limits and rules of moving, `name=value` with a tab between; NULL no memory. */
+const char *plan_limits_text(struct plan_view *v);
+/* What was left out, a line each: target, kind, epoch, reason, cost. NULL no memory. */
+const char *left_text(struct plan_view *v);
 
 /* --- proposals --- */
 /* What stands when a plan is worked out anew. */
@@ -102,6 +113,17 @@ MUST_USE enum status plan_stand(struct plan_view *v, const struct plan_wish *wis
 /* The running order of v->night: items, left out, worth. */
 MUST_USE enum status plan_propose(struct plan_view *v, const struct plan_choices *c, const struct plan_standing *standing, bool costs,
 				  struct err *e);
+/* Why an offer of a plan was left out, in words; items are named by v and by what stands. The view's. */
+const char *left_words(struct plan_view *v, const struct night_plan *p, const struct plan_offer offer[],
+		       const struct plan_left *left, const struct plan_standing *standing, const size_t fixed_item[]);
+/* --- words --- */
+/* `02:11 MDT`, with the date where it is neither that of the evening nor the next. */
+enum { PLAN_CLOCK_BYTES = 48, PLAN_NAME_BYTES = 2 * NAME_BYTES_MAX };
+void plan_clock_words(const struct plan_view *v, struct utc t, char out[PLAN_CLOCK_BYTES]);
+/* `Tern 3 b`, `Tern 3 b with Tern 3 c` */
+void plan_item_name(const struct plan_item_view *item, char out[PLAN_NAME_BYTES]);
+/* snprintf that cuts between characters. */
+void plan_put_words(char *out, size_t room, const char *format, ...) __attribute__((format(printf, 3, 4)));
 /* Sentences of what to do when the first limb is missed, for every item of the finished order. */
 void plan_if_missed(struct plan_view *v);
 /* Items in the light of the night: in_day; order numbers. */

@@ -18,6 +18,7 @@ struct arena_block {
 struct plan_arena {
 	struct arena_block *first;
 	bool failed;
+	const struct plan_choices *choices; /* a piece of it */
 };
 
 static struct arena_block *block_with_room(struct plan_arena *a, size_t bytes)
@@ -76,6 +77,17 @@ enum status plan_memory(const struct plan_view *v, struct err *e)
 	if (v->arena && !v->arena->failed)
 		return ST_OK;
 	return err_set(e, ST_MEMORY, "memory: none for a plan");
+}
+
+void plan_choices_set(struct plan_view *v, const struct plan_choices *c)
+{
+	if (v->arena)
+		v->arena->choices = c;
+}
+
+const struct plan_choices *plan_choices_of(const struct plan_view *v)
+{
+	return v->arena ? v->arena->choices : NULL;
 }
 
 void plan_view_free(struct plan_view *v)

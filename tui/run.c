@@ -3,18 +3,16 @@
 
 #include "db/read_mask.h"
 #include "db/text_clean.h"
-#include "ephem/siblings.h"
-#include "ephem/stars.h"
 #include "tui/diagnose.h"
 #include "tui/given.h"
+#include "tui/run_parts.h"
 
 #include <math.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
 
-/* One fault of the opening, begun with its word. */
-static enum status worded(struct err *e, const char *word, const struct err *why)
+enum status run_worded(struct err *e, const char *word, const struct err *why)
 {
 	return err_set(e, why->status, "%s: %.460s", word, why->text);
 }
@@ -48,7 +46,7 @@ static enum status open_clock(struct run *r, struct err *e)
 		return ST_OK;
 	r->wall.fixed = true;
 	if (given_now(&r->leap, o->now, &r->wall.start, &r->wall.running, &why) != ST_OK)
-		return worded(e, "--now", &why);
+		return run_worded(e, "--now", &why);
 	wall_start(&r->wall);
 	return ST_OK;
 }
@@ -74,7 +72,7 @@ static bool needs_store(const struct options *o, int needs)
 {
 	bool site = (needs & (NEED_SITE | NEED_FIRST_SITE)) && (o->n_places == 0 || o->n_sites > 0);
 	bool targets = (needs & NEED_TARGETS) && !o->radec;
-	return site || targets || (needs & (NEED_STORE | NEED_WRITE));
+	return site || targets || o->telescope || (needs & (NEED_STORE | NEED_WRITE));
 }
 
 static enum status open_store(struct run *r, int needs, struct err *e)
@@ -94,7 +92,7 @@ static enum status open_store(struct run *r, int needs, struct err *e)
 		return ST_OK;
 	}
 	if (s != ST_OK)
-		return worded(e, "store", &why);
+		return run_worded(e, "store", &why);
 	if (needs & NEED_WRITE && store_read_only(r->store))
 		return err_set(e, ST_STORE, "store: %s can't be written", path);
 	return ST_OK;
@@ -104,16 +102,16 @@ static enum status load_lists(struct run *r, struct err *e)
 {
 	struct err why;
 	if (r->store && sites_load(r->store, &r->sites, &why) != ST_OK)
-		return worded(e, "store", &why);
+		return run_worded(e, "store", &why);
 	if (r->sites.n_bad > 0)
 		diagnose("store", "%s: %s", r->db_path, r->sites.bad);
 	if (r->store && !r->options->radec && targets_load(r->store, &r->targets, &why) != ST_OK)
-		return worded(e, "store", &why);
+		return run_worded(e, "store", &why);
 	if (r->targets.n_bad > 0)
 		diagnose("store",
 			 "%s: %zu left out because their checksums are wrong: %.300s (see wane check)",
 			 r->db_path, r->targets.n_bad, r->targets.bad);
-	return ST_OK;
+	return run_load_telescopes(r, e);
 }
 
 /* The one target that --radec stands for: a position without an ephemeris. */
@@ -123,7 +121,7 @@ static enum status radec_target(struct run *r, struct err *e)
 	struct target t = target_empty();
 	t.name = r->options->radec;
 	if (given_radec(r->options->radec, &t.ra_deg, &t.dec_deg, &why) != ST_OK)
-		return worded(e, "--radec", &why);
+		return run_worded(e, "--radec", &why);
 	target_list_free(&r->targets);
 	r->targets.t = malloc(sizeof t);
 	r->targets.doubts = calloc(1, sizeof *r->targets.doubts);
@@ -216,7 +214,7 @@ static enum status place_site(const char *text, struct site *site, struct err *e
 {
 	struct err why;
 	*site = (struct site){.name = text, .zone = ""};
-	return given_place(text, site, &why) == ST_OK ? ST_OK : worded(e, "--place", &why);
+	return given_place(text, site, &why) == ST_OK ? ST_OK : run_worded(e, "--place", &why);
 }
 
 static enum status choose_site(struct run *r, int needs, struct err *e)
@@ -232,7 +230,7 @@ static enum status choose_site(struct run *r, int needs, struct err *e)
 			take_site(r, &place);
 		return s;
 	}
-	if (!(needs & (NEED_SITE | NEED_FIRST_SITE)) && o->n_sites == 0)
+	if (!(needs & (NEED_SITE | NEED_FIRST_SITE)) && o->n_sites == 0 && !o->telescope)
 		return ST_OK;
 	if (o->n_sites > 0)
 		s = find_site(r, o->site[0], &index, e);
@@ -255,14 +253,6 @@ static enum status choose_site(struct run *r, int needs, struct err *e)
 	if (s == ST_OK)
 		take_site(r, &r->sites.site[index]);
 	return s;
-}
-
-enum status run_choose_site(struct run *r, size_t index, struct err *e)
-{
-	if (index >= r->sites.n)
-		return err_set(e, ST_RANGE, "site %zu: there are %zu", index, r->sites.n);
-	take_site(r, &r->sites.site[index]);
-	return ST_OK;
 }
 
 static bool same_place(const struct site *a, const struct site *b)
@@ -305,73 +295,6 @@ enum status run_all_sites(struct run *r, struct site out[], size_t *n, struct er
 	return s;
 }
 
-/* --- targets made ready --- */
-
-static enum status select_targets(const struct run *r, bool chosen[], struct err *e)
-{
-	const struct options *o = r->options;
-	char got[ERR_QUOTE_MAX];
-	for (size_t i = 0; i < r->targets.n; i++)
-		chosen[i] = o->n_targets == 0 || o->radec;
-	for (int k = 0; k < o->n_targets && !o->radec; k++) {
-		long i = target_list_find(&r->targets, o->target[k]);
-		err_quote(o->target[k], strlen(o->target[k]), got);
-		if (i < 0)
-			return err_set(e, ST_ABSENT,
-				       "target: no such target is stored (got \"%s\"; see wane target list)",
-				       got);
-		chosen[i] = true;
-	}
-	return ST_OK;
-}
-
-/* star[n]: scratch, of prepared[i]. */
-static enum status prepare_chosen(struct run *r, bool doubtful[], bool chosen[], uint32_t star[],
-				  struct err *e)
-{
-	size_t n = r->targets.n, k = 0;
-	struct err why;
-	if (stars_group(r->targets.t, n, r->star, doubtful, &why) != ST_OK)
-		return worded(e, "targets", &why);
-	enum status s = select_targets(r, chosen, e);
-	if (s != ST_OK)
-		return s;
-	/* those asked for first; behind them the rest, which only tell what their siblings need to know */
-	for (int wanted = 1; wanted >= 0; wanted--) {
-		for (size_t i = 0; i < n; i++) {
-			if (chosen[i] != wanted)
-				continue;
-			star[k] = r->star[i];
-			r->prepared[k++] = prepare_target(&r->targets.t[i], &r->limits, &r->clock, r->memo,
-							  doubtful[i], r->targets.doubts[i] != 0);
-		}
-		if (wanted)
-			r->n_prepared = k;
-	}
-	return siblings_link(r->prepared, star, n, n, &why) == ST_OK ? ST_OK : worded(e, "memory", &why);
-}
-
-static enum status prepare_all(struct run *r, struct err *e)
-{
-	size_t n = r->targets.n;
-	bool *doubtful = calloc(n + 1, sizeof *doubtful), *chosen = calloc(n + 1, sizeof *chosen);
-	uint32_t *star = calloc(n + 1, sizeof *star);
-	enum status s;
-	r->n_prepared = 0;
-	r->star = calloc(n + 1, sizeof *r->star);
-	r->prepared = calloc(n + 1, sizeof *r->prepared);
-	if (!r->memo)
-		r->memo = calloc(1, sizeof *r->memo);
-	if (doubtful && chosen && star && r->star && r->prepared && r->memo)
-		s = prepare_chosen(r, doubtful, chosen, star, e);
-	else
-		s = err_set(e, ST_MEMORY, "memory: none for %zu targets", n);
-	free(star);
-	free(doubtful);
-	free(chosen);
-	return s;
-}
-
 static void drop_lists(struct run *r)
 {
 	free(r->prepared);
@@ -381,6 +304,32 @@ static void drop_lists(struct run *r)
 	r->n_prepared = 0;
 	target_list_free(&r->targets);
 	site_list_free(&r->sites);
+	run_drop_telescopes(r);
+}
+
+/* --- what hangs on the site --- */
+
+/* Telescope, half rule and limits. */
+static enum status take_telescope(struct run *r, bool named, struct err *e)
+{
+	enum status s = run_choose_telescope(r, named, e);
+	if (s == ST_OK)
+		s = open_limits(r, e);
+	if (s == ST_OK)
+		run_put_telescope_limits(r);
+	return s;
+}
+
+enum status run_choose_site(struct run *r, size_t index, struct err *e)
+{
+	const struct limits before = r->limits;
+	if (index >= r->sites.n)
+		return err_set(e, ST_RANGE, "site %zu: there are %zu", index, r->sites.n);
+	take_site(r, &r->sites.site[index]);
+	enum status s = take_telescope(r, false, e);
+	if (s == ST_OK && r->prepared && memcmp(&before, &r->limits, sizeof before) != 0)
+		s = run_prepare(r, e);
+	return s;
 }
 
 /* --- open, close --- */
@@ -400,11 +349,6 @@ static enum status open_steps(struct run *r, int needs, int *code, struct err *e
 		return s;
 	}
 	*code = 1;
-	if (o->telescope) {
-		char got[ERR_QUOTE_MAX];
-		err_quote(o->telescope, strlen(o->telescope), got);
-		return err_set(e, ST_ABSENT, "telescope: no telescope is stored (got \"%s\")", got);
-	}
 	if (!r->store && needs_store(o, needs))
 		s = open_store(r, needs, e);
 	if (s == ST_OK)
@@ -419,8 +363,12 @@ static enum status open_steps(struct run *r, int needs, int *code, struct err *e
 		s = choose_site(r, needs, e);
 		*code = s == ST_ABSENT ? 1 : 2;
 	}
+	if (s == ST_OK) {
+		s = take_telescope(r, true, e);
+		*code = s == ST_RANGE ? 2 : 1;
+	}
 	if (s == ST_OK && needs & NEED_TARGETS) {
-		s = prepare_all(r, e);
+		s = run_prepare(r, e);
 		*code = 1;
 	}
 	return s;
@@ -432,6 +380,7 @@ enum status run_open_on(struct run *r, struct store *store, const struct env *en
 	*r = (struct run){.env = env, .options = o, .store = store};
 	r->site.name = r->site_name;
 	r->site.zone = r->site_zone;
+	r->telescope = telescope_empty();
 	enum status s = open_steps(r, needs, exit_code, e);
 	if (s != ST_OK)
 		run_close(r);
@@ -450,8 +399,12 @@ void run_close(struct run *r)
 {
 	drop_lists(r);
 	zone_close(r->zone);
+	free(r->telescope_text);
 	free(r->memo);
 	store_close(r->store);
+	r->telescope_text = NULL;
+	r->telescope = telescope_empty();
+	r->has_telescope = false;
 	r->zone = NULL;
 	r->memo = NULL;
 	r->store = NULL;
@@ -465,11 +418,12 @@ enum status run_reload(struct run *r, struct err *e)
 	enum status s = load_lists(r, e);
 	if (s == ST_OK && r->options->radec)
 		s = radec_target(r, e);
+	/* a removed site stays until another is chosen */
+	long index =
+	    r->options->n_places > 0 || !r->site.name[0] ? -1 : site_list_find(&r->sites, r->site.name);
+	if (s == ST_OK && index >= 0)
+		take_site(r, &r->sites.site[index]);
 	if (s == ST_OK)
-		s = prepare_all(r, e);
-	if (s != ST_OK || r->options->n_places > 0 || !r->site.name[0])
-		return s;
-	long index = site_list_find(&r->sites, r->site.name);
-	return index >= 0 ? run_choose_site(r, (size_t)index, e)
-			  : ST_OK; /* a removed one stays until another is chosen */
+		s = take_telescope(r, false, e);
+	return s == ST_OK ? run_prepare(r, e) : s;
 }

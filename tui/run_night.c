@@ -1,6 +1,6 @@
 /* SPDX-License-Identifier: MIT
  * What comes out of an open run: where its result goes, and its nights. */
-#include "tui/run.h"
+#include "tui/run_parts.h"
 
 #include <math.h>
 #include <stdio.h>
@@ -41,18 +41,30 @@ enum status run_out_open(const struct run *r, struct out *out, struct err *e)
 
 /* --- a night --- */
 
-enum status run_night_at(struct run *r, const struct site *site, int32_t evening_mjd, bool people,
-			 struct night_view *v, struct err *e)
+enum status run_night_free(struct run *r, const struct site *site, int32_t evening_mjd, struct night_view *v,
+			   struct err *e)
 {
-	const struct options *o = r->options;
-	struct window_choice choice = {
-	    .kinds = r->kinds, .all = o->all, .min_chance = run_min_chance(r, people), .free = &v->free};
 	enum status s = night_build(&v->night, site, &r->clock, evening_mjd, r->memo, e);
 	if (s != ST_OK)
 		return s;
 	v->free = free_time_whole();
 	v->cut = false;
+	v->night.telescope = r->has_telescope && site->id == r->telescope.site_id ? &r->telescope : NULL;
+	run_cut_by_allotments(r, v);
 	v->dark = night_dark(&v->night, r->limits.value[LIM_SUN]);
+	return ST_OK;
+}
+
+enum status run_night_at(struct run *r, const struct site *site, int32_t evening_mjd, bool people,
+			 struct night_view *v, struct err *e)
+{
+	const struct window_choice choice = {.kinds = r->kinds,
+					     .all = r->options->all,
+					     .min_chance = run_min_chance(r, people),
+					     .free = &v->free};
+	enum status s = run_night_free(r, site, evening_mjd, v, e);
+	if (s != ST_OK)
+		return s;
 	return night_windows(&v->night, r->prepared, r->n_prepared, &choice, &v->list, &v->hidden, e);
 }
 

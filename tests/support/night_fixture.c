@@ -66,6 +66,7 @@ struct night_fixture *fixture_open(bool zoneinfo)
 	*r = (struct run){
 	    .env = &f->env, .options = &f->options, .leap = leap_builtin, .kinds = KINDS_TRANSIT};
 	r->clock.leap = &r->leap;
+	r->telescope = telescope_empty();
 	r->wall = (struct wall_clock){
 	    .leap = &r->leap, .fixed = true, .start = {.mjd = FIXTURE_EVENING_MJD + 1, .sod_s = 15245.0}};
 	r->limits = limits_built_in();

@@ -255,7 +255,7 @@ static void test_pragmas(void **state)
 	    {"PRAGMA foreign_keys", "1"},
 	    {"PRAGMA recursive_triggers", "1"},
 	    {"PRAGMA application_id", "2002873957"},
-	    {"PRAGMA user_version", "1"},
+	    {"PRAGMA user_version", "2"},
 	    {"PRAGMA busy_timeout", "5000"},
 	    {"PRAGMA trusted_schema", "0"},
 	    {"PRAGMA cell_size_check", "1"},
@@ -326,7 +326,7 @@ static void test_newer(void **state)
 	put_one(s);
 	store_close(s);
 	foreign(p->path, "PRAGMA user_version = 99");
-	refuse(p->path, "newer wane (schema 99, this one knows 1)");
+	refuse(p->path, "newer wane (schema 99, this one knows 2)");
 	foreign(p->path, "PRAGMA user_version = 0");
 	refuse(p->path, "no schema version");
 }

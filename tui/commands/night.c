@@ -68,6 +68,7 @@ int night_write(struct run *r, int32_t evening_mjd)
 		return diagnose_err("night", &e, EXIT_UNMET);
 	}
 	bool whole = true;
+	run_night_notes(&view);
 	if (format == FORMAT_TEXT)
 		write_text(out.file, r, &view);
 	else if (format == FORMAT_CSV)

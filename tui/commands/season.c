@@ -31,7 +31,9 @@ struct season {
 	struct csv_out csv;
 	struct json json;
 	struct text_sheet text;
+	long allotment_faults; /* nights with one */
 };
+enum { ALLOTMENT_FAULTS_SHOWN = 5 };
 
 /* By reserve start, then target; nights come one after the other already. */
 static int by_reserve(const void *left, const void *right)
@@ -183,6 +185,19 @@ static void end(struct season *s, int32_t until)
 	}
 }
 
+static void note_faults(struct season *s)
+{
+	for (size_t i = 0; i < s->n_sites; i++) {
+		const struct night_view *v = &s->view[i];
+		char name[64];
+		if (!v->allotment_fault[0])
+			continue;
+		night_name(v->night.mjd, name, sizeof name);
+		if (s->allotment_faults++ < ALLOTMENT_FAULTS_SHOWN)
+			diagnose("allotment", "night %s: %s", name, v->allotment_fault);
+	}
+}
+
 static enum status scan(struct season *s, FILE *to, int32_t from, int32_t until, struct err *e)
 {
 	enum status st = ST_OK;
@@ -195,7 +210,12 @@ static enum status scan(struct season *s, FILE *to, int32_t from, int32_t until,
 			st = gather(s, &n, e);
 		if (st == ST_OK)
 			write_night(s, n);
+		if (st == ST_OK)
+			note_faults(s);
 	}
+	if (s->allotment_faults > ALLOTMENT_FAULTS_SHOWN)
+		diagnose("allotment", "the same on %ld more nights",
+			 s->allotment_faults - ALLOTMENT_FAULTS_SHOWN);
 	end(s, until);
 	if (st == ST_OK && s->csv.failed)
 		st = err_set(e, ST_MEMORY, "no memory for a long cell");

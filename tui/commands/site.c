@@ -2,6 +2,7 @@
 #include "tui/commands/table.h"
 
 #include "db/read_mask.h"
+#include "db/stored_settings.h"
 #include "ephem/angle_text.h"
 #include "ephem/number_text.h"
 #include "tui/diagnose.h"
@@ -19,8 +20,21 @@
 
 /* --- writing --- */
 
+/* Where the site's nights are halved, as text; `dark` where nothing is stored. */
+static enum status half_text(const struct run *r, const struct site *site, char out[STORED_SETTING_MAX + 1],
+			     struct err *e)
+{
+	char key[HALF_KEY_BYTES];
+	out[0] = '\0';
+	run_half_key(site->id, key);
+	enum status s = r->store ? stored_setting(r->store, key, out, e) : ST_OK;
+	if (s == ST_OK && !out[0])
+		snprintf(out, STORED_SETTING_MAX + 1, "dark");
+	return s;
+}
+
 /* A line; whole: the horizon mask in full behind it, as a file of it is written. */
-static void site_text(FILE *to, const struct site *s, bool whole)
+static void site_text(FILE *to, const struct site *s, const char *half, bool whole)
 {
 	char lat[ANGLE_TEXT_MAX], lon[ANGLE_TEXT_MAX], height[NUMBER_TEXT_MAX];
 	lat_text(s->lat_deg, 6, lat);
@@ -31,6 +45,8 @@ static void site_text(FILE *to, const struct site *s, bool whole)
 		s->zone[0] ? s->zone : "not known (UTC is shown)");
 	if (s->mask)
 		fprintf(to, ", horizon mask of %zu point%s", s->mask->n, s->mask->n == 1 ? "" : "s");
+	if (strcmp(half, "dark") != 0)
+		fprintf(to, ", nights halved %s %s", strcmp(half, "sunset") == 0 ? "by" : "at", half);
 	fputc('\n', to);
 	if (!whole || !s->mask)
 		return;
@@ -77,12 +93,17 @@ static int write_sites(const struct run *r, const struct site site[], size_t n, 
 	if (format == FORMAT_TEXT && n == 0)
 		fputs("No site is stored: wane site add NAME --place LAT,LON,HEIGHT --zone ZONE\n", out.file);
 	for (size_t i = 0; i < n; i++) {
+		char half[STORED_SETTING_MAX + 1];
+		if (half_text(r, &site[i], half, &e) != ST_OK) {
+			out_abandon(&out);
+			return diagnose_err("store", &e, EXIT_UNMET);
+		}
 		if (format == FORMAT_CSV)
 			site_cells(&csv, &site[i]);
 		else if (format == FORMAT_JSON)
-			stored_site_json(&json, &site[i]);
+			stored_site_json(&json, &site[i], half);
 		else
-			site_text(out.file, &site[i], !list);
+			site_text(out.file, &site[i], half, !list);
 	}
 	if (format == FORMAT_JSON && list)
 		json_close(&json, ']');
@@ -114,7 +135,25 @@ static enum status zone_exists(const struct run *r, const struct site *site, str
 	return ST_OK;
 }
 
-static enum status put_in_store(struct run *r, const struct site *site, bool add, struct err *e)
+/* rule NULL: none was given. A new site has its key only now that it is in the store. */
+static enum status put_half(struct run *r, struct site *site, const char *rule, struct err *e)
+{
+	struct site_list stored = {0};
+	char key[HALF_KEY_BYTES];
+	if (!rule)
+		return ST_OK;
+	enum status s = sites_load(r->store, &stored, e);
+	long index = s == ST_OK ? site_list_find(&stored, site->name) : -1;
+	if (index >= 0) {
+		site->id = stored.site[index].id;
+		run_half_key(site->id, key);
+		s = stored_setting_put(r->store, key, strcmp(rule, "dark") == 0 ? "" : rule, e);
+	}
+	site_list_free(&stored);
+	return s;
+}
+
+static enum status put_in_store(struct run *r, struct site *site, bool add, struct err *e)
 {
 	char utc[UTC_TEXT_MAX];
 	const struct change change = change_of(r, add ? "site add" : "site set", utc);
@@ -122,6 +161,8 @@ static enum status put_in_store(struct run *r, const struct site *site, bool add
 	if (s != ST_OK)
 		return s;
 	s = site_put(r->store, site, add, e);
+	if (s == ST_OK)
+		s = put_half(r, site, r->options->half, e);
 	if (s == ST_OK)
 		s = store_commit(r->store, e);
 	if (s != ST_OK)
@@ -157,10 +198,13 @@ static int wanted_site(const struct run *r, bool add, struct site *site, struct 
 	*site = (struct site){.name = name, .zone = ""};
 	if (name_check(name, strlen(name), NULL, &e) != ST_OK)
 		return diagnose_err("name", &e, EXIT_USAGE);
-	if (!add && o->n_places == 0 && !o->zone && !o->mask) {
-		diagnose("site", "nothing to set (expected --place, --zone or --mask)");
+	if (!add && o->n_places == 0 && !o->zone && !o->mask && !o->half) {
+		diagnose("site", "nothing to set (expected --place, --zone, --mask or --half)");
 		return EXIT_USAGE;
 	}
+	struct half_rule rule;
+	if (o->half && half_rule_parse(o->half, &rule, &e) != ST_OK)
+		return diagnose_err("--half", &e, EXIT_USAGE);
 	if (add && o->n_places == 0) {
 		diagnose("--place",
 			 "is missing (expected LAT,LON,HEIGHT: degrees north, degrees east, metres)");
@@ -227,7 +271,12 @@ static int remove_site(struct run *r)
 	enum status s = store_begin(r->store, &change, &e);
 	if (s != ST_OK)
 		return diagnose_err("site", &e, EXIT_UNMET);
-	s = site_remove(r->store, name, &e);
+	/* its key may come again */
+	long index = site_list_find(&r->sites, name);
+	if (index >= 0)
+		s = put_half(r, &r->sites.site[index], "", &e);
+	if (s == ST_OK)
+		s = site_remove(r->store, name, &e);
 	if (s == ST_OK)
 		s = store_commit(r->store, &e);
 	if (s == ST_OK)

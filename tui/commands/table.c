@@ -89,12 +89,25 @@ const struct command commands[] = {
      "--format csv`.\n",
      0, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, OPTION_NAMES_MAX, command_target},
     {"site", "list | show NAME | add NAME | set NAME | remove NAME", "The stored sites.",
-     "add and set take --place LAT,LON,HEIGHT, --zone ZONE and --mask FILE (`none` takes the stored one "
-     "away). A mask file "
+     "add and set take --place LAT,LON,HEIGHT, --zone ZONE, --half RULE and --mask FILE (`none` takes the "
+     "stored one away). A mask file "
      "has\na point a line: azimuth from north through east, apparent altitude of the horizon, in degrees, 1 "
      "to 720 of "
      "them; straight\nlines between. `#` begins a comment.\n",
      GROUP_SITE, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 2, command_site},
+    {"telescope", "list | show NAME | add NAME FIELD=VALUE... | set NAME FIELD=VALUE... | remove NAME",
+     "The stored telescopes of a site.",
+     "FIELD= clears. blocks are standing blocks of every night, SPAN=TEXT with ; between; SPAN as in `wane "
+     "allot --help`.\nalt_min_deg lays itself over the altitude limit of the settings.\n",
+     0, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, OPTION_NAMES_MAX, command_telescope},
+    {"allot", "list | add NIGHT[..NIGHT] SPAN [NOTE] | remove ID",
+     "Time of a site's nights that the team really has; where a night has some, the rest of it is not used.",
+     "With --telescope it is that telescope's, else of any of the site. SPAN: FROM..TO, FROM..+25m, "
+     "first-half, second-half\nor whole (sunset to sunrise). FROM, TO: 22:40 or 22:40L site local, 05:40Z, "
+     "22:40-06:00, YYYY-MM-DDTHH:MMZ; sunset,\nsunrise, dusk, dawn (at the Sun limit), evening-9, morning-9 "
+     "(Sun at -9 deg), middle (see --half of wane site),\nstart, end (noon); each with +20m or -1h30m behind "
+     "it. In the hour that a change of clocks repeats, Z or an offset is needed.\n",
+     0, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 4, command_allot},
     {"check", "", "Whether the store is sound.", NULL, 0, FORMAT_TEXT, 0, command_check},
     {"demo", "[DATE]", "An invented observatory and list in a throw-away database.",
      "On a terminal the interface opens; else the night is printed.\n", GROUP_COMPUTE | GROUP_WINDOWS,
@@ -223,6 +236,8 @@ void command_help(FILE *to, const struct command *c)
 		drift_help(to);
 	if (c->function == command_import || c->function == command_target)
 		fields_help(to);
+	if (c->function == command_telescope)
+		telescope_help(to);
 	fputs("\nTIME: YYYY-MM-DDTHH:MM[:SS]Z in UTC, or one argument \"2461114.708333 JD_UTC\". An option's "
 	      "value may begin "
 	      "with -.\nExit code: 0 done, 1 the request could not be met, 2 the command line is wrong.\n",

@@ -37,6 +37,8 @@ enum { EXIT_DONE = 0, EXIT_UNMET = 1, EXIT_USAGE = 2 };
 int command_import(const struct env *env, const struct options *o);
 int command_target(const struct env *env, const struct options *o);
 int command_site(const struct env *env, const struct options *o);
+int command_telescope(const struct env *env, const struct options *o);
+int command_allot(const struct env *env, const struct options *o);
 int command_sky(const struct env *env, const struct options *o);
 int command_clock(const struct env *env, const struct options *o);
 int command_night(const struct env *env, const struct options *o);
@@ -61,6 +63,9 @@ bool one_site(const struct options *o, const char *command);
 int usage_fault(const char *word, const struct err *e);
 /* UTC of the run's clock for change sets. */
 struct change change_of(const struct run *r, const char *verb, char utc[UTC_TEXT_MAX]);
+
+/* The fields of a telescope, for its --help. */
+void telescope_help(FILE *to);
 
 /* Index of o->word[1] among the verbs; every verb but `list` needs a name behind it. -1, and said, when it is none of them. */
 int verb_of(const char *command, const char *const verbs[], int n, const struct options *o);

@@ -7,7 +7,7 @@
 /* The night with all that is hidden otherwise. */
 static enum status add_long_shots(struct run *r, struct night_view *v, struct err *e)
 {
-	const struct window_choice choice = {.kinds = r->kinds, .all = true};
+	const struct window_choice choice = {.kinds = r->kinds, .all = true, .free = &v->free};
 	double min_chance = run_min_chance(r, true);
 	enum status s = night_windows(&v->night, r->prepared, r->n_prepared, &choice, &v->list, NULL, e);
 	size_t kept = 0;

@@ -26,7 +26,14 @@ static void get_site(const struct window *w, const struct night *n, struct value
 	put_text(v, n->site->name);
 }
 
-/* Known only when the store keeps telescopes, branches, bands. */
+static void get_telescope(const struct window *w, const struct night *n, struct value *v)
+{
+	(void)w;
+	if (n->telescope && n->telescope->name[0])
+		put_text(v, n->telescope->name);
+}
+
+/* Known only when the store keeps branches and forecasts. */
 static void get_nothing(const struct window *w, const struct night *n, struct value *v)
 {
 	(void)w;
@@ -106,7 +113,7 @@ static void get_siblings(const struct window *w, const struct night *n, struct v
 /* name, unit, stage, type, offset, get, machine decimals, people's decimals, heading, width, sentence */
 const struct column columns[] = {
     {"site", "", STAGE_EVENT, T, 0, get_site, 0, 0, "site", 12, "Where the window is seen from."},
-    {"telescope", "", STAGE_EVENT, T, 0, get_nothing, 0, 0, "telescope", 10,
+    {"telescope", "", STAGE_EVENT, T, 0, get_telescope, 0, 0, "telescope", 10,
      "The telescope that it was computed for; empty without one."},
     {"night", "", STAGE_EVENT, T, 0, get_night, 0, 0, "night", 10,
      "Local date of the night's evening; a night runs from local mean noon to noon."},

@@ -18,7 +18,8 @@ static void indent(const struct json *j)
 		fputs("  ", j->file);
 }
 
-/* UTF-8 as it is; quotes, backslashes and controls escaped; bytes that are no UTF-8 become U+FFFD. */
+/* UTF-8 as it is; quotes, backslashes and what could act on a terminal (controls, bidirectional and
+ * zero-width characters) escaped, so that nothing is lost; bytes that are no UTF-8 become U+FFFD. */
 static void put_string(const struct json *j, const char *text)
 {
 	size_t n = strlen(text);
@@ -33,7 +34,10 @@ static void put_string(const struct json *j, const char *text)
 		}
 		if (cp == '"' || cp == '\\')
 			fprintf(j->file, "\\%c", (char)cp);
-		else if (cp < 0x20 || cp == 0x7F || cp == 0x2028 || cp == 0x2029)
+		else if (cp > 0xFFFF && codepoint_is_hostile(cp)) /* a surrogate pair, RFC 8259 sec. 7 */
+			fprintf(j->file, "\\u%04x\\u%04x", (unsigned)(0xD800 + ((cp - 0x10000) >> 10)),
+				(unsigned)(0xDC00 + (cp & 0x3FF)));
+		else if (cp < 0x20 || codepoint_is_hostile(cp))
 			fprintf(j->file, "\\u%04x", (unsigned)cp);
 		else
 			fwrite(text + i, 1, length, j->file);

@@ -1,5 +1,6 @@
 /* SPDX-License-Identifier: MIT
- * The night sheet: a running order for the team, in each of its formats. All of them show what the view holds and compute nothing about the plan. */
+ * The night sheet: a running order for the team, in each of its formats. All of them show what the view holds
+ * and compute nothing about the plan. */
 #ifndef WANE_TUI_SHEETS_PLAN_SHEET_H
 #define WANE_TUI_SHEETS_PLAN_SHEET_H
 
@@ -8,14 +9,16 @@
 
 #include <stdio.h>
 
-/* changes: lines of plan_changes, NULL without --since. Each returns false when memory ran out: the result is not whole. */
+/* changes: lines of plan_changes, NULL without --since. Each returns false when memory ran out: the result is
+ * not whole. */
 struct sheet_changes {
 	const char *since; /* what it is compared with, in words; NULL none */
 	char *const *line;
 	size_t n;
 };
-bool plan_sheet_text(FILE *to, const struct plan_view *v, const struct sheet_changes *changes); /* 72 columns */
-bool plan_sheet_csv(FILE *to, const struct plan_view *v);					/* a row an event */
+bool plan_sheet_text(FILE *to, const struct plan_view *v,
+		     const struct sheet_changes *changes); /* 72 columns */
+bool plan_sheet_csv(FILE *to, const struct plan_view *v);  /* a row an event */
 bool plan_sheet_ics(FILE *to, const struct plan_view *v);
 bool plan_sheet_html(FILE *to, const struct plan_view *v, const struct sheet_changes *changes);
 /* The object of `wane plan --format json` (contract), the sheet's json too. */

@@ -163,6 +163,22 @@ static void change_line(const struct text_sheet *t, const char *from, const char
 			from);
 }
 
+/* `Allotted: 21:00 MDT - 01:30 MDT` */
+static void allotted_line(const struct text_sheet *t, const struct night_view *v, const struct zone *zone)
+{
+	const struct intervals *set = &v->free.allotted;
+	if (v->allotments == 0)
+		return;
+	fputs(set->n > 0 ? "Allotted: " : "Allotted: nothing of this night", t->to);
+	for (int i = 0; i < set->n; i++) {
+		char from[CLOCK_BYTES], to[CLOCK_BYTES];
+		text_clock(&v->night, zone, set->s[i].from_d, true, from);
+		text_clock(&v->night, zone, set->s[i].to_d, true, to);
+		fprintf(t->to, "%s%s - %s", i ? ", " : "", from, to);
+	}
+	fputc('\n', t->to);
+}
+
 void text_head(const struct text_sheet *t, const struct site *site, const struct zone *zone,
 	       const struct night_view *v)
 {
@@ -172,6 +188,11 @@ void text_head(const struct text_sheet *t, const struct site *site, const struct
 	fprintf(t->to, "Night %s at ", name);
 	site_words(t->to, site);
 	fputc('\n', t->to);
+	if (n->telescope) {
+		fputs("Telescope: ", t->to);
+		text_cell(t->to, n->telescope->name, NAME_CHARS_MAX, false);
+		fputc('\n', t->to);
+	}
 	if (!zone)
 		fputs("The site's time zone is not known: all times are UTC.\n", t->to);
 	if (clocks_change(n, zone))
@@ -179,6 +200,7 @@ void text_head(const struct text_sheet *t, const struct site *site, const struct
 			    zone_local(zone, night_utc(n, n->length_d)).abbreviation);
 	sun_lines(t, v, zone);
 	moon_line(t, v, zone);
+	allotted_line(t, v, zone);
 	text_limits(t);
 }
 

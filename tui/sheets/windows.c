@@ -44,13 +44,13 @@ void night_time_json(struct json *j, const char *key, const struct night *n, dou
 	json_text(j, key, text);
 }
 
-static void usable_json(struct json *j, const struct window *w, const struct night *n)
+static void spans_json(struct json *j, const char *key, const struct intervals *set, const struct night *n)
 {
-	json_open(j, "usable", '[', true);
-	for (int i = 0; i < w->cover.usable.n; i++) {
+	json_open(j, key, '[', true);
+	for (int i = 0; i < set->n; i++) {
 		json_open(j, NULL, '[', true);
-		night_time_json(j, NULL, n, w->cover.usable.s[i].from_d);
-		night_time_json(j, NULL, n, w->cover.usable.s[i].to_d);
+		night_time_json(j, NULL, n, set->s[i].from_d);
+		night_time_json(j, NULL, n, set->s[i].to_d);
 		json_close(j, ']');
 	}
 	json_close(j, ']');
@@ -71,7 +71,7 @@ void window_json(struct json *j, const struct window *w, const struct night *n)
 		else
 			json_digits(j, c->name, text);
 	}
-	usable_json(j, w, n);
+	spans_json(j, "usable", &w->cover.usable, n);
 	json_close(j, '}');
 }
 
@@ -94,7 +94,7 @@ void site_json(struct json *j, const char *key, const struct site *site)
 	json_close(j, '}');
 }
 
-void stored_site_json(struct json *j, const struct site *site)
+void stored_site_json(struct json *j, const struct site *site, const char *half)
 {
 	json_open(j, NULL, '{', true);
 	site_keys(j, site);
@@ -106,6 +106,7 @@ void stored_site_json(struct json *j, const struct site *site)
 		json_close(j, ']');
 	}
 	json_close(j, ']');
+	json_text(j, "half", half);
 	json_close(j, '}');
 }
 
@@ -162,5 +163,9 @@ void night_json(struct json *j, const struct night_view *v, double sun_limit_deg
 	night_time_json(j, "moonset_utc", n, t->moonset_d);
 	json_number(j, "moon_lit", n->moon_lit_mid, 4);
 	json_number(j, "usable_h", v->dark.usable_h, 4);
+	if (v->allotments > 0)
+		spans_json(j, "allotted", &v->free.allotted, n);
+	else
+		json_null(j, "allotted");
 	json_close(j, '}');
 }

@@ -1,0 +1,172 @@
+/* SPDX-License-Identifier: MIT */
+#include "db/allotments.h"
+
+#include "db/telescope_rows.h"
+#include "db/text_block.h"
+#include "db/text_clean.h"
+#include "ephem/timescale.h"
+
+#include <stdio.h>
+#include <stdlib.h>
+#include <string.h>
+
+const struct table allotment_rows = {
+    .name = "allotment",
+    .cells = ALLOTMENT_CELLS,
+    .rev_at = ALLOTMENT_REV,
+    .change_at = ALLOTMENT_CHANGE,
+    .next = SQL_ALLOTMENT_NEXT,
+    .add = SQL_ALLOTMENT_ADD,
+    .update = SQL_ALLOTMENT_UPDATE,
+    .keep_old = SQL_ALLOTMENT_KEEP_OLD,
+};
+enum { SPAN_CHARS_MAX = 120 };
+
+void night_date_text(int64_t mjd, char out[NIGHT_TEXT_MAX])
+{
+	out[0] = '\0';
+	if (mjd < NIGHT_MJD_MIN || mjd > NIGHT_MJD_MAX) /* of a damaged row */
+		return;
+	struct date d = date_from_mjd((int32_t)mjd);
+	snprintf(out, NIGHT_TEXT_MAX, "%04d-%02d-%02d", d.year % 10000, d.month % 100, d.day % 100);
+}
+
+/* --- reading --- */
+
+struct loading {
+	struct allotment_list *out;
+	size_t (*place)[2]; /* of span and note, while the block still moves */
+	size_t room;
+	struct text_block texts;
+};
+
+static bool make_room(struct loading *l)
+{
+	if (l->out->n < l->room)
+		return true;
+	size_t room = l->room ? 2 * l->room : 32;
+	struct allotment *list = realloc(l->out->allotment, room * sizeof *list);
+	if (list)
+		l->out->allotment = list;
+	void *place = realloc(l->place, room * sizeof *l->place);
+	if (place)
+		l->place = place;
+	if (!list || !place)
+		return false;
+	l->room = room;
+	return true;
+}
+
+static enum status keep(struct loading *l, const struct cell *cell, struct err *e)
+{
+	struct allotment_list *out = l->out;
+	if (!make_room(l) || !text_block_add(&l->texts, cell[ALLOTMENT_SPAN].u.text, &l->place[out->n][0]) ||
+	    !text_block_add(&l->texts, cell[ALLOTMENT_NOTE].u.text, &l->place[out->n][1]))
+		return err_set(e, ST_MEMORY, "database: no memory");
+	out->allotment[out->n++] = (struct allotment){
+	    .id = cell[0].u.i,
+	    .site_id = cell[ALLOTMENT_SITE].u.i,
+	    .telescope_id = id_of_cell(&cell[ALLOTMENT_TELESCOPE]),
+	    .first_mjd = (int32_t)cell[ALLOTMENT_FIRST].u.i,
+	    .last_mjd = (int32_t)cell[ALLOTMENT_LAST].u.i,
+	};
+	return ST_OK;
+}
+
+enum status allotments_load(struct store *s, struct allotment_list *out, struct err *e)
+{
+	struct cell cell[ROW_CELLS_MAX];
+	struct loading l = {.out = out};
+	bool row = false;
+	enum status st = ST_OK;
+	*out = (struct allotment_list){0};
+	while (st == ST_OK && (st = sql_step(s, SQL_ALLOTMENT_LOAD, &row, e)) == ST_OK && row) {
+		bool sound = row_read(s, SQL_ALLOTMENT_LOAD, 0, &allotment_rows, cell);
+		if (sound && !cell[ALLOTMENT_REMOVED].u.i)
+			st = keep(&l, cell, e);
+		else if (!sound && out->n_bad++ == 0)
+			snprintf(out->bad, sizeof out->bad,
+				 "the checksum of allotment %lld is wrong: left out; see `wane check`",
+				 (long long)sqlite3_column_int64(s->stmt[SQL_ALLOTMENT_LOAD], 0));
+	}
+	sql_reset(s, SQL_ALLOTMENT_LOAD);
+	out->block = l.texts.text;
+	for (size_t k = 0; st == ST_OK && k < out->n; k++) {
+		out->allotment[k].span = out->block + l.place[k][0];
+		out->allotment[k].note = out->block + l.place[k][1];
+	}
+	free(l.place);
+	if (st != ST_OK)
+		allotment_list_free(out);
+	return st;
+}
+
+void allotment_list_free(struct allotment_list *list)
+{
+	free(list->allotment);
+	free(list->block);
+	*list = (struct allotment_list){0};
+}
+
+/* --- writing --- */
+
+static enum status check_allotment(struct store *s, const struct allotment *a, struct err *e)
+{
+	if (a->first_mjd < NIGHT_MJD_MIN || a->last_mjd > NIGHT_MJD_MAX)
+		return err_set(e, ST_RANGE, "allotment: not nights of 1900 to 2100");
+	if (a->last_mjd < a->first_mjd)
+		return err_set(e, ST_RANGE, "allotment: its last night is before its first");
+	if (!a->span || !*a->span)
+		return err_set(e, ST_SYNTAX,
+			       "allotment: no span (got \"\", expected whole, first-half, FROM..TO)");
+	enum status st = text_check("span", a->span, SPAN_CHARS_MAX, e);
+	if (st == ST_OK)
+		st = text_check("note", a->note ? a->note : "", NOTE_CHARS_MAX, e);
+	return st == ST_OK ? place_check(s, a->site_id, a->telescope_id, e) : st;
+}
+
+enum status allotment_add(struct store *s, const struct allotment *a, int64_t *id, struct err *e)
+{
+	struct row same;
+	enum status st = check_allotment(s, a, e);
+	if (st != ST_OK)
+		return st;
+	const struct cell keys[] = {cell_int(a->site_id), cell_int(a->telescope_id), cell_int(a->first_mjd),
+				    cell_int(a->last_mjd), cell_text(a->span)};
+	st = row_find_by(s, SQL_ALLOTMENT_SAME, keys, 5, &allotment_rows, &same, e);
+	if (st == ST_OK)
+		st = err_set(e, ST_CONFLICT, "that time is allotted already, as allotment %lld",
+			     (long long)same.cell[0].u.i);
+	else if (st == ST_ABSENT)
+		st = row_next_id(s, &allotment_rows, id, e);
+	row_free(&same);
+	if (st != ST_OK)
+		return st;
+	struct cell cell[ROW_CELLS_MAX] = {
+	    [0] = cell_int(*id),
+	    [ALLOTMENT_SITE] = cell_int(a->site_id),
+	    [ALLOTMENT_TELESCOPE] = cell_id(a->telescope_id),
+	    [ALLOTMENT_FIRST] = cell_int(a->first_mjd),
+	    [ALLOTMENT_LAST] = cell_int(a->last_mjd),
+	    [ALLOTMENT_SPAN] = cell_text(a->span),
+	    [ALLOTMENT_NOTE] = cell_text(a->note ? a->note : ""),
+	    [ALLOTMENT_REMOVED] = cell_int(0),
+	};
+	return row_add(s, &allotment_rows, cell, e);
+}
+
+enum status allotment_remove(struct store *s, int64_t id, struct err *e)
+{
+	struct row old;
+	struct cell cell[ROW_CELLS_MAX];
+	enum status st = row_find(s, SQL_ALLOTMENT_BY_ID, cell_int(id), &allotment_rows, &old, e);
+	if (st == ST_ABSENT || (st == ST_OK && old.cell[ALLOTMENT_REMOVED].u.i)) {
+		st = err_set(e, ST_ABSENT, "there is no allotment %lld", (long long)id);
+	} else if (st == ST_OK) {
+		memcpy(cell, old.cell, sizeof cell);
+		cell[ALLOTMENT_REMOVED] = cell_int(1);
+		st = row_replace(s, &allotment_rows, &old, cell, e);
+	}
+	row_free(&old);
+	return st;
+}

@@ -1,0 +1,32 @@
+/* SPDX-License-Identifier: MIT
+ * Parts of opening and filling a run that have files of their own. Only run.c and run_night.c call them. */
+#ifndef WANE_TUI_RUN_PARTS_H
+#define WANE_TUI_RUN_PARTS_H
+
+#include "tui/run.h"
+
+/* One fault of the opening, begun with its word. */
+enum status run_worded(struct err *e, const char *word, const struct err *why);
+
+/* --- run_prepare.c --- */
+/* Fills r->prepared; into the arrays that are there, if any, so that windows of before go on pointing at their targets. */
+MUST_USE enum status run_prepare(struct run *r, struct err *e);
+
+/* --- run_telescope.c --- */
+/* Loads telescopes and allotments; rows that are left out are told of. */
+MUST_USE enum status run_load_telescopes(struct run *r, struct err *e);
+/* Frees both lists; the chosen telescope stays. */
+void run_drop_telescopes(struct run *r);
+/* Telescope and half rule of the chosen site. named: --telescope must be one of the site's; else it is only preferred, behind the telescope that was chosen before. ST_RANGE
+ * when it is none of them. */
+MUST_USE enum status run_choose_telescope(struct run *r, bool named, struct err *e);
+/* The half rule of any site; one that can't be read is told of and taken as dark. */
+void run_half_rule(const struct run *r, int64_t site_id, struct half_rule *out);
+/* The telescope's limits over those of the run. */
+void run_put_telescope_limits(struct run *r);
+
+/* --- run_allotted.c --- */
+/* Cuts the view's free time by the site's allotments. v->night is built. */
+void run_cut_by_allotments(const struct run *r, struct night_view *v);
+
+#endif
