@@ -96,8 +96,9 @@ fuzz:
 	@$(MAKE) --no-print-directory -s -j2 V=fuzz fuzz-targets
 	@sh tests/fuzz/run.sh build/obj-fuzz/tests/fuzz $(FUZZ_SECONDS)
 
-bench: $(B)/tests/bench/bench $(B)/tests/bench/latency $(B)/wane
+bench: $(B)/tests/bench/bench $(B)/tests/bench/order $(B)/tests/bench/latency $(B)/wane
 	@$<
+	@$(B)/tests/bench/order
 	@$(B)/tests/bench/latency $(B)/wane
 
 deps:

@@ -22,10 +22,9 @@ struct star_offers {
 struct work {
 	const struct plan_input *in;
 	struct plan_pointings p;
-	struct offered_way *way;   /* by offer */
-	size_t n_ways, *first_way; /* [in->n + 1] */
-	double *worth;		   /* [in->n] of the best way */
-	size_t n_offers, *offer;   /* those with ways, by star */
+	struct offered_ways ways;
+	double *worth;		 /* [in->n] of the best way */
+	size_t n_offers, *offer; /* those with ways, by star */
 	size_t n_stars;
 	struct star_offers *star; /* by z of the direction */
 	struct offered_way *gathered;
@@ -36,8 +35,8 @@ struct work {
 static void work_free(struct work *k)
 {
 	plan_pointings_free(&k->p);
-	free(k->way);
-	free(k->first_way);
+	free(k->ways.way);
+	free(k->ways.first);
 	free(k->worth);
 	free(k->offer);
 	free(k->star);
@@ -49,36 +48,36 @@ static void work_free(struct work *k)
 
 static bool find_ways(struct work *k)
 {
-	size_t room = 0;
+	struct offered_ways *ways = &k->ways;
 	for (size_t i = 0; i < k->in->n; i++) {
 		struct plan_way way[PLAN_WAYS_MAX];
 		const bool open = !k->in->offer[i].dropped && !k->in->offer[i].settled;
 		const size_t n = open ? (size_t)plan_ways(k->in, i, way) : 0;
-		if (k->n_ways + n > room) {
-			room = 2 * room + PLAN_WAYS_MAX;
-			struct offered_way *more = realloc(k->way, room * sizeof *more);
+		if (ways->n + n > ways->room) {
+			ways->room = 2 * ways->room + PLAN_WAYS_MAX;
+			struct offered_way *more = realloc(ways->way, ways->room * sizeof *more);
 			if (!more)
 				return false;
-			k->way = more;
+			ways->way = more;
 		}
-		k->first_way[i] = k->n_ways;
+		ways->first[i] = ways->n;
 		k->worth[i] = 0.0;
 		for (size_t j = 0; j < n; j++) {
-			k->way[k->n_ways++] = (struct offered_way){i, way[j]};
+			ways->way[ways->n++] = (struct offered_way){i, way[j]};
 			k->worth[i] = fmax(k->worth[i], way[j].worth);
 		}
 	}
-	k->first_way[k->in->n] = k->n_ways;
+	ways->first[k->in->n] = ways->n;
 	return true;
 }
 
 static bool add_singles(struct work *k)
 {
-	for (size_t i = 0; i < k->n_ways; i++) {
+	for (size_t i = 0; i < k->ways.n; i++) {
 		struct plan_candidate *c = candidate_add(&k->single);
 		if (!c)
 			return false;
-		candidate_fill(c, k->in, k->p.star[k->way[i].offer], &k->way[i], 1);
+		candidate_fill(c, k->in, k->p.star[k->ways.way[i].offer], &k->ways.way[i], 1);
 	}
 	return true;
 }
@@ -111,7 +110,7 @@ static bool group_stars(struct work *k)
 	if (!keyed)
 		return false;
 	for (size_t i = 0; i < k->in->n; i++)
-		if (k->first_way[i + 1] > k->first_way[i])
+		if (k->ways.first[i + 1] > k->ways.first[i])
 			keyed[k->n_offers++] = (struct keyed){(double)k->p.star[i], i};
 	qsort(keyed, k->n_offers, sizeof *keyed, by_key);
 	for (size_t i = 0; i < k->n_offers; i++) {
@@ -157,8 +156,8 @@ static void find_near(struct work *k, size_t centre)
 
 static size_t gather(struct work *k, size_t n, size_t offer)
 {
-	const size_t first = k->first_way[offer], count = k->first_way[offer + 1] - first;
-	memcpy(k->gathered + n, k->way + first, count * sizeof *k->way);
+	const size_t first = k->ways.first[offer], count = k->ways.first[offer + 1] - first;
+	memcpy(k->gathered + n, k->ways.way + first, count * sizeof *k->ways.way);
 	return n + count;
 }
 
@@ -174,7 +173,7 @@ static enum status add_joints(struct work *k, struct err *e)
 		for (size_t i = 0; i < k->n_near; i++)
 			n = gather(k, n, k->near[i]);
 		const enum status st =
-		    joint_items(k->in, &k->p, k->star[s].star, k->gathered, n, &k->joint, e);
+		    joint_items(k->in, &k->p, &k->ways, k->star[s].star, k->gathered, n, &k->joint, e);
 		if (st != ST_OK)
 			return st;
 	}
@@ -197,7 +196,7 @@ static enum status collect(struct work *k, struct plan_candidate **out, size_t *
 {
 	if (!find_ways(k) || !add_singles(k))
 		return err_set(e, ST_MEMORY, "no memory for the ways of %zu windows", k->in->n);
-	k->gathered = malloc((k->n_ways + 1) * sizeof *k->gathered);
+	k->gathered = malloc((k->ways.n + 1) * sizeof *k->gathered);
 	if (!k->gathered || !group_stars(k))
 		return err_set(e, ST_MEMORY, "no memory for the stars of %zu windows", k->in->n);
 	const enum status st = add_joints(k, e);
@@ -226,12 +225,12 @@ enum status plan_candidates(const struct plan_input *in, struct plan_candidate *
 	*n = 0;
 	enum status st = plan_pointings_make(in, &k.p, e);
 	if (st == ST_OK) {
-		k.first_way = malloc((in->n + 1) * sizeof *k.first_way);
+		k.ways.first = malloc((in->n + 1) * sizeof *k.ways.first);
 		k.worth = malloc((in->n + 1) * sizeof *k.worth);
 		k.offer = malloc((in->n + 1) * sizeof *k.offer);
 		k.star = malloc((in->n + 1) * sizeof *k.star);
 		k.near = malloc((NEIGHBOURS_MAX + 1) * sizeof *k.near);
-		if (!k.first_way || !k.worth || !k.offer || !k.star || !k.near)
+		if (!k.ways.first || !k.worth || !k.offer || !k.star || !k.near)
 			st = err_set(e, ST_MEMORY, "no memory for %zu windows", in->n);
 		else
 			st = collect(&k, out, n, e);

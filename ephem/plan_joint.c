@@ -8,15 +8,20 @@
 
 #include <math.h>
 #include <stdlib.h>
+#include <string.h>
 
-enum { CROWD_MAX = 12 }; /* events looked at in one interval; a wider one is left */
+enum {
+	CROWD_MAX = 12,	 /* events looked at in one interval; a wider one is left */
+	OPTIONAL_MAX = 5 /* events of an interval that may be left out of it */
+};
 
 struct sweep {
 	const struct plan_input *in;
 	const struct plan_pointings *p;
 	struct intervals spans;
 	size_t centre, n;
-	const struct offered_way *way; /* by start */
+	const struct offered_ways *ways;
+	const struct offered_way *way; /* of this field, by start */
 	size_t *by_end;
 	size_t n_inside; /* events with a way in the interval, and the best such way of each */
 	struct offered_way inside[CROWD_MAX + 1];
@@ -143,21 +148,13 @@ static bool dominated(const struct sweep *s, const struct plan_candidate *c)
 	return false;
 }
 
-/* Adds what can be done in [from, to], where it fills it. */
-static bool add_interval(struct sweep *s, double from_d, double to_d)
+/* Adds an item of these members, where they fill [from, to] and can be done from one pointing. */
+static bool add_members(struct sweep *s, double from_d, double to_d, const struct offered_way member[],
+			size_t n)
 {
-	struct offered_way member[CROWD_MAX + 1];
-	size_t n = s->n_inside;
-	for (size_t i = 0; i < n; i++)
-		member[i] = s->inside[i];
-	if (n > PLAN_MEMBERS_MAX) {
-		qsort(member, n, sizeof *member, by_worth);
-		n = PLAN_MEMBERS_MAX;
-	}
-	qsort(member, n, sizeof *member, by_start);
-	double reach_d = n > 0 ? member[0].way.to_d : from_d;
 	if (n < 2 || member[0].way.from_d > from_d)
 		return true;
+	double reach_d = member[0].way.to_d;
 	for (size_t i = 1; i < n; i++) {
 		if (member[i].way.from_d > reach_d + s->in->rules->settle_d)
 			return true;
@@ -174,6 +171,47 @@ static bool add_interval(struct sweep *s, double from_d, double to_d)
 	if (place)
 		*place = c;
 	return place != NULL;
+}
+
+/* Whether an event may be worth more in another item than in [from, to]: a way that lies outside has more
+ * worth, or as much and is earlier. */
+static bool better_elsewhere(const struct sweep *s, const struct offered_way *w, double from_d, double to_d)
+{
+	for (size_t i = s->ways->first[w->offer]; i < s->ways->first[w->offer + 1]; i++) {
+		const struct plan_way *u = &s->ways->way[i].way;
+		if ((u->to_d <= from_d && u->worth >= w->way.worth) ||
+		    (u->from_d >= to_d && u->worth > w->way.worth))
+			return true;
+	}
+	return false;
+}
+
+/* Adds what can be done in [from, to]: all of it, and what is left of it without events that may be worth
+ * more elsewhere. */
+static bool add_interval(struct sweep *s, double from_d, double to_d)
+{
+	struct offered_way all[CROWD_MAX + 1], member[PLAN_MEMBERS_MAX];
+	unsigned optional[PLAN_MEMBERS_MAX], bits = 0; /* the bit of an event that may be left out; 0 */
+	size_t n = s->n_inside;
+	memcpy(all, s->inside, n * sizeof *all);
+	if (n > PLAN_MEMBERS_MAX) {
+		qsort(all, n, sizeof *all, by_worth);
+		n = PLAN_MEMBERS_MAX;
+	}
+	qsort(all, n, sizeof *all, by_start);
+	for (size_t i = 0; i < n; i++) {
+		const bool may = bits < OPTIONAL_MAX && better_elsewhere(s, &all[i], from_d, to_d);
+		optional[i] = may ? 1U << bits++ : 0U;
+	}
+	for (unsigned without = 0; without < 1U << bits; without++) {
+		size_t m = 0;
+		for (size_t i = 0; i < n; i++)
+			if (!(optional[i] & without))
+				member[m++] = all[i];
+		if (!add_members(s, from_d, to_d, member, m))
+			return false;
+	}
+	return true;
 }
 
 /* Takes a way into the interval; whether that changes what is best in it. */
@@ -215,11 +253,13 @@ static bool add_from(struct sweep *s, size_t start)
 	return !changed || s->n_inside > CROWD_MAX || add_interval(s, s->way[start].way.from_d, to_d);
 }
 
-enum status joint_items(const struct plan_input *in, const struct plan_pointings *p, size_t centre,
-			struct offered_way way[], size_t n, struct candidate_list *list, struct err *e)
+enum status joint_items(const struct plan_input *in, const struct plan_pointings *p,
+			const struct offered_ways *ways, size_t centre, struct offered_way way[], size_t n,
+			struct candidate_list *list, struct err *e)
 {
 	struct sweep s = {.in = in,
 			  .p = p,
+			  .ways = ways,
 			  .spans = plan_spans(in),
 			  .centre = centre,
 			  .n = n,

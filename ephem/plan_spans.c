@@ -58,11 +58,9 @@ struct intervals plan_spans_at(const struct plan_input *in, struct vec3 directio
 		double move_d = plan_gap_between_d(in->rules, f->direction, direction, true);
 		/* a joint item points at another star of the field, a little farther away */
 		if (move_d > 0.0)
-			move_d += in->rules->field_deg / in->rules->slew_deg_d;
-		const struct intervals before =
-		    intervals_clip(&spans, -INFINITY, f->from_d - move_d - ROUNDING_D);
-		const struct intervals after =
-		    intervals_clip(&spans, f->to_d + move_d + ROUNDING_D, INFINITY);
+			move_d += in->rules->field_deg / in->rules->slew_deg_d + ROUNDING_D;
+		const struct intervals before = intervals_clip(&spans, -INFINITY, f->from_d - move_d);
+		const struct intervals after = intervals_clip(&spans, f->to_d + move_d, INFINITY);
 		spans = intervals_or(&before, &after);
 	}
 	return spans;

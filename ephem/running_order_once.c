@@ -46,13 +46,16 @@ static void keep_each_event_once(struct order_maker *m, const int chain[], int n
 	const struct order_net *net = m->net;
 	for (int k = 0; k < n; k++) {
 		const struct order_spot *spot = &net->spot[chain[k]];
+		bool clash = false;
 		int64_t others = 0;
 		for (int i = 0; i < spot->n_events; i++) {
 			int owner = m->owner[spot->event[i]];
-			if (owner >= 0 && m->kept[owner])
+			if (owner >= 0 && m->kept[owner]) {
+				clash = true;
 				others += net->score[chain[owner]];
+			}
 		}
-		m->kept[k] = others < net->score[chain[k]];
+		m->kept[k] = !clash || others < net->score[chain[k]];
 		for (int i = 0; m->kept[k] && i < spot->n_events; i++) {
 			int owner = m->owner[spot->event[i]];
 			if (owner >= 0)

@@ -12,7 +12,7 @@
 #include <stdlib.h>
 #include <string.h>
 
-enum { ROOT_ROUNDS = 60, BRANCH_ROUNDS = 8, PATIENCE = 4, MAKE_EVERY = 8 };
+enum { ROOT_ROUNDS = 60, BRANCH_ROUNDS = 12, PATIENCE = 4, MAKE_EVERY = 12 };
 /* After so many looks an order that only has fewer items for the same worth is no longer looked for. */
 enum { TIE_LOOKS = 3000 };
 #define SUM_MAX ((int64_t)1 << 61)

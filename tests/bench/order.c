@@ -161,6 +161,28 @@ static void places_same(struct night *w, uint64_t *r)
 	places(w, r, 8.0, true);
 }
 
+/* Three events in a row at each pointing, each whole and by its limbs, and every run of them in one item. */
+static void in_a_row(struct night *w, uint64_t *r)
+{
+	while (w->n + 12 <= ITEMS) {
+		int pointing = (int)random_between(r, 0.0, POINTINGS);
+		double length_d = random_between(r, 60.0, 120.0) / 1440.0,
+		       step_d = random_between(r, 0.8, 1.2) * length_d;
+		double from_d = random_between(r, 0.0, night_d - 2.0 * step_d - length_d),
+		       worth = random_between(r, 0.1, 1.0);
+		for (int k = 0; k < 3; k++)
+			add_event(w, from_d + k * step_d, length_d, 1.0 / 3.0, worth, pointing);
+		for (int k = 0; k < 3; k++) { /* first two, last two, all */
+			int first = k == 1 ? 1 : 0, n = k == 2 ? 3 : 2;
+			add(w, from_d + first * step_d, from_d + (first + n - 1) * step_d + length_d,
+			    n * worth, pointing, 0);
+			w->item[w->n - 1].n_events = n;
+			for (int i = 0; i < n; i++)
+				w->item[w->n - 1].event[i] = w->n_events - 3 + first + i;
+		}
+	}
+}
+
 /* One to four of 60 events in each item, worth what they are together. */
 static void joint(struct night *w, uint64_t *r)
 {
@@ -267,6 +289,7 @@ int main(void)
 {
 	bool good = measure("a night", usual, 400, 1.0);
 	good = good && measure("a night, five priorities", even_worths, 400, 1.0);
+	good = good && measure("a night, three events in a row", in_a_row, 400, 1.0);
 	good = good && measure("all overlap", all_overlap, 100, 1.0);
 	good = good && measure("brief, gaps of 4 min to 5 h", long_gaps, 100, 0.01);
 	good = good && measure("60 events, limbs of 30 min", limbs_60, 40, 1.0);

@@ -92,7 +92,7 @@ refuse 2 'name: ' site add "$(printf 'a\033b')" --place 1,1,1
 refuse 1 'site: several are stored, choose one with --site (Tern Hill, Tern South)' night
 refuse 1 'target: no such target is stored (got "Tern 999 b"' sky 'Tern 999 b' --site 'Tern Hill'
 refuse 1 'target: no such target is stored (got "Tern 999 b"' night --target 'Tern 999 b' --site 'Tern Hill'
-refuse 1 'telescope: no telescope is stored (got "Big")' night --telescope Big --site 'Tern Hill'
+refuse 2 'telescope: none is stored at Tern Hill (got "Big"' night --telescope Big --site 'Tern Hill'
 refuse 1 'direction: light time needs one' clock 2461114.5 --from JD_UTC --to BJD_TDB
 refuse 1 'site: "tern-hill" exists already' site add 'tern-hill' --place 1,1,1
 refuse 1 'site: no such site is stored' site remove Nowhere

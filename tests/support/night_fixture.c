@@ -69,7 +69,8 @@ struct night_fixture *fixture_open(bool zoneinfo)
 	r->telescope = telescope_empty();
 	r->wall = (struct wall_clock){
 	    .leap = &r->leap, .fixed = true, .start = {.mjd = FIXTURE_EVENING_MJD + 1, .sod_s = 15245.0}};
-	r->limits = limits_built_in();
+	settings_built_in(&r->settings);
+	r->limits = r->settings.limits;
 	r->site = (struct site){.name = "Tern Hill",
 				.lat_deg = 38.62,
 				.lon_east_deg = -109.36,
@@ -94,6 +95,7 @@ struct night_fixture *fixture_open(bool zoneinfo)
 void fixture_close(struct night_fixture *f)
 {
 	zone_close(f->run.zone);
+	free(f->run.telescope_text);
 	free(f->run.memo);
 	free(f->run.prepared);
 	free(f);

@@ -138,10 +138,10 @@ static void test_ways_of_one(void **state)
 	check_ways_of(s, "one window", 0, all, 6);
 	w->event.t2_d = w->event.t3_d = NAN;
 	static const struct way_row grazing[] = {
-	    all[0],
-	    all[1],
-	    all[2],
-	    all[3],
+	    {"whole", VARIANT_WHOLE, 510.0, 690.0, 525.0, 0.9},
+	    {"cut before", VARIANT_SHORT, 520.0, 690.0, 525.0, 0.9 * 0.95},
+	    {"cut after", VARIANT_SHORT, 510.0, 680.0, 525.0, 0.9 * 0.95},
+	    {"cut on both sides", VARIANT_SHORT, 520.0, 680.0, 525.0, 0.9 * 0.95 * 0.95},
 	    {"grazing ingress: to mid and pad", VARIANT_INGRESS, 510.0, 605.0, 525.0, 0.4 * 0.95},
 	    {"grazing egress", VARIANT_EGRESS, 595.0, 690.0, 595.0, 0.4 * 0.95},
 	};
@@ -608,6 +608,23 @@ static void test_fixed(void **state)
 	scene_close(s);
 }
 
+/* A planet of the star that is being observed, whose b_min ends exactly where the item begins: no rounding
+ * takes it away. */
+static void test_fixed_touches(void **state)
+{
+	(void)state;
+	struct plan_scene *s = scene_open();
+	const struct prepared *b = scene_planet(s, "Tern 1 b", 100.0, 0.0);
+	const struct window *w = event(s, b, 600.0);
+	const double end_d = w->event.t4_d + 15.0 * MIN_D;
+	scene_fix(s, end_d, end_d + 60.0 * MIN_D, b);
+	struct night_plan p = plan(s);
+	assert_int_equal(p.n_items, 2);
+	check_item("until the other begins", &p.item[0], 510.0, 675.0, 0.9 * 0.95);
+	night_plan_free(&p);
+	scene_close(s);
+}
+
 /* What began without the time that a move takes here did happen: no fault. */
 static void test_fixed_close(void **state)
 {
@@ -674,6 +691,7 @@ int main(void)
 	    cmocka_unit_test(test_cost_of_two),
 	    cmocka_unit_test(test_no_time),
 	    cmocka_unit_test(test_fixed),
+	    cmocka_unit_test(test_fixed_touches),
 	    cmocka_unit_test(test_fixed_close),
 	    cmocka_unit_test(test_ties),
 	    cmocka_unit_test(test_words),

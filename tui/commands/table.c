@@ -15,6 +15,18 @@ const struct command commands[] = {
      "DATE is the local date of the evening, or an instant: the night that contains it; without it, "
      "tonight.\n",
      GROUP_COMPUTE | GROUP_WINDOWS, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 1, command_night},
+    {"plan", "[DATE]", "The running order of one telescope and night.",
+     "The plan that is kept, as it was stored; without one, a proposal: of the night's windows those that "
+     "fit "
+     "one after\nthe other, with the moves between them, and are worth most together. Until there is a noise "
+     "forecast an event is\nworth its priority times its chance of done, a tenth of its coverage where there "
+     "is no chance; one limb alone 0.4 of\nit. What is pinned, dropped, blocked, lost or poor is worked in, "
+     "shown, and stored with --keep or --save. In a night\nthat runs, what has begun stands and only the "
+     "rest "
+     "is planned anew. Times and spans: 22:40 (site), 05:40Z, a whole\ninstant, sunset, sunrise, dusk, dawn, "
+     "evening-9, morning-9, middle, start, end, each with +20m or -1h30m; FROM..TO,\nFROM..+25m, first-half, "
+     "second-half, whole. What was typed is said with its date on standard error.\n",
+     GROUP_COMPUTE | GROUP_PLAN, FORMAT_TEXT | FORMAT_JSON, 1, command_plan},
     {"season", "FROM TO", "Every window in a range of nights, both included.",
      "Several sites: repeat --site or --place. JSON: {\"site\" (null with several), \"sites\", \"limits\", "
      "\"from\", "

@@ -42,6 +42,7 @@ int command_allot(const struct env *env, const struct options *o);
 int command_sky(const struct env *env, const struct options *o);
 int command_clock(const struct env *env, const struct options *o);
 int command_night(const struct env *env, const struct options *o);
+int command_plan(const struct env *env, const struct options *o);
 int command_season(const struct env *env, const struct options *o);
 int command_demo(const struct env *env, const struct options *o);
 int command_drift(const struct env *env, const struct options *o);

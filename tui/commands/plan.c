@@ -1,0 +1,246 @@
+/* SPDX-License-Identifier: MIT */
+#include "tui/commands/plan.h"
+
+#include "tui/commands/table.h"
+#include "tui/diagnose.h"
+#include "tui/given.h"
+#include "tui/sheets/order_text.h"
+#include "tui/sheets/plan_sheet.h"
+
+#include <math.h>
+#include <stdlib.h>
+#include <string.h>
+
+struct plan_wish plan_wish_of(const struct options *o)
+{
+	return (struct plan_wish){
+	    .draft = o->draft,
+	    .pin = o->pin.text,
+	    .n_pin = o->pin.n,
+	    .drop = o->drop.text,
+	    .n_drop = o->drop.n,
+	    .free = o->free_event.text,
+	    .n_free = o->free_event.n,
+	    .block = o->block.text,
+	    .n_block = o->block.n,
+	    .unblock = o->unblock.text,
+	    .n_unblock = o->unblock.n,
+	    .lost = o->lost.text,
+	    .n_lost = o->lost.n,
+	    .unlost = o->unlost.text,
+	    .n_unlost = o->unlost.n,
+	    .poor = o->poor.text,
+	    .n_poor = o->poor.n,
+	    .afresh = o->afresh,
+	    .from = o->plan_from,
+	    .moved_min = o->moved_min,
+	};
+}
+
+static bool wishes(const struct options *o)
+{
+	return o->pin.n + o->drop.n + o->free_event.n + o->block.n + o->unblock.n + o->lost.n + o->unlost.n +
+		       o->poor.n >
+		   0 ||
+	       o->afresh || o->plan_from;
+}
+
+int plan_fault(const struct err *e)
+{
+	const bool usage = e->status == ST_SYNTAX || e->status == ST_RANGE;
+	return diagnose_err("plan", e, usage ? EXIT_USAGE : EXIT_UNMET);
+}
+
+/* --- what belongs together on the command line --- */
+
+/* What is at fault, or NULL. */
+static const char *at_odds(const struct options *o)
+{
+	const int whole = o->list + (o->compare != NULL) + (o->remove_draft != NULL);
+	if (whole > 1)
+		return "--list, --compare and --remove are three things";
+	if (whole == 1 && (wishes(o) || o->keep || o->save || o->mark.n > 0))
+		return "--list, --compare and --remove go with no change of a plan";
+	if ((o->cause || o->note) && o->mark.n == 0)
+		return "--cause and --note belong to --mark";
+	if (o->mark.n > 0 && (wishes(o) || o->keep || o->save))
+		return "--mark is stored at once: plan anew in a call of its own";
+	return NULL;
+}
+
+/* --- marks --- */
+
+/* `T=STATE`: the last sign of equality parts them. */
+static enum status mark_parse(const char *text, char *target, size_t n, enum plan_state *state, struct err *e)
+{
+	char got[ERR_QUOTE_MAX];
+	const char *equals = strrchr(text, '=');
+	err_quote(text, strlen(text), got);
+	if (equals && equals > text && (size_t)(equals - text) < n) {
+		snprintf(target, n, "%.*s", (int)(equals - text), text);
+		for (int s = 0; s < PLAN_STATE_COUNT; s++)
+			if (s != PLAN_PINNED && strcmp(equals + 1, plan_state_words[s]) == 0) {
+				*state = (enum plan_state)s;
+				return ST_OK;
+			}
+	}
+	return err_set(
+	    e, ST_SYNTAX,
+	    "mark: can't be read (got \"%s\", expected NAME=started, done, partly, lost or planned)", got);
+}
+
+static int mark_all(struct run *r, int32_t mjd)
+{
+	const struct options *o = r->options;
+	const struct plan_wish wish = {.draft = o->draft, .moved_min = NAN};
+	struct night_view night = {.hidden = 0};
+	struct plan_view view;
+	struct err e;
+	char target[NAME_BYTES_MAX + 16];
+	enum plan_state state = PLAN_PLANNED;
+	enum status s = ST_OK;
+	for (int i = 0; s == ST_OK && i < o->mark.n; i++)
+		s = mark_parse(o->mark.text[i], target, sizeof target, &state, &e);
+	if (s != ST_OK)
+		return plan_fault(&e);
+	s = plan_get(r, mjd, &wish, &night, &view, NULL, &e);
+	if (s != ST_OK) {
+		night_view_free(&night);
+		return plan_fault(&e);
+	}
+	for (int i = 0; s == ST_OK && i < o->mark.n; i++) {
+		s = mark_parse(o->mark.text[i], target, sizeof target, &state, &e);
+		if (s == ST_OK)
+			s = plan_mark_item(r, &view, target, state, o->cause, o->note, &e);
+	}
+	plan_view_free(&view);
+	night_view_free(&night);
+	return s == ST_OK ? EXIT_DONE : plan_fault(&e);
+}
+
+/* --- showing --- */
+
+static void echo_lines(char *echo)
+{
+	for (char *line = echo; line && *line;) {
+		char *end = strchr(line, '\n');
+		if (end)
+			*end = '\0';
+		diagnose("plan", "%s", line);
+		line = end ? end + 1 : line + strlen(line);
+	}
+	free(echo);
+}
+
+/* A draft that is asked for by name and not stored is only a plan when it is to be stored now. */
+static enum status draft_there(const struct options *o, const struct plan_view *v, struct err *e)
+{
+	char got[ERR_QUOTE_MAX];
+	if (!o->draft || v->edition > 0 || o->keep || o->save)
+		return ST_OK;
+	err_quote(o->draft, strlen(o->draft), got);
+	return err_set(e, ST_ABSENT, "no such draft this night (got \"%s\"; see wane plan DATE --list)", got);
+}
+
+static int write_plan(struct run *r, struct plan_view *v, enum format format, struct out *out)
+{
+	struct err e;
+	bool whole = true;
+	if (format == FORMAT_TEXT)
+		order_text(out->file, v, r->options->plain);
+	else
+		whole = plan_json(out->file, v, NULL);
+	if (!whole) {
+		out_abandon(out);
+		diagnose("memory", "none for a plan");
+		return EXIT_UNMET;
+	}
+	if (out_commit(out, &e) != ST_OK)
+		return diagnose_whole(&e, EXIT_UNMET);
+	if (!v->stored)
+		diagnose("plan",
+			 "shown, not stored (--keep stores and keeps it, --save stores it as a draft)");
+	leap_note(r, v->night->night.mjd);
+	run_night_notes(v->night);
+	return EXIT_DONE;
+}
+
+static int show(struct run *r, int32_t mjd, enum format format, struct out *out)
+{
+	const struct options *o = r->options;
+	struct plan_wish wish = plan_wish_of(o);
+	struct night_view night = {.hidden = 0};
+	struct plan_view view;
+	struct err e;
+	char *echo = NULL;
+	int code;
+	wish.costs = true;
+	enum status s = plan_get(r, mjd, &wish, &night, &view, &echo, &e);
+	echo_lines(echo);
+	if (s == ST_OK) {
+		s = draft_there(o, &view, &e);
+		if (s == ST_OK && (o->keep || o->save))
+			s = plan_save(r, &view, o->draft, o->keep, &e);
+		code = s == ST_OK ? write_plan(r, &view, format, out) : plan_fault(&e);
+		plan_view_free(&view);
+	} else
+		code = plan_fault(&e);
+	if (s != ST_OK)
+		out_abandon(out);
+	night_view_free(&night);
+	return code;
+}
+
+/* --- the command --- */
+
+static int run_plan(struct run *r, int32_t mjd)
+{
+	const struct options *o = r->options;
+	struct out out;
+	struct err e;
+	enum format format;
+	if (format_of(o, FORMAT_TEXT | FORMAT_JSON, &format, &e) != ST_OK)
+		return usage_fault("--format", &e);
+	if (o->remove_draft)
+		return plan_remove_draft(r, mjd, o->remove_draft);
+	if (o->mark.n > 0) {
+		const int code = mark_all(r, mjd);
+		if (code != EXIT_DONE)
+			return code;
+	}
+	if (run_out_open(r, &out, &e) != ST_OK)
+		return diagnose_whole(&e, EXIT_UNMET);
+	if (o->list)
+		return plan_list_write(r, mjd, format, &out);
+	if (o->compare)
+		return plan_compare_write(r, mjd, format, &out);
+	return show(r, mjd, format, &out);
+}
+
+int command_plan(const struct env *env, const struct options *o)
+{
+	struct run run;
+	struct err e;
+	int code, needs = NEED_STORE | NEED_SITE | NEED_TARGETS;
+	int32_t mjd;
+	const char *date = o->n_words > 1 ? o->word[1] : NULL;
+	if (!one_site(o, "plan"))
+		return EXIT_USAGE;
+	if (at_odds(o)) {
+		diagnose("plan", "%s", at_odds(o));
+		return EXIT_USAGE;
+	}
+	if (date && given_night_check(&leap_builtin, date, &e) != ST_OK && !strstr(date, ":60"))
+		return usage_fault("DATE", &e);
+	if (o->keep || o->save || o->mark.n > 0 || o->remove_draft)
+		needs |= NEED_WRITE;
+	if (run_open(&run, env, o, needs, &code, &e) != ST_OK)
+		return diagnose_whole(&e, code);
+	mjd = run_tonight(&run);
+	if (date && given_night(&run.leap, run.site.lon_east_deg, date, &mjd, &e) != ST_OK)
+		code = usage_fault("DATE", &e);
+	else
+		code = run_plan(&run, mjd);
+	run_close(&run);
+	return code;
+}

@@ -1,0 +1,21 @@
+/* SPDX-License-Identifier: MIT
+ * The plan command in its parts. */
+#ifndef WANE_TUI_COMMANDS_PLAN_H
+#define WANE_TUI_COMMANDS_PLAN_H
+
+#include "tui/commands/table.h"
+#include "tui/plan_make.h"
+#include "tui/sheets/out.h"
+
+/* What the options of a call wish of a plan; costs are left out. Borrows o. */
+struct plan_wish plan_wish_of(const struct options *o);
+/* Says a fault of plan_get and its like; the exit code: 2 where something that was typed is wrong. */
+int plan_fault(const struct err *e);
+
+/* The drafts of a night. out: committed or abandoned, as by plan_compare_write. */
+int plan_list_write(struct run *r, int32_t evening_mjd, enum format format, struct out *out);
+/* The plan against the draft --compare, in words. */
+int plan_compare_write(struct run *r, int32_t evening_mjd, enum format format, struct out *out);
+int plan_remove_draft(struct run *r, int32_t evening_mjd, const char *draft);
+
+#endif
