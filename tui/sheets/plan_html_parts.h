@@ -22,7 +22,8 @@ void plan_html_left(struct html_page *p);
 void plan_html_foot(struct html_page *p);
 
 /* --- for all of them --- */
-/* A local time and the same in UTC, each with its date where it is not the evening's, or not the local one. */
+/* A local time and the same in UTC, each with its date where it is not the evening's, or not the local one.
+ */
 void html_local(struct html_page *p, struct utc t);
 void html_utc(struct html_page *p, struct utc t);
 /* Names of an item's targets, joined. */

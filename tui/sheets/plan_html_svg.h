@@ -1,6 +1,7 @@
 /* SPDX-License-Identifier: MIT
- * The drawings of the night sheet, as SVG 1.1 inside HTML. Each is drawn for two widths; the style shows the one that suits the screen, so that letters keep
- * their size. Nothing from the plan's texts stands in an attribute. */
+ * The drawings of the night sheet, as SVG 1.1 inside HTML. Each is drawn for two widths; the style shows the
+ * one that suits the screen, so that letters keep their size. Nothing from the plan's texts stands in an
+ * attribute. */
 #ifndef WANE_TUI_SHEETS_PLAN_HTML_SVG_H
 #define WANE_TUI_SHEETS_PLAN_HTML_SVG_H
 
@@ -10,9 +11,11 @@
 
 enum svg_size { SVG_WIDE, SVG_NARROW };
 /* Twilight, Moon, blocks and items as rows under a ruler of hours. */
-void plan_svg_timeline(struct html_out *out, const struct plan_view *v, const struct plan_sky *sky, enum svg_size size);
+void plan_svg_timeline(struct html_out *out, const struct plan_view *v, const struct plan_sky *sky,
+		       enum svg_size size);
 /* Altitude of every item's star and of the Moon. */
-void plan_svg_altitudes(struct html_out *out, const struct plan_view *v, const struct plan_sky *sky, enum svg_size size);
+void plan_svg_altitudes(struct html_out *out, const struct plan_view *v, const struct plan_sky *sky,
+			enum svg_size size);
 /* What the signs of the timeline mean. */
 void plan_svg_key(struct html_out *out);
 
