@@ -189,6 +189,31 @@ static void json_of_nothing(void **state)
 	plan_fixture_close(f);
 }
 
+/* Names come through whole, as escapes where they could act on a terminal. */
+static void json_is_harmless(void **state)
+{
+	(void)state;
+	struct plan_fixture *f = plan_fixture_open(PLAN_FIXTURE_KEPT, FIXTURE_EVENING_MJD, true);
+	struct memory *m = memory_open();
+	f->item[PLAN_FIXTURE_JOINT].note = "\xC2\x9B"
+					   "31m \xE2\x80\xAE \xF3\xA0\x81\x81"; /* CSI, RLO, TAG A */
+	assert_true(plan_json(m->file, &f->view, &changed));
+	const char *text = memory_text(m);
+	for (size_t i = 0; i < m->n;) {
+		uint32_t cp;
+		const size_t length = utf8_decode(text + i, m->n - i, &cp);
+		if (length == 0 || (cp != '\n' && codepoint_is_hostile(cp)))
+			check_fail("byte %zu: U+%04X", i, (unsigned)cp);
+		i += length;
+	}
+	/* RFC 8259 sec. 7: U+E0041 is the pair DB40, DC41 */
+	assert_non_null(strstr(text, "\"note\": \"\\u009b31m \\u202e \\udb40\\udc41\""));
+	assert_non_null(strstr(
+	    text, "\"target\": \"=Tern <b>\\\"27\\\"</b> & 'x'; a,b\\\\n \\u001b[31m\\u000d\\u000aDTSTART"));
+	memory_close(m);
+	plan_fixture_close(f);
+}
+
 /* --- text --- */
 
 /* At most 72 columns, nothing that acts on a terminal, valid UTF-8, no blank at the end of a line. */
@@ -329,6 +354,12 @@ static void text_of_nothing(void **state)
 	assert_non_null(strstr(memory_text(m), "Nothing is planned."));
 	assert_non_null(strstr(m->text, "a proposal, not stored"));
 	assert_non_null(strstr(m->text, "CHANGED SINCE edition 1\n  nothing\n"));
+	assert_non_null(strstr(m->text, "# Sun up"));
+	memory_close(m);
+	m = memory_open();
+	f->base->options.plain = true;
+	assert_true(plan_sheet_text(m->file, &f->view, &none));
+	assert_null(strstr(memory_text(m), "# Sun up")); /* nothing told by position */
 	memory_close(m);
 	plan_fixture_close(f);
 }
@@ -398,7 +429,10 @@ static void calendar_says_what_it_is(void **state)
 		assert_int_equal(count(text, "STATUS:CANCELLED\r\n"), rows[i].cancelled);
 		assert_int_equal(count(text, "BEGIN:VALARM\r\n"), rows[i].alarms);
 		assert_int_equal(count(text, "BEGIN:VJOURNAL\r\n"), rows[i].journals);
-		assert_int_equal(count(text, rows[i].stamp), rows[i].events + rows[i].journals);
+		/* the item that was marked after the edition was stored has the time of its mark */
+		const int marked = rows[i].kind == PLAN_FIXTURE_KEPT;
+		assert_int_equal(count(text, "DTSTAMP:20260423T035210Z\r\n"), marked);
+		assert_int_equal(count(text, rows[i].stamp), rows[i].events + rows[i].journals - marked);
 		assert_int_equal(count(text, rows[i].sequence), rows[i].events + rows[i].journals);
 		assert_null(strstr(text, "METHOD"));
 		assert_null(strstr(text, "\r\nDTSTART:1970"));
@@ -431,6 +465,7 @@ int main(void)
 	    cmocka_unit_test(json_has_the_keys_in_order),
 	    cmocka_unit_test(json_gives_no_item_in_daylight),
 	    cmocka_unit_test(json_of_nothing),
+	    cmocka_unit_test(json_is_harmless),
 	    cmocka_unit_test(text_fits_and_is_harmless),
 	    cmocka_unit_test(long_names_are_broken),
 	    cmocka_unit_test(text_answers),

@@ -160,7 +160,8 @@ bool plan_sheet_text(FILE *to, const struct plan_view *v, const struct sheet_cha
 	page_put(&p, 0, "%s", "");
 	clocks(&p);
 	sun_and_moon(&p);
-	page_strip(&p);
+	if (!v->run->options->plain) /* it tells by position */
+		page_strip(&p);
 	page_items(&p);
 	page_foot(&p);
 	free(p.lines);
