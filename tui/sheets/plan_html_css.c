@@ -17,7 +17,7 @@
 /* Black on white paper; the night is white there, day and twilights are grey, which saves ink. */
 #define PAPER                                                                                                \
 	"--bg:#fff;--fg:#000;--soft:#222;--line:#777;--card:#fff;--link:#000;--warn:#fff;--warnfg:#000;"     \
-	"--b0:#ccc;--b1:#dadada;--b2:#e6e6e6;--b3:#f2f2f2;--b4:#fff;--rs:#fff;--li:#ccc;--fl:#707070;"          \
+	"--b0:#ccc;--b1:#dadada;--b2:#e6e6e6;--b3:#f2f2f2;--b4:#fff;--rs:#fff;--li:#ccc;--fl:#707070;"       \
 	"--edge:#000;--mo:#ddd;--us:#000;--mi:#000;"
 
 /* clang-format off */
