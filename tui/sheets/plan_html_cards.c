@@ -334,7 +334,7 @@ static void card(struct html_page *p, const struct plan_item_view *item)
 	else
 		joint_card(p, item);
 	if (item->if_missed[0]) {
-		fputs("<p class=\"missed\"><b>If missed:</b> ", p->out.to);
+		fputs("<p class=\"missed\">", p->out.to);
 		html_text(&p->out, item->if_missed);
 		fputs("</p>\n", p->out.to);
 	}
