@@ -59,11 +59,6 @@ void html_item_name(struct html_page *p, const struct plan_item_view *item)
 	}
 }
 
-const char *html_kind(enum event_kind kind)
-{
-	return kind == KIND_TRANSIT ? "transit" : "occultation";
-}
-
 /* --- head --- */
 
 static void date_words(int32_t mjd, char *out, size_t n)
@@ -122,7 +117,7 @@ static void head(struct html_page *p)
 	const struct plan_view *v = p->v;
 	const int32_t mjd = v->night->night.mjd;
 	FILE *to = p->out.to;
-	char evening[64], morning[64];
+	char evening[64], morning[64], standing[300];
 	fputs("<!DOCTYPE html>\n<html lang=\"en\">\n<head>\n<meta charset=\"utf-8\">\n"
 	      "<meta name=\"viewport\" content=\"width=device-width, initial-scale=1\">\n"
 	      "<meta name=\"color-scheme\" content=\"light dark\">\n<title>",
@@ -141,13 +136,10 @@ static void head(struct html_page *p)
 		html_text(&p->out, v->telescope);
 		fputs(". ", to);
 	}
-	if (v->stored) {
-		fputs(v->kept ? "Kept plan, draft " : "Stored plan, draft ", to);
-		html_text(&p->out, v->draft[0] ? v->draft : "main");
-		fprintf(to, ", edition %d.</p>\n", v->edition);
-	} else {
-		fputs("A proposal, not stored.</p>\n", to);
-	}
+	fputs("Plan: ", to);
+	plan_standing_words(v, standing, sizeof standing);
+	html_text(&p->out, standing);
+	fputs(".</p>\n", to);
 	clock_words(p);
 	if (v->moved > 0)
 		fprintf(

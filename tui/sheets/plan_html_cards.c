@@ -6,6 +6,7 @@
 #include "ephem/number_text.h"
 #include "tui/cautions.h"
 #include "tui/parts/columns.h"
+#include "tui/sheets/plan_words.h"
 
 #include <math.h>
 #include <string.h>
@@ -78,11 +79,17 @@ static void fact_magnitude(struct html_page *p, const struct plan_member_view *m
 
 static void fact_chances(struct html_page *p, const struct plan_member_view *m)
 {
-	char in[NUMBER_TEXT_MAX], out[NUMBER_TEXT_MAX], done[NUMBER_TEXT_MAX], text[4 * NUMBER_TEXT_MAX];
-	const bool any = figure(m, "chance_ingress", in) | figure(m, "chance_egress", out) |
-			 figure(m, "chance_done", done);
-	snprintf(text, sizeof text, "ingress %s, egress %s, done %s", in, out, done);
-	fact(p, "Chance in clear weather", any ? text : "not known");
+	static const char *const part[][2] = {
+	    {"ingress", "chance_ingress"}, {"egress", "chance_egress"}, {"done", "chance_done"}};
+	char share[NUMBER_TEXT_MAX], text[4 * NUMBER_TEXT_MAX] = "";
+	for (size_t i = 0; i < sizeof part / sizeof part[0]; i++) {
+		const size_t used = strlen(text);
+		plan_per_cent(m, part[i][1], share);
+		if (share[0])
+			snprintf(text + used, sizeof text - used, "%s%s %s %%", used ? ", " : "", part[i][0],
+				 share);
+	}
+	fact(p, "Chance in clear weather", text[0] ? text : "not known");
 }
 
 static void fact_airmass(struct html_page *p, const struct plan_member_view *m)
@@ -98,34 +105,25 @@ static void fact_airmass(struct html_page *p, const struct plan_member_view *m)
 
 static void fact_moon(struct html_page *p, const struct plan_member_view *m)
 {
-	char apart[NUMBER_TEXT_MAX], alt[NUMBER_TEXT_MAX], text[3 * NUMBER_TEXT_MAX] = "not known";
-	if (figure(m, "moon_sep_deg", apart) && figure(m, "moon_alt_deg", alt))
-		snprintf(text, sizeof text, "%s deg away, itself at %s deg", apart, alt);
+	char apart[NUMBER_TEXT_MAX], alt[NUMBER_TEXT_MAX], lit[NUMBER_TEXT_MAX],
+	    text[4 * NUMBER_TEXT_MAX] = "not known";
+	plan_per_cent(m, "moon_lit", lit);
+	if (figure(m, "moon_sep_deg", apart) && figure(m, "moon_alt_deg", alt) && lit[0])
+		snprintf(text, sizeof text, "%s deg away, %s deg high, %s %% lit", apart, alt, lit);
 	fact(p, "Moon at mid-time", text);
 }
 
 static void fact_usable(struct html_page *p, const struct plan_member_view *m)
 {
-	const char *lost = member_figure(m, "lost_by");
-	char share[NUMBER_TEXT_MAX];
-	(void)figure(m, "coverage", share);
+	char share[NUMBER_TEXT_MAX], lost[512];
+	plan_per_cent(m, "coverage", share);
+	plan_list_words(m, "lost_by", lost, sizeof lost);
 	fact_begin(p, "Usable share");
-	html_text(&p->out, share);
+	html_text(&p->out, share[0] ? share : "not known");
+	fputs(share[0] ? " %" : "", p->out.to);
 	if (lost[0]) {
-		fputs("; lost: ", p->out.to);
-		for (const char *at = lost; *at; at += *at == ';') { /* `part:cause;part:cause` */
-			char part[64];
-			const size_t n = strcspn(at, ";"), colon = strcspn(at, ":;");
-			if (colon < n)
-				snprintf(part, sizeof part, "%s%.*s to %.*s", at == lost ? "" : ", ",
-					 (int)(colon < 24 ? colon : 24), at,
-					 (int)(n - colon - 1 < 24 ? n - colon - 1 : 24), at + colon + 1);
-			else
-				snprintf(part, sizeof part, "%s%.*s", at == lost ? "" : ", ",
-					 (int)(n < 48 ? n : 48), at);
-			html_text(&p->out, part);
-			at += n;
-		}
+		fputs("; lost to ", p->out.to);
+		html_text(&p->out, lost);
 	}
 	fact_end(p);
 }
@@ -161,6 +159,8 @@ static void flag_list(struct html_page *p, const struct plan_member_view *m)
 		for (int f = 0; f < FLAG_COUNT; f++)
 			if (strcmp(flag_rules[f].word, word) == 0)
 				sentence = flag_rules[f].sentence;
+		for (char *c = word; *c; c++)
+			*c = *c == '_' ? ' ' : *c;
 		fputs("<li><b>", p->out.to);
 		html_text(&p->out, word);
 		fprintf(p->out.to, "</b>%s", sentence[0] ? ": " : "");
@@ -252,13 +252,10 @@ static void item_start(struct html_page *p, const struct plan_item_view *item)
 
 static void contacts(struct html_page *p, const struct plan_member_view *m)
 {
-	time_row(p, "T1", m->t1);
-	if (m->has_flat)
-		time_row(p, "T2", m->t2);
-	time_row(p, "Mid", m->mid);
-	if (m->has_flat)
-		time_row(p, "T3", m->t3);
-	time_row(p, "T4", m->t4);
+	struct utc t;
+	for (int c = 0; c < CONTACT_COUNT; c++)
+		if (plan_contact_at(m, (enum plan_contact)c, &t))
+			time_row(p, plan_contact_words[c], t);
 }
 
 /* --- cards --- */
@@ -270,7 +267,7 @@ static void member_name(struct html_page *p, const struct plan_member_view *m)
 		fputs(", ", p->out.to);
 		html_text(&p->out, m->branch);
 	}
-	fprintf(p->out.to, " <small>%s, epoch %ld</small>", html_kind(m->kind), m->epoch);
+	fprintf(p->out.to, " <small>%s, epoch %ld</small>", plan_kind_word(m->kind), m->epoch);
 }
 
 static void item_state(struct html_page *p, const struct plan_item_view *item)
@@ -337,7 +334,7 @@ static void card(struct html_page *p, const struct plan_item_view *item)
 	else
 		joint_card(p, item);
 	if (item->if_missed[0]) {
-		fputs("<p class=\"missed\"><b>If missed:</b> ", p->out.to);
+		fputs("<p class=\"missed\">", p->out.to);
 		html_text(&p->out, item->if_missed);
 		fputs("</p>\n", p->out.to);
 	}
@@ -379,7 +376,7 @@ void plan_html_refused(struct html_page *p)
 		html_local(p, item->start);
 		fputs(" to ", p->out.to);
 		html_local(p, item->end);
-		fputs(": the Sun is up for some of it, so this sheet does not take it.</li>\n", p->out.to);
+		fprintf(p->out.to, ": %s. This sheet does not take it.</li>\n", plan_sun_up_reason);
 	}
 	if (any)
 		fputs("</ul>\n</section>\n", p->out.to);

@@ -69,7 +69,8 @@ const char *const plan_html_css[] = {
     "dl{margin:.8em 0}\n"
     "dl div{display:grid;grid-template-columns:minmax(8.5em,38%) 1fr;gap:8px;padding:2px 0}\n"
     "dt,dd{margin:0}\n"
-    ".flags{font-size:.94em}\n",
+    ".flags{font-size:.94em}\n"
+    ".missed{font-weight:600}\n",
     /* drawings */
     "svg.wide,svg.narrow{display:block;width:100%;height:auto;font:13px system-ui,sans-serif}\n"
     "svg.narrow{display:none;font-size:12px;max-width:560px}\n"

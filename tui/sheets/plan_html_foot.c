@@ -3,6 +3,7 @@
 
 #include "ephem/units.h"
 #include "tui/cautions.h"
+#include "tui/sheets/plan_words.h"
 
 #include <math.h>
 #include <string.h>
@@ -11,13 +12,9 @@
 
 static void block_row(struct html_page *p, const struct plan_block_view *b)
 {
-	static const char *const kind[] = {[BLOCK_SET] = "block",
-					   [BLOCK_STANDING] = "standing block",
-					   [BLOCK_LOST] = "lost",
-					   [BLOCK_POOR] = "poor"};
 	fputs(b->near_sun ? "<tr class=\"sun\"><th scope=\"row\">" : "<tr><th scope=\"row\">", p->out.to);
 	html_text(&p->out, b->text);
-	fprintf(p->out.to, "</th><td>%s", kind[b->kind]);
+	fprintf(p->out.to, "</th><td>%s", plan_block_words[b->kind]);
 	if (b->kind == BLOCK_POOR)
 		fprintf(p->out.to, ", noise %g times", b->noise);
 	fputs("</td><td>", p->out.to);
@@ -67,7 +64,7 @@ void plan_html_left(struct html_page *p)
 		const struct plan_left_view *l = &v->left[i];
 		fputs("<tr><th scope=\"row\">", p->out.to);
 		html_text(&p->out, l->target);
-		fprintf(p->out.to, "</th><td>%s, epoch %ld</td><td>", html_kind(l->kind), l->epoch);
+		fprintf(p->out.to, "</th><td>%s, epoch %ld</td><td>", plan_kind_word(l->kind), l->epoch);
 		html_text(&p->out, l->reason);
 		if (isfinite(l->cost))
 			fprintf(p->out.to, "</td><td>%.2f</td></tr>\n", l->cost);
@@ -84,17 +81,15 @@ static void plan_origin(struct html_page *p)
 {
 	const struct plan_view *v = p->v;
 	FILE *to = p->out.to;
-	if (v->stored) {
-		fprintf(to, "<p>%s plan, draft ", v->kept ? "Kept" : "Stored");
-		html_text(&p->out, v->draft[0] ? v->draft : "main");
-		fprintf(to, ", edition %d, stored ", v->edition);
-	} else {
-		fputs("<p>A proposal that is not stored; the newest change in the store is of ", to);
-	}
-	html_text(&p->out, v->stored_utc[0] ? v->stored_utc : "no time: the store is empty");
-	if (v->who[0]) {
+	char standing[300];
+	plan_standing_words(v, standing, sizeof standing);
+	fputs("<p>Plan: ", to);
+	html_text(&p->out, standing);
+	if (v->stored_utc[0]) {
+		fputs(v->stored ? ", stored " : "; made from data last changed ", to);
+		html_text(&p->out, v->stored_utc);
 		fputs(" by ", to);
-		html_text(&p->out, v->who);
+		html_text(&p->out, v->who[0] ? v->who : "nobody named");
 	}
 	fprintf(to, ".</p>\n<p>Worth %.2f, ", v->worth);
 	if (v->optimal)
@@ -132,6 +127,8 @@ static void limits(struct html_page *p)
 		const size_t n = strcspn(at, "\t");
 		snprintf(pair, sizeof pair, "%.*s", (int)(n < sizeof pair ? n : sizeof pair - 1), at);
 		char *equals = strchr(pair, '=');
+		for (char *c = pair; *c && c != equals; c++)
+			*c = *c == '_' ? ' ' : *c;
 		if (equals)
 			*equals = '\0';
 		fprintf(p->out.to, "%s<span class=\"pair\">", first ? "" : ", ");

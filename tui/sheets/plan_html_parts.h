@@ -28,7 +28,5 @@ void html_local(struct html_page *p, struct utc t);
 void html_utc(struct html_page *p, struct utc t);
 /* Names of an item's targets, joined. */
 void html_item_name(struct html_page *p, const struct plan_item_view *item);
-/* `transit`, `occultation` */
-const char *html_kind(enum event_kind kind);
 
 #endif

@@ -2,7 +2,7 @@
 #include "tui/sheets/plan_html_svg.h"
 
 #include "tui/parts/clock_mark.h"
-#include "tui/sheets/plan_sheet.h"
+#include "tui/sheets/plan_words.h"
 
 #include <math.h>
 #include <string.h>
@@ -134,11 +134,7 @@ void svg_ruler(const struct svg *s, double bottom)
 
 void svg_item_name(const struct svg *s, const struct plan_item_view *item, int columns)
 {
-	char joined[1000] = "";
-	for (size_t i = 0; i < item->n; i++) {
-		const size_t used = strlen(joined);
-		snprintf(joined + used, sizeof joined - used, "%s%s", used ? " + " : "",
-			 item->member[i].target);
-	}
-	html_text_cut(s->out, joined, columns);
+	char names[PLAN_NAMES_BYTES];
+	plan_names(item, names);
+	html_text_cut(s->out, names, columns);
 }
