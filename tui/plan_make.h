@@ -23,6 +23,9 @@ struct plan_wish {
  * for each time that was typed, resolved with its date; NULL when none was. ST_SYNTAX, ST_RANGE: something typed is wrong (exit code 2); ST_ABSENT: a target, draft or telescope that is not there. */
 MUST_USE enum status plan_get(struct run *r, int32_t evening_mjd, const struct plan_wish *wish, struct night_view *night, struct plan_view *out,
 			      char **echo, struct err *e);
+/* An edition of the stored plan `of` as it was, not compared with today; its night is that of `of`, borrowed. ST_ABSENT: `of` is not stored, or has no
+ * such edition. */
+MUST_USE enum status plan_edition(const struct plan_view *of, int edition, struct plan_view *out, struct err *e);
 /* Stores it as a draft (v->draft, or `main`) in a change set of its own; kept as well where keep. */
 MUST_USE enum status plan_save(struct run *r, struct plan_view *v, const char *draft, bool keep, struct err *e);
 /* Marks the item that holds a target (`NAME` or `NAME@EPOCH`) at once, in a change set of its own. */
