@@ -182,6 +182,13 @@ static void times_and_places_are_right(void **state)
 	html_has(card,
 		 "<th scope=\"row\">Leave</th><td><span class=\"time\">01:15 MDT</span> <span "
 		 "class=\"date\">(Thu 23 Apr)</span></td><td><span class=\"time\">07:15 UTC</span></td>");
+	html_has_not(card, "too early");
+	/* the third begins after 470 min, after its T1 of 07:49 UTC */
+	char *third = html_part(text, " id=\"item-3\"", "</article>");
+	html_has(third,
+		 "<th scope=\"row\">T1 <small>too early</small></th><td><span class=\"time\">01:49 MDT");
+	html_has(third, "<th scope=\"row\">T4</th>");
+	free(third);
 	html_has(card, "14:47:36.00 +61:12:00.0");
 	html_has(card, "12.7 in V");
 	html_has(card, "&quot;fine&quot; now, &lt;see log&gt;");

@@ -95,7 +95,7 @@ static void thirty_items_have_room(void **state)
 		assert_labels_apart(svg);
 		free(svg);
 	}
-	char *narrow = html_part(text, "time-n-t", "</svg>");
+	char *narrow = html_part(text, "time-n-t", "<ul class=\"key\"");
 	double before = 0.0;
 	int rows = 0;
 	for (const char *at = narrow; (at = strstr(at, "<text class=\"l\"")); at++, rows++) {

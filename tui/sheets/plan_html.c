@@ -51,6 +51,14 @@ void html_utc(struct html_page *p, struct utc t)
 		html_date(p, u.mjd);
 }
 
+const char *html_outside(const struct html_page *p, const struct plan_item_view *item, struct utc t)
+{
+	const struct leap_table *leap = p->v->night->night.clock.leap;
+	if (utc_diff_s(leap, t, item->start) > 0.0)
+		return "too early";
+	return utc_diff_s(leap, item->end, t) > 0.0 ? "after end" : "";
+}
+
 void html_item_name(struct html_page *p, const struct plan_item_view *item)
 {
 	for (size_t i = 0; i < item->n; i++) {
@@ -181,7 +189,7 @@ static void changes_since(struct html_page *p, const struct sheet_changes *c)
 
 /* --- the order at a glance --- */
 
-static void time_cell(struct html_page *p, const char *name, struct utc t)
+static void time_cell(struct html_page *p, const char *name, struct utc t, const char *remark)
 {
 	char local[SHEET_TIME_BYTES], utc[SHEET_TIME_BYTES];
 	sheet_local(p->v, t, false, local);
@@ -190,7 +198,10 @@ static void time_cell(struct html_page *p, const char *name, struct utc t)
 	html_text(&p->out, local);
 	fputs("</b> <span class=\"ut\">", p->out.to);
 	html_text(&p->out, utc);
-	fputs("</span></td>\n", p->out.to);
+	fputs("</span>", p->out.to);
+	if (remark[0])
+		fprintf(p->out.to, " <small>%s</small>", remark);
+	fputs("</td>\n", p->out.to);
 }
 
 static void summary_row(struct html_page *p, const struct plan_item_view *item)
@@ -211,15 +222,15 @@ static void summary_row(struct html_page *p, const struct plan_item_view *item)
 	for (size_t i = 0; i < item->n; i++)
 		if (i == 0 || utc_diff_s(leap, last, item->member[i].t4) > 0.0)
 			last = item->member[i].t4;
-	time_cell(p, "Slew by", item->slew_by);
-	time_cell(p, "Start", item->start);
+	time_cell(p, "Slew by", item->slew_by, "");
+	time_cell(p, "Start", item->start, "");
 	if (item->n > 0) {
-		time_cell(p, "T1", item->member[0].t1);
-		time_cell(p, "T4", last);
+		time_cell(p, "T1", item->member[0].t1, html_outside(p, item, item->member[0].t1));
+		time_cell(p, "T4", last, html_outside(p, item, last));
 	} else {
 		fputs("<td role=\"cell\"></td><td role=\"cell\"></td>\n", to);
 	}
-	time_cell(p, "Leave", item->end);
+	time_cell(p, "Leave", item->end, "");
 	fputs("</tr>\n", to);
 }
 

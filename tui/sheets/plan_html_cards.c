@@ -228,9 +228,12 @@ static void times_begin(struct html_page *p)
 	      p->out.to);
 }
 
-static void time_row(struct html_page *p, const char *name, struct utc t)
+static void time_row(struct html_page *p, const char *name, struct utc t, const char *remark)
 {
-	fprintf(p->out.to, "<tr><th scope=\"row\">%s</th><td>", name);
+	fprintf(p->out.to, "<tr><th scope=\"row\">%s", name);
+	if (remark[0])
+		fprintf(p->out.to, " <small>%s</small>", remark);
+	fputs("</th><td>", p->out.to);
 	html_local(p, t);
 	fputs("</td><td>", p->out.to);
 	html_utc(p, t);
@@ -244,18 +247,18 @@ static void times_end(struct html_page *p)
 
 static void item_start(struct html_page *p, const struct plan_item_view *item)
 {
-	time_row(p, "Slew by", item->slew_by);
-	time_row(p, "Start", item->start);
+	time_row(p, "Slew by", item->slew_by, "");
+	time_row(p, "Start", item->start, "");
 	if (item->has_latest)
-		time_row(p, "Latest start", item->latest_start);
+		time_row(p, "Latest start", item->latest_start, "");
 }
 
-static void contacts(struct html_page *p, const struct plan_member_view *m)
+static void contacts(struct html_page *p, const struct plan_item_view *item, const struct plan_member_view *m)
 {
 	struct utc t;
 	for (int c = 0; c < CONTACT_COUNT; c++)
 		if (plan_contact_at(m, (enum plan_contact)c, &t))
-			time_row(p, plan_contact_words[c], t);
+			time_row(p, plan_contact_words[c], t, html_outside(p, item, t));
 }
 
 /* --- cards --- */
@@ -293,8 +296,8 @@ static void single_card(struct html_page *p, const struct plan_item_view *item)
 {
 	times_begin(p);
 	item_start(p, item);
-	contacts(p, &item->member[0]);
-	time_row(p, "Leave", item->end);
+	contacts(p, item, &item->member[0]);
+	time_row(p, "Leave", item->end, "");
 	times_end(p);
 	member_facts(p, &item->member[0]);
 }
@@ -303,7 +306,7 @@ static void joint_card(struct html_page *p, const struct plan_item_view *item)
 {
 	times_begin(p);
 	item_start(p, item);
-	time_row(p, "Leave", item->end);
+	time_row(p, "Leave", item->end, "");
 	times_end(p);
 	fputs("<div class=\"members\">\n", p->out.to);
 	for (size_t i = 0; i < item->n; i++) {
@@ -311,7 +314,7 @@ static void joint_card(struct html_page *p, const struct plan_item_view *item)
 		member_name(p, &item->member[i]);
 		fputs("</h4>\n", p->out.to);
 		times_begin(p);
-		contacts(p, &item->member[i]);
+		contacts(p, item, &item->member[i]);
 		times_end(p);
 		member_facts(p, &item->member[i]);
 		fputs("</section>\n", p->out.to);

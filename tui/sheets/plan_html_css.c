@@ -37,7 +37,7 @@ const char *const plan_html_css[] = {
     "a{color:var(--link)}\n"
     ".dates{font-size:1.1rem}\n"
     "small,.ut,.key,dt,.date,thead th{color:var(--soft)}\n"
-    "small{font-weight:normal}\n"
+    "small{font-weight:normal;white-space:nowrap}\n"
     "table{border-collapse:collapse;width:100%;font-variant-numeric:tabular-nums}\n"
     "th,td{text-align:left;vertical-align:top;padding:4px 8px 4px 0;border-bottom:1px solid var(--line)}\n"
     "th{font-weight:600}\n"
@@ -85,6 +85,7 @@ const char *const plan_html_css[] = {
     ".ch{stroke:var(--edge);stroke-width:1.5;stroke-dasharray:6 3}\n"
     ".fr{fill:none;stroke:var(--soft)}\n"
     ".mo{fill:var(--mo);stroke:var(--edge)}\n"
+    ".out{opacity:.35}\n"
     ".hl{stroke:var(--edge);stroke-width:1.6}\n"
     ".bl{stroke:var(--edge)}\n"
     ".bh{opacity:.28}\n"
@@ -113,8 +114,9 @@ const char *const plan_html_css[] = {
     ".order td,.order th{border:0;padding:1px 0}\n"
     ".order td{grid-column:2}\n"
     ".order td.no{grid-column:1;font-weight:700}\n"
-    ".order td:not(.no){display:grid;grid-template-columns:5em 6.4em 1fr}\n"
+    ".order td:not(.no){display:grid;grid-template-columns:4.3em max-content max-content 1fr;gap:0 8px}\n"
     ".of{display:block;color:var(--soft)}\n"
+    ".order td small{white-space:normal}\n"
     ".order .ut{font-size:1em}\n"
     "}\n",
     /* paper */

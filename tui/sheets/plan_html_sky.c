@@ -166,13 +166,14 @@ static void sample(const struct plan_view *v, struct plan_sky *s)
 bool plan_sky_prepare(const struct plan_view *v, struct plan_sky *s)
 {
 	static const double level_deg[SUN_LEVELS] = {-50.0 / 60.0, -6.0, -12.0, -18.0};
-	*s = (struct plan_sky){.step_d = SKY_STEP_MIN / DAY_MIN};
+	*s = (struct plan_sky){.samples = 0};
 	span(v, s);
 	ticks(v, s);
 	for (int i = 0; i < SUN_LEVELS; i++)
 		s->sun[i] = night_sun_below(&v->night->night, level_deg[i]);
 	s->alt_limit_deg = altitude_limit(v);
-	s->samples = 1 + (size_t)((s->to_d - s->from_d) / s->step_d);
+	s->samples = 1 + (size_t)ceil((s->to_d - s->from_d) * DAY_MIN / SKY_STEP_MIN);
+	s->step_d = (s->to_d - s->from_d) / (double)(s->samples - 1);
 	s->track = calloc(v->n_items + 1, sizeof *s->track);
 	s->moon_alt_deg = calloc(s->samples, sizeof *s->moon_alt_deg);
 	if (s->track && s->moon_alt_deg) {

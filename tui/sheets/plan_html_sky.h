@@ -21,7 +21,7 @@ struct plan_sky {
 	double change_d;		  /* the clocks change; NAN: not within the drawn span */
 	struct intervals sun[SUN_LEVELS]; /* below each level */
 	double alt_limit_deg;		  /* of the plan; NAN unknown */
-	size_t samples; /* t_d = from_d + i * step_d, the last at to_d or just short of it */
+	size_t samples; /* at from_d + i * step_d, the last at to_d; at most SKY_STEP_MIN apart */
 	double step_d;
 	double *moon_alt_deg; /* [samples] */
 	size_t *track; /* [n_items]: which row of alt_deg is the item's star; SIZE_MAX: its position is not

@@ -127,6 +127,20 @@ static void member_shape(const struct svg *s, const struct plan_member_view *m, 
 	fprintf(to, "<path class=\"mi\" d=\"M%.1f %.1fV%.1f\"/>\n", mid, top - 2.0, bottom + 2.0);
 }
 
+/* The events of an item and the usable parts of their reserves, a lane each. */
+static void members(const struct svg *s, size_t index, double bar)
+{
+	const struct plan_item_view *item = &s->v->item[index];
+	for (size_t k = 0; k < item->n; k++) {
+		const double top = bar + 2.0 + LANE * (double)k, bottom = top + BAR - 4.0;
+		const struct intervals *usable = &s->sky->usable[s->sky->first_member[index] + k];
+		member_shape(s, &item->member[k], top, bottom);
+		for (int i = 0; i < usable->n; i++)
+			fprintf(s->out->to, "<path class=\"us\" d=\"M%.1f %.1fH%.1f\"/>\n",
+				svg_x(s, usable->s[i].from_d), bottom + 1.0, svg_x(s, usable->s[i].to_d));
+	}
+}
+
 static void item_row(const struct svg *s, size_t index, double *y)
 {
 	const struct plan_item_view *item = &s->v->item[index];
@@ -140,15 +154,22 @@ static void item_row(const struct svg *s, size_t index, double *y)
 	if (s->size == SVG_NARROW)
 		fprintf(to, ", %.5s to %.5s", from, until);
 	label_end(s);
-	const double start = svg_x_utc(s, item->start), slew = svg_x_utc(s, item->slew_by);
-	box(s, "rs", start, svg_x_utc(s, item->end), r.bar, r.bottom);
-	for (size_t k = 0; k < item->n; k++) {
-		const double top = r.bar + 2.0 + LANE * (double)k, bottom = top + BAR - 4.0;
-		const struct intervals *usable = &s->sky->usable[s->sky->first_member[index] + k];
-		member_shape(s, &item->member[k], top, bottom);
-		for (int i = 0; i < usable->n; i++)
-			fprintf(to, "<path class=\"us\" d=\"M%.1f %.1fH%.1f\"/>\n",
-				svg_x(s, usable->s[i].from_d), bottom + 1.0, svg_x(s, usable->s[i].to_d));
+	const double start = svg_x_utc(s, item->start), end = svg_x_utc(s, item->end),
+		     slew = svg_x_utc(s, item->slew_by);
+	/* what lies outside of the item is not observed: it stays pale, and the box cuts off what is drawn in
+	 * full */
+	fputs("<g class=\"out\">\n", to);
+	members(s, index, r.bar);
+	fputs("</g>\n", to);
+	box(s, "rs", start, end, r.bar, r.bottom);
+	if (end > start) {
+		fprintf(to,
+			"<svg x=\"%.1f\" y=\"%.1f\" width=\"%.1f\" height=\"%.1f\" viewBox=\"%.1f %.1f %.1f "
+			"%.1f\">\n",
+			start, r.bar, end - start, r.bottom - r.bar, start, r.bar, end - start,
+			r.bottom - r.bar);
+		members(s, index, r.bar);
+		fputs("</svg>\n", to);
 	}
 	if (start > slew)
 		fprintf(to, "<path class=\"sd\" d=\"M%.1f %.1fH%.1f\"/>\n", slew, (r.bar + r.bottom) / 2.0,
@@ -220,6 +241,7 @@ void plan_svg_key(struct html_out *out)
 		fprintf(out->to, "<li><svg viewBox=\"0 0 36 18\" aria-hidden=\"true\">%s</svg> %s</li>\n",
 			sign[i].drawn, sign[i].words);
 	fputs("<li><span class=\"hk\" aria-hidden=\"true\"></span> hatched: block or lost time</li>\n"
+	      "<li>pale, outside of the box: not observed</li>\n"
 	      "<li><b>C N A</b> civil, nautical, astronomical twilight</li>\n</ul>\n",
 	      out->to);
 }
