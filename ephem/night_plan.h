@@ -24,7 +24,7 @@ struct plan_rules {
 	double filter_d;      /* change of filter (0.5 min) */
 	double first_slew_deg; /* way of a move from where nobody knows the telescope to be (90 deg) */
 	double field_deg;     /* windows whose stars are this close share a pointing; 0: planets of one star only */
-	double limb_share;    /* one limb alone, of the whole event (0.4) */
+	double limb_share;    /* one limb alone, of the whole event (0.2) */
 	double short_share;   /* factor for each baseline that is cut down (0.95) */
 	double unknown_share; /* without a chance: this times the coverage stands for it (0.1) */
 };

@@ -21,7 +21,7 @@ struct plan_rules plan_rules_built_in(void)
 	    .filter_d = 0.5 * MIN_D,
 	    .first_slew_deg = 90.0,
 	    .field_deg = 0.0,
-	    .limb_share = 0.4,
+	    .limb_share = 0.2,
 	    .short_share = 0.95,
 	    .unknown_share = 0.1,
 	};

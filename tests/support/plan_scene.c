@@ -23,6 +23,7 @@ struct plan_scene *scene_open(void)
 		check_fail("%s", e.text);
 	s->free = free_time_whole();
 	s->rules = plan_rules_built_in();
+	s->rules.limb_share = 0.4; /* the scenes are worked out by hand with it */
 	s->input = (struct plan_input){.night = &s->night,
 				       .offer = s->offer,
 				       .fixed = s->fixed,
