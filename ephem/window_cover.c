@@ -10,10 +10,9 @@
 #include <string.h>
 
 #define COVER_WHOLE 0.995 /* a part with less than this has lost something */
-#define DONE_GAP_D                                                                                           \
-	(10.0 * MIN_D + 1e-9) /* a pause that flat part and baselines bear; 10 min of a flip must not miss   \
-				 it by rounding */
-#define NEVER_LISTED 0.0005   /* chance below which nothing is hidden from the observer by not being listed */
+/* a pause that flat part and baselines bear; a flip of 10 min must not miss it by rounding */
+#define DONE_GAP_D (10.0 * MIN_D + 1e-9)
+#define NEVER_LISTED 0.0005 /* chance below which nothing is hidden from the observer by not being listed */
 
 static const struct intervals *sun_set(const struct night *n, double limit_deg, struct sun_sets *suns)
 {
