@@ -333,6 +333,7 @@ static void ten_minutes_are_borne(void **state)
 	t.mount = MOUNT_GERMAN;
 	t.flip_min = 10.0;
 	t.flip_before_min = t.flip_after_min = 20.0;
+	s->night.lst0_rad += 6e-4; /* the transit just before 0.5 d, where times are finer than behind it */
 	for (int x_min = -30; x_min <= 30; x_min++) {
 		for (int k = 0; k < 8; k++) {
 			s->night.lst0_rad += 1e-6; /* another moment of transit */
