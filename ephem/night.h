@@ -31,7 +31,7 @@ struct night_dark {
 
 struct night {
 	const struct site *site;
-	const struct telescope *telescope; /* that it is planned for; borrowed; NULL none. Named in rows; nothing here is computed from it */
+	const struct telescope *telescope; /* that it is planned for; borrowed; NULL none. night_build leaves it so; its mount limits what windows can use */
 	struct earth_clock clock;
 	int32_t mjd;          /* date of the evening */
 	struct tt noon_tt;
@@ -95,6 +95,8 @@ struct star night_star(const struct night *n, const struct target *t);
 struct altaz night_star_altaz(const struct night *n, const struct star *s, double t_d);
 double night_moon_sep_deg(const struct night *n, const struct star *s, double t_d); /* topocentric */
 double night_sun_sep_deg(const struct night *n, const struct star *s, double t_d);
+/* The star's first upper transit of the meridian at or after from_d; within 0.02 s / cos(dec). */
+double night_star_transit_d(const struct night *n, const struct star *s, double from_d);
 /* When the star's airless altitude is above a limit, in [0, length]: closed form in hour angle. */
 struct intervals night_star_above(const struct night *n, const struct star *s, double alt_deg);
 /* When the star's apparent altitude is above the site's horizon mask, in [0, length]; all of it without a mask. Edges to 4 ms; gaps in

@@ -107,6 +107,15 @@ struct intervals night_moon_clear(const struct night *n, const struct star *s, d
 
 /* --- star --- */
 
+double night_star_transit_d(const struct night *n, const struct star *s, double from_d)
+{
+	double ra_rad, dec_rad;
+	vec3_to_angles(s->apparent, &ra_rad, &dec_rad);
+	const double turn_d = TWO_PI / n->lst_rate_rad_d;
+	const double first_d = fmod(ra_rad - n->lst0_rad + 2.0 * TWO_PI, TWO_PI) / n->lst_rate_rad_d;
+	return first_d + turn_d * ceil((from_d - first_d) / turn_d);
+}
+
 struct intervals night_star_above(const struct night *n, const struct star *s, double alt_deg)
 {
 	double ra, dec;

@@ -9,8 +9,8 @@
 #include <string.h>
 
 const char *const part_words[PART_COUNT] = {"before", "ingress", "flat", "egress", "after"};
-const char *const cause_words[CAUSE_COUNT] = {"sun",	   "altitude", "mask",	"moon", "airmass",
-					      "allotment", "cloud",    "block", "noon"};
+const char *const cause_words[CAUSE_COUNT] = {"sun",  "altitude",  "mask",  "moon",  "airmass", "mount",
+					      "flip", "allotment", "cloud", "block", "noon"};
 
 #define SUN_NEAR_DEG 45.0 /* keep-out round the Sun while it is up (common practice, no source) */
 #define PHASE_LOST_SHARE (1.0 / 6.0)
@@ -180,6 +180,31 @@ static void make_sky(struct window *w, const struct target_night *tn)
 	}
 }
 
+static void make_usable(struct window *w, const struct target_night *tn, enum stage stage)
+{
+	window_make_cover(w, tn);
+	if (stage >= STAGE_CHANCE)
+		window_make_chance(w, tn);
+}
+
+/* The flip hangs on the contacts: the sets that it cuts are the window's own, and only a window with one pays
+ * for them. False: there is none. */
+static bool make_flipped(struct window *w, const struct target_night *tn, enum stage stage)
+{
+	struct flip flip;
+	if (!tn->night->telescope || !window_flip(&w->event, tn, &flip))
+		return false;
+	const struct intervals gap = intervals_one(flip.from_d, flip.to_d);
+	struct target_night cut = *tn;
+	cut.has_flip = true;
+	cut.flip = intervals_outside(&gap, 0.0, tn->night->length_d);
+	cut.limb = intervals_and(&tn->limb, &cut.flip);
+	cut.baseline = intervals_and(&tn->baseline, &cut.flip);
+	w->forecast.flip_d = flip.from_d;
+	make_usable(w, &cut, stage);
+	return true;
+}
+
 void window_make(struct window *w, const struct target_night *tn, enum event_kind kind, long epoch,
 		 enum stage stage)
 {
@@ -189,8 +214,6 @@ void window_make(struct window *w, const struct target_night *tn, enum event_kin
 	w->forecast = (struct window_forecast){NAN, NAN, NAN, NAN, NAN, NAN, NAN, NAN};
 	if (stage >= STAGE_SKY)
 		make_sky(w, tn);
-	if (stage >= STAGE_COVER)
-		window_make_cover(w, tn);
-	if (stage >= STAGE_CHANCE)
-		window_make_chance(w, tn);
+	if (stage >= STAGE_COVER && !make_flipped(w, tn, stage))
+		make_usable(w, tn, stage);
 }

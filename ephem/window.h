@@ -41,6 +41,8 @@ enum cause {
 	CAUSE_MASK,
 	CAUSE_MOON,
 	CAUSE_AIRMASS,
+	CAUSE_MOUNT, /* beyond what the telescope's mount can follow */
+	CAUSE_FLIP,  /* the mount changes sides */
 	CAUSE_ALLOTMENT, /* the time is not the team's */
 	CAUSE_CLOUD,     /* lost */
 	CAUSE_BLOCK,     /* taken by a block */
@@ -84,8 +86,9 @@ struct window_cover {
 struct window_chance {
 	double ingress, egress, mid, done;
 };
-struct window_forecast { /* all NAN until a telescope's forecast exists */
-	double flip_d, exposure_s, noise_ppt_min, depth_snr, timing_s, gain_bits, sigma_after_min, worth;
+struct window_forecast { /* all NAN until a telescope's forecast exists; flip_d comes with the cover */
+	double flip_d; /* start of the mount's flip; NAN none */
+	double exposure_s, noise_ppt_min, depth_snr, timing_s, gain_bits, sigma_after_min, worth;
 };
 enum { SIBLINGS_MAX = 8 };
 struct window {
@@ -114,6 +117,8 @@ struct target_night {
 	struct intervals sun_limb, sun_baseline, altitude, mask, airmass, moon; /* allowed by each cause, in [0, length] */
 	const struct free_time *free; /* borrowed; NULL: the whole night */
 	struct intervals limb, baseline; /* allowed by all */
+	bool has_mount, has_flip;        /* whether these hold: limits of the mount; all but the flip, in the copy that a window makes */
+	struct intervals mount, flip;
 };
 /* Sun sets of one night by limit, so that targets with the same limit share one. Start with n = 0 on every night. */
 enum { SUN_SETS_MAX = 8 };

@@ -9,8 +9,9 @@
 #include <stdio.h>
 #include <string.h>
 
-#define COVER_WHOLE 0.995	  /* a part with less than this has lost something */
-#define DONE_GAP_D (10.0 * MIN_D) /* a pause that flat part and baselines bear */
+#define COVER_WHOLE 0.995 /* a part with less than this has lost something */
+/* a pause that flat part and baselines bear; a flip of 10 min must not miss it by rounding */
+#define DONE_GAP_D (10.0 * MIN_D + 1e-9)
 #define NEVER_LISTED 0.0005 /* chance below which nothing is hidden from the observer by not being listed */
 
 static const struct intervals *sun_set(const struct night *n, double limit_deg, struct sun_sets *suns)
@@ -40,7 +41,13 @@ struct target_night target_on_night(const struct night *n, const struct prepared
 				    struct sun_sets *suns, const struct free_time *free)
 {
 	const double *limit = p->limits.value;
-	struct target_night tn = {.night = n, .prepared = p, .star = *s, .free = free};
+	struct target_night tn; /* sets are large: none is cleared before it is filled */
+	tn.night = n;
+	tn.prepared = p;
+	tn.star = *s;
+	tn.free = free;
+	tn.has_mount = n->telescope && mount_limits(n->telescope);
+	tn.has_flip = false;
 	tn.sun_limb = *sun_set(n, limit[LIM_SUN], suns);
 	tn.sun_baseline =
 	    *sun_set(n, isnan(limit[LIM_SUN_BASELINE]) ? limit[LIM_SUN] : limit[LIM_SUN_BASELINE], suns);
@@ -52,6 +59,10 @@ struct target_night target_on_night(const struct night *n, const struct prepared
 	struct intervals sky = intervals_and(&tn.altitude, &tn.airmass);
 	sky = intervals_and(&sky, &tn.mask);
 	sky = intervals_and(&sky, &tn.moon);
+	if (tn.has_mount) {
+		tn.mount = mount_allows(n, s, n->telescope);
+		sky = intervals_and(&sky, &tn.mount);
+	}
 	if (free) {
 		const struct intervals left = free_time_all(free);
 		sky = intervals_and(&sky, &left);
@@ -81,6 +92,8 @@ static enum cause worst_cause(const struct target_night *tn, struct span part, b
 	    [CAUSE_MASK] = &tn->mask,
 	    [CAUSE_MOON] = &tn->moon,
 	    [CAUSE_AIRMASS] = &tn->airmass,
+	    [CAUSE_MOUNT] = tn->has_mount ? &tn->mount : NULL,
+	    [CAUSE_FLIP] = tn->has_flip ? &tn->flip : NULL,
 	    [CAUSE_ALLOTMENT] = tn->free ? &tn->free->allotted : NULL,
 	    [CAUSE_CLOUD] = tn->free ? &tn->free->clear : NULL,
 	    [CAUSE_BLOCK] = tn->free ? &tn->free->unblocked : NULL,
@@ -103,13 +116,10 @@ static enum cause worst_cause(const struct target_night *tn, struct span part, b
 static double least_airmass(const struct target_night *tn, const struct intervals *usable)
 {
 	const struct night *n = tn->night;
-	double ra_rad, dec_rad, best = NAN;
-	vec3_to_angles(tn->star.apparent, &ra_rad, &dec_rad);
-	const double turn_d = TWO_PI / n->lst_rate_rad_d;
-	const double first_d = fmod(ra_rad - n->lst0_rad + 2.0 * TWO_PI, TWO_PI) / n->lst_rate_rad_d;
+	double best = NAN;
 	for (int i = 0; i < usable->n; i++) {
 		const struct span u = usable->s[i];
-		const double culmination_d = first_d + turn_d * ceil((u.from_d - first_d) / turn_d);
+		const double culmination_d = night_star_transit_d(n, &tn->star, u.from_d);
 		const double at[3] = {u.from_d, u.to_d, culmination_d <= u.to_d ? culmination_d : u.to_d};
 		for (int k = 0; k < 3; k++)
 			best = fmin(best, airmass_young(night_star_altaz(n, &tn->star, at[k]).alt_deg));
@@ -128,6 +138,21 @@ static struct intervals usable_between(const struct target_night *tn, const stru
 	for (int i = 0; i < after.n; i++)
 		intervals_append(&all, after.s[i].from_d, after.s[i].to_d);
 	return all;
+}
+
+bool window_flip(const struct window_event *ev, const struct target_night *tn, struct flip *out)
+{
+	if (isnan(mount_flip_d(tn->night->telescope)))
+		return false;
+	const struct intervals usable = usable_between(tn, ev, ev->reserve_start_d, ev->reserve_end_d);
+	const struct flip_event contacts = {.t1_d = ev->t1_d,
+					    .t2_d = ev->t2_d,
+					    .mid_d = ev->mid_d,
+					    .t3_d = ev->t3_d,
+					    .t4_d = ev->t4_d,
+					    .b_min_d = tn->prepared->limits.value[LIM_MIN_BASELINE] * MIN_D,
+					    .pad_d = ev->pad_d};
+	return mount_flip(tn->night, &tn->star, tn->night->telescope, &usable, &contacts, out);
 }
 
 static void base_minutes(struct window_cover *c, const struct target_night *tn, const struct window_event *ev)

@@ -3,8 +3,11 @@
 #ifndef WANE_EPHEM_WINDOW_STAGES_H
 #define WANE_EPHEM_WINDOW_STAGES_H
 
+#include "ephem/mount.h"
 #include "ephem/window.h"
 
+/* Needs the event stage and a night with a telescope. False: it does not flip in this window. */
+bool window_flip(const struct window_event *ev, const struct target_night *tn, struct flip *out);
 /* Need the event stage; cover also fills sky.airmass_min. */
 void window_make_cover(struct window *w, const struct target_night *tn);
 void window_make_chance(struct window *w, const struct target_night *tn);

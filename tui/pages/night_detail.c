@@ -1,6 +1,7 @@
 /* SPDX-License-Identifier: MIT */
 #include "tui/pages/night_detail.h"
 
+#include "ephem/mount.h"
 #include "ephem/number_text.h"
 #include "ephem/units.h"
 
@@ -165,6 +166,21 @@ static void lost_line(struct text_view *v, const struct night_row *row)
 	text_view_addf(v, used ? ROLE_WARN : ROLE_TEXT, INDENT, "Lost   %s", used ? text : "nothing");
 }
 
+/* Nothing without a flip. */
+static void flip_line(struct text_view *v, const struct run *r, const struct night *night,
+		      const struct night_head *head, const struct night_row *row)
+{
+	const struct telescope *t = night->telescope;
+	const double flip_d = row->window->forecast.flip_d;
+	char at[16], takes[NUMBER_TEXT_MAX];
+	if (!t || isnan(flip_d))
+		return;
+	local_text(night, r->zone, flip_d, true, at, sizeof at);
+	number_text(round(mount_flip_d(t) * DAY_MIN * 100.0) / 100.0, takes);
+	text_view_addf(v, ROLE_STRONG, INDENT, "Flip   at %s %s the mount changes sides, for %s min%s", at,
+		       head->zone, takes, isnan(t->flip_min) ? " (usual; not given)" : "");
+}
+
 static void sky_line(struct text_view *v, const struct night_row *row)
 {
 	const struct window *w = row->window;
@@ -239,6 +255,7 @@ void detail_lines(struct text_view *v, int width, bool roomy, const struct run *
 	text_view_start(v, width);
 	be_there_line(v, r, &view->night, head, row);
 	lost_line(v, row);
+	flip_line(v, r, &view->night, head, row);
 	contact_table(v, r, &view->night, head, row);
 	if (roomy)
 		altitude_line(v, &view->night, row);

@@ -42,13 +42,21 @@ const struct row_column row_columns[ROW_CELLS] = {
 };
 
 const char *const cause_phrases[CAUSE_COUNT] = {
-    [CAUSE_SUN] = "the Sun",	 [CAUSE_ALTITUDE] = "low altitude", [CAUSE_MASK] = "the horizon mask",
-    [CAUSE_MOON] = "the Moon",	 [CAUSE_AIRMASS] = "airmass",	    [CAUSE_ALLOTMENT] = "the allotted time",
-    [CAUSE_CLOUD] = "lost time", [CAUSE_BLOCK] = "a block",	    [CAUSE_NOON] = "the neighbouring night",
+    [CAUSE_SUN] = "the Sun",
+    [CAUSE_ALTITUDE] = "low altitude",
+    [CAUSE_MASK] = "the horizon mask",
+    [CAUSE_MOON] = "the Moon",
+    [CAUSE_AIRMASS] = "airmass",
+    [CAUSE_MOUNT] = "the mount",
+    [CAUSE_FLIP] = "the meridian flip",
+    [CAUSE_ALLOTMENT] = "the allotted time",
+    [CAUSE_CLOUD] = "lost time",
+    [CAUSE_BLOCK] = "a block",
+    [CAUSE_NOON] = "the neighbouring night",
 };
 static const char *const cause_short[CAUSE_COUNT] = {
-    [CAUSE_SUN] = "Sun",     [CAUSE_ALTITUDE] = "low", [CAUSE_MASK] = "mask",
-    [CAUSE_MOON] = "Moon",   [CAUSE_AIRMASS] = "air",  [CAUSE_ALLOTMENT] = "time",
+    [CAUSE_SUN] = "Sun",     [CAUSE_ALTITUDE] = "low", [CAUSE_MASK] = "mask", [CAUSE_MOON] = "Moon",
+    [CAUSE_AIRMASS] = "air", [CAUSE_MOUNT] = "mount",  [CAUSE_FLIP] = "flip", [CAUSE_ALLOTMENT] = "time",
     [CAUSE_CLOUD] = "cloud", [CAUSE_BLOCK] = "block",  [CAUSE_NOON] = "noon",
 };
 static const char part_letters[] = "BIFEA";

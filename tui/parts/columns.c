@@ -196,8 +196,9 @@ const struct column columns[] = {
      "Lit share of the Moon at the mid-time."},
     {"sky_mag_arcsec2", "mag/arcsec2", STAGE_FORECAST, N, SKY(sky_mag_arcsec2), NULL, 3, 1, "sky", 4,
      "Brightness of the sky at the target; empty without a forecast."},
-    {"flip_utc", "", STAGE_FORECAST, U, FORECAST(flip_d), NULL, 0, 0, "flip", 5,
-     "When the mount must change sides; empty without a telescope."},
+    {"flip_utc", "", STAGE_COVER, U, FORECAST(flip_d), NULL, 0, 0, "flip", 5,
+     "When a german mount is to begin its meridian flip; empty where one side of its pier reaches all that "
+     "is usable, for other mounts and without a telescope."},
     {"siblings", "", STAGE_EVENT, T, 0, get_siblings, 0, 0, "siblings", 10,
      "Other planets of the star that transit within this reserve."},
     {"depth_ppt", "ppt", STAGE_EVENT, N, EVENT(depth_ppt), NULL, 4, 1, "depth", 5,
