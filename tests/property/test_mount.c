@@ -212,34 +212,40 @@ static void random_event(struct cells *c, struct rng *r)
 	}
 }
 
-/* Place and cost [cells] of a flip of `takes` cells from `at`. */
-static enum flip_place look(const struct cells *c, int at, int takes, int *cost)
+struct look {
+	bool near;
+	enum flip_place place;
+	int cost;
+};
+
+/* What a flip of `takes` cells from `at` does. */
+static struct look look(const struct cells *c, int at, int takes)
 {
-	int of[4] = {0}, usable = 0;
-	for (int i = at; i < at + takes; i++) {
+	int of[4] = {0}, usable = 0, padded = 0;
+	const int to = at + takes;
+	for (int i = at; i < to; i++) {
 		of[c->kind[i]]++;
 		usable += c->usable[i];
 	}
-	const int to = at + takes;
-	*cost = 0;
-	if (of[LIMB] > 0) {
-		*cost = of[LIMB];
-		return FLIP_LIMB;
-	}
+	if (of[LIMB] > 0)
+		return (struct look){true, FLIP_LIMB, of[LIMB]};
 	if (usable == 0)
-		return FLIP_FREE;
+		return (struct look){false, FLIP_FREE, 0};
+	/* cells of the pad that a limb is nearer than */
+	for (int i = 1; i <= c->pad; i++)
+		padded += c->kind[to - 1 + i] == LIMB || c->kind[at - i] == LIMB;
+	int far = c->pad;
+	for (int i = c->pad; i >= 1; i--)
+		if (c->kind[to - 1 + i] == LIMB || c->kind[at - i] == LIMB)
+			far = i - 1;
+	const int lacks = c->pad - far;
 	if (of[OUTSIDE] == takes) {
 		const int spare = at < c->t1 ? c->t1 - c->b - to : at - c->t4 - c->b;
-		*cost = spare < c->pad ? c->pad - spare : 0;
-		return FLIP_OUTSIDE;
+		return (struct look){padded > 0, FLIP_OUTSIDE, spare < c->pad ? c->pad - spare : 0};
 	}
-	if (of[FLAT] == takes) {
-		const int spare = at - c->t2 < c->t3 - to ? at - c->t2 : c->t3 - to;
-		*cost = spare < c->pad ? c->pad - spare : 0;
-		return FLIP_FLAT;
-	}
-	*cost = of[BASELINE];
-	return FLIP_BASELINE;
+	if (of[FLAT] == takes)
+		return (struct look){padded > 0, FLIP_FLAT, lacks};
+	return (struct look){padded > 0, FLIP_BASELINE, of[BASELINE] + lacks};
 }
 
 static double cell_d(const struct flip_event *origin, int cell)
@@ -247,25 +253,26 @@ static double cell_d(const struct flip_event *origin, int cell)
 	return origin->mid_d + (cell - MERIDIAN) * 10.0 / DAY_S;
 }
 
-/* The best of all starts, one by one: the place, what it costs, how far away, the earlier one. */
-static int best_start(const struct cells *c, int earliest, int latest, int takes, enum flip_place *place,
-		      int *cost)
+static int rank(struct look l)
 {
-	int best = -1, best_cost = 0;
-	enum flip_place best_place = FLIP_LIMB;
-	for (int at = earliest; at <= latest; at++) {
-		int now_cost;
-		const enum flip_place now = look(c, at, takes, &now_cost);
-		if (best < 0 || now < best_place || (now == best_place && now_cost < best_cost) ||
-		    (now == best_place && now_cost == best_cost &&
-		     abs(at - MERIDIAN) < abs(best - MERIDIAN))) {
+	return l.place == FLIP_LIMB ? 100 : (l.near ? 50 : 0) + (int)l.place;
+}
+
+/* The best of all starts, one by one: what it touches, the place, what it costs, how far away, the earlier
+ * one. */
+static int best_start(const struct cells *c, int earliest, int latest, int takes, struct look *what)
+{
+	int best = earliest;
+	*what = look(c, earliest, takes);
+	for (int at = earliest + 1; at <= latest; at++) {
+		const struct look now = look(c, at, takes);
+		const bool same = rank(now) == rank(*what);
+		if (rank(now) < rank(*what) || (same && now.cost < what->cost) ||
+		    (same && now.cost == what->cost && abs(at - MERIDIAN) < abs(best - MERIDIAN))) {
 			best = at;
-			best_place = now;
-			best_cost = now_cost;
+			*what = now;
 		}
 	}
-	*place = best_place;
-	*cost = best_cost;
 	return best;
 }
 
@@ -276,7 +283,7 @@ static void every_place(void **state)
 	struct scene *s = malloc(sizeof *s);
 	struct cells *c = malloc(sizeof *c);
 	assert_true(s && c);
-	int seen[FLIP_LIMB + 1] = {0};
+	int seen[FLIP_LIMB + 1] = {0}, near = 0;
 	for (int i = 0; i < 2000; i++) {
 		struct telescope t = telescope_empty();
 		struct flip flip;
@@ -304,21 +311,22 @@ static void every_place(void **state)
 		for (int k = 0; k < CELLS; k++)
 			if (c->usable[k])
 				intervals_append(&usable, cell_d(&origin, k), cell_d(&origin, k + 1));
-		enum flip_place place;
-		int cost, now_cost;
-		const int best = best_start(c, MERIDIAN - before, MERIDIAN + after, takes, &place, &cost);
+		struct look want;
+		const int best = best_start(c, MERIDIAN - before, MERIDIAN + after, takes, &want);
 		assert_true(mount_flip(&s->night, &s->star, &t, &usable, &ev, &flip));
 		const double at = (flip.from_d - origin.mid_d) * DAY_S / 10.0 + MERIDIAN;
 		const int got = (int)lround(at);
 		check_close("a start in whole cells", at, got, 1e-3);
-		seen[place]++;
-		if (got != best || flip.place != place)
+		seen[want.place]++;
+		near += want.near && want.place != FLIP_LIMB;
+		if (got != best || flip.place != want.place)
 			check_fail("loop %d: starts at %d in place %d, best %d in place %d, cost %d (got %d)",
-				   i, got - MERIDIAN, (int)flip.place, best - MERIDIAN, (int)place, cost,
-				   (look(c, got, takes, &now_cost), now_cost));
+				   i, got - MERIDIAN, (int)flip.place, best - MERIDIAN, (int)want.place,
+				   want.cost, look(c, got, takes).cost);
 	}
 	free(c);
 	free(s);
+	assert_true(near > 20);
 	for (int k = FLIP_FREE; k <= FLIP_LIMB; k++)
 		if (seen[k] < 20)
 			check_fail("place %d was seen %d times", k, seen[k]);
