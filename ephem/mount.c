@@ -66,80 +66,88 @@ double mount_flip_d(const struct telescope *t)
 	return (isnan(t->flip_min) ? FLIP_USUAL_MIN : t->flip_min) * MIN_D;
 }
 
+/* One start, and how good it is. */
+struct start {
+	double from_d;
+	bool near; /* nearer to a limb than the pad */
+	enum flip_place place;
+	double cost_d, away_d;
+};
 struct placing {
 	const struct intervals *usable;
 	const struct flip_event *ev;
 	double meridian_d, earliest_d, latest_d, length_d;
 	double in_end_d, out_start_d; /* where the limbs end and begin towards the middle */
-	/* the best so far */
 	bool found;
-	double from_d, cost_d, away_d;
-	enum flip_place place;
+	struct start best;
 };
-
-static bool touches(double from_d, double to_d, double start_d, double end_d)
-{
-	return from_d < end_d - SAME_D && to_d > start_d + SAME_D;
-}
 
 static double common_d(double from_d, double to_d, double start_d, double end_d)
 {
 	return fmax(fmin(to_d, end_d) - fmax(from_d, start_d), 0.0);
 }
 
-/* What a flip in [from, to] takes: where it lies, and how bad it is there. */
-static enum flip_place weigh(const struct placing *p, double from_d, double to_d, double *cost_d)
+/* Time between two spans; below 0 where they overlap. */
+static double between_d(double from_d, double to_d, double start_d, double end_d)
+{
+	return fmax(start_d - to_d, from_d - end_d);
+}
+
+/* Fills place, near and cost of a start. */
+static void weigh(const struct placing *p, struct start *s)
 {
 	const struct flip_event *ev = p->ev;
 	const double first_d = ev->t1_d - ev->b_min_d, last_d = ev->t4_d + ev->b_min_d;
-	if (touches(from_d, to_d, ev->t1_d, p->in_end_d) || touches(from_d, to_d, p->out_start_d, ev->t4_d)) {
-		*cost_d = common_d(from_d, to_d, ev->t1_d, p->in_end_d) +
-			  common_d(from_d, to_d, p->out_start_d, ev->t4_d);
-		return FLIP_LIMB;
+	const double from_d = s->from_d, to_d = from_d + p->length_d;
+	const double spare_d = fmin(between_d(from_d, to_d, ev->t1_d, p->in_end_d),
+				    between_d(from_d, to_d, p->out_start_d, ev->t4_d));
+	const double short_d = fmax(ev->pad_d - spare_d, 0.0);
+	s->near = short_d > SAME_D;
+	s->place = FLIP_BASELINE;
+	s->cost_d =
+	    short_d + common_d(from_d, to_d, first_d, ev->t1_d) + common_d(from_d, to_d, ev->t4_d, last_d);
+	if (spare_d < -SAME_D) {
+		s->place = FLIP_LIMB;
+		s->cost_d = common_d(from_d, to_d, ev->t1_d, p->in_end_d) +
+			    common_d(from_d, to_d, p->out_start_d, ev->t4_d);
+	} else if (intervals_overlap(p->usable, from_d, to_d) <= SAME_D) {
+		s->place = FLIP_FREE;
+		s->near = false; /* nothing is lost if the limb comes there */
+		s->cost_d = 0.0;
+	} else if (to_d <= first_d + SAME_D || from_d >= last_d - SAME_D) {
+		s->place = FLIP_OUTSIDE;
+		s->cost_d = fmax(ev->pad_d - between_d(from_d, to_d, first_d, last_d), 0.0);
+	} else if (from_d >= p->in_end_d - SAME_D && to_d <= p->out_start_d + SAME_D) {
+		s->place = FLIP_FLAT;
+		s->cost_d = short_d;
 	}
-	*cost_d = 0.0;
-	if (intervals_overlap(p->usable, from_d, to_d) <= SAME_D)
-		return FLIP_FREE;
-	if (to_d <= first_d + SAME_D || from_d >= last_d - SAME_D) {
-		const double spare_d = fmax(first_d - to_d, from_d - last_d);
-		*cost_d = fmax(ev->pad_d - spare_d, 0.0);
-		return FLIP_OUTSIDE;
-	}
-	if (from_d >= p->in_end_d - SAME_D && to_d <= p->out_start_d + SAME_D) {
-		const double spare_d = fmin(from_d - p->in_end_d, p->out_start_d - to_d);
-		*cost_d = fmax(ev->pad_d - spare_d, 0.0);
-		return FLIP_FLAT;
-	}
-	*cost_d = common_d(from_d, to_d, first_d, ev->t1_d) + common_d(from_d, to_d, ev->t4_d, last_d);
-	return FLIP_BASELINE;
 }
 
-static bool better(const struct placing *p, enum flip_place place, double cost_d, double away_d,
-		   double from_d)
+static bool better(const struct start *a, const struct start *b)
 {
-	if (!p->found || place != p->place)
-		return !p->found || place < p->place;
-	if (fabs(cost_d - p->cost_d) > SAME_D)
-		return cost_d < p->cost_d;
-	if (fabs(away_d - p->away_d) > SAME_D)
-		return away_d < p->away_d;
-	return from_d < p->from_d - SAME_D;
+	const bool a_limb = a->place == FLIP_LIMB, b_limb = b->place == FLIP_LIMB;
+	if (a_limb != b_limb)
+		return b_limb;
+	if (!a_limb && a->near != b->near)
+		return b->near;
+	if (a->place != b->place)
+		return a->place < b->place;
+	if (fabs(a->cost_d - b->cost_d) > SAME_D)
+		return a->cost_d < b->cost_d;
+	if (fabs(a->away_d - b->away_d) > SAME_D)
+		return a->away_d < b->away_d;
+	return a->from_d < b->from_d - SAME_D;
 }
 
 static void try_start(struct placing *p, double from_d)
 {
-	double cost_d;
+	struct start s = {.from_d = from_d, .away_d = fabs(from_d - p->meridian_d)};
 	if (!(from_d >= p->earliest_d && from_d <= p->latest_d)) /* NAN too */
 		return;
-	const enum flip_place place = weigh(p, from_d, from_d + p->length_d, &cost_d);
-	const double away_d = fabs(from_d - p->meridian_d);
-	if (!better(p, place, cost_d, away_d, from_d))
-		return;
+	weigh(p, &s);
+	if (!p->found || better(&s, &p->best))
+		p->best = s;
 	p->found = true;
-	p->from_d = from_d;
-	p->place = place;
-	p->cost_d = cost_d;
-	p->away_d = away_d;
 }
 
 /* Place, cost and distance change their course only where an end of the flip meets an edge, at the ends of
@@ -148,16 +156,16 @@ static void try_all(struct placing *p)
 {
 	const struct flip_event *ev = p->ev;
 	const double first_d = ev->t1_d - ev->b_min_d, last_d = ev->t4_d + ev->b_min_d;
-	const double edge[] = {
-	    first_d - ev->pad_d,	first_d,	ev->t1_d, p->in_end_d, p->in_end_d + ev->pad_d,
-	    p->out_start_d - ev->pad_d, p->out_start_d, ev->t4_d, last_d,      last_d + ev->pad_d};
+	const double edge[] = {first_d, ev->t1_d, p->in_end_d, p->out_start_d, ev->t4_d, last_d};
 	try_start(p, p->meridian_d);
 	try_start(p, p->earliest_d);
 	try_start(p, p->latest_d);
 	try_start(p, 0.5 * (p->in_end_d + p->out_start_d - p->length_d));
 	for (size_t i = 0; i < sizeof edge / sizeof edge[0]; i++) {
 		try_start(p, edge[i]);
+		try_start(p, edge[i] + ev->pad_d); /* begins so long after it */
 		try_start(p, edge[i] - p->length_d);
+		try_start(p, edge[i] - ev->pad_d - p->length_d);
 	}
 	for (int i = 0; i < p->usable->n; i++) { /* the gaps between the spans */
 		try_start(p, p->usable->s[i].to_d);
@@ -187,6 +195,6 @@ bool mount_flip(const struct night *n, const struct star *s, const struct telesc
 			    .in_end_d = flat ? ev->t2_d : ev->mid_d,
 			    .out_start_d = flat ? ev->t3_d : ev->mid_d};
 	try_all(&p);
-	*out = (struct flip){p.from_d, p.from_d + length_d, meridian_d, p.place};
+	*out = (struct flip){p.best.from_d, p.best.from_d + length_d, meridian_d, p.best.place};
 	return true;
 }

@@ -39,9 +39,10 @@ struct flip {
 	enum flip_place place;
 };
 /* Places the flip of a window. usable: the usable time of its reserve, flip apart. False when none is needed: another mount, or one side of the pier reaches
- * from the first usable moment to the last. Else it begins within [-flip_before_min, flip_after_min] of the meridian, in the best place that this leaves. In
- * a place: outside and in the flat part as much of the pad as can be kept free next to the contacts, in a baseline or a limb as little taken of it as can be;
- * then as near to the meridian as possible; then the earlier one. */
+ * from the first usable moment to the last. Else it begins within [-flip_before_min, flip_after_min] of the meridian. Of the starts that this leaves, first
+ * those that keep the pad between the flip and the limbs (a contact may come early or late), then those that take no limb at the predicted times, last a limb;
+ * among them in the order of enum flip_place; then outside as much of the pad as can be also kept clear of T1 - b_min and T4 + b_min, and elsewhere as little
+ * taken of baseline, pad or limb as can be; then as near to the meridian as possible; then the earlier one. */
 bool mount_flip(const struct night *n, const struct star *s, const struct telescope *t, const struct intervals *usable, const struct flip_event *ev,
 		struct flip *out);
 

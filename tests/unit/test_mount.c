@@ -112,45 +112,49 @@ static void limits_by_hand(void **state)
 #define GRAZING -20, NAN, 0, NAN, 20
 #define ALL -200, 200, NAN, NAN
 
-/* Usable, flip_min, allowance before and after, T1, T2, mid, T3, T4 -> start and place. b_min 15, pad 16. by
+/* Usable, flip_min, allowance before and after, T1, T2, mid, T3, T4, pad -> start and place. b_min 15. by
  * hand: an end of the flip against T1 - 15 - 16, T1 - 15, T1, ... */
 static const struct {
 	const char *what;
-	double usable[4], flip_min, before_min, after_min, t[5], want_min;
+	double usable[4], flip_min, before_min, after_min, t[5], pad_min, want_min;
 	enum flip_place place;
 } flip_rows[] = {
-    {"long before the event", {ALL}, 8, 0, 0, {LONG_BEFORE}, 0, FLIP_OUTSIDE},
-    {"long after it", {ALL}, 8, 0, 0, {LONG_AFTER}, 0, FLIP_OUTSIDE},
-    {"stays on the meridian though it need not", {ALL}, 8, 60, 60, {LONG_BEFORE}, 0, FLIP_OUTSIDE},
-    {"no allowance: in the ingress", {ALL}, 8, 0, 0, {IN_INGRESS}, 0, FLIP_LIMB},
-    {"before the ingress, clear of the pad", {ALL}, 8, 60, 0, {IN_INGRESS}, -49, FLIP_OUTSIDE},
-    {"before it, with as much of the pad as there is", {ALL}, 8, 35, 0, {IN_INGRESS}, -35, FLIP_OUTSIDE},
-    {"in the baseline, as little as can be", {ALL}, 8, 30, 0, {IN_INGRESS}, -30, FLIP_BASELINE},
-    {"in the baseline, all the same", {ALL}, 8, 20, 0, {IN_INGRESS}, -18, FLIP_BASELINE},
-    {"in the flat part, clear of the pad", {ALL}, 8, 0, 30, {IN_INGRESS}, 26, FLIP_FLAT},
-    {"in the flat part, as late as it may", {ALL}, 8, 0, 15, {IN_INGRESS}, 15, FLIP_FLAT},
-    {"baseline before flat part", {ALL}, 8, 20, 30, {IN_INGRESS}, -18, FLIP_BASELINE},
-    {"a limb, as little as can be", {ALL}, 8, 12, 8, {IN_INGRESS}, 8, FLIP_LIMB},
-    {"in the flat part", {ALL}, 8, 0, 0, {IN_FLAT}, 0, FLIP_FLAT},
-    {"after the egress, clear of the pad", {ALL}, 8, 0, 100, {IN_FLAT}, 91, FLIP_OUTSIDE},
-    {"after it, as late as it may", {ALL}, 8, 0, 80, {IN_FLAT}, 80, FLIP_OUTSIDE},
-    {"before the ingress is nearer", {ALL}, 8, 110, 110, {IN_FLAT}, 91, FLIP_OUTSIDE},
-    {"in the middle of a short flat part", {ALL}, 8, 5, 5, {SHORT_FLAT}, -3, FLIP_FLAT},
-    {"grazing: after the egress", {ALL}, 8, 0, 60, {GRAZING}, 51, FLIP_OUTSIDE},
-    {"grazing: in the baseline", {ALL}, 8, 0, 30, {GRAZING}, 30, FLIP_BASELINE},
-    {"grazing: in a limb", {ALL}, 8, 0, 10, {GRAZING}, 0, FLIP_LIMB},
-    {"in time that is lost anyway", {-200, 5, 20, 200}, 8, 0, 30, {IN_FLAT}, 5, FLIP_FREE},
-    {"before the gap's end", {-200, -30, -12, 200}, 8, 40, 0, {IN_FLAT}, -20, FLIP_FREE},
-    {"lost time in a limb is a limb", {-200, 45, 60, 200}, 8, 0, 55, {IN_FLAT}, 0, FLIP_FLAT},
-    {"a flip that takes no time", {ALL}, 0, 0, 30, {IN_INGRESS}, 10, FLIP_FREE},
-    {"not given: 5 min, no allowance", {ALL}, NAN, NAN, NAN, {IN_FLAT}, 0, FLIP_FLAT},
+    {"long before the event", {ALL}, 8, 0, 0, {LONG_BEFORE}, 16, 0, FLIP_OUTSIDE},
+    {"long after it", {ALL}, 8, 0, 0, {LONG_AFTER}, 16, 0, FLIP_OUTSIDE},
+    {"stays on the meridian though it need not", {ALL}, 8, 60, 60, {LONG_BEFORE}, 16, 0, FLIP_OUTSIDE},
+    {"no allowance: in the ingress", {ALL}, 8, 0, 0, {IN_INGRESS}, 16, 0, FLIP_LIMB},
+    {"before the ingress, clear of the pad", {ALL}, 8, 60, 0, {IN_INGRESS}, 16, -49, FLIP_OUTSIDE},
+    {"before it, with as much of the pad as there is", {ALL}, 8, 35, 0, {IN_INGRESS}, 16, -35, FLIP_OUTSIDE},
+    {"in the baseline, as little as can be", {ALL}, 8, 30, 0, {IN_INGRESS}, 16, -30, FLIP_BASELINE},
+    {"in the baseline, away from the limb", {ALL}, 8, 20, 0, {IN_INGRESS}, 16, -20, FLIP_BASELINE},
+    {"in the flat part, clear of the pad", {ALL}, 8, 0, 30, {IN_INGRESS}, 16, 26, FLIP_FLAT},
+    {"in the flat part, as late as it may", {ALL}, 8, 0, 15, {IN_INGRESS}, 16, 15, FLIP_FLAT},
+    {"flat part rather than just before T1", {ALL}, 8, 20, 30, {IN_INGRESS}, 16, 26, FLIP_FLAT},
+    {"baseline rather than flat part, both clear", {ALL}, 8, 30, 40, {IN_INGRESS}, 5, -30, FLIP_BASELINE},
+    {"just before T1, contacts exact", {ALL}, 8, 20, 30, {IN_INGRESS}, 0, -18, FLIP_BASELINE},
+    {"flat part rather than outside but near", {ALL}, 8, 90, 0, {IN_FLAT}, 30, 0, FLIP_FLAT},
+    {"outside, clear of the limb if not of b_min", {ALL}, 8, 100, 0, {IN_FLAT}, 30, -100, FLIP_OUTSIDE},
+    {"a limb, as little as can be", {ALL}, 8, 12, 8, {IN_INGRESS}, 16, 8, FLIP_LIMB},
+    {"in the flat part", {ALL}, 8, 0, 0, {IN_FLAT}, 16, 0, FLIP_FLAT},
+    {"after the egress, clear of the pad", {ALL}, 8, 0, 100, {IN_FLAT}, 16, 91, FLIP_OUTSIDE},
+    {"after it, as late as it may", {ALL}, 8, 0, 80, {IN_FLAT}, 16, 80, FLIP_OUTSIDE},
+    {"before the ingress is nearer", {ALL}, 8, 110, 110, {IN_FLAT}, 16, 91, FLIP_OUTSIDE},
+    {"in the middle of a short flat part", {ALL}, 8, 5, 5, {SHORT_FLAT}, 16, -3, FLIP_FLAT},
+    {"grazing: after the egress", {ALL}, 8, 0, 60, {GRAZING}, 16, 51, FLIP_OUTSIDE},
+    {"grazing: in the baseline", {ALL}, 8, 0, 30, {GRAZING}, 16, 30, FLIP_BASELINE},
+    {"grazing: in a limb", {ALL}, 8, 0, 10, {GRAZING}, 16, 0, FLIP_LIMB},
+    {"in time that is lost anyway", {-200, 5, 20, 200}, 8, 0, 30, {IN_FLAT}, 16, 5, FLIP_FREE},
+    {"before the gap's end", {-200, -30, -12, 200}, 8, 40, 0, {IN_FLAT}, 16, -20, FLIP_FREE},
+    {"lost time in a limb is a limb", {-200, 45, 60, 200}, 8, 0, 55, {IN_FLAT}, 16, 0, FLIP_FLAT},
+    {"a flip that takes no time", {ALL}, 0, 0, 30, {IN_INGRESS}, 16, 10, FLIP_FREE},
+    {"not given: 5 min, no allowance", {ALL}, NAN, NAN, NAN, {IN_FLAT}, 16, 0, FLIP_FLAT},
     /* one side of the pier reaches all that is usable */
-    {"the east side until the end", {-200, 40, NAN, NAN}, 8, 0, 50, {IN_FLAT}, NAN, FLIP_FREE},
-    {"the west side from the start", {-30, 200, NAN, NAN}, 8, 40, 0, {IN_FLAT}, NAN, FLIP_FREE},
-    {"usable only west of the meridian", {10, 200, NAN, NAN}, 8, 0, 0, {IN_FLAT}, NAN, FLIP_FREE},
-    {"only east of it", {-200, -10, NAN, NAN}, 8, 0, 0, {IN_FLAT}, NAN, FLIP_FREE},
-    {"until the meridian itself", {-200, 0, NAN, NAN}, 8, 0, 0, {IN_FLAT}, NAN, FLIP_FREE},
-    {"nothing usable", {NAN, NAN, NAN, NAN}, 8, 0, 0, {IN_FLAT}, NAN, FLIP_FREE},
+    {"the east side until the end", {-200, 40, NAN, NAN}, 8, 0, 50, {IN_FLAT}, 16, NAN, FLIP_FREE},
+    {"the west side from the start", {-30, 200, NAN, NAN}, 8, 40, 0, {IN_FLAT}, 16, NAN, FLIP_FREE},
+    {"usable only west of the meridian", {10, 200, NAN, NAN}, 8, 0, 0, {IN_FLAT}, 16, NAN, FLIP_FREE},
+    {"only east of it", {-200, -10, NAN, NAN}, 8, 0, 0, {IN_FLAT}, 16, NAN, FLIP_FREE},
+    {"until the meridian itself", {-200, 0, NAN, NAN}, 8, 0, 0, {IN_FLAT}, 16, NAN, FLIP_FREE},
+    {"nothing usable", {NAN, NAN, NAN, NAN}, 8, 0, 0, {IN_FLAT}, 16, NAN, FLIP_FREE},
 };
 
 static double at_d(double from_meridian_min)
@@ -172,8 +176,13 @@ static void flips_by_hand(void **state)
 		struct flip flip = {NAN, NAN, NAN, FLIP_FREE};
 		struct intervals usable = intervals_one(at_d(u[0]), at_d(u[1]));
 		intervals_append(&usable, at_d(u[2]), at_d(u[3]));
-		const struct flip_event ev = {at_d(c[0]), at_d(c[1]),	at_d(c[2]),  at_d(c[3]),
-					      at_d(c[4]), 15.0 * MIN_D, 16.0 * MIN_D};
+		const struct flip_event ev = {at_d(c[0]),
+					      at_d(c[1]),
+					      at_d(c[2]),
+					      at_d(c[3]),
+					      at_d(c[4]),
+					      15.0 * MIN_D,
+					      flip_rows[i].pad_min * MIN_D};
 		t.flip_min = flip_rows[i].flip_min;
 		t.flip_before_min = flip_rows[i].before_min;
 		t.flip_after_min = flip_rows[i].after_min;
