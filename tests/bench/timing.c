@@ -69,11 +69,11 @@ int main(void)
 {
 	static struct window_input w[WINDOWS];
 	uint64_t state = 20270201u * 0x9E3779B97F4A7C15u | 1u;
-	double got[WINDOWS], off = 0.0, start = processor_s();
+	double got[WINDOWS], off = 0.0;
 	volatile double keep = 0.0;
 	for (int i = 0; i < WINDOWS; i++)
 		invent(&w[i], &state);
-	start = processor_s();
+	double start = processor_s();
 	for (int again = 0; again < AGAIN; again++)
 		for (int i = 0; i < WINDOWS; i++)
 			keep = got[i] = timing_mid_s(&w[i].in, 0.001);

@@ -59,12 +59,37 @@ static int random_noise(struct rng *r, struct noise_node node[8])
 	return n;
 }
 
+struct tally {
+	int measured, nothing, flips;
+	double worst;
+};
+
+/* One window; beyond 10 min next to nothing has been seen, and both say so. */
+static void compare(const struct timing_input *in, double mid_d, int row, struct tally *tally)
+{
+	const double got = timing_mid_s(in, mid_d);
+	double want = timing_sum_s(in, mid_d, 0.02);
+	/* a corner of the event alone: the sum has to look closer */
+	if (got < 600.0 && !(fabs(got / want - 1.0) < 0.01))
+		want = timing_sum_s(in, mid_d, 0.002);
+	if (!(got < 600.0)) {
+		if (!(want > 400.0))
+			check_fail("row %d: %g s, by the sum %g s", row, got, want);
+		tally->nothing++;
+		return;
+	}
+	if (!(fabs(got / want - 1.0) < 0.01))
+		check_fail("row %d: %g s, by the sum %g s", row, got, want);
+	tally->worst = fmax(tally->worst, fabs(got / want - 1.0));
+	tally->measured++;
+	tally->flips += !isnan(in->flip_d);
+}
+
 static void random_windows(void **state)
 {
 	(void)state;
 	struct rng r = rng_open("random_windows");
-	int measured = 0, nothing = 0, flips = 0;
-	double worst = 0.0;
+	struct tally tally = {0};
 	for (int i = 0; i < 120; i++) {
 		const struct timing_event e = random_event(&r);
 		const struct intervals usable = random_spans(&r, &e);
@@ -73,28 +98,39 @@ static void random_windows(void **state)
 		in.n = random_noise(&r, node);
 		if (rng_unit(&r) < 0.4)
 			in.flip_d = rng_between(&r, e.t1_d, e.t4_d);
-		const double mid_d = rng_between(&r, -20.0, 20.0) * MIN_D;
-		const double got = timing_mid_s(&in, mid_d);
-		double want = timing_sum_s(&in, mid_d, 0.02);
-		/* a corner of the event alone: the sum has to look closer */
-		if (got < 600.0 && !(fabs(got / want - 1.0) < 0.01))
-			want = timing_sum_s(&in, mid_d, 0.002);
-		/* beyond 10 min next to nothing has been seen, and both say so */
-		if (!(got < 600.0)) {
-			if (!(want > 400.0))
-				check_fail("row %d: %g s, by the sum %g s", i, got, want);
-			nothing++;
-			continue;
-		}
-		worst = fmax(worst, fabs(got / want - 1.0));
-		if (!(fabs(got / want - 1.0) < 0.01))
-			check_fail("row %d: %g s, by the sum %g s", i, got, want);
-		measured++;
-		flips += !isnan(in.flip_d);
+		compare(&in, rng_between(&r, -20.0, 20.0) * MIN_D, i, &tally);
 	}
-	print_message("windows: %d measured, %d not; farthest from the sum %.3f %%\n", measured, nothing,
-		      100.0 * worst);
-	assert_true(measured > 60 && nothing > 1 && flips > 15);
+	print_message("windows: %d measured, %d not; farthest from the sum %.3f %%\n", tally.measured,
+		      tally.nothing, 100.0 * tally.worst);
+	assert_true(tally.measured > 60 && tally.nothing > 1 && tally.flips > 15);
+}
+
+/* More data never make a mid-time worse, nor does knowing something beforehand. */
+static void more_is_never_worse(void **state)
+{
+	(void)state;
+	struct rng r = rng_open("more_is_never_worse");
+	for (int i = 0; i < 3000; i++) {
+		struct timing_event e = random_event(&r);
+		const struct intervals usable = random_spans(&r, &e);
+		const struct intervals other = random_spans(&r, &e), more = intervals_or(&usable, &other);
+		struct noise_node node[8];
+		struct timing_input in = {.event = &e, .usable = &usable, .node = node, .flip_d = NAN};
+		in.n = random_noise(&r, node);
+		const double mid_d = rng_between(&r, -20.0, 20.0) * MIN_D, base = timing_mid_s(&in, mid_d);
+		in.usable = &more;
+		const double longer = timing_mid_s(&in, mid_d);
+		/* a percent is the integral's own */
+		if (!(base > 0.0 && longer > 0.0) || (base < 3600.0 && !(longer <= 1.01 * base)))
+			check_fail("row %d: %g s, with more data %g s", i, base, longer);
+		in.usable = &usable;
+		e.duration_err_d *= 0.5;
+		e.depth_err_ppt = fmin(e.depth_err_ppt, 0.05 * e.depth_ppt);
+		e.slope_err_ppt_h = 0.0;
+		const double knowing = timing_mid_s(&in, mid_d);
+		if (!(knowing <= base * (1.0 + 1e-9)))
+			check_fail("row %d: %g s, knowing more %g s", i, base, knowing);
+	}
 }
 
 /* --- against fits of simulated light curves --- */
@@ -262,6 +298,7 @@ static void fits_scatter_as_forecast(void **state)
 int main(void)
 {
 	const struct CMUnitTest tests[] = {cmocka_unit_test(random_windows),
+					   cmocka_unit_test(more_is_never_worse),
 					   cmocka_unit_test(fits_scatter_as_forecast)};
 	return cmocka_run_group_tests_name("timing", tests, NULL, NULL);
 }
