@@ -199,6 +199,7 @@ static void exposures(void **state)
 	/* limits as common practice has them: a fifth of the ingress, 120 s, 1 s */
 	check_close("fifth of 150 s", photometry_exposure(&o, &s, 150.0).exposure_s, 30.0, 0.0);
 	check_close("fifth of 147 s", photometry_exposure(&o, &s, 147.0).exposure_s, 29.0, 0.0);
+	check_close("fifth of 63.5 s", photometry_exposure(&o, &s, 63.5).exposure_s, 12.0, 0.0);
 	check_close("fifth of 44 s", photometry_exposure(&o, &s, 44.0).exposure_s, 8.5, 0.0);
 	check_close("longest", photometry_exposure(&o, &s, 3600.0).exposure_s, 120.0, 0.0);
 	check_close("no ingress", photometry_exposure(&o, &s, NAN).exposure_s, 120.0, 0.0);
