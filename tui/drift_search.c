@@ -129,6 +129,7 @@ static enum status search_night(struct search *s, bool *wanted, struct err *e)
 	const struct site *site = &t->site[s->site];
 	const int32_t mjd = night_date_of(site->lon_east_deg, t->now) + s->day;
 	enum status st = night_build(&s->night, site, &s->run->clock, mjd, s->run->memo, e);
+	s->night.telescope = run_telescope_at(s->run, site);
 	s->suns.n = 0;
 	for (size_t i = 0; st == ST_OK && i < t->n; i++) {
 		struct drift_row *row = &t->row[i];

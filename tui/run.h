@@ -105,6 +105,8 @@ MUST_USE enum status run_night_free(struct run *r, const struct site *site, int3
 void night_view_free(struct night_view *v);
 /* Says on standard error which allotments of the night allot nothing, and that none is stored for it where other nights have some. */
 void run_night_notes(const struct night_view *v);
+/* The run's telescope where it stands at that site; NULL else: what a night is planned for. */
+const struct telescope *run_telescope_at(const struct run *r, const struct site *site);
 /* What typed times mean in a night of the chosen site. Borrows r and n. */
 struct plan_clock run_plan_clock(const struct run *r, const struct night *n);
 /* Tonight: the night that contains now. */

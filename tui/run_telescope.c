@@ -163,6 +163,11 @@ enum status run_choose_telescope(struct run *r, bool named, struct err *e)
 	return take(r, t, e);
 }
 
+const struct telescope *run_telescope_at(const struct run *r, const struct site *site)
+{
+	return r->has_telescope && site->id == r->telescope.site_id ? &r->telescope : NULL;
+}
+
 void run_put_telescope_limits(struct run *r)
 {
 	struct err e;
