@@ -9,6 +9,9 @@
 #include <string.h>
 
 enum { LOOKS_BUILT_IN = 2000, NONE = -1, NOT_ASKED = -2 };
+/* Questions that took so many times their looks together get that part of them from then on: a night of hard
+ * ones ends. */
+enum { PATIENT_QUESTIONS = 50, IMPATIENT_PART = 20 };
 
 struct order_through {
 	struct order_work w;
@@ -17,6 +20,7 @@ struct order_through {
 	bool *usual;		 /* [n]: it is in the relaxed answer without a question */
 	int *holder_at, *holder; /* [n_events + 1]; ranks that hold an event, ascending */
 	long *seen, round;	 /* [n_events]: the question that met an event last */
+	long looks;		 /* of all questions */
 };
 
 static void list_holders(struct order_through *t)
@@ -168,18 +172,22 @@ static bool trace(struct order_through *t, int through)
 	return true;
 }
 
-/* By branches, the holders of the event raised above all else. */
+/* By branches, the holders of the event raised above all else (none: a fixed item holds it). */
 static enum status split(struct order_through *t, int event, struct err *e)
 {
 	struct order_net *net = &t->w.net;
 	struct order_found *found = &t->w.found;
-	const long looks = t->w.choice->nodes_max > 0 ? t->w.choice->nodes_max : LOOKS_BUILT_IN;
+	long looks = t->w.choice->nodes_max > 0 ? t->w.choice->nodes_max : LOOKS_BUILT_IN;
+	if (t->looks / PATIENT_QUESTIONS >= looks)
+		looks = looks > IMPATIENT_PART ? looks / IMPATIENT_PART : 1;
 	for (int k = t->holder_at[event]; k < t->holder_at[event + 1]; k++)
 		net->score[t->holder[k]] += net->scale.force;
 	const enum status s = order_split(net, t->w.choice->n_events, looks, found, e);
+	t->looks += found->looks;
 	for (int k = t->holder_at[event]; k < t->holder_at[event + 1]; k++)
 		net->score[t->holder[k]] -= net->scale.force;
-	found->bound -= net->scale.force;
+	if (t->holder_at[event] < t->holder_at[event + 1])
+		found->bound -= net->scale.force;
 	return s;
 }
 
@@ -203,6 +211,7 @@ enum status order_through_event(struct order_through *t, int event, size_t taken
 		return err_set(e, ST_RANGE, "event %d: expected 0 to %d", event, t->w.choice->n_events - 1);
 	const int through = best_holder(t, event);
 	enum status s = ST_OK;
+	result->optimal = true;
 	if (through < 0 && !t->w.held[event])
 		return ST_OK;
 	if (through < 0 || !trace(t, through))
