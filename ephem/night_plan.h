@@ -77,6 +77,7 @@ struct plan_left {
 	size_t offer;
 	enum left_reason reason;
 	double cost;	   /* worth that the order would lose if it were forced in; NAN: can't be forced in */
+	bool at_most;	   /* the cost is that of an order that was found; a cheaper one was not ruled out */
 	size_t n_clash;	   /* items of the order that would lose an event for it; of LEFT_PINS: if it were the only pin */
 	size_t clash[LEFT_CLASHES_MAX];
 };

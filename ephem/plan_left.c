@@ -13,6 +13,14 @@ static void add_clash(struct plan_left *left, size_t item)
 	left->n_clash++;
 }
 
+/* What the left are asked by, opened when it is needed. */
+struct questions {
+	struct plan_order *k;
+	bool *held; /* [in->n] */
+	struct order_choice pins_choice, no_pins_choice;
+	struct order_through *pins, *no_pins;
+};
+
 /* An offer that has ways only as long as nothing has begun: the items in whose time they lie. */
 static bool clashes_with_begun(const struct plan_order *k, const struct night_plan *out,
 			       struct plan_left *left)
@@ -36,7 +44,7 @@ static bool clashes_with_begun(const struct plan_order *k, const struct night_pl
 	return n > 0;
 }
 
-/* The items of the order that hold an event which the order asked for last does not. One that is only cut
+/* The items of the order that hold an event which the order of the question does not. One that is only cut
  * shorter stays. */
 static void add_lost(const struct plan_order *k, const struct order_result *result,
 		     const struct night_plan *out, struct plan_left *left, bool held[])
@@ -48,7 +56,7 @@ static void add_lost(const struct plan_order *k, const struct order_result *resu
 		for (int j = 0; j < item->n_events; j++)
 			held[item->event[j]] = true;
 	}
-	for (size_t i = 0; held[left->offer] && i < out->n_items; i++)
+	for (size_t i = 0; i < out->n_items; i++)
 		for (int j = 0; j < out->item[i].n; j++)
 			if (!held[out->item[i].member[j].offer]) {
 				add_clash(left, i);
@@ -56,43 +64,36 @@ static void add_lost(const struct plan_order *k, const struct order_result *resu
 			}
 }
 
-/* The order with this offer pinned too: what it costs, and what goes for it. */
-static enum status force_in(struct plan_order *k, const struct night_plan *out, struct plan_left *left,
-			    bool held[], struct err *e)
+/* The best order with this offer under the pins that hold, or, of a pin that was missed, under none. What
+ * goes for it, and what it costs where no pin does. */
+static enum status force_in(struct questions *q, const struct night_plan *out, struct plan_left *left,
+			    struct err *e)
 {
+	struct plan_order *k = q->k;
+	const bool alone = k->in->offer[left->offer].pinned;
+	struct order_through **t = alone ? &q->no_pins : &q->pins;
 	struct order_result result;
-	k->pinned[left->offer] = true;
-	const enum status st = plan_order_solve(k, &result, e);
-	k->pinned[left->offer] = false;
-	if (st != ST_OK || result.pins_missed > out->pins_missed)
+	bool held;
+	enum status st = ST_OK;
+	if (!*t)
+		st = order_through_open(k->item, k->n, &k->gaps, alone ? &q->no_pins_choice : &q->pins_choice, t,
+					e);
+	if (st == ST_OK)
+		st = order_through_event(*t, (int)left->offer, k->taken, &result, &held, e);
+	if (st != ST_OK || !held || (!alone && result.pins_missed > out->pins_missed))
 		return st;
-	add_lost(k, &result, out, left, held);
-	if (held[left->offer])
+	add_lost(k, &result, out, left, q->held);
+	if (!alone) {
 		left->cost = fmax(out->worth - result.worth, 0.0);
+		left->at_most = !result.optimal;
+	}
 	return ST_OK;
 }
 
-/* A pin that was missed: what would go if it were the only one. */
-static enum status pin_alone(struct plan_order *k, const struct night_plan *out, struct plan_left *left,
-			     bool held[], struct err *e)
+static enum status explain(struct questions *q, const struct night_plan *out, size_t offer,
+			   struct plan_left *left, struct err *e)
 {
-	struct order_result result;
-	bool *pinned = k->pinned, *alone = calloc(k->in->n + 1, sizeof *alone);
-	if (!alone)
-		return err_set(e, ST_MEMORY, "no memory for the pins of %zu windows", k->in->n);
-	alone[left->offer] = true;
-	k->pinned = alone;
-	const enum status st = plan_order_solve(k, &result, e);
-	k->pinned = pinned;
-	free(alone);
-	if (st == ST_OK)
-		add_lost(k, &result, out, left, held);
-	return st;
-}
-
-static enum status explain(struct plan_order *k, const struct night_plan *out, size_t offer,
-			   struct plan_left *left, bool held[], struct err *e)
-{
+	const struct plan_order *k = q->k;
 	const struct plan_offer *o = &k->in->offer[offer];
 	struct plan_way way[PLAN_WAYS_MAX];
 	*left = (struct plan_left){.offer = offer, .reason = LEFT_CLASH, .cost = NAN};
@@ -107,21 +108,21 @@ static enum status explain(struct plan_order *k, const struct night_plan *out, s
 	else {
 		left->reason = o->pinned ? LEFT_PINS : LEFT_CLASH;
 		if (!k->in->without_costs)
-			return o->pinned ? pin_alone(k, out, left, held, e) : force_in(k, out, left, held, e);
+			return force_in(q, out, left, e);
 	}
 	return ST_OK;
 }
 
-static enum status explain_all(struct plan_order *k, struct night_plan *out, bool planned[], bool held[],
-			       struct err *e)
+static enum status explain_all(struct questions *q, struct night_plan *out, bool planned[], struct err *e)
 {
+	const struct plan_input *in = q->k->in;
 	for (size_t i = 0; i < out->n_items; i++)
 		for (int j = 0; j < out->item[i].n; j++)
 			planned[out->item[i].member[j].offer] = true;
-	for (size_t i = 0; i < k->in->n; i++) {
-		if (planned[i] || k->in->offer[i].settled)
+	for (size_t i = 0; i < in->n; i++) {
+		if (planned[i] || in->offer[i].settled)
 			continue;
-		const enum status st = explain(k, out, i, &out->left[out->n_left++], held, e);
+		const enum status st = explain(q, out, i, &out->left[out->n_left++], e);
 		if (st != ST_OK)
 			return st;
 	}
@@ -131,14 +132,22 @@ static enum status explain_all(struct plan_order *k, struct night_plan *out, boo
 enum status plan_left_out(struct plan_order *k, struct night_plan *out, struct err *e)
 {
 	const size_t n = k->in->n;
-	bool *held = malloc((n + 1) * sizeof *held), *planned = calloc(n + 1, sizeof *planned);
+	struct questions q = {
+	    .k = k,
+	    .held = malloc((n + 1) * sizeof *q.held),
+	    .pins_choice = {.event_pinned = k->pinned, .n_events = (int)n},
+	    .no_pins_choice = {.n_events = (int)n},
+	};
+	bool *planned = calloc(n + 1, sizeof *planned);
 	enum status st;
 	out->left = malloc((n + 1) * sizeof *out->left);
-	if (held && planned && out->left)
-		st = explain_all(k, out, planned, held, e);
+	if (q.held && planned && out->left)
+		st = explain_all(&q, out, planned, e);
 	else
 		st = err_set(e, ST_MEMORY, "no memory for what a plan of %zu windows leaves out", n);
-	free(held);
+	order_through_close(q.pins);
+	order_through_close(q.no_pins);
+	free(q.held);
 	free(planned);
 	return st;
 }

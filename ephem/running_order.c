@@ -10,23 +10,6 @@ enum { LOOKS_BUILT_IN = 100000, ITEMS_MAX = 200000 /* so that a score fits 64 bi
 static const double step_least = 1e-9; /* of worth */
 static const double worth_most = 1e9;
 
-struct place {
-	double to_d, from_d;
-	size_t index;
-};
-struct order_work {
-	const struct order_item *item;
-	const struct order_gaps *gaps;
-	const struct order_choice *choice;
-	struct place *place; /* [n], in order of time */
-	size_t n;
-	size_t *fixed; /* [n_fixed]: indices of items, in order of time */
-	size_t n_fixed;
-	bool *held; /* [n_events]: in a fixed item */
-	struct order_net net;
-	struct order_found found;
-};
-
 static enum status no_memory(size_t n, struct err *e)
 {
 	return err_set(e, ST_MEMORY, "no memory for a running order of %zu items", n);
@@ -68,7 +51,7 @@ static enum status check(const struct order_work *w, struct err *e)
 
 static int compare_places(const void *pa, const void *pb)
 {
-	const struct place *a = pa, *b = pb;
+	const struct order_place *a = pa, *b = pb;
 	if (a->to_d != b->to_d)
 		return a->to_d < b->to_d ? -1 : 1;
 	if (a->from_d != b->from_d)
@@ -84,7 +67,7 @@ static enum status place_items(struct order_work *w, struct err *e)
 	if (!w->place || !w->fixed || !w->held)
 		return no_memory(w->n, e);
 	for (size_t i = 0; i < w->n; i++)
-		w->place[i] = (struct place){w->item[i].to_d, w->item[i].from_d, i};
+		w->place[i] = (struct order_place){w->item[i].to_d, w->item[i].from_d, i};
 	qsort(w->place, w->n, sizeof *w->place, compare_places);
 	for (size_t k = 0; k < w->n; k++) {
 		const struct order_item *item = &w->item[w->place[k].index];
@@ -186,6 +169,14 @@ static int longest(const struct order_work *w)
 	return length;
 }
 
+static void set_scores(struct order_net *net)
+{
+	for (int j = 0; j < net->n; j++)
+		net->score[j] =
+		    (net->spot[j].pins * net->scale.pin_units + net->spot[j].units) * net->scale.item_share -
+		    1;
+}
+
 static int64_t common_measure(int64_t a, int64_t b)
 {
 	while (b != 0) {
@@ -208,7 +199,8 @@ static void set_scale(struct order_work *w)
 		worth_max = fmax(worth_max, worth_counted(&w->item[net->spot[j].index]));
 		pins_max = net->spot[j].pins > pins_max ? net->spot[j].pins : pins_max;
 	}
-	while ((length * pins_max + 1.0) * (2.0 * length * worth_max / step + 2.0) * (length + 1.0) >
+	const double pins_all = (length * pins_max + 1.0) * (w->may_force ? 2.0 : 1.0);
+	while (pins_all * (2.0 * length * worth_max / step + 2.0) * (length + 1.0) >
 		   sum_max &&
 	       step < worth_max)
 		step *= 2.0;
@@ -223,10 +215,9 @@ static void set_scale(struct order_work *w)
 	}
 	scale.common = scale.common > 0 ? scale.common : 1;
 	scale.pin_units = ((int64_t)length * units_max / scale.common + 1) * scale.common;
-	for (int j = 0; j < net->n; j++)
-		net->score[j] =
-		    (net->spot[j].pins * scale.pin_units + net->spot[j].units) * scale.item_share - 1;
+	scale.force = w->may_force ? ((int64_t)length * pins_max + 1) * scale.pin_units * scale.item_share : 0;
 	net->scale = scale;
+	set_scores(net);
 }
 
 static enum status build_net(struct order_work *w, struct err *e)
@@ -252,7 +243,7 @@ static enum status build_net(struct order_work *w, struct err *e)
 	return order_net_link(net, e);
 }
 
-static void work_close(struct order_work *w)
+void order_work_close(struct order_work *w)
 {
 	free(w->place);
 	free(w->fixed);
@@ -275,7 +266,9 @@ static int64_t relaxed_units(struct order_work *w)
 {
 	for (int j = 0; j < w->net.n; j++)
 		w->net.score[j] = w->net.spot[j].units;
-	return order_relaxed(&w->net, w->net.score);
+	const int64_t most = order_relaxed(&w->net, w->net.score);
+	set_scores(&w->net);
+	return most;
 }
 
 /* Of the sum of the fixed items, in steps of 1e-9, and of units of the chosen ones. */
@@ -286,7 +279,7 @@ static double worth_of(const struct order_scale *scale, double fixed_steps, int6
 }
 
 /* Merges chosen and fixed items in order of time, adds up what they are worth and counts the pins. */
-static enum status write_result(struct order_work *w, size_t taken[], struct order_result *out, struct err *e)
+enum status order_work_result(struct order_work *w, size_t taken[], struct order_result *out, struct err *e)
 {
 	const struct order_found *found = &w->found;
 	const struct order_scale scale = w->net.scale;
@@ -326,6 +319,16 @@ static enum status write_result(struct order_work *w, size_t taken[], struct ord
 	return ST_OK;
 }
 
+enum status order_work_open(struct order_work *w, size_t conflict[2], struct err *e)
+{
+	enum status s = check(w, e);
+	if (s == ST_OK)
+		s = place_items(w, e);
+	if (s == ST_OK)
+		s = fixed_apart(w, conflict, e);
+	return s == ST_OK ? build_net(w, e) : s;
+}
+
 enum status running_order(const struct order_item item[], size_t n, const struct order_gaps *gaps,
 			  const struct order_choice *choice, size_t taken[], struct order_result *out,
 			  size_t conflict[2], struct err *e)
@@ -333,17 +336,11 @@ enum status running_order(const struct order_item item[], size_t n, const struct
 	struct order_work w = {.item = item, .gaps = gaps, .choice = choice, .n = n};
 	long looks = choice->nodes_max > 0 ? choice->nodes_max : LOOKS_BUILT_IN;
 	*out = (struct order_result){0};
-	enum status s = check(&w, e);
-	if (s == ST_OK)
-		s = place_items(&w, e);
-	if (s == ST_OK)
-		s = fixed_apart(&w, conflict, e);
-	if (s == ST_OK)
-		s = build_net(&w, e);
+	enum status s = order_work_open(&w, conflict, e);
 	if (s == ST_OK)
 		s = order_split(&w.net, choice->n_events, looks, &w.found, e);
 	if (s == ST_OK)
-		s = write_result(&w, taken, out, e);
-	work_close(&w);
+		s = order_work_result(&w, taken, out, e);
+	order_work_close(&w);
 	return s;
 }

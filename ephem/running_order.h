@@ -53,4 +53,18 @@ struct order_result {
 MUST_USE enum status running_order(const struct order_item item[], size_t n, const struct order_gaps *gaps, const struct order_choice *choice,
 				   size_t taken[], struct order_result *out, size_t conflict[2], struct err *e);
 
+/* Questions after an order: what would it be if it had to hold one more event? Two passes over all items (one from each end of the night)
+ * answer for every event whose answer takes no event twice; the others are split into branches one by one. */
+struct order_through;
+/* *out is the caller's: order_through_close. It borrows item, gaps and choice. choice->nodes_max is for each question; 0: 2,000; when all
+ * questions took 50 times as many each gets a twentieth. Errors: as of running_order. */
+MUST_USE enum status order_through_open(const struct order_item item[], size_t n, const struct order_gaps *gaps, const struct order_choice *choice,
+					struct order_through **out, struct err *e);
+/* Of the orders that hold the event that with the greatest number of pinned events, then the greatest worth, then the fewest items: fills taken[] and *result as
+ * running_order does (pins_missed: of the choice). *held false: no order holds it, or none was found where result->optimal is false. Ties: of the event's items that which
+ * ends first; what comes before it by the rules of running_order; what comes after it as in the order without the question where that is one of the best, else
+ * what ends first. ST_RANGE: an event out of range. ST_MEMORY. */
+MUST_USE enum status order_through_event(struct order_through *t, int event, size_t taken[], struct order_result *result, bool *held, struct err *e);
+void order_through_close(struct order_through *t); /* NULL: nothing */
+
 #endif

@@ -25,6 +25,7 @@ struct order_scale {
 	double step; /* worth of one unit */
 	int64_t pin_units, item_share;
 	int64_t common; /* every worth is a multiple of it */
+	int64_t force;	/* a score that outweighs all pins and all worth; 0 where the work may not force */
 };
 
 /* Rank i may stand right before rank j: surely where i < sure[j], if the gap allows it where i < near[j],
@@ -68,9 +69,37 @@ struct order_found {
 	int64_t score;
 	bool optimal;
 	int64_t bound; /* of the score; equal to it where optimal */
+	long looks;    /* that it took */
 };
 MUST_USE enum status order_split(struct order_net *net, int n_events, long looks_max, struct order_found *out,
 				 struct err *e);
+
+/* A running order while it is made. */
+struct order_place {
+	double to_d, from_d;
+	size_t index;
+};
+struct order_work {
+	const struct order_item *item;
+	const struct order_gaps *gaps;
+	const struct order_choice *choice;
+	struct order_place *place; /* [n], in order of time */
+	size_t n;
+	size_t *fixed; /* [n_fixed]: indices of items, in order of time */
+	size_t n_fixed;
+	bool *held;	/* [n_events]: in a fixed item */
+	bool may_force; /* the scale has room for scale.force */
+	struct order_net net;
+	struct order_found found; /* the order; empty at first, with room for any */
+};
+/* Checks the input and builds the net, from item, gaps, choice, n and may_force. Errors: as of running_order.
+ */
+MUST_USE enum status order_work_open(struct order_work *w, size_t conflict[2], struct err *e);
+/* Merges what was found and the fixed items in order of time, adds up what they are worth and counts the
+ * pins. */
+MUST_USE enum status order_work_result(struct order_work *w, size_t taken[], struct order_result *out,
+				       struct err *e);
+void order_work_close(struct order_work *w); /* after a failed order_work_open too */
 
 /* Makes orders that take every event once; *found keeps the best of them. */
 struct order_maker {

@@ -285,6 +285,7 @@ enum status order_split(struct order_net *net, int n_events, long looks_max, str
 	out->score = out->bound = order_relaxed(net, net->score);
 	out->n = order_chain(net, out->chain);
 	out->optimal = true;
+	out->looks = 1;
 	bool twice = takes_one_twice(net, out->chain, out->n, taken);
 	free(taken);
 	if (!twice)
@@ -299,6 +300,7 @@ enum status order_split(struct order_net *net, int n_events, long looks_max, str
 	if (status == ST_OK) {
 		list_holders(&s);
 		explore(&s, ROOT_ROUNDS, relaxed);
+		out->looks += s.looks;
 		out->bound = s.open > out->score ? s.open : out->score;
 		out->optimal = amount(&net->scale, out->bound) <= amount(&net->scale, out->score);
 	}

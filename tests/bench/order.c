@@ -237,6 +237,16 @@ static double sort_us(const struct night *w)
 	return least;
 }
 
+static void point_anywhere(struct pointings *p, uint64_t *r)
+{
+	for (int i = 0; i < POINTINGS; i++) {
+		double z = random_between(r, -1.0, 1.0), angle = random_between(r, 0.0, 6.283185307179586);
+		p->at[i][0] = sqrt(1.0 - z * z) * cos(angle);
+		p->at[i][1] = sqrt(1.0 - z * z) * sin(angle);
+		p->at[i][2] = z;
+	}
+}
+
 static bool measure(const char *name, void (*invent)(struct night *, uint64_t *), int nights, double speed)
 {
 	static struct night w;
@@ -247,13 +257,7 @@ static bool measure(const char *name, void (*invent)(struct night *, uint64_t *)
 	double taken_sum = 0.0, widest = 0.0;
 	p.speed = speed;
 	for (int k = 0; k < nights; k++) {
-		for (int i = 0; i < POINTINGS; i++) {
-			double z = random_between(&r, -1.0, 1.0),
-			       angle = random_between(&r, 0.0, 6.283185307179586);
-			p.at[i][0] = sqrt(1.0 - z * z) * cos(angle);
-			p.at[i][1] = sqrt(1.0 - z * z) * sin(angle);
-			p.at[i][2] = z;
-		}
+		point_anywhere(&p, &r);
 		w.n = w.n_events = 0;
 		invent(&w, &r);
 		struct order_gaps gaps = {gap_d, &p, settle_d, settle_d + turn_d / speed};
@@ -286,6 +290,50 @@ static bool measure(const char *name, void (*invent)(struct night *, uint64_t *)
 	return true;
 }
 
+/* The order with one event more, for each event of the night. */
+static bool measure_through(const char *name, void (*invent)(struct night *, uint64_t *), int nights)
+{
+	static struct night w;
+	static struct pointings p;
+	static double us[NIGHTS_MOST];
+	uint64_t r = 20270201u * 0x9E3779B97F4A7C15u | 1u;
+	int open = 0, asked = 0;
+	double cost_sum = 0.0;
+	p.speed = 1.0;
+	for (int k = 0; k < nights; k++) {
+		point_anywhere(&p, &r);
+		w.n = w.n_events = 0;
+		invent(&w, &r);
+		struct order_gaps gaps = {gap_d, &p, settle_d, settle_d + turn_d};
+		struct order_choice choice = {.n_events = w.n_events};
+		struct order_result best, out;
+		struct order_through *t;
+		size_t taken[ITEMS];
+		bool held;
+		if (running_order(w.item, (size_t)w.n, &gaps, &choice, taken, &best, NULL, NULL) != ST_OK)
+			return false;
+		const double start = processor_us();
+		if (order_through_open(w.item, (size_t)w.n, &gaps, &choice, &t, NULL) != ST_OK)
+			return false;
+		bool good = true;
+		for (int event = 0; good && event < w.n_events; event++) {
+			good = order_through_event(t, event, taken, &out, &held, NULL) == ST_OK;
+			open += !out.optimal;
+			asked++;
+			cost_sum += best.worth - out.worth;
+		}
+		order_through_close(t);
+		us[k] = processor_us() - start;
+		if (!good)
+			return false;
+	}
+	qsort(us, (size_t)nights, sizeof *us, compare_us);
+	printf("one event more: %-34s median %8.1f us for %d events, slowest %10.1f us; mean cost %.3f; not "
+	       "proven %d of %d\n",
+	       name, us[nights / 2], w.n_events, us[nights - 1], cost_sum / asked, open, asked);
+	return true;
+}
+
 int main(void)
 {
 	bool good = measure("a night", usual, 400, 1.0);
@@ -302,5 +350,11 @@ int main(void)
 	good = good && measure("62 events, 8 places of 25 min", places_long, 10, 1.0);
 	good = good && measure("62 events, 8 places, alike", places_same, 10, 1.0);
 	good = good && measure("joint items of 60 events", joint, 10, 1.0);
+	good = good && measure_through("a night", usual, 100);
+	good = good && measure_through("a night, five priorities", even_worths, 100);
+	good = good && measure_through("a night, three events in a row", in_a_row, 100);
+	good = good && measure_through("60 events, limbs of 30 min", limbs_60, 10);
+	good = good && measure_through("60 events, limbs of 8 min", limbs_60_brief, 10);
+	good = good && measure_through("166 events, limbs of 20 min", limbs_166, 10);
 	return good ? 0 : 1;
 }

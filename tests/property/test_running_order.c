@@ -169,6 +169,39 @@ static struct best best_subset(const struct night *w, const struct rules *rules)
 	return best;
 }
 
+/* The best subset that holds each event; pins -1 where none does. */
+static void best_with_each(const struct night *w, const struct rules *rules, struct best with[EVENTS])
+{
+	for (int i = 0; i < EVENTS; i++)
+		with[i] = (struct best){.pins = -1};
+	for (unsigned set = 0; set < 1u << w->n; set++) {
+		unsigned events = 0;
+		if (!lawful(rules, w->n, set))
+			continue;
+		const struct best b = value_of(w, set);
+		for (size_t i = 0; i < w->n; i++)
+			for (int k = 0; k < w->item[i].n_events; k++)
+				events |= (set >> i & 1u) << w->item[i].event[k];
+		for (int i = 0; i < EVENTS; i++)
+			if ((events >> i & 1u) && better(&b, &with[i]))
+				with[i] = b;
+	}
+}
+
+/* The set of an answer, which is one and can be done. */
+static unsigned set_of(const struct night *w, const struct rules *rules, const size_t taken[],
+		       const struct order_result *r)
+{
+	unsigned set = 0;
+	for (size_t i = 0; i < r->n; i++) {
+		assert_true(i == 0 || w->item[taken[i]].from_d >= w->item[taken[i - 1]].to_d);
+		assert_false(set >> taken[i] & 1u);
+		set |= 1u << taken[i];
+	}
+	assert_true(lawful(rules, w->n, set));
+	return set;
+}
+
 /* Runs it and looks whether the answer is an order, whatever it is worth; most_share widens the limits of the
  * gaps beyond what is needed. */
 static struct order_result solve(const struct night *w, const struct rules *rules, double most_share,
@@ -181,14 +214,7 @@ static struct order_result solve(const struct night *w, const struct rules *rule
 	struct err e = {0};
 	if (running_order(w->item, w->n, &gaps, &choice, taken, &r, NULL, &e) != ST_OK)
 		check_fail("refused: %s", e.text);
-	unsigned set = 0;
-	for (size_t i = 0; i < r.n; i++) {
-		assert_true(i == 0 || w->item[taken[i]].from_d >= w->item[taken[i - 1]].to_d);
-		assert_false(set >> taken[i] & 1u);
-		set |= 1u << taken[i];
-	}
-	assert_true(lawful(rules, w->n, set));
-	struct best b = value_of(w, set);
+	struct best b = value_of(w, set_of(w, rules, taken, &r));
 	check_close("worth of what was taken", r.worth, (double)b.steps * 1e-9, 1e-12);
 	int pinned = 0;
 	for (int i = 0; i < EVENTS; i++)
@@ -232,6 +258,71 @@ static void against_all_subsets(void **state)
 	}
 	print_message("nights that one look did not settle: %d of %d; with pins %d\n", split, NIGHTS, pins);
 	assert_true(split > NIGHTS / 50 && pins > NIGHTS / 4);
+}
+
+/* One question. Returns whether it was answered with a proof; *with: of what no question may be better than. */
+static bool ask(struct order_through *t, const struct night *w, const struct rules *rules, int event,
+		const struct best *with, bool may_fall_short)
+{
+	struct order_result got;
+	struct best b = {.pins = -1};
+	struct err e = {0};
+	size_t taken[ITEMS];
+	bool held, there = false;
+	int pinned = 0;
+	if (order_through_event(t, event, taken, &got, &held, &e) != ST_OK)
+		check_fail("refused: %s", e.text);
+	if (held) {
+		b = value_of(w, set_of(w, rules, taken, &got));
+		for (size_t i = 0; i < got.n; i++)
+			for (int k = 0; k < w->item[taken[i]].n_events; k++)
+				there = there || w->item[taken[i]].event[k] == event;
+		assert_true(there);
+		for (int i = 0; i < EVENTS; i++)
+			pinned += w->pinned[i];
+		assert_int_equal(got.pins_missed, pinned - b.pins);
+		check_close("worth of what was taken", got.worth, (double)b.steps * 1e-9, 1e-12);
+		assert_true(!got.optimal || got.bound <= got.worth);
+		assert_true(b.pins != with->pins || got.bound >= (double)with->steps * 1e-9 - 1e-12);
+	}
+	if (may_fall_short && !got.optimal) {
+		assert_false(better(&b, with));
+		return false;
+	}
+	if (b.pins != with->pins || b.steps != with->steps || b.items != with->items)
+		check_fail("event %d: got %d pins, %.9f, %d items; want %d, %.9f, %d", event, b.pins,
+			   (double)b.steps * 1e-9, b.items, with->pins, (double)with->steps * 1e-9, with->items);
+	return true;
+}
+
+static void through_each_event(void **state)
+{
+	(void)state;
+	struct rng r = rng_open("running order, one event more");
+	int lost = 0, short_of = 0;
+	for (int round = 0; round < NIGHTS; round++) {
+		struct night w;
+		struct best with[EVENTS];
+		struct err e = {0};
+		invent(&r, &w);
+		const struct rules rules = rules_of(&w);
+		best_with_each(&w, &rules, with);
+		struct order_gaps gaps = {gap_of_points, &w, w.settle_d,
+					  w.settle_d + 3.1415926535897936 / w.slew_rad_d};
+		for (int few = 0; few < 2; few++) {
+			const struct order_choice choice = {w.pinned, w.dropped, EVENTS, few};
+			struct order_through *t;
+			if (order_through_open(w.item, w.n, &gaps, &choice, &t, &e) != ST_OK)
+				check_fail("refused: %s", e.text);
+			for (int i = 0; i < EVENTS; i++) {
+				short_of += !ask(t, &w, &rules, i, &with[i], few);
+				lost += with[i].pins < 0;
+			}
+			order_through_close(t);
+		}
+	}
+	print_message("events that no order holds: %d; that one look did not settle: %d\n", lost, short_of);
+	assert_true(lost > NIGHTS / 10 && short_of > NIGHTS / 10);
 }
 
 /* Another order of the input: as much worth, as many pins and items. */
@@ -328,6 +419,7 @@ int main(void)
 {
 	const struct CMUnitTest tests[] = {
 	    cmocka_unit_test(against_all_subsets),
+	    cmocka_unit_test(through_each_event),
 	    cmocka_unit_test(input_in_any_order),
 	    cmocka_unit_test(gaps_of_any_kind),
 	};
