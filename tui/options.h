@@ -56,7 +56,7 @@ struct options {
 	/* plan */
 	struct option_values pin, drop, free_event, block, unblock, lost, unlost, poor, mark;
 	const char *draft, *plan_from, *compare, *remove_draft, *cause, *note, *since;
-	bool afresh, keep, save, list;
+	bool rebuild, afresh, keep, save, list;
 	double moved_min; /* NAN not given */
 	int kinds;         /* KINDS_*; 0 not given */
 	int threads;       /* 0 not given */
