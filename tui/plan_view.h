@@ -39,7 +39,7 @@ struct plan_item_view {
 	struct utc slew_by, start, latest_start, end;
 	bool has_latest; /* latest_start holds */
 	double worth;
-	bool in_day;	 /* the Sun is up for some of it: no sheet takes it */
+	bool in_day;	 /* the Sun is up for some of it, the move to it included: no sheet takes it */
 	size_t n;
 	struct plan_member_view *member; /* in order of T1 */
 	char if_missed[400]; /* one or two sentences: what to do when the first limb is missed */

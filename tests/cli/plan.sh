@@ -58,6 +58,9 @@ check "--poor: a factor of 2 over it all leaves a quarter" awk -v a="$(worth "$s
 plan $now --pin 'Tern 31 b' --pin 'Tern 5 b' --pin 'Tern 11 b' --pin 'Tern 48 b' --pin 'Tern 40 b' >"$scratch/clash.txt"
 check "pins that clash: exit 0" test $? = 0
 check "and it is said which is left out" said '^wane: plan: Tern [0-9]* b: pinned, but it clashes with'
+plan $now --sun-limit 0 --pin 'Tern 22 b' >"$scratch/day.txt"
+check "an item with the Sun up says so" grep -q '^    THE SUN IS UP for some of it: do not slew there' "$scratch/day.txt"
+check "and no program is given it" test "$(plan $now --sun-limit 0 --pin 'Tern 22 b' --format json | sed -n '/^  "items"/,/^  \]/p' | grep -c '"target": "Tern 22 b", "kind"')" = 0
 
 # --- refusals
 check "an unknown target: exit 1" test "$(code --pin 'Tern 1400 b')" = 1
