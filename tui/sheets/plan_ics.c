@@ -52,9 +52,11 @@ static void put_figure(FILE *to, const char *before, const char *figure, const c
 static void member_words(FILE *to, const struct plan_view *v, const struct plan_member_view *m)
 {
 	char line[LINE_BYTES], figure[NUMBER_TEXT_MAX];
+	const char *part = plan_part_words(m->variant);
 	struct utc t;
 	plan_line(m->target, line, sizeof line);
-	fprintf(to, "%s: %s, epoch %ld, %s", line, plan_kind_word(m->kind), m->epoch, m->variant);
+	fprintf(to, "%s: %s, epoch %ld, %s", line, plan_kind_word(m->kind), m->epoch,
+		part[0] ? part : m->variant);
 	plan_star_words(m, line, sizeof line);
 	put_figure(to, "; ", line, "");
 	plan_figure(m, "depth_ppt", 1, figure);
