@@ -181,6 +181,20 @@ static bool was_missed(const struct plan_choices *c, const char *key)
 	return false;
 }
 
+/* What was lost since the edition was stored, or never begun, counts no more: as in a plan worked out anew.
+ */
+static void worth_of_marked(struct plan_view *v, const struct plan_choices *c)
+{
+	double worth = 0.0;
+	for (size_t i = 0; i < v->n_items; i++) {
+		const struct plan_item_view *item = &v->item[i];
+		if (item->state != PLAN_LOST && (item->state > PLAN_PINNED || !was_missed(c, item->key)))
+			worth += item->worth;
+	}
+	v->bound += worth - v->worth;
+	v->worth = worth;
+}
+
 /* --- what was left out --- */
 
 const char *left_text(struct plan_view *v)
@@ -274,5 +288,6 @@ enum status stored_view(struct plan_view *v, const struct plan_row *row, struct 
 		if (item->state <= PLAN_PINNED && !item->note[0] && was_missed(c, item->key))
 			item->note = "not begun";
 	}
+	worth_of_marked(v, c);
 	return s == ST_OK ? plan_memory(v, e) : s;
 }
