@@ -65,6 +65,22 @@ MUST_USE enum status plan_find(struct store *s, int64_t site_id, int64_t telesco
 			       struct err *e);
 void plan_row_free(struct plan_row *p);
 
+/* What the plans of a night have been through: for calendars, in which a revision must never have a lower number than one before. */
+struct plan_past {
+	int64_t revisions;	/* how often rows of the night's plans were stored, drafts, undos and removals included: never falls; 0 no plan ever */
+	char revised_utc[24];	/* of the newest of these changes; "" none */
+	bool kept;		/* a plan is kept now */
+	size_t n;		/* editions that were kept at some time, newest first; of plans that are in no list any more too */
+	struct plan_edition_id {
+		int64_t plan_id;
+		int edition;
+	} *was_kept;
+};
+MUST_USE enum status plan_past_load(struct store *s, int64_t site_id, int64_t telescope_id, int32_t night_mjd, struct plan_past *out, struct err *e);
+void plan_past_free(struct plan_past *past);
+/* plan_load for plans that are in no list any more too. */
+MUST_USE enum status plan_load_past(struct store *s, int64_t plan_id, int edition, struct plan_row *out, struct err *e);
+
 /* Inside a change set. Stores `p` as a new edition of its draft (made when it does not exist; id, edition, stored_utc, who are filled in from the store's side into *id, *edition). keep: this
  * draft becomes the kept one of its night, another loses that. based_on: the edition that the caller saw (0: there was none): ST_CONFLICT when the store has another by now. */
 MUST_USE enum status plan_store(struct store *s, const struct plan_row *p, bool keep, int based_on, int64_t *id, int *edition, struct err *e);

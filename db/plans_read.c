@@ -345,17 +345,28 @@ static enum status load_whole(struct store *s, const struct row *plan, int editi
 	return st;
 }
 
-enum status plan_load(struct store *s, int64_t plan_id, int edition, struct plan_row *out, struct err *e)
+static enum status load_by_id(struct store *s, int64_t plan_id, int edition, bool listed,
+			      struct plan_row *out, struct err *e)
 {
 	struct row plan;
 	*out = (struct plan_row){0};
 	enum status st = row_find(s, SQL_PLAN_BY_ID, cell_int(plan_id), &plan_rows, &plan, e);
-	if (st == ST_ABSENT || (st == ST_OK && plan.cell[PLAN_REMOVED].u.i))
+	if (st == ST_ABSENT || (st == ST_OK && listed && plan.cell[PLAN_REMOVED].u.i))
 		st = err_set(e, ST_ABSENT, "there is no such plan");
 	if (st == ST_OK)
 		st = load_whole(s, &plan, edition, out, e);
 	row_free(&plan);
 	return st;
+}
+
+enum status plan_load(struct store *s, int64_t plan_id, int edition, struct plan_row *out, struct err *e)
+{
+	return load_by_id(s, plan_id, edition, true, out, e);
+}
+
+enum status plan_load_past(struct store *s, int64_t plan_id, int edition, struct plan_row *out, struct err *e)
+{
+	return load_by_id(s, plan_id, edition, false, out, e);
 }
 
 enum status plan_find(struct store *s, int64_t site_id, int64_t telescope_id, int32_t night_mjd,

@@ -214,6 +214,17 @@ const char *const sql_text[SQL_COUNT] = {
     [SQL_PLAN_KEPT] = "SELECT id, " PLAN_PLAIN ", row_crc FROM plan WHERE site_id = ? AND night_mjd = ? AND "
 		      "ifnull(telescope_id, 0) = ? AND kept = 1 AND removed = 0",
     [SQL_PLAN_BY_ID] = "SELECT id, " PLAN_PLAIN ", row_crc FROM plan WHERE id = ?",
+    [SQL_PLAN_REVISIONS] =
+	"SELECT ifnull(sum(p.rev), 0), ifnull(max(c.utc), ''), ifnull(max(p.kept AND NOT p.removed), 0) "
+	"FROM plan p JOIN change_set c ON c.id = p.change_id "
+	"WHERE site_id = ? AND night_mjd = ? AND ifnull(telescope_id, 0) = ?",
+    /* what is said of a row is said of it and of its old rows */
+    [SQL_PLAN_KEPT_EDITIONS] =
+	"SELECT e.plan_id, e.edition FROM plan p JOIN plan_edition e ON e.plan_id = p.id "
+	"WHERE site_id = ? AND night_mjd = ? AND ifnull(telescope_id, 0) = ? AND "
+	"((p.kept AND p.edition = e.edition) OR EXISTS (SELECT 1 FROM plan_old o WHERE o.id = p.id AND "
+	"o.kept AND "
+	"o.edition = e.edition)) ORDER BY e.id DESC",
     [SQL_PLAN_ADD] = "INSERT INTO plan(id, " PLAN_PLAIN ", row_crc) VALUES(" TEN ", ?, ?)",
     [SQL_PLAN_UPDATE] = "UPDATE plan SET (" PLAN_PLAIN ", row_crc) = (" TEN ", ?) WHERE id = ? AND rev = ?",
     [SQL_PLAN_KEEP_OLD] =

@@ -75,6 +75,8 @@ enum sql_id {
 	SQL_PLAN_DRAFT, /* the listed one of a site, night, telescope (0 none) and draft */
 	SQL_PLAN_KEPT,	/* the kept one of a site, night and telescope (0 none) */
 	SQL_PLAN_BY_ID,
+	SQL_PLAN_REVISIONS,	/* of a site, night, telescope (0 none): sum of rev, newest change, whether one is kept */
+	SQL_PLAN_KEPT_EDITIONS, /* of the same: every edition that was held by a kept row, newest first */
 	SQL_PLAN_ADD,
 	SQL_PLAN_UPDATE,
 	SQL_PLAN_KEEP_OLD,

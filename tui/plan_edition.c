@@ -14,6 +14,7 @@ enum status plan_edition(const struct plan_view *of, int edition, struct plan_vi
 				  .who = "",
 				  .limits = "",
 				  .leap_date = "",
+				  .revised_utc = "",
 				  .rules = of->rules};
 	if (!r->store || !of->stored)
 		return err_set(e, ST_ABSENT, "no stored plan of this night, so none of its editions (got %d)",

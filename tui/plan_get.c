@@ -59,6 +59,7 @@ static void head(struct plan_view *v, struct run *r, const struct night_view *ni
 				.who = "",
 				.limits = "",
 				.leap_date = "",
+				.revised_utc = "",
 				.rules = plan_rules_of(&r->telescope)};
 	v->telescope = plan_copy(v, r->telescope.name);
 }
@@ -73,8 +74,6 @@ static enum status head_of_made(struct plan_view *v, struct err *e)
 	v->rules = plan_rules_of(&v->run->telescope);
 	v->limits = plan_limits_text(v);
 	v->stored = v->kept = false;
-	v->n_gone = 0;
-	v->gone = NULL;
 	return newest_change(v, e);
 }
 
@@ -106,15 +105,11 @@ void plan_finish(struct plan_view *v)
 
 /* --- as it is stored --- */
 
-static enum status as_stored(struct plan_view *v, struct run *r, const struct plan_row *row,
-			     struct night_view *night, double moved_min, struct err *e)
+static enum status as_stored(struct plan_view *v, struct run *r, struct night_view *night, double moved_min,
+			     struct err *e)
 {
 	enum status s = cut_night(v, r, night, e);
-	if (s == ST_OK)
-		s = stored_moves(v, moved_min, e);
-	if (s == ST_OK)
-		s = stored_gone(v, row, e);
-	return s;
+	return s == ST_OK ? stored_moves(v, moved_min, e) : s;
 }
 
 /* --- worked out anew --- */
@@ -186,9 +181,11 @@ static enum status get(struct run *r, int32_t evening_mjd, const struct plan_wis
 	if (s != ST_OK)
 		return s;
 	if (row->id != 0 && !wish_any(wish))
-		s = as_stored(v, r, row, night, wish->moved_min, e);
+		s = as_stored(v, r, night, wish->moved_min, e);
 	else
 		s = make_anew(v, r, wish, c, night, echo, e);
+	if (s == ST_OK)
+		s = stored_past(v, !wish_any(wish), e);
 	if (s != ST_OK)
 		return s;
 	pins_of(v, c);

@@ -69,19 +69,67 @@ static const char *no_time(const struct window *w, const struct plan_standing *s
 	return "no free time of the night holds it";
 }
 
-/* `Tern 3 b`, `Tern 3 b + Tern 3 c` */
-static void item_name(const struct night_plan *p, size_t item, const struct plan_offer offer[],
-		      const struct plan_standing *standing, const size_t fixed_item[], char *out, size_t n)
+/* The order that others clash with. */
+struct order {
+	const struct plan_view *v;
+	const struct night_plan *p;
+	const struct plan_offer *offer;
+	const struct plan_standing *standing;
+	const size_t *fixed_item;
+};
+
+static const struct plan_item_view *begun(const struct order *o, size_t item)
 {
-	const struct plan_item *it = &p->item[item];
-	const struct plan_item_view *begun = it->fixed >= 0 ? standing->item[fixed_item[it->fixed]] : NULL;
-	const size_t members = begun ? begun->n : (size_t)it->n;
+	const long fixed = o->p->item[item].fixed;
+	return fixed >= 0 ? o->standing->item[o->fixed_item[fixed]] : NULL;
+}
+
+static size_t members(const struct order *o, size_t item)
+{
+	const struct plan_item_view *b = begun(o, item);
+	return b ? b->n : (size_t)o->p->item[item].n;
+}
+
+/* *t1_d: days of the night. */
+static const char *member_name(const struct order *o, size_t item, size_t k, double *t1_d)
+{
+	const struct plan_item_view *b = begun(o, item);
+	if (b) {
+		*t1_d = night_of_utc(&o->v->night->night, b->member[k].t1);
+		return b->member[k].target;
+	}
+	const struct window_event *event = &o->offer[o->p->item[item].member[k].offer].window->event;
+	*t1_d = event->t1_d;
+	return event->prepared->target->name;
+}
+
+/* Whether the order holds more than one event of a target. */
+static bool twice(const struct order *o, const char *name)
+{
+	size_t n = 0;
+	double t1_d;
+	for (size_t i = 0; i < o->p->n_items; i++)
+		for (size_t k = 0; k < members(o, i); k++)
+			n += strcmp(member_name(o, i, k, &t1_d), name) == 0;
+	return n > 1;
+}
+
+/* `Tern 3 b`, `Tern 3 b + Tern 3 c`, `Tern 3 b (T1 22:40 MDT)` where there is another event of it. */
+static void item_name(const struct order *o, size_t item, char *out, size_t n)
+{
+	const size_t count = members(o, item);
+	char clock[PLAN_CLOCK_BYTES];
+	double t1_d;
 	out[0] = '\0';
-	for (size_t i = 0; i < members; i++) {
-		const size_t used = strlen(out);
-		plan_put_words(out + used, n - used, "%s%s", i ? " + " : "",
-			       begun ? begun->member[i].target
-				     : offer[it->member[i].offer].window->event.prepared->target->name);
+	for (size_t i = 0; i < count; i++) {
+		const char *name = member_name(o, item, i, &t1_d);
+		size_t used = strlen(out);
+		plan_put_words(out + used, n - used, "%s%s", i ? " + " : "", name);
+		if (!twice(o, name))
+			continue;
+		plan_clock_words(o->v, night_utc(&o->v->night->night, t1_d), clock);
+		used = strlen(out);
+		plan_put_words(out + used, n - used, " (T1 %s)", clock);
 	}
 }
 
@@ -96,43 +144,40 @@ static const char *worth_words(const struct night_plan *p, const struct plan_lef
 }
 
 /* Pins that found their place: which of them are in the way is not known one by one. */
-static void other_pins(const struct night_plan *p, const struct plan_offer offer[],
-		       const struct plan_standing *standing, const size_t fixed_item[], char *out, size_t n)
+static void other_pins(const struct order *o, char *out, size_t n)
 {
-	char names[WORDS_BYTES / 2] = "", one[NAME_BYTES_MAX];
-	for (size_t i = 0; i < p->n_items; i++) {
-		bool pinned = p->item[i].fixed >= 0;
-		for (int k = 0; k < p->item[i].n; k++)
-			pinned = pinned || offer[p->item[i].member[k].offer].pinned;
+	char names[WORDS_BYTES / 2] = "", one[PLAN_NAME_BYTES];
+	for (size_t i = 0; i < o->p->n_items; i++) {
+		const struct plan_item *item = &o->p->item[i];
+		bool pinned = item->fixed >= 0;
+		for (int k = 0; k < item->n; k++)
+			pinned = pinned || o->offer[item->member[k].offer].pinned;
 		if (!pinned)
 			continue;
 		const size_t used = strlen(names);
-		item_name(p, i, offer, standing, fixed_item, one, sizeof one);
-		if (!strstr(names, one)) /* two events of one target */
-			plan_put_words(names + used, sizeof names - used, "%s%s", used ? ", " : "", one);
+		item_name(o, i, one, sizeof one);
+		plan_put_words(names + used, sizeof names - used, "%s%s", used ? ", " : "", one);
 	}
 	plan_put_words(out, n, "pinned, but it clashes with what is pinned too or has begun: %s", names);
 }
 
-static void clash(const struct night_plan *p, const struct plan_offer offer[], const struct plan_left *left,
-		  const struct plan_standing *standing, const size_t fixed_item[], bool costs, char *out,
-		  size_t n)
+static void clash(const struct order *o, const struct plan_left *left, bool costs, char *out, size_t n)
 {
-	char names[WORDS_BYTES / 2] = "", one[NAME_BYTES_MAX];
+	char names[WORDS_BYTES / 2] = "", one[PLAN_NAME_BYTES];
 	const size_t shown = left->n_clash < LEFT_CLASHES_MAX ? left->n_clash : LEFT_CLASHES_MAX;
 	for (size_t i = 0; i < shown; i++) {
 		const size_t used = strlen(names);
 		const char *link = i == 0 ? "" : i + 1 == left->n_clash ? " and " : ", ";
-		item_name(p, left->clash[i], offer, standing, fixed_item, one, sizeof one);
+		item_name(o, left->clash[i], one, sizeof one);
 		plan_put_words(names + used, sizeof names - used, "%s%s", link, one);
 	}
 	if (left->reason == LEFT_PINS && shown > 0)
 		plan_put_words(out, n, "pinned, but it clashes with %s", names);
 	else if (left->reason == LEFT_PINS)
-		other_pins(p, offer, standing, fixed_item, out, n);
+		other_pins(o, out, n);
 	else if (shown > 0)
 		plan_put_words(out, n, "clashes with %s%s, %s", names,
-			       left->n_clash > shown ? " and others" : "", worth_words(p, left));
+			       left->n_clash > shown ? " and others" : "", worth_words(o->p, left));
 	else if (costs && isnan(left->cost))
 		plan_put_words(out, n, "what is pinned or has begun leaves no room for it");
 	else
@@ -145,6 +190,8 @@ const char *left_words(struct plan_view *v, const struct night_plan *p, const st
 {
 	char text[WORDS_BYTES] = "", cost[NUMBER_TEXT_MAX];
 	const struct window *w = offer[left->offer].window;
+	const struct order order = {
+	    .v = v, .p = p, .offer = offer, .standing = standing, .fixed_item = fixed_item};
 	switch (left->reason) {
 	case LEFT_WORTHLESS:
 		worthless(w, text, sizeof text);
@@ -154,7 +201,7 @@ const char *left_words(struct plan_view *v, const struct night_plan *p, const st
 		break;
 	case LEFT_CLASH:
 	case LEFT_PINS:
-		clash(p, offer, left, standing, fixed_item, costs, text, sizeof text);
+		clash(&order, left, costs, text, sizeof text);
 		break;
 	case LEFT_DROPPED:
 		snprintf(text, sizeof text, "dropped by you");

@@ -90,10 +90,12 @@ double poor_share(const struct plan_view *v, const struct night *night, const st
 MUST_USE enum status stored_find(struct run *r, int32_t evening_mjd, const char *draft, struct plan_row *out, struct err *e);
 /* Fills a view from it: items, blocks, left out; choices for working it out anew. */
 MUST_USE enum status stored_view(struct plan_view *v, const struct plan_row *row, struct plan_choices *c, struct err *e);
+/* An item from its row. */
+MUST_USE enum status stored_item(struct plan_view *v, struct plan_item_view *item, const struct plan_item_row *row, struct err *e);
 /* What today's ephemerides would move. */
 MUST_USE enum status stored_moves(struct plan_view *v, double moved_min, struct err *e);
-/* Items of earlier editions that are in this one no more. */
-MUST_USE enum status stored_gone(struct plan_view *v, const struct plan_row *row, struct err *e);
+/* What the night's plans have been through: revisions, and, where with_gone, what was kept once and is in v no more. */
+MUST_USE enum status stored_past(struct plan_view *v, bool with_gone, struct err *e);
 
 /* Effective limits and rules of moving, `name=value` with a tab between; NULL no memory. */
 const char *plan_limits_text(struct plan_view *v);

@@ -129,8 +129,8 @@ static enum status member_of_row(struct plan_view *v, struct plan_member_view *m
 	return member_target(v, m, e);
 }
 
-static enum status item_of_row(struct plan_view *v, struct plan_item_view *item,
-			       const struct plan_item_row *row, struct err *e)
+enum status stored_item(struct plan_view *v, struct plan_item_view *item, const struct plan_item_row *row,
+			struct err *e)
 {
 	*item = (struct plan_item_view){
 	    .key = plan_copy(v, row->key),
@@ -179,6 +179,20 @@ static bool was_missed(const struct plan_choices *c, const char *key)
 		if (strcmp(c->missed[i], key) == 0)
 			return true;
 	return false;
+}
+
+/* What was lost since the edition was stored, or never begun, counts no more: as in a plan worked out anew.
+ */
+static void worth_of_marked(struct plan_view *v, const struct plan_choices *c)
+{
+	double worth = 0.0;
+	for (size_t i = 0; i < v->n_items; i++) {
+		const struct plan_item_view *item = &v->item[i];
+		if (item->state != PLAN_LOST && (item->state > PLAN_PINNED || !was_missed(c, item->key)))
+			worth += item->worth;
+	}
+	v->bound += worth - v->worth;
+	v->worth = worth;
 }
 
 /* --- what was left out --- */
@@ -268,56 +282,12 @@ enum status stored_view(struct plan_view *v, const struct plan_row *row, struct 
 		return plan_memory(v, e);
 	for (size_t i = 0; s == ST_OK && i < row->n; i++) {
 		struct plan_item_view *item = &v->item[v->n_items++];
-		s = item_of_row(v, item, &row->item[i], e);
+		s = stored_item(v, item, &row->item[i], e);
 		if (item->state == PLAN_PLANNED && is_pinned(v, c, item))
 			item->state = PLAN_PINNED;
 		if (item->state <= PLAN_PINNED && !item->note[0] && was_missed(c, item->key))
 			item->note = "not begun";
 	}
+	worth_of_marked(v, c);
 	return s == ST_OK ? plan_memory(v, e) : s;
-}
-
-static bool has_key(const struct plan_item_view *item, size_t n, const char *key)
-{
-	for (size_t i = 0; i < n; i++)
-		if (strcmp(item[i].key, key) == 0)
-			return true;
-	return false;
-}
-
-static enum status gone_of_edition(struct plan_view *v, const struct plan_row *old, size_t *room,
-				   struct err *e)
-{
-	enum status s = ST_OK;
-	for (size_t i = 0; s == ST_OK && i < old->n; i++) {
-		if (has_key(v->item, v->n_items, old->item[i].key) ||
-		    has_key(v->gone, v->n_gone, old->item[i].key))
-			continue;
-		if (v->n_gone == *room) {
-			struct plan_item_view *more = plan_alloc(v, 2 * *room + 8, sizeof *more);
-			if (!more)
-				return plan_memory(v, e);
-			if (v->n_gone > 0)
-				memcpy(more, v->gone, v->n_gone * sizeof *more);
-			v->gone = more;
-			*room = 2 * *room + 8;
-		}
-		s = item_of_row(v, &v->gone[v->n_gone++], &old->item[i], e);
-	}
-	return s;
-}
-
-enum status stored_gone(struct plan_view *v, const struct plan_row *row, struct err *e)
-{
-	enum status s = ST_OK;
-	size_t room = 0;
-	for (int edition = row->edition - 1; s == ST_OK && row->kept && edition >= 1; edition--) {
-		struct plan_row old;
-		/* an edition that can't be read takes nothing from the one that holds; wane check names it */
-		if (plan_load(v->run->store, row->id, edition, &old, NULL) != ST_OK)
-			continue;
-		s = gone_of_edition(v, &old, &room, e);
-		plan_row_free(&old);
-	}
-	return s;
 }

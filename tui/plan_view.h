@@ -82,13 +82,20 @@ struct plan_view {
 	struct plan_left_view *left;
 	size_t n_pins, n_drops;
 	const char **pin, **drop; /* as typed: target names, or NAME@EPOCH */
-	/* items of earlier editions of a kept plan that this one has no more: keys and what they were, for cancelling */
-	size_t n_gone;
+	/* items and blocks of whatever plan of this night was kept before that this one has no more, as they were: for cancelling.
+	 * Empty for a draft beside a kept plan, and for a proposal that something was wished of */
+	size_t n_gone, n_gone_blocks;
 	struct plan_item_view *gone;
+	struct plan_block_view *gone_block;
+	int64_t revisions;	 /* of the night's plans: struct plan_past; 0 none was ever stored */
+	const char *revised_utc; /* "" */
 	long moved; /* members that moved */
 	struct plan_arena *arena; /* owns all that is not said to be borrowed */
 };
 void plan_view_free(struct plan_view *v);
+
+/* The same kind, text and times to the second. */
+bool plan_block_same(const struct plan_view *v, const struct plan_block_view *a, const struct plan_block_view *b);
 
 /* Text of a member's figure by the column's name; "" none. */
 const char *member_figure(const struct plan_member_view *m, const char *column);

@@ -41,6 +41,7 @@ sheet South "$first" >"$scratch/south.ics"
 keep North "$second" --drop 'Tern 50 b'
 sheet North "$second" >"$scratch/dropped.ics"
 keep North "$third" --free 'Tern 50 b'
+cp "$db" "$scratch/c.db"
 sheet North "$third" >"$scratch/back.ics"
 check "no clock in the text" sh -c '! tr -d "\r" <"$1" | grep -q "^DTSTAMP:20260423"' - "$scratch/later.ics"
 check "a calendar has no METHOD" sh -c '! grep -q METHOD "$1"' - "$scratch/north.ics"
@@ -100,7 +101,96 @@ while IFS= read -r line; do
 done <"$scratch/said"
 check "all was looked at" test "$(wc -l <"$scratch/said")" = 15
 
+# --- a night that goes through drafts, undos and blocks: one file after each step, in order
+step=0
+export_step() { # export_step NOW: the kept plan's calendar
+	step=$((step + 1))
+	wane sheet "$night" --telescope "North" --format ics --now "$1" >"$scratch/$(printf 'step%d.ics' "$step")"
+	check "step $step: exit 0: $(head -n 1 "$scratch/err")" test $? = 0
+}
+plan_step() { # NOW ARGUMENTS
+	now=$1
+	shift
+	wane plan "$night" --kind both --telescope "North" --now "$now" "$@" >/dev/null
+	check "plan $*: exit 0: $(head -n 1 "$scratch/err")" test $? = 0
+}
+export_step 2026-04-21T20:10:00Z # 1: main, edition 3
+plan_step 2026-04-21T20:20:00Z --keep --block '22:40..23:10=flats' --block '22:40..+30m=flats'
+export_step 2026-04-21T20:21:00Z # 2: with a block
+plan_step 2026-04-21T20:30:00Z --keep --unblock flats
+export_step 2026-04-21T20:31:00Z # 3: the block is gone
+plan_step 2026-04-21T20:40:00Z --draft windy --save --drop 'Tern 18 b'
+export_step 2026-04-21T20:41:00Z # 4: another draft beside it
+plan_step 2026-04-21T20:50:00Z --draft windy --keep
+export_step 2026-04-21T20:51:00Z # 5: it is the kept one
+wane undo --now 2026-04-21T21:00:00Z >/dev/null
+check "undo: exit 0" test $? = 0
+export_step 2026-04-21T21:01:00Z # 6: main again
+plan_step 2026-04-21T21:10:00Z --draft windy --keep
+wane plan "$night" --telescope North --remove main --now 2026-04-21T21:11:00Z >/dev/null
+check "main is removed" test $? = 0
+export_step 2026-04-21T21:12:00Z # 7: windy, main is in no list
+wane plan "$night" --telescope North --remove windy --now 2026-04-21T21:30:00Z >/dev/null
+check "windy is removed" test $? = 0
+export_step 2026-04-21T21:31:00Z # 8: nothing is kept: a proposal
+plan_step 2026-04-21T21:40:00Z --keep --draft late --afresh
+wane site set 'Tern Hill' --place 38.62,30,2100 --now 2026-04-21T21:41:00Z >/dev/null
+check "the site is moved: $(head -n 1 "$scratch/err")" test $? = 0
+export_step 2026-04-21T21:42:00Z # 9: nine hours farther east what was planned stands in daylight
+cat >"$scratch/steps.py" <<'EOT'
+import glob, sys
+import icalendar
+
+def say(what, good):
+    print(("ok " if good else "BAD ") + what)
+
+def read(name):
+    with open(name, "rb") as f:
+        calendar = icalendar.Calendar.from_ical(f.read())
+    every = [e for e in calendar.walk() if e.name in ("VEVENT", "VJOURNAL")]
+    return {str(e["UID"]): e for e in every}, len(every)
+
+steps = [read(n) for n in sorted(glob.glob(sys.argv[1] + "/step*.ics"))]
+for k, (all_of, n) in enumerate(steps):
+    say("step %d: identifiers are distinct" % (k + 1), len(all_of) == n)
+steps = [s[0] for s in steps]
+for k in range(1, len(steps)):
+    before, now = steps[k - 1], steps[k]
+    missing = [str(e["SUMMARY"]) for u, e in before.items() if u not in now]
+    say("step %d: whatever the step before had is there: %s" % (k + 1, missing), not missing)
+    both = [(before[u], e) for u, e in now.items() if u in before]
+    fallen = [str(e["SUMMARY"]) for b, e in both if int(e["SEQUENCE"]) < int(b["SEQUENCE"])]
+    say("step %d: no SEQUENCE falls: %s" % (k + 1, fallen), not fallen)
+    back = [str(e["SUMMARY"]) for b, e in both if e["DTSTAMP"].dt < b["DTSTAMP"].dt]
+    say("step %d: no DTSTAMP falls: %s" % (k + 1, back), not back)
+    # that a site was put right is no revision of its plans: SEQUENCE may stay
+    same = [str(e["SUMMARY"]) for b, e in both if e["STATUS"] != b["STATUS"] and e["SEQUENCE"] == b["SEQUENCE"]]
+    say("step %d: another status has a greater SEQUENCE: %s" % (k + 1, same), not same or k + 1 == 9)
+
+def status(k):
+    return sorted((str(e["SUMMARY"]).replace(" (cancelled)", "").replace(", cancelled", ""), str(e["STATUS"])) for e in steps[k - 1].values() if e.name == "VEVENT")
+
+both, other = ["Tern 18 b (occultation)", "Tern 18 b (transit)"], "Tern 50 b (transit)"
+flats = "block: flats"
+say("step 2: a block twice is one event: %s" % status(2), [s for s in status(2) if s[0] == flats] == [(flats, "CONFIRMED")])
+say("step 3: it is cancelled: %s" % status(3), (flats, "CANCELLED") in status(3))
+say("step 3: the others are confirmed", all(s[1] == "CONFIRMED" for s in status(3) if s[0] != flats))
+say("step 5: what the other draft leaves out is cancelled: %s" % status(5), all((b, "CANCELLED") in status(5) for b in both) and (other, "CONFIRMED") in status(5))
+say("step 6: and confirmed again: %s" % status(6), all((b, "CONFIRMED") in status(6) for b in both))
+say("step 7: what only a removed draft had is cancelled: %s" % status(7), all((b, "CANCELLED") in status(7) for b in both))
+say("step 8: a proposal confirms nothing: %s" % status(8), not any(s[1] == "CONFIRMED" for s in status(8)))
+say("step 9: nothing in daylight is confirmed: %s" % status(9), len(status(9)) == 4 and all(s[1] == "CANCELLED" for s in status(9)))
+say("step 9: and rings no bell", all(not e.walk("VALARM") for e in steps[8].values()))
+EOT
+"$python" "$scratch/steps.py" "$scratch" >"$scratch/said" 2>&1
+check "the reader of the steps comes to its end: $(tail -n 1 "$scratch/said")" test $? = 0
+while IFS= read -r line; do
+	check "$line" test "${line%% *}" = ok
+done <"$scratch/said"
+check "all steps were looked at" test "$(wc -l <"$scratch/said")" = 50
+
 # --- the command line
+db=$scratch/c.db
 sheet_fault() { # CODE TEXT ARGUMENTS
 	code=$1 text=$2
 	shift 2

@@ -229,7 +229,7 @@ static void a_sheet_is_read_whole(void **state)
 	(void)state;
 	static const enum plan_fixture_kind kinds[] = {PLAN_FIXTURE_KEPT, PLAN_FIXTURE_DRAFT,
 						       PLAN_FIXTURE_EMPTY};
-	static const int events[] = {8, 7, 0};
+	static const int events[] = {9, 8, 0};
 	char uid[2][EVENTS_MAX][64];
 	for (int k = 0; k < 3; k++) {
 		struct plan_fixture *f = plan_fixture_open(kinds[k], FIXTURE_EVENING_MJD, true);

@@ -267,6 +267,7 @@ static void put_order(struct plan_fixture *f, enum plan_fixture_kind kind)
 	v->n_drops = 1;
 	v->drop = drops;
 	if (kept) {
+		v->revisions = 3;
 		v->n_gone = 1;
 		v->gone = f->gone;
 		v->moved = 1;
@@ -290,6 +291,7 @@ struct plan_fixture *plan_fixture_open(enum plan_fixture_kind kind, int32_t even
 	    .who = "ann <a@tern>",
 	    .limits = "sun_limit_deg=-12\talt_limit_deg=30\tmoon_limit_deg=30\tpad=2\tkind=both",
 	    .leap_date = "2026-12-28",
+	    .revised_utc = "",
 	    .rules = {.settle_d = 4.0 / 1440.0,
 		      .slew_deg_d = 86400.0,
 		      .filter_d = 0.5 / 1440.0,

@@ -412,9 +412,10 @@ static void calendar_says_what_it_is(void **state)
 		int events, confirmed, tentative, cancelled, alarms, journals;
 		const char *stamp, *sequence;
 	} rows[] = {
-	    /* three items, four blocks, one gone; what has begun rings no bell */
-	    {PLAN_FIXTURE_KEPT, 8, 7, 0, 1, 2, 1, "DTSTAMP:20260420T180500Z\r\n", "SEQUENCE:2\r\n"},
-	    {PLAN_FIXTURE_DRAFT, 7, 0, 7, 0, 3, 1, "DTSTAMP:20260420T180500Z\r\n", "SEQUENCE:0\r\n"},
+	    /* four items, one of them in daylight: cancelled where it may have been exported before; four
+	     * blocks, one item gone; what has begun rings no bell */
+	    {PLAN_FIXTURE_KEPT, 9, 7, 0, 2, 2, 1, "DTSTAMP:20260420T180500Z\r\n", "SEQUENCE:2\r\n"},
+	    {PLAN_FIXTURE_DRAFT, 8, 0, 7, 1, 3, 1, "DTSTAMP:20260420T180500Z\r\n", "SEQUENCE:0\r\n"},
 	    {PLAN_FIXTURE_PROPOSAL, 7, 0, 7, 0, 3, 1, "DTSTAMP:20260420T180500Z\r\n", "SEQUENCE:0\r\n"},
 	    {PLAN_FIXTURE_EMPTY, 0, 0, 0, 0, 0, 1, "DTSTAMP:19700101T000000Z\r\n", "SEQUENCE:0\r\n"},
 	};
@@ -457,6 +458,46 @@ static void the_same_data_gives_the_same_bytes(void **state)
 	plan_fixture_close(f);
 }
 
+/* The lines of a calendar that hold its identifiers, one after the other. */
+static void identifiers(const char *text, char *out, size_t room)
+{
+	size_t used = 0;
+	for (const char *at = text; (at = strstr(at, "\r\nUID:")); at += 2) {
+		const size_t n = strcspn(at + 2, "\r");
+		assert_true(used + n + 1 < room);
+		memcpy(out + used, at + 2, n);
+		used += n;
+	}
+	out[used] = '\0';
+}
+
+static void names_change_no_identifier(void **state)
+{
+	(void)state;
+	struct plan_fixture *f = plan_fixture_open(PLAN_FIXTURE_KEPT, FIXTURE_EVENING_MJD, true);
+	struct run *r = &f->base->run;
+	struct memory *a = memory_open(), *b = memory_open(), *c = memory_open();
+	static char before[4000], renamed[4000], other[4000];
+	r->site.id = 3;
+	r->telescope.id = 2;
+	assert_true(plan_sheet_ics(a->file, &f->view));
+	r->site.name = "Tern Top";
+	f->view.telescope = "Northern";
+	assert_true(plan_sheet_ics(b->file, &f->view));
+	r->telescope.id = 4;
+	assert_true(plan_sheet_ics(c->file, &f->view));
+	identifiers(memory_text(a), before, sizeof before);
+	identifiers(memory_text(b), renamed, sizeof renamed);
+	identifiers(memory_text(c), other, sizeof other);
+	assert_non_null(strstr(b->text, "Tern Top"));
+	assert_string_equal(before, renamed);
+	assert_string_not_equal(before, other); /* another telescope's blocks are others */
+	memory_close(a);
+	memory_close(b);
+	memory_close(c);
+	plan_fixture_close(f);
+}
+
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
@@ -473,6 +514,7 @@ int main(void)
 	    cmocka_unit_test(text_of_nothing),
 	    cmocka_unit_test(csv_has_a_row_an_event),
 	    cmocka_unit_test(calendar_says_what_it_is),
+	    cmocka_unit_test(names_change_no_identifier),
 	    cmocka_unit_test(the_same_data_gives_the_same_bytes),
 	};
 	return cmocka_run_group_tests_name("plan sheet", tests, NULL, NULL);

@@ -204,6 +204,26 @@ static void time_cell(struct html_page *p, const char *name, struct utc t, const
 	fputs("</td>\n", p->out.to);
 }
 
+/* What is planned of it where that is not all; of several events with their names. */
+static void planned_parts(struct html_page *p, const struct plan_item_view *item)
+{
+	const char *before = " <small>";
+	for (size_t i = 0; i < item->n; i++) {
+		const char *part = plan_part_words(item->member[i].variant);
+		if (!part[0])
+			continue;
+		fputs(before, p->out.to);
+		if (item->n > 1) {
+			html_text(&p->out, item->member[i].target);
+			fputs(" ", p->out.to);
+		}
+		fputs(part, p->out.to);
+		before = ", ";
+	}
+	if (before[0] == ',')
+		fputs("</small>", p->out.to);
+}
+
 static void summary_row(struct html_page *p, const struct plan_item_view *item)
 {
 	const struct leap_table *leap = p->v->night->night.clock.leap;
@@ -216,6 +236,7 @@ static void summary_row(struct html_page *p, const struct plan_item_view *item)
 	    item->order, item->order);
 	html_item_name(p, item);
 	fputs("</a>", to);
+	planned_parts(p, item);
 	if (item->state != PLAN_PLANNED)
 		fprintf(to, " <small>%s</small>", plan_state_words[item->state]);
 	fputs("</th>\n", to);

@@ -15,6 +15,8 @@
 
 enum { LINE_BYTES = 1400, SITE_BYTES = 704 };
 
+static const char no_more[] = "it is in the plan no more";
+
 /* --- words --- */
 
 static void put_instant(FILE *to, const struct plan_view *v, const char *word, struct utc t)
@@ -50,9 +52,11 @@ static void put_figure(FILE *to, const char *before, const char *figure, const c
 static void member_words(FILE *to, const struct plan_view *v, const struct plan_member_view *m)
 {
 	char line[LINE_BYTES], figure[NUMBER_TEXT_MAX];
+	const char *part = plan_part_words(m->variant);
 	struct utc t;
 	plan_line(m->target, line, sizeof line);
-	fprintf(to, "%s: %s, epoch %ld, %s", line, plan_kind_word(m->kind), m->epoch, m->variant);
+	fprintf(to, "%s: %s, epoch %ld, %s", line, plan_kind_word(m->kind), m->epoch,
+		part[0] ? part : m->variant);
 	plan_star_words(m, line, sizeof line);
 	put_figure(to, "; ", line, "");
 	plan_figure(m, "depth_ppt", 1, figure);
@@ -77,12 +81,13 @@ static void member_words(FILE *to, const struct plan_view *v, const struct plan_
 	}
 }
 
-static void item_words(FILE *to, const struct plan_view *v, const struct plan_item_view *item, bool gone)
+static void item_words(FILE *to, const struct plan_view *v, const struct plan_item_view *item,
+		       const char *gone)
 {
 	char line[LINE_BYTES];
 	night_line(to, v);
 	if (gone)
-		fputs("CANCELLED: it is in the plan no more.\n", to);
+		fprintf(to, "CANCELLED: %s.\n", gone);
 	fprintf(to, "state: %s", plan_state_words[item->state]);
 	plan_line(item->cause, line, sizeof line);
 	put_figure(to, ", because of ", line, "");
@@ -138,14 +143,16 @@ static void put_uid(struct ics *c, const struct plan_view *v, const char *kind, 
 /* DTSTAMP and SEQUENCE: from the store, never the clock. marked_utc: when the event was marked, "" not. */
 static void put_revision(struct ics *c, const struct plan_view *v, const char *marked_utc)
 {
-	char stamp[ICS_TIME_BYTES] = "19700101T000000Z", sequence[16];
-	/* both are of one form, `YYYY-MM-DDTHH:MM:SSZ`: the later one is the greater one */
+	char stamp[ICS_TIME_BYTES] = "19700101T000000Z", sequence[24];
+	/* all are of one form, `YYYY-MM-DDTHH:MM:SSZ`: the later one is the greater one */
 	const char *revised = strcmp(marked_utc, v->stored_utc) > 0 ? marked_utc : v->stored_utc;
+	revised = strcmp(v->revised_utc, revised) > 0 ? v->revised_utc : revised;
 	struct utc t;
 	if (revised[0] && utc_parse(&v->run->leap, revised, &t, NULL) == ST_OK)
 		ics_time(t, false, stamp);
 	ics_value(c, "DTSTAMP", stamp);
-	snprintf(sequence, sizeof sequence, "%d", v->stored && v->edition > 0 ? v->edition - 1 : 0);
+	/* an event has one identifier in every draft of its night: the number counts the revisions of all */
+	snprintf(sequence, sizeof sequence, "%lld", v->revisions > 0 ? (long long)v->revisions - 1 : 0LL);
 	ics_value(c, "SEQUENCE", sequence);
 }
 
@@ -191,7 +198,9 @@ static bool to_come(const struct plan_item_view *item)
 	return item->state == PLAN_PLANNED || item->state == PLAN_PINNED;
 }
 
-static void put_item(struct ics *c, const struct plan_view *v, const struct plan_item_view *item, bool gone)
+/* gone: why it is cancelled; NULL it is not. */
+static void put_item(struct ics *c, const struct plan_view *v, const struct plan_item_view *item,
+		     const char *gone)
 {
 	char names[PLAN_NAMES_BYTES], summary[PLAN_NAMES_BYTES + 64], *text = NULL;
 	bool kind[2] = {false, false};
@@ -222,7 +231,18 @@ static void put_item(struct ics *c, const struct plan_view *v, const struct plan
 	ics_value(c, "END", "VEVENT");
 }
 
-static void put_block(struct ics *c, const struct plan_view *v, const struct plan_block_view *b)
+/* Of the site and its telescope: by their numbers, which outlive their names. A place that is not stored has
+ * only its name. */
+static void put_place_key(const struct plan_view *v, char out[SITE_BYTES])
+{
+	if (v->run->site.id != 0)
+		snprintf(out, SITE_BYTES, "S%lld/O%lld", (long long)v->run->site.id,
+			 (long long)v->run->telescope.id);
+	else
+		place_words(v, out);
+}
+
+static void put_block(struct ics *c, const struct plan_view *v, const struct plan_block_view *b, bool gone)
 {
 	static const char *const what[] = {"block", "standing block", "lost time", "poor time"};
 	char words[LINE_BYTES], summary[LINE_BYTES + 32], from[ICS_TIME_BYTES], to[ICS_TIME_BYTES],
@@ -234,6 +254,8 @@ static void put_block(struct ics *c, const struct plan_view *v, const struct pla
 	ics_time(b->from, false, from);
 	ics_time(b->to, true, to);
 	night_line(file, v);
+	if (gone)
+		fprintf(file, "CANCELLED: %s.\n", no_more);
 	put_instant(file, v, "from", b->from);
 	put_instant(file, v, "to", b->to);
 	if (b->kind == BLOCK_POOR)
@@ -241,19 +263,20 @@ static void put_block(struct ics *c, const struct plan_view *v, const struct pla
 	if (b->near_sun)
 		fprintf(file, "The Sun is up or in bright twilight for some of it. %s\n", cautions[0]);
 	plan_line(b->text, words, sizeof words - 128);
-	snprintf(summary, sizeof summary, "%s%s%s", what[b->kind], words[0] ? ": " : "", words);
+	snprintf(summary, sizeof summary, "%s%s%s%s", what[b->kind], words[0] ? ": " : "", words,
+		 gone ? " (cancelled)" : "");
 	ics_value(c, "BEGIN", "VEVENT");
-	/* site and telescope are in an item's key; a block has none */
-	char place[SITE_BYTES], key[LINE_BYTES + SITE_BYTES + 2 * ICS_TIME_BYTES + 8];
-	place_words(v, place);
-	snprintf(key, sizeof key, "S%lld/%s/%s/%s/%s", (long long)v->run->site.id, place, words, from, to);
+	/* an item's key is stored; a block has none */
+	char place[SITE_BYTES], key[LINE_BYTES + SITE_BYTES + 2 * ICS_TIME_BYTES + 16];
+	put_place_key(v, place);
+	snprintf(key, sizeof key, "%s/%s/%s/%s/%s", place, plan_block_words[b->kind], words, from, to);
 	put_uid(c, v, "block", key);
 	put_revision(c, v, "");
 	put_span(c, v, b->from, b->to);
 	ics_text(c, "SUMMARY", summary);
 	words_close(c, file, &text, "DESCRIPTION");
 	put_place(c, v);
-	ics_value(c, "STATUS", v->kept ? "CONFIRMED" : "TENTATIVE");
+	ics_value(c, "STATUS", gone ? "CANCELLED" : v->kept ? "CONFIRMED" : "TENTATIVE");
 	ics_text(c, "CATEGORIES", plan_block_words[b->kind]);
 	ics_value(c, "END", "VEVENT");
 }
@@ -285,8 +308,7 @@ static void journal_words(FILE *to, const struct plan_view *v)
 /* What belongs to no event; a calendar has at least one component (sec. 3.6). */
 static void put_journal(struct ics *c, const struct plan_view *v)
 {
-	char place[SITE_BYTES], name[64], summary[SITE_BYTES + 80], key[SITE_BYTES + 40], date[16],
-	    *text = NULL;
+	char place[SITE_BYTES], name[64], summary[SITE_BYTES + 80], key[SITE_BYTES], date[16], *text = NULL;
 	size_t n = 0;
 	FILE *to = words_open(&text, &n, c);
 	if (!to)
@@ -295,7 +317,7 @@ static void put_journal(struct ics *c, const struct plan_view *v)
 	place_words(v, place);
 	night_name(v->night->night.mjd, name, sizeof name);
 	snprintf(summary, sizeof summary, "Night %s at %s", name, place);
-	snprintf(key, sizeof key, "S%lld/%s", (long long)v->run->site.id, place);
+	put_place_key(v, key);
 	const struct date d = date_from_mjd(v->night->night.mjd);
 	snprintf(date, sizeof date, "%04d%02d%02d", d.year, d.month, d.day);
 	ics_value(c, "BEGIN", "VJOURNAL");
@@ -308,6 +330,15 @@ static void put_journal(struct ics *c, const struct plan_view *v)
 	ics_value(c, "END", "VJOURNAL");
 }
 
+/* One that is there twice has one identifier. */
+static bool block_before(const struct plan_view *v, size_t i)
+{
+	for (size_t k = 0; k < i; k++)
+		if (plan_block_same(v, &v->block[k], &v->block[i]))
+			return true;
+	return false;
+}
+
 bool plan_sheet_ics(FILE *to, const struct plan_view *v)
 {
 	struct ics c = {.file = to};
@@ -315,13 +346,18 @@ bool plan_sheet_ics(FILE *to, const struct plan_view *v)
 	ics_value(&c, "VERSION", "2.0");
 	ics_value(&c, "PRODID", "-//wane//night sheet//EN");
 	put_journal(&c, v);
+	/* no calendar calls an observer to a field that the Sun is over; it may have done so before the site
+	 * was put right */
 	for (size_t i = 0; i < v->n_items; i++)
-		if (!v->item[i].in_day) /* no calendar calls an observer to a field that the Sun is over */
-			put_item(&c, v, &v->item[i], false);
+		if (!v->item[i].in_day || v->stored)
+			put_item(&c, v, &v->item[i], v->item[i].in_day ? plan_sun_up_reason : NULL);
 	for (size_t i = 0; i < v->n_blocks; i++)
-		put_block(&c, v, &v->block[i]);
+		if (!block_before(v, i))
+			put_block(&c, v, &v->block[i], false);
 	for (size_t i = 0; i < v->n_gone; i++)
-		put_item(&c, v, &v->gone[i], true);
+		put_item(&c, v, &v->gone[i], no_more);
+	for (size_t i = 0; i < v->n_gone_blocks; i++)
+		put_block(&c, v, &v->gone_block[i], true);
 	ics_value(&c, "END", "VCALENDAR");
 	return !c.failed;
 }

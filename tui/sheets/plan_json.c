@@ -237,7 +237,7 @@ bool plan_json(FILE *to, const struct plan_view *v, const struct sheet_changes *
 	site_json(&j, "site", &r->site);
 	night_json(&j, v->night, r->limits.value[LIM_SUN]);
 	text_or_null(&j, "telescope", v->telescope);
-	if (v->stored)
+	if (v->limits[0]) /* stored or not, the same keys */
 		stored_limits_json(&j, v->limits);
 	else
 		limits_json(&j, r, &r->site);

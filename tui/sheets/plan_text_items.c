@@ -83,10 +83,11 @@ static void member_lines(struct plan_page *p, const struct plan_item_view *item,
 {
 	const struct leap_table *leap = &p->v->run->leap;
 	char text[PLAN_PIECE_BYTES], depth[NUMBER_TEXT_MAX];
+	const char *part = plan_part_words(m->variant);
 	struct utc t;
 	plan_line(m->target, text, sizeof text);
 	page_put(p, WRAP_INDENT, "%*s%s, %s, epoch %ld, %s", ITEM_INDENT, "", text, plan_kind_word(m->kind),
-		 m->epoch, m->variant);
+		 m->epoch, part[0] ? part : m->variant);
 	for (int c = 0; c < CONTACT_COUNT; c++)
 		if (plan_contact_at(m, (enum plan_contact)c, &t))
 			page_time(p, MEMBER_INDENT, plan_contact_words[c], &t,
@@ -104,7 +105,7 @@ static void member_lines(struct plan_page *p, const struct plan_item_view *item,
 static void item_lines(struct plan_page *p, const struct plan_item_view *item)
 {
 	char text[PLAN_PIECE_BYTES], cause[300], marked[64];
-	plan_names(item, text);
+	plan_names_parts(item, text);
 	page_put(p, 0, "%s", "");
 	page_put(p, ITEM_INDENT, "%2d  %s", item->order, text);
 	plan_line(item->cause, cause, sizeof cause);

@@ -26,19 +26,41 @@ void plan_line(const char *text, char *out, size_t size)
 	out[used] = '\0';
 }
 
-void plan_names(const struct plan_item_view *item, char out[PLAN_NAMES_BYTES])
+const char *plan_part_words(const char *variant)
 {
+	if (strcmp(variant, variant_words[VARIANT_WHOLE]) == 0)
+		return "";
+	if (strcmp(variant, variant_words[VARIANT_INGRESS]) == 0)
+		return "ingress only";
+	return strcmp(variant, variant_words[VARIANT_EGRESS]) == 0 ? "egress only" : variant;
+}
+
+static void names(const struct plan_item_view *item, bool parts, char out[PLAN_NAMES_BYTES])
+{
+	enum { ROOM = 32 }; /* for what stands around a name */
 	char name[NAME_BYTES_MAX];
 	size_t used = 0;
 	out[0] = '\0';
 	for (size_t i = 0; i < item->n; i++) {
+		const char *part = parts ? plan_part_words(item->member[i].variant) : "";
 		plan_line(item->member[i].target, name, sizeof name);
-		if (used + strlen(name) + 8 >= PLAN_NAMES_BYTES) {
+		if (used + strlen(name) + ROOM >= PLAN_NAMES_BYTES) {
 			snprintf(out + used, PLAN_NAMES_BYTES - used, " + ...");
 			return;
 		}
-		used += (size_t)snprintf(out + used, PLAN_NAMES_BYTES - used, "%s%s", i ? " + " : "", name);
+		used += (size_t)snprintf(out + used, PLAN_NAMES_BYTES - used, "%s%s%s%s%s", i ? " + " : "",
+					 name, part[0] ? " (" : "", part, part[0] ? ")" : "");
 	}
+}
+
+void plan_names(const struct plan_item_view *item, char out[PLAN_NAMES_BYTES])
+{
+	names(item, false, out);
+}
+
+void plan_names_parts(const struct plan_item_view *item, char out[PLAN_NAMES_BYTES])
+{
+	names(item, true, out);
 }
 
 void plan_standing_words(const struct plan_view *v, char *out, size_t size)

@@ -35,6 +35,10 @@ void plan_line(const char *text, char *out, size_t size);
 /* Names of an item's targets joined by ` + `. */
 enum { PLAN_NAMES_BYTES = 1024 };
 void plan_names(const struct plan_item_view *item, char out[PLAN_NAMES_BYTES]);
+/* What is planned of an event, for people: `short`, `ingress only`, `egress only`; "" all of it. */
+const char *plan_part_words(const char *variant);
+/* The same as plan_names with these words: `Tern 27 b (short) + Tern 27 c (ingress only)`. */
+void plan_names_parts(const struct plan_item_view *item, char out[PLAN_NAMES_BYTES]);
 /* A figure with fewer decimals for people; "" none. */
 void plan_figure(const struct plan_member_view *m, const char *column, int decimals,
 		 char out[NUMBER_TEXT_MAX]);
