@@ -37,6 +37,7 @@ static enum status order_prepare(struct plan_order *k, struct err *e)
 		st = plan_candidates(in, &k->candidate, &k->n_candidates, e);
 	if (st != ST_OK)
 		return st;
+	plan_pointings_keep_gaps(&k->p);
 	k->n = in->n_fixed + k->n_candidates;
 	k->item = malloc((k->n + 1) * sizeof *k->item);
 	k->taken = malloc((k->n + 1) * sizeof *k->taken);

@@ -16,7 +16,8 @@ static void add_clash(struct plan_left *left, size_t item)
 /* What the left are asked by, opened when it is needed. */
 struct questions {
 	struct plan_order *k;
-	bool *held; /* [in->n] */
+	bool *held;    /* [in->n] */
+	bool *has_way; /* [in->n]: some candidate holds it */
 	struct order_choice pins_choice, no_pins_choice;
 	struct order_through *pins, *no_pins;
 };
@@ -76,8 +77,8 @@ static enum status force_in(struct questions *q, const struct night_plan *out, s
 	bool held;
 	enum status st = ST_OK;
 	if (!*t)
-		st = order_through_open(k->item, k->n, &k->gaps, alone ? &q->no_pins_choice : &q->pins_choice, t,
-					e);
+		st = order_through_open(k->item, k->n, &k->gaps, alone ? &q->no_pins_choice : &q->pins_choice,
+					t, e);
 	if (st == ST_OK)
 		st = order_through_event(*t, (int)left->offer, k->taken, &result, &held, e);
 	if (st != ST_OK || !held || (!alone && result.pins_missed > out->pins_missed))
@@ -95,13 +96,12 @@ static enum status explain(struct questions *q, const struct night_plan *out, si
 {
 	const struct plan_order *k = q->k;
 	const struct plan_offer *o = &k->in->offer[offer];
-	struct plan_way way[PLAN_WAYS_MAX];
 	*left = (struct plan_left){.offer = offer, .reason = LEFT_CLASH, .cost = NAN};
 	if (o->dropped)
 		left->reason = LEFT_DROPPED;
 	else if (!plan_catchable(o->window))
 		left->reason = LEFT_WORTHLESS;
-	else if (plan_ways(k->in, offer, way) == 0)
+	else if (!q->has_way[offer])
 		left->reason = !clashes_with_begun(k, out, left) ? LEFT_NO_TIME
 			       : o->pinned			 ? LEFT_PINS
 								 : LEFT_CLASH;
@@ -119,6 +119,9 @@ static enum status explain_all(struct questions *q, struct night_plan *out, bool
 	for (size_t i = 0; i < out->n_items; i++)
 		for (int j = 0; j < out->item[i].n; j++)
 			planned[out->item[i].member[j].offer] = true;
+	for (size_t i = 0; i < q->k->n_candidates; i++)
+		for (int j = 0; j < q->k->candidate[i].n; j++)
+			q->has_way[q->k->candidate[i].member[j].offer] = true;
 	for (size_t i = 0; i < in->n; i++) {
 		if (planned[i] || in->offer[i].settled)
 			continue;
@@ -135,19 +138,21 @@ enum status plan_left_out(struct plan_order *k, struct night_plan *out, struct e
 	struct questions q = {
 	    .k = k,
 	    .held = malloc((n + 1) * sizeof *q.held),
+	    .has_way = calloc(n + 1, sizeof *q.has_way),
 	    .pins_choice = {.event_pinned = k->pinned, .n_events = (int)n},
 	    .no_pins_choice = {.n_events = (int)n},
 	};
 	bool *planned = calloc(n + 1, sizeof *planned);
 	enum status st;
 	out->left = malloc((n + 1) * sizeof *out->left);
-	if (q.held && planned && out->left)
+	if (q.held && q.has_way && planned && out->left)
 		st = explain_all(&q, out, planned, e);
 	else
 		st = err_set(e, ST_MEMORY, "no memory for what a plan of %zu windows leaves out", n);
 	order_through_close(q.pins);
 	order_through_close(q.no_pins);
 	free(q.held);
+	free(q.has_way);
 	free(planned);
 	return st;
 }

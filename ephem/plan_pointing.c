@@ -95,20 +95,22 @@ enum status plan_pointings_make(const struct plan_input *in, struct plan_pointin
 	if (!planet || !out->star || !out->direction || !out->place)
 		goto no_memory;
 	number_stars(in, planet, out);
-	if (out->n_places <= TABLE_MAX) {
-		const size_t n = out->n_places * out->n_places;
-		out->gap_d = malloc((n + 1) * sizeof *out->gap_d);
-		if (!out->gap_d)
-			goto no_memory;
-		for (size_t i = 0; i < n; i++)
-			out->gap_d[i] = NAN;
-	}
 	free(planet);
 	return ST_OK;
 no_memory:
 	free(planet);
 	plan_pointings_free(out);
 	return err_set(e, ST_MEMORY, "no memory for the pointings of %zu windows", in->n);
+}
+
+void plan_pointings_keep_gaps(struct plan_pointings *p)
+{
+	const size_t n = p->n_places * p->n_places;
+	if (p->n_places > TABLE_MAX)
+		return;
+	p->gap_d = malloc((n + 1) * sizeof *p->gap_d);
+	for (size_t i = 0; p->gap_d && i < n; i++)
+		p->gap_d[i] = NAN;
 }
 
 void plan_pointings_free(struct plan_pointings *p)

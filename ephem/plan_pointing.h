@@ -26,11 +26,13 @@ struct plan_pointings {
 	struct vec3 *direction; /* [n + n_fixed]; of a star, at its lowest offer */
 	uint32_t *place;	/* [n + n_fixed] place in the table of gaps */
 	size_t n_places;
-	double *gap_d; /* [n_places x n_places], worked out when asked for; NULL where there are too many */
+	double *gap_d; /* [n_places x n_places], worked out when asked for; NULL: none are kept */
 };
 /* ST_MEMORY only. O(n log n). */
 MUST_USE enum status plan_pointings_make(const struct plan_input *in, struct plan_pointings *out,
 					 struct err *e);
+/* Makes the table of gaps, where the places are not too many and there is memory for it. */
+void plan_pointings_keep_gaps(struct plan_pointings *p);
 void plan_pointings_free(struct plan_pointings *p);
 bool plan_pointings_share(const struct plan_pointings *p, size_t a, size_t b);
 /* For struct order_gaps; ctx: struct plan_pointings. Two fixed items have no gap: they stand as they

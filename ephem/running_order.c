@@ -200,8 +200,7 @@ static void set_scale(struct order_work *w)
 		pins_max = net->spot[j].pins > pins_max ? net->spot[j].pins : pins_max;
 	}
 	const double pins_all = (length * pins_max + 1.0) * (w->may_force ? 2.0 : 1.0);
-	while (pins_all * (2.0 * length * worth_max / step + 2.0) * (length + 1.0) >
-		   sum_max &&
+	while (pins_all * (2.0 * length * worth_max / step + 2.0) * (length + 1.0) > sum_max &&
 	       step < worth_max)
 		step *= 2.0;
 	struct order_scale scale = {.step = step, .item_share = (int64_t)length + 1};
@@ -215,7 +214,8 @@ static void set_scale(struct order_work *w)
 	}
 	scale.common = scale.common > 0 ? scale.common : 1;
 	scale.pin_units = ((int64_t)length * units_max / scale.common + 1) * scale.common;
-	scale.force = w->may_force ? ((int64_t)length * pins_max + 1) * scale.pin_units * scale.item_share : 0;
+	scale.force =
+	    w->may_force ? ((int64_t)length * pins_max + 1) * scale.pin_units * scale.item_share : 0;
 	net->scale = scale;
 	set_scores(net);
 }

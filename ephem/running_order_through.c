@@ -86,8 +86,7 @@ enum status order_through_open(const struct order_item item[], size_t n, const s
 	*out = t;
 	if (!t)
 		return err_set(e, ST_MEMORY, "no memory for the orders through %d events", choice->n_events);
-	t->w = (struct order_work){
-	    .item = item, .gaps = gaps, .choice = choice, .n = n, .may_force = true};
+	t->w = (struct order_work){.item = item, .gaps = gaps, .choice = choice, .n = n, .may_force = true};
 	enum status s = order_work_open(&t->w, NULL, e);
 	if (s == ST_OK)
 		s = look_both_ways(t, e);
@@ -139,7 +138,8 @@ static int best_holder(const struct order_through *t, int event)
 	int best = NONE;
 	for (int k = t->holder_at[event]; k < t->holder_at[event + 1]; k++) {
 		const int j = t->holder[k];
-		if (best < 0 || t->value[j] + t->end[j] - score[j] > t->value[best] + t->end[best] - score[best])
+		if (best < 0 ||
+		    t->value[j] + t->end[j] - score[j] > t->value[best] + t->end[best] - score[best])
 			best = j;
 	}
 	return best;

@@ -4,8 +4,9 @@
  * a night as it may be: an event lasts 60 to 400 min and can be taken whole, or its first or last third
  * alone. The others are as bad as could be thought of: nothing fits beside anything, all fits beside all but
  * for gaps of hours, and limbs of one event far enough apart that both would be taken. Medians of many
- * nights, and the slowest night. */
-#include "ephem/running_order.h"
+ * nights, and the slowest night. Then the order with one event more, for each event; and whole plans with
+ * what each window left out costs. */
+#include "ephem/night_plan.h"
 
 #include <math.h>
 #include <stdio.h>
@@ -21,7 +22,7 @@ struct pointings {
 	double at[POINTINGS][3];
 	double speed; /* 1: 1 deg/s */
 };
-struct night {
+struct order_night {
 	struct order_item item[ITEMS];
 	int n, n_events;
 };
@@ -42,7 +43,7 @@ static double gap_d(const void *ctx, int from_class, int to_class)
 	return settle_d + acos(fmax(-1.0, fmin(1.0, dot))) / 3.14159265358979323846 * turn_d / p->speed;
 }
 
-static void add(struct night *w, double from_d, double to_d, double worth, int gap_class, int event)
+static void add(struct order_night *w, double from_d, double to_d, double worth, int gap_class, int event)
 {
 	w->item[w->n++] = (struct order_item){.from_d = from_d,
 					      .to_d = to_d,
@@ -53,7 +54,7 @@ static void add(struct night *w, double from_d, double to_d, double worth, int g
 }
 
 /* Whole, and from each end the share that a limb takes. */
-static void add_event(struct night *w, double from_d, double length_d, double limb, double worth,
+static void add_event(struct order_night *w, double from_d, double length_d, double limb, double worth,
 		      int gap_class)
 {
 	int event = w->n_events++;
@@ -62,7 +63,7 @@ static void add_event(struct night *w, double from_d, double length_d, double li
 	add(w, from_d + (1.0 - limb) * length_d, from_d + length_d, 0.4 * worth, gap_class, event);
 }
 
-static void usual(struct night *w, uint64_t *r)
+static void usual(struct order_night *w, uint64_t *r)
 {
 	while (w->n + 3 <= ITEMS) {
 		double length_d = random_between(r, 60.0, 400.0) / 1440.0;
@@ -72,7 +73,7 @@ static void usual(struct night *w, uint64_t *r)
 }
 
 /* Five priorities, so that many orders are worth the same. */
-static void even_worths(struct night *w, uint64_t *r)
+static void even_worths(struct order_night *w, uint64_t *r)
 {
 	usual(w, r);
 	for (int i = 0; i < w->n; i += 3) {
@@ -82,21 +83,21 @@ static void even_worths(struct night *w, uint64_t *r)
 	}
 }
 
-static void all_overlap(struct night *w, uint64_t *r)
+static void all_overlap(struct order_night *w, uint64_t *r)
 {
 	for (int i = 0; i < ITEMS; i++)
 		add(w, random_between(r, 0.0, 0.2), random_between(r, 0.21, night_d),
 		    random_between(r, 0.1, 1.0), i % POINTINGS, w->n_events++);
 }
 
-static void long_gaps(struct night *w, uint64_t *r)
+static void long_gaps(struct order_night *w, uint64_t *r)
 {
 	for (int i = 0; i < ITEMS; i++)
 		add(w, night_d * i / ITEMS, night_d * (i + 0.5) / ITEMS, random_between(r, 0.1, 1.0),
 		    (int)random_between(r, 0.0, POINTINGS), w->n_events++);
 }
 
-static void limbs(struct night *w, uint64_t *r, int events, double limb_min, bool same_worth)
+static void limbs(struct order_night *w, uint64_t *r, int events, double limb_min, bool same_worth)
 {
 	for (int i = 0; i < events; i++) {
 		double length_d = random_between(r, 100.0, 240.0) / 1440.0;
@@ -106,34 +107,34 @@ static void limbs(struct night *w, uint64_t *r, int events, double limb_min, boo
 	}
 }
 
-static void limbs_60(struct night *w, uint64_t *r)
+static void limbs_60(struct order_night *w, uint64_t *r)
 {
 	limbs(w, r, 60, 30.0, false);
 }
 
-static void limbs_60_same(struct night *w, uint64_t *r)
+static void limbs_60_same(struct order_night *w, uint64_t *r)
 {
 	limbs(w, r, 60, 30.0, true);
 }
 
-static void limbs_60_brief(struct night *w, uint64_t *r)
+static void limbs_60_brief(struct order_night *w, uint64_t *r)
 {
 	limbs(w, r, 60, 8.0, false);
 }
 
-static void limbs_166(struct night *w, uint64_t *r)
+static void limbs_166(struct order_night *w, uint64_t *r)
 {
 	limbs(w, r, 166, 20.0, false);
 }
 
 /* As many events as fit, so that nearly all are wanted and the limbs are all there is to choose between. */
-static void limbs_20(struct night *w, uint64_t *r)
+static void limbs_20(struct order_night *w, uint64_t *r)
 {
 	limbs(w, r, 20, 10.0, false);
 }
 
 /* Each event at eight places of the night, for 8 min or for 25 min. */
-static void places(struct night *w, uint64_t *r, double length_min, bool same_worth)
+static void places(struct order_night *w, uint64_t *r, double length_min, bool same_worth)
 {
 	while (w->n + 8 <= ITEMS) {
 		int event = w->n_events++, pointing = (int)random_between(r, 0.0, POINTINGS);
@@ -146,23 +147,23 @@ static void places(struct night *w, uint64_t *r, double length_min, bool same_wo
 	}
 }
 
-static void places_brief(struct night *w, uint64_t *r)
+static void places_brief(struct order_night *w, uint64_t *r)
 {
 	places(w, r, 8.0, false);
 }
 
-static void places_long(struct night *w, uint64_t *r)
+static void places_long(struct order_night *w, uint64_t *r)
 {
 	places(w, r, 25.0, false);
 }
 
-static void places_same(struct night *w, uint64_t *r)
+static void places_same(struct order_night *w, uint64_t *r)
 {
 	places(w, r, 8.0, true);
 }
 
 /* Three events in a row at each pointing, each whole and by its limbs, and every run of them in one item. */
-static void in_a_row(struct night *w, uint64_t *r)
+static void in_a_row(struct order_night *w, uint64_t *r)
 {
 	while (w->n + 12 <= ITEMS) {
 		int pointing = (int)random_between(r, 0.0, POINTINGS);
@@ -184,7 +185,7 @@ static void in_a_row(struct night *w, uint64_t *r)
 }
 
 /* One to four of 60 events in each item, worth what they are together. */
-static void joint(struct night *w, uint64_t *r)
+static void joint(struct order_night *w, uint64_t *r)
 {
 	double worth[60];
 	w->n_events = 60;
@@ -224,7 +225,7 @@ static int compare_ends(const void *pa, const void *pb)
 	return (a->from_d > b->from_d) - (a->from_d < b->from_d);
 }
 
-static double sort_us(const struct night *w)
+static double sort_us(const struct order_night *w)
 {
 	static struct order_item copy[ITEMS];
 	double least = (double)INFINITY;
@@ -247,9 +248,10 @@ static void point_anywhere(struct pointings *p, uint64_t *r)
 	}
 }
 
-static bool measure(const char *name, void (*invent)(struct night *, uint64_t *), int nights, double speed)
+static bool measure(const char *name, void (*invent)(struct order_night *, uint64_t *), int nights,
+		    double speed)
 {
-	static struct night w;
+	static struct order_night w;
 	static struct pointings p;
 	static double us[NIGHTS_MOST], sorts[NIGHTS_MOST];
 	uint64_t r = 20270201u * 0x9E3779B97F4A7C15u | 1u;
@@ -291,9 +293,9 @@ static bool measure(const char *name, void (*invent)(struct night *, uint64_t *)
 }
 
 /* The order with one event more, for each event of the night. */
-static bool measure_through(const char *name, void (*invent)(struct night *, uint64_t *), int nights)
+static bool measure_through(const char *name, void (*invent)(struct order_night *, uint64_t *), int nights)
 {
-	static struct night w;
+	static struct order_night w;
 	static struct pointings p;
 	static double us[NIGHTS_MOST];
 	uint64_t r = 20270201u * 0x9E3779B97F4A7C15u | 1u;
@@ -334,6 +336,104 @@ static bool measure_through(const char *name, void (*invent)(struct night *, uin
 	return true;
 }
 
+/* Windows of 3 to 6 h anywhere in the night and on the sky; of half of them one limb alone can be caught. */
+struct offered {
+	size_t n;
+	struct target *target;
+	struct prepared *prepared;
+	struct window *window;
+	struct plan_offer *offer;
+};
+
+static void invent_window(struct offered *o, size_t i, uint64_t *r)
+{
+	const double length_d = random_between(r, 3.0, 6.0) / 24.0, base_d = 1.0 / 24.0,
+		     half_d = 0.5 * length_d - base_d,
+		     mid_d = random_between(r, 0.3 + 0.5 * length_d, 0.72 - 0.5 * length_d),
+		     limb_d = random_between(r, 0.1, 0.3) * half_d;
+	const int limbs_caught = (int)random_between(r, 0.0, 4.0); /* 0 ingress, 1 egress, else both */
+	struct window *w = &o->window[i];
+	o->target[i] = target_empty();
+	o->target[i].name = "bench";
+	o->target[i].ra_deg = random_between(r, 0.0, 360.0);
+	o->target[i].dec_deg = random_between(r, -30.0, 80.0);
+	o->prepared[i] = (struct prepared){.target = &o->target[i], .limits = limits_built_in()};
+	o->prepared[i].limits.value[LIM_MIN_BASELINE] = 15.0;
+	o->offer[i] = (struct plan_offer){.window = w};
+	*w = (struct window){.event = {.prepared = &o->prepared[i],
+				       .t1_d = mid_d - half_d,
+				       .t2_d = mid_d - half_d + limb_d,
+				       .mid_d = mid_d,
+				       .t3_d = mid_d + half_d - limb_d,
+				       .t4_d = mid_d + half_d,
+				       .pad_d = random_between(r, 0.0, 10.0) / 1440.0,
+				       .reserve_start_d = mid_d - half_d - base_d,
+				       .reserve_end_d = mid_d + half_d + base_d}};
+	w->cover.usable = intervals_one(w->event.reserve_start_d, w->event.reserve_end_d);
+	w->cover.coverage = 1.0;
+	w->cover.limb_usable = true;
+	w->chance.ingress = limbs_caught == 1 ? 0.0 : random_between(r, 0.0, 1.0);
+	w->chance.egress = limbs_caught == 0 ? 0.0 : random_between(r, 0.0, 1.0);
+	w->chance.done = random_between(r, 0.0, 1.0) * fmin(w->chance.ingress, w->chance.egress);
+}
+
+/* Median time of plans of some nights [us]; *at_most: costs that were not proven. */
+static bool plans_us(const struct night *sky, struct offered *o, bool costs, double *median_us, int *at_most)
+{
+	enum { PLANS = 21 };
+	double us[PLANS];
+	uint64_t r = 20270201u * 0x9E3779B97F4A7C15u | 1u;
+	const struct plan_rules rules = plan_rules_built_in();
+	const struct plan_input in = {.night = sky,
+				      .offer = o->offer,
+				      .n = o->n,
+				      .not_before_d = -(double)INFINITY,
+				      .rules = &rules,
+				      .without_costs = !costs};
+	*at_most = 0;
+	for (int k = 0; k < PLANS; k++) {
+		struct night_plan plan;
+		for (size_t i = 0; i < o->n; i++)
+			invent_window(o, i, &r);
+		const double start = processor_us();
+		if (night_plan_make(&in, &plan, NULL) != ST_OK)
+			return false;
+		us[k] = processor_us() - start;
+		for (size_t i = 0; i < plan.n_left; i++)
+			*at_most += plan.left[i].at_most;
+		night_plan_free(&plan);
+	}
+	qsort(us, PLANS, sizeof *us, compare_us);
+	*median_us = us[PLANS / 2];
+	return true;
+}
+
+static bool measure_plans(size_t n)
+{
+	static const struct site hill = {
+	    .name = "bench", .lat_deg = 38.62, .lon_east_deg = -109.36, .height_m = 2100.0, .zone = ""};
+	static struct sun_memo memo;
+	static struct night sky;
+	const struct earth_clock clock = {.leap = &leap_builtin};
+	struct offered o = {n, calloc(n, sizeof *o.target), calloc(n, sizeof *o.prepared),
+			    calloc(n, sizeof *o.window), calloc(n, sizeof *o.offer)};
+	double bare_us = NAN, us = NAN;
+	int at_most = 0;
+	sun_memo_clear(&memo);
+	const bool good = o.target && o.prepared && o.window && o.offer &&
+			  night_build(&sky, &hill, &clock, 61437, &memo, NULL) == ST_OK &&
+			  plans_us(&sky, &o, false, &bare_us, &at_most) &&
+			  plans_us(&sky, &o, true, &us, &at_most);
+	printf(
+	    "plan of %4zu windows of 3 to 6 h: median %.2f ms, with all costs %.2f ms; costs not proven %d\n",
+	    n, 1e-3 * bare_us, 1e-3 * us, at_most);
+	free(o.target);
+	free(o.prepared);
+	free(o.window);
+	free(o.offer);
+	return good;
+}
+
 int main(void)
 {
 	bool good = measure("a night", usual, 400, 1.0);
@@ -356,5 +456,6 @@ int main(void)
 	good = good && measure_through("60 events, limbs of 30 min", limbs_60, 10);
 	good = good && measure_through("60 events, limbs of 8 min", limbs_60_brief, 10);
 	good = good && measure_through("166 events, limbs of 20 min", limbs_166, 10);
+	good = good && measure_plans(200) && measure_plans(1000);
 	return good ? 0 : 1;
 }

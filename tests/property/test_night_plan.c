@@ -413,6 +413,7 @@ static void check_costs(const struct scene *s, const struct brute *all, const st
 		const struct plan_left *left = &plan->left[i];
 		if (left->reason != LEFT_CLASH)
 			continue;
+		assert_false(left->at_most);
 		struct scene forced = *s;
 		forced.pinned[left->offer] = true;
 		const struct brute b = best_of(&forced);

@@ -260,7 +260,8 @@ static void against_all_subsets(void **state)
 	assert_true(split > NIGHTS / 50 && pins > NIGHTS / 4);
 }
 
-/* One question. Returns whether it was answered with a proof; *with: of what no question may be better than. */
+/* One question. Returns whether it was answered with a proof; *with: of what no question may be better than.
+ */
 static bool ask(struct order_through *t, const struct night *w, const struct rules *rules, int event,
 		const struct best *with, bool may_fall_short)
 {
@@ -291,7 +292,8 @@ static bool ask(struct order_through *t, const struct night *w, const struct rul
 	}
 	if (b.pins != with->pins || b.steps != with->steps || b.items != with->items)
 		check_fail("event %d: got %d pins, %.9f, %d items; want %d, %.9f, %d", event, b.pins,
-			   (double)b.steps * 1e-9, b.items, with->pins, (double)with->steps * 1e-9, with->items);
+			   (double)b.steps * 1e-9, b.items, with->pins, (double)with->steps * 1e-9,
+			   with->items);
 	return true;
 }
 
@@ -318,6 +320,10 @@ static void through_each_event(void **state)
 				short_of += !ask(t, &w, &rules, i, &with[i], few);
 				lost += with[i].pins < 0;
 			}
+			struct order_result none;
+			size_t taken[ITEMS];
+			bool held;
+			assert_int_equal(order_through_event(t, EVENTS, taken, &none, &held, &e), ST_RANGE);
 			order_through_close(t);
 		}
 	}
