@@ -5,7 +5,7 @@
 set -u
 top=$(cd "$(dirname "$0")/.." && pwd) || exit 1
 cd "$top" || exit 1
-limit_s=${LIMIT_S:-150} # no test may hang the run
+limit_s=${LIMIT_S:-240} # no test may hang the run
 jobs=2
 
 # --- one test: `run.sh --one RESULT PROGRAM`. RESULT gets `passed failed skipped`, RESULT.why the reasons, RESULT.log what it said.
