@@ -151,7 +151,9 @@ static void item_row(const struct svg *s, size_t index, double *y)
 	svg_item_name(s, item, s->size == SVG_WIDE ? NAME_WIDE : NAME_NARROW);
 	sheet_local(s->v, item->start, false, from);
 	sheet_local(s->v, item->end, false, until);
-	if (s->size == SVG_NARROW)
+	if (s->size == SVG_NARROW && isfinite(s->sky->change_d)) /* which of two clocks */
+		fprintf(to, ", %s to %s", from, until);
+	else if (s->size == SVG_NARROW)
 		fprintf(to, ", %.5s to %.5s", from, until);
 	label_end(s);
 	const double start = svg_x_utc(s, item->start), end = svg_x_utc(s, item->end),
