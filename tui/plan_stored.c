@@ -191,6 +191,9 @@ static void worth_of_marked(struct plan_view *v, const struct plan_choices *c)
 		if (item->state != PLAN_LOST && (item->state > PLAN_PINNED || !was_missed(c, item->key)))
 			worth += item->worth;
 	}
+	/* the total as it was stored has been summed in another order */
+	if (fabs(worth - v->worth) < 1e-9)
+		return;
 	v->bound += worth - v->worth;
 	v->worth = worth;
 }

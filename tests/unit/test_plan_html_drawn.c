@@ -18,7 +18,8 @@ static void a_change_of_clocks_is_told(void **state)
 	struct plan_fixture *f = plan_fixture_open(PLAN_FIXTURE_DRAFT, PLAN_FIXTURE_CHANGE_MJD, true);
 	char *text = html_page_of(&f->view, NULL);
 	html_has(text, "Night 31 Oct/1 Nov 2026, Tern Hill");
-	html_has(text, "<b>The clocks change this night</b>, from MDT (UTC-06:00) to MST (UTC-07:00)");
+	html_has(text, "<b>The clocks change this night</b>, from MDT (UTC-06:00) to MST (UTC-07:00), at "
+		       "08:00 UTC: 02:00 MDT becomes 01:00 MST.");
 	/* four drawings; 1 h strikes twice, the second time an hour after the first */
 	assert_int_equal(html_count(text, ">clocks change<"), 4);
 	struct plan_sky sky;

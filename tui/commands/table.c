@@ -20,7 +20,7 @@ const struct command commands[] = {
      "fit "
      "one after\nthe other, with the moves between them, and are worth most together. Until there is a noise "
      "forecast an event is\nworth its priority times its chance of done, a tenth of its coverage where there "
-     "is no chance; one limb alone 0.4 of\nit. What is pinned, dropped, blocked, lost or poor is worked in, "
+     "is no chance; one limb alone 0.2 of\nit. What is pinned, dropped, blocked, lost or poor is worked in, "
      "shown, and stored with --keep or --save. In a night\nthat runs, what has begun stands and only the "
      "rest "
      "is planned anew. Times and spans: 22:40 (site), 05:40Z, a whole\ninstant, sunset, sunrise, dusk, dawn, "
@@ -31,8 +31,7 @@ const struct command commands[] = {
      "The kept plan as it was stored; without one the draft main, or a proposal. No format gives an event "
      "while the Sun "
      "is up.\ncsv: a row an event; ics: RFC 5545, the same event keeps its UID, SEQUENCE grows with each "
-     "edition, what "
-     "is gone is\ncancelled; html: one file, for paper and telephones.\n",
+     "change of the night's\nplans, what is gone is cancelled; html: one file, for paper and telephones.\n",
      GROUP_COMPUTE | GROUP_SHEET, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON | FORMAT_ICS | FORMAT_HTML, 1,
      command_sheet},
     {"season", "FROM TO", "Every window in a range of nights, both included.",

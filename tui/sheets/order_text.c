@@ -93,6 +93,22 @@ static void names_line(FILE *to, const char *word, const char *const *name, size
 	fputc('\n', to);
 }
 
+/* Which clock a time of the table is of. */
+static void change_line(FILE *to, const struct plan_view *v)
+{
+	const struct night *n = &v->night->night;
+	char words[SHEET_BOTH_BYTES], before[SHEET_OFFSET_BYTES], after[SHEET_OFFSET_BYTES];
+	const struct local_time first = zone_local(v->run->zone, night_utc(n, 0.0)),
+				last = zone_local(v->run->zone, night_utc(n, n->length_d));
+	sheet_change_words(v, words);
+	sheet_offset(first.offset_s, before);
+	sheet_offset(last.offset_s, after);
+	fprintf(
+	    to,
+	    "The clocks change this night, %s: times with %s are %s (UTC%s h), the others %s (UTC%s h).\n",
+	    words, CLOCK_MARK, last.abbreviation, after, first.abbreviation, before);
+}
+
 static void head(FILE *to, const struct plan_view *v, bool plain)
 {
 	const struct text_sheet t = {.to = to, .run = v->run, .plain = plain};
@@ -113,7 +129,7 @@ static void head(FILE *to, const struct plan_view *v, bool plain)
 		fputc('\n', to);
 	}
 	if (clocks_change(&v->night->night, v->run->zone))
-		fprintf(to, "The clocks change this night: a time with %s is the later one.\n", CLOCK_MARK);
+		change_line(to, v);
 	fprintf(to, "Worth %s; %zu item%s, at least %g min between neighbours.\n", worth, v->n_items,
 		v->n_items == 1 ? "" : "s", v->gap_min);
 	names_line(to, "Pinned", v->pin, v->n_pins);

@@ -56,7 +56,7 @@ const char *html_outside(const struct html_page *p, const struct plan_item_view 
 	const struct leap_table *leap = p->v->night->night.clock.leap;
 	if (utc_diff_s(leap, t, item->start) > 0.0)
 		return "too early";
-	return utc_diff_s(leap, item->end, t) > 0.0 ? "after end" : "";
+	return utc_diff_s(leap, item->end, t) > 0.0 ? "after leaving" : "";
 }
 
 void html_item_name(struct html_page *p, const struct plan_item_view *item)
@@ -104,12 +104,17 @@ static void clock_words(struct html_page *p)
 	html_text(&p->out, n->site->zone);
 	if (!clocks_change(n, r->zone))
 		fprintf(p->out.to, ", %s.</p>\n", from);
-	else
+	else {
+		char words[SHEET_BOTH_BYTES], utc[SHEET_TIME_BYTES] = "";
+		struct utc change;
+		sheet_change_words(p->v, words);
+		if (sheet_clock_change(p->v, &change))
+			sheet_utc(p->v, change, false, utc);
 		fprintf(p->out.to,
-			".</p>\n<p class=\"warn\"><b>The clocks change this night</b>, from %s to %s: each "
-			"local time "
-			"says which it is.</p>\n",
-			from, until);
+			".</p>\n<p class=\"warn\"><b>The clocks change this night</b>, from %s to %s, at %s: "
+			"%s. Each local time says which it is.</p>\n",
+			from, until, utc, words);
+	}
 }
 
 static void title(struct html_page *p)

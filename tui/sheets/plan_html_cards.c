@@ -171,26 +171,10 @@ static void flag_list(struct html_page *p, const struct plan_member_view *m)
 	fputs("</ul>\n", p->out.to);
 }
 
-static const char *variant_sentence(const char *variant)
-{
-	static const struct {
-		const char *word, *sentence;
-	} row[] = {
-	    {"whole", "whole event"},
-	    {"short", "both limbs, with a baseline cut down"},
-	    {"ingress", "ingress alone"},
-	    {"egress", "egress alone"},
-	};
-	for (size_t i = 0; i < sizeof row / sizeof row[0]; i++)
-		if (strcmp(variant, row[i].word) == 0)
-			return row[i].sentence;
-	return variant;
-}
-
 static void member_facts(struct html_page *p, const struct plan_member_view *m)
 {
 	fputs("<dl>\n", p->out.to);
-	fact(p, "To catch", variant_sentence(m->variant));
+	fact(p, "To catch", plan_variant_sentence(m->variant));
 	fact_place(p, m);
 	fact_magnitude(p, m);
 	fact_figure(p, "Depth", m, "depth_ppt", "ppt");

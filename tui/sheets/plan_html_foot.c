@@ -135,7 +135,7 @@ static void limits(struct html_page *p)
 		html_text(&p->out, pair);
 		if (equals) {
 			fputs(" <b>", p->out.to);
-			html_text(&p->out, equals + 1);
+			html_text(&p->out, equals[1] ? equals + 1 : "none");
 			fputs("</b>", p->out.to);
 		}
 		fputs("</span>", p->out.to);

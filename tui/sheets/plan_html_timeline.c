@@ -6,7 +6,7 @@
 #include <math.h>
 
 /* In a narrow drawing the label stands above the bar, in a wide one beside it. */
-enum { BAR = 16, LANE = 14, GAP = 10, LABEL = 16, NAME_WIDE = 23, NAME_NARROW = 26 };
+enum { BAR = 16, LANE = 14, GAP = 10, LABEL = 16, NAME_WIDE = 23, NAME_NARROW = 26, CLOCK_NAMES = 10 };
 
 struct row {
 	double top, bar, bottom; /* bottom of the bar */
@@ -148,10 +148,16 @@ static void item_row(const struct svg *s, size_t index, double *y)
 	struct row r = row_begin(s, y, item->n);
 	char from[SHEET_TIME_BYTES], until[SHEET_TIME_BYTES];
 	fprintf(to, "%d. ", item->order);
-	svg_item_name(s, item, s->size == SVG_WIDE ? NAME_WIDE : NAME_NARROW);
+	const bool two_clocks = isfinite(s->sky->change_d);
+	svg_item_name(s, item,
+		      s->size == SVG_WIDE ? NAME_WIDE
+		      : two_clocks	  ? NAME_NARROW - CLOCK_NAMES
+					  : NAME_NARROW);
 	sheet_local(s->v, item->start, false, from);
 	sheet_local(s->v, item->end, false, until);
-	if (s->size == SVG_NARROW)
+	if (s->size == SVG_NARROW && two_clocks)
+		fprintf(to, ", %s to %s", from, until);
+	else if (s->size == SVG_NARROW)
 		fprintf(to, ", %.5s to %.5s", from, until);
 	label_end(s);
 	const double start = svg_x_utc(s, item->start), end = svg_x_utc(s, item->end),

@@ -52,11 +52,10 @@ static void put_figure(FILE *to, const char *before, const char *figure, const c
 static void member_words(FILE *to, const struct plan_view *v, const struct plan_member_view *m)
 {
 	char line[LINE_BYTES], figure[NUMBER_TEXT_MAX];
-	const char *part = plan_part_words(m->variant);
 	struct utc t;
 	plan_line(m->target, line, sizeof line);
-	fprintf(to, "%s: %s, epoch %ld, %s", line, plan_kind_word(m->kind), m->epoch,
-		part[0] ? part : m->variant);
+	fprintf(to, "%s: %s, epoch %ld: %s", line, plan_kind_word(m->kind), m->epoch,
+		plan_variant_sentence(m->variant));
 	plan_star_words(m, line, sizeof line);
 	put_figure(to, "; ", line, "");
 	plan_figure(m, "depth_ppt", 1, figure);
@@ -98,7 +97,7 @@ static void item_words(FILE *to, const struct plan_view *v, const struct plan_it
 	put_instant(to, v, "start", item->start);
 	if (item->has_latest)
 		put_instant(to, v, "latest start", item->latest_start);
-	put_instant(to, v, "end", item->end);
+	put_instant(to, v, "leave", item->end);
 	for (size_t i = 0; i < item->n; i++)
 		member_words(to, v, &item->member[i]);
 	plan_line(item->if_missed, line, sizeof line);

@@ -100,13 +100,14 @@ static void clocks(struct plan_page *p)
 	page_put(p, 11, "Times:     local (%s, %s is UTC%s h) and UTC", v->run->site.zone, first.abbreviation,
 		 before);
 	if (sheet_clock_change(v, &change)) {
-		char utc[SHEET_TIME_BYTES];
+		char utc[SHEET_TIME_BYTES], words[SHEET_BOTH_BYTES];
 		sheet_instant(v, NULL, change, utc);
+		sheet_change_words(v, words);
 		page_put(
 		    p, 11,
-		    "CLOCKS CHANGE this night, at %s: from %s (UTC%s h) to %s (UTC%s h). Every local time "
-		    "says which it is.",
-		    utc, first.abbreviation, before, last.abbreviation, after);
+		    "CLOCKS CHANGE this night, at %s: from %s (UTC%s h) to %s (UTC%s h), %s. Every local "
+		    "time says which it is.",
+		    utc, first.abbreviation, before, last.abbreviation, after, words);
 	}
 }
 

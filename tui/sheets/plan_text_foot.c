@@ -89,7 +89,11 @@ static void limit_lines(struct plan_page *p)
 {
 	char text[PLAN_PIECE_BYTES], shown[PLAN_PIECE_BYTES];
 	size_t used = 0;
-	for (const char *s = p->v->limits; *s && used + 4 < sizeof text; s++) {
+	for (const char *s = p->v->limits; *s && used + 8 < sizeof text; s++) {
+		if (*s == '=' && (s[1] == '\t' || !s[1])) { /* no such limit */
+			used += (size_t)snprintf(text + used, sizeof text - used, "=none");
+			continue;
+		}
 		if (*s == '\t')
 			text[used++] = ',';
 		text[used++] = *s == '\t' || *s == '_' ? ' ' : *s;

@@ -83,16 +83,15 @@ static void member_lines(struct plan_page *p, const struct plan_item_view *item,
 {
 	const struct leap_table *leap = &p->v->run->leap;
 	char text[PLAN_PIECE_BYTES], depth[NUMBER_TEXT_MAX];
-	const char *part = plan_part_words(m->variant);
 	struct utc t;
 	plan_line(m->target, text, sizeof text);
-	page_put(p, WRAP_INDENT, "%*s%s, %s, epoch %ld, %s", ITEM_INDENT, "", text, plan_kind_word(m->kind),
-		 m->epoch, part[0] ? part : m->variant);
+	page_put(p, WRAP_INDENT, "%*s%s, %s, epoch %ld: %s", ITEM_INDENT, "", text, plan_kind_word(m->kind),
+		 m->epoch, plan_variant_sentence(m->variant));
 	for (int c = 0; c < CONTACT_COUNT; c++)
 		if (plan_contact_at(m, (enum plan_contact)c, &t))
 			page_time(p, MEMBER_INDENT, plan_contact_words[c], &t,
 				  utc_diff_s(leap, t, item->start) > 0.0 ? "  too early"
-				  : utc_diff_s(leap, item->end, t) > 0.0 ? "  after end"
+				  : utc_diff_s(leap, item->end, t) > 0.0 ? "  after leaving"
 									 : "");
 	plan_star_words(m, text, sizeof text);
 	plan_figure(m, "depth_ppt", 1, depth);
@@ -119,7 +118,7 @@ static void item_lines(struct plan_page *p, const struct plan_item_view *item)
 	page_time(p, ITEM_INDENT, "start", &item->start, "");
 	page_time(p, ITEM_INDENT, "latest start", item->has_latest ? &item->latest_start : NULL,
 		  item->has_latest ? "" : "-");
-	page_time(p, ITEM_INDENT, "end", &item->end, "");
+	page_time(p, ITEM_INDENT, "leave", &item->end, "");
 	for (size_t i = 0; i < item->n; i++)
 		member_lines(p, item, &item->member[i]);
 	plan_line(item->if_missed, text, sizeof text);

@@ -99,6 +99,21 @@ bool sheet_clock_change(const struct plan_view *v, struct utc *at)
 	return true;
 }
 
+void sheet_change_words(const struct plan_view *v, char out[SHEET_BOTH_BYTES])
+{
+	struct utc change;
+	char after[SHEET_TIME_BYTES];
+	out[0] = '\0';
+	if (!sheet_clock_change(v, &change))
+		return;
+	/* the clocks of a minute before, a minute later */
+	const struct local_time l = zone_local(v->run->zone, utc_add_s(&v->run->leap, change, -60.0));
+	const int minute = ((int)((l.sod_s + 30.0) / 60.0) + 1) % 1440;
+	sheet_local(v, change, false, after);
+	snprintf(out, SHEET_BOTH_BYTES, "%02d:%02d %s becomes %s", minute / 60, minute % 60, l.abbreviation,
+		 after);
+}
+
 void sheet_offset(int offset_s, char out[SHEET_OFFSET_BYTES])
 {
 	int minutes = abs(offset_s) / 60;

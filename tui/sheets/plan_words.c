@@ -26,6 +26,22 @@ void plan_line(const char *text, char *out, size_t size)
 	out[used] = '\0';
 }
 
+const char *plan_variant_sentence(const char *variant)
+{
+	static const struct {
+		const char *word, *sentence;
+	} row[] = {
+	    {"whole", "whole event"},
+	    {"short", "both limbs, with a baseline cut down"},
+	    {"ingress", "ingress only"},
+	    {"egress", "egress only"},
+	};
+	for (size_t i = 0; i < sizeof row / sizeof row[0]; i++)
+		if (strcmp(variant, row[i].word) == 0)
+			return row[i].sentence;
+	return variant;
+}
+
 const char *plan_part_words(const char *variant)
 {
 	if (strcmp(variant, variant_words[VARIANT_WHOLE]) == 0)

@@ -26,6 +26,8 @@ void sheet_both(const struct plan_view *v, struct utc t, char out[SHEET_BOTH_BYT
 void sheet_stamp(const struct plan_view *v, struct utc t, char out[SHEET_TIME_BYTES]);
 /* The moment of the night at which the site's clocks change: false when they do not. */
 bool sheet_clock_change(const struct plan_view *v, struct utc *at);
+/* What the clocks do then: `02:00 MDT becomes 01:00 MST`; "" nothing. */
+void sheet_change_words(const struct plan_view *v, char out[SHEET_BOTH_BYTES]);
 /* `-6`, `+5:45`: hours that a local time is ahead of UTC. */
 enum { SHEET_OFFSET_BYTES = 16 };
 void sheet_offset(int offset_s, char out[SHEET_OFFSET_BYTES]);
@@ -37,6 +39,8 @@ enum { PLAN_NAMES_BYTES = 1024 };
 void plan_names(const struct plan_item_view *item, char out[PLAN_NAMES_BYTES]);
 /* What is planned of an event, for people: `short`, `ingress only`, `egress only`; "" all of it. */
 const char *plan_part_words(const char *variant);
+/* `whole event`, `both limbs, with a baseline cut down`, `ingress only`, `egress only`. */
+const char *plan_variant_sentence(const char *variant);
 /* The same as plan_names with these words: `Tern 27 b (short) + Tern 27 c (ingress only)`. */
 void plan_names_parts(const struct plan_item_view *item, char out[PLAN_NAMES_BYTES]);
 /* A figure with fewer decimals for people; "" none. */
