@@ -34,7 +34,7 @@ static void test_golden(void **state)
 	    {"night-80x24-long-shots", "ajj", 24, 80, TIER_UNICODE},
 	    {"night-80x24-last", "G", 24, 80, TIER_UNICODE},
 	    {"night-80x24-later", ">>", 24, 80, TIER_UNICODE},
-	    {"night-80x24-date", "d", 24, 80, TIER_UNICODE},
+	    {"night-80x24-date", "t", 24, 80, TIER_UNICODE},
 	    {"night-80x24-details", "g\r", 24, 80, TIER_UNICODE},
 	    {"night-80x24-sort", "s", 24, 80, TIER_UNICODE},
 	    {"night-80x24-filter", "fdone > 50\rsd", 24, 80, TIER_UNICODE},
@@ -71,10 +71,10 @@ static void test_keys_to_screens(void **state)
 	    {">>>>>>>>>", "in 9 nights, night 1/2 May 2026", NULL},
 	    {">>>>>>>>", "night 30 Apr/1 May 2026", NULL},
 	    {">>>.", "tonight, night 22/23 Apr 2026", NULL},
-	    {"d\0252026-12-31\r", "night 31 Dec 2026/1 Jan 2027", "Evening of"},
-	    {"d\0252026-02-30\r", "Evening of (YYYY-MM-DD): 2026-02-30", NULL},
-	    {"dxyz\033", "night 22/23 Apr 2026", "Evening of"},
-	    {"d\003", "q quit", "Evening of"},
+	    {"t\0252026-12-31\r", "night 31 Dec 2026/1 Jan 2027", "Evening of"},
+	    {"t\0252026-02-30\r", "Evening of (YYYY-MM-DD): 2026-02-30", NULL},
+	    {"txyz\033", "night 22/23 Apr 2026", "Evening of"},
+	    {"t\003", "q quit", "Evening of"},
 	    {"a", "1 long shot among them, a hides it", NULL},
 	    {"aa", "1 long shot hidden, a shows it", "among them"},
 	    {"aj", "▸ now   Tern 18 c", NULL},
@@ -93,8 +93,8 @@ static void test_keys_to_screens(void **state)
 	    {"\r\r", "q quit", NULL},
 	    {"\rq", "q quit", NULL},
 	    {"\ra", "a does nothing here; ? shows the keys.", NULL},
-	    {"x", "x does nothing here; ? shows the keys.", "q quit"},
-	    {"xj", "q quit", "does nothing"},
+	    {"z", "z does nothing here; ? shows the keys.", "q quit"},
+	    {"zj", "q quit", "does nothing"},
 	    {"[", "[ does nothing here", NULL},
 	    {"2", "2 does nothing here", NULL},
 	    /* find */
@@ -171,7 +171,7 @@ static void test_paste(void **state)
 	driver_key(&d, PRESS_PASTE_END);
 	assert_false(d.quit);
 	driver_expect(&d, "Pasted text was left out");
-	driver_keys(&d, "d\025");
+	driver_keys(&d, "t\025");
 	driver_key(&d, PRESS_PASTE_BEGIN);
 	driver_keys(&d, "2026-05-01\r");
 	driver_key(&d, PRESS_PASTE_END);
@@ -191,7 +191,7 @@ static void test_cursor(void **state)
 	assert_int_equal(at->cp, 0x25B8);
 	assert_true(at->selected);
 	assert_false(d.grid.cursor_shown);
-	driver_key(&d, 'd');
+	driver_key(&d, 't');
 	assert_true(d.grid.cursor_shown);
 	assert_int_equal(d.grid.cursor_row, 23);
 	assert_int_equal(d.grid.cursor_col, 36); /* behind `Evening of (YYYY-MM-DD): 2026-04-22` */
@@ -202,7 +202,7 @@ static void test_cursor(void **state)
  * is on the screen. */
 static void test_every_size(void **state)
 {
-	static const char *const typed[] = {"", "G", "?", "l", "\r", "d", "s", "/", "f", "fx >\r"};
+	static const char *const typed[] = {"", "G", "?", "l", "\r", "t", "s", "/", "f", "fx >\r"};
 	struct page_driver d;
 	(void)state;
 	driver_open(&d, true, 24, 80, TIER_UNICODE);
@@ -276,7 +276,7 @@ static void test_clock_change(void **state)
 	struct page_driver d;
 	(void)state;
 	driver_open(&d, true, 24, 80, TIER_UNICODE);
-	driver_keys(&d, "d\0252026-10-31\r");
+	driver_keys(&d, "t\0252026-10-31\r");
 	driver_expect(&d, "Times with * are MST, the others MDT: the clocks change at 08:00 UTC.");
 	driver_expect(&d, "dusk 19:17  dawn 05:45* local  11.5 h below -12 deg");
 	driver_keys(&d, "<");
@@ -331,7 +331,7 @@ static void test_marked_times(void **state)
 			count_marks(&d, &d.page->rows.row[i], nights[night].change_h, &before, &behind);
 	}
 	assert_true(before > 4 && behind > 4);
-	driver_keys(&d, "d2026-10-31\r");
+	driver_keys(&d, "t2026-10-31\r");
 	driver_keys(&d, "G");
 	driver_expect(&d, "*");
 	driver_expect(&d, "02* ");
@@ -349,14 +349,14 @@ static void test_offered_date(void **state)
 	static const struct {
 		const char *keys, *shown;
 	} rows[] = {
-	    {"d", "Evening of (YYYY-MM-DD): 2026-04-22 "},
-	    {"d2", "Evening of (YYYY-MM-DD): 2 "},
-	    {"d2026-03-08", "Evening of (YYYY-MM-DD): 2026-03-08 "},
-	    {"d2026-03-08\r", "night 8/9 Mar 2026"},
-	    {"d\1773", "Evening of (YYYY-MM-DD): 2026-04-23 "},
-	    {"d\0059", "Evening of (YYYY-MM-DD): 2026-04-229 "},
-	    {"d\r", "tonight, night 22/23 Apr 2026"},
-	    {"d\033", "tonight, night 22/23 Apr 2026"},
+	    {"t", "Evening of (YYYY-MM-DD): 2026-04-22 "},
+	    {"t2", "Evening of (YYYY-MM-DD): 2 "},
+	    {"t2026-03-08", "Evening of (YYYY-MM-DD): 2026-03-08 "},
+	    {"t2026-03-08\r", "night 8/9 Mar 2026"},
+	    {"t\1773", "Evening of (YYYY-MM-DD): 2026-04-23 "},
+	    {"t\0059", "Evening of (YYYY-MM-DD): 2026-04-229 "},
+	    {"t\r", "tonight, night 22/23 Apr 2026"},
+	    {"t\033", "tonight, night 22/23 Apr 2026"},
 	    {"fdone > 50\rf | on < 22:00\r", "where done > 50 | on < 22:00"},
 	};
 	(void)state;
@@ -369,7 +369,7 @@ static void test_offered_date(void **state)
 	}
 	struct page_driver d;
 	driver_open(&d, true, 24, 80, TIER_UNICODE);
-	driver_key(&d, 'd');
+	driver_key(&d, 't');
 	driver_key(&d, PRESS_PASTE_BEGIN);
 	driver_keys(&d, "2026-05-01");
 	driver_key(&d, PRESS_PASTE_END);
@@ -402,7 +402,7 @@ static void test_first_run(void **state)
 	driver_expect(&d, "wane import targets.csv");
 	driver_expect(&d, "wane demo");
 	driver_expect(&d, "Sun: never point a telescope near the Sun.");
-	driver_keys(&d, "j>.da\r?");
+	driver_keys(&d, "j>.ta\r?");
 	driver_expect(&d, "Keys (q");
 	driver_keys(&d, "q");
 	driver_expect(&d, "wane demo");
@@ -460,7 +460,7 @@ static void test_drop_and_load(void **state)
 	driver_expect(&d, "▸ now   Tern 33 b");
 	night_page_drop(d.page);
 	driver_draw(&d);
-	driver_keys(&d, "jGx?q\rR");
+	driver_keys(&d, "jGz?q\rR");
 	driver_load(&d, d.page->wanted_mjd);
 	driver_draw(&d);
 	driver_expect(&d, "▸ now   Tern 33 b");

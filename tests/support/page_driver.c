@@ -49,6 +49,16 @@ void driver_close(struct page_driver *d)
 	fixture_close(d->fixture);
 }
 
+/* As the loop does when something was stored. */
+static void read_again(struct page_driver *d)
+{
+	struct err e;
+	night_page_drop(d->page);
+	if (run_reload(&d->fixture->run, &e) != ST_OK)
+		check_fail("%s", e.text);
+	driver_load(d, d->page->wanted_mjd);
+}
+
 void driver_key(struct page_driver *d, uint32_t code)
 {
 	switch (night_page_key(d->page, code)) {
@@ -68,8 +78,11 @@ void driver_key(struct page_driver *d, uint32_t code)
 		d->reds++;
 		break;
 	case WANT_NIGHT_PAGE:
-	case WANT_DRIFT_PAGE:
-	case WANT_CHANGE: /* the loop's affair */
+	case WANT_CHANGE:
+		if (night_page_change(d->page, &d->fixture->run))
+			read_again(d);
+		break;
+	case WANT_DRIFT_PAGE: /* the loop's affair */
 	case WANT_NOTHING:
 		break;
 	}
