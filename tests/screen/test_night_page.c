@@ -58,13 +58,13 @@ static void test_keys_to_screens(void **state)
 	static const struct {
 		const char *keys, *shown, *not_shown;
 	} rows[] = {
-	    {"", "▸ now   Tern 18 b", "nan"},
-	    {"j", "▸ now   Tern 18 c", NULL},
-	    {"jjk", "▸ now   Tern 18 c", NULL},
-	    {"kkkkkkkk", "▸ now   Tern 2 c", NULL},
+	    {"", "▸ 1○ next Tern 18 b", "nan"},
+	    {"j", "▸    now  Tern 18 c", NULL},
+	    {"jjk", "▸    now  Tern 18 c", NULL},
+	    {"kkkkkkkk", "▸    now  Tern 2 c", NULL},
 	    {"g", "window 1 of 11 by be-on time, 1 long shot hidden, a shows it", NULL},
 	    {"G", "window 11 of 11", "Tern 2 c  "},
-	    {"Gg", "▸ now   Tern 2 c", NULL},
+	    {"Gg", "▸    now  Tern 2 c", NULL},
 	    {">", "next night, night 23/24 Apr 2026", "next: "},
 	    {"<", "last night, night 21/22 Apr 2026", "next: "},
 	    {"<<<<", "4 nights ago, night 18/19 Apr 2026", NULL},
@@ -77,14 +77,14 @@ static void test_keys_to_screens(void **state)
 	    {"t\003", "q quit", "Evening of"},
 	    {"a", "1 long shot among them, a hides it", NULL},
 	    {"aa", "1 long shot hidden, a shows it", "among them"},
-	    {"aj", "▸ now   Tern 18 c", NULL},
-	    {"aja", "▸ now   Tern 18 c", NULL},
+	    {"aj", "▸    now  Tern 18 c", NULL},
+	    {"aja", "▸    now  Tern 18 c", NULL},
 	    {"l", "sun_limit_deg: -12 deg (built in)", "q quit"},
 	    {"ll", "q quit", "sun_limit_deg"},
 	    {"l\033", "q quit", NULL},
 	    {"?", "Keys (q, ? or Esc comes back)", "Tern 2 c  "},
-	    {"??", "▸ now   Tern 18 b", NULL},
-	    {"?q", "▸ now   Tern 18 b", NULL},
+	    {"??", "▸ 1○ next Tern 18 b", NULL},
+	    {"?q", "▸ 1○ next Tern 18 b", NULL},
 	    {"?l", "Limits of this run", "Keys ("},
 	    {"?G", "sun_near: ", "Keys ("},
 	    {"?Gg", "Keys (q", "sun_near: "},
@@ -99,31 +99,31 @@ static void test_keys_to_screens(void **state)
 	    {"2", "2 does nothing here", NULL},
 	    /* find */
 	    {"/18\r", "2 of 2 with `18`; n next, N before", NULL},
-	    {"/18\r", "▸ now   Tern 18 c", NULL},
-	    {"/18\rn", "▸ now   Tern 18 b", NULL},
+	    {"/18\r", "▸    now  Tern 18 c", NULL},
+	    {"/18\rn", "▸ 1○ next Tern 18 b", NULL},
 	    {"/18\rN", "1 of 2 with `18`", NULL},
-	    {"/TERN14\r", "▸ next  Tern 14 b", NULL},
+	    {"/TERN14\r", "▸         Tern 14 b", NULL},
 	    {"/nobody\r", "No name in the list holds `nobody`.", NULL},
-	    {"/nobody\r", "▸ now   Tern 18 b", NULL},
+	    {"/nobody\r", "▸ 1○ next Tern 18 b", NULL},
 	    {"n", "Nothing was looked for yet; / asks for a name.", NULL},
-	    {"/18\rg/\r", "▸ now   Tern 18 b", NULL},
-	    {"/x\033", "▸ now   Tern 18 b", "Find:"},
+	    {"/18\rg/\r", "▸ 1○ next Tern 18 b", NULL},
+	    {"/x\033", "▸ 1○ next Tern 18 b", "Find:"},
 	    /* sort */
 	    {"s", "Sort the list by", "Tern 18 b b"},
 	    {"sn", "by name", NULL},
-	    {"sng", "▸ next  Tern 14 b", NULL},
+	    {"sng", "▸         Tern 14 b", NULL},
 	    {"snsn", "by name, turned", NULL},
 	    {"sjjj\r", "by name", NULL},
 	    {"s\033", "by be-on time", "Sort the list"},
 	    {"sd", "by chance of done", NULL},
 	    {"sn><", "by name", NULL},
-	    {"sn", "▸ now   Tern 18 b", NULL},
+	    {"sn", "▸ 1○ next Tern 18 b", NULL},
 	    /* filter */
 	    {"fdone > 50\r", "1/5 out of 11 where done > 50 by on, a: 1 more", NULL},
 	    {"fsigma < 1\r", "2/5 out of 11 where sigma < 1 by on", NULL},
 	    {"fdone > 50\r\033", "of 11 by be-on time", "where done"},
 	    {"fdone > 50\rf\025\r", "of 11 by be-on time", "where done"},
-	    {"ftern 18\r", "▸ now   Tern 18 b", "Tern 14 b  "},
+	    {"ftern 18\r", "▸ 1○ next Tern 18 b", "Tern 14 b  "},
 	    {"fnobody\r", "No window of this night fits the filter; Esc takes it away.", NULL},
 	    {"fnobody\rj\r?", "Keys (q", NULL},
 	    {"fdone >\r", "nothing stands behind `done >`", NULL},
@@ -150,7 +150,7 @@ static void test_wants(void **state)
 	struct page_driver d;
 	(void)state;
 	driver_open(&d, true, 24, 80, TIER_UNICODE);
-	driver_keys(&d, "R\014\032d\014\032\033");
+	driver_keys(&d, "R\014\032t\014\032\033");
 	assert_int_equal(d.reds, 1);
 	assert_int_equal(d.repaints, 2);
 	assert_int_equal(d.suspends, 2);
@@ -384,7 +384,7 @@ static void test_without_zone(void **state)
 	driver_open(&d, false, 24, 80, TIER_UNICODE);
 	driver_expect(&d, "Thu 04:14:05 UTC (zone of the site unknown)");
 	driver_expect(&d, "Sunset 02:01  dusk 03:03  dawn 11:28  sunrise 12:30 UTC");
-	driver_expect(&d, "▸ now   Tern 18 b     03:48 04:18 05:12 05:42");
+	driver_expect(&d, "▸ 1○ next Tern 18 b  03:48 04:18 05:12 05:42");
 	driver_close(&d);
 }
 
@@ -457,13 +457,13 @@ static void test_drop_and_load(void **state)
 	(void)state;
 	driver_open(&d, true, 24, 80, TIER_UNICODE);
 	driver_keys(&d, "fdone > 50\rjj");
-	driver_expect(&d, "▸ now   Tern 33 b");
+	driver_expect(&d, "▸    now  Tern 33 b");
 	night_page_drop(d.page);
 	driver_draw(&d);
 	driver_keys(&d, "jGz?q\rR");
 	driver_load(&d, d.page->wanted_mjd);
 	driver_draw(&d);
-	driver_expect(&d, "▸ now   Tern 33 b");
+	driver_expect(&d, "▸    now  Tern 33 b");
 	driver_expect(&d, "3/5 out of 11 where done > 50");
 	/* nothing left */
 	night_page_drop(d.page);
@@ -475,7 +475,7 @@ static void test_drop_and_load(void **state)
 	d.fixture->run.targets.n = n;
 	driver_load(&d, d.page->wanted_mjd);
 	driver_draw(&d);
-	driver_expect(&d, "▸ now   Tern 33 b");
+	driver_expect(&d, "▸    now  Tern 33 b");
 	driver_close(&d);
 }
 
@@ -516,25 +516,27 @@ static void test_hostile_names(void **state)
 	}
 }
 
-/* What comes next counts down, and rows go from next to now to past. */
+/* Without a plan: what comes next counts down, and rows go from next to now to past. */
 static void test_clock(void **state)
 {
 	static const struct {
 		double after_min;
 		const char *shown, *row;
 	} rows[] = {
-	    {0.0, "next: Tern 14 b, be on in 1 h 05 min", "  next  Tern 14 b"},
-	    {64.0, "next: Tern 14 b, be on in 1 min", "  next  Tern 14 b"},
+	    {0.0, "next: Tern 14 b, be on in 1 h 05 min", "     next Tern 14 b"},
+	    {64.0, "next: Tern 14 b, be on in 1 min", "     next Tern 14 b"},
 	    {66.0, "now: Tern 18 b, leave in 22 min (+5); next: Tern 5 b, be on in 1 h 14 min",
-	     "  now   Tern 14 b"},
-	    {283.0, "Tern 14 b", "  past  Tern 14 b"},
-	    {600.0, "nothing more comes up tonight", "  past  Tern 5 b"},
+	     "     now  Tern 14 b"},
+	    {283.0, "Tern 14 b", "     past Tern 14 b"},
+	    {600.0, "nothing more comes up tonight", "     past Tern 5 b"},
 	    {-150.0, "dusk in 1 h 18 min; next: ", "        Tern 14 b"},
 	};
 	(void)state;
 	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
 		struct page_driver d;
 		driver_open(&d, true, 24, 80, TIER_UNICODE);
+		page_plan_drop(&d.page->plan);
+		night_page_show_plan(d.page);
 		struct wall_clock *wall = &d.fixture->run.wall;
 		wall->start = utc_add_s(wall->leap, wall->start, 60.0 * rows[i].after_min);
 		driver_draw(&d);

@@ -74,6 +74,7 @@ static void choose_event(struct night_page *p, struct run *run, enum event_choic
 	bool afresh;
 	if (!row || !p->plan.made)
 		return;
+	p->select_current = false; /* the row stays selected whatever comes next now */
 	const enum event_choice now = page_plan_choice(&p->plan.made->view, row, &text);
 	page_plan_event(row, edit.text);
 	const struct plan_edit *prior = plan_edits_event(&p->plan.edits, &edit.night, edit.text, &afresh);

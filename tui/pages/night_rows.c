@@ -23,7 +23,7 @@ const struct row_column row_columns[ROW_CELLS] = {
     [ROW_T4] = {"T4", NULL, 5, 0, true, "t4_utc", NULL},
     [ROW_LEAVE] = {"leave", NULL, 5, 0, true, "usable_end_utc", NULL},
     [ROW_ERROR] = {"sigma", "min", 5, 0, true, "sigma_min", NULL},
-    [ROW_COVER] = {"cover", "BIFEA", 5, 0, false, NULL,
+    [ROW_COVER] = {"cover", "BIFEA", 5, 64, false, NULL,
 		   "Usable share of five parts: Before, Ingress, Flat, Egress, After."},
     [ROW_INGRESS] = {"in", "%", 4, 152, true, "chance_ingress", NULL},
     [ROW_EGRESS] = {"eg", "%", 4, 152, true, "chance_egress", NULL},

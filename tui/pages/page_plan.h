@@ -16,8 +16,8 @@ struct made_plan {
 };
 enum {
 	PLAN_LINE_BYTES = 320,
-	PLAN_AT_ONCE = 1000, /* targets up to which a plan is worked out with the night, else between keys */
-	PLAN_COSTS_AT_ONCE = 40 /* windows up to which costs are worked out with it */
+	PLAN_AT_ONCE = 500, /* targets up to which a plan is worked out with the night, else between keys */
+	PLAN_COSTS_AT_ONCE = 300 /* targets up to which costs are worked out with it */
 };
 struct page_plan {
 	struct made_plan *made; /* NULL: there is none (yet) */

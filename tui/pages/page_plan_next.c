@@ -33,11 +33,13 @@ static void item_name(const struct plan_item_view *item, long member, char *out,
 	}
 }
 
-/* `slew to Tern 48 b`, `T1 of Tern 48 b`, `leave Tern 48 b` */
-static void action_text(const struct plan_view *v, const struct plan_next *next, char *out, size_t n)
+/* `slew to Tern 48 b`, `T1 of Tern 48 b`, `leave Tern 48 b`; brief: of one pointing only its first name. */
+static void action_text(const struct plan_view *v, const struct plan_next *next, bool brief, char *out,
+			size_t n)
 {
 	char name[2 * NAME_BYTES_MAX];
-	item_name(&v->item[next->item], next->member, name, sizeof name);
+	const struct plan_item_view *item = &v->item[next->item];
+	item_name(item, brief && next->member < 0 ? 0 : next->member, name, sizeof name);
 	snprintf(out, n, "%s%s%s", plan_action_words[next->action],
 		 next->action == PLAN_SLEW				    ? " to "
 		 : next->action == PLAN_START || next->action == PLAN_LEAVE ? " "
@@ -93,11 +95,12 @@ void page_plan_tick(const struct page_plan *plan, struct night_head *h, const st
 		span_text(view->dark.dusk_d - now_d, upto, sizeof upto);
 		snprintf(dusk, sizeof dusk, "dusk in %.20s; ", upto);
 	}
-	action_text(v, &next, action, sizeof action);
 	left_text(utc_diff_s(&v->run->leap, now, next.at), left, sizeof left);
 	clock_of(v, next.at, when);
 	then_text(v, next.at, then, sizeof then);
+	action_text(v, &next, true, action, sizeof action);
 	snprintf(h->next_short, sizeof h->next_short, "next: %s in %.30s", action, left);
-	snprintf(h->next_less, sizeof h->next_less, "%s (%s %s)", h->next_short, when, h->zone);
+	action_text(v, &next, false, action, sizeof action);
+	snprintf(h->next_less, sizeof h->next_less, "next: %s in %.30s (%s %s)", action, left, when, h->zone);
 	snprintf(h->next, sizeof h->next, "%s%.700s%.100s", dusk, h->next_less, then);
 }
