@@ -22,6 +22,22 @@ static struct edit_night night_of(const struct night_page *p)
 
 /* --- edits --- */
 
+/* Adds an edit, or, where it only takes the newest one back, takes that one away. */
+static enum status add_edit(struct plan_edits *edits, const struct plan_edit *edit, struct err *e)
+{
+	struct plan_edit newest;
+	if (edit->kind == EDIT_EVENT && edit->is == edit->was &&
+	    plan_edits_pop(edits, &edit->night, &newest)) {
+		const bool same = newest.kind == EDIT_EVENT && strcmp(newest.text, edit->text) == 0;
+		if (same && !plan_edits_event(edits, &edit->night, edit->text, NULL))
+			return ST_OK;
+		enum status s = plan_edits_add(edits, &newest, e);
+		if (s != ST_OK)
+			return s;
+	}
+	return plan_edits_add(edits, edit, e);
+}
+
 /* `Dropped Tern 5 b (K keeps, u takes back). Tern 9 b: new, ... (+1: v)` */
 static void say_changes(struct night_page *p, const char *what, const struct made_plan *before)
 {
@@ -34,7 +50,9 @@ static void say_changes(struct night_page *p, const char *what, const struct mad
 	if (n > 1)
 		snprintf(more, sizeof more, " (+%zu: v)", n - 1);
 	snprintf(text, sizeof text, "%.150s%s. %.280s%s", what,
-		 p->plan.changed ? "; K keeps, u undoes" : "; as it is stored",
+		 p->plan.changed	     ? "; K keeps, u undoes"
+		 : p->plan.made->view.stored ? "; as it is stored"
+					     : "",
 		 n > 0 ? line[0] : "The order stays.", more);
 	for (size_t i = 0; i < n; i++)
 		free(line[i]);
@@ -45,14 +63,16 @@ static void say_changes(struct night_page *p, const char *what, const struct mad
 /* Works the plan out with an edit more; without it again where that fails. */
 static void apply(struct night_page *p, struct run *run, const struct plan_edit *edit, const char *what)
 {
+	struct plan_edits *edits = &p->plan.edits;
 	struct made_plan *before = NULL;
 	struct plan_edit failed;
 	struct err e;
-	enum status s = plan_edits_add(&p->plan.edits, edit, &e);
+	const size_t n = edits->n;
+	enum status s = add_edit(edits, edit, &e);
 	if (s == ST_OK) {
 		s = page_plan_load(&p->plan, run, edit->night.mjd, &before, NULL, 0, &e);
-		if (s != ST_OK)
-			plan_edits_pop(&p->plan.edits, &edit->night, &failed);
+		if (s != ST_OK && edits->n > n)
+			plan_edits_pop(edits, &edit->night, &failed);
 	}
 	if (s != ST_OK) {
 		night_page_say(p, ROLE_BAD, e.text);
@@ -74,7 +94,6 @@ static void choose_event(struct night_page *p, struct run *run, enum event_choic
 	bool afresh;
 	if (!row || !p->plan.made)
 		return;
-	p->select_current = false; /* the row stays selected whatever comes next now */
 	const enum event_choice now = page_plan_choice(&p->plan.made->view, row, &text);
 	page_plan_event(row, edit.text);
 	const struct plan_edit *prior = plan_edits_event(&p->plan.edits, &edit.night, edit.text, &afresh);
@@ -369,5 +388,6 @@ bool night_page_change(struct night_page *p, struct run *run)
 {
 	const enum plan_want wanted = p->wanted;
 	p->wanted = PLAN_WANT_NOTHING;
+	p->select_current = false; /* the row stays selected whatever comes next then */
 	return p->loaded && seen(p, run, wanted) && serve(p, run, wanted);
 }

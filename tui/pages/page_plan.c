@@ -112,7 +112,7 @@ static bool does_not_fit(enum status s)
 
 /* By the edits of the night; *from_now as it was made. */
 static enum status make_edited(struct page_plan *plan, struct run *r, int32_t mjd, struct made_plan **out,
-			       bool *from_now, struct err *e)
+			       bool *from_now, bool *changed, struct err *e)
 {
 	const struct edit_night night = page_plan_night(r, mjd);
 	struct edit_wish *w = calloc(1, sizeof *w);
@@ -120,6 +120,8 @@ static enum status make_edited(struct page_plan *plan, struct run *r, int32_t mj
 		return err_set(e, ST_MEMORY, "no memory for a plan");
 	plan_edits_wish(&plan->edits, &night, w);
 	w->wish.costs = r->n_prepared <= PLAN_COSTS_AT_ONCE;
+	const struct plan_wish *wish = &w->wish;
+	*changed = wish->n_pin + wish->n_drop + wish->n_free + wish->n_lost > 0 || wish->afresh;
 	enum status s = make_wished(r, mjd, &w->wish, out, from_now, e);
 	free(w);
 	return s;
@@ -130,15 +132,15 @@ enum status page_plan_load(struct page_plan *plan, struct run *r, int32_t mjd, s
 {
 	const struct edit_night night = page_plan_night(r, mjd);
 	struct made_plan *made = NULL;
-	bool from_now = false;
+	bool from_now = false, changed = false;
 	if (fault)
 		fault[0] = '\0';
-	enum status s = make_edited(plan, r, mjd, &made, &from_now, e);
+	enum status s = make_edited(plan, r, mjd, &made, &from_now, &changed, e);
 	if (fault && does_not_fit(s) && plan_edits_of(&plan->edits, &night) > 0) {
 		snprintf(fault, n, "What was changed and not kept is left out, it no longer fits: %.300s",
 			 e->text);
 		plan_edits_clear(&plan->edits, &night);
-		s = make_edited(plan, r, mjd, &made, &from_now, e);
+		s = make_edited(plan, r, mjd, &made, &from_now, &changed, e);
 	}
 	if (s != ST_OK)
 		return s;
@@ -150,7 +152,7 @@ enum status page_plan_load(struct page_plan *plan, struct run *r, int32_t mjd, s
 	plan->waits = false;
 	plan->from_now = from_now;
 	plan->made = made;
-	plan->changed = !made->view.stored && plan_edits_of(&plan->edits, &night) > 0;
+	plan->changed = changed;
 	return ST_OK;
 }
 
@@ -384,9 +386,9 @@ static void item_words(const struct plan_view *v, const struct plan_item_view *i
 	if (item->cause[0] || item->note[0])
 		snprintf(after, sizeof after, "; %.150s%s%.200s", item->cause,
 			 item->cause[0] && item->note[0] ? ", " : "", item->note);
-	snprintf(out, n, "item %d of %zu, %s: slew by %s, start %s, leave %s, %s%s%s; worth %s%s%s%s. %.400s",
-		 item->order, v->n_items, plan_state_words[item->state], slew, start, end, m->variant,
-		 item->n > 1 ? ", one pointing" : "", by, worth, moved, after,
+	snprintf(out, n, "item %d of %zu, %s, %s: slew by %s, start %s, leave %s%s%s; worth %s%s%s%s. %.400s",
+		 item->order, v->n_items, plan_state_words[item->state], m->variant, slew, start, end,
+		 item->n > 1 ? "; one pointing" : "", by, worth, moved, after,
 		 item->in_day ? "; THE SUN IS UP for some of it" : "", item->if_missed);
 }
 
