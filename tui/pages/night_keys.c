@@ -278,17 +278,13 @@ static void open_sites(struct night_page *p)
 			move_choice(p, (int)i);
 }
 
-/* Why a window was left out is there; what forcing it in would cost may take its own time. */
-static enum want open_details(struct night_page *p)
+/* Why a window was left out is there; what forcing it in would cost may come later. */
+static void open_details(struct night_page *p)
 {
 	const struct night_row *row = night_page_selected(p);
-	const struct plan_left_view *left = row ? page_plan_left(&p->plan, row) : NULL;
 	p->mode = row ? MODE_DETAILS : MODE_LIST;
+	p->plan.cost_waits = row && page_plan_needs_cost(&p->plan, row);
 	night_page_settle(p);
-	if (!left || row->plan.dropped || p->plan.made->costs || p->plan.made->view.stored)
-		return WANT_NOTHING;
-	p->wanted = PLAN_WANT_COST;
-	return WANT_CHANGE;
 }
 
 static enum want list_action(struct night_page *p, enum action action)
@@ -329,7 +325,8 @@ static enum want list_action(struct night_page *p, enum action action)
 		open_sites(p);
 		break;
 	case ACT_DETAILS:
-		return open_details(p);
+		open_details(p);
+		break;
 	default:
 		break;
 	}

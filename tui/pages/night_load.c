@@ -61,17 +61,20 @@ enum status night_page_load(struct night_page *p, struct run *run, struct err *e
 	return s;
 }
 
-bool night_page_work_waits(const struct night_page *p)
+static bool cost_waits(const struct night_page *p)
 {
-	return p->loaded && p->plan.waits;
+	return p->mode == MODE_DETAILS && p->plan.cost_waits;
 }
 
-void night_page_work(struct night_page *p, struct run *run)
+bool night_page_work_waits(const struct night_page *p)
+{
+	return p->loaded && (p->plan.waits || cost_waits(p));
+}
+
+static void work_out_plan(struct night_page *p, struct run *run)
 {
 	char fault[MESSAGE_BYTES];
 	struct err e;
-	if (!night_page_work_waits(p))
-		return;
 	if (page_plan_load(&p->plan, run, p->view.night.mjd, NULL, fault, sizeof fault, &e) != ST_OK) {
 		p->plan.waits = false;
 		snprintf(fault, sizeof fault, "No plan: %.400s", e.text);
@@ -79,6 +82,30 @@ void night_page_work(struct night_page *p, struct run *run)
 	if (fault[0])
 		night_page_say(p, ROLE_WARN, fault);
 	night_page_show_plan(p);
+}
+
+static void work_out_cost(struct night_page *p, struct run *run)
+{
+	char event[EDIT_TEXT_BYTES];
+	const struct night_row *row = night_page_selected(p);
+	struct err e;
+	p->plan.cost_waits = false;
+	if (!row)
+		return;
+	page_plan_event(row, event);
+	if (page_plan_cost(&p->plan, run, p->view.night.mjd, event, &e) != ST_OK)
+		p->plan.cost = NAN; /* why it was left out is told all the same */
+	night_page_settle(p);
+}
+
+void night_page_work(struct night_page *p, struct run *run)
+{
+	if (!p->loaded)
+		return;
+	if (p->plan.waits)
+		work_out_plan(p, run);
+	else if (cost_waits(p))
+		work_out_cost(p, run);
 }
 
 /* --- the table, over states of no type --- */

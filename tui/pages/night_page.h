@@ -56,8 +56,7 @@ enum plan_want {
 	PLAN_WANT_WORDS,
 	PLAN_WANT_DRAFTS,
 	PLAN_WANT_COMPARE,
-	PLAN_WANT_SAVE_AS,
-	PLAN_WANT_COST
+	PLAN_WANT_SAVE_AS
 };
 /* Differences of two plans in words; line: plan_compare_free. */
 struct plan_compare {
@@ -161,7 +160,7 @@ void night_page_draw(const struct night_page *p, struct grid *g);
 /* Serves what a key wanted of the plan; true: something was stored. */
 bool night_page_change(struct night_page *p, struct run *run);
 bool night_page_work_waits(const struct night_page *p);
-/* Works out the plan that waits. */
+/* Works out the plan that waits, or the cost that the details wait for. */
 void night_page_work(struct night_page *p, struct run *run);
 
 /* --- between the files of the page --- */

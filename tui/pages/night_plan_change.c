@@ -311,19 +311,6 @@ static void compare(struct night_page *p, struct run *run)
 	page_plan_made_free(other);
 }
 
-static void tell_cost(struct night_page *p, struct run *run)
-{
-	char event[EDIT_TEXT_BYTES];
-	const struct night_row *row = night_page_selected(p);
-	struct err e;
-	if (!row)
-		return;
-	page_plan_event(row, event);
-	/* what can't be forced in has no cost: nothing to say */
-	if (page_plan_cost(&p->plan, run, p->view.night.mjd, event, &e) == ST_OK)
-		night_page_settle(p);
-}
-
 /* --- all of them --- */
 
 /* What is stored or marked was seen before; true when the plan is there and was. */
@@ -374,9 +361,6 @@ static bool serve(struct night_page *p, struct run *run, enum plan_want wanted)
 		break;
 	case PLAN_WANT_COMPARE:
 		compare(p, run);
-		break;
-	case PLAN_WANT_COST:
-		tell_cost(p, run);
 		break;
 	case PLAN_WANT_NOTHING:
 		break;

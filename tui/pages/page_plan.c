@@ -26,6 +26,7 @@ void page_plan_drop(struct page_plan *plan)
 	plan->made = NULL;
 	plan->changed = plan->from_now = false;
 	plan->cost_of[0] = '\0';
+	plan->cost_waits = false;
 	plan->line[0] = plan->line_short[0] = plan->line_least[0] = '\0';
 }
 
@@ -156,6 +157,29 @@ enum status page_plan_load(struct page_plan *plan, struct run *r, int32_t mjd, s
 	return ST_OK;
 }
 
+bool page_plan_needs_cost(const struct page_plan *plan, const struct night_row *row)
+{
+	char event[EDIT_TEXT_BYTES];
+	if (!plan->made || plan->made->costs || plan->made->view.stored || row->plan.dropped ||
+	    !page_plan_left(plan, row))
+		return false;
+	page_plan_event(row, event);
+	return strcmp(event, plan->cost_of) != 0;
+}
+
+static double cost_of_forcing(const struct plan_view *plan, const struct plan_view *forced, const char *event)
+{
+	for (size_t i = 0; i < forced->n_items; i++)
+		for (size_t k = 0; k < forced->item[i].n; k++) {
+			const struct plan_member_view *m = &forced->item[i].member[k];
+			char name[EDIT_TEXT_BYTES];
+			snprintf(name, sizeof name, "%s@%ld", m->target, m->epoch);
+			if (strcmp(name, event) == 0)
+				return fmax(plan->worth - forced->worth, 0.0);
+		}
+	return NAN;
+}
+
 enum status page_plan_cost(struct page_plan *plan, struct run *r, int32_t mjd, const char *event,
 			   struct err *e)
 {
@@ -163,28 +187,22 @@ enum status page_plan_cost(struct page_plan *plan, struct run *r, int32_t mjd, c
 	struct edit_wish *w = calloc(1, sizeof *w);
 	struct made_plan *forced = NULL;
 	bool from_now;
+	snprintf(plan->cost_of, sizeof plan->cost_of, "%s", event);
+	plan->cost = NAN;
 	if (!w)
 		return err_set(e, ST_MEMORY, "no memory for a plan");
 	plan_edits_wish(&plan->edits, &night, w);
-	if (w->wish.n_pin == EDITS_MAX) {
-		free(w);
-		return err_set(e, ST_RANGE, "too many pins");
+	enum status s = ST_OK;
+	if (w->wish.n_pin == EDITS_MAX)
+		s = err_set(e, ST_RANGE, "too many pins");
+	else {
+		w->pin[w->wish.n_pin++] = event;
+		s = make_wished(r, mjd, &w->wish, &forced, &from_now, e);
 	}
-	w->pin[w->wish.n_pin++] = event;
-	enum status s = make_wished(r, mjd, &w->wish, &forced, &from_now, e);
 	free(w);
 	if (s != ST_OK)
 		return s;
-	snprintf(plan->cost_of, sizeof plan->cost_of, "%s", event);
-	plan->cost = NAN;
-	for (size_t i = 0; i < forced->view.n_items; i++)
-		for (size_t k = 0; k < forced->view.item[i].n; k++) {
-			const struct plan_member_view *m = &forced->view.item[i].member[k];
-			char name[EDIT_TEXT_BYTES];
-			snprintf(name, sizeof name, "%s@%ld", m->target, m->epoch);
-			if (strcmp(name, event) == 0)
-				plan->cost = fmax(plan->made->view.worth - forced->view.worth, 0.0);
-		}
+	plan->cost = cost_of_forcing(&plan->made->view, &forced->view, event);
 	page_plan_made_free(forced);
 	return ST_OK;
 }
@@ -412,6 +430,7 @@ bool page_plan_row_words(const struct page_plan *plan, const struct night_row *r
 	if (isfinite(cost) && !strstr(left->reason, " cost"))
 		snprintf(out, n, "left out: %s; forcing it in costs %s", left->reason, worth);
 	else
-		snprintf(out, n, "left out: %s", left->reason);
+		snprintf(out, n, "left out: %s%s", left->reason,
+			 plan->cost_waits ? "; what forcing it in costs is being worked out" : "");
 	return true;
 }

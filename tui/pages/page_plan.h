@@ -25,9 +25,10 @@ struct page_plan {
 	bool changed;		/* by the edits of its night, not stored */
 	bool from_now;		/* of what is left of a running night */
 	struct plan_edits edits;
-	/* cost of one event that was left out, asked for on its own */
+	/* cost of one event that was left out, asked for on its own; "" none yet */
 	char cost_of[EDIT_TEXT_BYTES];
-	double cost;
+	double cost;	 /* NAN: it can't be forced in */
+	bool cost_waits; /* for that of the selected window */
 	/* texts: of the plan, and of what comes next; of decreasing length */
 	char line[PLAN_LINE_BYTES], line_short[PLAN_LINE_BYTES], line_least[PLAN_LINE_BYTES];
 	enum role line_role;
@@ -48,7 +49,9 @@ MUST_USE enum status page_plan_load(struct page_plan *plan, struct run *r, int32
 MUST_USE enum status page_plan_other(struct run *r, int32_t mjd, const char *draft, bool afresh,
 				     struct made_plan **out, struct err *e);
 void page_plan_made_free(struct made_plan *made);
-/* What forcing an event in would cost; into plan->cost. */
+/* Whether the cost of a row that was left out is to be worked out on its own. */
+bool page_plan_needs_cost(const struct page_plan *plan, const struct night_row *row);
+/* What forcing an event in would cost; into plan->cost, NAN on failure. */
 MUST_USE enum status page_plan_cost(struct page_plan *plan, struct run *r, int32_t mjd, const char *event,
 				    struct err *e);
 
