@@ -7,6 +7,8 @@
 const char *store_where(const struct store *s)
 {
 	const char *path = s->db ? sqlite3_db_filename(s->db, "main") : NULL;
+	if (s->copy_of)
+		return s->copy_of;
 	return path && *path ? path : "database";
 }
 

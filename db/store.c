@@ -75,15 +75,8 @@ enum status store_copy(struct store *from, struct store **out, struct err *e)
 	if (!s)
 		return err_set(e, ST_MEMORY, "database: no memory");
 	enum status st = store_connect_memory(s, e);
-	if (st == ST_OK) {
-		sqlite3_backup *backup = sqlite3_backup_init(s->db, "main", from->db, "main");
-		if (!backup)
-			st = store_fault(s, sqlite3_extended_errcode(s->db), e);
-		else if (sqlite3_backup_step(backup, -1) != SQLITE_DONE)
-			st = store_fault(s, sqlite3_backup_finish(backup), e);
-		else
-			(void)sqlite3_backup_finish(backup);
-	}
+	if (st == ST_OK)
+		st = pages_copy(from->db, s->db, e);
 	return finish(s, st, out, e);
 }
 
@@ -96,6 +89,7 @@ void store_close(struct store *s)
 	for (int id = 0; id < SQL_COUNT; id++)
 		(void)sqlite3_finalize(s->stmt[id]);
 	(void)sqlite3_close(s->db);
+	free(s->copy_of);
 	free(s);
 }
 

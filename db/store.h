@@ -11,8 +11,9 @@
 struct store; /* opaque */
 
 enum store_mode {
-	STORE_READ,   /* never creates, never writes */
-	STORE_WRITE,  /* opens for writing; creates the file (0600), its folders (0700) and the schema when missing */
+	STORE_READ,   /* never creates, never writes; a file of an older schema is read into memory as it is then */
+	STORE_WRITE,  /* opens for writing; creates the file (0600), its folders (0700) and the schema when missing. A file of an older schema is
+			 brought to the newest, a checked copy beside it first: FILE.schema-1.bak */
 	STORE_MEMORY, /* a throw-away store in memory: demo, tests */
 };
 /* STORE_READ on a missing file: ST_ABSENT. Not a wane database, a newer schema, damage, a directory: ST_STORE, file untouched.

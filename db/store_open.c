@@ -16,14 +16,14 @@
 
 #define QUICK_CHECK_BYTES_MAX (64LL * 1024 * 1024)
 
-static enum status run(struct store *s, const char *sql, struct err *e)
+enum status store_run(struct store *s, const char *sql, struct err *e)
 {
 	int rc = sqlite3_exec(s->db, sql, NULL, NULL, NULL);
 	return rc == SQLITE_OK ? ST_OK : store_fault(s, sqlite3_extended_errcode(s->db), e);
 }
 
-static enum status ask(struct store *s, const char *sql, int64_t *number, char *text, size_t size,
-		       struct err *e)
+enum status store_ask(struct store *s, const char *sql, int64_t *number, char *text, size_t size,
+		      struct err *e)
 {
 	sqlite3_stmt *stmt = NULL;
 	int rc = sqlite3_prepare_v2(s->db, sql, -1, &stmt, NULL);
@@ -165,8 +165,8 @@ static enum status configure(struct store *s, struct err *e)
 	int rc = sqlite3_busy_timeout(s->db, 5000);
 	if (rc != SQLITE_OK)
 		return store_fault(s, rc, e);
-	return run(s, "PRAGMA recursive_triggers = ON; PRAGMA cell_size_check = ON; PRAGMA mmap_size = 0;",
-		   e);
+	return store_run(
+	    s, "PRAGMA recursive_triggers = ON; PRAGMA cell_size_check = ON; PRAGMA mmap_size = 0;", e);
 }
 
 /* Saved means saved: only EXTRA syncs the folder after the journal is gone (SQLite documentation, PRAGMA
@@ -175,11 +175,11 @@ static enum status make_durable(struct store *s, struct err *e)
 {
 	char journal[16] = "";
 	int64_t level = 0;
-	enum status st = ask(s, "PRAGMA journal_mode = DELETE", NULL, journal, sizeof journal, e);
+	enum status st = store_ask(s, "PRAGMA journal_mode = DELETE", NULL, journal, sizeof journal, e);
 	if (st == ST_OK)
-		st = run(s, "PRAGMA synchronous = EXTRA", e);
+		st = store_run(s, "PRAGMA synchronous = EXTRA", e);
 	if (st == ST_OK)
-		st = ask(s, "PRAGMA synchronous", &level, NULL, 0, e);
+		st = store_ask(s, "PRAGMA synchronous", &level, NULL, 0, e);
 	if (st == ST_OK && (s->mode == STORE_MEMORY ? false : strcmp(journal, "delete") != 0 || level != 3))
 		st = err_set(e, ST_STORE, "database: its journal can't be set (%s, %d)", journal, (int)level);
 	return st;
@@ -198,7 +198,7 @@ static enum status add_info(struct store *s, struct err *e)
 	snprintf(sql, sizeof sql,
 		 "INSERT INTO store_info(id, store_id, rev, row_crc) VALUES(1, '%s', 1, %lu)", id,
 		 (unsigned long)row_crc(&s->crc, cell, 3));
-	return run(s, sql, e);
+	return store_run(s, sql, e);
 }
 
 /* Tables into an empty database. Under the lock the file is looked at again: another program may have been
@@ -206,19 +206,19 @@ static enum status add_info(struct store *s, struct err *e)
 static enum status make_schema(struct store *s, struct err *e)
 {
 	int64_t version = 0, objects = 0;
-	enum status st = run(s, "BEGIN IMMEDIATE", e);
+	enum status st = store_run(s, "BEGIN IMMEDIATE", e);
 	if (st != ST_OK)
 		return st;
-	st = ask(s, "PRAGMA user_version", &version, NULL, 0, e);
+	st = store_ask(s, "PRAGMA user_version", &version, NULL, 0, e);
 	if (st == ST_OK)
-		st = ask(s, "SELECT count(*) FROM sqlite_schema", &objects, NULL, 0, e);
+		st = store_ask(s, "SELECT count(*) FROM sqlite_schema", &objects, NULL, 0, e);
 	if (st == ST_OK && version == 0 && objects == 0) {
 		st = schema_apply(s->db, 0, e);
 		if (st == ST_OK)
 			st = add_info(s, e);
 	}
 	if (st == ST_OK)
-		st = run(s, "COMMIT", e);
+		st = store_run(s, "COMMIT", e);
 	if (!sqlite3_get_autocommit(s->db))
 		(void)sqlite3_exec(s->db, "ROLLBACK", NULL, NULL, NULL);
 	return st;
@@ -228,12 +228,12 @@ static enum status quick_check(struct store *s, const char *path, struct err *e)
 {
 	int64_t pages = 0, page_bytes = 0;
 	char answer[256] = "";
-	enum status st = ask(s, "PRAGMA page_count", &pages, NULL, 0, e);
+	enum status st = store_ask(s, "PRAGMA page_count", &pages, NULL, 0, e);
 	if (st == ST_OK)
-		st = ask(s, "PRAGMA page_size", &page_bytes, NULL, 0, e);
+		st = store_ask(s, "PRAGMA page_size", &page_bytes, NULL, 0, e);
 	if (st != ST_OK || pages * page_bytes > QUICK_CHECK_BYTES_MAX)
 		return st;
-	st = ask(s, "PRAGMA quick_check(1)", NULL, answer, sizeof answer, e);
+	st = store_ask(s, "PRAGMA quick_check(1)", NULL, answer, sizeof answer, e);
 	if (st == ST_OK && strcmp(answer, "ok") != 0)
 		st = err_set(e, ST_STORE, "%s: damaged: %s", path, answer);
 	return st;
@@ -255,15 +255,15 @@ static enum status open_reader(struct store *s, const char *path, struct err *e)
 {
 	enum status st = open_connection(s, path, SQLITE_OPEN_READONLY | SQLITE_OPEN_NOFOLLOW, e);
 	int64_t n;
-	if (st == ST_OK && ask(s, "SELECT count(*) FROM sqlite_schema", &n, NULL, 0, e) == ST_OK)
+	if (st == ST_OK && store_ask(s, "SELECT count(*) FROM sqlite_schema", &n, NULL, 0, e) == ST_OK)
 		return ST_OK;
 	if (st != ST_OK || sqlite3_extended_errcode(s->db) != SQLITE_READONLY_ROLLBACK)
 		return ST_STORE;
 	st = open_connection(s, path, SQLITE_OPEN_READWRITE | SQLITE_OPEN_NOFOLLOW, e);
 	if (st == ST_OK)
-		st = ask(s, "SELECT count(*) FROM sqlite_schema", &n, NULL, 0, e);
+		st = store_ask(s, "SELECT count(*) FROM sqlite_schema", &n, NULL, 0, e);
 	if (st == ST_OK)
-		st = run(s, "PRAGMA query_only = ON", e);
+		st = store_run(s, "PRAGMA query_only = ON", e);
 	return st;
 }
 
@@ -281,9 +281,9 @@ static bool folder_can_be_written(const char *path)
 static enum status look_inside(struct store *s, bool *empty, struct err *e)
 {
 	int64_t version = 0, objects = 0;
-	enum status st = ask(s, "PRAGMA user_version", &version, NULL, 0, e);
+	enum status st = store_ask(s, "PRAGMA user_version", &version, NULL, 0, e);
 	if (st == ST_OK)
-		st = ask(s, "SELECT count(*) FROM sqlite_schema", &objects, NULL, 0, e);
+		st = store_ask(s, "SELECT count(*) FROM sqlite_schema", &objects, NULL, 0, e);
 	*empty = version == 0 && objects == 0;
 	return st;
 }
@@ -316,6 +316,8 @@ static enum status open_file(struct store *s, const char *path, bool empty, stru
 	}
 	if (st == ST_OK)
 		st = quick_check(s, path, e);
+	if (st == ST_OK)
+		st = store_migrate(s, path, e);
 	if (st == ST_OK)
 		st = schema_compare(s->db, &s->crc, e);
 	return st;

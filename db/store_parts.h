@@ -22,6 +22,7 @@ struct store {
 	int64_t undoes;	   /* the change set that this one takes back; 0 none */
 	char utc[UTC_BYTES], who[WHO_BYTES], verb[VERB_BYTES];
 	char id[33];
+	char *copy_of; /* the file that a reader copied into memory; NULL: db is the file */
 	struct crc_table crc;
 };
 
@@ -81,7 +82,21 @@ MUST_USE enum status store_copy(struct store *s, struct store **out, struct err 
 
 /* store_open.c */
 MUST_USE enum status store_connect(struct store *s, const char *path, struct err *e);
+/* Statements of before the others are prepared: run; ask for the first column of the first row, as number or
+ * text (either may be NULL). */
+MUST_USE enum status store_run(struct store *s, const char *sql, struct err *e);
+MUST_USE enum status store_ask(struct store *s, const char *sql, int64_t *number, char *text, size_t size,
+			       struct err *e);
 /* An empty connection in memory, without tables. */
 MUST_USE enum status store_connect_memory(struct store *s, struct err *e);
+
+/* --- migrate.c --- */
+/* Brings a connected store of an older version to the newest. One that can be written: a checked copy of it
+ * is made beside the file first (FILE.schema-1.bak, 0600, an equal one is kept), then all of it is one
+ * transaction. Else the file is only read: the store becomes a copy in memory. Nothing to do: ST_OK. path: of
+ * the file, absolute. */
+MUST_USE enum status store_migrate(struct store *s, const char *path, struct err *e);
+/* All pages of `from` into `to` (backup API). */
+MUST_USE enum status pages_copy(sqlite3 *from, sqlite3 *to, struct err *e);
 
 #endif

@@ -228,7 +228,7 @@ enum status plan_candidates(const struct plan_input *in, struct plan_candidate *
 		k.ways.first = malloc((in->n + 1) * sizeof *k.ways.first);
 		k.worth = malloc((in->n + 1) * sizeof *k.worth);
 		k.offer = malloc((in->n + 1) * sizeof *k.offer);
-		k.star = malloc((in->n + 1) * sizeof *k.star);
+		k.star = calloc(in->n + 1, sizeof *k.star);
 		k.near = malloc((NEIGHBOURS_MAX + 1) * sizeof *k.near);
 		if (!k.ways.first || !k.worth || !k.offer || !k.star || !k.near)
 			st = err_set(e, ST_MEMORY, "no memory for %zu windows", in->n);

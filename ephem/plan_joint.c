@@ -11,7 +11,7 @@
 #include <string.h>
 
 enum {
-	CROWD_MAX = 12,	 /* events looked at in one interval; a wider one is left */
+	CROWD_MAX = 12,	 /* events kept of an interval: those of most worth */
 	OPTIONAL_MAX = 5 /* events of an interval that may be left out of it */
 };
 
@@ -24,7 +24,7 @@ struct sweep {
 	const struct offered_way *way; /* of this field, by start */
 	size_t *by_end;
 	size_t n_inside; /* events with a way in the interval, and the best such way of each */
-	struct offered_way inside[CROWD_MAX + 1];
+	struct offered_way inside[CROWD_MAX];
 	struct candidate_list *list;
 	size_t first; /* candidate of this centre in the list */
 };
@@ -190,7 +190,7 @@ static bool better_elsewhere(const struct sweep *s, const struct offered_way *w,
  * more elsewhere. */
 static bool add_interval(struct sweep *s, double from_d, double to_d)
 {
-	struct offered_way all[CROWD_MAX + 1], member[PLAN_MEMBERS_MAX];
+	struct offered_way all[CROWD_MAX], member[PLAN_MEMBERS_MAX];
 	unsigned optional[PLAN_MEMBERS_MAX], bits = 0; /* the bit of an event that may be left out; 0 */
 	size_t n = s->n_inside;
 	memcpy(all, s->inside, n * sizeof *all);
@@ -217,14 +217,22 @@ static bool add_interval(struct sweep *s, double from_d, double to_d)
 /* Takes a way into the interval; whether that changes what is best in it. */
 static bool take_in(struct sweep *s, const struct offered_way *w)
 {
-	for (size_t i = 0; i < s->n_inside; i++)
+	size_t least = 0;
+	for (size_t i = 0; i < s->n_inside; i++) {
 		if (s->inside[i].offer == w->offer) {
 			const bool better = w->way.worth > s->inside[i].way.worth;
 			if (better)
 				s->inside[i] = *w;
 			return better;
 		}
-	s->inside[s->n_inside++] = *w;
+		if (s->inside[i].way.worth < s->inside[least].way.worth)
+			least = i;
+	}
+	if (s->n_inside < CROWD_MAX)
+		least = s->n_inside++;
+	else if (w->way.worth <= s->inside[least].way.worth)
+		return false;
+	s->inside[least] = *w;
 	return true;
 }
 
@@ -238,7 +246,7 @@ static bool add_from(struct sweep *s, size_t start)
 	bool changed = false;
 	double to_d = -INFINITY;
 	s->n_inside = 0;
-	for (size_t i = 0; i < s->n && s->n_inside <= CROWD_MAX; i++) {
+	for (size_t i = 0; i < s->n; i++) {
 		const struct offered_way *w = &s->way[s->by_end[i]];
 		if (s->by_end[i] < start || s->by_end[i] >= beyond)
 			continue;
@@ -250,7 +258,7 @@ static bool add_from(struct sweep *s, size_t start)
 		to_d = w->way.to_d;
 		changed |= take_in(s, w);
 	}
-	return !changed || s->n_inside > CROWD_MAX || add_interval(s, s->way[start].way.from_d, to_d);
+	return !changed || add_interval(s, s->way[start].way.from_d, to_d);
 }
 
 enum status joint_items(const struct plan_input *in, const struct plan_pointings *p,

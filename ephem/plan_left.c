@@ -36,8 +36,27 @@ static bool clashes_with_begun(const struct plan_order *k, const struct night_pl
 	return n > 0;
 }
 
-/* The order with this offer pinned too: what it costs, and which items lose an event by it. An item that is
- * only cut shorter stays. */
+/* The items of the order that hold an event which the order asked for last does not. One that is only cut
+ * shorter stays. */
+static void add_lost(const struct plan_order *k, const struct order_result *result,
+		     const struct night_plan *out, struct plan_left *left, bool held[])
+{
+	for (size_t i = 0; i < k->in->n; i++)
+		held[i] = false;
+	for (size_t i = 0; i < result->n; i++) {
+		const struct order_item *item = &k->item[k->taken[i]];
+		for (int j = 0; j < item->n_events; j++)
+			held[item->event[j]] = true;
+	}
+	for (size_t i = 0; held[left->offer] && i < out->n_items; i++)
+		for (int j = 0; j < out->item[i].n; j++)
+			if (!held[out->item[i].member[j].offer]) {
+				add_clash(left, i);
+				break;
+			}
+}
+
+/* The order with this offer pinned too: what it costs, and what goes for it. */
 static enum status force_in(struct plan_order *k, const struct night_plan *out, struct plan_left *left,
 			    bool held[], struct err *e)
 {
@@ -45,25 +64,30 @@ static enum status force_in(struct plan_order *k, const struct night_plan *out, 
 	k->pinned[left->offer] = true;
 	const enum status st = plan_order_solve(k, &result, e);
 	k->pinned[left->offer] = false;
-	if (st != ST_OK)
+	if (st != ST_OK || result.pins_missed > out->pins_missed)
 		return st;
-	for (size_t i = 0; i < k->in->n; i++)
-		held[i] = false;
-	for (size_t i = 0; i < result.n; i++) {
-		const struct order_item *item = &k->item[k->taken[i]];
-		for (int j = 0; j < item->n_events; j++)
-			held[item->event[j]] = true;
-	}
-	if (!held[left->offer] || result.pins_missed > out->pins_missed)
-		return ST_OK;
-	left->cost = fmax(out->worth - result.worth, 0.0);
-	for (size_t i = 0; i < out->n_items; i++)
-		for (int j = 0; j < out->item[i].n; j++)
-			if (!held[out->item[i].member[j].offer]) {
-				add_clash(left, i);
-				break;
-			}
+	add_lost(k, &result, out, left, held);
+	if (held[left->offer])
+		left->cost = fmax(out->worth - result.worth, 0.0);
 	return ST_OK;
+}
+
+/* A pin that was missed: what would go if it were the only one. */
+static enum status pin_alone(struct plan_order *k, const struct night_plan *out, struct plan_left *left,
+			     bool held[], struct err *e)
+{
+	struct order_result result;
+	bool *pinned = k->pinned, *alone = calloc(k->in->n + 1, sizeof *alone);
+	if (!alone)
+		return err_set(e, ST_MEMORY, "no memory for the pins of %zu windows", k->in->n);
+	alone[left->offer] = true;
+	k->pinned = alone;
+	const enum status st = plan_order_solve(k, &result, e);
+	k->pinned = pinned;
+	free(alone);
+	if (st == ST_OK)
+		add_lost(k, &result, out, left, held);
+	return st;
 }
 
 static enum status explain(struct plan_order *k, const struct night_plan *out, size_t offer,
@@ -80,10 +104,27 @@ static enum status explain(struct plan_order *k, const struct night_plan *out, s
 		left->reason = !clashes_with_begun(k, out, left) ? LEFT_NO_TIME
 			       : o->pinned			 ? LEFT_PINS
 								 : LEFT_CLASH;
-	else if (o->pinned)
-		left->reason = LEFT_PINS;
-	else if (!k->in->without_costs)
-		return force_in(k, out, left, held, e);
+	else {
+		left->reason = o->pinned ? LEFT_PINS : LEFT_CLASH;
+		if (!k->in->without_costs)
+			return o->pinned ? pin_alone(k, out, left, held, e) : force_in(k, out, left, held, e);
+	}
+	return ST_OK;
+}
+
+static enum status explain_all(struct plan_order *k, struct night_plan *out, bool planned[], bool held[],
+			       struct err *e)
+{
+	for (size_t i = 0; i < out->n_items; i++)
+		for (int j = 0; j < out->item[i].n; j++)
+			planned[out->item[i].member[j].offer] = true;
+	for (size_t i = 0; i < k->in->n; i++) {
+		if (planned[i] || k->in->offer[i].settled)
+			continue;
+		const enum status st = explain(k, out, i, &out->left[out->n_left++], held, e);
+		if (st != ST_OK)
+			return st;
+	}
 	return ST_OK;
 }
 
@@ -91,16 +132,12 @@ enum status plan_left_out(struct plan_order *k, struct night_plan *out, struct e
 {
 	const size_t n = k->in->n;
 	bool *held = malloc((n + 1) * sizeof *held), *planned = calloc(n + 1, sizeof *planned);
+	enum status st;
 	out->left = malloc((n + 1) * sizeof *out->left);
-	enum status st = ST_OK;
-	if (!held || !planned || !out->left)
+	if (held && planned && out->left)
+		st = explain_all(k, out, planned, held, e);
+	else
 		st = err_set(e, ST_MEMORY, "no memory for what a plan of %zu windows leaves out", n);
-	for (size_t i = 0; st == ST_OK && i < out->n_items; i++)
-		for (int j = 0; j < out->item[i].n; j++)
-			planned[out->item[i].member[j].offer] = true;
-	for (size_t i = 0; st == ST_OK && i < n; i++)
-		if (!planned[i] && !k->in->offer[i].settled)
-			st = explain(k, out, i, &out->left[out->n_left++], held, e);
 	free(held);
 	free(planned);
 	return st;

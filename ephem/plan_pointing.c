@@ -29,12 +29,20 @@ double plan_move_d(const struct plan_rules *rules, struct vec3 from, struct vec3
 	return rules->settle_d + vec3_angle_rad(from, to) / DEG_RAD / rules->slew_deg_d;
 }
 
-double plan_gap_between_d(const struct plan_rules *rules, struct vec3 a, struct vec3 b, bool catalogue)
+/* By the chord: it is asked for every pair of a crowded field. */
+static bool in_one_field(const struct plan_rules *rules, struct vec3 a, struct vec3 b, bool catalogue)
 {
 	double field_rad = rules->field_deg > 0.0 ? rules->field_deg * DEG_RAD : 0.0;
 	if (catalogue)
 		field_rad = fmax(field_rad, POSITION_DOUBT_ARCSEC * ARCSEC_RAD);
-	return vec3_angle_rad(a, b) <= field_rad ? 0.0 : plan_move_d(rules, a, b);
+	const struct vec3 apart = vec3_sub(a, b);
+	const double chord = 2.0 * sin(0.5 * fmin(field_rad, PI));
+	return vec3_dot(apart, apart) <= chord * chord;
+}
+
+double plan_gap_between_d(const struct plan_rules *rules, struct vec3 a, struct vec3 b, bool catalogue)
+{
+	return in_one_field(rules, a, b, catalogue) ? 0.0 : plan_move_d(rules, a, b);
 }
 
 struct planet {
@@ -114,7 +122,8 @@ void plan_pointings_free(struct plan_pointings *p)
 
 bool plan_pointings_share(const struct plan_pointings *p, size_t a, size_t b)
 {
-	return plan_pointings_gap_d(p, (int)a, (int)b) <= 0.0;
+	return p->place[a] == p->place[b] ||
+	       in_one_field(p->rules, p->direction[a], p->direction[b], a >= p->n || b >= p->n);
 }
 
 double plan_pointings_gap_d(const void *ctx, int from_class, int to_class)

@@ -144,10 +144,12 @@ static const struct option_row rows[] = {
      OPT_VALUES, AT(unlost), 0, 0, NULL},
     {"--from", "TIME", "Plan what is left of the night from this time (22:40, 05:40Z, dusk+20m).", GROUP_PLAN,
      OPT_TEXT, AT(plan_from), 0, 0, "plan"},
+    {"--rebuild", NULL, "Work the stored plan out anew from today's ephemerides and its own choices.",
+     GROUP_PLAN, OPT_FLAG, AT(rebuild), 0, 0, NULL},
     {"--afresh", NULL, "Take over no choice of the stored plan; what is marked stands.", GROUP_PLAN, OPT_FLAG,
      AT(afresh), 0, 0, NULL},
-    {"--draft", "NAME", "Which draft of the night (the kept one, else `main`).", GROUP_PLAN, OPT_TEXT,
-     AT(draft), 0, 0, NULL},
+    {"--draft", "NAME", "Which draft of the night (the kept one, else `main`).", GROUP_PLAN | GROUP_SHEET,
+     OPT_TEXT, AT(draft), 0, 0, NULL},
     {"--keep", NULL, "Store the plan and keep it: it is the one that holds for the night.", GROUP_PLAN,
      OPT_FLAG, AT(keep), 0, 0, NULL},
     {"--save", NULL, "Store the plan as a draft, without keeping it.", GROUP_PLAN, OPT_FLAG, AT(save), 0, 0,
@@ -164,8 +166,11 @@ static const struct option_row rows[] = {
      0, 0, NULL},
     {"--remove", "DRAFT", "Take a draft out of the lists.", GROUP_PLAN, OPT_TEXT, AT(remove_draft), 0, 0,
      NULL},
-    {"--moved", "MIN", "From how many minutes a stored mid-time counts as moved (2).", GROUP_PLAN, OPT_NUMBER,
-     AT(moved_min), 0, 1e6, NULL},
+    {"--moved", "MIN", "From how many minutes a stored mid-time counts as moved (2).",
+     GROUP_PLAN | GROUP_SHEET, OPT_NUMBER, AT(moved_min), 0, 1e6, NULL},
+    {"--since", "PLAN",
+     "Say first what changed since another draft, or since an edition of this plan (a number).", GROUP_SHEET,
+     OPT_TEXT, AT(since), 0, 0, NULL},
 };
 enum { ROW_COUNT = sizeof rows / sizeof rows[0] };
 _Static_assert((int)ROW_COUNT <= (int)OPTION_ROWS_MAX, "a flag for each row");

@@ -26,6 +26,7 @@ enum option_group {
 	GROUP_REFIT = 512,
 	GROUP_UNDO = 1024,
 	GROUP_PLAN = 2048,
+	GROUP_SHEET = 4096,
 };
 
 /* The values of an option that may be given again and again. */
@@ -54,8 +55,8 @@ struct options {
 	int change;                            /* 0 not given */
 	/* plan */
 	struct option_values pin, drop, free_event, block, unblock, lost, unlost, poor, mark;
-	const char *draft, *plan_from, *compare, *remove_draft, *cause, *note;
-	bool afresh, keep, save, list;
+	const char *draft, *plan_from, *compare, *remove_draft, *cause, *note, *since;
+	bool rebuild, afresh, keep, save, list;
 	double moved_min; /* NAN not given */
 	int kinds;         /* KINDS_*; 0 not given */
 	int threads;       /* 0 not given */

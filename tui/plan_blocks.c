@@ -69,7 +69,7 @@ static enum status split_choice(const struct plan_choice *c, struct typed_block 
 		return split_block(c->text, strlen(c->text), out, e);
 	if (c->kind == CHOICE_POOR)
 		return split_poor(c->text, out, e);
-	*out = (struct typed_block){.label = "lost", .noise = 1.0};
+	*out = (struct typed_block){.label = "lost time", .noise = 1.0};
 	return trimmed(c->text, strlen(c->text), out->span, sizeof out->span) ? ST_OK
 									      : wrong(c->text, "FROM..TO", e);
 }
@@ -268,7 +268,9 @@ void blocks_near_sun(struct plan_view *v)
 	for (size_t i = 0; i < v->n_blocks; i++) {
 		const double from_d = night_of_utc(night, v->block[i].from),
 			     to_d = night_of_utc(night, v->block[i].to);
+		const bool done_with_it = v->block[i].kind == BLOCK_SET || v->block[i].kind == BLOCK_STANDING;
 		/* a second is what times are rounded to */
-		v->block[i].near_sun = to_d - from_d - intervals_overlap(&dark, from_d, to_d) > 1.0 / 86400.0;
+		v->block[i].near_sun =
+		    done_with_it && to_d - from_d - intervals_overlap(&dark, from_d, to_d) > 1.0 / 86400.0;
 	}
 }

@@ -63,7 +63,7 @@ static void read_line(struct plan_view *v, struct plan_choices *c, const char *l
 
 void choices_read(struct plan_view *v, struct plan_choices *c, const char *lines)
 {
-	c->n = c->n_missed = 0;
+	c->n = c->n_missed = c->n_reopened = 0;
 	while (*lines) {
 		const size_t n = strcspn(lines, "\n");
 		read_line(v, c, lines, n);
@@ -157,7 +157,7 @@ bool wish_any(const struct plan_wish *w)
 	return w->n_pin + w->n_drop + w->n_block + w->n_lost + w->n_poor + w->n_free + w->n_unblock +
 		       w->n_unlost >
 		   0 ||
-	       w->afresh || w->from;
+	       w->rebuild || w->afresh || w->from;
 }
 
 static void remove_at(struct plan_choices *c, size_t i)

@@ -83,6 +83,15 @@ static struct change change_now(const struct run *r, const char *verb, char utc[
 	return (struct change){.utc = utc, .who = r->env->user, .verb = verb};
 }
 
+static bool was_reopened(const struct plan_view *v, const char *key)
+{
+	const struct plan_choices *c = plan_choices_of(v);
+	for (size_t i = 0; c && i < c->n_reopened; i++)
+		if (strcmp(c->reopened[i], key) == 0)
+			return true;
+	return false;
+}
+
 /* What became of items is kept by plan: a draft of its own, or what was only proposed so far, gets its marks
  * now. */
 static enum status put_marks(const struct plan_view *v, struct store *s, int64_t plan_id, bool other_plan,
@@ -91,8 +100,13 @@ static enum status put_marks(const struct plan_view *v, struct store *s, int64_t
 	enum status st = ST_OK;
 	for (size_t i = 0; st == ST_OK && i < v->n_items; i++) {
 		const struct plan_item_view *item = &v->item[i];
-		if (item->state < PLAN_STARTED || (item->marked_utc[0] && !other_plan))
+		const bool mark = item->state >= PLAN_STARTED;
+		if (mark ? item->marked_utc[0] && !other_plan : other_plan || !was_reopened(v, item->key))
 			continue;
+		if (!mark) {
+			st = plan_mark(s, plan_id, item->key, "", "", "", "", e);
+			continue;
+		}
 		st = plan_mark(s, plan_id, item->key, plan_state_words[item->state], item->cause, item->note,
 			       item->marked_utc[0] ? item->marked_utc : utc, e);
 	}
@@ -132,7 +146,7 @@ static enum status can_store(const struct plan_view *v, const char *draft, struc
 			       "a plan is kept for a stored site (wane site add), not for a place");
 	size_t bad_at;
 	struct err why;
-	if (name_check(draft, strlen(draft), &bad_at, &why) != ST_OK || strlen(draft) > 40) {
+	if (name_check(draft, strlen(draft), &bad_at, &why) != ST_OK) {
 		err_quote(draft, strlen(draft), got);
 		return err_set(e, ST_SYNTAX, "no name for a draft (got \"%s\", expected 1 to 40 characters)",
 			       got);

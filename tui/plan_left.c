@@ -69,50 +69,79 @@ static const char *no_time(const struct window *w, const struct plan_standing *s
 	return "no free time of the night holds it";
 }
 
-/* `Tern 3 b`, `Tern 3 b with Tern 3 c` */
+/* `Tern 3 b`, `Tern 3 b + Tern 3 c` */
 static void item_name(const struct night_plan *p, size_t item, const struct plan_offer offer[],
 		      const struct plan_standing *standing, const size_t fixed_item[], char *out, size_t n)
 {
 	const struct plan_item *it = &p->item[item];
-	size_t used = 0;
+	const struct plan_item_view *begun = it->fixed >= 0 ? standing->item[fixed_item[it->fixed]] : NULL;
+	const size_t members = begun ? begun->n : (size_t)it->n;
 	out[0] = '\0';
-	if (it->fixed >= 0) {
-		const struct plan_item_view *stands = standing->item[fixed_item[it->fixed]];
-		for (size_t i = 0; i < stands->n && used < n; i++)
-			used += (size_t)snprintf(out + used, n - used, "%s%s", i ? " with " : "",
-						 stands->member[i].target);
-		return;
+	for (size_t i = 0; i < members; i++) {
+		const size_t used = strlen(out);
+		plan_put_words(out + used, n - used, "%s%s", i ? " + " : "",
+			       begun ? begun->member[i].target
+				     : offer[it->member[i].offer].window->event.prepared->target->name);
 	}
-	for (int i = 0; i < it->n && used < n; i++)
-		used += (size_t)snprintf(out + used, n - used, "%s%s", i ? " with " : "",
-					 offer[it->member[i].offer].window->event.prepared->target->name);
+}
+
+static const char *worth_words(const struct night_plan *p, const struct plan_left *left)
+{
+	const bool one = left->n_clash == 1;
+	if (isnan(left->cost) && p->item[left->clash[0]].fixed >= 0)
+		return one ? "which has begun" : "which have begun";
+	if (left->cost < 0.005) /* prints as 0.00 */
+		return one ? "which is worth as much" : "which are worth as much";
+	return one ? "which is worth more" : "which are worth more";
+}
+
+/* Pins that found their place: which of them are in the way is not known one by one. */
+static void other_pins(const struct night_plan *p, const struct plan_offer offer[],
+		       const struct plan_standing *standing, const size_t fixed_item[], char *out, size_t n)
+{
+	char names[WORDS_BYTES / 2] = "", one[NAME_BYTES_MAX];
+	for (size_t i = 0; i < p->n_items; i++) {
+		bool pinned = p->item[i].fixed >= 0;
+		for (int k = 0; k < p->item[i].n; k++)
+			pinned = pinned || offer[p->item[i].member[k].offer].pinned;
+		if (!pinned)
+			continue;
+		const size_t used = strlen(names);
+		item_name(p, i, offer, standing, fixed_item, one, sizeof one);
+		if (!strstr(names, one)) /* two events of one target */
+			plan_put_words(names + used, sizeof names - used, "%s%s", used ? ", " : "", one);
+	}
+	plan_put_words(out, n, "pinned, but it clashes with what is pinned too or has begun: %s", names);
 }
 
 static void clash(const struct night_plan *p, const struct plan_offer offer[], const struct plan_left *left,
-		  const struct plan_standing *standing, const size_t fixed_item[], char *out, size_t n)
+		  const struct plan_standing *standing, const size_t fixed_item[], bool costs, char *out,
+		  size_t n)
 {
 	char names[WORDS_BYTES / 2] = "", one[NAME_BYTES_MAX];
-	size_t used = 0;
 	const size_t shown = left->n_clash < LEFT_CLASHES_MAX ? left->n_clash : LEFT_CLASHES_MAX;
-	for (size_t i = 0; i < shown && used < sizeof names; i++) {
+	for (size_t i = 0; i < shown; i++) {
+		const size_t used = strlen(names);
 		const char *link = i == 0 ? "" : i + 1 == left->n_clash ? " and " : ", ";
 		item_name(p, left->clash[i], offer, standing, fixed_item, one, sizeof one);
-		used += (size_t)snprintf(names + used, sizeof names - used, "%s%s", link, one);
+		plan_put_words(names + used, sizeof names - used, "%s%s", link, one);
 	}
 	if (left->reason == LEFT_PINS && shown > 0)
-		snprintf(out, n, "pinned, but it clashes with %s", names);
+		plan_put_words(out, n, "pinned, but it clashes with %s", names);
 	else if (left->reason == LEFT_PINS)
-		snprintf(out, n, "pinned, but it clashes with other pins or with what has begun");
-	else if (shown == 0)
-		snprintf(out, n, "others are worth more together");
+		other_pins(p, offer, standing, fixed_item, out, n);
+	else if (shown > 0)
+		plan_put_words(out, n, "clashes with %s%s, %s", names,
+			       left->n_clash > shown ? " and others" : "", worth_words(p, left));
+	else if (costs && isnan(left->cost))
+		plan_put_words(out, n, "what is pinned or has begun leaves no room for it");
 	else
-		snprintf(out, n, "clashes with %s%s, which %s worth more", names,
-			 left->n_clash > shown ? " and others" : "", left->n_clash == 1 ? "is" : "are");
+		plan_put_words(out, n, "others are worth more together");
 }
 
 const char *left_words(struct plan_view *v, const struct night_plan *p, const struct plan_offer offer[],
 		       const struct plan_left *left, const struct plan_standing *standing,
-		       const size_t fixed_item[])
+		       const size_t fixed_item[], bool costs)
 {
 	char text[WORDS_BYTES] = "", cost[NUMBER_TEXT_MAX];
 	const struct window *w = offer[left->offer].window;
@@ -125,7 +154,7 @@ const char *left_words(struct plan_view *v, const struct night_plan *p, const st
 		break;
 	case LEFT_CLASH:
 	case LEFT_PINS:
-		clash(p, offer, left, standing, fixed_item, text, sizeof text);
+		clash(p, offer, left, standing, fixed_item, costs, text, sizeof text);
 		break;
 	case LEFT_DROPPED:
 		snprintf(text, sizeof text, "dropped by you");

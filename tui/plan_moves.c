@@ -78,7 +78,13 @@ static enum status member_moved(struct plan_view *v, struct plan_member_view *m,
 	m->moved_min = moved_min;
 	m->moved = moved;
 	v->moved += moved;
-	return why_moved(v, m, p->target, e);
+	enum status s = why_moved(v, m, p->target, e);
+	if (s == ST_OK && !(mid_d >= 0.0 && mid_d <= v->night->night.length_d)) {
+		char text[500];
+		plan_put_words(text, sizeof text, "%s; its mid-time is not in this night now", m->moved_why);
+		m->moved_why = plan_copy(v, text);
+	}
+	return s;
 }
 
 enum status stored_moves(struct plan_view *v, double moved_min, struct err *e)

@@ -50,6 +50,9 @@ struct plan_choices {
 	struct plan_choice choice[CHOICES_MAX];
 	size_t n_missed;
 	const char *missed[CHOICES_MAX]; /* keys of items that were never begun */
+	/* not stored: keys of items that had begun and were let go of though a limb is ahead; planned anew they lose their mark */
+	size_t n_reopened;
+	const char *reopened[CHOICES_MAX];
 };
 /* Stored lines to choices and blocks as they were shown. A line that can't be read is passed over. */
 void choices_read(struct plan_view *v, struct plan_choices *c, const char *lines);
@@ -57,8 +60,6 @@ void choices_read(struct plan_view *v, struct plan_choices *c, const char *lines
 const char *choices_text(struct plan_view *v, const struct plan_choices *c);
 /* What is wished, laid over what is stored: a pin takes the drop of the same event away and the other way round. */
 MUST_USE enum status choices_wish(struct plan_view *v, struct plan_choices *c, const struct plan_wish *wish, struct err *e);
-/* Whether anything is wished at all. */
-bool wish_any(const struct plan_wish *wish);
 
 /* A target of the run by what was typed: `NAME` or `NAME@EPOCH`. */
 struct event_name {
@@ -79,7 +80,7 @@ MUST_USE enum status blocks_resolve(struct plan_view *v, const struct plan_choic
 				    const struct plan_wish *wish, struct echo *echo, struct err *e);
 /* Takes blocks and lost time off the free time of the night. */
 void blocks_free_time(const struct plan_view *v, const struct night *night, struct free_time *free);
-/* Marks the blocks in which the Sun is not well below the horizon. */
+/* Marks the blocks in which the telescope does something while the Sun is not well below the horizon. */
 void blocks_near_sun(struct plan_view *v);
 /* Share of its worth that poor time takes of an event: by the share of [T1, T4] in it, 1 - 1/N^2. */
 double poor_share(const struct plan_view *v, const struct night *night, const struct window *w);
@@ -105,6 +106,9 @@ struct plan_standing {
 	size_t n;
 	const struct plan_item_view **item; /* all that stay in the list, in order of time */
 	bool *fixed;			    /* they take the telescope's time still */
+	/* let go of, offered anew for the sake of a limb ahead; they stay in the list as lost where nothing comes of that */
+	size_t n_reopened;
+	const struct plan_item_view **reopened;
 	double not_before_d;
 };
 /* Sorts the items of a stored plan into those that stand and those to be planned anew. */
@@ -113,9 +117,10 @@ MUST_USE enum status plan_stand(struct plan_view *v, const struct plan_wish *wis
 /* The running order of v->night: items, left out, worth. */
 MUST_USE enum status plan_propose(struct plan_view *v, const struct plan_choices *c, const struct plan_standing *standing, bool costs,
 				  struct err *e);
-/* Why an offer of a plan was left out, in words; items are named by v and by what stands. The view's. */
+/* Why an offer of a plan was left out, in words. fixed_item: which standing item each fixed one is; costs: whether they were worked out. The view's. */
 const char *left_words(struct plan_view *v, const struct night_plan *p, const struct plan_offer offer[],
-		       const struct plan_left *left, const struct plan_standing *standing, const size_t fixed_item[]);
+		       const struct plan_left *left, const struct plan_standing *standing, const size_t fixed_item[],
+		       bool costs);
 /* --- words --- */
 /* `02:11 MDT`, with the date where it is neither that of the evening nor the next. */
 enum { PLAN_CLOCK_BYTES = 48, PLAN_NAME_BYTES = 2 * NAME_BYTES_MAX };

@@ -147,11 +147,23 @@ static int by_start(const void *a, const void *b)
 	return strcmp(left->key, right->key);
 }
 
+static bool chosen_again(const struct making *m, const struct plan_item_view *item)
+{
+	for (size_t i = 0; i < m->plan.n_items; i++)
+		for (int k = 0; k < m->plan.item[i].n; k++)
+			for (size_t j = 0; j < item->n; j++)
+				if (same_event(&item->member[j],
+					       m->offer[m->plan.item[i].member[k].offer].window))
+					return true;
+	return false;
+}
+
 static enum status put_items(struct plan_view *v, const struct making *m,
 			     const struct plan_standing *standing, struct err *e)
 {
 	enum status s = ST_OK;
-	struct plan_item_view *item = plan_alloc(v, standing->n + m->plan.n_items, sizeof *item);
+	struct plan_item_view *item =
+	    plan_alloc(v, standing->n + standing->n_reopened + m->plan.n_items, sizeof *item);
 	if (!item)
 		return plan_memory(v, e);
 	size_t n = 0;
@@ -164,6 +176,9 @@ static enum status put_items(struct plan_view *v, const struct making *m,
 			v->bound += standing->item[i]->worth;
 		}
 	}
+	for (size_t i = 0; i < standing->n_reopened; i++)
+		if (!chosen_again(m, standing->reopened[i]))
+			item[n++] = *standing->reopened[i];
 	for (size_t i = 0; i < m->plan.n_items; i++) {
 		if (m->plan.item[i].fixed >= 0)
 			continue;
@@ -179,18 +194,31 @@ static enum status put_items(struct plan_view *v, const struct making *m,
 	return s;
 }
 
-static void put_left(struct plan_view *v, const struct making *m, const struct plan_standing *standing)
+static bool listed(const struct plan_view *v, const struct window *w)
+{
+	for (size_t i = 0; i < v->n_items; i++)
+		for (size_t k = 0; k < v->item[i].n; k++)
+			if (same_event(&v->item[i].member[k], w))
+				return true;
+	return false;
+}
+
+static void put_left(struct plan_view *v, const struct making *m, const struct plan_standing *standing,
+		     bool costs)
 {
 	const struct night_plan *p = &m->plan;
 	v->left = plan_alloc(v, p->n_left, sizeof *v->left);
-	v->n_left = v->left ? p->n_left : 0;
-	for (size_t i = 0; i < v->n_left; i++) {
+	const size_t n = v->left ? p->n_left : 0;
+	v->n_left = 0;
+	for (size_t i = 0; i < n; i++) {
 		const struct window *w = m->offer[p->left[i].offer].window;
-		v->left[i] = (struct plan_left_view){
+		if (listed(v, w)) /* lost already, and nothing came of offering it again */
+			continue;
+		v->left[v->n_left++] = (struct plan_left_view){
 		    .target = plan_copy(v, w->event.prepared->target->name),
 		    .kind = w->event.kind,
 		    .epoch = w->event.epoch,
-		    .reason = left_words(v, p, m->offer, &p->left[i], standing, m->fixed_item),
+		    .reason = left_words(v, p, m->offer, &p->left[i], standing, m->fixed_item, costs),
 		    .cost = p->left[i].cost,
 		};
 	}
@@ -234,7 +262,7 @@ enum status plan_propose(struct plan_view *v, const struct plan_choices *c,
 		v->bound = m.plan.bound;
 		v->optimal = m.plan.optimal;
 		s = put_items(v, &m, standing, e);
-		put_left(v, &m, standing);
+		put_left(v, &m, standing, costs);
 		night_plan_free(&m.plan);
 	}
 	free(m.offer);

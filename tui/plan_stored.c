@@ -54,7 +54,9 @@ const char *plan_limits_text(struct plan_view *v)
 	for (int id = 0; id < LIM_COUNT; id++) {
 		const bool automatic =
 		    (id == LIM_BASELINE_BEFORE || id == LIM_BASELINE_AFTER) && !(r->limits.value[id] >= 0.0);
-		number_text(r->limits.value[id], number);
+		number_text(id == LIM_SUN_BASELINE && isnan(r->limits.value[id]) ? r->limits.value[LIM_SUN]
+										 : r->limits.value[id],
+			    number);
 		used += (size_t)snprintf(text + used, sizeof text - used, "%s=%s\t", limit_rules[id].key,
 					 automatic ? "auto" : number);
 	}

@@ -49,7 +49,7 @@ void plan_item_name(const struct plan_item_view *item, char out[PLAN_NAME_BYTES]
 	char before[PLAN_NAME_BYTES] = "";
 	out[0] = '\0';
 	for (size_t i = 0; i < item->n; i++) {
-		plan_put_words(out, PLAN_NAME_BYTES, "%s%s%s", before, i ? " with " : "",
+		plan_put_words(out, PLAN_NAME_BYTES, "%s%s%s", before, i ? " + " : "",
 			       item->member[i].target);
 		snprintf(before, sizeof before, "%s", out);
 	}

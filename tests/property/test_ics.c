@@ -4,6 +4,8 @@
 
 #include "db/text_clean.h"
 #include "tests/support/check.h"
+#include "tests/support/plan_fixture.h"
+#include "tui/sheets/plan_sheet.h"
 
 #include <libical/ical.h>
 #include <stdlib.h>
@@ -216,12 +218,62 @@ static void times_reach_outward(void **state)
 	}
 }
 
+/* --- a whole sheet --- */
+
+enum { EVENTS_MAX = 16 };
+
+/* The calendar of a kept plan has what RFC 5545 asks of each event, identifiers of their own, and no error; a
+ * draft of the same night gives the same events the same identifiers. */
+static void a_sheet_is_read_whole(void **state)
+{
+	(void)state;
+	static const enum plan_fixture_kind kinds[] = {PLAN_FIXTURE_KEPT, PLAN_FIXTURE_DRAFT,
+						       PLAN_FIXTURE_EMPTY};
+	static const int events[] = {8, 7, 0};
+	char uid[2][EVENTS_MAX][64];
+	for (int k = 0; k < 3; k++) {
+		struct plan_fixture *f = plan_fixture_open(kinds[k], FIXTURE_EVENING_MJD, true);
+		char *calendar = NULL;
+		size_t size;
+		int n = 0;
+		FILE *file = open_memstream(&calendar, &size);
+		assert_non_null(file);
+		assert_true(plan_sheet_ics(file, &f->view));
+		fclose(file);
+		assert_lines(calendar, size);
+		icalcomponent *all = icalparser_parse_string(calendar);
+		if (!all || icalcomponent_count_errors(all) > 0)
+			check_fail("not taken: %s", calendar);
+		assert_int_equal(icalcomponent_check_restrictions(all), 1); /* restrictions of RFC 5545 */
+		for (icalcomponent *event = icalcomponent_get_first_component(all, ICAL_VEVENT_COMPONENT);
+		     event; event = icalcomponent_get_next_component(all, ICAL_VEVENT_COMPONENT)) {
+			const struct icaltimetype from = icalcomponent_get_dtstart(event),
+						  to = icalcomponent_get_dtend(event);
+			assert_true(icaltime_compare(from, to) < 0);
+			assert_true(from.year >= 2026); /* no name has put a DTSTART in */
+			if (k < 2 && n < EVENTS_MAX)
+				snprintf(uid[k][n], sizeof uid[k][n], "%s", icalcomponent_get_uid(event));
+			for (int i = 0; k < 2 && i < n; i++)
+				assert_string_not_equal(uid[k][i], uid[k][n]);
+			n++;
+		}
+		assert_int_equal(n, events[k]);
+		assert_int_equal(icalcomponent_count_components(all, ICAL_VJOURNAL_COMPONENT), 1);
+		icalcomponent_free(all);
+		free(calendar);
+		plan_fixture_close(f);
+	}
+	for (int i = 0; i < events[1]; i++)
+		assert_string_equal(uid[0][i], uid[1][i]);
+}
+
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
 	    cmocka_unit_test(texts_come_back),
 	    cmocka_unit_test(clean_texts_are_kept),
 	    cmocka_unit_test(times_reach_outward),
+	    cmocka_unit_test(a_sheet_is_read_whole),
 	};
 	return cmocka_run_group_tests_name("ics", tests, NULL, NULL);
 }

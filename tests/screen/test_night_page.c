@@ -450,6 +450,33 @@ static void test_sites(void **state)
 	driver_close(&d);
 }
 
+/* Allotted time cuts the night with its long shots as it cuts it without them. */
+static void test_allotted(void **state)
+{
+	static struct allotment one = {.id = 1,
+				       .site_id = 1,
+				       .first_mjd = FIXTURE_EVENING_MJD,
+				       .last_mjd = FIXTURE_EVENING_MJD,
+				       .span = "22:00..23:00"};
+	struct page_driver d;
+	(void)state;
+	driver_open(&d, true, 24, 80, TIER_UNICODE);
+	struct run *r = &d.fixture->run;
+	r->site.id = 1;
+	r->allotments = (struct allotment_list){.n = 1, .allotment = &one};
+	for (int all = 0; all < 2; all++) {
+		d.page->show_long_shots = all;
+		driver_load(&d, FIXTURE_EVENING_MJD);
+		assert_true(d.page->view.cut && d.page->view.list.n > 0);
+		for (size_t i = 0; i < d.page->view.list.n; i++) {
+			const struct intervals *usable = &d.page->view.list.w[i].cover.usable;
+			/* 22:00 to 23:00 MDT is an hour: by hand */
+			assert_true(intervals_length(usable) * 24.0 <= 1.0 + 1e-9);
+		}
+	}
+	driver_close(&d);
+}
+
 /* What the page borrows may be read anew: the same window stays selected, a filter stays. */
 static void test_drop_and_load(void **state)
 {
@@ -549,15 +576,15 @@ static void test_clock(void **state)
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
-	    cmocka_unit_test(test_golden),	  cmocka_unit_test(test_keys_to_screens),
-	    cmocka_unit_test(test_wants),	  cmocka_unit_test(test_paste),
-	    cmocka_unit_test(test_cursor),	  cmocka_unit_test(test_every_size),
-	    cmocka_unit_test(test_no_nan),	  cmocka_unit_test(test_odd_nights),
-	    cmocka_unit_test(test_clock_change),  cmocka_unit_test(test_without_zone),
-	    cmocka_unit_test(test_first_run),	  cmocka_unit_test(test_hostile_names),
-	    cmocka_unit_test(test_clock),	  cmocka_unit_test(test_sites),
-	    cmocka_unit_test(test_drop_and_load), cmocka_unit_test(test_marked_times),
-	    cmocka_unit_test(test_offered_date),
+	    cmocka_unit_test(test_golden),	 cmocka_unit_test(test_keys_to_screens),
+	    cmocka_unit_test(test_wants),	 cmocka_unit_test(test_paste),
+	    cmocka_unit_test(test_cursor),	 cmocka_unit_test(test_every_size),
+	    cmocka_unit_test(test_no_nan),	 cmocka_unit_test(test_odd_nights),
+	    cmocka_unit_test(test_clock_change), cmocka_unit_test(test_without_zone),
+	    cmocka_unit_test(test_first_run),	 cmocka_unit_test(test_hostile_names),
+	    cmocka_unit_test(test_clock),	 cmocka_unit_test(test_sites),
+	    cmocka_unit_test(test_allotted),	 cmocka_unit_test(test_drop_and_load),
+	    cmocka_unit_test(test_marked_times), cmocka_unit_test(test_offered_date),
 	};
 	return cmocka_run_group_tests_name("night page", tests, NULL, NULL);
 }

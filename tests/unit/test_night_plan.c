@@ -151,6 +151,11 @@ static void test_ways_of_one(void **state)
 	static const struct way_row unknown[] = {
 	    {"no chance: whole only", VARIANT_WHOLE, 510.0, 690.0, 525.0, 0.07}};
 	check_ways_of(s, "one window", 0, unknown, 1);
+	s->input.not_before_d = 515.0 * MIN_D; /* a late start that is forced is taken all the same */
+	static const struct way_row late[] = {
+	    {"no chance, late", VARIANT_SHORT, 520.5, 690.0, 525.0, 0.07 * 0.95}};
+	check_ways_of(s, "one window", 0, late, 1);
+	s->input.not_before_d = -INFINITY;
 	w->cover.limb_usable = false;
 	check_ways_of(s, "one window", 0, NULL, 0);
 	w->chance = (struct window_chance){.ingress = 0.3, .egress = 0.0, .mid = 0.5, .done = 0.0};
@@ -185,79 +190,79 @@ static void test_span_edges(void **state)
 	static const struct {
 		const char *what;
 		enum { BLOCK, CLOUD, NOT_ALLOTTED, NOT_BEFORE } by;
-		double from_min, to_min;
 		int n;
+		double from_min, to_min;
 		struct way_row way[4];
 	} rows[] = {
 	    {"block until 515: the first move, then a late start",
 	     BLOCK,
+	     4,
 	     400.0,
 	     515.0,
-	     4,
 	     {{"late", VARIANT_SHORT, 520.5, 690.0, 525.0, 0.9 * 0.95},
 	      {"late and cut after", VARIANT_SHORT, 520.5, 680.0, 525.0, 0.9 * 0.95 * 0.95},
 	      {"ingress", VARIANT_INGRESS, 520.5, 565.0, 525.0, 0.38},
 	      {"egress", VARIANT_EGRESS, 635.0, 690.0, 635.0, 0.38}}},
 	    {"block until 520: too late for the ingress by half a minute",
 	     BLOCK,
+	     1,
 	     400.0,
 	     520.0,
-	     1,
 	     {{"egress", VARIANT_EGRESS, 635.0, 690.0, 635.0, 0.38}}},
 	    {"cloud until 524: no move",
 	     CLOUD,
+	     4,
 	     400.0,
 	     524.0,
-	     4,
 	     {{"late", VARIANT_SHORT, 524.0, 690.0, 525.0, 0.9 * 0.95},
 	      {"late and cut after", VARIANT_SHORT, 524.0, 680.0, 525.0, 0.9 * 0.95 * 0.95},
 	      {"ingress", VARIANT_INGRESS, 524.0, 565.0, 525.0, 0.38},
 	      {"egress", VARIANT_EGRESS, 635.0, 690.0, 635.0, 0.38}}},
 	    {"cloud in the flat part: either limb alone",
 	     CLOUD,
+	     2,
 	     590.0,
 	     620.0,
-	     2,
 	     {{"ingress", VARIANT_INGRESS, 510.0, 565.0, 525.0, 0.38},
 	      {"egress", VARIANT_EGRESS, 635.0, 690.0, 635.0, 0.38}}},
 	    {"cloud over the ingress: the egress is left",
 	     CLOUD,
+	     1,
 	     530.0,
 	     560.0,
-	     1,
 	     {{"egress", VARIANT_EGRESS, 635.0, 690.0, 635.0, 0.38}}},
 	    {"block from 670: b_min is not left after T4",
 	     BLOCK,
+	     1,
 	     670.0,
 	     800.0,
-	     1,
 	     {{"ingress", VARIANT_INGRESS, 510.0, 565.0, 525.0, 0.38}}},
 	    {"time of others from 676: cut at the end",
 	     NOT_ALLOTTED,
+	     4,
 	     676.0,
 	     800.0,
-	     4,
 	     {{"early end", VARIANT_SHORT, 510.0, 676.0, 525.0, 0.9 * 0.95},
 	      {"and cut before", VARIANT_SHORT, 520.0, 676.0, 525.0, 0.9 * 0.95 * 0.95},
 	      {"ingress", VARIANT_INGRESS, 510.0, 565.0, 525.0, 0.38},
 	      {"egress", VARIANT_EGRESS, 635.0, 676.0, 635.0, 0.38}}},
 	    {"time of others until 629: the move ends at 634.5",
 	     NOT_ALLOTTED,
+	     1,
 	     0.0,
 	     629.0,
-	     1,
 	     {{"egress", VARIANT_EGRESS, 635.0, 690.0, 635.0, 0.38}}},
 	    {"from now on, 518: the move ends at 523.5",
 	     NOT_BEFORE,
+	     4,
 	     0.0,
 	     518.0,
-	     4,
 	     {{"late", VARIANT_SHORT, 523.5, 690.0, 525.0, 0.9 * 0.95},
 	      {"late and cut after", VARIANT_SHORT, 523.5, 680.0, 525.0, 0.9 * 0.95 * 0.95},
 	      {"ingress", VARIANT_INGRESS, 523.5, 565.0, 525.0, 0.38},
 	      {"egress", VARIANT_EGRESS, 635.0, 690.0, 635.0, 0.38}}},
-	    {"from now on, 640: nothing is left", NOT_BEFORE, 0.0, 640.0, 0, {{"", 0, 0, 0, 0, 0}}},
-	    {"cloud over all of it", CLOUD, 400.0, 800.0, 0, {{"", 0, 0, 0, 0, 0}}},
+	    {"from now on, 640: nothing is left", NOT_BEFORE, 0, 0.0, 640.0, {{"", 0, 0, 0, 0, 0}}},
+	    {"cloud over all of it", CLOUD, 0, 400.0, 800.0, {{"", 0, 0, 0, 0, 0}}},
 	};
 	for (size_t i = 0; i < sizeof rows / sizeof *rows; i++) {
 		struct plan_scene *s = scene_open();
@@ -339,13 +344,78 @@ static void test_siblings_apart(void **state)
 	p = plan(s);
 	assert_int_equal(p.n_items, 1);
 	night_plan_free(&p);
-	/* not with a block of a minute in it */
+	/* not with a cloud of a minute in it */
+	scene_take(&s->free.clear, 691.0 * MIN_D, 692.0 * MIN_D);
+	scene_cut(s);
+	p = plan(s);
+	assert_int_equal(p.n_items, 2);
+	check_close("no move under the cloud", p.item[1].slew_by_d * DAY_MIN, 693.9, TOLERANCE_MIN);
+	night_plan_free(&p);
+	/* nor with a block */
+	s->free = free_time_whole();
 	scene_take(&s->free.unblocked, 691.0 * MIN_D, 692.0 * MIN_D);
 	scene_cut(s);
 	p = plan(s);
 	assert_int_equal(p.n_items, 2);
 	check_item("after the block, and the move", &p.item[1], 697.5, 880.0, 0.9 * 0.95);
 	check_close("slew by: from the block", p.item[1].slew_by_d * DAY_MIN, 692.0, TOLERANCE_MIN);
+	night_plan_free(&p);
+	scene_close(s);
+}
+
+/* What lies in the time of a joint item is left out of it where it is worth more later: C's ingress,
+ * 650..705, is in the time of A and B, 510..730, but its egress, 775..830, is worth more. */
+static void test_joint_without(void **state)
+{
+	(void)state;
+	struct plan_scene *s = scene_open();
+	const struct prepared *b = scene_planet(s, "Tern 1 b", 100.0, 20.0);
+	event(s, b, 600.0)->chance = (struct window_chance){0.0, 0.0, 0.9, 0.9};
+	event(s, b, 640.0)->chance = (struct window_chance){0.0, 0.0, 0.9, 0.9};
+	event(s, b, 740.0)->chance = (struct window_chance){0.1, 0.95, 0.5, 0.0};
+	struct night_plan p = plan(s);
+	assert_int_equal(p.n_items, 2);
+	check_item("A and B", &p.item[0], 510.0, 730.0, 1.8);
+	check_item("C's egress", &p.item[1], 775.0, 830.0, 0.38);
+	night_plan_free(&p);
+	scene_close(s);
+}
+
+/* C's ingress lies in the time of A and B, its egress in that of D and E, and both are worth the same: it is
+ * done once, and the others too. */
+static void test_joint_tie(void **state)
+{
+	(void)state;
+	struct plan_scene *s = scene_open();
+	const struct prepared *b = scene_planet(s, "Tern 1 b", 100.0, 20.0);
+	const double mid_min[5] = {600.0, 640.0, 740.0, 860.0, 900.0};
+	for (int i = 0; i < 5; i++)
+		event(s, b, mid_min[i])->chance = i == 2 ? (struct window_chance){0.95, 0.95, 0.5, 0.0}
+							 : (struct window_chance){0.0, 0.0, 0.9, 0.9};
+	struct night_plan p = plan(s);
+	assert_int_equal(p.n_items, 2);
+	check_close("all five", p.worth, 4 * 0.9 + 0.38, 1e-9);
+	night_plan_free(&p);
+	scene_close(s);
+}
+
+/* Sixty stars of one field at nearly the same time: the eight that are worth most. */
+static void test_crowded_field(void **state)
+{
+	(void)state;
+	static char names[60][16];
+	struct plan_scene *s = scene_open();
+	s->rules.field_deg = 0.5;
+	for (int i = 0; i < 60; i++) {
+		snprintf(names[i], sizeof names[i], "Tern %d b", i + 1);
+		event(s, scene_planet(s, names[i], 100.0 + 0.005 * i, 0.0), 600.0)->chance =
+		    (struct window_chance){0.0, 0.0, 0.9, i % 7 == 0 ? 0.9 : 0.2};
+	}
+	struct night_plan p = plan(s);
+	assert_int_equal(p.n_items, 1);
+	assert_int_equal(p.item[0].n, PLAN_MEMBERS_MAX);
+	check_item("eight of the nine", &p.item[0], 510.0, 690.0, 8 * 0.9);
+	assert_int_equal(p.n_left, 52);
 	night_plan_free(&p);
 	scene_close(s);
 }
@@ -442,6 +512,23 @@ static void test_field(void **state)
 	scene_close(s);
 }
 
+/* The middle star's event is hours later: nothing to point at catches both others. */
+static void test_field_without_middle(void **state)
+{
+	(void)state;
+	struct plan_scene *s = scene_open();
+	s->rules.field_deg = 0.3;
+	event(s, scene_planet(s, "Tern 1 b", 100.0, 0.0), 600.0);
+	event(s, scene_planet(s, "Tern 2 b", 100.2, 0.0), 900.0);
+	event(s, scene_planet(s, "Tern 3 b", 100.4, 0.0), 610.0);
+	struct night_plan p = plan(s);
+	assert_int_equal(p.n_items, 2);
+	assert_int_equal(p.item[0].n, 1);
+	check_close("one of the outer ones, and the middle one", p.worth, 1.8, 1e-9);
+	night_plan_free(&p);
+	scene_close(s);
+}
+
 /* A block in the middle of the night: what ends before it, what begins after it and the first move. */
 static void test_block_between(void **state)
 {
@@ -508,6 +595,9 @@ static void test_clash_pin_drop(void **state)
 	check_close("A and C again", p.worth, 1.7, 1e-12);
 	assert_int_equal(p.pins_missed, 1);
 	assert_int_equal(left_of(&p, 1)->reason, LEFT_PINS);
+	check_close("B can't be forced in", left_of(&p, 1)->cost, NAN, 0.0);
+	assert_int_equal(left_of(&p, 1)->n_clash, 1); /* with A, pinned too */
+	assert_int_equal(left_of(&p, 1)->clash[0], 0);
 	night_plan_free(&p);
 	s->offer[0].dropped = true; /* what is dropped is no longer pinned */
 	s->offer[2].settled = true; /* neither planned nor left */
@@ -593,7 +683,8 @@ static void test_fixed(void **state)
 	assert_int_equal(p.pins_missed, 1);
 	assert_int_equal(left_of(&p, 1)->reason, LEFT_PINS);
 	night_plan_free(&p);
-	/* another planet of the star that is being observed needs no move */
+	/* another planet of the star that is being observed needs no move, whatever the time is */
+	s->input.not_before_d = 598.0 * MIN_D;
 	s->offer[0].dropped = true;
 	event(s, b, 675.5);
 	p = plan(s);
@@ -605,6 +696,42 @@ static void test_fixed(void **state)
 	struct err e;
 	assert_int_equal(night_plan_make(&s->input, &p, &e), ST_CONFLICT);
 	assert_null(p.item);
+	scene_close(s);
+}
+
+/* An item that is over: nobody knows where the telescope has gone since. */
+static void test_fixed_over(void **state)
+{
+	(void)state;
+	struct plan_scene *s = scene_open();
+	const struct prepared *b = scene_planet(s, "Tern 1 b", 100.0, 0.0);
+	event(s, b, 600.0);
+	scene_fix(s, 300.0 * MIN_D, 450.0 * MIN_D, b);
+	struct night_plan p = plan(s);
+	check_close("it points there already", p.item[1].slew_by_d * DAY_MIN, 510.0, TOLERANCE_MIN);
+	night_plan_free(&p);
+	s->input.not_before_d = 480.0 * MIN_D;
+	p = plan(s);
+	check_close("from now on", p.item[1].slew_by_d * DAY_MIN, 504.5, TOLERANCE_MIN);
+	night_plan_free(&p);
+	scene_close(s);
+}
+
+/* Two stars of one field, 0.4 deg apart, after an item 60 deg away: the joint item points at the farther one,
+ * which the nearer one's start allows for. */
+static void test_fixed_then_field(void **state)
+{
+	(void)state;
+	struct plan_scene *s = scene_open();
+	s->rules.field_deg = 0.5;
+	event(s, scene_planet(s, "Tern 1 b", 160.4, 0.0), 680.5);
+	event(s, scene_planet(s, "Tern 2 b", 160.0, 0.0), 680.5);
+	scene_fix(s, 420.0 * MIN_D, 600.0 * MIN_D, scene_planet(s, "Tern 3 b", 100.0, 0.0));
+	struct night_plan p = plan(s);
+	assert_int_equal(p.n_items, 2);
+	assert_int_equal(p.item[1].n, 2);
+	check_close("60.5 s and the settling", p.item[1].from_d * DAY_MIN, 605.0 + 0.5 / 60.0, TOLERANCE_MIN);
+	night_plan_free(&p);
 	scene_close(s);
 }
 
@@ -636,6 +763,7 @@ static void test_fixed_close(void **state)
 	scene_fix(s, 601.0 * MIN_D, 700.0 * MIN_D, far);
 	struct night_plan p = plan(s);
 	assert_int_equal(p.n_items, 2);
+	check_close("no move before what has begun", p.item[1].slew_by_d * DAY_MIN, 601.0, TOLERANCE_MIN);
 	night_plan_free(&p);
 	scene_close(s);
 }
@@ -682,15 +810,21 @@ int main(void)
 	    cmocka_unit_test(test_short_where_it_helps),
 	    cmocka_unit_test(test_siblings_joint),
 	    cmocka_unit_test(test_siblings_apart),
+	    cmocka_unit_test(test_joint_without),
+	    cmocka_unit_test(test_joint_tie),
+	    cmocka_unit_test(test_crowded_field),
 	    cmocka_unit_test(test_consecutive_events),
 	    cmocka_unit_test(test_many_consecutive_events),
 	    cmocka_unit_test(test_transit_and_occultation),
 	    cmocka_unit_test(test_field),
+	    cmocka_unit_test(test_field_without_middle),
 	    cmocka_unit_test(test_block_between),
 	    cmocka_unit_test(test_clash_pin_drop),
 	    cmocka_unit_test(test_cost_of_two),
 	    cmocka_unit_test(test_no_time),
 	    cmocka_unit_test(test_fixed),
+	    cmocka_unit_test(test_fixed_over),
+	    cmocka_unit_test(test_fixed_then_field),
 	    cmocka_unit_test(test_fixed_touches),
 	    cmocka_unit_test(test_fixed_close),
 	    cmocka_unit_test(test_ties),

@@ -2,6 +2,7 @@
  * The formats of a plan, from a plan put together by hand. */
 #include "tui/sheets/plan_words.h"
 
+#include "db/read_csv.h"
 #include "db/text_clean.h"
 #include "tests/support/check.h"
 #include "tests/support/plan_fixture.h"
@@ -188,6 +189,274 @@ static void json_of_nothing(void **state)
 	plan_fixture_close(f);
 }
 
+/* Names come through whole, as escapes where they could act on a terminal. */
+static void json_is_harmless(void **state)
+{
+	(void)state;
+	struct plan_fixture *f = plan_fixture_open(PLAN_FIXTURE_KEPT, FIXTURE_EVENING_MJD, true);
+	struct memory *m = memory_open();
+	f->item[PLAN_FIXTURE_JOINT].note = "\xC2\x9B"
+					   "31m \xE2\x80\xAE \xF3\xA0\x81\x81"; /* CSI, RLO, TAG A */
+	assert_true(plan_json(m->file, &f->view, &changed));
+	const char *text = memory_text(m);
+	for (size_t i = 0; i < m->n;) {
+		uint32_t cp;
+		const size_t length = utf8_decode(text + i, m->n - i, &cp);
+		if (length == 0 || (cp != '\n' && codepoint_is_hostile(cp)))
+			check_fail("byte %zu: U+%04X", i, (unsigned)cp);
+		i += length;
+	}
+	/* RFC 8259 sec. 7: U+E0041 is the pair DB40, DC41 */
+	assert_non_null(strstr(text, "\"note\": \"\\u009b31m \\u202e \\udb40\\udc41\""));
+	assert_non_null(strstr(
+	    text, "\"target\": \"=Tern <b>\\\"27\\\"</b> & 'x'; a,b\\\\n \\u001b[31m\\u000d\\u000aDTSTART"));
+	memory_close(m);
+	plan_fixture_close(f);
+}
+
+/* --- text --- */
+
+/* At most 72 columns, nothing that acts on a terminal, valid UTF-8, no blank at the end of a line. */
+static void assert_mailable(const char *text)
+{
+	const size_t n = strlen(text);
+	for (size_t i = 0; i < n;) {
+		uint32_t cp;
+		const size_t length = utf8_decode(text + i, n - i, &cp);
+		if (length == 0 || (cp != '\n' && codepoint_is_hostile(cp)))
+			check_fail("byte %zu: U+%04X", i, (unsigned)cp);
+		i += length;
+	}
+	for (const char *at = text; *at; at += strcspn(at, "\n") + 1) {
+		char line[512];
+		snprintf(line, sizeof line, "%.*s", (int)strcspn(at, "\n"), at);
+		if (line[0] && line[strlen(line) - 1] == ' ')
+			check_fail("a blank at the end: %s", line);
+		if (text_columns(line) > 72)
+			check_fail("%d columns: %s", text_columns(line), line);
+	}
+}
+
+static void text_fits_and_is_harmless(void **state)
+{
+	(void)state;
+	static const int32_t nights[] = {FIXTURE_EVENING_MJD, PLAN_FIXTURE_CHANGE_MJD};
+	static char *hostile_lines[] = {(char *)plan_fixture_hostile};
+	const struct sheet_changes hostile = {.since = plan_fixture_hostile, .line = hostile_lines, .n = 1};
+	for (int kind = PLAN_FIXTURE_KEPT; kind <= PLAN_FIXTURE_EMPTY; kind++)
+		for (int k = 0; k < 4; k++) {
+			struct plan_fixture *f =
+			    plan_fixture_open((enum plan_fixture_kind)kind, nights[k / 2], k % 2 == 0);
+			struct memory *m = memory_open();
+			assert_true(plan_sheet_text(m->file, &f->view, &hostile));
+			assert_mailable(memory_text(m));
+			memory_close(m);
+			plan_fixture_close(f);
+		}
+}
+
+/* Names of 80 wide characters, an ephemeris from a source without a blank. */
+static void long_names_are_broken(void **state)
+{
+	(void)state;
+	char wide[3 * NAME_CHARS_MAX + 1] = "", source[400];
+	for (int i = 0; i < NAME_CHARS_MAX; i++)
+		memcpy(wide + 3 * i, "\xE5\xA4\xA9", 4);
+	memset(source, 'x', sizeof source - 1);
+	source[sizeof source - 1] = '\0';
+	struct plan_fixture *f = plan_fixture_open(PLAN_FIXTURE_KEPT, FIXTURE_EVENING_MJD, true);
+	struct memory *m = memory_open();
+	for (int i = 0; i < PLAN_FIXTURE_MEMBERS; i++) {
+		f->member[i].target = wide;
+		f->member[i].ephemeris_source = source;
+	}
+	f->item[PLAN_FIXTURE_JOINT].note = source;
+	f->block[0].text = source;
+	assert_true(plan_sheet_text(m->file, &f->view, &changed));
+	assert_mailable(memory_text(m));
+	memory_close(m);
+	plan_fixture_close(f);
+}
+
+/* Whatever an observer asks at the telescope is in the text. */
+static void text_answers(void **state)
+{
+	(void)state;
+	static const char *const answers[] = {
+	    "NIGHT SHEET 22/23 Apr 2026",
+	    "evening of Wed 22 Apr 2026, morning of Thu 23 Apr 2026",
+	    "Tern Hill (38.6200 N, 109.3600 W, 2100 m)",
+	    "Telescope: North, 0.4 m",
+	    "America/Denver, MDT is UTC-6 h",
+	    "CHANGED SINCE edition 2\n  Tern 18 b moved by 3 min: version 3 adopted\n  new: Tern 40 b\n",
+	    " 2  Tern 18 b + Tern 18 c",
+	    "    slew by       Wed 22 Apr 21:44 MDT   Thu 23 Apr 03:44 UTC\n",
+	    "    latest start  Thu 23 Apr 02:00 MDT   Thu 23 Apr 08:00 UTC\n",
+	    "      T1          Wed 22 Apr 22:18 MDT   Thu 23 Apr 04:18 UTC\n",
+	    "      mid         Thu 23 Apr 04:10 MDT   Thu 23 Apr 10:10 UTC\n",
+	    "ICRS 14:47:36.0 +61:12:00, V 12.7, depth 8.1 ppt",
+	    "airmass 1.39 at the reserve's start, 1.26 at mid",
+	    "100 % both limbs",
+	    "no chance can be given",
+	    "Moon 77 deg away",
+	    "If the ingress of Tern 18 b is missed, stay",
+	    "marked: covariance assumed 0, stale, grazing",
+	    "MOVED: by today's ephemeris the mid-time is later by 3.4 min",
+	    "note: guiding poor at first",
+	    "standing: evening flats",
+	    "never point a telescope near the Sun",
+	    "Tern 2 c: the Sun is up for some of it: do not slew there",
+	    "kept plan (draft main, edition 3), stored 2026-04-20T18:05:00Z",
+	    "no order is worth more than 2.900",
+	    "ephemeris version 2, entered 2026-03-02, BJD_TDB",
+	    "complete until 2026-12-28",
+	};
+	struct plan_fixture *f = plan_fixture_open(PLAN_FIXTURE_KEPT, FIXTURE_EVENING_MJD, true);
+	struct memory *m = memory_open();
+	assert_true(plan_sheet_text(m->file, &f->view, &changed));
+	const char *text = memory_text(m);
+	for (size_t i = 0; i < sizeof answers / sizeof answers[0]; i++)
+		if (!strstr(text, answers[i]))
+			check_fail("not there: %s\n%s", answers[i], text);
+	assert_null(strstr(text, " 1  Tern 2 c")); /* in daylight: no item */
+	/* the hostile one starts a minute behind its T1 */
+	assert_int_equal(count(text, "Thu 23 Apr 07:49 UTC  too early"), 1);
+	assert_int_equal(count(text, "too early"), 1);
+	memory_close(m);
+	plan_fixture_close(f);
+}
+
+static void text_says_which_of_two_clocks(void **state)
+{
+	(void)state;
+	struct plan_fixture *f = plan_fixture_open(PLAN_FIXTURE_KEPT, PLAN_FIXTURE_CHANGE_MJD, true);
+	struct memory *m = memory_open();
+	assert_true(plan_sheet_text(m->file, &f->view, NULL));
+	const char *text = memory_text(m);
+	assert_non_null(strstr(text,
+			       "CLOCKS CHANGE this night, at Sun 1 Nov 08:00 UTC: from MDT (UTC-6 h) to\n"
+			       "           MST (UTC-7 h). Every local time says which it is.\n"));
+	assert_non_null(strstr(text, " 00 01  01  02  03 ")); /* the hours of the strip */
+	/* 07:50 UTC and 08:17 UTC by hand: 01:50 MDT, 01:18 MST (08:17:39, rounded) */
+	assert_non_null(strstr(text, "start         Sun 1 Nov 01:50 MDT"));
+	assert_non_null(strstr(text, "mid         Sun 1 Nov 01:18 MST"));
+	memory_close(m);
+	plan_fixture_close(f);
+}
+
+static void text_of_nothing(void **state)
+{
+	(void)state;
+	struct plan_fixture *f = plan_fixture_open(PLAN_FIXTURE_EMPTY, FIXTURE_EVENING_MJD, true);
+	struct memory *m = memory_open();
+	const struct sheet_changes none = {.since = "edition 1"};
+	assert_true(plan_sheet_text(m->file, &f->view, &none));
+	assert_non_null(strstr(memory_text(m), "Nothing is planned."));
+	assert_non_null(strstr(m->text, "a proposal, not stored"));
+	assert_non_null(strstr(m->text, "CHANGED SINCE edition 1\n  nothing\n"));
+	assert_non_null(strstr(m->text, "# Sun up"));
+	memory_close(m);
+	m = memory_open();
+	f->base->options.plain = true;
+	assert_true(plan_sheet_text(m->file, &f->view, &none));
+	assert_null(strstr(memory_text(m), "# Sun up")); /* nothing told by position */
+	memory_close(m);
+	plan_fixture_close(f);
+}
+
+/* --- CSV --- */
+
+static void csv_has_a_row_an_event(void **state)
+{
+	(void)state;
+	struct plan_fixture *f = plan_fixture_open(PLAN_FIXTURE_KEPT, FIXTURE_EVENING_MJD, true);
+	struct memory *m = memory_open();
+	struct csv *reader;
+	struct csv_row row;
+	struct err e;
+	long line, column;
+	int target = -1, rows = 0, hostile = 0;
+	assert_true(plan_sheet_csv(m->file, &f->view));
+	(void)memory_text(m);
+	if (csv_open(m->text, m->n, &reader, &line, &column, &e) != ST_OK)
+		check_fail("%ld:%ld: %s", line, column, e.text);
+	const struct csv_row *head = csv_header(reader);
+	const size_t cells = head->n;
+	for (size_t i = 0; i < cells; i++)
+		target = strcmp(head->cell[i].text, "target") == 0 ? (int)i : target;
+	assert_string_equal(head->cell[0].text, "order");
+	assert_string_equal(head->cell[cells - 1].text, columns[column_count - 1].name);
+	while (csv_next(reader, &row, &line, &column, &e) == CSV_ROW) {
+		rows++;
+		assert_int_equal(row.n, cells);
+		const char *name = row.cell[target].text;
+		assert_string_not_equal(name, "Tern 2 c"); /* in daylight */
+		hostile += strncmp(name, "'=Tern <b>", 10) == 0;
+	}
+	assert_int_equal(rows, 4);
+	assert_int_equal(hostile, 1); /* no formula any more */
+	csv_close(reader);
+	assert_non_null(strstr(m->text, "2,started,whole,2026-04-23T03:44:00Z,2026-04-23T03:50:00Z,,"));
+	assert_non_null(strstr(m->text, ",2026-04-22T21:44:00-06:00,2026-04-22T21:50:00-06:00,,"));
+	memory_close(m);
+	plan_fixture_close(f);
+}
+
+/* --- iCalendar; tests/property/test_ics.c reads it with another program's reader --- */
+
+static void calendar_says_what_it_is(void **state)
+{
+	(void)state;
+	static const struct {
+		enum plan_fixture_kind kind;
+		int events, confirmed, tentative, cancelled, alarms, journals;
+		const char *stamp, *sequence;
+	} rows[] = {
+	    /* three items, four blocks, one gone; what has begun rings no bell */
+	    {PLAN_FIXTURE_KEPT, 8, 7, 0, 1, 2, 1, "DTSTAMP:20260420T180500Z\r\n", "SEQUENCE:2\r\n"},
+	    {PLAN_FIXTURE_DRAFT, 7, 0, 7, 0, 3, 1, "DTSTAMP:20260420T180500Z\r\n", "SEQUENCE:0\r\n"},
+	    {PLAN_FIXTURE_PROPOSAL, 7, 0, 7, 0, 3, 1, "DTSTAMP:20260420T180500Z\r\n", "SEQUENCE:0\r\n"},
+	    {PLAN_FIXTURE_EMPTY, 0, 0, 0, 0, 0, 1, "DTSTAMP:19700101T000000Z\r\n", "SEQUENCE:0\r\n"},
+	};
+	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
+		struct plan_fixture *f = plan_fixture_open(rows[i].kind, FIXTURE_EVENING_MJD, true);
+		struct memory *m = memory_open();
+		assert_true(plan_sheet_ics(m->file, &f->view));
+		const char *text = memory_text(m);
+		assert_int_equal(count(text, "BEGIN:VEVENT\r\n"), rows[i].events);
+		assert_int_equal(count(text, "STATUS:CONFIRMED\r\n"), rows[i].confirmed);
+		assert_int_equal(count(text, "STATUS:TENTATIVE\r\n"), rows[i].tentative);
+		assert_int_equal(count(text, "STATUS:CANCELLED\r\n"), rows[i].cancelled);
+		assert_int_equal(count(text, "BEGIN:VALARM\r\n"), rows[i].alarms);
+		assert_int_equal(count(text, "BEGIN:VJOURNAL\r\n"), rows[i].journals);
+		/* the item that was marked after the edition was stored has the time of its mark */
+		const int marked = rows[i].kind == PLAN_FIXTURE_KEPT;
+		assert_int_equal(count(text, "DTSTAMP:20260423T035210Z\r\n"), marked);
+		assert_int_equal(count(text, rows[i].stamp), rows[i].events + rows[i].journals - marked);
+		assert_int_equal(count(text, rows[i].sequence), rows[i].events + rows[i].journals);
+		assert_null(strstr(text, "METHOD"));
+		assert_null(strstr(text, "\r\nDTSTART:1970"));
+		memory_close(m);
+		plan_fixture_close(f);
+	}
+}
+
+static void the_same_data_gives_the_same_bytes(void **state)
+{
+	(void)state;
+	struct plan_fixture *f = plan_fixture_open(PLAN_FIXTURE_KEPT, FIXTURE_EVENING_MJD, true);
+	struct memory *a = memory_open(), *b = memory_open();
+	assert_true(plan_sheet_ics(a->file, &f->view));
+	f->base->run.wall.start.sod_s += 3600.0; /* whatever the clock says */
+	assert_true(plan_sheet_ics(b->file, &f->view));
+	assert_string_equal(memory_text(a), memory_text(b));
+	assert_non_null(strstr(a->text, "DTSTART:20260423T091600Z\r\nDTEND:20260423T111015Z\r\n"));
+	assert_non_null(strstr(a->text, "TRIGGER;VALUE=DATE-TIME:20260423T074400Z\r\n"));
+	memory_close(a);
+	memory_close(b);
+	plan_fixture_close(f);
+}
+
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
@@ -196,6 +465,15 @@ int main(void)
 	    cmocka_unit_test(json_has_the_keys_in_order),
 	    cmocka_unit_test(json_gives_no_item_in_daylight),
 	    cmocka_unit_test(json_of_nothing),
+	    cmocka_unit_test(json_is_harmless),
+	    cmocka_unit_test(text_fits_and_is_harmless),
+	    cmocka_unit_test(long_names_are_broken),
+	    cmocka_unit_test(text_answers),
+	    cmocka_unit_test(text_says_which_of_two_clocks),
+	    cmocka_unit_test(text_of_nothing),
+	    cmocka_unit_test(csv_has_a_row_an_event),
+	    cmocka_unit_test(calendar_says_what_it_is),
+	    cmocka_unit_test(the_same_data_gives_the_same_bytes),
 	};
 	return cmocka_run_group_tests_name("plan sheet", tests, NULL, NULL);
 }

@@ -382,6 +382,26 @@ static void gaps_at_fixed_items(void **state)
 	assert_string_equal(got, "ABF");
 }
 
+/* by hand: from A straight to C takes 200, by way of the fixed B 5 and 5: only neighbours need to keep their
+ * gap. D before B as well, so its gap to A counts. */
+static void gaps_across_a_fixed_item(void **state)
+{
+	(void)state;
+	static const struct row four[] = {
+	    {0, 40, 1, -1, 0}, {100, 110, 0, -1, 1}, {120, 200, 1, -1, 0}, {50, 90, 0.5, -1, 0}};
+	struct gap_table t = {.gap = {{0, 5, 200, 20}, {5, 0, 5, 5}, {200, 5, 0, 5}, {20, 5, 5, 0}}};
+	struct order_gaps gaps = {gap_of_table, &t, 5.0, 200.0};
+	struct order_choice choice = {.n_events = EVENTS};
+	struct order_item item[ITEMS];
+	struct order_result r;
+	size_t n = items_of(four, 4, item), taken[ITEMS];
+	char got[ITEMS + 1];
+	assert_int_equal(running_order(item, n, &gaps, &choice, taken, &r, NULL, NULL), ST_OK);
+	letters(taken, r.n, got);
+	assert_string_equal(got, "ABC");
+	check_close("by hand", r.worth, 2.0, 0.0);
+}
+
 static enum status refused(struct order_item item, struct order_gaps gaps, int n_events)
 {
 	struct order_item pair[2] = {{.from_d = 0.0, .to_d = 1.0, .worth = 1.0}, item};
@@ -480,9 +500,13 @@ static void looks_run_out(void **state)
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
-	    cmocka_unit_test(seven_intervals), cmocka_unit_test(gaps_of_pairs),
-	    cmocka_unit_test(small_tables),    cmocka_unit_test(gaps_at_fixed_items),
-	    cmocka_unit_test(what_is_refused), cmocka_unit_test(fixed_items_that_overlap),
+	    cmocka_unit_test(seven_intervals),
+	    cmocka_unit_test(gaps_of_pairs),
+	    cmocka_unit_test(small_tables),
+	    cmocka_unit_test(gaps_at_fixed_items),
+	    cmocka_unit_test(gaps_across_a_fixed_item),
+	    cmocka_unit_test(what_is_refused),
+	    cmocka_unit_test(fixed_items_that_overlap),
 	    cmocka_unit_test(looks_run_out),
 	};
 	return cmocka_run_group_tests_name("running_order", tests, NULL, NULL);

@@ -4,13 +4,42 @@
 #include "tui/diagnose.h"
 #include "tui/given.h"
 #include "tui/parts/clock_mark.h"
+#include "tui/plan_make.h"
+#include "tui/sheets/order_text.h"
 #include "tui/sheets/out.h"
+#include "tui/sheets/plan_sheet.h"
 #include "tui/sheets/text.h"
 #include "tui/sheets/windows.h"
 
+#include <math.h>
 #include <string.h>
 
-static void write_text(FILE *to, const struct run *r, const struct night_view *v)
+/* The kept plan of the night, else a proposal. A plan that can't be had is said and takes nothing from the
+ * night. */
+struct order {
+	struct night_view night;
+	struct plan_view view;
+	bool there;
+};
+
+static void order_open(struct order *order, struct run *r, int32_t evening_mjd)
+{
+	const struct plan_wish wish = {.moved_min = NAN};
+	struct err e;
+	*order = (struct order){.there = false};
+	order->there = plan_get(r, evening_mjd, &wish, &order->night, &order->view, NULL, &e) == ST_OK;
+	if (!order->there)
+		diagnose("plan", "%s", e.text);
+}
+
+static void order_close(struct order *order)
+{
+	if (order->there)
+		plan_view_free(&order->view);
+	night_view_free(&order->night);
+}
+
+static void write_text(FILE *to, const struct run *r, const struct night_view *v, const struct order *order)
 {
 	struct text_sheet t;
 	text_begin(&t, to, r, false);
@@ -23,6 +52,10 @@ static void write_text(FILE *to, const struct run *r, const struct night_view *v
 		text_heading(&t, clocks_change(n, r->zone) ? "local time" : noon.abbreviation);
 	text_rows(&t, v, r->zone, false);
 	text_rows(&t, v, r->zone, true);
+	if (order->there) {
+		fputc('\n', to);
+		order_line(to, &order->view);
+	}
 	text_foot(&t, n->mjd);
 }
 
@@ -35,7 +68,7 @@ static bool write_csv(FILE *to, const struct night_view *v)
 	return !c.failed;
 }
 
-static void write_json(FILE *to, const struct run *r, const struct night_view *v)
+static void write_json(FILE *to, const struct run *r, const struct night_view *v, const struct order *order)
 {
 	struct json j = json_begin(to);
 	json_open(&j, NULL, '{', false);
@@ -46,8 +79,12 @@ static void write_json(FILE *to, const struct run *r, const struct night_view *v
 	for (size_t i = 0; i < v->list.n; i++)
 		window_json(&j, &v->list.w[i], &v->night);
 	json_close(&j, ']');
-	json_open(&j, "running_order", '[', false);
-	json_close(&j, ']');
+	if (order->there)
+		plan_items_json(&j, "running_order", &order->view);
+	else {
+		json_open(&j, "running_order", '[', false);
+		json_close(&j, ']');
+	}
 	json_close(&j, '}');
 	json_end(&j);
 }
@@ -69,12 +106,17 @@ int night_write(struct run *r, int32_t evening_mjd)
 	}
 	bool whole = true;
 	run_night_notes(&view);
-	if (format == FORMAT_TEXT)
-		write_text(out.file, r, &view);
-	else if (format == FORMAT_CSV)
+	if (format == FORMAT_CSV)
 		whole = write_csv(out.file, &view);
-	else
-		write_json(out.file, r, &view);
+	else {
+		struct order order;
+		order_open(&order, r, evening_mjd);
+		if (format == FORMAT_TEXT)
+			write_text(out.file, r, &view, &order);
+		else
+			write_json(out.file, r, &view, &order);
+		order_close(&order);
+	}
 	if (format != FORMAT_TEXT) {
 		leap_note(r, evening_mjd);
 		uncounted_note(r);

@@ -27,6 +27,14 @@ const struct command commands[] = {
      "evening-9, morning-9, middle, start, end, each with +20m or -1h30m; FROM..TO,\nFROM..+25m, first-half, "
      "second-half, whole. What was typed is said with its date on standard error.\n",
      GROUP_COMPUTE | GROUP_PLAN, FORMAT_TEXT | FORMAT_JSON, 1, command_plan},
+    {"sheet", "[DATE]", "The night sheet: the running order for the team, to print, mail or subscribe to.",
+     "The kept plan as it was stored; without one the draft main, or a proposal. No format gives an event "
+     "while the Sun "
+     "is up.\ncsv: a row an event; ics: RFC 5545, the same event keeps its UID, SEQUENCE grows with each "
+     "edition, what "
+     "is gone is\ncancelled; html: one file, for paper and telephones.\n",
+     GROUP_COMPUTE | GROUP_SHEET, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON | FORMAT_ICS | FORMAT_HTML, 1,
+     command_sheet},
     {"season", "FROM TO", "Every window in a range of nights, both included.",
      "Several sites: repeat --site or --place. JSON: {\"site\" (null with several), \"sites\", \"limits\", "
      "\"from\", "
@@ -138,7 +146,11 @@ const struct command *command_find(const char *name)
 static const struct {
 	const char *word;
 	int format;
-} format_words[] = {{"text", FORMAT_TEXT}, {"csv", FORMAT_CSV}, {"json", FORMAT_JSON}};
+} format_words[] = {{"text", FORMAT_TEXT},
+		    {"csv", FORMAT_CSV},
+		    {"json", FORMAT_JSON},
+		    {"ics", FORMAT_ICS},
+		    {"html", FORMAT_HTML}};
 enum { FORMAT_WORDS = sizeof format_words / sizeof format_words[0] };
 
 enum status format_of(const struct options *o, int formats, enum format *f, struct err *e)

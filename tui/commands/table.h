@@ -12,7 +12,7 @@
 
 #define WANE_VERSION "0.1.0"
 
-enum format { FORMAT_TEXT = 1, FORMAT_CSV = 2, FORMAT_JSON = 4 };
+enum format { FORMAT_TEXT = 1, FORMAT_CSV = 2, FORMAT_JSON = 4, FORMAT_ICS = 8, FORMAT_HTML = 16 };
 
 struct command {
 	const char *name, *arguments, *help;
@@ -43,6 +43,7 @@ int command_sky(const struct env *env, const struct options *o);
 int command_clock(const struct env *env, const struct options *o);
 int command_night(const struct env *env, const struct options *o);
 int command_plan(const struct env *env, const struct options *o);
+int command_sheet(const struct env *env, const struct options *o);
 int command_season(const struct env *env, const struct options *o);
 int command_demo(const struct env *env, const struct options *o);
 int command_drift(const struct env *env, const struct options *o);

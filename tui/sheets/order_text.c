@@ -42,6 +42,23 @@ static void moved_cell(const struct plan_member_view *m, char out[CELL_BYTES])
 		snprintf(out, CELL_BYTES, "%s", m->moved_why[0] ? "?" : "");
 }
 
+/* The chance of what is planned of it. */
+static const char *chance_column(const struct plan_member_view *m)
+{
+	if (strcmp(m->variant, variant_words[VARIANT_INGRESS]) == 0)
+		return "chance_ingress";
+	return strcmp(m->variant, variant_words[VARIANT_EGRESS]) == 0 ? "chance_egress" : "chance_done";
+}
+
+static bool has_moved(const struct plan_view *v)
+{
+	for (size_t i = 0; i < v->n_items; i++)
+		for (size_t k = 0; k < v->item[i].n; k++)
+			if (v->item[i].member[k].moved_why[0])
+				return true;
+	return false;
+}
+
 static int name_width(const struct plan_view *v)
 {
 	int width = NAME_LEAST;
@@ -128,12 +145,12 @@ static void block_row(FILE *to, const struct plan_view *v, const struct plan_blo
 static void member_cells(FILE *to, const struct plan_member_view *m, int width)
 {
 	char done[NUMBER_TEXT_MAX], worth[NUMBER_TEXT_MAX], moved[CELL_BYTES];
-	plan_per_cent(m, "chance_done", done);
+	plan_per_cent(m, chance_column(m), done);
 	number_text_fixed(m->worth, 2, worth);
 	moved_cell(m, moved);
 	text_cell(to, m->target, width, true);
-	fprintf(to, " %-7s %5s %6s %7s%s\n", m->variant, done[0] ? done : "-", worth, moved,
-		m->kind == KIND_OCCULTATION ? "  occultation" : "");
+	fprintf(to, " %-7s %7s %6s%s%s%s\n", m->variant, done[0] ? done : "-", worth, moved[0] ? "  " : "",
+		moved, m->kind == KIND_OCCULTATION ? "  occultation" : "");
 }
 
 static void item_rows(FILE *to, const struct plan_view *v, const struct plan_item_view *item, int width)
@@ -176,9 +193,9 @@ static void item_record(FILE *to, const struct plan_view *v, const struct plan_i
 		const struct plan_member_view *m = &item->member[i];
 		sheet_both(v, m->t1, t1);
 		sheet_both(v, m->t4, t4);
-		plan_per_cent(m, "chance_done", done);
+		plan_per_cent(m, chance_column(m), done);
 		text_cell(to, m->target, NAME_CHARS_MAX, false);
-		fprintf(to, ", %s, %s\nT1 %s\nT4 %s\nchance of done %s%s\nworth %.2f\n",
+		fprintf(to, ", %s, %s\nT1 %s\nT4 %s\nchance of it %s%s\nworth %.2f\n",
 			plan_kind_word(m->kind), m->variant, t1, t4, done[0] ? done : "not known",
 			done[0] ? " per cent" : "", m->worth);
 		if (isfinite(m->moved_min))
@@ -266,6 +283,20 @@ static void moved(FILE *to, const struct plan_view *v)
 		}
 }
 
+/* Whether another event of the target is spoken of. */
+static bool has_namesake(const struct plan_view *v, const struct plan_left_view *l)
+{
+	for (size_t i = 0; i < v->n_left; i++)
+		if (&v->left[i] != l && v->left[i].epoch != l->epoch &&
+		    strcmp(v->left[i].target, l->target) == 0)
+			return true;
+	for (size_t i = 0; i < v->n_items; i++)
+		for (size_t k = 0; k < v->item[i].n; k++)
+			if (strcmp(v->item[i].member[k].target, l->target) == 0)
+				return true;
+	return false;
+}
+
 static void left(FILE *to, const struct plan_view *v)
 {
 	if (v->n_left == 0)
@@ -275,7 +306,10 @@ static void left(FILE *to, const struct plan_view *v)
 		const struct plan_left_view *l = &v->left[i];
 		fputs("  ", to);
 		text_cell(to, l->target, NAME_CHARS_MAX, false);
-		fprintf(to, "%s: ", l->kind == KIND_OCCULTATION ? " (occultation)" : "");
+		fputs(l->kind == KIND_OCCULTATION ? " (occultation)" : "", to);
+		if (has_namesake(v, l))
+			fprintf(to, " (epoch %ld)", l->epoch);
+		fputs(": ", to);
 		text_cell(to, l->reason, 400, false);
 		fputc('\n', to);
 	}
@@ -284,6 +318,7 @@ static void left(FILE *to, const struct plan_view *v)
 void order_text(FILE *to, const struct plan_view *v, bool plain)
 {
 	const int width = name_width(v);
+	const bool any_moved = has_moved(v);
 	char zone[32];
 	head(to, v, plain);
 	zone_words(v, zone, sizeof zone);
@@ -293,7 +328,7 @@ void order_text(FILE *to, const struct plan_view *v, bool plain)
 		fprintf(to, "\nTimes in %s\n%3s %-8s %-6s %-6s %-6s %-6s %-6s ", zone, "#", "state", "slew",
 			"start", "T1", "T4", "leave");
 		text_cell(to, "target", width, true);
-		fprintf(to, " %-7s %5s %6s %7s\n", "what", "done%", "worth", "moved");
+		fprintf(to, " %-7s %7s %6s%s\n", "what", "chance%", "worth", any_moved ? "  moved" : "");
 	}
 	rows(to, v, plain, width);
 	missed(to, v);

@@ -5,6 +5,8 @@
 #include "ephem/units.h"
 
 #include <math.h>
+#include <stdint.h>
+#include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
 
@@ -36,7 +38,8 @@ static void span(const struct plan_view *v, struct plan_sky *s)
 	s->to_d = fmin(s->to_d, 1.5);
 }
 
-/* Zones are off UTC by whole quarters of an hour: every whole hour of either clock is one of these moments. */
+/* Zones are off UTC by whole quarters of an hour: every whole hour of either clock is one of these moments.
+ */
 static void ticks(const struct plan_view *v, struct plan_sky *s)
 {
 	const struct night *n = &v->night->night;
@@ -101,6 +104,46 @@ static void choose_tracks(const struct plan_view *v, struct plan_sky *s)
 	}
 }
 
+/* `FROM/TO,FROM/TO`; what can't be read is left out. */
+static void read_usable(const struct night *n, const char *text, struct intervals *out)
+{
+	*out = intervals_none();
+	for (const char *at = text; *at; at += *at == ',') {
+		char part[2][UTC_TEXT_MAX];
+		struct utc t[2];
+		struct err e;
+		bool good = true;
+		for (int k = 0; k < 2; k++) {
+			const size_t length = strcspn(at, k == 0 ? "/," : ",");
+			snprintf(part[k], sizeof part[k], "%.*s", (int)fmin((double)length, UTC_TEXT_MAX),
+				 at);
+			good = good && utc_parse(n->clock.leap, part[k], &t[k], &e) == ST_OK;
+			at += length;
+			at += k == 0 && *at == '/';
+		}
+		if (good && (out->n == 0 || night_of_utc(n, t[0]) >= out->s[out->n - 1].to_d))
+			intervals_append(out, night_of_utc(n, t[0]), night_of_utc(n, t[1]));
+	}
+}
+
+static bool usable_parts(const struct plan_view *v, struct plan_sky *s)
+{
+	size_t members = 0;
+	s->first_member = calloc(v->n_items + 1, sizeof *s->first_member);
+	for (size_t i = 0; s->first_member && i < v->n_items; i++) {
+		s->first_member[i] = members;
+		members += v->item[i].n;
+	}
+	s->usable = calloc(members + 1, sizeof *s->usable);
+	if (!s->first_member || !s->usable)
+		return false;
+	for (size_t i = 0; i < v->n_items; i++)
+		for (size_t k = 0; k < v->item[i].n; k++)
+			read_usable(&v->night->night, v->item[i].member[k].usable,
+				    &s->usable[s->first_member[i] + k]);
+	return true;
+}
+
 static void sample(const struct plan_view *v, struct plan_sky *s)
 {
 	const struct night *n = &v->night->night;
@@ -116,28 +159,28 @@ static void sample(const struct plan_view *v, struct plan_sky *s)
 		const struct star star = night_star(n, &target);
 		double *alt_deg = s->alt_deg + done++ * s->samples;
 		for (size_t k = 0; k < s->samples; k++)
-			alt_deg[k] =
-			    night_star_altaz(n, &star, s->from_d + (double)k * s->step_d).alt_deg;
+			alt_deg[k] = night_star_altaz(n, &star, s->from_d + (double)k * s->step_d).alt_deg;
 	}
 }
 
 bool plan_sky_prepare(const struct plan_view *v, struct plan_sky *s)
 {
 	static const double level_deg[SUN_LEVELS] = {-50.0 / 60.0, -6.0, -12.0, -18.0};
-	*s = (struct plan_sky){.step_d = SKY_STEP_MIN / DAY_MIN};
+	*s = (struct plan_sky){.samples = 0};
 	span(v, s);
 	ticks(v, s);
 	for (int i = 0; i < SUN_LEVELS; i++)
 		s->sun[i] = night_sun_below(&v->night->night, level_deg[i]);
 	s->alt_limit_deg = altitude_limit(v);
-	s->samples = 1 + (size_t)((s->to_d - s->from_d) / s->step_d);
+	s->samples = 1 + (size_t)ceil((s->to_d - s->from_d) * DAY_MIN / SKY_STEP_MIN);
+	s->step_d = (s->to_d - s->from_d) / (double)(s->samples - 1);
 	s->track = calloc(v->n_items + 1, sizeof *s->track);
 	s->moon_alt_deg = calloc(s->samples, sizeof *s->moon_alt_deg);
 	if (s->track && s->moon_alt_deg) {
 		choose_tracks(v, s);
 		s->alt_deg = calloc((s->tracks + 1) * s->samples, sizeof *s->alt_deg);
 	}
-	if (!s->alt_deg) {
+	if (!s->alt_deg || !usable_parts(v, s)) {
 		plan_sky_free(s);
 		return false;
 	}
@@ -150,6 +193,7 @@ void plan_sky_free(struct plan_sky *s)
 	free(s->track);
 	free(s->moon_alt_deg);
 	free(s->alt_deg);
-	s->track = NULL;
-	s->moon_alt_deg = s->alt_deg = NULL;
+	free(s->first_member);
+	free(s->usable);
+	*s = (struct plan_sky){.samples = 0};
 }

@@ -135,12 +135,14 @@ static void put_uid(struct ics *c, const struct plan_view *v, const char *kind, 
 	free(key);
 }
 
-/* DTSTAMP and SEQUENCE: from the store, never the clock. */
-static void put_revision(struct ics *c, const struct plan_view *v)
+/* DTSTAMP and SEQUENCE: from the store, never the clock. marked_utc: when the event was marked, "" not. */
+static void put_revision(struct ics *c, const struct plan_view *v, const char *marked_utc)
 {
 	char stamp[ICS_TIME_BYTES] = "19700101T000000Z", sequence[16];
+	/* both are of one form, `YYYY-MM-DDTHH:MM:SSZ`: the later one is the greater one */
+	const char *revised = strcmp(marked_utc, v->stored_utc) > 0 ? marked_utc : v->stored_utc;
 	struct utc t;
-	if (v->stored_utc[0] && utc_parse(&v->run->leap, v->stored_utc, &t, NULL) == ST_OK)
+	if (revised[0] && utc_parse(&v->run->leap, revised, &t, NULL) == ST_OK)
 		ics_time(t, false, stamp);
 	ics_value(c, "DTSTAMP", stamp);
 	snprintf(sequence, sizeof sequence, "%d", v->stored && v->edition > 0 ? v->edition - 1 : 0);
@@ -206,7 +208,7 @@ static void put_item(struct ics *c, const struct plan_view *v, const struct plan
 		 kind[KIND_OCCULTATION] ? "occultation" : "", gone ? ", cancelled" : "");
 	ics_value(c, "BEGIN", "VEVENT");
 	put_uid(c, v, "item", item->key);
-	put_revision(c, v);
+	put_revision(c, v, item->marked_utc);
 	put_span(c, v, item->start, item->end);
 	ics_text(c, "SUMMARY", summary);
 	words_close(c, to, &text, "DESCRIPTION");
@@ -246,7 +248,7 @@ static void put_block(struct ics *c, const struct plan_view *v, const struct pla
 	place_words(v, place);
 	snprintf(key, sizeof key, "S%lld/%s/%s/%s/%s", (long long)v->run->site.id, place, words, from, to);
 	put_uid(c, v, "block", key);
-	put_revision(c, v);
+	put_revision(c, v, "");
 	put_span(c, v, b->from, b->to);
 	ics_text(c, "SUMMARY", summary);
 	words_close(c, file, &text, "DESCRIPTION");
@@ -298,7 +300,7 @@ static void put_journal(struct ics *c, const struct plan_view *v)
 	snprintf(date, sizeof date, "%04d%02d%02d", d.year, d.month, d.day);
 	ics_value(c, "BEGIN", "VJOURNAL");
 	put_uid(c, v, "night", key);
-	put_revision(c, v);
+	put_revision(c, v, "");
 	ics_value(c, "DTSTART;VALUE=DATE", date);
 	ics_text(c, "SUMMARY", summary);
 	words_close(c, to, &text, "DESCRIPTION");

@@ -17,8 +17,8 @@ struct plan_page {
 void page_put(struct plan_page *p, int indent, const char *format, ...) __attribute__((format(printf, 3, 4)));
 /* An empty line and a heading. */
 void page_heading(struct plan_page *p, const char *text);
-/* `    start         Wed 22 Apr 21:50 MDT   Thu 23 Apr 03:50 UTC`; t NULL: what stands there instead. */
-void page_time(struct plan_page *p, int indent, const char *word, const struct utc *t, const char *instead);
+/* `    start         Wed 22 Apr 21:50 MDT   Thu 23 Apr 03:50 UTC`, then `more`; t NULL: that alone. */
+void page_time(struct plan_page *p, int indent, const char *word, const struct utc *t, const char *more);
 
 void page_strip(struct plan_page *p); /* the night in characters: hours, Sun, Moon, a row an item */
 void page_items(struct plan_page *p);

@@ -33,21 +33,21 @@ void page_heading(struct plan_page *p, const char *text)
 	page_put(p, 0, "%s", text);
 }
 
-void page_time(struct plan_page *p, int indent, const char *word, const struct utc *t, const char *instead)
+void page_time(struct plan_page *p, int indent, const char *word, const struct utc *t, const char *more)
 {
 	char local[SHEET_TIME_BYTES], utc[SHEET_TIME_BYTES];
 	enum { WORD_COLUMNS = 18 };
 	const int columns = WORD_COLUMNS - indent;
 	if (!t) {
-		page_put(p, WORD_COLUMNS, "%*s%-*s%s", indent, "", columns, word, instead);
+		page_put(p, WORD_COLUMNS, "%*s%-*s%s", indent, "", columns, word, more);
 		return;
 	}
 	sheet_instant(p->v, p->v->run->zone, *t, local);
 	sheet_instant(p->v, NULL, *t, utc);
 	if (p->v->run->zone)
-		page_put(p, WORD_COLUMNS, "%*s%-*s%-24s %s", indent, "", columns, word, local, utc);
+		page_put(p, WORD_COLUMNS, "%*s%-*s%-22s %s%s", indent, "", columns, word, local, utc, more);
 	else
-		page_put(p, WORD_COLUMNS, "%*s%-*s%s", indent, "", columns, word, utc);
+		page_put(p, WORD_COLUMNS, "%*s%-*s%s%s", indent, "", columns, word, utc, more);
 }
 
 /* A time of the night that may not happen. */
@@ -57,7 +57,7 @@ static void night_time(struct plan_page *p, const char *word, double t_d)
 	struct utc t = {.mjd = n->mjd, .sod_s = 0.0};
 	if (isfinite(t_d))
 		t = night_utc(n, t_d);
-	page_time(p, 0, word, isfinite(t_d) ? &t : NULL, "does not happen");
+	page_time(p, 0, word, isfinite(t_d) ? &t : NULL, isfinite(t_d) ? "" : "does not happen");
 }
 
 static void title(struct plan_page *p)
@@ -160,7 +160,8 @@ bool plan_sheet_text(FILE *to, const struct plan_view *v, const struct sheet_cha
 	page_put(&p, 0, "%s", "");
 	clocks(&p);
 	sun_and_moon(&p);
-	page_strip(&p);
+	if (!v->run->options->plain) /* it tells by position */
+		page_strip(&p);
 	page_items(&p);
 	page_foot(&p);
 	free(p.lines);

@@ -32,7 +32,7 @@ static void block_lines(struct plan_page *p)
 static void left_lines(struct plan_page *p)
 {
 	const struct plan_view *v = p->v;
-	char name[PLAN_PIECE_BYTES], reason[PLAN_PIECE_BYTES / 2], cost[NUMBER_TEXT_MAX];
+	char name[PLAN_PIECE_BYTES], reason[PLAN_PIECE_BYTES / 2];
 	bool any = v->n_left > 0;
 	for (size_t i = 0; i < v->n_items; i++)
 		any = any || v->item[i].in_day;
@@ -49,9 +49,7 @@ static void left_lines(struct plan_page *p)
 		const struct plan_left_view *l = &v->left[i];
 		plan_line(l->target, name, sizeof name);
 		plan_line(l->reason, reason, sizeof reason);
-		number_text_fixed(l->cost, 3, cost);
-		page_put(p, 4, "  %s, %s, epoch %ld: %s%s%s%s", name, plan_kind_word(l->kind), l->epoch,
-			 reason, cost[0] ? " (it would cost " : "", cost, cost[0] ? " of worth)" : "");
+		page_put(p, 4, "  %s, %s, epoch %ld: %s", name, plan_kind_word(l->kind), l->epoch, reason);
 	}
 }
 

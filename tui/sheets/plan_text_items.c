@@ -78,8 +78,10 @@ static void member_marks(struct plan_page *p, const struct plan_member_view *m)
 		 text);
 }
 
-static void member_lines(struct plan_page *p, const struct plan_member_view *m)
+static void member_lines(struct plan_page *p, const struct plan_item_view *item,
+			 const struct plan_member_view *m)
 {
+	const struct leap_table *leap = &p->v->run->leap;
 	char text[PLAN_PIECE_BYTES], depth[NUMBER_TEXT_MAX];
 	struct utc t;
 	plan_line(m->target, text, sizeof text);
@@ -87,7 +89,10 @@ static void member_lines(struct plan_page *p, const struct plan_member_view *m)
 		 m->epoch, m->variant);
 	for (int c = 0; c < CONTACT_COUNT; c++)
 		if (plan_contact_at(m, (enum plan_contact)c, &t))
-			page_time(p, MEMBER_INDENT, plan_contact_words[c], &t, "");
+			page_time(p, MEMBER_INDENT, plan_contact_words[c], &t,
+				  utc_diff_s(leap, t, item->start) > 0.0 ? "  too early"
+				  : utc_diff_s(leap, item->end, t) > 0.0 ? "  after end"
+									 : "");
 	plan_star_words(m, text, sizeof text);
 	plan_figure(m, "depth_ppt", 1, depth);
 	page_put(p, WRAP_INDENT, "%*sICRS %s%s%s%s", MEMBER_INDENT, "", text[0] ? text : "position not known",
@@ -111,10 +116,11 @@ static void item_lines(struct plan_page *p, const struct plan_item_view *item)
 		page_put(p, WRAP_INDENT, "%*snote: %s", ITEM_INDENT, "", text);
 	page_time(p, ITEM_INDENT, "slew by", &item->slew_by, "");
 	page_time(p, ITEM_INDENT, "start", &item->start, "");
-	page_time(p, ITEM_INDENT, "latest start", item->has_latest ? &item->latest_start : NULL, "-");
+	page_time(p, ITEM_INDENT, "latest start", item->has_latest ? &item->latest_start : NULL,
+		  item->has_latest ? "" : "-");
 	page_time(p, ITEM_INDENT, "end", &item->end, "");
 	for (size_t i = 0; i < item->n; i++)
-		member_lines(p, &item->member[i]);
+		member_lines(p, item, &item->member[i]);
 	plan_line(item->if_missed, text, sizeof text);
 	if (text[0])
 		page_put(p, WRAP_INDENT, "%*s%s", ITEM_INDENT, "", text);

@@ -44,7 +44,10 @@ static void put_row(struct plan_page *p, const char *label, const char *cells)
 		while (n > 0 && ((unsigned char)text[n] & 0xC0) == 0x80);
 		text[n] = '\0';
 	}
-	fprintf(p->to, "  %s%*s%.*s\n", text, LABEL_COLUMNS - text_columns(text), "", CELLS, cells);
+	int n = CELLS;
+	while (n > 0 && cells[n - 1] == ' ')
+		n--;
+	fprintf(p->to, "  %s%*s%.*s\n", text, n > 0 ? LABEL_COLUMNS - text_columns(text) : 0, "", n, cells);
 }
 
 /* Two digits where an hour begins; every second hour where there is no room for all. */
@@ -52,17 +55,18 @@ static void hours_row(struct plan_page *p, const struct strip *s, const struct z
 {
 	char cells[CELLS + 1];
 	const int step = 1.0 / 24.0 / s->cell_d < 3.5 ? 2 : 1;
-	int before = -1;
+	double before_s = 0.0;
 	memset(cells, ' ', CELLS);
 	cells[CELLS] = '\0';
 	for (int i = 0; i < CELLS - 1; i++) {
 		const struct local_time l = zone_local(zone, night_utc(s->night, s->from_d + i * s->cell_d));
 		const int hour = (int)(l.sod_s / 3600.0) % 24;
-		if (i > 0 && hour != before && hour % step == 0) {
+		const double into_s = fmod(l.sod_s, 3600.0); /* an hour that comes twice begins twice */
+		if (i > 0 && into_s < before_s && hour % step == 0) {
 			cells[i] = (char)('0' + hour / 10);
 			cells[i + 1] = (char)('0' + hour % 10);
 		}
-		before = hour;
+		before_s = into_s;
 	}
 	put_row(p, label, cells);
 }
@@ -98,9 +102,14 @@ static void item_row(struct plan_page *p, const struct strip *s, const struct pl
 	char cells[CELLS + 1], label[PLAN_NAMES_BYTES + 16], names[PLAN_NAMES_BYTES];
 	memset(cells, ' ', CELLS);
 	cells[CELLS] = '\0';
-	fill(s, cells, item->start, item->end, '-');
 	for (size_t i = 0; i < item->n; i++)
 		fill(s, cells, item->member[i].t1, item->member[i].t4, '=');
+	/* what lies outside the item is not observed */
+	const double from_d = night_of_utc(s->night, item->start), to_d = night_of_utc(s->night, item->end);
+	for (int i = 0; i < CELLS; i++) {
+		const bool inside = middle_d(s, i) >= from_d && middle_d(s, i) <= to_d;
+		cells[i] = !inside && cells[i] == '=' ? ':' : inside && cells[i] == ' ' ? '-' : cells[i];
+	}
 	plan_names(item, names);
 	snprintf(label, sizeof label, "%d %s", item->order, names);
 	put_row(p, label, cells);
@@ -131,5 +140,5 @@ void page_strip(struct plan_page *p)
 	page_put(p, 2,
 		 "  # Sun up, / twilight, . below the Sun limit, m M Moon up (M: more than half lit), - on "
 		 "target, = "
-		 "T1 to T4, x not observing, ~ poor");
+		 "T1 to T4, : what of them is not observed, x not observing, ~ poor");
 }
