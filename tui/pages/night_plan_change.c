@@ -38,22 +38,32 @@ static enum status add_edit(struct plan_edits *edits, const struct plan_edit *ed
 	return plan_edits_add(edits, edit, e);
 }
 
+/* Changes that only tell what was asked for; what follows from it is the news. */
+static bool is_the_wish(const char *line)
+{
+	const char *end = strrchr(line, ':');
+	return strncmp(line, "lost time:", strlen("lost time:")) == 0 ||
+	       (end && (strcmp(end, ": pinned") == 0 || strcmp(end, ": planned") == 0));
+}
+
 /* `Dropped Tern 5 b (K keeps, u takes back). Tern 9 b: new, ... (+1: v)` */
 static void say_changes(struct night_page *p, const char *what, const struct made_plan *before)
 {
 	char text[MESSAGE_BYTES], more[32] = "";
 	char **line = NULL;
-	size_t n = 0;
+	size_t n = 0, first = 0;
 	struct err e;
 	if (!before || plan_changes(&before->view, &p->plan.made->view, &line, &n, &e) != ST_OK)
 		n = 0;
-	if (n > 1)
+	while (first < n && is_the_wish(line[first]))
+		first++;
+	if (first < n && n > 1)
 		snprintf(more, sizeof more, " (+%zu: v)", n - 1);
 	snprintf(text, sizeof text, "%.150s%s. %.280s%s", what,
 		 p->plan.changed	     ? "; K keeps, u undoes"
 		 : p->plan.made->view.stored ? "; as it is stored"
 					     : "",
-		 n > 0 ? line[0] : "The order stays.", more);
+		 first < n ? line[first] : "The order stays.", more);
 	for (size_t i = 0; i < n; i++)
 		free(line[i]);
 	free(line);
