@@ -212,17 +212,25 @@ static void draw_short_head(const struct night_page *p, struct grid *g)
 		 h->remark[0] ? h->remark : fitting(room, h->next, h->next_less, h->next_short), ROLE_KEY);
 }
 
-/* The question of a mode, else NULL. */
-static const char *question(enum night_mode mode)
+/* The question of a mode, else NULL; in few words where the answer needs the room. */
+static const char *question(enum night_mode mode, bool brief)
 {
-	return mode == MODE_DATE	? "Evening of (YYYY-MM-DD): "
-	       : mode == MODE_FIND	? "Find: "
-	       : mode == MODE_FILTER	? "Show where: "
-	       : mode == MODE_CAUSE	? "Cause (cloud, fault, may be empty): "
-	       : mode == MODE_NOTE	? "Note (may be empty): "
-	       : mode == MODE_LOST_TIME ? "Lost time FROM..TO (22:40..23:30): "
-	       : mode == MODE_SAVE_AS	? "Store as draft: "
-					: NULL;
+	static const struct {
+		enum night_mode mode;
+		const char *words, *brief;
+	} questions[] = {
+	    {MODE_DATE, "Evening of (YYYY-MM-DD): ", "Evening of: "},
+	    {MODE_FIND, "Find: ", "Find: "},
+	    {MODE_FILTER, "Show where: ", "Show where: "},
+	    {MODE_CAUSE, "Cause (cloud, fault, may be empty): ", "Cause: "},
+	    {MODE_NOTE, "Note (may be empty): ", "Note: "},
+	    {MODE_LOST_TIME, "Lost time FROM..TO (22:40..23:30): ", "Lost FROM..TO: "},
+	    {MODE_SAVE_AS, "Store as draft: ", "Draft: "},
+	};
+	for (size_t i = 0; i < sizeof questions / sizeof questions[0]; i++)
+		if (questions[i].mode == mode)
+			return brief ? questions[i].brief : questions[i].words;
+	return NULL;
 }
 
 static void draw_question(const struct night_page *p, struct grid *g, const char *label)
@@ -230,6 +238,8 @@ static void draw_question(const struct night_page *p, struct grid *g, const char
 	static const char hint[] = "Enter takes it, Esc leaves";
 	int row = g->rows - 1, at = 1 + grid_put(g, row, 1, g->cols - 2, label, ROLE_KEY);
 	int width = p->mode == MODE_DATE ? 12 : g->cols - at - (int)sizeof hint - 1;
+	if (g->cols < PAGE_COLS_FULL) /* the answer goes before the hint */
+		width = g->cols - at - 1;
 	width = width < 12 ? 12 : width > g->cols - at - 1 ? g->cols - at - 1 : width;
 	int rest = at + width + 1;
 	if (p->message[0]) /* what was wrong may be long: it stands above */
@@ -242,16 +252,20 @@ static void draw_footer(const struct night_page *p, struct grid *g)
 {
 	int row = g->rows - 1;
 	char text[300];
-	if (question(p->mode)) {
+	const char *asked = question(p->mode, g->cols < PAGE_COLS_FULL);
+	if (asked) {
 		for (int col = 0; p->message[0] && col < g->cols; col++)
 			grid_glyph(g, row - 1, col, GLYPH_BLANK, ROLE_TEXT);
-		draw_question(p, g, question(p->mode));
+		draw_question(p, g, asked);
 		return;
 	}
 	if (p->mode == MODE_LEAVE) {
-		grid_put(g, row, 1, g->cols - 2,
-			 "A plan has changes that are not kept. Leave without them? y leaves, n stays",
-			 ROLE_WARN);
+		grid_put(
+		    g, row, 1, g->cols - 2,
+		    fitting(g->cols - 2,
+			    "A plan has changes that are not kept. Leave without them? y leaves, n stays",
+			    "Plan changes are not kept. Leave? y n", "Not kept. Leave? y n"),
+		    ROLE_WARN);
 		return;
 	}
 	if (p->message[0]) {
@@ -363,7 +377,7 @@ void night_page_draw(const struct night_page *p, struct grid *g)
 		grid_put(g, 1, 0, g->cols, "larger, or q quits", ROLE_TEXT);
 		return;
 	}
-	if (p->mode != MODE_LIST && p->mode != MODE_LEAVE && !question(p->mode))
+	if (p->mode != MODE_LIST && p->mode != MODE_LEAVE && !question(p->mode, true))
 		draw_text(p, g);
 	else if (p->loaded)
 		draw_night(p, g);

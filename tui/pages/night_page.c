@@ -256,6 +256,8 @@ void night_page_show_plan(struct night_page *p)
 	if (p->select_current || !select_kept(p))
 		night_page_select_current(p);
 	night_page_settle(p);
+	if (p->mode == MODE_PLAN)
+		night_page_make_text(p);
 }
 
 enum status night_page_take(struct night_page *p, struct night_view *view, struct err *e)

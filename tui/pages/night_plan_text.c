@@ -8,7 +8,7 @@
 #include <stdio.h>
 #include <string.h>
 
-enum { INDENT = 4, CHOICE_COLUMNS = 470, LINES_LEFT = 20, WIDE_COLUMNS = 92 };
+enum { INDENT = 4, CHOICE_COLUMNS = 470, LINES_LEFT = 20, WIDE_COLUMNS = 92, TABLE_COLUMNS = 70 };
 
 static void heading(struct text_view *v, const char *text)
 {
@@ -23,6 +23,22 @@ static void clock_of(const struct plan_view *v, struct utc t, char out[16])
 }
 
 /* --- items and blocks --- */
+
+/* Two lines where there is no room for a table. cell: number, slew by, start, leave, chance, worth, moved,
+ * name.
+ */
+static void narrow_lines(struct text_view *t, const struct plan_item_view *item,
+			 const struct plan_member_view *m, const char *const cell[8])
+{
+	const enum role role = m->moved ? ROLE_WARN : item->state > PLAN_STARTED ? ROLE_FAINT : ROLE_TEXT;
+	if (cell[0][0])
+		text_view_addf(t, role, INDENT, "%2s %s %s-%s %s", cell[0], cell[1], cell[2], cell[3],
+			       cell[7]);
+	else
+		text_view_addf(t, role, INDENT, "   with %s", cell[7]);
+	text_view_addf(t, role, INDENT, "   %s, %s, done %s %%, worth %s%s%s", plan_state_words[item->state],
+		       m->variant, cell[4], cell[5], cell[6][0] ? ", moved " : "", cell[6]);
+}
 
 /* The row of one member; what stands in one row on a wide screen is told in two on a narrow one. */
 static void member_line(struct text_view *t, const struct plan_view *v, const struct plan_item_view *item,
@@ -47,6 +63,11 @@ static void member_line(struct text_view *t, const struct plan_view *v, const st
 	}
 	if (isfinite(m->moved_min))
 		snprintf(moved, sizeof moved, "%+.1f", m->moved_min);
+	if (t->width < TABLE_COLUMNS) {
+		narrow_lines(t, item, m,
+			     (const char *const[]){number, slew, start, end, done, worth, moved, name});
+		return;
+	}
 	const char *state = k == 0 ? plan_state_words[item->state] : " with";
 	const enum role role = m->moved ? ROLE_WARN : item->state > PLAN_STARTED ? ROLE_FAINT : ROLE_TEXT;
 	if (t->width >= WIDE_COLUMNS)
@@ -54,7 +75,7 @@ static void member_line(struct text_view *t, const struct plan_view *v, const st
 			       number, state, slew, start, t1, t4, end, m->variant, done, worth, moved, name,
 			       m->kind == KIND_OCCULTATION ? " (occ)" : "");
 	else
-		text_view_addf(t, role, INDENT, "%2s %-7s %-5s %-5s %-5s %-5s %-5s %4s %4s %s%s%s%s%s%s",
+		text_view_addf(t, role, INDENT, "%2s %-7s %-5s %-5s %-5s %-5s %-5s %4s %5s %s%s%s%s%s%s",
 			       number, state, slew, start, t1, t4, end, done, worth, name,
 			       m->kind == KIND_OCCULTATION ? " (occ)" : "",
 			       strcmp(m->variant, variant_words[VARIANT_WHOLE]) ? ", " : "",
@@ -113,9 +134,11 @@ static void table(struct text_view *t, const struct plan_view *v, const char *zo
 		text_view_addf(t, ROLE_STRONG, INDENT,
 			       "%3s %-7s %-6s %-6s %-6s %-6s %-6s %-7s %4s %5s %6s  %s", "#", "state", "slew",
 			       "start", "T1", "T4", "leave", "what", "done", "worth", "moved", "target");
+	else if (t->width < TABLE_COLUMNS)
+		text_view_add(t, ROLE_STRONG, INDENT, " # slew  start-leave target");
 	else
-		text_view_addf(t, ROLE_STRONG, INDENT, "%2s %-7s %-5s %-5s %-5s %-5s %-5s %4s %4s %s", "#",
-			       "state", "slew", "start", "T1", "T4", "leave", "done", "wrth", "target");
+		text_view_addf(t, ROLE_STRONG, INDENT, "%2s %-7s %-5s %-5s %-5s %-5s %-5s %4s %5s %s", "#",
+			       "state", "slew", "start", "T1", "T4", "leave", "done", "worth", "target");
 	rows(t, v);
 }
 

@@ -75,12 +75,28 @@ static void then_text(const struct plan_view *v, struct utc at, char *out, size_
 	snprintf(out, n, "; then slew to %s at %s", name, when);
 }
 
+/* `evening flats and focus until 20:46; `: what the telescope is kept for now. */
+static void block_text(const struct plan_view *v, struct utc now, char *out, size_t n)
+{
+	const struct leap_table *leap = &v->run->leap;
+	out[0] = '\0';
+	for (size_t i = 0; i < v->n_blocks; i++) {
+		const struct plan_block_view *b = &v->block[i];
+		char until[16];
+		if (b->kind == BLOCK_POOR || utc_diff_s(leap, b->from, now) < 0.0 ||
+		    utc_diff_s(leap, now, b->to) <= 0.0)
+			continue;
+		clock_of(v, b->to, until);
+		snprintf(out, n, "%.80s until %s; ", b->text, until);
+	}
+}
+
 void page_plan_tick(const struct page_plan *plan, struct night_head *h, const struct night_view *view,
 		    struct utc now)
 {
 	const struct plan_view *v = plan->made ? &plan->made->view : NULL;
-	char action[2 * NAME_BYTES_MAX + 16], left[32], when[16], then[NAME_BYTES_MAX + 48], dusk[48] = "",
-											     upto[48];
+	char action[2 * NAME_BYTES_MAX + 16], left[32], when[16], then[NAME_BYTES_MAX + 48],
+	    dusk[48] = "", upto[48], block[120];
 	if (!v || !h->tonight || v->n_items == 0)
 		return;
 	const struct plan_next next = plan_next(v, now);
@@ -98,9 +114,10 @@ void page_plan_tick(const struct page_plan *plan, struct night_head *h, const st
 	left_text(utc_diff_s(&v->run->leap, now, next.at), left, sizeof left);
 	clock_of(v, next.at, when);
 	then_text(v, next.at, then, sizeof then);
+	block_text(v, now, block, sizeof block);
 	action_text(v, &next, true, action, sizeof action);
 	snprintf(h->next_short, sizeof h->next_short, "next: %s in %.30s", action, left);
 	action_text(v, &next, false, action, sizeof action);
 	snprintf(h->next_less, sizeof h->next_less, "next: %s in %.30s (%s %s)", action, left, when, h->zone);
-	snprintf(h->next, sizeof h->next, "%s%.700s%.100s", dusk, h->next_less, then);
+	snprintf(h->next, sizeof h->next, "%s%s%.600s%.100s", dusk, block, h->next_less, then);
 }
