@@ -67,7 +67,7 @@ $(B)/tui/demo_targets.o: $(B)/tui/demo_targets.c
 $(B)/tests/fuzz/%: $(B)/tests/fuzz/%.o $(B)/wane.a
 	@$(CC) $(LINK) -fsanitize=fuzzer $^ $(LIBS) -o $@
 
-$(B)/tests/bench/%: $(B)/tests/bench/%.o $(B)/wane.a
+$(B)/tests/bench/%: $(B)/tests/bench/%.o $(B)/tests/support/timing_sum.o $(B)/wane.a
 	@$(CC) $(LINK) $^ $(LIBS) -o $@
 
 $(B)/tests/property/test_ics: TESTLIBS += -lical
@@ -96,9 +96,10 @@ fuzz:
 	@$(MAKE) --no-print-directory -s -j2 V=fuzz fuzz-targets
 	@sh tests/fuzz/run.sh build/obj-fuzz/tests/fuzz $(FUZZ_SECONDS)
 
-bench: $(B)/tests/bench/bench $(B)/tests/bench/order $(B)/tests/bench/latency $(B)/wane
+bench: $(B)/tests/bench/bench $(B)/tests/bench/order $(B)/tests/bench/timing $(B)/tests/bench/latency $(B)/wane
 	@$<
 	@$(B)/tests/bench/order
+	@$(B)/tests/bench/timing
 	@$(B)/tests/bench/latency $(B)/wane
 
 deps:

@@ -78,6 +78,11 @@ double sky_twilight_mag(enum band_id band, double sun_depression_deg)
 	return a[0] + d * (a[1] + d * a[2]);
 }
 
+double sky_phase_deg(double lit)
+{
+	return acos(2.0 * lit - 1.0) / DEG_RAD;
+}
+
 double sky_dark_default(enum band_id band)
 {
 	return has_sky(band) ? sky_table[band].dark_mag : NAN;

@@ -63,6 +63,8 @@ double sky_twilight_mag(enum band_id band, double sun_depression_deg);
  * while the night level is met near 15 to 16 deg (same paper): what is left at 15 deg is let fade in a straight line to 0 at 16 deg, so that a night has no step in it.
  * NAN below 5 deg. */
 double sky_twilight_nl(enum band_id band, double sun_depression_deg);
+/* Phase angle of a Moon that is lit to a share of its disc [deg, 0 full .. 180 new]: lit = (1 + cos phase) / 2. NAN outside 0..1. */
+double sky_phase_deg(double lit);
 /* Moonless zenith over Paranal at solar maximum [mag/arcsec2] (Patat 2003, A&A 400, 1183); U B V R I, else NAN. A rural site has about 21, a suburb 19 to 20 in V (from
  * memory). */
 double sky_dark_default(enum band_id band);

@@ -7,7 +7,6 @@
 
 /* Mid-time last: what is left of it then is what nothing else explains. */
 enum { P_LEVEL, P_SLOPE, P_STEP, P_DEPTH, P_DURATION, P_MID, P_COUNT };
-enum { P_BASELINE = P_DEPTH }; /* those that matter outside the event */
 
 /* A parameter whose derivative is a sum of others' to this share of its square can't be told from them. */
 #define DEPENDENT 1e-11
@@ -20,6 +19,7 @@ struct curve {
 	double light2, light3, light4;	  /* integral of the missing light up to a contact, depth 1 */
 	double longer2, longer3, longer4; /* of its derivative by the duration */
 	double exposure, depth;
+	double per_half, per_length, per_exposure;
 };
 
 static bool curve_of(const struct timing_event *e, struct curve *c)
@@ -44,6 +44,9 @@ static bool curve_of(const struct timing_event *e, struct curve *c)
 	c->longer3 = c->longer2 + 2.0 / 3.0 * c->round;
 	c->longer4 = c->longer3 + 0.5 * edge;
 	c->exposure = e->exposure_s > 0.0 ? e->exposure_s / 60.0 : 0.0;
+	c->per_half = c->half > 0.0 ? 1.0 / c->half : 0.0;
+	c->per_length = 1.0 / (c->t4 - c->t1);
+	c->per_exposure = c->exposure > 0.0 ? 1.0 / c->exposure : 0.0;
 	return isfinite(c->exposure) && isfinite(c->light4);
 }
 
@@ -62,7 +65,7 @@ static struct value value_at(const struct curve *c, double x)
 		return (struct value){c->out_rate * (c->t4 - x), -c->out_rate, 0.5 * c->out_rate};
 	if (!(c->half > 0.0))
 		return (struct value){1.0, 0.0, 0.0};
-	const double u = (x - c->middle) / c->half, r = c->round * u / c->half;
+	const double u = (x - c->middle) * c->per_half, r = c->round * u * c->per_half;
 	return (struct value){1.0 - c->round * u * u, -2.0 * r, r * u};
 }
 
@@ -83,7 +86,7 @@ static struct value integral_to(const struct curve *c, double x)
 	}
 	if (!(c->half > 0.0))
 		return (struct value){c->light2, 1.0, c->longer2};
-	const double u = (x - c->middle) / c->half, third = c->round / 3.0 * (u * u * u + 1.0);
+	const double u = (x - c->middle) * c->per_half, third = (1.0 / 3.0) * c->round * (u * u * u + 1.0);
 	return (struct value){c->light2 + (x - c->t2) - third * c->half, 1.0 - c->round * u * u,
 			      c->longer2 + third};
 }
@@ -95,7 +98,7 @@ static struct value averaged_at(const struct curve *c, double x)
 		return value_at(c, x);
 	const struct value a = integral_to(c, x - 0.5 * c->exposure),
 			   b = integral_to(c, x + 0.5 * c->exposure);
-	const double per = 1.0 / c->exposure;
+	const double per = c->per_exposure;
 	return (struct value){(b.light - a.light) * per, (b.rate - a.rate) * per,
 			      (b.longer - a.longer) * per};
 }
@@ -105,38 +108,71 @@ struct fisher {
 	double m[P_COUNT][P_COUNT];
 };
 
-static void add(struct fisher *f, const double by[P_COUNT], int n, double weight)
+/* Weighted products of the derivatives over a stretch; the step's are the level's after a flip and 0 before
+ * it. */
+struct products {
+	double w, wx, wxx;	   /* level and slope */
+	double d1, dx, dd;	   /* depth with level, slope, itself */
+	double l1, lx, ld, ll;	   /* duration with those before, itself */
+	double m1, mx, md, ml, mm; /* mid-time likewise */
+};
+
+static void add_event(struct products *p, const struct value *v, double x, double w)
 {
-	for (int r = 0; r < n; r++) {
-		const double w = weight * by[r];
+	const double wd = w * v->light, wl = w * v->longer, wm = w * v->rate;
+	p->d1 += wd;
+	p->dx += wd * x;
+	p->dd += wd * v->light;
+	p->l1 += wl;
+	p->lx += wl * x;
+	p->ld += wl * v->light;
+	p->ll += wl * v->longer;
+	p->m1 += wm;
+	p->mx += wm * x;
+	p->md += wm * v->light;
+	p->ml += wm * v->longer;
+	p->mm += wm * v->rate;
+}
+
+static void add_products(struct fisher *f, const struct products *p, double depth, bool after_flip)
+{
+	const double d = depth,
+		     row[P_COUNT][P_COUNT] = {
+			 [P_LEVEL] = {p->w},
+			 [P_SLOPE] = {p->wx, p->wxx},
+			 [P_STEP] = {p->w, p->wx, p->w},
+			 [P_DEPTH] = {-p->d1, -p->dx, -p->d1, p->dd},
+			 [P_DURATION] = {-d * p->l1, -d * p->lx, -d * p->l1, d * p->ld, d * d * p->ll},
+			 [P_MID] = {d * p->m1, d * p->mx, d * p->m1, -d * p->md, -d * d * p->ml,
+				    d * d * p->mm},
+		     };
+	for (int r = 0; r < P_COUNT; r++)
 		for (int k = 0; k <= r; k++)
-			f->m[r][k] += w * by[k];
-	}
+			if (after_flip || (r != P_STEP && k != P_STEP))
+				f->m[r][k] += row[r][k];
 }
 
 enum { POINTS = 4 };
 /* A stretch without an edge inside: noise linear, light curve a polynomial. Gauss's rule. */
-static void add_piece(struct fisher *f, const struct curve *c, const double x[2], const double noise[2],
-		      bool after_flip)
+static void add_piece(struct products *p, const struct curve *c, const double x[2], const double noise[2])
 {
 	static const double node[POINTS] = {-0.86113631159405258, -0.33998104358485626, 0.33998104358485626,
 					    0.86113631159405258},
 			    weight[POINTS] = {0.17392742256872693, 0.32607257743127307, 0.32607257743127307,
 					      0.17392742256872693};
-	const double centre = 0.5 * (x[0] + x[1]), reach = 0.5 * (x[1] - x[0]), length = x[1] - x[0];
-	const double scale = 1.0 / (c->t4 - c->t1);
+	const double centre = 0.5 * (x[0] + x[1]), reach = 0.5 * (x[1] - x[0]);
+	const double level = 0.5 * (noise[0] + noise[1]), rise = 0.5 * (noise[1] - noise[0]);
 	const bool inside = centre > c->t1 - 0.5 * c->exposure && centre < c->t4 + 0.5 * c->exposure;
 	for (int i = 0; i < POINTS; i++) {
-		const double at = centre + reach * node[i];
-		const double ppt = noise[0] + (noise[1] - noise[0]) * 0.5 * (1.0 + node[i]);
-		double by[P_COUNT] = {[P_LEVEL] = 1.0, [P_SLOPE] = at * scale, [P_STEP] = after_flip};
+		const double at = centre + reach * node[i], ppt = level + rise * node[i];
+		const double w = 2.0 * reach * weight[i] / (ppt * ppt), slope = at * c->per_length;
+		p->w += w;
+		p->wx += w * slope;
+		p->wxx += w * slope * slope;
 		if (inside) {
 			const struct value v = averaged_at(c, at);
-			by[P_DEPTH] = -v.light;
-			by[P_DURATION] = -c->depth * v.longer;
-			by[P_MID] = c->depth * v.rate;
+			add_event(p, &v, slope, w);
 		}
-		add(f, by, inside ? P_COUNT : P_BASELINE, length * weight[i] / (ppt * ppt));
 	}
 }
 
@@ -194,6 +230,7 @@ static void add_data(struct fisher *f, const struct timing_input *in, const stru
 {
 	const struct cuts cuts = cuts_of(in, c, mid_d);
 	const double flip = (in->flip_d - mid_d) * DAY_MIN;
+	struct products side[2] = {{0}}; /* before and after the flip */
 	int node = 0, next = 0;
 	for (int i = 0; i < in->usable->n; i++) {
 		const double end = (in->usable->s[i].to_d - mid_d) * DAY_MIN;
@@ -203,10 +240,12 @@ static void add_data(struct fisher *f, const struct timing_input *in, const stru
 				next++;
 			x[1] = next < cuts.n ? fmin(cuts.x[next], end) : end;
 			if (noise_over(in, mid_d, x, &node, noise))
-				add_piece(f, c, x, noise, 0.5 * (x[0] + x[1]) > flip);
+				add_piece(&side[0.5 * (x[0] + x[1]) > flip], c, x, noise);
 			x[0] = x[1];
 		}
 	}
+	add_products(f, &side[0], c->depth, false);
+	add_products(f, &side[1], c->depth, true);
 }
 
 /* What is known beforehand; an exactly known parameter is none. */

@@ -6,7 +6,12 @@
 #include <math.h>
 #include <stddef.h>
 
-enum { LOOKS = 32, STEPS_A_LOOK = 10, TERMS = 6 }; /* level, slope, step, depth, duration, mid-time */
+enum {
+	LIGHT_LOOKS = 8,
+	LOOKS = 32,
+	STEPS_A_LOOK = 10,
+	TERMS = 6
+}; /* level, slope, step, depth, duration, mid-time */
 
 /* Missing light of depth 1 at a moment after the mid-time. */
 static double missing(const struct timing_event *e, double x_d, double longer_d)
@@ -41,7 +46,7 @@ static double averaged(const struct timing_event *e, int looks, double x_d, doub
 
 double timing_sum_light(const struct timing_event *e, double t_d, double mid_d, double longer_d)
 {
-	return 1.0 - 1e-3 * e->depth_ppt * averaged(e, LOOKS, t_d - mid_d, longer_d);
+	return 1.0 - 1e-3 * e->depth_ppt * averaged(e, LIGHT_LOOKS, t_d - mid_d, longer_d);
 }
 
 double timing_sum_noise(const struct timing_input *in, double t_d)

@@ -114,6 +114,10 @@ static void moonlight(void **state)
 	/* eq. 9 by hand: a half Moon gives 10^(-0.4 (0.026 90 + 4e-9 90^4)) = 0.0910 of a full one */
 	check_close("half Moon", sky_moon_nl(90, 60, 30, 40, 0.172) / sky_moon_nl(0, 60, 30, 40, 0.172),
 		    0.0910, 5e-5);
+	/* by hand: (1 + cos 132.41170) / 2 = 0.162773 */
+	check_close("phase", sky_phase_deg(0.162773), 132.41170, 1e-4);
+	check_close("full", sky_phase_deg(1.0), 0.0, 1e-12);
+	assert_true(isnan(sky_phase_deg(1.01)));
 	check_close("below the horizon", sky_moon_nl(0, 60, 30, 95, 0.172), 0.0, 0.0);
 }
 
