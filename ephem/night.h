@@ -10,6 +10,7 @@
 #include "ephem/chebyshev.h"
 #include "ephem/intervals.h"
 #include "ephem/model.h"
+#include "ephem/observing.h"
 #include "ephem/sky.h"
 #include "ephem/timescale.h"
 #include "ephem/vec3.h"
@@ -32,6 +33,7 @@ struct night_dark {
 struct night {
 	const struct site *site;
 	const struct telescope *telescope; /* that it is planned for; borrowed; NULL none. night_build leaves it so; its mount limits what windows can use */
+	const struct observing *observing; /* what windows forecast with, ready; borrowed; NULL: no forecast. night_build leaves it so */
 	struct earth_clock clock;
 	int32_t mjd;          /* date of the evening */
 	struct tt noon_tt;

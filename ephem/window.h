@@ -24,6 +24,7 @@ struct prepared {
 	bool orbit_known;       /* eccentricity and, where it is not 0, its direction are published; else taken as circular */
 	bool has_ephemeris;     /* epoch and period there and countable */
 	uint32_t flags;         /* those that hold for every window of it */
+	const struct observed *observed; /* borrowed; NULL: nothing is known. prepare_target leaves it so */
 	const struct prepared *sibling; /* the next planet of the same star, in a ring (siblings.h); NULL alone */
 };
 /* doubtful_position: found by comparing the target with its siblings (stars.h); doubtful_values: the store kept numbers that can't be true.
