@@ -26,3 +26,18 @@ struct observed observed_unknown(void)
 {
 	return (struct observed){.neighbour = NAN, .comparison_stars = NAN};
 }
+
+struct open_goals open_goals_of(const struct observed *o, enum band_id band, double jd)
+{
+	struct open_goals open = {0, 0};
+	if (!o || o->n_goals == 0)
+		return (struct open_goals){1, 1};
+	for (size_t i = 0; i < o->n_goals; i++) {
+		const struct goal *g = &o->goal[i];
+		if (!goal_open(g, band == BAND_NONE ? g->band : band, jd))
+			continue;
+		open.whole++;
+		open.limb += g->one_limb;
+	}
+	return open;
+}

@@ -17,7 +17,7 @@ struct observing {
 	double dark_zenith_mag[BAND_SKY_COUNT];	 /* the site's moonless zenith, U B V R I [mag/arcsec2]; NAN: sky_dark_default */
 	double extinction_mag[BAND_COUNT];	 /* the site's, per airmass; NAN: the band's */
 	struct worth_rules rules;		 /* by what windows are ranked, the need, systematic floors */
-	double fallback_bits;			 /* stands for the bits of a window that has no forecast of its timing, >= 0 (1) */
+	double fallback_bits;			 /* stands for the bits (ranked by depth: for the S/N) of a window that has no forecast of its timing, >= 0 (1) */
 	double at_jd_tdb;			 /* date of sigma_after [JD TDB]; NAN: none is told */
 };
 #define FALLBACK_BITS 1.0 /* what a mid-time brings that is as precise as 0.58 of the prediction's error: of our own choosing */
@@ -35,5 +35,11 @@ struct observed {
 	size_t n_goals;		  /* 0: one goal that is always open, for any catch; all of them met: worth 0 */
 };
 struct observed observed_unknown(void);
+
+/* How many of a target's goals an event of that time in that band (BAND_NONE: not known, serves any) would serve: with both limbs, and with one alone. */
+struct open_goals {
+	int whole, limb;
+};
+struct open_goals open_goals_of(const struct observed *o, enum band_id band, double jd); /* o NULL: as observed_unknown */
 
 #endif
