@@ -27,15 +27,17 @@ static struct forecast_moment moment_at(const struct light *l, double t_d)
 {
 	const struct night *n = l->night;
 	const struct observing *o = l->observing;
-	struct forecast_moment m = {.t_d = t_d, .moon_sep_deg = NAN, .moon_phase_deg = NAN};
+	const struct night_light sky = night_light_at(n, t_d);
+	struct forecast_moment m = {.t_d = t_d,
+				    .sun_alt_deg = sky.sun_alt_deg,
+				    .moon_alt_deg = sky.moon_alt_deg,
+				    .moon_sep_deg = NAN,
+				    .moon_phase_deg = NAN};
 	m.alt_deg = night_star_altaz(n, l->star, t_d).alt_deg;
 	m.airmass = m.alt_deg > 0.0 ? airmass_young(m.alt_deg) : NAN;
-	m.sun_alt_deg = night_sun_altaz(n, t_d).alt_deg;
-	m.moon_alt_deg = night_moon_altaz(n, t_d).alt_deg;
 	if (m.moon_alt_deg > 0.0) {
-		m.moon_sep_deg = night_moon_sep_deg(n, l->star, t_d);
-		/* lit share (1 + cos i) / 2 */
-		m.moon_phase_deg = acos(fmin(fmax(2.0 * night_moon_lit(n, t_d) - 1.0, -1.0), 1.0)) / DEG_RAD;
+		m.moon_sep_deg = vec3_angle_rad(sky.moon, l->star->apparent) / DEG_RAD;
+		m.moon_phase_deg = sky.moon_phase_deg;
 	}
 	const struct skyglow_input in = {
 	    .band = l->band,
