@@ -13,7 +13,7 @@
 #define UNSAID_DURATION_SHARE ESTIMATED_GEOMETRY_SHARE
 #define CHANCE_LEAST 1e-6	    /* a placement below it brings nothing that counts */
 #define REACH_SIGMA 3.0		    /* the tails beyond it weigh 0.003 and are taken as near as this */
-#define NARROW_D (20.0 * MIN_D)	    /* placements this close are as good as one */
+#define NARROW_D (6.0 * MIN_D)	    /* placements this close are as good as one */
 #define NARROW_ALONE_D (1.0 / 24.0) /* the same of one limb: only plans rank by it */
 
 static double limb_end_d(const struct window_event *ev, bool ingress)

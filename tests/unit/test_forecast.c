@@ -5,6 +5,7 @@
 #include "ephem/units.h"
 #include "tests/support/check.h"
 #include "tests/support/forecast_scene.h"
+#include "tests/support/timing_sum.h"
 
 #include <math.h>
 #include <string.h>
@@ -57,9 +58,16 @@ static void one_steady_night(void **state)
 	check_close("snr", f->depth_snr,
 		    depth_ppt / sqrt(minute_ppt * minute_ppt * (1.0 / in_min + 1.0 / out_min) + 0.25), 0.01);
 	check_close("ideal", s.x.ideal_s, timing_whole_s(depth_ppt, minute_ppt, 21.2614, 120.0), 0.01);
-	/* the baseline is fitted: worse than the closed form, by less than a third with half an hour on each
-	 * side */
-	assert_true(f->timing_s > s.x.ideal_s && f->timing_s < 1.34 * s.x.ideal_s);
+	/* the plain sum over a light curve of this noise, reserve and duration, the baseline fitted */
+	const struct noise_node even = {MIDNIGHT_D, minute_ppt};
+	const struct intervals there =
+	    intervals_one(s.window.event.reserve_start_d, s.window.event.reserve_end_d);
+	struct timing_event curve = s.x.event;
+	curve.duration_err_d = 0.05 / 24.0;
+	const struct timing_input plain = {
+	    .event = &curve, .usable = &there, .node = &even, .n = 1, .flip_d = NAN};
+	check_close("timing", f->timing_s, timing_sum_s(&plain, MIDNIGHT_D, 0.05), 0.01 * f->timing_s);
+	assert_true(f->timing_s > s.x.ideal_s);
 	/* everything is caught: s = hypot(timing, need 2 min), V = 8 min squared */
 	const double s_min = hypot(f->timing_s / 60.0, 2.0);
 	check_close("whole", s.x.whole.chance, 1.0, 1e-9);
