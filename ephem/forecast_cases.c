@@ -11,10 +11,10 @@
 /* A published duration whose error is not at hand is taken as good to this share for a limb alone: exact it
  * would make one limb as good as two. */
 #define UNSAID_DURATION_SHARE ESTIMATED_GEOMETRY_SHARE
-#define CHANCE_LEAST 1e-6      /* a placement below it brings nothing that counts */
-#define REACH_SIGMA 4.5	       /* the tails beyond it weigh 7e-6 */
-#define NARROW_D (6.0 * MIN_D) /* placements this close are as good as one */
-enum { PIECES_MAX = 5 };
+#define CHANCE_LEAST 1e-6	    /* a placement below it brings nothing that counts */
+#define REACH_SIGMA 3.0		    /* the tails beyond it weigh 0.003 and are taken as near as this */
+#define NARROW_D (6.0 * MIN_D)	    /* placements this close are as good as one */
+#define NARROW_ALONE_D (1.0 / 24.0) /* the same of one limb: only plans rank by it */
 
 static double limb_end_d(const struct window_event *ev, bool ingress)
 {
@@ -46,6 +46,7 @@ struct placing {
 	const struct window_event *ev;
 	const struct worth_rules *rules;
 	struct timing_input in;
+	double narrow_d;
 };
 
 static double bits_at(const struct placing *p, double mid_d)
@@ -69,11 +70,11 @@ static double span_bits(const struct placing *p, double lo, double hi)
 	if (chance < CHANCE_LEAST)
 		return 0.0;
 	const double from = fmax(lo, -REACH_SIGMA), to = fmin(hi, REACH_SIGMA);
-	if (!(to > from) || (to - from) * sigma_d < NARROW_D) {
+	if (!(to > from) || (to - from) * sigma_d < p->narrow_d) {
 		const struct intervals one = intervals_one(mean_d + lo * sigma_d, mean_d + hi * sigma_d);
 		return chance * bits_at(p, worth_case_mid_d(&one, mean_d, sigma_d));
 	}
-	const int pieces = (int)fmin(ceil(0.5 * (to - from)), PIECES_MAX);
+	const int pieces = (int)ceil(0.5 * (to - from) - 1e-9);
 	double sum = 0.0;
 	for (int i = 0; i < pieces; i++) {
 		const double a = from + (to - from) * i / pieces, b = from + (to - from) * (i + 1) / pieces;
@@ -122,6 +123,7 @@ static struct forecast_case alone(const struct placing *p, const struct window *
 						: intervals_clip(&w->cover.usable, inner_d, INFINITY);
 	struct placing there = *p;
 	there.in.usable = &usable;
+	there.narrow_d = NARROW_ALONE_D;
 	return case_of(&there, allowed);
 }
 
@@ -154,6 +156,7 @@ void forecast_make_cases(struct forecast_explain *x, const struct window *w, con
 	if (!(x->depth_ppt > 0.0) || isnan(x->noise_ppt_min))
 		return;
 	struct placing p = {.ev = ev,
+			    .narrow_d = NARROW_D,
 			    .rules = &tn->night->observing->rules,
 			    .in = {.event = &x->event,
 				   .usable = &w->cover.usable,
