@@ -157,6 +157,8 @@ static const struct option_row rows[] = {
      OPT_VALUES, AT(unlost), 0, 0, NULL},
     {"--from", "TIME", "Plan what is left of the night from this time (22:40, 05:40Z, dusk+20m).", GROUP_PLAN,
      OPT_TEXT, AT(plan_from), 0, 0, "plan"},
+    {"--rebuild", NULL, "Work the stored plan out anew from today's ephemerides and its own choices.",
+     GROUP_PLAN, OPT_FLAG, AT(rebuild), 0, 0, NULL},
     {"--afresh", NULL, "Take over no choice of the stored plan; what is marked stands.", GROUP_PLAN, OPT_FLAG,
      AT(afresh), 0, 0, NULL},
     {"--draft", "NAME", "Which draft of the night (the kept one, else `main`).", GROUP_PLAN | GROUP_SHEET,

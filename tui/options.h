@@ -58,7 +58,7 @@ struct options {
 	/* plan */
 	struct option_values pin, drop, free_event, block, unblock, lost, unlost, poor, mark;
 	const char *draft, *plan_from, *compare, *remove_draft, *cause, *note, *since;
-	bool afresh, keep, save, list;
+	bool rebuild, afresh, keep, save, list;
 	double moved_min; /* NAN not given */
 	/* site, goal, star */
 	struct option_values sky, extinction;

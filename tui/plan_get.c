@@ -97,7 +97,7 @@ void plan_finish(struct plan_view *v)
 	for (size_t i = 0; i < v->n_items; i++) {
 		struct plan_item_view *item = &v->item[i];
 		item->order = (int)i + 1;
-		item->in_day = intervals_overlap(&night->sun_up, night_of_utc(night, item->start),
+		item->in_day = intervals_overlap(&night->sun_up, night_of_utc(night, item->slew_by),
 						 night_of_utc(night, item->end)) > 1.0 / DAY_S;
 	}
 	v->gap_min = v->rules.settle_d * DAY_MIN;
