@@ -27,6 +27,7 @@ enum option_group {
 	GROUP_UNDO = 1024,
 	GROUP_PLAN = 2048,
 	GROUP_SHEET = 4096,
+	GROUP_EXPLAIN = 1 << 20,
 };
 
 /* The values of an option that may be given again and again. */
@@ -58,6 +59,7 @@ struct options {
 	const char *draft, *plan_from, *compare, *remove_draft, *cause, *note, *since;
 	bool afresh, keep, save, list;
 	double moved_min; /* NAN not given */
+	const char *explain; /* night */
 	int kinds;         /* KINDS_*; 0 not given */
 	int threads;       /* 0 not given */
 	bool limit_given[LIM_COUNT];
