@@ -2,6 +2,7 @@
 #include "tui/midtime_mark.h"
 
 #include "db/history.h"
+#include "tui/run_write.h"
 
 #include <stdio.h>
 #include <stdlib.h>
@@ -9,26 +10,6 @@
 
 /* Verbs of the change sets. */
 static const char *const marks[] = {"midtime exclude", "midtime include"};
-
-/* The run's own store where that is the only one (in memory), else the file. */
-static enum status open_to_write(struct run *run, struct store **out, struct err *e)
-{
-	*out = run->store;
-	if (!run->db_path[0])
-		return run->store ? ST_OK : err_set(e, ST_ABSENT, "nothing is stored");
-	enum status s = store_open(run->db_path, STORE_WRITE, out, e);
-	if (s == ST_OK && store_read_only(*out)) {
-		store_close(*out);
-		return err_set(e, ST_STORE, "the database can't be written");
-	}
-	return s;
-}
-
-static void close_written(struct run *run, struct store *s)
-{
-	if (s != run->store)
-		store_close(s);
-}
 
 static struct change change_of(const struct run *run, const char *verb, char utc[static UTC_TEXT_MAX])
 {
@@ -43,7 +24,7 @@ enum status midtime_mark(struct run *run, int64_t target_id, long epoch, enum ev
 	char utc[UTC_TEXT_MAX];
 	long n = 0;
 	const struct change change = change_of(run, marks[use], utc);
-	enum status s = open_to_write(run, &store, e);
+	enum status s = run_write_open(run, &store, e);
 	if (s != ST_OK)
 		return s;
 	s = store_begin(store, &change, e);
@@ -54,7 +35,7 @@ enum status midtime_mark(struct run *run, int64_t target_id, long epoch, enum ev
 		if (s != ST_OK)
 			store_rollback(store);
 	}
-	close_written(run, store);
+	run_write_close(run, store);
 	if (s == ST_OK)
 		snprintf(said, MARKED_BYTES, "%ld mid-time%s of epoch %ld %s; u takes it back.", n,
 			 n == 1 ? "" : "s", epoch, use ? "included" : "excluded");
@@ -80,7 +61,7 @@ enum status midtime_mark_undo(struct run *run, int64_t target_id, char said[stat
 	size_t n = 0;
 	int64_t undone;
 	const struct change change = change_of(run, "undo", utc);
-	enum status s = open_to_write(run, &store, e);
+	enum status s = run_write_open(run, &store, e);
 	if (s != ST_OK)
 		return s;
 	s = history_list(store, target_id, &row, &n, e);
@@ -95,6 +76,6 @@ enum status midtime_mark_undo(struct run *run, int64_t target_id, char said[stat
 		snprintf(said, MARKED_BYTES, "Taken back: change %lld, %.40s (%.60s).", (long long)undone,
 			 newest->verb, newest->what);
 	free(row);
-	close_written(run, store);
+	run_write_close(run, store);
 	return s;
 }

@@ -93,6 +93,19 @@ static const struct option_row rows[] = {
      "Where the site's nights are halved: `dark` (between dusk and dawn), `sunset` (between sunset and "
      "sunrise) or HH:MM of its clocks.",
      GROUP_SITE, OPT_TEXT, AT(half), 0, 0, NULL},
+    {"--sky", "BAND=MAG",
+     "How bright the site's moonless zenith is, in mag per square arcsec: V=21.6; `V=`: not known; again for "
+     "more.",
+     GROUP_SITE, OPT_VALUES, AT(sky), 0, 0, NULL},
+    {"--extinction", "BAND=MAG",
+     "What the site's air takes at the zenith, in mag: V=0.14; `V=`: not known; again for more.", GROUP_SITE,
+     OPT_VALUES, AT(extinction), 0, 0, NULL},
+    {"--band", "BAND", "U, B, V, R, I, g, r, i, z or clear.", GROUP_GOAL | GROUP_STAR, OPT_TEXT, AT(band), 0,
+     0, NULL},
+    {"--until", "NIGHT", "The last night that counts for it.", GROUP_GOAL, OPT_TEXT, AT(until), 0, 0, NULL},
+    {"--note", "TEXT", "Whatever should be known of it.", GROUP_GOAL | GROUP_STAR, OPT_TEXT, AT(note), 0, 0,
+     NULL},
+    {"--name", "N", "What the star is called.", GROUP_STAR, OPT_TEXT, AT(star_name), 0, 0, NULL},
     {"--limit", "MIN",
      "The error beyond which an ephemeris is stale, in minutes (each target's own: wanted less least "
      "baseline, over pad).",
@@ -149,6 +162,8 @@ static const struct option_row rows[] = {
      OPT_VALUES, AT(unlost), 0, 0, NULL},
     {"--from", "TIME", "Plan what is left of the night from this time (22:40, 05:40Z, dusk+20m).", GROUP_PLAN,
      OPT_TEXT, AT(plan_from), 0, 0, "plan"},
+    {"--rebuild", NULL, "Work the stored plan out anew from today's ephemerides and its own choices.",
+     GROUP_PLAN, OPT_FLAG, AT(rebuild), 0, 0, NULL},
     {"--afresh", NULL, "Take over no choice of the stored plan; what is marked stands.", GROUP_PLAN, OPT_FLAG,
      AT(afresh), 0, 0, NULL},
     {"--draft", "NAME", "Which draft of the night (the kept one, else `main`).", GROUP_PLAN | GROUP_SHEET,

@@ -157,7 +157,7 @@ bool wish_any(const struct plan_wish *w)
 	return w->n_pin + w->n_drop + w->n_block + w->n_lost + w->n_poor + w->n_free + w->n_unblock +
 		       w->n_unlost >
 		   0 ||
-	       w->afresh || w->from;
+	       w->rebuild || w->afresh || w->from;
 }
 
 static void remove_at(struct plan_choices *c, size_t i)

@@ -59,7 +59,7 @@ static void head(struct plan_view *v, struct run *r, const struct night_view *ni
 				.who = "",
 				.limits = "",
 				.leap_date = "",
-				.rules = plan_rules_of(&r->telescope)};
+				.rules = run_plan_rules(r)};
 	v->telescope = plan_copy(v, r->telescope.name);
 }
 
@@ -70,7 +70,7 @@ static enum status head_of_made(struct plan_view *v, struct err *e)
 	const struct date d = date_from_mjd(v->run->leap.expires_mjd);
 	snprintf(text, sizeof text, "%04d-%02d-%02d", d.year, d.month, d.day);
 	v->leap_date = plan_copy(v, text);
-	v->rules = plan_rules_of(&v->run->telescope);
+	v->rules = run_plan_rules(v->run);
 	v->limits = plan_limits_text(v);
 	v->stored = v->kept = false;
 	v->n_gone = 0;
@@ -97,7 +97,7 @@ void plan_finish(struct plan_view *v)
 	for (size_t i = 0; i < v->n_items; i++) {
 		struct plan_item_view *item = &v->item[i];
 		item->order = (int)i + 1;
-		item->in_day = intervals_overlap(&night->sun_up, night_of_utc(night, item->start),
+		item->in_day = intervals_overlap(&night->sun_up, night_of_utc(night, item->slew_by),
 						 night_of_utc(night, item->end)) > 1.0 / DAY_S;
 	}
 	v->gap_min = v->rules.settle_d * DAY_MIN;

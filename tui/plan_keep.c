@@ -146,7 +146,7 @@ static enum status can_store(const struct plan_view *v, const char *draft, struc
 			       "a plan is kept for a stored site (wane site add), not for a place");
 	size_t bad_at;
 	struct err why;
-	if (name_check(draft, strlen(draft), &bad_at, &why) != ST_OK || strlen(draft) > 40) {
+	if (name_check(draft, strlen(draft), &bad_at, &why) != ST_OK) {
 		err_quote(draft, strlen(draft), got);
 		return err_set(e, ST_SYNTAX, "no name for a draft (got \"%s\", expected 1 to 40 characters)",
 			       got);

@@ -10,6 +10,7 @@ struct plan_wish {
 	const char *draft;		 /* which draft; NULL: the kept one, else `main` */
 	const char *const *pin, *const *drop, *const *block, *const *lost, *const *poor; /* as typed */
 	int n_pin, n_drop, n_block, n_lost, n_poor;
+	bool rebuild;			 /* worked out anew from what is stored, though nothing else is wished */
 	bool afresh;			 /* nothing of what is stored is taken over, marks apart */
 	const char *from;		 /* plan what is left of the night from this time; NULL */
 	/* taken back: pins and drops of an event, blocks by their text, lost and poor time by its span as it was typed */
@@ -18,9 +19,11 @@ struct plan_wish {
 	bool costs;			 /* say what each one left out would cost: a running order for each */
 	double moved_min;		 /* from how many minutes a member counts as moved; NAN: 2 */
 };
-/* The plan of a night. Nothing wished and a stored plan: as it is stored, compared with today's ephemerides. Else worked out anew from what is stored and what is wished, what has
+/* Whether anything is wished that needs the plan worked out anew. */
+bool wish_any(const struct plan_wish *wish);
+/* The plan of a night. A draft that is not stored is a new one (out->edition 0). Nothing wished and a stored plan: as it is stored, compared with today's ephemerides. Else worked out anew from what is stored and what is wished, what has
  * begun standing as it is. night: a view of the same night, zeroed; filled here, borrowed by *out, the caller's: night_view_free. *echo (the caller's to free) gets a line
- * for each time that was typed, resolved with its date; NULL when none was. ST_SYNTAX, ST_RANGE: something typed is wrong (exit code 2); ST_ABSENT: a target, draft or telescope that is not there. */
+ * for each time that was typed, resolved with its date; NULL when none was. ST_SYNTAX, ST_RANGE: something typed is wrong (exit code 2); ST_ABSENT: a target that is not there or has no window that night, something to be taken back that there is not. */
 MUST_USE enum status plan_get(struct run *r, int32_t evening_mjd, const struct plan_wish *wish, struct night_view *night, struct plan_view *out,
 			      char **echo, struct err *e);
 /* An edition of the stored plan `of` as it was, not compared with today; its night is that of `of`, borrowed. ST_ABSENT: `of` is not stored, or has no

@@ -60,8 +60,6 @@ void choices_read(struct plan_view *v, struct plan_choices *c, const char *lines
 const char *choices_text(struct plan_view *v, const struct plan_choices *c);
 /* What is wished, laid over what is stored: a pin takes the drop of the same event away and the other way round. */
 MUST_USE enum status choices_wish(struct plan_view *v, struct plan_choices *c, const struct plan_wish *wish, struct err *e);
-/* Whether anything is wished at all. */
-bool wish_any(const struct plan_wish *wish);
 
 /* A target of the run by what was typed: `NAME` or `NAME@EPOCH`. */
 struct event_name {

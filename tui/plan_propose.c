@@ -195,6 +195,15 @@ static enum status put_items(struct plan_view *v, const struct making *m,
 	return s;
 }
 
+static bool listed(const struct plan_view *v, const struct window *w)
+{
+	for (size_t i = 0; i < v->n_items; i++)
+		for (size_t k = 0; k < v->item[i].n; k++)
+			if (same_event(&v->item[i].member[k], w))
+				return true;
+	return false;
+}
+
 static void put_left(struct plan_view *v, const struct making *m, const struct plan_standing *standing,
 		     bool costs)
 {
@@ -204,6 +213,8 @@ static void put_left(struct plan_view *v, const struct making *m, const struct p
 	v->n_left = 0;
 	for (size_t i = 0; i < n; i++) {
 		const struct window *w = m->offer[p->left[i].offer].window;
+		if (listed(v, w)) /* lost already, and nothing came of offering it again */
+			continue;
 		v->left[v->n_left++] = (struct plan_left_view){
 		    .target = plan_copy(v, w->event.prepared->target->name),
 		    .kind = w->event.kind,

@@ -107,13 +107,22 @@ static bool let_go(struct plan_view *v, struct plan_item_view *item, const struc
 
 /* --- what stands --- */
 
-static bool begun(const struct plan_view *v, const struct moment *at)
+/* An item begins with the move to it. */
+static bool begun(const struct plan_view *v, const struct plan_item_view *item, const struct moment *at)
 {
+	return item->state >= PLAN_STARTED ||
+	       (at->inside && night_of_utc(&v->night->night, item->slew_by) <= at->now_d);
+}
+
+/* Whether the night of a stored plan runs: it is dark, or something has begun. */
+static bool runs(const struct plan_view *v, const struct moment *at)
+{
+	if (!at->inside || v->plan_id == 0)
+		return false;
 	for (size_t i = 0; i < v->n_items; i++)
-		if (v->item[i].state >= PLAN_STARTED ||
-		    (at->inside && night_of_utc(&v->night->night, v->item[i].start) <= at->now_d))
+		if (begun(v, &v->item[i], at))
 			return true;
-	return false;
+	return at->now_d >= v->night->dark.dusk_d;
 }
 
 static void never_begun(struct plan_choices *c, struct plan_item_view *item)
@@ -137,7 +146,7 @@ static enum standing stands(struct plan_view *v, struct plan_item_view *item, co
 	bool ahead;
 	if (item->state > PLAN_STARTED)
 		return STANDS;
-	if (!marked && (afresh || !at->inside || night_of_utc(night, item->start) > at->now_d))
+	if (!marked && (afresh || !begun(v, item, at)))
 		return GOES;
 	if (let_go(v, item, at, &ahead))
 		return ahead ? REOPENED : STANDS;
@@ -173,7 +182,7 @@ enum status plan_stand(struct plan_view *v, const struct plan_wish *wish, const 
 			return err_set(e, s == ST_ABSENT ? ST_RANGE : s, "from: %.440s", inner.text);
 		}
 		echo_add(echo, "from", clock, out->not_before_d, out->not_before_d);
-	} else if (at.inside && begun(v, &at))
+	} else if (runs(v, &at))
 		out->not_before_d = at.now_d;
 	out->item = plan_alloc(v, v->n_items, sizeof *out->item);
 	out->fixed = plan_alloc(v, v->n_items, sizeof *out->fixed);

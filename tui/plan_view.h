@@ -39,7 +39,7 @@ struct plan_item_view {
 	struct utc slew_by, start, latest_start, end;
 	bool has_latest; /* latest_start holds */
 	double worth;
-	bool in_day;	 /* the Sun is up for some of it: no sheet takes it */
+	bool in_day;	 /* the Sun is up for some of it, the move to it included: no sheet takes it */
 	size_t n;
 	struct plan_member_view *member; /* in order of T1 */
 	char if_missed[400]; /* one or two sentences: what to do when the first limb is missed */
@@ -63,10 +63,10 @@ struct plan_view {
 	const struct run *run;
 	const struct night_view *night; /* borrowed: site, night, Sun and Moon, free time; its windows are those of this plan's making */
 	const char *telescope;		/* "" the site's unnamed one */
-	const char *draft;		/* "" a proposal that is not stored */
+	const char *draft;		/* of a proposal (stored false): the draft that it was worked out from; "" none */
 	bool stored, kept;
 	int64_t plan_id;
-	int edition;			/* 0 not stored */
+	int edition;			/* of a proposal: the one that it was worked out from; 0 none is stored */
 	const char *stored_utc, *who;	/* of the edition; of a proposal: of the newest change in the store, "" an empty store */
 	const char *limits;		/* name=value, tab between */
 	const char *leap_date;

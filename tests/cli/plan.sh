@@ -58,6 +58,9 @@ check "--poor: a factor of 2 over it all leaves a quarter" awk -v a="$(worth "$s
 plan $now --pin 'Tern 31 b' --pin 'Tern 5 b' --pin 'Tern 11 b' --pin 'Tern 48 b' --pin 'Tern 40 b' >"$scratch/clash.txt"
 check "pins that clash: exit 0" test $? = 0
 check "and it is said which is left out" said '^wane: plan: Tern [0-9]* b: pinned, but it clashes with'
+plan $now --sun-limit 0 --pin 'Tern 22 b' >"$scratch/day.txt"
+check "an item with the Sun up says so" grep -q '^    THE SUN IS UP for some of it: do not slew there' "$scratch/day.txt"
+check "and no program is given it" test "$(plan $now --sun-limit 0 --pin 'Tern 22 b' --format json | sed -n '/^  "items"/,/^  \]/p' | grep -c '"target": "Tern 22 b", "kind"')" = 0
 
 # --- refusals
 check "an unknown target: exit 1" test "$(code --pin 'Tern 1400 b')" = 1
@@ -116,8 +119,11 @@ check "and why" grep -q '^  Tern 77 b +10.1 min: version 2 (Tern list 2) adopted
 check "the plan is as it was" test "$(targets "$scratch/moved.txt")" = "$(targets "$scratch/kept.txt")"
 check "--moved 11 does not count it" test "$(plan --moved 11 | grep -c 'less than counts')" = 1
 check "json: moved" test "$(plan --format json | grep -c '"moved": true')" = 1
+plan $now --rebuild >"$scratch/anew.txt"
+check "worked out anew nothing has moved" test "$(grep -c '^Moved' "$scratch/anew.txt")" = 0
+check "--rebuild takes the choices over" grep -q '^Dropped: Tern 70 b$' "$scratch/anew.txt"
 plan $now --afresh >"$scratch/afresh.txt"
-check "worked out anew nothing has moved" test "$(grep -c '^Moved' "$scratch/afresh.txt")" = 0
+check "--afresh does not" test "$(grep -c '^Dropped' "$scratch/afresh.txt")" = 0
 mv "$scratch/b.db" "$db"
 
 # --- the running night. The first item holds 21:20 to 22:46 MDT.
@@ -146,4 +152,13 @@ check "undo takes the edition back" "$WANE" undo --db "$db" --now 2026-04-23T06:
 check "and the plan is the one before" test "$(plan | head -n 1 | grep -c 'edition 1')" = 1
 check "--mark planned takes the mark back" test "$(code --mark "$first=planned")$(plan | grep -c '^  1 planned')" = 01
 check "the store is sound" "$WANE" check --db "$db"
+
+# --- the night of a clock change: 01:30 comes twice on 1 November 2026
+night=2026-10-31
+check "a time that comes twice: exit 2" test "$(code --lost 01:30..02:30)" = 2
+check "and it is said what helps" said 'comes twice this night.*expected it with Z'
+plan --lost 07:30Z..08:30Z >"$scratch/change.txt"
+check "with Z it is one" test $? = 0
+check "echoed in the zone that holds then" said 'Sun 1 Nov 01:30 MDT (07:30 UTC) to Sun 1 Nov 01:30 MST (08:30 UTC)'
+check "the mark of the later hour" grep -q '01:30 .*01:30\*' "$scratch/change.txt"
 finish

@@ -3,10 +3,16 @@
  * once in turn, or from then on. An import, or its undo, is then stored whole or not at all, says so, and the
  * same store works again when the fault is over. */
 #include "tests/support/check.h"
+#include "tests/support/observing_store.h"
+#include "tests/support/old_store.h"
 
+#include "db/allotments.h"
 #include "db/history.h"
 #include "db/import.h"
+#include "db/plans.h"
+#include "db/stored_settings.h"
 #include "db/targets.h"
+#include "db/telescopes.h"
 
 #include <sqlite3.h>
 #include <stdbool.h>
@@ -273,23 +279,158 @@ static bool one_fault_of_undo(const char *path, long at)
 	return reached;
 }
 
+/* --- plans, and what they hang on --- */
+
+/* One change set: a telescope, time, a setting, an edition of a plan, a mark. */
+static enum status plan_night(struct store *s, int based_on, struct err *e)
+{
+	struct plan_window_row window = {
+	    .target_id = 1, .ephemeris_id = 1, .target = "Tern 1 b", .variant = "whole", .figures = "t1=x"};
+	static const char utc[] = "2026-04-23T03:00:00Z";
+	struct plan_item_row item = {.key = "one",
+				     .slew_by_utc = utc,
+				     .start_utc = utc,
+				     .latest_start_utc = "",
+				     .end_utc = utc,
+				     .n = 1,
+				     .window = &window};
+	const struct plan_row plan = {.site_id = 1,
+				      .night_mjd = 61152,
+				      .draft = "main",
+				      .limits = "",
+				      .leap_date = "",
+				      .choices = "",
+				      .left_out = "",
+				      .n = 1,
+				      .item = &item};
+	const struct allotment time = {
+	    .site_id = 1, .first_mjd = 61152, .last_mjd = 61152 + based_on, .span = "whole", .note = ""};
+	struct telescope t = telescope_empty();
+	int64_t id = 0;
+	int edition;
+	t.site_id = 1;
+	t.name = "Tern One";
+	t.slew_deg_s = 1 + based_on;
+	enum status st = store_begin(s, &change, e);
+	if (st == ST_OK)
+		st = telescope_put(s, &t, false, e);
+	if (st == ST_OK)
+		st = allotment_add(s, &time, &id, e);
+	if (st == ST_OK)
+		st = stored_setting_put(s, "half.1", based_on ? "dark" : "sunset", e);
+	if (st == ST_OK)
+		st = plan_store(s, &plan, true, based_on, &id, &edition, e);
+	if (st == ST_OK)
+		st = plan_mark(s, id, "one", based_on ? "done" : "started", "", "", utc, e);
+	if (st == ST_OK)
+		return store_commit(s, e);
+	store_rollback(s);
+	return st;
+}
+
+static bool one_fault_of_plan(const char *path, long at)
+{
+	struct store *s;
+	struct err e = {0}, fine = {0};
+	struct plan_row plan;
+	char was[LOOK], is[LOOK];
+	unlink(path);
+	if (store_open(path, STORE_WRITE, &s, &fine) != ST_OK)
+		check_fail("%s", fine.text);
+	observing_fill(s, 1);
+	if (plan_night(s, 0, &fine) != ST_OK)
+		check_fail("%s", fine.text);
+	look(s, was);
+	met = false;
+	calls_left = at;
+	enum status st = plan_night(s, 1, &e);
+	calls_left = -1;
+	bool reached = met;
+	if (st != ST_OK && !*e.text)
+		check_fail("call %ld: fails without a word", at);
+	look(s, is);
+	if ((st == ST_OK) != (strcmp(is, was) != 0))
+		check_fail("call %ld: status %d (%s), but there is %s", at, (int)st, e.text, is);
+	if (st != ST_OK && plan_night(s, 1, &fine) != ST_OK)
+		check_fail("call %ld: the store works no more: %s", at, fine.text);
+	if (plan_find(s, 1, 0, 61152, NULL, &plan, &fine) != ST_OK)
+		check_fail("call %ld: %s", at, fine.text);
+	assert_int_equal(plan.edition, 2);
+	assert_string_equal(plan.item[0].state, "done");
+	plan_row_free(&plan);
+	store_close(s);
+	return reached;
+}
+
+/* --- an older store that is opened: it is old or new, whole, and opens the next time --- */
+
+static bool one_fault_of_migration(const char *path, long at)
+{
+	struct store *s = NULL;
+	struct err e = {0}, fine = {0};
+	char copy[96], is[LOOK];
+	snprintf(copy, sizeof copy, "%s.schema-1.bak", path);
+	unlink(path);
+	unlink(copy);
+	old_store_make(path);
+	met = false;
+	calls_left = at;
+	enum status st = store_open(path, STORE_WRITE, &s, &e);
+	calls_left = -1;
+	bool reached = met;
+	if (st != ST_OK && !*e.text)
+		check_fail("call %ld: fails without a word", at);
+	store_close(s);
+	if (store_open(path, STORE_READ, &s, &fine) != ST_OK)
+		check_fail("call %ld (%s): can't be read after that: %s", at, e.text, fine.text);
+	look(s, is);
+	assert_string_equal(strrchr(is, ' ') + 1, OLD_STORE_DIGEST);
+	store_close(s);
+	if (store_open(path, STORE_WRITE, &s, &fine) != ST_OK)
+		check_fail("call %ld (%s): can't be opened after that: %s", at, e.text, fine.text);
+	look(s, is);
+	assert_string_equal(strrchr(is, ' ') + 1, OLD_STORE_DIGEST);
+	store_close(s);
+	/* the copy is there, whole */
+	if (store_open(copy, STORE_READ, &s, &fine) != ST_OK)
+		check_fail("call %ld: the copy: %s", at, fine.text);
+	look(s, is);
+	assert_string_equal(strrchr(is, ' ') + 1, OLD_STORE_DIGEST);
+	store_close(s);
+	assert_int_equal(unlink(copy), 0);
+	return reached;
+}
+
+/* Every point, or with `thin` all of the first twenty and then ever fewer: opening an older store takes
+ * thousands of allocations. */
+static void every_fault_of(const char *what, bool lasting, bool thin, bool (*one)(const char *path, long at),
+			   const char *path)
+{
+	long at = 0, points = 0;
+	for (; one(path, at); points++)
+		at += thin && at > 20 ? 1 + at / 6 : 1;
+	print_message("%s%s: %ld points of %ld\n", what, lasting ? ", for good" : "", points, at);
+	assert_true(points > 10);
+}
+
 static void every_fault(const char *what, int code, bool lasting)
 {
 	char folder[] = "/tmp/wane-fault-XXXXXX", path[64];
-	long at = 0;
+	char line[96];
 	assert_non_null(mkdtemp(folder));
 	snprintf(path, sizeof path, "%s/wane.db", folder);
 	fault_code = code;
 	for_good = lasting;
-	while (one_fault(path, at))
-		at++;
-	print_message("%s%s: %ld points\n", what, lasting ? ", for good" : "", at);
-	assert_true(at > 10);
+	every_fault_of(what, lasting, false, one_fault, path);
 	if (lasting) { /* once is enough for the same statements */
-		for (at = 0; one_fault_of_undo(path, at);)
-			at++;
-		print_message("%s, for good, undo: %ld points\n", what, at);
-		assert_true(at > 10);
+		snprintf(line, sizeof line, "%s, undo", what);
+		every_fault_of(line, lasting, false, one_fault_of_undo, path);
+		snprintf(line, sizeof line, "%s, plan", what);
+		every_fault_of(line, lasting, memory_only, one_fault_of_plan, path);
+	}
+	if (lasting || memory_only) {
+		snprintf(line, sizeof line, "%s, older schema", what);
+		every_fault_of(line, lasting, memory_only, one_fault_of_migration, path);
 	}
 	assert_int_equal(unlink(path), 0);
 	assert_int_equal(rmdir(folder), 0);

@@ -1,7 +1,10 @@
 /* SPDX-License-Identifier: MIT
  * A program that is killed while it writes: what it said was stored is there, nothing is half there. */
 #include "tests/support/check.h"
+#include "tests/support/observing_store.h"
+#include "tests/support/old_store.h"
 
+#include "db/plans.h"
 #include "db/targets.h"
 
 #include <signal.h>
@@ -146,8 +149,179 @@ static void test_kill(void **state)
 	assert_int_equal(rmdir(folder), 0);
 }
 
+/* Runs `writer` in a process of its own until it is killed or done: what it wrote to acknowledge. */
+static long kill_after(struct rng *r, double longest_ns, const char *path,
+		       void (*writer)(const char *path, int acknowledge))
+{
+	int pipes[2], end;
+	long acknowledged = 0;
+	char byte;
+	assert_int_equal(pipe(pipes), 0);
+	pid_t pid = fork();
+	assert_true(pid >= 0);
+	if (pid == 0) {
+		close(pipes[0]);
+		writer(path, pipes[1]);
+		_exit(0);
+	}
+	close(pipes[1]);
+	const struct timespec wait = {0, (long)rng_between(r, 1e5, longest_ns)};
+	nanosleep(&wait, NULL);
+	assert_int_equal(kill(pid, SIGKILL), 0);
+	assert_int_equal(waitpid(pid, &end, 0), pid);
+	if (WIFEXITED(end) && WEXITSTATUS(end) != 0)
+		check_fail("the writer ended by itself: %d", WEXITSTATUS(end));
+	while (read(pipes[0], &byte, 1) == 1)
+		acknowledged++;
+	close(pipes[0]);
+	return acknowledged;
+}
+
+/* --- an older schema --- */
+
+static void bring_up(const char *path, int acknowledge)
+{
+	struct store *s;
+	struct err e;
+	if (store_open(path, STORE_WRITE, &s, &e) != ST_OK || write(acknowledge, "x", 1) != 1)
+		_exit(2);
+	store_close(s);
+}
+
+/* Killed while it is brought to the newest schema: it is the old one whole or the new one whole, and what is
+ * left lying about hinders nobody. */
+static void test_kill_migration(void **state)
+{
+	char folder[] = "/tmp/wane-kill-XXXXXX", path[64], left[5][96];
+	static const char *const behind[] = {"-journal", ".schema-1.bak", ".schema-1.2.bak",
+					     ".schema-1.bak.part", ".schema-1.bak.part-journal"};
+	struct rng r = rng_open("kill, older schema");
+	struct err e = {0};
+	int done = 0;
+	(void)state;
+	assert_non_null(mkdtemp(folder));
+	snprintf(path, sizeof path, "%s/wane.db", folder);
+	for (int i = 0; i < 5; i++)
+		snprintf(left[i], sizeof left[i], "%s%s", path, behind[i]);
+	for (int turn = 0; turn < KILLS; turn++) {
+		struct store *s;
+		struct digest_text d;
+		int faults;
+		old_store_make(path);
+		done += kill_after(&r, 6e7, path, bring_up) > 0;
+		for (enum store_mode mode = STORE_READ; mode <= STORE_WRITE; mode++) {
+			must(store_open(path, mode, &s, &e), &e);
+			d = digest_now(s);
+			assert_string_equal(d.text, OLD_STORE_DIGEST);
+			must(store_check(s, say_fault, NULL, &faults, &e), &e);
+			assert_int_equal(faults, 0);
+			store_close(s);
+		}
+		must(store_open(left[1], STORE_READ, &s, &e), &e);
+		d = digest_now(s);
+		assert_string_equal(d.text, OLD_STORE_DIGEST);
+		store_close(s);
+		assert_int_equal(access(left[2], F_OK), -1); /* one copy is enough */
+		for (int i = 0; i < 5; i++)
+			unlink(left[i]);
+		assert_int_equal(unlink(path), 0);
+	}
+	print_message("%d kills, %d of them too late\n", KILLS, done);
+	assert_true(done < KILLS);
+	assert_int_equal(rmdir(folder), 0);
+}
+
+/* --- plans --- */
+
+/* Editions of one draft, with a mark each, acknowledged one by one. */
+static void plan_on(const char *path, int acknowledge)
+{
+	struct store *s;
+	struct err e;
+	struct plan_row have;
+	static const char utc[] = "2026-04-23T03:00:00Z";
+	char note[16];
+	if (store_open(path, STORE_WRITE, &s, &e) != ST_OK)
+		_exit(2);
+	for (;;) {
+		enum status st = plan_find(s, 1, 0, 61152, "main", &have, &e);
+		int64_t id;
+		int edition = st == ST_OK ? have.edition : 0;
+		plan_row_free(&have);
+		struct plan_window_row window = {.target_id = 1,
+						 .ephemeris_id = 1,
+						 .target = "Tern 1 b",
+						 .variant = "whole",
+						 .figures = ""};
+		struct plan_item_row item = {.key = "one",
+					     .slew_by_utc = utc,
+					     .start_utc = utc,
+					     .latest_start_utc = "",
+					     .end_utc = utc,
+					     .n = 1,
+					     .window = &window};
+		const struct plan_row p = {.site_id = 1,
+					   .night_mjd = 61152,
+					   .draft = "main",
+					   .limits = "",
+					   .leap_date = "",
+					   .choices = "",
+					   .left_out = "",
+					   .n = 1,
+					   .item = &item};
+		if (store_begin(s, &change, &e) != ST_OK ||
+		    plan_store(s, &p, true, edition, &id, &edition, &e) != ST_OK)
+			_exit(3);
+		snprintf(note, sizeof note, "%d", edition);
+		if (plan_mark(s, id, "one", "started", "", note, utc, &e) != ST_OK ||
+		    store_commit(s, &e) != ST_OK || write(acknowledge, "x", 1) != 1)
+			_exit(4);
+	}
+}
+
+static void test_kill_plan(void **state)
+{
+	char folder[] = "/tmp/wane-kill-XXXXXX", path[64], journal[80], note[16];
+	struct rng r = rng_open("kill, plans");
+	struct err e = {0};
+	struct store *s;
+	long stored = 0;
+	(void)state;
+	assert_non_null(mkdtemp(folder));
+	snprintf(path, sizeof path, "%s/wane.db", folder);
+	snprintf(journal, sizeof journal, "%s-journal", path);
+	must(store_open(path, STORE_WRITE, &s, &e), &e);
+	observing_fill(s, 1);
+	store_close(s);
+	for (int turn = 0; turn < KILLS / 2; turn++) {
+		struct plan_row p;
+		long wanted = stored + kill_after(&r, 1.2e8, path, plan_on);
+		int faults;
+		must(store_open(path, STORE_READ, &s, &e), &e);
+		must(store_check(s, say_fault, NULL, &faults, &e), &e);
+		assert_int_equal(faults, 0);
+		enum status st = plan_find(s, 1, 0, 61152, NULL, &p, &e);
+		stored = st == ST_OK ? p.edition : 0;
+		if (st == ST_OK) { /* the mark came with its edition */
+			snprintf(note, sizeof note, "%d", p.edition);
+			assert_string_equal(p.item[0].note, note);
+		}
+		plan_row_free(&p);
+		store_close(s);
+		/* the one that was stored and not yet acknowledged may be there too */
+		if (stored < wanted || stored > wanted + 1)
+			check_fail("turn %d: %ld acknowledged, edition %ld holds", turn, wanted, stored);
+	}
+	print_message("%ld editions\n", stored);
+	assert_true(stored > 0);
+	unlink(journal);
+	assert_int_equal(unlink(path), 0);
+	assert_int_equal(rmdir(folder), 0);
+}
+
 int main(void)
 {
-	const struct CMUnitTest tests[] = {cmocka_unit_test(test_kill)};
+	const struct CMUnitTest tests[] = {cmocka_unit_test(test_kill), cmocka_unit_test(test_kill_migration),
+					   cmocka_unit_test(test_kill_plan)};
 	return cmocka_run_group_tests_name("store_kill", tests, NULL, NULL);
 }

@@ -2,26 +2,25 @@
  * Random edits, undone and done again at random: whatever the order, the digest after an undo is that before
  * the change, one that is refused changes nothing, and the store stays sound. */
 #include "tests/support/check.h"
+#include "tests/support/observing_store.h"
 
+#include "db/allotments.h"
 #include "db/history.h"
 #include "db/midtimes.h"
+#include "db/plans.h"
 #include "db/sites.h"
+#include "db/stored_settings.h"
 #include "db/targets.h"
+#include "db/telescopes.h"
 
 #include <stdbool.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
 
-enum { RUNS = 25, EDITS = 60, NAMES = 5 };
+enum { RUNS = 40, EDITS = 100, NAMES = 5 };
 
 static const struct change change = {"2026-04-22T03:00:00Z", "test", "edit"};
-
-static void must(enum status st, const struct err *e)
-{
-	if (st != ST_OK)
-		check_fail("status %d: %s", (int)st, e->text);
-}
 
 static int pick(struct rng *r, int n)
 {
@@ -114,11 +113,107 @@ static enum status edit_time(struct store *s, struct rng *r, int64_t target, str
 
 static enum status edit_site(struct store *s, struct rng *r, struct err *e)
 {
-	char name[16];
-	snprintf(name, sizeof name, "Hill %d", pick(r, 2));
+	const char *name = pick(r, 2) ? "Tern Hill" : "Tern Cliff";
 	const struct site site = {
 	    .name = name, .lat_deg = 38, .lon_east_deg = -109, .height_m = 2000 + pick(r, 3), .zone = ""};
-	return pick(r, 3) ? site_put(s, &site, false, e) : site_remove(s, name, e);
+	return pick(r, 8) ? site_put(s, &site, false, e) : site_remove(s, name, e);
+}
+
+static enum status edit_telescope(struct store *s, struct rng *r, struct err *e)
+{
+	struct telescope t = telescope_empty();
+	t.site_id = 1 + pick(r, 2);
+	t.name = pick(r, 2) ? "Tern One" : "Tern Two";
+	t.slew_deg_s = 1 + pick(r, 2);
+	return pick(r, 3) ? telescope_put(s, &t, false, e) : telescope_remove(s, t.site_id, t.name, e);
+}
+
+static enum status edit_allotment(struct store *s, struct rng *r, struct err *e)
+{
+	int64_t id;
+	const struct allotment a = {.site_id = 1 + pick(r, 2),
+				    .telescope_id = pick(r, 3),
+				    .first_mjd = 61152,
+				    .last_mjd = 61152 + pick(r, 2),
+				    .span = "first-half",
+				    .note = ""};
+	return pick(r, 2) ? allotment_add(s, &a, &id, e) : allotment_remove(s, 1 + pick(r, 6), e);
+}
+
+static enum status edit_setting(struct store *s, struct rng *r, struct err *e)
+{
+	static const char *const values[] = {"", "dark", "sunset"};
+	return stored_setting_put(s, pick(r, 2) ? "half.1" : "half.2", values[pick(r, 3)], e);
+}
+
+/* A draft of one item, of target 1 and its first ephemeris. */
+static enum status store_plan(struct store *s, struct rng *r, struct err *e)
+{
+	int64_t id;
+	int edition, based_on = 0;
+	char key[16], utc[24];
+	struct plan_row have;
+	snprintf(key, sizeof key, "item-%d", pick(r, 2));
+	snprintf(utc, sizeof utc, "2026-04-23T03:0%d:00Z", pick(r, 3));
+	struct plan_window_row window = {
+	    .target_id = 1 + pick(r, 2), .target = "Tern", .variant = "whole", .figures = ""};
+	struct plan_item_row item = {.key = key,
+				     .slew_by_utc = utc,
+				     .start_utc = utc,
+				     .latest_start_utc = "",
+				     .end_utc = utc,
+				     .n = 1,
+				     .window = &window};
+	const struct plan_row p = {.site_id = 1 + pick(r, 2),
+				   .telescope_id = pick(r, 4) == 0,
+				   .night_mjd = 61152,
+				   .draft = pick(r, 2) ? "main" : "cloudy",
+				   .limits = "",
+				   .leap_date = "",
+				   .choices = "",
+				   .left_out = "",
+				   .n = 1,
+				   .item = &item};
+	window.ephemeris_id = window.target_id;
+	enum status st = plan_find(s, p.site_id, p.telescope_id, p.night_mjd, p.draft, &have, e);
+	if (st == ST_OK)
+		based_on = have.edition;
+	plan_row_free(&have);
+	if (st != ST_OK && st != ST_ABSENT)
+		return st;
+	return plan_store(s, &p, pick(r, 2), based_on, &id, &edition, e);
+}
+
+/* Edits of plans that were taken: the loops are worth nothing without. */
+static struct {
+	long stored, kept, marked;
+} taken;
+
+static enum status count_taken(enum status st, long *n)
+{
+	*n += st == ST_OK;
+	return st;
+}
+
+static enum status edit_plan(struct store *s, struct rng *r, struct err *e)
+{
+	static const char *const states[] = {"", "started", "done"};
+	char key[16];
+	int64_t id = 1 + pick(r, 6);
+	snprintf(key, sizeof key, "item-%d", pick(r, 2));
+	switch (pick(r, 6)) {
+	case 0:
+		return count_taken(plan_keep(s, id, e), &taken.kept);
+	case 1:
+		return plan_remove(s, id, e);
+	case 2:
+	case 3:
+		return count_taken(
+		    plan_mark(s, id, key, states[pick(r, 3)], "", "", "2026-04-23T04:00:00Z", e),
+		    &taken.marked);
+	default:
+		return count_taken(store_plan(s, r, e), &taken.stored);
+	}
 }
 
 static enum status edit(struct store *s, struct rng *r, struct err *e)
@@ -127,7 +222,7 @@ static enum status edit(struct store *s, struct rng *r, struct err *e)
 	int number = pick(r, NAMES);
 	snprintf(name, sizeof name, "Tern %d b", number);
 	snprintf(other, sizeof other, "Tern %d b", pick(r, NAMES + 2));
-	switch (pick(r, 9)) {
+	switch (pick(r, 18)) {
 	case 0:
 	case 1:
 		return put_target(s, r, name, e);
@@ -142,8 +237,18 @@ static enum status edit(struct store *s, struct rng *r, struct err *e)
 	case 6:
 	case 7:
 		return edit_time(s, r, 1 + number, e);
-	default:
+	case 8:
+	case 9:
 		return edit_site(s, r, e);
+	case 10:
+	case 11:
+		return edit_telescope(s, r, e);
+	case 12:
+		return edit_allotment(s, r, e);
+	case 13:
+		return edit_setting(s, r, e);
+	default:
+		return edit_plan(s, r, e);
 	}
 }
 
@@ -192,7 +297,7 @@ static void test_stack(void **state)
 		struct err e = {0};
 		struct digest stack[EDITS + 1];
 		size_t n = 0;
-		must(store_open(NULL, STORE_MEMORY, &s, &e), &e);
+		s = observing_store(3);
 		stack[0] = digest_of(s);
 		for (int i = 0; i < EDITS; i++) {
 			int64_t undone, again;
@@ -241,7 +346,7 @@ static void test_any(void **state)
 	for (int run = 0; run < RUNS; run++) {
 		struct store *s;
 		struct err e = {0};
-		must(store_open(NULL, STORE_MEMORY, &s, &e), &e);
+		s = observing_store(3);
 		for (int i = 0; i < EDITS; i++) {
 			int64_t undone, id;
 			if (pick(&r, 2) || changes_in(s) == 0) {
@@ -279,6 +384,8 @@ static void test_any(void **state)
 	print_message("%ld undone, %ld refused as changed since, %ld as undone already\n", done, conflicts,
 		      absent);
 	assert_true(done > 50 && conflicts > 50 && absent > 5);
+	print_message("%ld plans stored, %ld kept, %ld marks\n", taken.stored, taken.kept, taken.marked);
+	assert_true(taken.stored > 50 && taken.kept > 10 && taken.marked > 20);
 }
 
 int main(void)

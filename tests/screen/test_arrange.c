@@ -24,6 +24,10 @@ static double figure(const struct night_row *row, int rule)
 {
 	if (rule == SORT_MAG)
 		return row->window->event.prepared->target->mag;
+	if (rule == SORT_WORTH)
+		return row->worth;
+	if (rule == SORT_ORDER)
+		return row->plan.order > 0 ? (double)row->plan.order : (double)NAN;
 	return row_figure(row, sort_rules[rule].column);
 }
 
@@ -52,6 +56,9 @@ static void test_orders(void **state)
 	(void)state;
 	struct err e;
 	struct night_rows rows = rows_of_fixture();
+	rows.row[1].plan.order = 3;
+	rows.row[2].plan.order = 1;
+	rows.row[5].plan.order = 3;
 	for (int rule = 0; rule < SORT_COUNT; rule++)
 		for (int turned = 0; turned < 2; turned++) {
 			assert_int_equal(sort_find((uint32_t)(unsigned char)sort_rules[rule].key), rule);
@@ -95,6 +102,8 @@ static void test_sentences(void **state)
 	} rows[] = {
 	    {"", "2 c,18 b,18 c,33 b,14 b,9 b,5 b,27 b,31 b,7 b,40 b"},
 	    {"   ", "2 c,18 b,18 c,33 b,14 b,9 b,5 b,27 b,31 b,7 b,40 b"},
+	    {"worth > 0.5 & worth < 1", "33 b"},
+	    {"worth = 1", "18 b,18 c,14 b,5 b"},
 	    {"done > 50", "18 b,18 c,33 b,14 b,5 b"},
 	    {"done>50&alt>55", "18 c,33 b,14 b,5 b"},
 	    {"chance_done > 0.5 & alt_mid_deg > 55", "18 c,33 b,14 b,5 b"},

@@ -158,13 +158,19 @@ static void test_glyphs(void **state)
 		}
 	/* every share of a part looks different, and so does everything on one strip, in every tier */
 	for (int tier = 0; tier < TIER_COUNT; tier++)
-		for (int a = GLYPH_BLANK; a <= GLYPH_NOW; a++)
-			for (int b = a + 1; b <= GLYPH_NOW; b++)
+		for (int a = GLYPH_BLANK; a <= GLYPH_ITEM_END; a++)
+			for (int b = a + 1; b <= GLYPH_ITEM_END; b++)
 				assert_string_not_equal(glyph_text((enum glyph)a, (enum tier)tier),
 							glyph_text((enum glyph)b, (enum tier)tier));
 	for (int tier = 0; tier < TIER_COUNT; tier++)
 		for (int a = GLYPH_SHARE_ALL; a <= GLYPH_SHARE_NO_PART; a++)
 			for (int b = a + 1; b <= GLYPH_SHARE_NO_PART; b++)
+				assert_string_not_equal(glyph_text((enum glyph)a, (enum tier)tier),
+							glyph_text((enum glyph)b, (enum tier)tier));
+	/* what stands of the item of a plan */
+	for (int tier = 0; tier < TIER_COUNT; tier++)
+		for (int a = GLYPH_PLANNED; a <= GLYPH_DROPPED; a++)
+			for (int b = a + 1; b <= GLYPH_DROPPED; b++)
 				assert_string_not_equal(glyph_text((enum glyph)a, (enum tier)tier),
 							glyph_text((enum glyph)b, (enum tier)tier));
 }

@@ -46,15 +46,15 @@ static void test_about(void **state)
 	pty_screen(&t, ">", "next night, night 23/24 Apr 2026");
 	pty_screen(&t, "<<", "last night, night 21/22 Apr 2026");
 	pty_screen(&t, ".", OPENED);
-	pty_screen(&t, "d\0252026-05-01\r", "in 9 nights, night 1/2 May 2026");
+	pty_screen(&t, "t\0252026-05-01\r", "in 9 nights, night 1/2 May 2026");
 	pty_screen(&t, "?", "Keys (q, ? or Esc comes back)");
 	pty_screen(&t, "q", "in 9 nights, night 1/2 May 2026");
 	pty_screen(&t, "l", "Limits of this run");
 	pty_screen(&t, "\033", "in 9 nights, night 1/2 May 2026");
 	pty_screen(&t, "a", "q quit");
 	pty_screen(&t, "R", "q quit");
-	pty_send(&t, "x");
-	pty_wait(&t, "x does nothing here; ? shows the keys.");
+	pty_send(&t, "z");
+	pty_wait(&t, "z does nothing here; ? shows the keys.");
 	pty_send(&t, "q");
 	expect_exit(&t, 0);
 	pty_expect_restored(&t);
@@ -274,6 +274,65 @@ static void test_residuals(void **state)
 	close_database();
 }
 
+/* The plan is kept, an item marked, time lost and what is left kept again; the program is killed after each,
+ * and all is there when it is opened again. */
+static void test_plan(void **state)
+{
+	struct pty t;
+	(void)state;
+	open_database();
+	write_target("Tern 15 b");
+	open_on_database(&t);
+	pty_screen(&t, "", "plan proposed: 1 item");
+	pty_screen(&t, "K", "plan kept: 1 item");
+	kill(t.child, SIGKILL);
+	(void)pty_end(&t);
+	pty_close(&t);
+
+	open_on_database(&t);
+	pty_screen(&t, "", "plan kept: 1 item");
+	pty_screen(&t, "m", "What became of Tern 1");
+	pty_screen(&t, "\r", "1◐");
+	kill(t.child, SIGKILL);
+	(void)pty_end(&t);
+	pty_close(&t);
+
+	open_on_database(&t);
+	pty_screen(&t, "", "1◐");
+	pty_screen(&t, "v", "1 started");
+	pty_screen(&t, "v", "plan kept: 1 item");
+	pty_screen(&t, "L", "Lost time FROM..TO");
+	pty_screen(&t, "04:30..05:00\r", "plan changed: 1 item");
+	/* what is only changed is not stored */
+	kill(t.child, SIGKILL);
+	(void)pty_end(&t);
+	pty_close(&t);
+
+	open_on_database(&t);
+	pty_screen(&t, "", "plan kept: 1 item");
+	pty_screen(&t, "L04:30..05:00\r", "plan changed: 1 item");
+	pty_screen(&t, "K", "plan kept: 1 item");
+	kill(t.child, SIGKILL);
+	(void)pty_end(&t);
+	pty_close(&t);
+
+	open_on_database(&t);
+	pty_screen(&t, "v", "kept main (edition 2), 1 item");
+	pty_screen(&t, "", "04:30 to 05:00");
+	pty_screen(&t, "v", "plan kept: 1 item");
+	pty_screen(&t, "u", "plan kept: 1 item");
+	pty_screen(&t, "v", "kept main (edition 1), 1 item");
+	pty_screen(&t, "q", "plan kept: 1 item");
+	pty_screen(&t, "x", "plan changed: ");
+	pty_send(&t, "q");
+	pty_wait(&t, "Leave without them?");
+	pty_send(&t, "y");
+	expect_exit(&t, 0);
+	pty_expect_restored(&t);
+	pty_close(&t);
+	close_database();
+}
+
 static void test_resize(void **state)
 {
 	struct pty t;
@@ -477,6 +536,7 @@ int main(void)
 	const struct CMUnitTest tests[] = {
 	    cmocka_unit_test(test_drift),
 	    cmocka_unit_test(test_residuals),
+	    cmocka_unit_test(test_plan),
 	    cmocka_unit_test(test_about),
 	    cmocka_unit_test(test_find_sort_filter),
 	    cmocka_unit_test(test_site_switch),

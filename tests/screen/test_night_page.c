@@ -34,7 +34,7 @@ static void test_golden(void **state)
 	    {"night-80x24-long-shots", "ajj", 24, 80, TIER_UNICODE},
 	    {"night-80x24-last", "G", 24, 80, TIER_UNICODE},
 	    {"night-80x24-later", ">>", 24, 80, TIER_UNICODE},
-	    {"night-80x24-date", "d", 24, 80, TIER_UNICODE},
+	    {"night-80x24-date", "t", 24, 80, TIER_UNICODE},
 	    {"night-80x24-details", "g\r", 24, 80, TIER_UNICODE},
 	    {"night-80x24-sort", "s", 24, 80, TIER_UNICODE},
 	    {"night-80x24-filter", "fdone > 50\rsd", 24, 80, TIER_UNICODE},
@@ -58,33 +58,33 @@ static void test_keys_to_screens(void **state)
 	static const struct {
 		const char *keys, *shown, *not_shown;
 	} rows[] = {
-	    {"", "▸ now   Tern 18 b", "nan"},
-	    {"j", "▸ now   Tern 18 c", NULL},
-	    {"jjk", "▸ now   Tern 18 c", NULL},
-	    {"kkkkkkkk", "▸ now   Tern 2 c", NULL},
+	    {"", "▸ 1○ next Tern 18 b", "nan"},
+	    {"j", "▸    now  Tern 18 c", NULL},
+	    {"jjk", "▸    now  Tern 18 c", NULL},
+	    {"kkkkkkkk", "▸    now  Tern 2 c", NULL},
 	    {"g", "window 1 of 11 by be-on time, 1 long shot hidden, a shows it", NULL},
 	    {"G", "window 11 of 11", "Tern 2 c  "},
-	    {"Gg", "▸ now   Tern 2 c", NULL},
+	    {"Gg", "▸    now  Tern 2 c", NULL},
 	    {">", "next night, night 23/24 Apr 2026", "next: "},
 	    {"<", "last night, night 21/22 Apr 2026", "next: "},
 	    {"<<<<", "4 nights ago, night 18/19 Apr 2026", NULL},
 	    {">>>>>>>>>", "in 9 nights, night 1/2 May 2026", NULL},
 	    {">>>>>>>>", "night 30 Apr/1 May 2026", NULL},
 	    {">>>.", "tonight, night 22/23 Apr 2026", NULL},
-	    {"d\0252026-12-31\r", "night 31 Dec 2026/1 Jan 2027", "Evening of"},
-	    {"d\0252026-02-30\r", "Evening of (YYYY-MM-DD): 2026-02-30", NULL},
-	    {"dxyz\033", "night 22/23 Apr 2026", "Evening of"},
-	    {"d\003", "q quit", "Evening of"},
+	    {"t\0252026-12-31\r", "night 31 Dec 2026/1 Jan 2027", "Evening of"},
+	    {"t\0252026-02-30\r", "Evening of (YYYY-MM-DD): 2026-02-30", NULL},
+	    {"txyz\033", "night 22/23 Apr 2026", "Evening of"},
+	    {"t\003", "q quit", "Evening of"},
 	    {"a", "1 long shot among them, a hides it", NULL},
 	    {"aa", "1 long shot hidden, a shows it", "among them"},
-	    {"aj", "▸ now   Tern 18 c", NULL},
-	    {"aja", "▸ now   Tern 18 c", NULL},
+	    {"aj", "▸    now  Tern 18 c", NULL},
+	    {"aja", "▸    now  Tern 18 c", NULL},
 	    {"l", "sun_limit_deg: -12 deg (built in)", "q quit"},
 	    {"ll", "q quit", "sun_limit_deg"},
 	    {"l\033", "q quit", NULL},
 	    {"?", "Keys (q, ? or Esc comes back)", "Tern 2 c  "},
-	    {"??", "▸ now   Tern 18 b", NULL},
-	    {"?q", "▸ now   Tern 18 b", NULL},
+	    {"??", "▸ 1○ next Tern 18 b", NULL},
+	    {"?q", "▸ 1○ next Tern 18 b", NULL},
 	    {"?l", "Limits of this run", "Keys ("},
 	    {"?G", "sun_near: ", "Keys ("},
 	    {"?Gg", "Keys (q", "sun_near: "},
@@ -93,37 +93,37 @@ static void test_keys_to_screens(void **state)
 	    {"\r\r", "q quit", NULL},
 	    {"\rq", "q quit", NULL},
 	    {"\ra", "a does nothing here; ? shows the keys.", NULL},
-	    {"x", "x does nothing here; ? shows the keys.", "q quit"},
-	    {"xj", "q quit", "does nothing"},
+	    {"z", "z does nothing here; ? shows the keys.", "q quit"},
+	    {"zj", "q quit", "does nothing"},
 	    {"[", "[ does nothing here", NULL},
 	    {"2", "2 does nothing here", NULL},
 	    /* find */
 	    {"/18\r", "2 of 2 with `18`; n next, N before", NULL},
-	    {"/18\r", "▸ now   Tern 18 c", NULL},
-	    {"/18\rn", "▸ now   Tern 18 b", NULL},
+	    {"/18\r", "▸    now  Tern 18 c", NULL},
+	    {"/18\rn", "▸ 1○ next Tern 18 b", NULL},
 	    {"/18\rN", "1 of 2 with `18`", NULL},
-	    {"/TERN14\r", "▸ next  Tern 14 b", NULL},
+	    {"/TERN14\r", "▸         Tern 14 b", NULL},
 	    {"/nobody\r", "No name in the list holds `nobody`.", NULL},
-	    {"/nobody\r", "▸ now   Tern 18 b", NULL},
+	    {"/nobody\r", "▸ 1○ next Tern 18 b", NULL},
 	    {"n", "Nothing was looked for yet; / asks for a name.", NULL},
-	    {"/18\rg/\r", "▸ now   Tern 18 b", NULL},
-	    {"/x\033", "▸ now   Tern 18 b", "Find:"},
+	    {"/18\rg/\r", "▸ 1○ next Tern 18 b", NULL},
+	    {"/x\033", "▸ 1○ next Tern 18 b", "Find:"},
 	    /* sort */
 	    {"s", "Sort the list by", "Tern 18 b b"},
 	    {"sn", "by name", NULL},
-	    {"sng", "▸ next  Tern 14 b", NULL},
+	    {"sng", "▸         Tern 14 b", NULL},
 	    {"snsn", "by name, turned", NULL},
 	    {"sjjj\r", "by name", NULL},
 	    {"s\033", "by be-on time", "Sort the list"},
 	    {"sd", "by chance of done", NULL},
 	    {"sn><", "by name", NULL},
-	    {"sn", "▸ now   Tern 18 b", NULL},
+	    {"sn", "▸ 1○ next Tern 18 b", NULL},
 	    /* filter */
 	    {"fdone > 50\r", "1/5 out of 11 where done > 50 by on, a: 1 more", NULL},
 	    {"fsigma < 1\r", "2/5 out of 11 where sigma < 1 by on", NULL},
 	    {"fdone > 50\r\033", "of 11 by be-on time", "where done"},
 	    {"fdone > 50\rf\025\r", "of 11 by be-on time", "where done"},
-	    {"ftern 18\r", "▸ now   Tern 18 b", "Tern 14 b  "},
+	    {"ftern 18\r", "▸ 1○ next Tern 18 b", "Tern 14 b  "},
 	    {"fnobody\r", "No window of this night fits the filter; Esc takes it away.", NULL},
 	    {"fnobody\rj\r?", "Keys (q", NULL},
 	    {"fdone >\r", "nothing stands behind `done >`", NULL},
@@ -150,7 +150,7 @@ static void test_wants(void **state)
 	struct page_driver d;
 	(void)state;
 	driver_open(&d, true, 24, 80, TIER_UNICODE);
-	driver_keys(&d, "R\014\032d\014\032\033");
+	driver_keys(&d, "R\014\032t\014\032\033");
 	assert_int_equal(d.reds, 1);
 	assert_int_equal(d.repaints, 2);
 	assert_int_equal(d.suspends, 2);
@@ -171,7 +171,7 @@ static void test_paste(void **state)
 	driver_key(&d, PRESS_PASTE_END);
 	assert_false(d.quit);
 	driver_expect(&d, "Pasted text was left out");
-	driver_keys(&d, "d\025");
+	driver_keys(&d, "t\025");
 	driver_key(&d, PRESS_PASTE_BEGIN);
 	driver_keys(&d, "2026-05-01\r");
 	driver_key(&d, PRESS_PASTE_END);
@@ -191,7 +191,7 @@ static void test_cursor(void **state)
 	assert_int_equal(at->cp, 0x25B8);
 	assert_true(at->selected);
 	assert_false(d.grid.cursor_shown);
-	driver_key(&d, 'd');
+	driver_key(&d, 't');
 	assert_true(d.grid.cursor_shown);
 	assert_int_equal(d.grid.cursor_row, 23);
 	assert_int_equal(d.grid.cursor_col, 36); /* behind `Evening of (YYYY-MM-DD): 2026-04-22` */
@@ -202,7 +202,7 @@ static void test_cursor(void **state)
  * is on the screen. */
 static void test_every_size(void **state)
 {
-	static const char *const typed[] = {"", "G", "?", "l", "\r", "d", "s", "/", "f", "fx >\r"};
+	static const char *const typed[] = {"", "G", "?", "l", "\r", "t", "s", "/", "f", "fx >\r"};
 	struct page_driver d;
 	(void)state;
 	driver_open(&d, true, 24, 80, TIER_UNICODE);
@@ -276,7 +276,7 @@ static void test_clock_change(void **state)
 	struct page_driver d;
 	(void)state;
 	driver_open(&d, true, 24, 80, TIER_UNICODE);
-	driver_keys(&d, "d\0252026-10-31\r");
+	driver_keys(&d, "t\0252026-10-31\r");
 	driver_expect(&d, "Times with * are MST, the others MDT: the clocks change at 08:00 UTC.");
 	driver_expect(&d, "dusk 19:17  dawn 05:45* local  11.5 h below -12 deg");
 	driver_keys(&d, "<");
@@ -331,7 +331,7 @@ static void test_marked_times(void **state)
 			count_marks(&d, &d.page->rows.row[i], nights[night].change_h, &before, &behind);
 	}
 	assert_true(before > 4 && behind > 4);
-	driver_keys(&d, "d2026-10-31\r");
+	driver_keys(&d, "t2026-10-31\r");
 	driver_keys(&d, "G");
 	driver_expect(&d, "*");
 	driver_expect(&d, "02* ");
@@ -349,14 +349,14 @@ static void test_offered_date(void **state)
 	static const struct {
 		const char *keys, *shown;
 	} rows[] = {
-	    {"d", "Evening of (YYYY-MM-DD): 2026-04-22 "},
-	    {"d2", "Evening of (YYYY-MM-DD): 2 "},
-	    {"d2026-03-08", "Evening of (YYYY-MM-DD): 2026-03-08 "},
-	    {"d2026-03-08\r", "night 8/9 Mar 2026"},
-	    {"d\1773", "Evening of (YYYY-MM-DD): 2026-04-23 "},
-	    {"d\0059", "Evening of (YYYY-MM-DD): 2026-04-229 "},
-	    {"d\r", "tonight, night 22/23 Apr 2026"},
-	    {"d\033", "tonight, night 22/23 Apr 2026"},
+	    {"t", "Evening of (YYYY-MM-DD): 2026-04-22 "},
+	    {"t2", "Evening of (YYYY-MM-DD): 2 "},
+	    {"t2026-03-08", "Evening of (YYYY-MM-DD): 2026-03-08 "},
+	    {"t2026-03-08\r", "night 8/9 Mar 2026"},
+	    {"t\1773", "Evening of (YYYY-MM-DD): 2026-04-23 "},
+	    {"t\0059", "Evening of (YYYY-MM-DD): 2026-04-229 "},
+	    {"t\r", "tonight, night 22/23 Apr 2026"},
+	    {"t\033", "tonight, night 22/23 Apr 2026"},
 	    {"fdone > 50\rf | on < 22:00\r", "where done > 50 | on < 22:00"},
 	};
 	(void)state;
@@ -369,7 +369,7 @@ static void test_offered_date(void **state)
 	}
 	struct page_driver d;
 	driver_open(&d, true, 24, 80, TIER_UNICODE);
-	driver_key(&d, 'd');
+	driver_key(&d, 't');
 	driver_key(&d, PRESS_PASTE_BEGIN);
 	driver_keys(&d, "2026-05-01");
 	driver_key(&d, PRESS_PASTE_END);
@@ -384,7 +384,7 @@ static void test_without_zone(void **state)
 	driver_open(&d, false, 24, 80, TIER_UNICODE);
 	driver_expect(&d, "Thu 04:14:05 UTC (zone of the site unknown)");
 	driver_expect(&d, "Sunset 02:01  dusk 03:03  dawn 11:28  sunrise 12:30 UTC");
-	driver_expect(&d, "▸ now   Tern 18 b     03:48 04:18 05:12 05:42");
+	driver_expect(&d, "▸ 1○ next Tern 18 b  03:48 04:18 05:12 05:42");
 	driver_close(&d);
 }
 
@@ -402,7 +402,7 @@ static void test_first_run(void **state)
 	driver_expect(&d, "wane import targets.csv");
 	driver_expect(&d, "wane demo");
 	driver_expect(&d, "Sun: never point a telescope near the Sun.");
-	driver_keys(&d, "j>.da\r?");
+	driver_keys(&d, "j>.ta\r?");
 	driver_expect(&d, "Keys (q");
 	driver_keys(&d, "q");
 	driver_expect(&d, "wane demo");
@@ -484,13 +484,13 @@ static void test_drop_and_load(void **state)
 	(void)state;
 	driver_open(&d, true, 24, 80, TIER_UNICODE);
 	driver_keys(&d, "fdone > 50\rjj");
-	driver_expect(&d, "▸ now   Tern 33 b");
+	driver_expect(&d, "▸    now  Tern 33 b");
 	night_page_drop(d.page);
 	driver_draw(&d);
-	driver_keys(&d, "jGx?q\rR");
+	driver_keys(&d, "jGz?q\rR");
 	driver_load(&d, d.page->wanted_mjd);
 	driver_draw(&d);
-	driver_expect(&d, "▸ now   Tern 33 b");
+	driver_expect(&d, "▸    now  Tern 33 b");
 	driver_expect(&d, "3/5 out of 11 where done > 50");
 	/* nothing left */
 	night_page_drop(d.page);
@@ -502,7 +502,7 @@ static void test_drop_and_load(void **state)
 	d.fixture->run.targets.n = n;
 	driver_load(&d, d.page->wanted_mjd);
 	driver_draw(&d);
-	driver_expect(&d, "▸ now   Tern 33 b");
+	driver_expect(&d, "▸    now  Tern 33 b");
 	driver_close(&d);
 }
 
@@ -543,25 +543,27 @@ static void test_hostile_names(void **state)
 	}
 }
 
-/* What comes next counts down, and rows go from next to now to past. */
+/* Without a plan: what comes next counts down, and rows go from next to now to past. */
 static void test_clock(void **state)
 {
 	static const struct {
 		double after_min;
 		const char *shown, *row;
 	} rows[] = {
-	    {0.0, "next: Tern 14 b, be on in 1 h 05 min", "  next  Tern 14 b"},
-	    {64.0, "next: Tern 14 b, be on in 1 min", "  next  Tern 14 b"},
+	    {0.0, "next: Tern 14 b, be on in 1 h 05 min", "     next Tern 14 b"},
+	    {64.0, "next: Tern 14 b, be on in 1 min", "     next Tern 14 b"},
 	    {66.0, "now: Tern 18 b, leave in 22 min (+5); next: Tern 5 b, be on in 1 h 14 min",
-	     "  now   Tern 14 b"},
-	    {283.0, "Tern 14 b", "  past  Tern 14 b"},
-	    {600.0, "nothing more comes up tonight", "  past  Tern 5 b"},
+	     "     now  Tern 14 b"},
+	    {283.0, "Tern 14 b", "     past Tern 14 b"},
+	    {600.0, "nothing more comes up tonight", "     past Tern 5 b"},
 	    {-150.0, "dusk in 1 h 18 min; next: ", "        Tern 14 b"},
 	};
 	(void)state;
 	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
 		struct page_driver d;
 		driver_open(&d, true, 24, 80, TIER_UNICODE);
+		page_plan_drop(&d.page->plan);
+		night_page_show_plan(d.page);
 		struct wall_clock *wall = &d.fixture->run.wall;
 		wall->start = utc_add_s(wall->leap, wall->start, 60.0 * rows[i].after_min);
 		driver_draw(&d);

@@ -3,6 +3,8 @@
 
 #include "tests/support/check.h"
 
+#include <math.h>
+#include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
 
@@ -41,12 +43,57 @@ void driver_open(struct page_driver *d, bool zoneinfo, int rows, int cols, enum 
 	driver_size(d, rows, cols);
 }
 
+void driver_open_on(struct page_driver *d, struct store *store, const char *now, int rows, int cols,
+		    enum tier tier)
+{
+	struct err e;
+	int code;
+	*d = (struct page_driver){
+	    .fixture = calloc(1, sizeof *d->fixture), .page = malloc(sizeof *d->page), .on_store = true};
+	if (!d->fixture || !d->page)
+		check_fail("no memory");
+	struct run *r = &d->fixture->run;
+	d->fixture->options.min_chance = d->fixture->options.ut1_utc_s = (double)NAN;
+	d->fixture->options.now = now;
+	snprintf(d->fixture->env.zoneinfo_dir, sizeof d->fixture->env.zoneinfo_dir, "/usr/share/zoneinfo");
+	snprintf(d->fixture->env.user, sizeof d->fixture->env.user, "tester");
+	if (run_open_on(r, store, &d->fixture->env, &d->fixture->options,
+			NEED_STORE | NEED_SITE | NEED_TARGETS, &code, &e) != ST_OK)
+		check_fail("%s", e.text);
+	d->grid.tier = tier;
+	night_page_open(d->page, r);
+	night_page_tick(d->page, wall_now(&r->wall));
+	driver_load(d, run_tonight(r));
+	driver_size(d, rows, cols);
+}
+
+void driver_wait(struct page_driver *d, double seconds)
+{
+	struct wall_clock *wall = &d->fixture->run.wall;
+	wall->start = utc_add_s(wall->leap, wall->start, seconds);
+	driver_draw(d);
+}
+
 void driver_close(struct page_driver *d)
 {
 	night_page_close(d->page);
 	free(d->page);
 	grid_close(&d->grid);
-	fixture_close(d->fixture);
+	if (d->on_store) {
+		run_close(&d->fixture->run);
+		free(d->fixture);
+	} else
+		fixture_close(d->fixture);
+}
+
+/* As the loop does when something was stored. */
+static void read_again(struct page_driver *d)
+{
+	struct err e;
+	night_page_drop(d->page);
+	if (run_reload(&d->fixture->run, &e) != ST_OK)
+		check_fail("%s", e.text);
+	driver_load(d, d->page->wanted_mjd);
 }
 
 void driver_key(struct page_driver *d, uint32_t code)
@@ -68,8 +115,11 @@ void driver_key(struct page_driver *d, uint32_t code)
 		d->reds++;
 		break;
 	case WANT_NIGHT_PAGE:
-	case WANT_DRIFT_PAGE:
-	case WANT_CHANGE: /* the loop's affair */
+	case WANT_CHANGE:
+		if (night_page_change(d->page, &d->fixture->run))
+			read_again(d);
+		break;
+	case WANT_DRIFT_PAGE: /* the loop's affair */
 	case WANT_NOTHING:
 		break;
 	}

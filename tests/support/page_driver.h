@@ -10,11 +10,16 @@ struct page_driver {
 	struct night_fixture *fixture;
 	struct night_page *page;
 	struct grid grid;
-	bool quit;
+	bool quit, on_store;
 	int repaints, suspends, reds; /* how often each was wanted */
 };
 /* Opens the fixture's run on its night. */
 void driver_open(struct page_driver *d, bool zoneinfo, int rows, int cols, enum tier tier);
+/* Opens a run on a store, which becomes its own, at an instant: the clock stands still. */
+void driver_open_on(struct page_driver *d, struct store *store, const char *now, int rows, int cols,
+		    enum tier tier);
+/* Moves the clock on and draws. */
+void driver_wait(struct page_driver *d, double seconds);
 void driver_close(struct page_driver *d);
 void driver_load(struct page_driver *d, int32_t evening_mjd);
 void driver_size(struct page_driver *d, int rows, int cols);

@@ -278,6 +278,37 @@ static void lost_time(void **state)
 	plan_run_close(p);
 }
 
+/* The ingress of Tern 14 b was planned alone, from 23:12 MDT with T1 at 23:42. Lost time until 23:50 takes
+ * it; its egress two hours later is offered again, and the mark of the ingress does not stand for it. */
+static void egress_still_ahead(void **state)
+{
+	(void)state;
+	struct plan_run *p = plan_run_open(AFTERNOON);
+	struct plan_case c;
+	struct err e = {0};
+	const struct plan_wish lost = {.lost = LIST("22:40..23:50"),
+				       .n_lost = 1,
+				       .pin = LIST("Tern 14 b"),
+				       .n_pin = 1,
+				       .moved_min = NAN};
+	keep_one(p);
+	plan_run_now(p, "2026-04-23T05:20:00Z");
+	plan_case_open(&c, p, &nothing, ST_OK);
+	assert_string_equal(plan_case_item(&c, "Tern 14 b")->member[0].variant, "ingress");
+	must(plan_mark_item(&p->run, &c.view, "Tern 14 b", PLAN_STARTED, NULL, NULL, &e), &e);
+	plan_case_close(&c);
+	plan_run_now(p, "2026-04-23T05:50:00Z");
+	plan_case_open(&c, p, &lost, ST_OK);
+	assert_string_equal(plan_case_item(&c, "Tern 14 b")->member[0].variant, "egress");
+	assert_int_equal(plan_case_item(&c, "Tern 14 b")->state, PLAN_PINNED);
+	save(p, &c, NULL, true);
+	plan_case_close(&c);
+	plan_case_open(&c, p, &nothing, ST_OK);
+	assert_int_equal(plan_case_item(&c, "Tern 14 b")->state, PLAN_PINNED);
+	plan_case_close(&c);
+	plan_run_close(p);
+}
+
 /* Two who worked from the same edition: the second to store is told. */
 static void stored_meanwhile(void **state)
 {
@@ -415,6 +446,7 @@ int main(void)
 	    cmocka_unit_test(moved_by_another_ephemeris),
 	    cmocka_unit_test(rest_of_the_night),
 	    cmocka_unit_test(lost_time),
+	    cmocka_unit_test(egress_still_ahead),
 	    cmocka_unit_test(stored_meanwhile),
 	    cmocka_unit_test(undone),
 	    cmocka_unit_test(refused),

@@ -2,6 +2,7 @@
 #include "tui/commands/table.h"
 
 #include "db/import.h"
+#include "db/telescopes.h"
 #include "tui/demo_data.h"
 #include "tui/diagnose.h"
 #include "tui/given.h"
@@ -25,6 +26,25 @@ static void say_row(void *ctx, const struct import_message *m)
 	*refused += !m->warning;
 }
 
+/* Its telescope; times at the Sun's altitude, as standing blocks of every night. */
+static enum status put_demo_telescope(struct store *s, struct err *e)
+{
+	struct site_list sites = {.n = 0};
+	struct telescope t = telescope_empty();
+	t.name = "East dome";
+	t.aperture_m = 0.5;
+	t.slew_deg_s = 2.0;
+	t.settle_min = 4.0;
+	t.blocks = "sunset..evening-9=evening flats and focus;morning-9..sunrise=morning flats and closing";
+	enum status st = sites_load(s, &sites, e);
+	if (st != ST_OK)
+		return st;
+	t.site_id = sites.site[0].id;
+	st = telescope_put(s, &t, true, e);
+	site_list_free(&sites);
+	return st;
+}
+
 static enum status fill_demo(struct store *s, struct err *e)
 {
 	const struct change change = {.utc = DEMO_CHANGE_UTC, .who = "demo", .verb = "demo"};
@@ -35,6 +55,8 @@ static enum status fill_demo(struct store *s, struct err *e)
 	if (st != ST_OK)
 		return st;
 	st = site_put(s, &demo_site, true, e);
+	if (st == ST_OK)
+		st = put_demo_telescope(s, e);
 	if (st == ST_OK)
 		st = store_commit(s, e);
 	if (st != ST_OK) {

@@ -31,18 +31,11 @@ struct plan_wish plan_wish_of(const struct options *o)
 	    .n_unlost = o->unlost.n,
 	    .poor = o->poor.text,
 	    .n_poor = o->poor.n,
+	    .rebuild = o->rebuild,
 	    .afresh = o->afresh,
 	    .from = o->plan_from,
 	    .moved_min = o->moved_min,
 	};
-}
-
-static bool wishes(const struct options *o)
-{
-	return o->pin.n + o->drop.n + o->free_event.n + o->block.n + o->unblock.n + o->lost.n + o->unlost.n +
-		       o->poor.n >
-		   0 ||
-	       o->afresh || o->plan_from;
 }
 
 int plan_fault(const struct err *e)
@@ -56,14 +49,16 @@ int plan_fault(const struct err *e)
 /* What is at fault, or NULL. */
 static const char *at_odds(const struct options *o)
 {
+	const struct plan_wish wish = plan_wish_of(o);
+	const bool wishes = wish_any(&wish);
 	const int whole = o->list + (o->compare != NULL) + (o->remove_draft != NULL);
 	if (whole > 1)
 		return "--list, --compare and --remove are three things";
-	if (whole == 1 && (wishes(o) || o->keep || o->save || o->mark.n > 0))
+	if (whole == 1 && (wishes || o->keep || o->save || o->mark.n > 0))
 		return "--list, --compare and --remove go with no change of a plan";
 	if ((o->cause || o->note) && o->mark.n == 0)
 		return "--cause and --note belong to --mark";
-	if (o->mark.n > 0 && (wishes(o) || o->keep || o->save))
+	if (o->mark.n > 0 && (wishes || o->keep || o->save))
 		return "--mark is stored at once: plan anew in a call of its own";
 	return NULL;
 }

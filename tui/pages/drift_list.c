@@ -48,13 +48,13 @@ static void refresh_text(const struct refresh *f, enum drift_plan plan, const st
 			 char *out, size_t n)
 {
 	struct date d = date_from_mjd(f->evening_mjd);
-	if (plan == PLAN_DONE && f->found)
+	if (plan == SEARCH_DONE && f->found)
 		snprintf(out, n, "%04d-%02d-%02d", d.year, d.month, d.day);
 	else
 		snprintf(out, n, "%s",
-			 plan == PLAN_DONE		    ? "none"
-			 : plan == PLAN_WANTED		    ? "searching"
-			 : plan == PLAN_IF_SELECTED	    ? "not needed"
+			 plan == SEARCH_DONE		    ? "none"
+			 : plan == SEARCH_WANTED	    ? "searching"
+			 : plan == SEARCH_IF_SELECTED	    ? "not needed"
 			 : row->search == REFRESH_NO_CHANCE ? "no chance"
 							    : "-");
 }
@@ -63,9 +63,9 @@ enum drift_plan drift_plan_of(const struct drift_row *row, const struct drift_ta
 {
 	if (!wanted || t->n_sites == 0 || !row->counted || isnan(row->sigma_now_min) ||
 	    row->lost.when == WHEN_ALREADY)
-		return PLAN_NONE;
-	return row->sigma_at_min > row->limit_min || row->stale.when == WHEN_ALREADY ? PLAN_WANTED
-										     : PLAN_IF_SELECTED;
+		return SEARCH_NONE;
+	return row->sigma_at_min > row->limit_min || row->stale.when == WHEN_ALREADY ? SEARCH_WANTED
+										     : SEARCH_IF_SELECTED;
 }
 
 static void copy_figure(const struct drift_line *line, enum drift_cell cell, const struct drift_table *t,
@@ -96,7 +96,7 @@ void drift_line_make(struct drift_line *line, const struct drift_table *t, size_
 	drift_date_text(&r->lost, line->text[DRIFT_LOST], DRIFT_CELL_BYTES);
 	refresh_text(&r->first, plan, r, line->text[DRIFT_FIRST], DRIFT_CELL_BYTES);
 	refresh_text(&r->best, plan, r, line->text[DRIFT_BEST], DRIFT_CELL_BYTES);
-	if (plan == PLAN_DONE && r->best.found)
+	if (plan == SEARCH_DONE && r->best.found)
 		drift_minutes_text(r->best.sigma_after_min, line->text[DRIFT_AFTER], DRIFT_CELL_BYTES);
 	copy_figure(line, DRIFT_COUNTED, t, leap, line->text[DRIFT_COUNTED]);
 	copy_figure(line, DRIFT_LAST, t, leap, line->text[DRIFT_LAST]);

@@ -34,10 +34,10 @@ extern const struct drift_cell_column drift_cells[DRIFT_CELLS];
 
 /* How far the search for a refresh is. */
 enum drift_plan {
-	PLAN_NONE,	  /* no search: not asked for, no site, or no chance can be given */
-	PLAN_IF_SELECTED, /* it stays below the limit */
-	PLAN_WANTED,
-	PLAN_DONE
+	SEARCH_NONE,	    /* no search: not asked for, no site, or no chance can be given */
+	SEARCH_IF_SELECTED, /* it stays below the limit */
+	SEARCH_WANTED,
+	SEARCH_DONE
 };
 
 enum { DRIFT_CELL_BYTES = 24, DRIFT_WORDS_BYTES = 200 };

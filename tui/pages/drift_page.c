@@ -218,9 +218,9 @@ enum status drift_page_take(struct drift_page *p, struct drift_table *table, str
 	for (size_t i = 0; i < p->table.n; i++) {
 		struct drift_row *row = &p->table.row[i];
 		p->plan[i] = (uint8_t)(row->search == REFRESH_SEARCHED
-					   ? PLAN_DONE
+					   ? SEARCH_DONE
 					   : drift_plan_of(row, &p->table, p->wants_refresh));
-		if (p->plan[i] == PLAN_NONE && p->wants_refresh && p->table.n_sites > 0)
+		if (p->plan[i] == SEARCH_NONE && p->wants_refresh && p->table.n_sites > 0)
 			row->search = REFRESH_NO_CHANCE;
 	}
 	p->loaded = true;
@@ -303,10 +303,10 @@ static size_t next_waiting(const struct drift_page *p)
 	if (!p->loaded || p->n == 0)
 		return SIZE_MAX;
 	size_t row = p->order[p->selected];
-	if (p->plan[row] == PLAN_WANTED || p->plan[row] == PLAN_IF_SELECTED)
+	if (p->plan[row] == SEARCH_WANTED || p->plan[row] == SEARCH_IF_SELECTED)
 		return row;
 	for (size_t i = p->top; i < p->n && i < p->top + (size_t)p->list; i++)
-		if (p->plan[p->order[i]] == PLAN_WANTED)
+		if (p->plan[p->order[i]] == SEARCH_WANTED)
 			return p->order[i];
 	return SIZE_MAX;
 }
@@ -350,10 +350,10 @@ void drift_page_work(struct drift_page *p, struct run *run)
 		one.n = 1;
 		one.row->search = REFRESH_SEARCHED;
 		s = drift_search(&one, run, &e);
-		p->plan[at] = PLAN_DONE;
+		p->plan[at] = SEARCH_DONE;
 	}
 	if (s != ST_OK) {
-		p->plan[at] = PLAN_NONE;
+		p->plan[at] = SEARCH_NONE;
 		drift_page_say(p, ROLE_BAD, e.text);
 	}
 	drift_page_settle(p);
@@ -429,4 +429,5 @@ const struct page page_drift = {.word = "drift",
 				.draw = draw,
 				.change = change,
 				.work_waits = work_waits,
-				.work = work};
+				.work = work,
+				.quiet_s = 0.06};

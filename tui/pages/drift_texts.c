@@ -41,8 +41,8 @@ static void sum_up(const struct drift_page *p, struct sums *s)
 		s->unknown += isnan(row->sigma_now_min);
 	}
 	for (size_t i = p->top; i < p->n && i < p->top + (size_t)p->list; i++)
-		s->waiting += p->plan[p->order[i]] == PLAN_WANTED ||
-			      (i == p->selected && p->plan[p->order[i]] == PLAN_IF_SELECTED);
+		s->waiting += p->plan[p->order[i]] == SEARCH_WANTED ||
+			      (i == p->selected && p->plan[p->order[i]] == SEARCH_IF_SELECTED);
 }
 
 void drift_head_texts(struct drift_page *p)
@@ -132,10 +132,10 @@ void drift_detail_lines(struct drift_page *p)
 	if (row->counted) {
 		sigma_line(p, row);
 		enum drift_plan plan = (enum drift_plan)p->plan[row - p->table.row];
-		if (plan == PLAN_DONE) {
+		if (plan == SEARCH_DONE) {
 			refresh_line(p, "Best ", &row->best, row);
 			refresh_line(p, "First", &row->first, row);
-		} else if (plan != PLAN_NONE) {
+		} else if (plan != SEARCH_NONE) {
 			text_view_add(&p->details, ROLE_FAINT, INDENT, "Best   being searched");
 		} else if (p->wants_refresh && p->table.n_sites > 0) {
 			text_view_add(&p->details, ROLE_WARN, INDENT, "Best   no chance can be given");

@@ -249,12 +249,26 @@ static void source_line(struct text_view *v, const struct night_row *row)
 		       scale);
 }
 
+/* Where room is short, its first line. */
+static void plan_line_of(struct text_view *v, bool roomy, const char *plan)
+{
+	const int before = v->n;
+	if (*plan)
+		text_view_addf(v, ROLE_STRONG, INDENT, "Plan   %s", plan);
+	if (!roomy && v->n > before + 1)
+		v->n = before + 1;
+}
+
 void detail_lines(struct text_view *v, int width, bool roomy, const struct run *r,
-		  const struct night_view *view, const struct night_head *head, const struct night_row *row)
+		  const struct night_view *view, const struct night_head *head, const struct night_row *row,
+		  const char *plan)
 {
 	text_view_start(v, width);
 	be_there_line(v, r, &view->night, head, row);
-	lost_line(v, row);
+	plan_line_of(v, roomy, plan);
+	/* where room is short the plan goes before what is no news */
+	if (roomy || !*plan || strcmp(row->lost_long, "nothing") != 0)
+		lost_line(v, row);
 	flip_line(v, r, &view->night, head, row);
 	contact_table(v, r, &view->night, head, row);
 	if (roomy)

@@ -7,9 +7,11 @@
 #include "tui/parts/text_view.h"
 
 /* Contacts in three clocks, altitudes, chances, times to be there, losses, doubts, source; the most needed
- * first. roomy: more than the first six lines will be seen at once. */
+ * first. roomy: more than the first six lines will be seen at once. plan: what it says of the window,
+ * "" nothing. */
 void detail_lines(struct text_view *v, int width, bool roomy, const struct run *r,
-		  const struct night_view *view, const struct night_head *head, const struct night_row *row);
+		  const struct night_view *view, const struct night_head *head, const struct night_row *row,
+		  const char *plan);
 /* Keys, figures, picture of the cover, doubts, cautions. */
 void help_lines(struct text_view *v, int width, enum tier tier);
 /* The limits of the run, each with its value and sentence. */

@@ -49,6 +49,24 @@ static enum role row_role(const struct night_row *row)
 	return row->state == STATE_AHEAD ? ROLE_TEXT : ROLE_STRONG;
 }
 
+/* What stands of a row's item. */
+static enum glyph plan_glyph(const struct row_plan *plan)
+{
+	static const enum glyph glyphs[PLAN_STATE_COUNT] = {
+	    [PLAN_PLANNED] = GLYPH_PLANNED, [PLAN_PINNED] = GLYPH_PINNED, [PLAN_STARTED] = GLYPH_STARTED,
+	    [PLAN_DONE] = GLYPH_DONE,	    [PLAN_PARTLY] = GLYPH_PARTLY, [PLAN_LOST] = GLYPH_MISSED};
+	return plan->order > 0 ? glyphs[plan->state] : plan->dropped ? GLYPH_DROPPED : GLYPH_BLANK;
+}
+
+/* `2o now`: number, sign, where it stands against the clock. */
+static void draw_state(struct grid *g, int line, int col, const struct night_row *row, enum role role)
+{
+	const int digits = 2, word_at = 3, word = 4;
+	int number = grid_put(g, line, col, digits, row->number, ROLE_STRONG);
+	grid_glyph(g, line, col + number, plan_glyph(&row->plan), row->plan.moved ? ROLE_WARN : ROLE_STRONG);
+	grid_put(g, line, col + word_at, word, row->text[ROW_STATE], role);
+}
+
 static void draw_row(const struct night_page *p, struct grid *g, int line, size_t at)
 {
 	const struct night_layout *l = &p->layout;
@@ -60,6 +78,9 @@ static void draw_row(const struct night_page *p, struct grid *g, int line, size_
 		if (l->width[c] == 0)
 			continue;
 		switch (c) {
+		case ROW_STATE:
+			draw_state(g, line, l->at[c], row, role);
+			break;
 		case ROW_NAME:
 			put_cell(g, line, l, ROW_NAME, row->name, role);
 			break;
@@ -90,7 +111,7 @@ static void draw_row(const struct night_page *p, struct grid *g, int line, size_
 	}
 }
 
-/* One row on a narrow screen: state, times, chance, name. */
+/* One row on a narrow screen: state, number in the plan, times, chance, name. */
 static void draw_short_row(struct grid *g, int line, const struct night_row *row)
 {
 	static const char *const letters[] = {
@@ -98,10 +119,14 @@ static void draw_short_row(struct grid *g, int line, const struct night_row *row
 	enum role role = row_role(row);
 	char times[40];
 	snprintf(times, sizeof times, "%-5s %s-%s", row->text[ROW_ON], row->text[ROW_T1], row->text[ROW_T4]);
-	grid_put(g, line, 1, 1, letters[row->state], role);
-	int col = 3 + grid_put(g, line, 3, 19, times, role);
-	grid_put_right(g, line, col + 1, 4, row->text[ROW_DONE], row->chance_role);
-	grid_put(g, line, col + 6, g->cols - col - 6, row->name, role);
+	if (row->plan.dropped || (row->plan.order > 0 && row->plan.state != PLAN_PLANNED))
+		grid_glyph(g, line, 1, plan_glyph(&row->plan), role);
+	else
+		grid_put(g, line, 1, 1, letters[row->state], role);
+	grid_put(g, line, 2, 1, row->plan.order > 9 ? "+" : row->number, ROLE_STRONG);
+	int col = 4 + grid_put(g, line, 4, 19, times, role);
+	grid_put_right(g, line, col + 1, 3, row->text[ROW_DONE], row->chance_role);
+	grid_put(g, line, col + 5, g->cols - col - 5, row->name, role);
 }
 
 static void draw_list(const struct night_page *p, struct grid *g, int line)
@@ -160,10 +185,19 @@ static void draw_full_head(const struct night_page *p, struct grid *g)
 	grid_put(g, 0, g->cols - 1 - width, width, night, ROLE_STRONG);
 	grid_put(g, 1, 1, room, fitting(room, h->clocks, h->clocks_short, h->clock), ROLE_TEXT);
 	grid_put(g, 2, 1, room, fitting(room, h->sun, h->sun_short, h->sun_short), ROLE_TEXT);
-	draw_pair(g, 3, moon, ROLE_TEXT, h->limits, ROLE_FAINT);
+	const int beside = room - text_columns(moon) - 2;
+	if (p->shape.plan_row || !p->plan.line[0])
+		draw_pair(g, 3, moon, ROLE_TEXT, h->limits, ROLE_FAINT);
+	else
+		draw_pair(g, 3, moon, ROLE_TEXT,
+			  fitting(beside, p->plan.line, p->plan.line_short, p->plan.line_least),
+			  p->plan.line_role);
 	grid_put(g, 4, 1, room, fitting(room, h->next, h->next_less, h->next_short), ROLE_KEY);
+	if (p->shape.plan_row)
+		grid_put(g, 5, 1, room, fitting(room, p->plan.line, p->plan.line_short, p->plan.line_least),
+			 p->plan.line_role);
 	if (h->remark[0])
-		grid_put(g, 5, 1, room, h->remark, ROLE_WARN);
+		grid_put(g, 5 + p->shape.plan_row, 1, room, h->remark, ROLE_WARN);
 }
 
 static void draw_short_head(const struct night_page *p, struct grid *g)
@@ -181,10 +215,14 @@ static void draw_short_head(const struct night_page *p, struct grid *g)
 /* The question of a mode, else NULL. */
 static const char *question(enum night_mode mode)
 {
-	return mode == MODE_DATE     ? "Evening of (YYYY-MM-DD): "
-	       : mode == MODE_FIND   ? "Find: "
-	       : mode == MODE_FILTER ? "Show where: "
-				     : NULL;
+	return mode == MODE_DATE	? "Evening of (YYYY-MM-DD): "
+	       : mode == MODE_FIND	? "Find: "
+	       : mode == MODE_FILTER	? "Show where: "
+	       : mode == MODE_CAUSE	? "Cause (cloud, fault, may be empty): "
+	       : mode == MODE_NOTE	? "Note (may be empty): "
+	       : mode == MODE_LOST_TIME ? "Lost time FROM..TO (22:40..23:30): "
+	       : mode == MODE_SAVE_AS	? "Store as draft: "
+					: NULL;
 }
 
 static void draw_question(const struct night_page *p, struct grid *g, const char *label)
@@ -208,6 +246,12 @@ static void draw_footer(const struct night_page *p, struct grid *g)
 		for (int col = 0; p->message[0] && col < g->cols; col++)
 			grid_glyph(g, row - 1, col, GLYPH_BLANK, ROLE_TEXT);
 		draw_question(p, g, question(p->mode));
+		return;
+	}
+	if (p->mode == MODE_LEAVE) {
+		grid_put(g, row, 1, g->cols - 2,
+			 "A plan has changes that are not kept. Leave without them? y leaves, n stays",
+			 ROLE_WARN);
 		return;
 	}
 	if (p->message[0]) {
@@ -289,7 +333,7 @@ static void draw_choice(const struct night_page *p, struct grid *g)
 
 static void draw_text(const struct night_page *p, struct grid *g)
 {
-	bool choice = p->mode == MODE_SORT || p->mode == MODE_SITES;
+	bool choice = night_mode_is_choice(p->mode), plan = p->mode == MODE_PLAN || p->mode == MODE_COMPARE;
 	if (p->mode == MODE_DETAILS && p->rows.n > 0) {
 		draw_details(p, g);
 	} else {
@@ -306,6 +350,7 @@ static void draw_text(const struct night_page *p, struct grid *g)
 		 p->message[0]		     ? p->message
 		 : p->mode == MODE_FIRST_RUN ? "q quit  ? help  l limits"
 		 : choice		     ? "Enter takes it  j k move  Esc leaves"
+		 : plan			     ? "q back  j k PgDn PgUp scroll  K keep"
 					     : "q back  j k PgDn PgUp scroll",
 		 p->message[0] ? p->message_role : ROLE_KEY);
 }
@@ -318,7 +363,7 @@ void night_page_draw(const struct night_page *p, struct grid *g)
 		grid_put(g, 1, 0, g->cols, "larger, or q quits", ROLE_TEXT);
 		return;
 	}
-	if (p->mode != MODE_LIST && !question(p->mode))
+	if (p->mode != MODE_LIST && p->mode != MODE_LEAVE && !question(p->mode))
 		draw_text(p, g);
 	else if (p->loaded)
 		draw_night(p, g);

@@ -21,8 +21,8 @@ static const struct {
     {"alt", "alt_mid_deg", 1},	    {"airm", "airmass_mid", 1},
     {"moon", "moon_sep_deg", 1},    {"depth", "depth_ppt", 1},
 };
-enum { WORD_NAME, WORD_TAGS, WORD_LOST, WORD_DOUBTS, WORD_STATE, WORD_KIND, WORD_COUNT };
-static const char *const text_words[WORD_COUNT] = {"name", "tags", "lost", "doubts", "state", "kind"};
+enum { WORD_NAME, WORD_TAGS, WORD_LOST, WORD_DOUBTS, WORD_STATE, WORD_KIND, WORD_PLAN, WORD_COUNT };
+static const char *const text_words[WORD_COUNT] = {"name", "tags", "lost", "doubts", "state", "kind", "plan"};
 static char folded(char c)
 {
 	return c >= 'A' && c <= 'Z' ? (char)(c - 'A' + 'a') : c;
@@ -110,8 +110,8 @@ static bool find_word(struct piece word, struct filter_term *t)
 			t->at = i;
 			return true;
 		}
-	if (strcmp(small, "mag") == 0) {
-		t->kind = TERM_MAG;
+	if (strcmp(small, "mag") == 0 || strcmp(small, "worth") == 0) {
+		t->kind = small[0] == 'm' ? TERM_MAG : TERM_WORTH;
 		return true;
 	}
 	for (size_t i = 0; i < sizeof figures / sizeof figures[0]; i++)
@@ -171,6 +171,8 @@ static enum status read_term(struct piece term, struct filter_term *t, struct er
 		t->kind = TERM_ANY_TEXT;
 		t->op = negated ? OP_IS_NOT : OP_IS;
 		fold(term.s + negated, term.n - negated, t->text, sizeof t->text);
+		if (strcmp(t->text, "planned") == 0)
+			t->kind = TERM_PLANNED;
 		return t->text[0] ? ST_OK : err_set(e, ST_SYNTAX, "nothing stands behind !");
 	}
 	struct piece word = trimmed(term.s, at), said = {term.s, at + length};
@@ -250,6 +252,10 @@ static const char *text_of(const struct night_row *row, int word)
 		return row->flags;
 	case WORD_STATE:
 		return states[row->state];
+	case WORD_PLAN:
+		return row->plan.order > 0 ? plan_state_words[row->plan.state]
+		       : row->plan.dropped ? "dropped"
+					   : "";
 	case WORD_KIND:
 		return row->window->event.kind == KIND_TRANSIT ? "transit" : "occultation";
 	default:
@@ -267,6 +273,10 @@ static bool term_is_true(const struct filter_term *t, const struct night_row *ro
 		return found == (t->op == OP_IS);
 	case TERM_TEXT:
 		return holds_folded(text_of(row, t->at), t->text) == (t->op == OP_IS);
+	case TERM_PLANNED:
+		return (row->plan.order > 0) == (t->op == OP_IS);
+	case TERM_WORTH:
+		return compare(row->worth, t->op, t->value, 0.005);
 	case TERM_MAG:
 		return compare(row->window->event.prepared->target->mag, t->op, t->value, 0.05);
 	case TERM_TIME:

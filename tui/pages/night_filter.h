@@ -3,13 +3,14 @@
  *
  *	sentence = group { "|" group }          one of them is true
  *	group    = term { "&" term }            all of them are true
- *	term     = figure op value | text-word op text | [ "!" ] text
+ *	term     = figure op value | text-word op text | [ "!" ] "planned" | [ "!" ] text
  *	op       = "<" | "<=" | ">" | ">=" | "=" | "!="
  *
  * figure: a heading of the list or a name of the column table; of times the value is HH:MM as the list shows
  * them, 12:00 to 23:59 in the evening; chances and cover by their heading are percents, by their column name
- * shares. text-word: name, tags, lost, doubts, state, kind: `=` is true when it holds the text. A text alone
- *is looked for in name and tags. Capitals and blanks do not count. What is unknown makes no term true. */
+ * shares. text-word: name, tags, lost, doubts, state, kind, plan: `=` is true when it holds the text. A text
+ *alone is looked for in name and tags. Capitals and blanks do not count. What is unknown makes no term true.
+ */
 #ifndef WANE_TUI_PAGES_NIGHT_FILTER_H
 #define WANE_TUI_PAGES_NIGHT_FILTER_H
 
@@ -18,7 +19,7 @@
 
 enum { FILTER_TERMS_MAX = 12, FILTER_TEXT_BYTES = 120 };
 enum filter_op { OP_LESS, OP_AT_MOST, OP_MORE, OP_AT_LEAST, OP_IS, OP_IS_NOT };
-enum filter_kind { TERM_ANY_TEXT, TERM_TEXT, TERM_NUMBER, TERM_MAG, TERM_TIME };
+enum filter_kind { TERM_ANY_TEXT, TERM_TEXT, TERM_NUMBER, TERM_MAG, TERM_WORTH, TERM_TIME, TERM_PLANNED };
 struct filter_term {
 	bool or_before; /* begins a group */
 	enum filter_kind kind;

@@ -16,8 +16,8 @@ struct night_head {
 	char relative[40], moon_now[24];
 	char clocks[NAME_BYTES_MAX + 160], clocks_short[140], clock[64]; /* three, two, the local one */
 	char next[2 * NAME_BYTES_MAX + 200],
-	    next_less[2 * NAME_BYTES_MAX + 200]; /* the latter without dusk */
-	char next_short[NAME_BYTES_MAX + 100];	 /* what is next, else what runs, for narrow screens */
+	    next_less[2 * NAME_BYTES_MAX + 200];   /* the latter without dusk */
+	char next_short[2 * NAME_BYTES_MAX + 100]; /* what is next, else what runs, for narrow screens */
 	bool tonight;
 };
 /* What holds for a night as long as it is shown. */

@@ -31,7 +31,18 @@ static void leave_text(struct night_page *p)
 
 static bool asking(const struct night_page *p)
 {
-	return p->mode == MODE_DATE || p->mode == MODE_FIND || p->mode == MODE_FILTER;
+	switch (p->mode) {
+	case MODE_DATE:
+	case MODE_FIND:
+	case MODE_FILTER:
+	case MODE_CAUSE:
+	case MODE_NOTE:
+	case MODE_LOST_TIME:
+	case MODE_SAVE_AS:
+		return true;
+	default:
+		return false;
+	}
 }
 
 static void ask(struct night_page *p, enum night_mode mode)
@@ -118,8 +129,10 @@ static enum want enter_line(struct night_page *p)
 		return enter_date(p, text);
 	if (p->mode == MODE_FILTER)
 		enter_filter(p, text);
-	else
+	else if (p->mode == MODE_FIND)
 		enter_find(p, text);
+	else
+		return night_plan_entered(p, text);
 	return WANT_NOTHING;
 }
 
@@ -185,6 +198,8 @@ static void move_choice(struct night_page *p, int to)
 static enum want choose(struct night_page *p)
 {
 	bool sites = p->mode == MODE_SITES;
+	if (p->mode == MODE_DRAFTS || p->mode == MODE_MARK)
+		return night_plan_chosen(p);
 	p->mode = MODE_LIST;
 	if (sites) {
 		p->wanted_site = p->choice;
@@ -263,6 +278,15 @@ static void open_sites(struct night_page *p)
 			move_choice(p, (int)i);
 }
 
+/* Why a window was left out is there; what forcing it in would cost may come later. */
+static void open_details(struct night_page *p)
+{
+	const struct night_row *row = night_page_selected(p);
+	p->mode = row ? MODE_DETAILS : MODE_LIST;
+	p->plan.cost_waits = row && page_plan_needs_cost(&p->plan, row);
+	night_page_settle(p);
+}
+
 static enum want list_action(struct night_page *p, enum action action)
 {
 	if (move_action(p, action))
@@ -301,8 +325,7 @@ static enum want list_action(struct night_page *p, enum action action)
 		open_sites(p);
 		break;
 	case ACT_DETAILS:
-		p->mode = p->rows.n > 0 ? MODE_DETAILS : MODE_LIST;
-		night_page_settle(p);
+		open_details(p);
 		break;
 	default:
 		break;
@@ -340,8 +363,10 @@ static enum want common_action(struct night_page *p, enum action action, bool *t
 	case ACT_LEAVE:
 		if (reading)
 			leave_text(p);
-		else if (action == ACT_QUIT)
+		else if (action == ACT_QUIT && plan_edits_nights(&p->plan.edits) == 0)
 			return WANT_QUIT;
+		else if (action == ACT_QUIT)
+			p->mode = MODE_LEAVE;
 		else
 			leave_filter(p);
 		return WANT_NOTHING;
@@ -388,7 +413,9 @@ enum want night_page_key(struct night_page *p, uint32_t code)
 	p->message[0] = '\0';
 	if (asking(p))
 		return line_mode_key(p, code);
-	if (p->mode == MODE_SORT || p->mode == MODE_SITES) {
+	if (p->mode == MODE_LEAVE)
+		return night_plan_leave_key(p, code);
+	if (night_mode_is_choice(p->mode)) {
 		want = choice_key(p, code, &taken);
 		if (taken)
 			return want;
@@ -400,6 +427,8 @@ enum want night_page_key(struct night_page *p, uint32_t code)
 	}
 	want = common_action(p, action, &taken);
 	if (taken)
+		return want;
+	if (night_plan_action(p, action, &want))
 		return want;
 	if (p->mode == MODE_DETAILS) {
 		if (action == ACT_DETAILS)

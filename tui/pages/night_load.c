@@ -3,6 +3,7 @@
 #include "tui/pages/night_page.h"
 
 #include <math.h>
+#include <stdio.h>
 
 /* The night with all that is hidden otherwise. */
 static enum status add_long_shots(struct run *r, struct night_view *v, struct err *e)
@@ -48,12 +49,63 @@ enum status night_page_load(struct night_page *p, struct run *run, struct err *e
 		s = run_night(run, p->wanted_mjd, true, &view, e);
 	if (s == ST_OK && p->show_long_shots)
 		s = add_long_shots(run, &view, e);
-	if (s == ST_OK)
-		return night_page_take(p, &view, e);
+	if (s == ST_OK) {
+		s = night_page_take(p, &view, e);
+		if (s == ST_OK && run->n_prepared <= PLAN_AT_ONCE)
+			night_page_work(p, run);
+		return s;
+	}
 	night_view_free(&view);
 	if (p->loaded)
 		p->wanted_mjd = p->view.night.mjd;
 	return s;
+}
+
+static bool cost_waits(const struct night_page *p)
+{
+	return p->mode == MODE_DETAILS && p->plan.cost_waits;
+}
+
+bool night_page_work_waits(const struct night_page *p)
+{
+	return p->loaded && (p->plan.waits || cost_waits(p));
+}
+
+static void work_out_plan(struct night_page *p, struct run *run)
+{
+	char fault[MESSAGE_BYTES];
+	struct err e;
+	if (page_plan_load(&p->plan, run, p->view.night.mjd, NULL, fault, sizeof fault, &e) != ST_OK) {
+		p->plan.waits = false;
+		snprintf(fault, sizeof fault, "No plan: %.400s", e.text);
+	}
+	if (fault[0])
+		night_page_say(p, ROLE_WARN, fault);
+	night_page_show_plan(p);
+}
+
+static void work_out_cost(struct night_page *p, struct run *run)
+{
+	char event[EDIT_TEXT_BYTES];
+	const struct night_row *row = night_page_selected(p);
+	struct err e;
+	p->plan.cost_waits = false;
+	if (!row)
+		return;
+	page_plan_event(row, event);
+	if (page_plan_cost(&p->plan, run, p->view.night.mjd, event, &e) != ST_OK)
+		p->plan.cost = NAN; /* why it was left out is told all the same */
+	night_page_settle(p);
+}
+
+void night_page_work(struct night_page *p, struct run *run)
+{
+	if (!p->loaded)
+		return;
+	if (p->plan.waits)
+		work_out_plan(p, run);
+	else if (cost_waits(p))
+		work_out_cost(p, run);
 }
 
 /* --- the table, over states of no type --- */
@@ -99,6 +151,19 @@ static void draw(const void *state, struct grid *g)
 	night_page_draw(state, g);
 }
 
+static bool change(void *state, struct run *run)
+{
+	return night_page_change(state, run);
+}
+static bool work_waits(const void *state)
+{
+	return night_page_work_waits(state);
+}
+static void work(void *state, struct run *run)
+{
+	night_page_work(state, run);
+}
+
 const struct page page_night = {.word = "night",
 				.bytes = sizeof(struct night_page),
 				.open = open_state,
@@ -110,4 +175,8 @@ const struct page page_night = {.word = "night",
 				.tick = tick,
 				.key = key,
 				.say = say,
-				.draw = draw};
+				.draw = draw,
+				.change = change,
+				.work_waits = work_waits,
+				.work = work,
+				.quiet_s = 0.4};

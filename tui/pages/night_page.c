@@ -69,12 +69,25 @@ void night_page_make_text(struct night_page *p)
 		sort_lines(&p->text, p->sort, p->sort_turned);
 	else if (p->mode == MODE_SITES)
 		site_lines(&p->text, &p->run->sites);
+	else if (p->mode == MODE_PLAN)
+		plan_lines(p);
+	else if (p->mode == MODE_COMPARE)
+		compare_lines(p);
+	else if (p->mode == MODE_DRAFTS)
+		draft_lines(p);
+	else if (p->mode == MODE_MARK)
+		mark_lines(p);
+}
+
+bool night_mode_is_choice(enum night_mode mode)
+{
+	return mode == MODE_SORT || mode == MODE_SITES || mode == MODE_DRAFTS || mode == MODE_MARK;
 }
 
 void night_page_show_choice(struct night_page *p)
 {
 	int rows = night_view_rows(p), line = p->choice + CHOICE_FIRST_LINE;
-	if (p->mode != MODE_SORT && p->mode != MODE_SITES)
+	if (!night_mode_is_choice(p->mode))
 		return;
 	if (line < p->text.top + CHOICE_FIRST_LINE)
 		text_view_scroll(&p->text, line - CHOICE_FIRST_LINE - p->text.top, rows);
@@ -107,6 +120,14 @@ static void keep_selected(struct night_page *p)
 	p->kept.mjd = p->view.night.mjd;
 }
 
+static void tick_head(struct night_page *p)
+{
+	if (!p->loaded)
+		return;
+	night_head_tick(&p->head, p->run, &p->view, &p->rows, night_page_selected(p), p->now);
+	page_plan_tick(&p->plan, &p->head, &p->view, p->now);
+}
+
 void night_page_settle(struct night_page *p)
 {
 	const struct night_row *row = night_page_selected(p);
@@ -114,8 +135,11 @@ void night_page_settle(struct night_page *p)
 	p->layout = night_lay_out(p->grid_cols);
 	night_page_place_axis(p);
 	int width = night_page_text_width(p);
+	char plan[1600];
 	if (row)
-		detail_lines(&p->details, width, roomy, p->run, &p->view, &p->head, row);
+		page_plan_row_words(&p->plan, row, plan, sizeof plan);
+	if (row)
+		detail_lines(&p->details, width, roomy, p->run, &p->view, &p->head, row, plan);
 	else
 		text_view_start(&p->details, width);
 	night_page_share(p);
@@ -124,8 +148,7 @@ void night_page_settle(struct night_page *p)
 	night_page_make_pictures(p);
 	make_count(p);
 	keep_selected(p);
-	if (p->loaded)
-		night_head_tick(&p->head, p->run, &p->view, &p->rows, row, p->now);
+	tick_head(p);
 }
 
 void night_page_say(struct night_page *p, enum role role, const char *text)
@@ -152,6 +175,8 @@ void night_page_open(struct night_page *p, const struct run *run)
 
 void night_page_close(struct night_page *p)
 {
+	plan_compare_free(&p->compare);
+	page_plan_free(&p->plan);
 	night_rows_free(&p->rows);
 	night_view_free(&p->view);
 }
@@ -165,10 +190,13 @@ static void tick_rows(struct night_page *p)
 void night_page_select_current(struct night_page *p)
 {
 	size_t count;
-	const struct night_row *now = night_rows_best(&p->rows, STATE_NOW, &count),
-			       *next = night_rows_best(&p->rows, STATE_NEXT, &count);
+	const double now_d = night_of_utc(&p->view.night, p->now);
+	const struct night_row *planned = night_rows_running(&p->rows, now_d),
+			       *now = planned ? planned : night_rows_best(&p->rows, STATE_NOW, &count),
+			       *next = night_rows_next(&p->rows);
+	p->select_current = true;
 	/* what runs and is unlikely to be done does not hide what is worth going to */
-	bool stay = now && (!next || now->window->chance.done >= 0.5);
+	bool stay = now && (planned || !next || (next->plan.order == 0 && now->window->chance.done >= 0.5));
 	const struct night_row *row = stay ? now : next;
 	p->selected = row ? (size_t)(row - p->rows.row) : 0;
 }
@@ -176,6 +204,7 @@ void night_page_select_current(struct night_page *p)
 void night_page_select(struct night_page *p, long to)
 {
 	long last = (long)p->rows.n - 1;
+	p->select_current = false;
 	p->selected = to < 0 || last < 0 ? 0 : to > last ? (size_t)last : (size_t)to;
 	night_page_settle(p);
 }
@@ -220,6 +249,15 @@ void night_page_arrange(struct night_page *p)
 	night_page_settle(p);
 }
 
+void night_page_show_plan(struct night_page *p)
+{
+	page_plan_mark_rows(&p->plan, &p->rows);
+	arrange_rows(p);
+	if (p->select_current || !select_kept(p))
+		night_page_select_current(p);
+	night_page_settle(p);
+}
+
 enum status night_page_take(struct night_page *p, struct night_view *view, struct err *e)
 {
 	enum status s = night_rows_make(&p->rows, view, &p->run->leap, p->run->zone, e);
@@ -232,6 +270,9 @@ enum status night_page_take(struct night_page *p, struct night_view *view, struc
 	*view = (struct night_view){.hidden = 0};
 	p->loaded = true;
 	p->wanted_mjd = p->view.night.mjd;
+	page_plan_drop(&p->plan);
+	p->plan.waits = true;
+	page_plan_mark_rows(&p->plan, &p->rows);
 	night_head_make(&p->head, p->run, &p->view);
 	p->axis.cols = 0;
 	arrange_rows(p);
@@ -246,6 +287,8 @@ void night_page_drop(struct night_page *p)
 {
 	if (p->loaded)
 		p->wanted_mjd = p->view.night.mjd;
+	page_plan_drop(&p->plan);
+	p->plan.waits = false;
 	night_rows_free(&p->rows);
 	night_view_free(&p->view);
 	p->view = (struct night_view){.hidden = 0};
@@ -274,5 +317,5 @@ void night_page_tick(struct night_page *p, struct utc now)
 		return;
 	tick_rows(p);
 	axis_tick(&p->axis, night_of_utc(&p->view.night, now));
-	night_head_tick(&p->head, p->run, &p->view, &p->rows, night_page_selected(p), now);
+	tick_head(p);
 }

@@ -11,9 +11,11 @@
 #include "tui/pages/night_rows.h"
 #include "tui/pages/night_strip.h"
 #include "tui/pages/page.h"
+#include "tui/pages/page_plan.h"
 #include "tui/parts/keys.h"
 #include "tui/parts/line_edit.h"
 #include "tui/parts/text_view.h"
+#include "tui/plan_change.h"
 
 #include <stdbool.h>
 
@@ -28,7 +30,40 @@ enum night_mode {
 	MODE_LIMITS,
 	MODE_FIRST_RUN,
 	MODE_SORT,
-	MODE_SITES
+	MODE_SITES,
+	MODE_PLAN,
+	MODE_COMPARE,
+	MODE_DRAFTS,
+	MODE_MARK,
+	/* questions of the plan */
+	MODE_CAUSE,
+	MODE_NOTE,
+	MODE_LOST_TIME,
+	MODE_SAVE_AS,
+	MODE_LEAVE /* although something is not stored: y or n */
+};
+/* What a key wants of the plan, done by night_page_change. */
+enum plan_want {
+	PLAN_WANT_NOTHING,
+	PLAN_WANT_PIN,
+	PLAN_WANT_DROP,
+	PLAN_WANT_KEEP,
+	PLAN_WANT_KEEP_OTHER, /* the draft that is compared with */
+	PLAN_WANT_MARK,
+	PLAN_WANT_LOST_TIME,
+	PLAN_WANT_AFRESH,
+	PLAN_WANT_UNDO,
+	PLAN_WANT_WORDS,
+	PLAN_WANT_DRAFTS,
+	PLAN_WANT_COMPARE,
+	PLAN_WANT_SAVE_AS
+};
+/* Differences of two plans in words; line: plan_compare_free. */
+struct plan_compare {
+	char title[2][PLAN_LINE_BYTES];
+	char **line;
+	size_t n;
+	bool there;
 };
 
 enum {
@@ -45,6 +80,7 @@ enum {
 /* How the screen's height is shared. */
 struct night_shape {
 	int head, list, pane;	  /* rows; the rule stands between list and pane */
+	int plan_row;		  /* 1: the plan has a row of its own in the head */
 	int sky;		  /* rows of the pane with the sky band and the strip: 0 or 2 */
 	int curve;		  /* rows of the picture of altitudes; one more for the contacts */
 	int text_at, text, width; /* first row of the pane's text, its rows and columns */
@@ -58,6 +94,16 @@ struct night_page {
 	int32_t wanted_mjd;
 	long wanted_site; /* place in the run's list; NO_SITE: as it is */
 	bool show_long_shots;
+	struct page_plan plan;
+	bool select_current; /* once the plan is there: nothing was selected by hand */
+	enum plan_want wanted;
+	struct {
+		enum plan_state state;
+		char event[EDIT_TEXT_BYTES], cause[ASKED_BYTES], note[ASKED_BYTES];
+	} mark;
+	char asked[ASKED_BYTES]; /* lost time, name of a draft */
+	struct plan_drafts drafts;
+	struct plan_compare compare;
 	size_t selected, top;
 	struct {
 		char name[NAME_BYTES_MAX + 8];
@@ -111,6 +157,11 @@ void night_page_tick(struct night_page *p, struct utc now);
 enum want night_page_key(struct night_page *p, uint32_t code);
 void night_page_say(struct night_page *p, enum role role, const char *text);
 void night_page_draw(const struct night_page *p, struct grid *g);
+/* Serves what a key wanted of the plan; true: something was stored. */
+bool night_page_change(struct night_page *p, struct run *run);
+bool night_page_work_waits(const struct night_page *p);
+/* Works out the plan that waits, or the cost that the details wait for. */
+void night_page_work(struct night_page *p, struct run *run);
 
 /* --- between the files of the page --- */
 
@@ -126,6 +177,24 @@ void night_page_select_current(struct night_page *p);
 /* Sorts and filters again; the selected window stays selected where it is still there. Without memory the
  * list stays as it is and a message says so. */
 void night_page_arrange(struct night_page *p);
+/* The plan was worked out, changed or dropped: rows, order and texts follow. */
+void night_page_show_plan(struct night_page *p);
+/* True when the action was one of the plan; *want is what it asks for. */
+bool night_plan_action(struct night_page *p, enum action action, enum want *want);
+/* What was entered in a question of the plan. */
+enum want night_plan_entered(struct night_page *p, const char *text);
+/* The chosen line of a choice of the plan. */
+enum want night_plan_chosen(struct night_page *p);
+/* A key while it is asked whether to leave. */
+enum want night_plan_leave_key(struct night_page *p, uint32_t code);
+/* Texts and choices of the plan's modes, into p->text. */
+void plan_lines(struct night_page *p);
+void compare_lines(struct night_page *p);
+void draft_lines(struct night_page *p);
+void mark_lines(struct night_page *p);
+void plan_compare_free(struct plan_compare *c);
+/* Whether a mode is a choice of lines. */
+bool night_mode_is_choice(enum night_mode mode);
 const struct night_row *night_page_selected(const struct night_page *p);
 /* Rows of a text or choice that fill the screen, and the first of them. */
 int night_view_rows(const struct night_page *p);

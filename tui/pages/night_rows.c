@@ -11,28 +11,33 @@
 #include <string.h>
 
 const struct row_column row_columns[ROW_CELLS] = {
-    [ROW_STATE] = {"state", "", 5, 0, false, NULL,
-		   "now: its time on the telescope runs; next: the first to come that is likely to be done; "
-		   "past: over. Narrow "
-		   "screens: N, n, p."},
-    [ROW_NAME] = {"target", "", 13, 0, false, NULL, "The target; (occ) marks an occultation."},
+    [ROW_STATE] =
+	{"state", "", 7, 0, false, NULL,
+	 "Number of its item in the plan and a sign of what stands of that (see the pictures below); "
+	 "then now: its time on the telescope runs; next: the first to come, of the plan if there is "
+	 "one, else that is likely to be done; past: over. Narrow screens: N, n, p."},
+    [ROW_NAME] = {"target", "", 12, 0, false, NULL, "The target; (occ) marks an occultation."},
     [ROW_ON] = {"be on", NULL, 5, 0, true, "usable_start_utc", NULL},
     [ROW_T1] = {"T1", NULL, 5, 0, true, "t1_utc", NULL},
     [ROW_MID] = {"mid", NULL, 5, 132, true, "mid_utc", NULL},
     [ROW_T4] = {"T4", NULL, 5, 0, true, "t4_utc", NULL},
     [ROW_LEAVE] = {"leave", NULL, 5, 0, true, "usable_end_utc", NULL},
     [ROW_ERROR] = {"sigma", "min", 5, 0, true, "sigma_min", NULL},
-    [ROW_COVER] = {"cover", "BIFEA", 5, 0, false, NULL,
+    [ROW_COVER] = {"cover", "BIFEA", 5, 64, false, NULL,
 		   "Usable share of five parts: Before, Ingress, Flat, Egress, After."},
     [ROW_INGRESS] = {"in", "%", 4, 152, true, "chance_ingress", NULL},
     [ROW_EGRESS] = {"eg", "%", 4, 152, true, "chance_egress", NULL},
     [ROW_DONE] = {"done", "%", 4, 0, true, "chance_done", NULL},
+    [ROW_WORTH] =
+	{"worth", "", 5, 80, true, NULL,
+	 "What it counts for: its priority times the chance of done; in the plan, of what is planned of "
+	 "it (one limb alone is worth less)."},
     [ROW_ALT] = {"alt", "deg", 4, 116, true, "alt_mid_deg", NULL},
     [ROW_AIRMASS] = {"airm", "", 5, 144, true, "airmass_mid", NULL},
     [ROW_MOON] = {"Moon", "deg", 4, 144, true, "moon_sep_deg", NULL},
     [ROW_DEPTH] = {"depth", "ppt", 5, 180, true, "depth_ppt", NULL},
     [ROW_MAG] = {"mag", "", 5, 180, true, NULL, "Magnitude of the star, in the band that its source gives."},
-    [ROW_LOST] = {"lost by", "", 12, 74, false, "lost_by", NULL},
+    [ROW_LOST] = {"lost by", "", 11, 74, false, "lost_by", NULL},
     [ROW_STRIP] = {"strip", "", 20, 100, false, NULL,
 		   "The event drawn as a light curve over the night; see the pictures below."},
     [ROW_FLAGS] =
@@ -219,8 +224,8 @@ static void doubts_text(uint32_t flags, char *out, size_t n)
 	append(out, n, further ? count : "");
 }
 
-static void fill_row(struct night_row *row, const struct window *w, const struct night_view *view,
-		     const struct leap_table *leap, const struct zone *zone)
+static void fill_row(struct night_row *row, const struct window *w, const struct plan_rules *rules,
+		     const struct night_view *view, const struct leap_table *leap, const struct zone *zone)
 {
 	const struct target *t = w->event.prepared->target;
 	*row = (struct night_row){.window = w};
@@ -234,6 +239,7 @@ static void fill_row(struct night_row *row, const struct window *w, const struct
 	row->has_chance = !isnan(w->chance.done);
 	row->long_shot = window_long_shot(w);
 	row->chance_role = chance_role(w->chance.done);
+	row->worth = plan_worth(w, rules);
 	for (int i = 0; i < PART_COUNT; i++)
 		row->cover[i] = share_glyph(w->cover.share[i]);
 	fill_figures(row, view, leap, zone);
@@ -246,12 +252,13 @@ enum status night_rows_make(struct night_rows *rows, const struct night_view *vi
 			    const struct leap_table *leap, const struct zone *zone, struct err *e)
 {
 	struct night_row *row = calloc(view->list.n + 1, sizeof *row);
+	const struct plan_rules rules = plan_rules_built_in();
 	if (!row)
 		return err_set(e, ST_MEMORY, "no memory for %zu windows", view->list.n);
 	night_rows_free(rows);
 	rows->row = row;
 	for (size_t i = 0; i < view->list.n; i++) {
-		fill_row(&rows->row[i], &view->list.w[i], view, leap, zone);
+		fill_row(&rows->row[i], &view->list.w[i], &rules, view, leap, zone);
 		rows->long_shots += rows->row[i].long_shot;
 	}
 	rows->n = rows->total = view->list.n;
@@ -275,8 +282,24 @@ static bool comes_before(const struct night_row *row, const struct night_row *ot
 	return likely != other_likely ? likely : row->on_d < other->on_d;
 }
 
+/* Whether a planned row is the next to be moved to. */
+static bool planned_before(const struct night_row *row, const struct night_row *other, double now_d)
+{
+	return row->plan.state < PLAN_STARTED && row->plan.from_d > now_d &&
+	       (!other || row->plan.order < other->plan.order);
+}
+
+static bool any_planned(const struct night_rows *rows)
+{
+	for (size_t i = 0; i < rows->total; i++)
+		if (rows->row[i].plan.order > 0)
+			return true;
+	return false;
+}
+
 void night_rows_tick(struct night_rows *rows, double now_d, bool tonight)
 {
+	const bool by_plan = any_planned(rows);
 	static const char *const words[] = {
 	    [STATE_AHEAD] = "", [STATE_NEXT] = "next", [STATE_NOW] = "now", [STATE_PAST] = "past"};
 	struct night_row *next = NULL;
@@ -284,7 +307,11 @@ void night_rows_tick(struct night_rows *rows, double now_d, bool tonight)
 		struct night_row *row = &rows->row[i];
 		bool begun = now_d >= row->on_d && row->usable;
 		row->state = now_d > row->leave_d ? STATE_PAST : begun ? STATE_NOW : STATE_AHEAD;
-		if (tonight && i < rows->n && row->state == STATE_AHEAD && row->usable && row->has_chance &&
+		if (!tonight || i >= rows->n)
+			continue;
+		if (by_plan && row->plan.order > 0 && planned_before(row, next, now_d))
+			next = row;
+		if (!by_plan && row->state == STATE_AHEAD && row->usable && row->has_chance &&
 		    !row->long_shot && comes_before(row, next))
 			next = row;
 	}
@@ -292,6 +319,25 @@ void night_rows_tick(struct night_rows *rows, double now_d, bool tonight)
 		next->state = STATE_NEXT;
 	for (size_t i = 0; i < rows->total; i++)
 		snprintf(rows->row[i].text[ROW_STATE], ROW_CELL_BYTES, "%s", words[rows->row[i].state]);
+}
+
+const struct night_row *night_rows_next(const struct night_rows *rows)
+{
+	for (size_t i = 0; i < rows->n; i++)
+		if (rows->row[i].state == STATE_NEXT)
+			return &rows->row[i];
+	return NULL;
+}
+
+const struct night_row *night_rows_running(const struct night_rows *rows, double now_d)
+{
+	for (size_t i = 0; i < rows->n; i++) {
+		const struct row_plan *plan = &rows->row[i].plan;
+		if (plan->order > 0 && plan->state <= PLAN_STARTED && now_d >= plan->from_d &&
+		    now_d < plan->to_d)
+			return &rows->row[i];
+	}
+	return NULL;
 }
 
 const struct night_row *night_rows_best(const struct night_rows *rows, enum row_state state, size_t *count)

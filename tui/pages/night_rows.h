@@ -5,6 +5,7 @@
 #define WANE_TUI_PAGES_NIGHT_ROWS_H
 
 #include "db/text_clean.h"
+#include "ephem/night_plan.h"
 #include "tui/parts/grid.h"
 #include "tui/run.h"
 
@@ -25,6 +26,7 @@ enum row_cell {
 	ROW_INGRESS,
 	ROW_EGRESS,
 	ROW_DONE,
+	ROW_WORTH,
 	ROW_ALT,
 	ROW_AIRMASS,
 	ROW_MOON,
@@ -50,6 +52,13 @@ extern const struct row_column row_columns[ROW_CELLS];
 enum row_state { STATE_AHEAD, STATE_NEXT, STATE_NOW, STATE_PAST };
 
 enum { ROW_CELL_BYTES = 12, ROW_LOST_BYTES = 120 };
+/* What the plan of the night says of a window. */
+struct row_plan {
+	int order; /* of its item; 0: not planned, and nothing below but dropped holds */
+	enum plan_state state;
+	bool moved, dropped;
+	double slew_d, from_d, to_d; /* of the item, in the night */
+};
 struct night_row {
 	const struct window *window; /* borrowed from the night's list */
 	struct star star;
@@ -62,6 +71,9 @@ struct night_row {
 	double on_d, leave_d; /* first and last usable moment; the reserve's ends where none is usable */
 	bool has_chance, long_shot, usable;
 	enum row_state state;
+	double worth; /* of the window if it is done whole */
+	struct row_plan plan;
+	char number[8]; /* order in the plan, "" not planned */
 };
 struct night_rows {
 	struct night_row *row; /* the rows'; night_rows_free */
@@ -74,8 +86,15 @@ struct night_rows {
 MUST_USE enum status night_rows_make(struct night_rows *rows, const struct night_view *view,
 				     const struct leap_table *leap, const struct zone *zone, struct err *e);
 void night_rows_free(struct night_rows *rows);
-/* Sets the states for a time of the night; `tonight`: one of the rows ahead is the next. */
+/* Sets the states for a time of the night; `tonight`: one of the rows ahead is the next, of the plan where
+ * there is one. */
 void night_rows_tick(struct night_rows *rows, double now_d, bool tonight);
+
+/* The planned row whose item runs, and is not done with; NULL none. */
+const struct night_row *night_rows_running(const struct night_rows *rows, double now_d);
+
+/* The one that is next; NULL none. */
+const struct night_row *night_rows_next(const struct night_rows *rows);
 
 /* The row of a state with the best chance of done, the first of equals, no long shot; NULL when there is
  * none. *count of them. */

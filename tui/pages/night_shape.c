@@ -36,11 +36,17 @@ int night_page_text_width(const struct night_page *p)
 	return p->axis_in_list ? p->axis_at - CURVE_LABEL_COLUMNS - 2 : p->grid_cols - 2;
 }
 
+/* Where room is short the plan stands beside the Moon. */
+static int plan_rows(const struct night_page *p)
+{
+	return p->grid_rows >= PAGE_ROWS_ROOMY && p->plan.line[0] ? 1 : 0;
+}
+
 static int head_rows(const struct night_page *p)
 {
 	const int headings = 2;
 	if (night_page_is_full(p))
-		return 5 + (p->head.remark[0] ? 1 : 0) + headings;
+		return 5 + plan_rows(p) + (p->head.remark[0] ? 1 : 0) + headings;
 	return p->grid_cols >= PAGE_COLS_FULL ? 2 + headings : 2;
 }
 
@@ -70,7 +76,7 @@ static void share_pane(const struct night_page *p, struct night_shape *s)
 
 static void share_list(struct night_page *p)
 {
-	struct night_shape s = {.head = head_rows(p)};
+	struct night_shape s = {.head = head_rows(p), .plan_row = plan_rows(p)};
 	int left = p->grid_rows - s.head - FOOTER_ROWS - RULE_ROWS;
 	if (night_page_is_full(p) && left > LIST_ROWS_MIN && p->rows.n > 0) {
 		/* the list keeps what it fills, up to a half */
@@ -143,6 +149,9 @@ static void make_strip(struct night_page *p, size_t row, struct strip *s)
 		return;
 	strip_of_window(s, &p->axis, p->rows.row[row].window, &p->view.night, &p->rows.row[row].star,
 			&p->view.free);
+	const struct row_plan *plan = &p->rows.row[row].plan;
+	if (plan->order > 0)
+		strip_add_item(s, &p->axis, plan->slew_d, plan->from_d, plan->to_d);
 	s->row = row;
 }
 

@@ -20,6 +20,8 @@ const struct sort_rule sort_rules[SORT_COUNT] = {
     [SORT_MOON] = {'l', "distance of the Moon", "lunar", "moon_sep_deg", true},
     [SORT_DEPTH] = {'p', "depth", "depth", "depth_ppt", true},
     [SORT_MAG] = {'b', "magnitude", "bright", NULL, false},
+    [SORT_ORDER] = {'u', "running order", "order", NULL, false},
+    [SORT_WORTH] = {'w', "worth", "worth", NULL, true},
 };
 
 int sort_find(uint32_t key)
@@ -72,16 +74,29 @@ static int compare(const void *p, const void *q)
 	return order ? order : compare_windows(a->row, b->row);
 }
 
+static double key_of(const struct night_row *row, int rule)
+{
+	switch (rule) {
+	case SORT_MAG:
+		return row->window->event.prepared->target->mag;
+	case SORT_ON:
+		return row->on_d;
+	case SORT_WORTH:
+		return row->worth;
+	case SORT_ORDER:
+		return row->plan.order > 0 ? (double)row->plan.order : (double)NAN;
+	default:
+		return sort_rules[rule].column ? row_figure(row, sort_rules[rule].column) : 0.0;
+	}
+}
+
 static struct sort_entry entry_of(const struct night_row *row, int rule, bool turned, bool shown)
 {
 	const struct sort_rule *r = &sort_rules[rule];
 	struct sort_entry e = {.row = row, .by_name = rule == SORT_NAME, .turned = turned};
-	double key = rule == SORT_MAG  ? row->window->event.prepared->target->mag
-		     : rule == SORT_ON ? row->on_d
-		     : r->column       ? row_figure(row, r->column)
-				       : 0.0;
+	double key = key_of(row, rule);
 	e.key = r->greatest_first != turned ? -key : key;
-	if (rule == SORT_ON)
+	if (rule == SORT_ON || (rule == SORT_ORDER && isnan(key)))
 		e.group = !row->has_chance ? 2 : !row->usable ? 1 : 0;
 	if (!shown)
 		e.group = 3;

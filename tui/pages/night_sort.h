@@ -25,6 +25,8 @@ enum {
 	SORT_MOON,
 	SORT_DEPTH,
 	SORT_MAG,
+	SORT_ORDER,
+	SORT_WORTH,
 	SORT_COUNT
 };
 extern const struct sort_rule sort_rules[SORT_COUNT];

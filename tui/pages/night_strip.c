@@ -125,6 +125,29 @@ static bool gives_way(enum glyph glyph)
 	       glyph == GLYPH_FLAT || glyph == GLYPH_DAY || glyph == GLYPH_TWILIGHT;
 }
 
+/* Cell of a moment, the nearest one on the axis. */
+static int col_within(const struct night_axis *axis, double t_d)
+{
+	const double col = floor((t_d - axis->from_d) / (axis->to_d - axis->from_d) * axis->cols);
+	return col < 0.0 ? 0 : col > axis->cols - 1 ? axis->cols - 1 : (int)col;
+}
+
+void strip_add_item(struct strip *s, const struct night_axis *axis, double slew_d, double from_d, double to_d)
+{
+	if (!(to_d > axis->from_d) || !(from_d < axis->to_d))
+		return;
+	int slew = col_within(axis, slew_d), from = col_within(axis, from_d), to = col_within(axis, to_d);
+	while (from > 0 && !gives_way((enum glyph)s->cell[from].glyph))
+		from--;
+	while (to < axis->cols - 1 && !gives_way((enum glyph)s->cell[to].glyph))
+		to++;
+	slew = slew < from ? slew : from > 0 ? from - 1 : 0;
+	for (int i = slew; i < from; i++)
+		s->cell[i] = (struct strip_cell){GLYPH_ITEM_SLEW, ROLE_KEY};
+	s->cell[from] = (struct strip_cell){GLYPH_ITEM_START, ROLE_KEY};
+	s->cell[to] = (struct strip_cell){GLYPH_ITEM_END, ROLE_KEY};
+}
+
 void strip_draw(const struct strip *s, const struct night_axis *axis, struct grid *g, int row, int col)
 {
 	for (int i = 0; i < axis->cols; i++) {

@@ -27,6 +27,9 @@ void strip_make(struct strip *s, const struct night_axis *axis, const struct win
 /* The same with the sky of the window's target on its night. */
 void strip_of_window(struct strip *s, const struct night_axis *axis, const struct window *w,
 		     const struct night *night, const struct star *star, const struct free_time *free);
+/* Lays the item of a plan over it: the move to it, and its ends where no limb or mid-time stands. */
+void strip_add_item(struct strip *s, const struct night_axis *axis, double slew_d, double from_d,
+		    double to_d);
 /* now_col of the axis shows as a line, but for limbs, mid-time and losses. */
 void strip_draw(const struct strip *s, const struct night_axis *axis, struct grid *g, int row, int col);
 

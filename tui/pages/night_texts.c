@@ -73,6 +73,12 @@ static const struct {
     {{GLYPH_LOST, GLYPH_LOST_MID},
      "Strip: ingress, flat part or egress that is lost; mid-time that is lost."},
     {{GLYPH_EARLIER, GLYPH_LATER}, "Strip: the reserve begins before, or ends after what is shown."},
+    {{GLYPH_ITEM_SLEW, GLYPH_COUNT}, "Strip: the move to an item of the plan, from when it is to begin."},
+    {{GLYPH_ITEM_START, GLYPH_ITEM_END}, "Strip: the item of the plan begins, ends."},
+    {{GLYPH_PLANNED, GLYPH_PINNED}, "State: in the plan; pinned into it."},
+    {{GLYPH_STARTED, GLYPH_DONE}, "State: marked as started, as done."},
+    {{GLYPH_PARTLY, GLYPH_MISSED}, "State: marked as partly done, as lost."},
+    {{GLYPH_DROPPED, GLYPH_COUNT}, "State: dropped from the plan."},
     {{GLYPH_NOW, GLYPH_COUNT}, "Now."},
     {{GLYPH_LIMIT, GLYPH_COUNT}, "Altitudes: the limit."},
     {{GLYPH_MASK, GLYPH_COUNT}, "Altitudes: the horizon mask in the star's direction."},
@@ -105,11 +111,12 @@ static void filter_lines(struct text_view *v)
 	    "`done > 50 & alt > 40` shows windows for which both are true, `|` between them those for "
 	    "which one is; `on < 23:00` compares with the time as it is shown, 12:00 to 23:59 in the "
 	    "evening; `lost = Moon` and `tags != old` look into texts; a text alone, `tern 1`, is looked "
-	    "for in name and tags, `!tern 1` its absence. What is unknown makes no comparison true.");
+	    "for in name and tags, `!tern 1` its absence; `planned` alone shows what is in the plan, `plan = "
+	    "pinned` what stands so there. What is unknown makes no comparison true.");
 	text_view_add(
 	    v, ROLE_TEXT, PLAIN_INDENT,
-	    "Words: on t1 mid t4 leave sigma cover in eg done alt airm moon depth mag (as in the list, "
-	    "chances in percent), name tags lost doubts state kind, and the column names of `wane night "
+	    "Words: on t1 mid t4 leave sigma cover in eg done alt airm moon depth mag worth (as in the list, "
+	    "chances in percent), name tags lost doubts state kind plan, and the column names of `wane night "
 	    "--format csv` (chances as shares).");
 }
 

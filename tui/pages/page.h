@@ -44,6 +44,7 @@ struct page {
 	/* Whether slow work waits, and one piece of it, done while no key is pressed; NULL: never. */
 	bool (*work_waits)(const void *state);
 	void (*work)(void *state, struct run *run);
+	double quiet_s; /* without a key before a piece of it begins */
 };
 
 extern const struct page page_night; /* the home page */

@@ -10,8 +10,6 @@
 
 #define FROZEN_CLOCK_WAIT_S 3600.0
 
-#define QUIET_S 0.06 /* without a key before a piece of slow work begins */
-
 enum { PAGE_NIGHT, PAGE_DRIFT, PAGES };
 static const struct page *const pages[PAGES] = {&page_night, &page_drift};
 
@@ -24,6 +22,7 @@ struct loop {
 	struct grid grid;
 	bool over, whole;
 	long data_version; /* of the store, when it was read */
+	double quiet_s;	   /* since the last key or piece of work */
 };
 
 static void say(struct loop *l, enum role role, const char *text)
@@ -194,8 +193,10 @@ static void turn(struct loop *l)
 	term_show(&l->grid, l->whole);
 	l->whole = false;
 	bool works = l->page->work_waits && l->page->work_waits(l->state);
-	double tick_s = to_next_tick_s(l->run, now);
-	switch (term_wait(works ? fmin(tick_s, QUIET_S) : tick_s)) {
+	double wait_s = to_next_tick_s(l->run, now);
+	if (works)
+		wait_s = fmin(wait_s, fmax(l->page->quiet_s - l->quiet_s, 0.0));
+	switch (term_wait(wait_s)) {
 	case TERM_ENDED:
 	case TERM_LOST:
 		l->over = true;
@@ -206,7 +207,12 @@ static void turn(struct loop *l)
 	case TERM_KEYS:
 		break;
 	}
-	if (!drain_keys(l) && works && !l->over)
+	if (drain_keys(l)) {
+		l->quiet_s = 0.0;
+		return;
+	}
+	l->quiet_s += wait_s;
+	if (works && !l->over && l->quiet_s > l->page->quiet_s - 1e-3)
 		l->page->work(l->state, l->run);
 }
 

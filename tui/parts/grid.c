@@ -29,6 +29,11 @@ static const char *const glyphs[GLYPH_COUNT][TIER_COUNT] = {
     [GLYPH_MASK] = {"^", "^", "^"},	  [GLYPH_CHOSEN] = {"┊", ":", ":"},
     [GLYPH_AFTER] = {"∙", "·", "+"},	  [GLYPH_POINT] = {"●", "*", "*"},
     [GLYPH_POINT_OUT] = {"○", "o", "o"},  [GLYPH_POINT_CHOSEN] = {"◆", "#", "#"},
+    [GLYPH_ITEM_SLEW] = {"→", "~", "~"},  [GLYPH_ITEM_START] = {"[", "[", "["},
+    [GLYPH_ITEM_END] = {"]", "]", "]"},	  [GLYPH_PLANNED] = {"○", "o", "o"},
+    [GLYPH_PINNED] = {"◆", "P", "P"},	  [GLYPH_STARTED] = {"◐", "s", "s"},
+    [GLYPH_DONE] = {"✓", "+", "+"},	  [GLYPH_PARTLY] = {"½", "½", "/"},
+    [GLYPH_MISSED] = {"×", "x", "x"},	  [GLYPH_DROPPED] = {"−", "-", "-"},
     [GLYPH_ERROR_BAR] = {"│", "|", "|"},  [GLYPH_ZERO] = {"╌", "-", "-"},
 };
 

@@ -64,6 +64,17 @@ enum glyph {
 	GLYPH_EARLIER, /* it begins before the axis */
 	GLYPH_LATER,   /* it ends after it */
 	GLYPH_NOW,
+	/* a plan: the move to an item and its ends over the night; what stands of it */
+	GLYPH_ITEM_SLEW,
+	GLYPH_ITEM_START,
+	GLYPH_ITEM_END,
+	GLYPH_PLANNED,
+	GLYPH_PINNED,
+	GLYPH_STARTED,
+	GLYPH_DONE,
+	GLYPH_PARTLY,
+	GLYPH_MISSED, /* lost */
+	GLYPH_DROPPED,
 	/* in the picture of altitudes */
 	GLYPH_LIMIT,
 	GLYPH_MASK,

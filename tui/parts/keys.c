@@ -22,9 +22,24 @@ const struct key keys[] = {
     {PRESS_LEFT, "Left", ACT_NIGHT_BEFORE, NULL, NULL},
     {'>', ">", ACT_NIGHT_AFTER, NULL, "Show the night after."},
     {PRESS_RIGHT, "Right", ACT_NIGHT_AFTER, NULL, NULL},
-    {'.', ".", ACT_TONIGHT, "tonight", "Come back to tonight and to the window that comes next."},
     {PRESS_ENTER, "Enter", ACT_DETAILS, "details",
      "Show all about the selected window, or come back to the list."},
+    {'p', "p", ACT_PIN, "pin",
+     "Pin the selected window into the plan, or let go of it again. The plan is worked out anew at once and "
+     "not "
+     "stored."},
+    {'m', "m", ACT_MARK, "mark",
+     "Say what became of the selected item of the plan: started, done, partly, lost. It is stored at once."},
+    {'K', "K", ACT_KEEP, "keep", "Store the plan as it is shown and keep it as the plan of the night."},
+    {'v', "v", ACT_PLAN, "plan",
+     "Show the plan in words: items and blocks in order, what was left out and why, what moved, what "
+     "changed."},
+    {'d', "d", ACT_DROP, "drop", "Drop the selected window from the plan, or let it in again; not stored."},
+    {'L', "L", ACT_LOST_TIME, "lost time",
+     "Type a span that is lost (22:40..23:30, the site's clock): what is left is planned anew, not stored. "
+     "What "
+     "has begun stays."},
+    {'.', ".", ACT_TONIGHT, "tonight", "Come back to tonight and to the window that comes next."},
     {'/', "/", ACT_FIND, "find", "Go to the next window whose name holds what is typed."},
     {'n', "n", ACT_FIND_NEXT, NULL, "Go to the next one that was looked for."},
     {'N', "N", ACT_FIND_BEFORE, NULL, "Go to the one before that was looked for."},
@@ -35,11 +50,18 @@ const struct key keys[] = {
     {'3', "3", ACT_DRIFT_PAGE, "drift",
      "Show the drift page: how ephemerides age and what would refresh them."},
     {'1', "1", ACT_NIGHT_PAGE, NULL, "Show the night page, this one."},
-    {'d', "d", ACT_DATE, "date", "Type a date: the night that begins on its evening is shown."},
+    {'t', "t", ACT_DATE, "date", "Type a date: the night that begins on its evening is shown."},
     {'S', "S", ACT_SITE, "site", "Choose another of the stored sites."},
     {'l', "l", ACT_LIMITS, "limits", "Say the limits of this run in sentences."},
     {'a', "a", ACT_LONG_SHOTS, "long shots",
      "Show or hide long shots, windows whose better limb has a chance below one half."},
+    {'u', "u", ACT_UNDO, "undo",
+     "Take back the newest change of the plan that is not stored; without one, the newest stored change of a "
+     "plan."},
+    {'x', "x", ACT_AFRESH, "plan afresh",
+     "Plan the night afresh, without the stored pins, drops, blocks and lost time; marks stay. Not stored."},
+    {'=', "=", ACT_COMPARE, "compare", "Lay another stored draft of the night beside the plan."},
+    {'w', "w", ACT_SAVE_AS, "write draft", "Store the plan as a draft of another name, which is not kept."},
     {'R', "R", ACT_RED, "red",
      "Red on black for eyes used to the dark, and back. Other windows and the lines of a terminal "
      "multiplexer stay as bright as they are."},

@@ -58,13 +58,22 @@ enum action {
 	ACT_SUSPEND,
 	ACT_NIGHT_PAGE,
 	ACT_DRIFT_PAGE,
+	ACT_PIN,
+	ACT_DROP,
+	ACT_KEEP,
+	ACT_MARK,
+	ACT_LOST_TIME,
+	ACT_AFRESH,
+	ACT_PLAN,
+	ACT_COMPARE,
+	ACT_SAVE_AS,
+	ACT_UNDO, /* on the drift page, too */
 	ACT_LEAVE,
 	ACT_QUIT,
 	/* of the drift page alone */
 	ACT_AT,
 	ACT_MODEL,
 	ACT_COUNT_IN_FIT,
-	ACT_UNDO,
 	ACT_COUNT
 };
 
