@@ -76,6 +76,10 @@ static void make_information(struct forecast_explain *x, const struct window *w,
 	x->open = open_goals_of(p->observed, x->band, in.jd);
 	x->priority = isnan(in.priority) ? 1.0 : fmax(in.priority, 0.0);
 	x->published_min = ephemeris_published_d(eph, ev->epoch) * DAY_MIN;
+	x->need_min = rules.need_min;
+	x->floor_min = rules.floor_min;
+	x->ttv_min = sqrt(0.5) * eph->ttv_min;
+	x->systematic_min = eph->systematic_min;
 	x->precision_min = worth_precision_min(eph, x->whole.timing_s, &o->rules);
 	x->gain_bits = got.gain_bits;
 	x->sigma_at_min = dated ? drift_sigma_min(eph, x->at_epoch) : NAN;

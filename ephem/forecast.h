@@ -33,6 +33,7 @@ struct forecast_explain {
 	double catalogue_mag;
 	struct band_mag mag;	/* in the observing band */
 	double extinction_mag;	/* per airmass */
+	double star_e_s;	/* electrons per second of the star at the predicted mid-time */
 	double neighbour;	/* light of neighbours over the target's; 0 none */
 	struct optics optics;	/* comparison stars as of the target */
 	/* exposure */
@@ -58,6 +59,7 @@ struct forecast_explain {
 	struct forecast_case whole, ingress, egress; /* exclude each other: with all of the usable time */
 	struct forecast_case ingress_alone, egress_alone; /* that limb (alone or not) while the telescope is there for it alone; chance of the limb */
 	double published_min;	/* error of the mid-time that the ephemeris says */
+	double need_min, floor_min, ttv_min, systematic_min; /* what s_eff holds beside the timing; the TTV's is bound / sqrt 2 */
 	double precision_min;	/* s_eff of the case of both limbs, the need in it */
 	double gain_bits;
 	long at_epoch;

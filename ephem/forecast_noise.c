@@ -264,6 +264,7 @@ void forecast_make_noise(struct forecast_explain *x, const struct window *w, con
 		make_nodes(&k, &l, usable);
 	make_exposure(x, w, n, &k);
 	add_noise(x, n, &x->mid);
+	x->star_e_s = photometry_rate_e_s(&x->optics, x->mag.mag, x->mid.airmass, x->extinction_mag);
 	x->n_nodes = k.n;
 	for (int i = 0; i < k.n; i++) {
 		add_noise(x, n, &k.at[i]);

@@ -73,6 +73,11 @@ static const struct option_row rows[] = {
      GROUP_WINDOWS, OPT_NUMBER, AT(min_chance), 0, 1, NULL},
     {"--all", NULL, "Every event of the nights, with what spoils it.", GROUP_WINDOWS, OPT_FLAG, AT(all), 0, 0,
      NULL},
+    {"--explain", "TARGET",
+     "How the forecast of this target's windows comes about: each step with its numbers, its formula and "
+     "where "
+     "that is from.",
+     GROUP_EXPLAIN, OPT_TEXT, AT(explain), 0, 0, NULL},
     {"--at", "TIME", "The instant (sky: default now; drift: a date, default today + 3 years).",
      GROUP_SKY | GROUP_DRIFT, OPT_TEXT, AT(at), 0, 0, NULL},
     {"--from", "SCALE", "The time standard of VALUE.", GROUP_CLOCK, OPT_TEXT, AT(from), 0, 0, NULL},
@@ -150,8 +155,8 @@ static const struct option_row rows[] = {
     {"--lost", "FROM..TO", "Time that was lost, or will be; again for more.", GROUP_PLAN, OPT_VALUES,
      AT(lost), 0, 0, NULL},
     {"--poor", "FROM..TO xN",
-     "Time with N times the noise (1 to 20): until noise is forecast, the worth of what lies in it is "
-     "divided by N*N, by the share of T1 to T4.",
+     "Time with N times the noise (1 to 20): the worth of what lies in it is divided by N*N, by the share of "
+     "T1 to T4.",
      GROUP_PLAN, OPT_VALUES, AT(poor), 0, 0, NULL},
     {"--unlost", "FROM..TO", "Takes lost or poor time back, by its span as it was typed.", GROUP_PLAN,
      OPT_VALUES, AT(unlost), 0, 0, NULL},

@@ -29,6 +29,7 @@ enum option_group {
 	GROUP_SHEET = 4096,
 	GROUP_GOAL = 8192,
 	GROUP_STAR = 16384,
+	GROUP_EXPLAIN = 1 << 20,
 };
 
 /* The values of an option that may be given again and again. */
@@ -60,6 +61,7 @@ struct options {
 	const char *draft, *plan_from, *compare, *remove_draft, *cause, *note, *since;
 	bool rebuild, afresh, keep, save, list;
 	double moved_min; /* NAN not given */
+	const char *explain; /* night */
 	/* site, goal, star */
 	struct option_values sky, extinction;
 	const char *band, *until, *star_name;

@@ -14,13 +14,16 @@ const struct command commands[] = {
     {"night", "[DATE]", "The windows of one night.",
      "DATE is the local date of the evening, or an instant: the night that contains it; without it, "
      "tonight.\n",
-     GROUP_COMPUTE | GROUP_WINDOWS, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 1, command_night},
+     GROUP_COMPUTE | GROUP_WINDOWS | GROUP_EXPLAIN, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 1, command_night},
     {"plan", "[DATE]", "The running order of one telescope and night.",
      "The plan that is kept, as it was stored; without one, a proposal: of the night's windows those that "
      "fit "
-     "one after\nthe other, with the moves between them, and are worth most together. Until there is a noise "
-     "forecast an event is\nworth its priority times its chance of done, a tenth of its coverage where there "
-     "is no chance; one limb alone 0.4 of\nit. What is pinned, dropped, blocked, lost or poor is worked in, "
+     "one after\nthe other, with the moves between them, and are worth most together. With a forecast (a "
+     "telescope with aperture_m and\nband) an event is worth its priority times its open goals times its "
+     "expected "
+     "bits; else times its chance of done,\na tenth of its coverage where there is no chance, one limb alone "
+     "a "
+     "fifth of it. What is pinned, dropped, blocked, lost or poor is worked in, "
      "shown, and stored with --keep or --save. In a night\nthat runs, what has begun stands and only the "
      "rest "
      "is planned anew. Times and spans: 22:40 (site), 05:40Z, a whole\ninstant, sunset, sunrise, dusk, dawn, "

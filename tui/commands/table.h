@@ -58,6 +58,8 @@ int command_check(const struct env *env, const struct options *o);
 
 /* Shared by night and demo: writes one night of an open run in the format asked for. */
 int night_write(struct run *r, int32_t evening_mjd);
+/* --explain: how the forecast of o->explain's windows of that night comes about, as text. */
+int night_explain(struct run *r, int32_t evening_mjd);
 /* Says on standard error that a date lies beyond the leap-second table, if so. */
 void leap_note(const struct run *r, int32_t last_mjd);
 /* Says on standard error which targets have too short a period to be counted, if any. */
