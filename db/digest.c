@@ -3,6 +3,7 @@
  * draft-eastlake-fnv) over the cells of every listed row. */
 #include "db/history.h"
 
+#include "db/goal_rows.h"
 #include "db/midtime_rows.h"
 #include "db/plan_rows.h"
 #include "db/site_rows.h"
@@ -158,21 +159,23 @@ static enum status hash_midtimes(struct store *s, struct hash *h, const struct l
 	return st;
 }
 
-/* What hangs on no target. */
+/* What hangs on no target (of_target 0), or on one by the id that stands there. */
 static const struct {
 	enum sql_id id;
 	const struct table *table;
-	size_t removed_at;
+	size_t removed_at, of_target;
 } others[] = {
-    {SQL_SITE_LOAD, &site_table, SITE_REMOVED},
-    {SQL_TELESCOPE_LOAD, &telescope_rows, TELESCOPE_REMOVED},
-    {SQL_ALLOTMENT_LOAD, &allotment_rows, ALLOTMENT_REMOVED},
-    {SQL_ALL_SETTINGS, &setting_rows, SETTING_REMOVED},
-    {SQL_ALL_PLANS, &plan_rows, PLAN_REMOVED},
-    {SQL_HELD_EDITIONS, &edition_rows, NOWHERE},
-    {SQL_HELD_ITEMS, &item_rows, NOWHERE},
-    {SQL_HELD_WINDOWS, &window_rows, NOWHERE},
-    {SQL_HELD_PLAN_MARKS, &plan_mark_rows, PLAN_MARK_REMOVED},
+    {SQL_SITE_LOAD, &site_table, SITE_REMOVED, 0},
+    {SQL_TELESCOPE_LOAD, &telescope_rows, TELESCOPE_REMOVED, 0},
+    {SQL_ALLOTMENT_LOAD, &allotment_rows, ALLOTMENT_REMOVED, 0},
+    {SQL_ALL_SETTINGS, &setting_rows, SETTING_REMOVED, 0},
+    {SQL_ALL_PLANS, &plan_rows, PLAN_REMOVED, 0},
+    {SQL_HELD_EDITIONS, &edition_rows, NOWHERE, 0},
+    {SQL_HELD_ITEMS, &item_rows, NOWHERE, 0},
+    {SQL_HELD_WINDOWS, &window_rows, NOWHERE, 0},
+    {SQL_HELD_PLAN_MARKS, &plan_mark_rows, PLAN_MARK_REMOVED, 0},
+    {SQL_GOAL_LOAD, &goal_rows, GOAL_REMOVED, GOAL_TARGET},
+    {SQL_FIELD_STAR_LOAD, &field_star_rows, FIELD_STAR_REMOVED, FIELD_STAR_TARGET},
 };
 
 enum status store_digest(struct store *s, char out[33], struct err *e)
@@ -185,7 +188,8 @@ enum status store_digest(struct store *s, char out[33], struct err *e)
 	if (st == ST_OK)
 		st = hash_midtimes(s, &h, &l, e);
 	for (size_t i = 0; st == ST_OK && i < sizeof others / sizeof others[0]; i++)
-		st = hash_rows(s, &h, &l, others[i].id, others[i].table, others[i].removed_at, 0, e);
+		st = hash_rows(s, &h, &l, others[i].id, others[i].table, others[i].removed_at,
+			       others[i].of_target, e);
 	free(l.id);
 	snprintf(out, 33, "%016llx%016llx", (unsigned long long)h.high, (unsigned long long)h.low);
 	return st;

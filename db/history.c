@@ -84,11 +84,13 @@ enum touched {
 	TOUCHED_SETTING,
 	TOUCHED_PLAN,
 	TOUCHED_MARK,
+	TOUCHED_GOAL,
+	TOUCHED_STAR,
 	TOUCHED_KINDS
 };
 static const char *const touched_plural[TOUCHED_KINDS] = {
-    "targets",	  "ephemerides", "other names", "sites", "mid-times",
-    "telescopes", "allotments",	 "settings",	"plans", "marks"};
+    "targets",	  "ephemerides", "other names", "sites", "mid-times", "telescopes",
+    "allotments", "settings",	 "plans",	"marks", "goals",     "stars"};
 
 /* The rows of one kind that one change set wrote. */
 struct tally {
@@ -140,6 +142,10 @@ static void say_tally(const struct tally tally[TOUCHED_KINDS], enum touched kind
 		snprintf(out, size, "plan of %s, draft %s", night, t->name);
 	else if (kind == TOUCHED_MARK)
 		snprintf(out, size, "%s, plan of %s", t->name, night);
+	else if (kind == TOUCHED_GOAL)
+		snprintf(out, size, "goal of %s", t->name);
+	else if (kind == TOUCHED_STAR)
+		snprintf(out, size, "%s", t->name);
 	else
 		snprintf(out, size, "mid-time of %s, epoch %lld", t->name, (long long)t->number);
 }

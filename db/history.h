@@ -21,7 +21,7 @@ MUST_USE enum status history_undo(struct store *s, int64_t change_id, const stru
 
 /* Makes a stored version the current one. Inside a change set. ST_ABSENT no such version. */
 MUST_USE enum status ephemeris_adopt(struct store *s, int64_t target_id, int version, struct err *e);
-/* Digest of everything that lists show (targets, current ephemerides, mid-times, sites, telescopes, allotments, settings, plans): equal before a change and after its undo. */
+/* Digest of everything that lists show (targets, current ephemerides, mid-times, sites, telescopes, allotments, settings, plans, goals, stars of fields): equal before a change and after its undo. */
 MUST_USE enum status store_digest(struct store *s, char out[33], struct err *e);
 
 #endif

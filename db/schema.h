@@ -21,6 +21,6 @@ MUST_USE enum status schema_compare(sqlite3 *db, const struct crc_table *table, 
 /* Checksum of those texts; SCHEMA_CRC is that of a fresh store, so that only a store that differs has to be
  * compared text by text. */
 MUST_USE enum status schema_crc(sqlite3 *db, const struct crc_table *table, uint32_t *crc, struct err *e);
-#define SCHEMA_CRC 0xF43AA500u
+#define SCHEMA_CRC 0x63FFCD88u
 
 #endif

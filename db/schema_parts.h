@@ -12,7 +12,7 @@
 	"replaced_by INTEGER NOT NULL REFERENCES change_set(id)," CRC_BODY                                   \
 	", PRIMARY KEY(id, rev)) STRICT, WITHOUT ROWID;"
 
-/* From version 1 to 2: telescopes, allotted time, plans. NULL ends it. */
+/* From version 1 to 2: telescopes, allotted time, plans, goals, stars of a field. NULL ends it. */
 extern const char *const schema_step_2[];
 
 #endif

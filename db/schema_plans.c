@@ -1,5 +1,6 @@
 /* SPDX-License-Identifier: MIT
- * Schema, from version 1 to 2: telescopes, allotted time, plans. Shipped with version 2: never edited. */
+ * Schema, from version 1 to 2: telescopes, allotted time, plans, goals, stars of a field. Shipped with
+ * version 2: never edited. */
 #include "db/schema_parts.h"
 
 #include <stddef.h>
@@ -67,6 +68,29 @@
 	"state TEXT NOT NULL CHECK(state IN ('pinned', 'started', 'done', 'partly', 'lost')),"               \
 	"cause TEXT NOT NULL CHECK(length(cause) <= 80),"                                                    \
 	"note TEXT NOT NULL CHECK(length(note) <= 255)," UTC("marked_utc")
+
+/* How many whole events and single limbs of a target are wanted; band '': any; until_mjd NULL: no last night.
+ */
+#define GOAL_BODY                                                                                            \
+	"target_id INTEGER NOT NULL REFERENCES target(id),"                                                  \
+	"whole INTEGER NOT NULL CHECK(whole BETWEEN 0 AND 1000),"                                            \
+	"limb INTEGER NOT NULL CHECK(limb BETWEEN 0 AND 1000),"                                              \
+	"band TEXT NOT NULL CHECK(length(band) <= 20),"                                                      \
+	"until_mjd INTEGER CHECK(until_mjd BETWEEN 15020 AND 88433),"                                        \
+	"note TEXT NOT NULL CHECK(length(note) <= 255),"                                                     \
+	"since_utc TEXT NOT NULL CHECK(length(since_utc) BETWEEN 17 AND 23)," /* what ended later counts */
+
+/* Stars of a target's field. A neighbour may have a distance in place of a position. */
+#define FIELD_STAR_BODY                                                                                      \
+	"target_id INTEGER NOT NULL REFERENCES target(id),"                                                  \
+	"role TEXT NOT NULL CHECK(role IN ('comparison', 'guide', 'neighbour')),"                            \
+	"name TEXT NOT NULL CHECK(length(name) <= 80),"                                                      \
+	"ra_deg REAL CHECK(ra_deg >= 0 AND ra_deg < 360),"                                                   \
+	"dec_deg REAL CHECK(dec_deg BETWEEN -90 AND 90),"                                                    \
+	"sep_arcsec REAL CHECK(sep_arcsec BETWEEN 0 AND 600),"                                               \
+	"mag REAL NOT NULL CHECK(mag BETWEEN -5 AND 40),"                                                    \
+	"band TEXT NOT NULL CHECK(length(band) <= 20),"                                                      \
+	"note TEXT NOT NULL CHECK(length(note) <= 255),"
 
 #define NEVER_DELETED(table, what)                                                                           \
 	"CREATE TRIGGER " table "_no_delete BEFORE DELETE ON " table " "                                     \
@@ -144,10 +168,24 @@ const char *const schema_step_2[] = {
     "CREATE TABLE plan_mark_old(id INTEGER NOT NULL REFERENCES plan_mark(id)," PLAN_MARK_BODY REMOVED_BODY
 	REV_BODY OLD_TAIL,
 
+    "CREATE TABLE goal(id INTEGER PRIMARY KEY," GOAL_BODY REMOVED_BODY REV_BODY CRC_BODY
+    ", UNIQUE(target_id, band), CHECK(whole + limb > 0)) STRICT;",
+    "CREATE TABLE goal_old(id INTEGER NOT NULL REFERENCES goal(id)," GOAL_BODY REMOVED_BODY REV_BODY OLD_TAIL,
+
+    "CREATE TABLE field_star(id INTEGER PRIMARY KEY," FIELD_STAR_BODY REMOVED_BODY REV_BODY CRC_BODY
+    ", CHECK((ra_deg IS NULL) = (dec_deg IS NULL) AND (ra_deg IS NULL) = (sep_arcsec IS NOT NULL)), "
+    "CHECK(role = 'neighbour' OR ra_deg IS NOT NULL)) STRICT;",
+    "CREATE UNIQUE INDEX field_star_guide ON field_star(target_id) WHERE removed = 0 AND role = 'guide';",
+    "CREATE INDEX field_star_by_target ON field_star(target_id);",
+    "CREATE TABLE field_star_old(id INTEGER NOT NULL REFERENCES field_star(id)," FIELD_STAR_BODY REMOVED_BODY
+	REV_BODY OLD_TAIL,
+
     NEVER_DELETED("telescope", "a telescope"),
     NEVER_DELETED("allotment", "an allotment"),
     NEVER_DELETED("plan", "a plan"),
     NEVER_DELETED("plan_mark", "a mark"),
+    NEVER_DELETED("goal", "a goal"),
+    NEVER_DELETED("field_star", "a star"),
     ONLY_ADDED("telescope_old"),
     ONLY_ADDED("allotment_old"),
     ONLY_ADDED("plan_old"),
@@ -155,5 +193,7 @@ const char *const schema_step_2[] = {
     ONLY_ADDED("plan_item"),
     ONLY_ADDED("plan_window"),
     ONLY_ADDED("plan_mark_old"),
+    ONLY_ADDED("goal_old"),
+    ONLY_ADDED("field_star_old"),
     NULL,
 };

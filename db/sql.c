@@ -35,6 +35,11 @@
 	"aperture_m, obstruction, throughput, band, pixel_arcsec, gain_e_adu, read_noise_e, dark_e_s, "      \
 	"full_well_e, defocus_px, exposure_s, dead_s, red_noise_ppt, blocks, note, removed, rev, change_id"
 #define ALLOTMENT_PLAIN "site_id, telescope_id, first_mjd, last_mjd, span, note, removed, rev, change_id"
+#define GOAL_PLAIN "target_id, whole, limb, band, until_mjd, note, since_utc, removed, rev, change_id"
+#define FIELD_STAR_PLAIN                                                                                     \
+	"target_id, role, name, ra_deg, dec_deg, sep_arcsec, mag, band, note, removed, rev, change_id"
+/* a star in words */
+#define STAR_WORDS "s.role || CASE s.role WHEN 'neighbour' THEN '' ELSE ' star' END || ' of ' || t.name"
 
 #define PLAN_PLAIN                                                                                           \
 	"site_id, telescope_id, night_mjd, draft, draft_key, kept, edition, removed, rev, "                  \
@@ -257,6 +262,37 @@ const char *const sql_text[SQL_COUNT] = {
     [SQL_PLAN_MARK_KEEP_OLD] =
 	"INSERT INTO plan_mark_old(id, " PLAN_MARK_PLAIN ", replaced_by, row_crc) VALUES(" TEN ", ?, ?)",
 
+    [SQL_GOAL_NEXT] = "SELECT ifnull(max(id), 0) + 1 FROM goal",
+    [SQL_GOAL_LOAD] = "SELECT id, " GOAL_PLAIN ", row_crc FROM goal ORDER BY target_id, band",
+    [SQL_GOAL_OF_TARGET] = "SELECT id, " GOAL_PLAIN ", row_crc FROM goal WHERE target_id = ? AND band = ?",
+    [SQL_GOAL_BY_ID] = "SELECT id, " GOAL_PLAIN ", row_crc FROM goal WHERE id = ?",
+    [SQL_GOAL_ADD] = "INSERT INTO goal(id, " GOAL_PLAIN ", row_crc) VALUES(" TEN ", ?, ?)",
+    [SQL_GOAL_UPDATE] = "UPDATE goal SET (" GOAL_PLAIN ", row_crc) = (" TEN ", ?) WHERE id = ? AND rev = ?",
+    [SQL_GOAL_KEEP_OLD] =
+	"INSERT INTO goal_old(id, " GOAL_PLAIN ", replaced_by, row_crc) VALUES(" TEN ", ?, ?, ?)",
+    /* the newest item that has the mark's key, with its windows */
+    [SQL_GOAL_GOT] = "SELECT " PLAN_MARK_COLUMNS ", " WINDOW_COLUMNS ", " ITEM_COLUMNS ", " PLAN_COLUMNS
+		     ", ifnull(t.band, '') "
+		     "FROM plan_mark k JOIN plan p ON p.id = k.plan_id JOIN plan_item i ON i.id = "
+		     "(SELECT max(j.id) FROM plan_edition d JOIN plan_item j ON j.edition_id = d.id "
+		     "WHERE d.plan_id = k.plan_id AND j.item_key = k.item_key) "
+		     "JOIN plan_window w ON w.item_id = i.id LEFT JOIN telescope t ON t.id = p.telescope_id "
+		     "WHERE k.removed = 0 AND p.removed = 0 AND k.state IN ('done', 'partly') "
+		     "AND w.target_id IN (SELECT target_id FROM goal WHERE removed = 0) "
+		     "ORDER BY w.target_id, w.epoch, w.kind, p.site_id, ifnull(p.telescope_id, 0), k.id",
+    [SQL_FIELD_STAR_NEXT] = "SELECT ifnull(max(id), 0) + 1 FROM field_star",
+    [SQL_FIELD_STAR_LOAD] =
+	"SELECT id, " FIELD_STAR_PLAIN ", row_crc FROM field_star ORDER BY target_id, role, id",
+    [SQL_FIELD_STARS_OF_TARGET] =
+	"SELECT id, " FIELD_STAR_PLAIN ", row_crc FROM field_star WHERE target_id = ? AND removed = 0",
+    [SQL_FIELD_STAR_BY_ID] = "SELECT id, " FIELD_STAR_PLAIN ", row_crc FROM field_star WHERE id = ?",
+    [SQL_FIELD_STAR_ADD] =
+	"INSERT INTO field_star(id, " FIELD_STAR_PLAIN ", row_crc) VALUES(" TEN ", ?, ?, ?, ?)",
+    [SQL_FIELD_STAR_UPDATE] =
+	"UPDATE field_star SET (" FIELD_STAR_PLAIN ", row_crc) = (" TEN ", ?, ?, ?) WHERE id = ? AND rev = ?",
+    [SQL_FIELD_STAR_KEEP_OLD] = "INSERT INTO field_star_old(id, " FIELD_STAR_PLAIN
+				", replaced_by, row_crc) VALUES(" TEN ", " FIVE ")",
+
     [SQL_HISTORY_CHANGES] =
 	"SELECT id, utc, who, verb, undoes, rev, row_crc FROM change_set ORDER BY id DESC",
     [SQL_HISTORY_ROWS] =
@@ -289,6 +325,14 @@ const char *const sql_text[SQL_COUNT] = {
 	"UNION ALL "
 	"SELECT k.change_id, 9, 0, " MARK_WORDS ", night_mjd FROM plan_mark_old k "
 	"JOIN plan p ON p.id = k.plan_id WHERE k.replaced_by <> k.change_id "
+	"UNION ALL "
+	"SELECT g.change_id, 10, target_id, name, 0 FROM goal g JOIN target t ON t.id = target_id UNION ALL "
+	"SELECT g.change_id, 10, target_id, name, 0 FROM goal_old g JOIN target t ON t.id = target_id "
+	"WHERE g.replaced_by <> g.change_id UNION ALL "
+	"SELECT s.change_id, 11, target_id, " STAR_WORDS ", 0 FROM field_star s "
+	"JOIN target t ON t.id = target_id UNION ALL "
+	"SELECT s.change_id, 11, target_id, " STAR_WORDS ", 0 FROM field_star_old s "
+	"JOIN target t ON t.id = target_id WHERE s.replaced_by <> s.change_id "
 	"ORDER BY 1 DESC, 2, 3",
 
     [SQL_TARGET_TOUCHED] = TOUCHED("target"),
@@ -318,6 +362,12 @@ const char *const sql_text[SQL_COUNT] = {
     [SQL_PLAN_MARK_TOUCHED] = TOUCHED("plan_mark"),
     [SQL_PLAN_MARK_AFTER] = AFTER("plan_mark", PLAN_MARK_PLAIN),
     [SQL_PLAN_MARK_BEFORE] = BEFORE("plan_mark", PLAN_MARK_PLAIN),
+    [SQL_GOAL_TOUCHED] = TOUCHED("goal"),
+    [SQL_GOAL_AFTER] = AFTER("goal", GOAL_PLAIN),
+    [SQL_GOAL_BEFORE] = BEFORE("goal", GOAL_PLAIN),
+    [SQL_FIELD_STAR_TOUCHED] = TOUCHED("field_star"),
+    [SQL_FIELD_STAR_AFTER] = AFTER("field_star", FIELD_STAR_PLAIN),
+    [SQL_FIELD_STAR_BEFORE] = BEFORE("field_star", FIELD_STAR_PLAIN),
     [SQL_CHANGE_BY_ID] = "SELECT id, utc, who, verb, undoes, rev, row_crc FROM change_set WHERE id = ?",
 
     [SQL_ALL_CHANGES] = "SELECT id, utc, who, verb, undoes, rev, row_crc FROM change_set",
@@ -339,6 +389,8 @@ const char *const sql_text[SQL_COUNT] = {
     [SQL_ALL_WINDOWS] = "SELECT id, " WINDOW_PLAIN ", row_crc FROM plan_window",
     [SQL_ALL_PLAN_MARKS] = "SELECT id, " PLAN_MARK_PLAIN ", row_crc FROM plan_mark",
     [SQL_ALL_PLAN_MARKS_OLD] = "SELECT id, " PLAN_MARK_PLAIN ", replaced_by, row_crc FROM plan_mark_old",
+    [SQL_ALL_GOALS_OLD] = "SELECT id, " GOAL_PLAIN ", replaced_by, row_crc FROM goal_old",
+    [SQL_ALL_FIELD_STARS_OLD] = "SELECT id, " FIELD_STAR_PLAIN ", replaced_by, row_crc FROM field_star_old",
     [SQL_HELD_EDITIONS] = "SELECT " EDITION_COLUMNS " " HELD "WHERE removed = 0 ORDER BY p.id",
     [SQL_HELD_ITEMS] = "SELECT " ITEM_COLUMNS " " HELD
 		       "JOIN plan_item i ON i.edition_id = e.id WHERE removed = 0 ORDER BY p.id, i.place",

@@ -98,6 +98,21 @@ enum sql_id {
 	SQL_PLAN_MARK_ADD,
 	SQL_PLAN_MARK_UPDATE,
 	SQL_PLAN_MARK_KEEP_OLD,
+	SQL_GOAL_NEXT,
+	SQL_GOAL_LOAD,
+	SQL_GOAL_OF_TARGET, /* of a target and a band */
+	SQL_GOAL_BY_ID,
+	SQL_GOAL_ADD,
+	SQL_GOAL_UPDATE,
+	SQL_GOAL_KEEP_OLD,
+	SQL_GOAL_GOT, /* every event of a target with a goal that a mark of a listed plan says was done */
+	SQL_FIELD_STAR_NEXT,
+	SQL_FIELD_STAR_LOAD,
+	SQL_FIELD_STARS_OF_TARGET, /* the listed ones */
+	SQL_FIELD_STAR_BY_ID,
+	SQL_FIELD_STAR_ADD,
+	SQL_FIELD_STAR_UPDATE,
+	SQL_FIELD_STAR_KEEP_OLD,
 	SQL_HISTORY_CHANGES, /* newest first */
 	SQL_HISTORY_ROWS,    /* every row that a change set left behind, by change set */
 	/* of a table family: ids of the rows that a change set wrote; the row as it left it (when replaced
@@ -129,6 +144,12 @@ enum sql_id {
 	SQL_PLAN_MARK_TOUCHED,
 	SQL_PLAN_MARK_AFTER,
 	SQL_PLAN_MARK_BEFORE,
+	SQL_GOAL_TOUCHED,
+	SQL_GOAL_AFTER,
+	SQL_GOAL_BEFORE,
+	SQL_FIELD_STAR_TOUCHED,
+	SQL_FIELD_STAR_AFTER,
+	SQL_FIELD_STAR_BEFORE,
 	SQL_CHANGE_BY_ID,
 	SQL_ALL_CHANGES, /* whole tables, for the check */
 	SQL_ALL_TARGETS_OLD,
@@ -149,6 +170,8 @@ enum sql_id {
 	SQL_ALL_WINDOWS,
 	SQL_ALL_PLAN_MARKS,
 	SQL_ALL_PLAN_MARKS_OLD,
+	SQL_ALL_GOALS_OLD,
+	SQL_ALL_FIELD_STARS_OLD,
 	SQL_HELD_EDITIONS, /* what listed plans show */
 	SQL_HELD_ITEMS,
 	SQL_HELD_WINDOWS,

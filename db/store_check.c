@@ -2,6 +2,7 @@
  * Everything that can be checked of a store. SQLite's own checks see the pages; most flipped bits of a value
  * they don't: the checksums of the rows do. */
 #include "db/change_rows.h"
+#include "db/goal_rows.h"
 #include "db/midtime_rows.h"
 #include "db/plan_rows.h"
 #include "db/schema.h"
@@ -84,6 +85,10 @@ static const struct whole_table {
     {SQL_ALL_WINDOWS, "plan_window", WINDOW_CELLS, WINDOW_TARGET, -1},
     {SQL_ALL_PLAN_MARKS, "plan_mark", PLAN_MARK_CELLS, -1, -1},
     {SQL_ALL_PLAN_MARKS_OLD, "plan_mark_old", PLAN_MARK_CELLS + 1, -1, -1},
+    {SQL_GOAL_LOAD, "goal", GOAL_CELLS, -1, -1},
+    {SQL_ALL_GOALS_OLD, "goal_old", GOAL_CELLS + 1, -1, -1},
+    {SQL_FIELD_STAR_LOAD, "field_star", FIELD_STAR_CELLS, FIELD_STAR_NAME, -1},
+    {SQL_ALL_FIELD_STARS_OLD, "field_star_old", FIELD_STAR_CELLS + 1, -1, -1},
     {SQL_STORE_INFO, "store_info", 3, -1, -1},
 };
 

@@ -5,6 +5,7 @@
 #include "db/history.h"
 
 #include "db/change_rows.h"
+#include "db/goal_rows.h"
 #include "db/midtime_rows.h"
 #include "db/plan_rows.h"
 #include "db/site_rows.h"
@@ -43,6 +44,10 @@ static const struct family {
      SQL_PLAN_BEFORE},
     {&plan_mark_rows, "mark", PLAN_MARK_KEY, PLAN_MARK_REMOVED, 0, SQL_PLAN_MARK_TOUCHED, SQL_PLAN_MARK_BY_ID,
      SQL_PLAN_MARK_AFTER, SQL_PLAN_MARK_BEFORE},
+    {&goal_rows, "goal", GOAL_BAND, GOAL_REMOVED, 0, SQL_GOAL_TOUCHED, SQL_GOAL_BY_ID, SQL_GOAL_AFTER,
+     SQL_GOAL_BEFORE},
+    {&field_star_rows, "star", FIELD_STAR_NAME, FIELD_STAR_REMOVED, 0, SQL_FIELD_STAR_TOUCHED,
+     SQL_FIELD_STAR_BY_ID, SQL_FIELD_STAR_AFTER, SQL_FIELD_STAR_BEFORE},
 };
 enum { FAMILIES = sizeof families / sizeof families[0] };
 
@@ -126,6 +131,19 @@ static void mark_title(const struct undoing *u, const struct cell *cell, const c
 	snprintf(out, size, "mark of %.55s in %.90s", key, title);
 }
 
+/* A goal or a star by its target's name. */
+static void of_target_title(const struct undoing *u, const struct cell *target_id, const char *what,
+			    const char *behind, char *out, size_t size)
+{
+	char quoted[ERR_QUOTE_MAX] = "a target";
+	struct row target;
+	if (row_find(u->s, SQL_TARGET_BY_ID, *target_id, &target_table, &target, NULL) == ST_OK)
+		err_quote(target.cell[TARGET_FIELDS].u.text, (size_t)target.cell[TARGET_FIELDS].length,
+			  quoted);
+	row_free(&target);
+	snprintf(out, size, "%s of %s%s%s", what, quoted, *behind ? ", " : "", behind);
+}
+
 static void row_title(const struct undoing *u, const struct cell *cell, char *out, size_t size)
 {
 	char quoted[ERR_QUOTE_MAX], first[NIGHT_TEXT_MAX], last[NIGHT_TEXT_MAX];
@@ -145,6 +163,10 @@ static void row_title(const struct undoing *u, const struct cell *cell, char *ou
 		snprintf(out, size, "%s", title);
 	} else if (u->f->table == &plan_mark_rows) {
 		mark_title(u, cell, quoted, out, size);
+	} else if (u->f->table == &goal_rows) {
+		of_target_title(u, &cell[GOAL_TARGET], "goal", quoted, out, size);
+	} else if (u->f->table == &field_star_rows) {
+		of_target_title(u, &cell[FIELD_STAR_TARGET], cell[FIELD_STAR_ROLE].u.text, quoted, out, size);
 	} else {
 		snprintf(out, size, "%s %s", u->f->what, quoted);
 	}
@@ -266,8 +288,20 @@ static enum status planned_twice(const struct undoing *u, const struct cell *ima
 	return st == ST_ABSENT ? ST_OK : st;
 }
 
+/* Whether others have taken the room of a star that comes back, or say the same. */
+static enum status star_taken(const struct undoing *u, const struct cell *image, bool *taken, struct err *e)
+{
+	const char *role = image[FIELD_STAR_ROLE].u.text;
+	bool same;
+	int n;
+	enum status st =
+	    field_stars_count(u->s, image[FIELD_STAR_TARGET].u.i, role, image[0].u.i, image, &n, &same, e);
+	*taken = same || n >= field_stars_max(role);
+	return st;
+}
+
 /* Whether the name of a row that comes back is still free. A site keeps its row as long as its name, and so
- * do telescopes and settings. */
+ * do telescopes, settings and goals. */
 static enum status name_free(const struct undoing *u, const struct cell *image, struct err *e)
 {
 	bool taken = false;
@@ -284,6 +318,9 @@ static enum status name_free(const struct undoing *u, const struct cell *image, 
 	} else if (u->f->table == &allotment_rows) {
 		st = allotted_twice(u, image, &taken, e);
 		what = "its time is allotted again";
+	} else if (u->f->table == &field_star_rows) {
+		st = star_taken(u, image, &taken, e);
+		what = "others have taken its place";
 	} else if (u->f->table == &plan_rows) {
 		st = planned_twice(u, image, SQL_PLAN_DRAFT, 4, &taken, e);
 		if (st == ST_OK && !taken && image[PLAN_KEPT].u.i) {

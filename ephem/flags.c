@@ -57,6 +57,26 @@ const struct flag_rule flag_rules[FLAG_COUNT] = {
 		     "The Sun is up during part of the reserve: do not slew or open then."},
     [FLAG_SUN_NEAR] = {"sun_near",
 		       "The target is within 45 degrees of the Sun while the Sun is up: never point there."},
+    [FLAG_MAGNITUDE_UNKNOWN] = {"magnitude_unknown",
+				"The target has no magnitude that can be turned into the observing band: "
+				"nothing is forecast of its noise and its timing."},
+    [FLAG_MAGNITUDE_ASSUMED] = {"magnitude_assumed",
+				"The magnitude in the observing band is estimated from another band's: noise "
+				"may be off by a tenth to a third."},
+    [FLAG_DEPTH_UNKNOWN] = {"depth_unknown",
+			    "The depth of the event is not known: nothing is forecast of its timing."},
+    [FLAG_SATURATED] = {"saturated", "The star's image comes too near to the detector's full well at this "
+				     "exposure: defocus, or expose less."},
+    [FLAG_EXPOSURE_LONG] = {"exposure_long",
+			    "One exposure takes more than a fifth of the ingress and blurs it."},
+    [FLAG_NEIGHBOUR_DILUTED] = {"neighbour_diluted", "Light of a neighbouring star falls into the aperture: "
+						     "the event looks shallower by 1 / (1 + its share)."},
+    [FLAG_SKY_ASSUMED] = {"sky_assumed",
+			  "The site has no dark sky brightness in this band: that of a very dark site stands "
+			  "for it."},
+    [FLAG_OPTICS_ASSUMED] = {"optics_assumed",
+			     "The telescope lacks numbers that the noise depends on; usual ones stand for "
+			     "them."},
 };
 
 void flags_text(uint32_t bits, char *out, size_t n)

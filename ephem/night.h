@@ -10,6 +10,7 @@
 #include "ephem/chebyshev.h"
 #include "ephem/intervals.h"
 #include "ephem/model.h"
+#include "ephem/observing.h"
 #include "ephem/sky.h"
 #include "ephem/timescale.h"
 #include "ephem/vec3.h"
@@ -29,9 +30,18 @@ struct night_dark {
 	double usable_h;       /* hours with the Sun below the limit; 0 when never, the whole night when always */
 };
 
+/* Sun and Moon at a moment, as far as the brightness of the sky needs them. */
+struct night_light {
+	double sun_alt_deg, moon_alt_deg; /* airless, of the centres */
+	double moon_phase_deg;		  /* angle Sun-Moon-Earth: 0 full, 180 new */
+	struct vec3 moon;		  /* direction from the site, true of date; length 1 within 1e-3 */
+};
+enum { NIGHT_LIGHTS = 121 };
+
 struct night {
 	const struct site *site;
 	const struct telescope *telescope; /* that it is planned for; borrowed; NULL none. night_build leaves it so; its mount limits what windows can use */
+	const struct observing *observing; /* what windows forecast with, ready; borrowed; NULL: no forecast. night_build leaves it so */
 	struct earth_clock clock;
 	int32_t mjd;          /* date of the evening */
 	struct tt noon_tt;
@@ -52,6 +62,7 @@ struct night {
 	struct intervals sun_up;    /* Sun's upper limb above the horizon, in [0, length] */
 	struct intervals moon_up;   /* between rise and set, in [0, length] */
 	struct intervals moon_bright; /* more than half lit */
+	struct night_light light[NIGHT_LIGHTS]; /* evenly over [0, length] */
 };
 
 /* Builds one night. memo: shared by all nights of a run. Not thread-safe (libnova). site is borrowed for the night's life.
@@ -79,6 +90,9 @@ struct vec3 night_moon_topo_km(const struct night *n, double t_d); /* true of da
 struct altaz night_sun_altaz(const struct night *n, double t_d);
 struct altaz night_moon_altaz(const struct night *n, double t_d);
 double night_moon_lit(const struct night *n, double t_d); /* geocentric lit share 0..1 */
+/* From the table, linear between its rows: altitudes and place within 0.04 deg. Outside [0, length] computed. */
+struct night_light night_light_at(const struct night *n, double t_d);
+void night_light_fit(struct night *n); /* night_build does it */
 /* When the Sun's centre is below limit_deg, as a set in [0, length]. Crossings to 0.01 s or, where grazing, 0.1 arcsec. */
 struct intervals night_sun_below(const struct night *n, double limit_deg);
 struct night_dark night_dark(const struct night *n, double sun_limit_deg);

@@ -192,6 +192,7 @@ enum status night_build(struct night *n, const struct site *site, const struct e
 	n->moon_up = night_moon_above_horizon(n);
 	n->moon_bright = night_moon_half_lit(n);
 	find_times(n);
+	night_light_fit(n);
 	return ST_OK;
 }
 

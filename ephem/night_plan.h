@@ -105,7 +105,8 @@ struct plan_input {
 MUST_USE enum status night_plan_make(const struct plan_input *in, struct night_plan *out, struct err *e);
 void night_plan_free(struct night_plan *p);
 
-/* What a window is worth as a whole: priority x chance of done, or x unknown_share x coverage where there is no chance. */
+/* What a window is worth as a whole. With a forecast in bits: its worth. Else priority x open goals x chance of done, or x unknown_share x coverage where there is no
+ * chance, x event_value where a forecast is on. A limb alone: priority x open goals that take one limb x its chance x its bits, or x limb_share x event_value. */
 double plan_worth(const struct window *w, const struct plan_rules *rules);
 /* Moving from one direction to another: slew and settling [d]. */
 double plan_move_d(const struct plan_rules *rules, struct vec3 from, struct vec3 to);

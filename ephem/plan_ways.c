@@ -47,11 +47,33 @@ static double priority_of(const struct window *w)
 	return isnan(priority) ? 1.0 : fmax(priority, 0.0);
 }
 
+/* What a caught event counts for before chance: goals that it serves, and what stands for its bits. */
+static struct open_goals open_of(const struct window *w)
+{
+	const enum band_id band = w->forecast.basis == BASIS_NONE ? BAND_NONE : w->forecast.band;
+	return open_goals_of(w->event.prepared->observed, band, jd2_value(w->event.mid_bjd.jd));
+}
+
+static double value_of(const struct window *w)
+{
+	return priority_of(w) * (w->forecast.basis == BASIS_EVENT ? w->forecast.event_value : 1.0);
+}
+
 double plan_worth(const struct window *w, const struct plan_rules *rules)
 {
+	if (w->forecast.basis == BASIS_BITS)
+		return fmax(w->forecast.worth, 0.0);
 	const double share =
 	    isnan(w->chance.done) ? rules->unknown_share * fmax(w->cover.coverage, 0.0) : w->chance.done;
-	return isnan(share) ? 0.0 : priority_of(w) * fmax(share, 0.0);
+	return isnan(share) ? 0.0 : value_of(w) * open_of(w).whole * fmax(share, 0.0);
+}
+
+/* A limb alone, by choice or because no more can be had. */
+static double limb_worth(const struct window *w, const struct plan_rules *rules, double chance, double bits)
+{
+	const double each =
+	    w->forecast.basis == BASIS_BITS ? priority_of(w) * bits : value_of(w) * rules->limb_share;
+	return each * open_of(w).limb * chance;
 }
 
 bool plan_catchable(const struct window *w)
@@ -127,17 +149,18 @@ static void add_limbs(struct room *r, const struct plan_rules *rules)
 	const struct window_chance *chance = &r->w->chance;
 	const bool flat = !isnan(ev->t2_d);
 	const double in_d = (flat ? ev->t2_d : ev->mid_d) + ev->pad_d,
-		     out_d = (flat ? ev->t3_d : ev->mid_d) - ev->pad_d,
-		     share = priority_of(r->w) * rules->limb_share;
+		     out_d = (flat ? ev->t3_d : ev->mid_d) - ev->pad_d;
 	const double ingress_to_d = fmin(in_d, ev->reserve_end_d),
 		     egress_from_d = fmax(out_d, ev->reserve_start_d);
 	struct span s;
 	if (chance->ingress >= CHANCE_LEAST && r->span.from_d <= ev->t1_d - r->b_min_d &&
 	    r->span.to_d >= ingress_to_d && usable_hull(r, -INFINITY, ingress_to_d, &s))
-		add_way(r, VARIANT_INGRESS, s, ev->t1_d - r->b_min_d, share * chance->ingress);
+		add_way(r, VARIANT_INGRESS, s, ev->t1_d - r->b_min_d,
+			limb_worth(r->w, rules, chance->ingress, r->w->forecast.bits_ingress));
 	if (chance->egress >= CHANCE_LEAST && r->span.from_d <= egress_from_d &&
 	    r->span.to_d >= ev->t4_d + r->b_min_d && usable_hull(r, egress_from_d, INFINITY, &s))
-		add_way(r, VARIANT_EGRESS, s, out_d, share * chance->egress);
+		add_way(r, VARIANT_EGRESS, s, out_d,
+			limb_worth(r->w, rules, chance->egress, r->w->forecast.bits_egress));
 }
 
 int plan_ways(const struct plan_input *in, size_t offer, struct plan_way way[PLAN_WAYS_MAX])

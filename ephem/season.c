@@ -1,8 +1,8 @@
 /* SPDX-License-Identifier: MIT */
 #include "ephem/season.h"
 
+#include "ephem/forecast.h"
 #include "ephem/siblings.h"
-
 #include "ephem/units.h"
 
 #include <math.h>
@@ -61,9 +61,11 @@ static bool add_events(const struct target_night *tn, enum event_kind kind, long
 		if (!w)
 			return false;
 		window_make(w, tn, kind, epoch, STAGE_CHANCE);
-		if (is_listed(w, choice))
+		if (is_listed(w, choice)) {
+			if (tn->night->observing) /* only of what is listed: it costs as much as the rest */
+				window_make_forecast(w, tn);
 			list->n++;
-		else if (window_hidden(w))
+		} else if (window_hidden(w))
 			++*hidden;
 	}
 	return true;

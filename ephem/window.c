@@ -2,6 +2,7 @@
  * Event and sky of a window; cover and chance are in window_cover.c. */
 #include "ephem/window.h"
 
+#include "ephem/forecast.h"
 #include "ephem/units.h"
 #include "ephem/window_stages.h"
 
@@ -188,32 +189,36 @@ static void make_usable(struct window *w, const struct target_night *tn, enum st
 }
 
 /* The flip hangs on the contacts: the sets that it cuts are the window's own, and only a window with one pays
- * for them. False: there is none. */
-static bool make_flipped(struct window *w, const struct target_night *tn, enum stage stage)
+ * for them. */
+bool window_cut_by_flip(const struct window_event *ev, const struct target_night *tn,
+			struct target_night *cut, double *flip_d)
 {
 	struct flip flip;
-	if (!tn->night->telescope || !window_flip(&w->event, tn, &flip))
+	if (!tn->night->telescope || !window_flip(ev, tn, &flip))
 		return false;
 	const struct intervals gap = intervals_one(flip.from_d, flip.to_d);
-	struct target_night cut = *tn;
-	cut.has_flip = true;
-	cut.flip = intervals_outside(&gap, 0.0, tn->night->length_d);
-	cut.limb = intervals_and(&tn->limb, &cut.flip);
-	cut.baseline = intervals_and(&tn->baseline, &cut.flip);
-	w->forecast.flip_d = flip.from_d;
-	make_usable(w, &cut, stage);
+	*cut = *tn;
+	cut->has_flip = true;
+	cut->flip = intervals_outside(&gap, 0.0, tn->night->length_d);
+	cut->limb = intervals_and(&tn->limb, &cut->flip);
+	cut->baseline = intervals_and(&tn->baseline, &cut->flip);
+	*flip_d = flip.from_d;
 	return true;
 }
 
 void window_make(struct window *w, const struct target_night *tn, enum event_kind kind, long epoch,
 		 enum stage stage)
 {
+	struct target_night cut;
 	memset(w, 0, sizeof *w);
 	make_event(&w->event, tn, kind, epoch);
 	w->chance = (struct window_chance){NAN, NAN, NAN, NAN};
-	w->forecast = (struct window_forecast){NAN, NAN, NAN, NAN, NAN, NAN, NAN, NAN};
+	w->forecast = forecast_none();
 	if (stage >= STAGE_SKY)
 		make_sky(w, tn);
-	if (stage >= STAGE_COVER && !make_flipped(w, tn, stage))
-		make_usable(w, tn, stage);
+	if (stage >= STAGE_COVER)
+		make_usable(w, window_cut_by_flip(&w->event, tn, &cut, &w->forecast.flip_d) ? &cut : tn,
+			    stage);
+	if (stage >= STAGE_FORECAST)
+		window_make_forecast(w, tn);
 }

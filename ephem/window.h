@@ -24,6 +24,7 @@ struct prepared {
 	bool orbit_known;       /* eccentricity and, where it is not 0, its direction are published; else taken as circular */
 	bool has_ephemeris;     /* epoch and period there and countable */
 	uint32_t flags;         /* those that hold for every window of it */
+	const struct observed *observed; /* borrowed; NULL: nothing is known. prepare_target leaves it so */
 	const struct prepared *sibling; /* the next planet of the same star, in a ring (siblings.h); NULL alone */
 };
 /* doubtful_position: found by comparing the target with its siblings (stars.h); doubtful_values: the store kept numbers that can't be true.
@@ -86,9 +87,19 @@ struct window_cover {
 struct window_chance {
 	double ingress, egress, mid, done;
 };
-struct window_forecast { /* all NAN until a telescope's forecast exists; flip_d comes with the cover */
+/* What the worth of a window stands on. */
+enum worth_basis {
+	BASIS_NONE,  /* no forecast: priority x open goals x chance */
+	BASIS_EVENT, /* the same x event_value */
+	BASIS_BITS   /* expected information: worth, bits_* */
+};
+struct window_forecast { /* all NAN until a telescope's forecast exists; flip_d comes with the cover (forecast.h) */
 	double flip_d; /* start of the mount's flip; NAN none */
 	double exposure_s, noise_ppt_min, depth_snr, timing_s, gain_bits, sigma_after_min, worth;
+	double bits_whole, bits_ingress, bits_egress; /* of both limbs, and of a limb that is observed alone, given that it is caught; NAN unknown */
+	enum worth_basis basis;
+	double event_value; /* of BASIS_EVENT: what a caught event counts for */
+	enum band_id band;  /* of the forecast; BAND_NONE without one, or zeroed where basis is BASIS_NONE */
 };
 enum { SIBLINGS_MAX = 8 };
 struct window {

@@ -196,12 +196,8 @@ void window_make_cover(struct window *w, const struct target_night *tn)
 	w->sky.airmass_min = least_airmass(tn, &c->usable);
 }
 
-void window_make_chance(struct window *w, const struct target_night *tn)
+void window_catch_sets(const struct window_event *ev, const struct target_night *tn, struct catch_sets *out)
 {
-	const struct window_event *ev = &w->event;
-	struct window_chance *chance = &w->chance;
-	if (isnan(ev->chance_sigma_d))
-		return;
 	const double b_d = tn->prepared->limits.value[LIM_MIN_BASELINE] * MIN_D;
 	const bool flat = !isnan(ev->t2_d);
 	/* offsets from the mid-time; the event moves rigidly */
@@ -211,11 +207,8 @@ void window_make_chance(struct window *w, const struct target_night *tn)
 			       limb_out = intervals_fit(&tn->limb, t3, t4);
 	const struct intervals base_in = intervals_fit(&tn->baseline, t1 - b_d, t1),
 			       base_out = intervals_fit(&tn->baseline, t4, t4 + b_d);
-	const struct intervals ingress = intervals_and(&limb_in, &base_in),
-			       egress = intervals_and(&limb_out, &base_out);
-	chance->ingress = chance_in(&ingress, ev->mid_d, ev->chance_contact_d);
-	chance->egress = chance_in(&egress, ev->mid_d, ev->chance_contact_d);
-	chance->mid = chance_in(&tn->limb, ev->mid_d, ev->chance_sigma_d);
+	out->ingress = intervals_and(&limb_in, &base_in);
+	out->egress = intervals_and(&limb_out, &base_out);
 	/* both limbs; a short pause is borne everywhere but in them */
 	const struct intervals limb_bridged = intervals_bridge(&tn->limb, DONE_GAP_D);
 	const struct intervals base_bridged = intervals_bridge(&tn->baseline, DONE_GAP_D);
@@ -224,10 +217,23 @@ void window_make_chance(struct window *w, const struct target_night *tn)
 	    intervals_fit(&base_bridged, t1 - b_d, t1),
 	    intervals_fit(&base_bridged, t4, t4 + b_d),
 	};
-	struct intervals done = intervals_and(&limb_in, &limb_out);
+	out->done = intervals_and(&limb_in, &limb_out);
 	for (int i = 0; i < 3; i++)
-		done = intervals_and(&done, &part[i]);
-	chance->done = chance_in(&done, ev->mid_d, ev->chance_contact_d);
+		out->done = intervals_and(&out->done, &part[i]);
+}
+
+void window_make_chance(struct window *w, const struct target_night *tn)
+{
+	const struct window_event *ev = &w->event;
+	struct window_chance *chance = &w->chance;
+	struct catch_sets sets;
+	if (isnan(ev->chance_sigma_d))
+		return;
+	window_catch_sets(ev, tn, &sets);
+	chance->ingress = chance_in(&sets.ingress, ev->mid_d, ev->chance_contact_d);
+	chance->egress = chance_in(&sets.egress, ev->mid_d, ev->chance_contact_d);
+	chance->mid = chance_in(&tn->limb, ev->mid_d, ev->chance_sigma_d);
+	chance->done = chance_in(&sets.done, ev->mid_d, ev->chance_contact_d);
 }
 
 bool window_listed(const struct window *w, double min_chance)

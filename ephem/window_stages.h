@@ -12,4 +12,12 @@ bool window_flip(const struct window_event *ev, const struct target_night *tn, s
 void window_make_cover(struct window *w, const struct target_night *tn);
 void window_make_chance(struct window *w, const struct target_night *tn);
 
+/* Mid-times at which a limb, or both, are caught. done bears short pauses in the baselines that the limbs' own sets don't. */
+struct catch_sets {
+	struct intervals ingress, egress, done;
+};
+void window_catch_sets(const struct window_event *ev, const struct target_night *tn, struct catch_sets *out);
+/* tn as a window has it: without the time of its flip. False, *cut not filled: it does not flip. */
+bool window_cut_by_flip(const struct window_event *ev, const struct target_night *tn, struct target_night *cut, double *flip_d);
+
 #endif

@@ -84,6 +84,16 @@ double worth_bits(const struct ephemeris *e, long epoch, double timing_s, const 
 	return refresh_bits(e, epoch, hypot(measured_min(timing_s, rules), steady));
 }
 
+double worth_timing_s(const struct ephemeris *e, long epoch, double bits, const struct worth_rules *rules)
+{
+	const double known_min = ephemeris_published_d(e, epoch) * DAY_MIN;
+	const double all_min = known_min / sqrt(expm1(2.0 * log(2.0) * bits));
+	const double rest_min = worth_precision_min(e, 0.0, rules);
+	if (isnan(all_min) || isinf(all_min))
+		return 60.0 * all_min;
+	return 60.0 * sqrt(fmax(all_min * all_min - rest_min * rest_min, 0.0));
+}
+
 /* What a goal that takes any catch, or whole events only, is expected to earn. */
 static double earned(const struct worth_input *in, const struct worth *w, double whole_bits, bool one_limb,
 		     enum worth_choice choice)

@@ -77,5 +77,7 @@ struct worth worth_of(const struct worth_input *in, const struct worth_rules *ru
 double worth_precision_min(const struct ephemeris *e, double timing_s, const struct worth_rules *rules);
 /* Bits of an observed epoch of that precision; 0 for INFINITY. */
 double worth_bits(const struct ephemeris *e, long epoch, double timing_s, const struct worth_rules *rules);
+/* The precision that brings so many bits: its inverse [s]. INFINITY for 0 bits; 0 for more than a perfect light curve can bring. */
+double worth_timing_s(const struct ephemeris *e, long epoch, double bits, const struct worth_rules *rules);
 
 #endif

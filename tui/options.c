@@ -73,6 +73,11 @@ static const struct option_row rows[] = {
      GROUP_WINDOWS, OPT_NUMBER, AT(min_chance), 0, 1, NULL},
     {"--all", NULL, "Every event of the nights, with what spoils it.", GROUP_WINDOWS, OPT_FLAG, AT(all), 0, 0,
      NULL},
+    {"--explain", "TARGET",
+     "How the forecast of this target's windows comes about: each step with its numbers, its formula and "
+     "where "
+     "that is from.",
+     GROUP_EXPLAIN, OPT_TEXT, AT(explain), 0, 0, NULL},
     {"--at", "TIME", "The instant (sky: default now; drift: a date, default today + 3 years).",
      GROUP_SKY | GROUP_DRIFT, OPT_TEXT, AT(at), 0, 0, NULL},
     {"--from", "SCALE", "The time standard of VALUE.", GROUP_CLOCK, OPT_TEXT, AT(from), 0, 0, NULL},
@@ -88,6 +93,19 @@ static const struct option_row rows[] = {
      "Where the site's nights are halved: `dark` (between dusk and dawn), `sunset` (between sunset and "
      "sunrise) or HH:MM of its clocks.",
      GROUP_SITE, OPT_TEXT, AT(half), 0, 0, NULL},
+    {"--sky", "BAND=MAG",
+     "How bright the site's moonless zenith is, in mag per square arcsec: V=21.6; `V=`: not known; again for "
+     "more.",
+     GROUP_SITE, OPT_VALUES, AT(sky), 0, 0, NULL},
+    {"--extinction", "BAND=MAG",
+     "What the site's air takes at the zenith, in mag: V=0.14; `V=`: not known; again for more.", GROUP_SITE,
+     OPT_VALUES, AT(extinction), 0, 0, NULL},
+    {"--band", "BAND", "U, B, V, R, I, g, r, i, z or clear.", GROUP_GOAL | GROUP_STAR, OPT_TEXT, AT(band), 0,
+     0, NULL},
+    {"--until", "NIGHT", "The last night that counts for it.", GROUP_GOAL, OPT_TEXT, AT(until), 0, 0, NULL},
+    {"--note", "TEXT", "Whatever should be known of it.", GROUP_GOAL | GROUP_STAR, OPT_TEXT, AT(note), 0, 0,
+     NULL},
+    {"--name", "N", "What the star is called.", GROUP_STAR, OPT_TEXT, AT(star_name), 0, 0, NULL},
     {"--limit", "MIN",
      "The error beyond which an ephemeris is stale, in minutes (each target's own: wanted less least "
      "baseline, over pad).",
@@ -137,8 +155,8 @@ static const struct option_row rows[] = {
     {"--lost", "FROM..TO", "Time that was lost, or will be; again for more.", GROUP_PLAN, OPT_VALUES,
      AT(lost), 0, 0, NULL},
     {"--poor", "FROM..TO xN",
-     "Time with N times the noise (1 to 20): until noise is forecast, the worth of what lies in it is "
-     "divided by N*N, by the share of T1 to T4.",
+     "Time with N times the noise (1 to 20): the worth of what lies in it is divided by N*N, by the share of "
+     "T1 to T4.",
      GROUP_PLAN, OPT_VALUES, AT(poor), 0, 0, NULL},
     {"--unlost", "FROM..TO", "Takes lost or poor time back, by its span as it was typed.", GROUP_PLAN,
      OPT_VALUES, AT(unlost), 0, 0, NULL},

@@ -27,6 +27,9 @@ enum option_group {
 	GROUP_UNDO = 1024,
 	GROUP_PLAN = 2048,
 	GROUP_SHEET = 4096,
+	GROUP_GOAL = 8192,
+	GROUP_STAR = 16384,
+	GROUP_EXPLAIN = 1 << 20,
 };
 
 /* The values of an option that may be given again and again. */
@@ -58,6 +61,10 @@ struct options {
 	const char *draft, *plan_from, *compare, *remove_draft, *cause, *note, *since;
 	bool rebuild, afresh, keep, save, list;
 	double moved_min; /* NAN not given */
+	const char *explain; /* night */
+	/* site, goal, star */
+	struct option_values sky, extinction;
+	const char *band, *until, *star_name;
 	int kinds;         /* KINDS_*; 0 not given */
 	int threads;       /* 0 not given */
 	bool limit_given[LIM_COUNT];

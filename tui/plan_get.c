@@ -60,7 +60,7 @@ static void head(struct plan_view *v, struct run *r, const struct night_view *ni
 				.limits = "",
 				.leap_date = "",
 				.revised_utc = "",
-				.rules = plan_rules_of(&r->telescope)};
+				.rules = run_plan_rules(r)};
 	v->telescope = plan_copy(v, r->telescope.name);
 }
 
@@ -71,7 +71,7 @@ static enum status head_of_made(struct plan_view *v, struct err *e)
 	const struct date d = date_from_mjd(v->run->leap.expires_mjd);
 	snprintf(text, sizeof text, "%04d-%02d-%02d", d.year, d.month, d.day);
 	v->leap_date = plan_copy(v, text);
-	v->rules = plan_rules_of(&v->run->telescope);
+	v->rules = run_plan_rules(v->run);
 	v->limits = plan_limits_text(v);
 	v->stored = v->kept = false;
 	return newest_change(v, e);

@@ -8,8 +8,6 @@
 #include <stdlib.h>
 #include <string.h>
 
-#define MOVED_MIN_DEFAULT 2.0
-
 /* The event's mid-time of today's ephemeris nearest to the stored one: another T0 may count from elsewhere.
  * false: none. */
 static bool mid_now(const struct plan_view *v, const struct prepared *p, const struct plan_member_view *m,
@@ -90,7 +88,8 @@ static enum status member_moved(struct plan_view *v, struct plan_member_view *m,
 enum status stored_moves(struct plan_view *v, double moved_min, struct err *e)
 {
 	enum status s = ST_OK;
-	const double least_min = isfinite(moved_min) && moved_min >= 0.0 ? moved_min : MOVED_MIN_DEFAULT;
+	const double least_min =
+	    isfinite(moved_min) && moved_min >= 0.0 ? moved_min : v->run->stored.value[KEY_MOVED_MIN];
 	v->moved = 0;
 	for (size_t i = 0; i < v->n_items; i++)
 		for (size_t k = 0; s == ST_OK && k < v->item[i].n; k++)

@@ -49,8 +49,7 @@ static bool chosen(const struct plan_view *v, const struct plan_choices *c, enum
 	return false;
 }
 
-/* Until a noise forecast exists, poor time takes worth from a window as if its chances and its coverage were
- * that much smaller. */
+/* Poor time takes worth from a window as if its chances and its coverage were that much smaller. */
 static const struct window *scaled(struct window *copy, const struct window *w, double share)
 {
 	*copy = *w;
@@ -59,6 +58,8 @@ static const struct window *scaled(struct window *copy, const struct window *w, 
 	copy->chance.mid *= 1.0 - share;
 	copy->chance.done *= 1.0 - share;
 	copy->cover.coverage *= 1.0 - share;
+	copy->forecast.gain_bits *= 1.0 - share;
+	copy->forecast.worth *= 1.0 - share;
 	return copy;
 }
 

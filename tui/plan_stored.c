@@ -48,7 +48,8 @@ enum { RULE_NAMES = sizeof rule_names / sizeof rule_names[0] };
 
 const char *plan_limits_text(struct plan_view *v)
 {
-	char text[1200], number[NUMBER_TEXT_MAX];
+	const enum stored_key keys[] = {KEY_NEED_MIN, KEY_WORTH_BY, KEY_FALLBACK_BITS};
+	char text[1400], number[NUMBER_TEXT_MAX], value_text[STORED_TEXT_BYTES];
 	const struct run *r = v->run;
 	size_t used = 0;
 	for (int id = 0; id < LIM_COUNT; id++) {
@@ -72,6 +73,11 @@ const char *plan_limits_text(struct plan_view *v)
 		snprintf(number, sizeof number, "%.12g", value * rule_names[i].factor);
 		used +=
 		    (size_t)snprintf(text + used, sizeof text - used, "\t%s=%s", rule_names[i].name, number);
+	}
+	for (size_t i = 0; i < sizeof keys / sizeof keys[0]; i++) {
+		stored_key_text(keys[i], r->stored.value[keys[i]], value_text);
+		used += (size_t)snprintf(text + used, sizeof text - used, "\t%s=%s",
+					 stored_key_rules[keys[i]].name, value_text);
 	}
 	return plan_copy(v, text);
 }

@@ -111,7 +111,8 @@ static enum status load_lists(struct run *r, struct err *e)
 		diagnose("store",
 			 "%s: %zu left out because their checksums are wrong: %.300s (see wane check)",
 			 r->db_path, r->targets.n_bad, r->targets.bad);
-	return run_load_telescopes(r, e);
+	enum status s = run_load_telescopes(r, e);
+	return s == ST_OK ? run_load_observing(r, e) : s;
 }
 
 /* The one target that --radec stands for: a position without an ephemeris. */
@@ -305,6 +306,7 @@ static void drop_lists(struct run *r)
 	target_list_free(&r->targets);
 	site_list_free(&r->sites);
 	run_drop_telescopes(r);
+	run_drop_observing(r);
 }
 
 /* --- what hangs on the site --- */
@@ -317,6 +319,8 @@ static enum status take_telescope(struct run *r, bool named, struct err *e)
 		s = open_limits(r, e);
 	if (s == ST_OK)
 		run_put_telescope_limits(r);
+	if (s == ST_OK)
+		run_take_observing(r);
 	return s;
 }
 
@@ -329,6 +333,8 @@ enum status run_choose_site(struct run *r, size_t index, struct err *e)
 	enum status s = take_telescope(r, false, e);
 	if (s == ST_OK && r->prepared && memcmp(&before, &r->limits, sizeof before) != 0)
 		s = run_prepare(r, e);
+	else if (s == ST_OK && r->prepared)
+		s = run_fill_observed(r, e);
 	return s;
 }
 

@@ -5,17 +5,21 @@
 #define WANE_TUI_RUN_H
 
 #include "db/allotments.h"
+#include "db/field_stars.h"
+#include "db/goals.h"
 #include "db/sites.h"
 #include "db/store.h"
 #include "db/targets.h"
 #include "db/telescopes.h"
 #include "db/text_clean.h"
+#include "ephem/observing.h"
 #include "ephem/season.h"
 #include "tui/env.h"
 #include "tui/options.h"
 #include "tui/plan_time.h"
 #include "tui/settings.h"
 #include "tui/sheets/out.h"
+#include "tui/stored_keys.h"
 #include "tui/zone.h"
 
 #include <stdbool.h>
@@ -46,6 +50,13 @@ struct run {
 	bool has_telescope;
 	char *telescope_text;
 	struct allotment_list allotments; /* of all sites */
+	struct stored_values stored; /* settings that lie in the store */
+	struct observing observing;  /* of the chosen telescope and site; what windows forecast with is run_observing */
+	struct goal_list goals;      /* of all targets, as are the next two */
+	struct goal_got_list got;
+	struct field_star_list stars;
+	struct observed *observed;   /* [targets.n], borrowed by prepared */
+	struct goal *wish;           /* borrowed by observed */
 	uint32_t *star;             /* [targets.n] */
 	struct prepared *prepared;  /* [targets.n]: first those of --target, or all; the others behind them for their siblings' sake */
 	size_t n_prepared;
@@ -55,7 +66,8 @@ struct run {
 
 /* Options to run. Which of store, site and targets are needed is said by `needs`; a missing store reads as empty with a note on standard error.
  * NEED_SITE refuses when no site can be chosen; NEED_FIRST_SITE takes the first by name where several are stored and none is named.
- * --telescope chooses one of the site's telescopes; without it the only one of the site is taken, and none where there are several, or several sites are named.
+ * --telescope chooses one of the site's telescopes; without it the one that the site has as its usual one (wane site set --telescope) is taken, else the only one of the
+ * site, and none where there are several, or several sites are named.
  * Order: --place, --site, the settings file, the only stored one. On failure nothing is left open and e->text begins with its own
  * `WORD: ` or `FILE:LINE:COLUMN: ` (print with diagnose_whole). Exit code of the fault: 2 for a value outside a range or a site or
  * telescope that does not exist, 1 else. */
@@ -76,6 +88,17 @@ MUST_USE enum status run_choose_site(struct run *r, size_t index, struct err *e)
 /* Key of a site's half rule among the stored settings (db/stored_settings.h). */
 enum { HALF_KEY_BYTES = 32 };
 void run_half_key(int64_t site_id, char out[HALF_KEY_BYTES]);
+/* Keys of what else is stored of a site: how dark its moonless zenith is and what its air takes, by band; its usual telescope, by id (band is not looked at). */
+enum site_key { SITE_SKY, SITE_EXTINCTION, SITE_TELESCOPE };
+enum { SITE_KEY_BYTES = 48 };
+void run_site_key(enum site_key kind, int64_t site_id, enum band_id band, char out[SITE_KEY_BYTES]);
+/* The number stored; NAN: none. What can't be read is told of. */
+double run_site_value(const struct run *r, enum site_key kind, int64_t site_id, enum band_id band);
+/* What the windows of a site forecast with; NULL: no telescope there, or one without aperture or band. */
+const struct observing *run_observing(const struct run *r, const struct site *site);
+/* Rules of a plan: built in < telescope, and the shares from the stored settings. */
+struct plan_rules; /* ephem/night_plan.h */
+struct plan_rules run_plan_rules(const struct run *r);
 /* Loads targets, sites, telescopes and allotments again (another program changed the store, or this one did). */
 MUST_USE enum status run_reload(struct run *r, struct err *e);
 

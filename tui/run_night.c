@@ -50,6 +50,7 @@ enum status run_night_free(struct run *r, const struct site *site, int32_t eveni
 	v->free = free_time_whole();
 	v->cut = false;
 	v->night.telescope = run_telescope_at(r, site);
+	v->night.observing = run_observing(r, site);
 	run_cut_by_allotments(r, v);
 	v->dark = night_dark(&v->night, r->limits.value[LIM_SUN]);
 	return ST_OK;

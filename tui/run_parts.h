@@ -25,6 +25,15 @@ void run_half_rule(const struct run *r, int64_t site_id, struct half_rule *out);
 /* The telescope's limits over those of the run. */
 void run_put_telescope_limits(struct run *r);
 
+/* --- run_observing.c --- */
+/* Stored settings, goals, what was got of them, stars of fields. */
+MUST_USE enum status run_load_observing(struct run *r, struct err *e);
+void run_drop_observing(struct run *r);
+/* r->observing from telescope, site and settings. */
+void run_take_observing(struct run *r);
+/* What is known of each target, laid at r->prepared: after run_prepare's own work, and after another site or telescope was chosen. */
+MUST_USE enum status run_fill_observed(struct run *r, struct err *e);
+
 /* --- run_allotted.c --- */
 /* Cuts the view's free time by the site's allotments. v->night is built. */
 void run_cut_by_allotments(const struct run *r, struct night_view *v);

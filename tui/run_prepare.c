@@ -69,6 +69,8 @@ enum status run_prepare(struct run *r, struct err *e)
 		s = prepare_chosen(r, doubtful, chosen, star, e);
 	else
 		s = err_set(e, ST_MEMORY, "memory: none for %zu targets", n);
+	if (s == ST_OK)
+		s = run_fill_observed(r, e);
 	free(star);
 	free(doubtful);
 	free(chosen);

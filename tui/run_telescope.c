@@ -114,6 +114,18 @@ static const struct telescope *only_one(const struct run *r)
 	return found;
 }
 
+/* The one that is stored as the site's usual one; NULL: none, or it is listed no more. */
+static const struct telescope *usual_one(const struct run *r)
+{
+	const double id = run_site_value(r, SITE_TELESCOPE, r->site.id, BAND_NONE);
+	for (size_t i = 0; i < r->telescopes.n; i++) {
+		const struct telescope *t = &r->telescopes.telescope[i];
+		if (t->site_id == r->site.id && (double)t->id >= id && (double)t->id <= id)
+			return t;
+	}
+	return NULL;
+}
+
 static const struct telescope *chosen_before(const struct run *r)
 {
 	for (size_t i = 0; r->has_telescope && i < r->telescopes.n; i++) {
@@ -158,6 +170,8 @@ enum status run_choose_telescope(struct run *r, bool named, struct err *e)
 			return no_such(r, o->telescope, e);
 		t = i < 0 ? NULL : &r->telescopes.telescope[i];
 	}
+	if (!t && !several && r->site.id != 0)
+		t = usual_one(r);
 	if (!t && !several && r->site.id != 0)
 		t = only_one(r);
 	return take(r, t, e);

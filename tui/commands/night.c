@@ -173,7 +173,7 @@ int command_night(const struct env *env, const struct options *o)
 	if (date && given_night(&run.leap, run.site.lon_east_deg, date, &mjd, &e) != ST_OK)
 		code = usage_fault("DATE", &e);
 	else
-		code = night_write(&run, mjd);
+		code = o->explain ? night_explain(&run, mjd) : night_write(&run, mjd);
 	run_close(&run);
 	return code;
 }

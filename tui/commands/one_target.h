@@ -9,5 +9,11 @@
  * long as it. Faults as run_open; --radec is one of the command line. */
 MUST_USE enum status one_target_open(struct run *r, const struct env *env, struct options *named, const struct options *o,
 				     const char *name, int needs, int *code, struct err *e);
+/* A stored target by its name, of an open run; NULL, and said, when there is none. */
+const struct target *target_named(const struct run *r, const char *name);
+/* False, and said, when --target or --radec are given to a command that names its target as an argument. */
+bool target_as_argument(const struct options *o, const char *command);
+/* A whole number of an argument; false, and said. */
+bool whole_argument(const char *word, const char *text, long min, long max, long *out);
 
 #endif

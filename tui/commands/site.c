@@ -5,6 +5,7 @@
 #include "db/stored_settings.h"
 #include "ephem/angle_text.h"
 #include "ephem/number_text.h"
+#include "tui/commands/site_light.h"
 #include "tui/diagnose.h"
 #include "tui/given.h"
 #include "tui/sheets/out.h"
@@ -34,7 +35,7 @@ static enum status half_text(const struct run *r, const struct site *site, char 
 }
 
 /* A line; whole: the horizon mask in full behind it, as a file of it is written. */
-static void site_text(FILE *to, const struct site *s, const char *half, bool whole)
+static void site_text(FILE *to, const struct run *r, const struct site *s, const char *half, bool whole)
 {
 	char lat[ANGLE_TEXT_MAX], lon[ANGLE_TEXT_MAX], height[NUMBER_TEXT_MAX];
 	lat_text(s->lat_deg, 6, lat);
@@ -47,6 +48,7 @@ static void site_text(FILE *to, const struct site *s, const char *half, bool who
 		fprintf(to, ", horizon mask of %zu point%s", s->mask->n, s->mask->n == 1 ? "" : "s");
 	if (strcmp(half, "dark") != 0)
 		fprintf(to, ", nights halved %s %s", strcmp(half, "sunset") == 0 ? "by" : "at", half);
+	site_light_text(to, r, s);
 	fputc('\n', to);
 	if (!whole || !s->mask)
 		return;
@@ -71,6 +73,14 @@ static void site_cells(struct csv_out *c, const struct site *s)
 	csv_number(c, number);
 	csv_text(c, s->zone);
 	csv_end_line(c);
+}
+
+static void site_record(struct json *j, const struct run *r, const struct site *s, const char *half)
+{
+	json_open(j, NULL, '{', true);
+	stored_site_json(j, s, half);
+	site_light_json(j, r, s);
+	json_close(j, '}');
 }
 
 /* The sites as a list; of show, the one alone. */
@@ -101,9 +111,9 @@ static int write_sites(const struct run *r, const struct site site[], size_t n, 
 		if (format == FORMAT_CSV)
 			site_cells(&csv, &site[i]);
 		else if (format == FORMAT_JSON)
-			stored_site_json(&json, &site[i], half);
+			site_record(&json, r, &site[i], half);
 		else
-			site_text(out.file, &site[i], half, !list);
+			site_text(out.file, r, &site[i], half, !list);
 	}
 	if (format == FORMAT_JSON && list)
 		json_close(&json, ']');
@@ -135,25 +145,34 @@ static enum status zone_exists(const struct run *r, const struct site *site, str
 	return ST_OK;
 }
 
-/* rule NULL: none was given. A new site has its key only now that it is in the store. */
-static enum status put_half(struct run *r, struct site *site, const char *rule, struct err *e)
+/* rule NULL: none was given. */
+static enum status put_half(struct run *r, const struct site *site, const char *rule, struct err *e)
 {
-	struct site_list stored = {0};
 	char key[HALF_KEY_BYTES];
 	if (!rule)
 		return ST_OK;
+	run_half_key(site->id, key);
+	return stored_setting_put(r->store, key, strcmp(rule, "dark") == 0 ? "" : rule, e);
+}
+
+/* A new site has its id, which its keys are made of, only now that it is in the store. */
+static enum status put_keys(struct run *r, struct site *site, const struct site_light *light, struct err *e)
+{
+	struct site_list stored = {0};
 	enum status s = sites_load(r->store, &stored, e);
 	long index = s == ST_OK ? site_list_find(&stored, site->name) : -1;
 	if (index >= 0) {
 		site->id = stored.site[index].id;
-		run_half_key(site->id, key);
-		s = stored_setting_put(r->store, key, strcmp(rule, "dark") == 0 ? "" : rule, e);
+		s = put_half(r, site, r->options->half, e);
+		if (s == ST_OK)
+			s = site_light_put(r->store, site->id, light, e);
 	}
 	site_list_free(&stored);
 	return s;
 }
 
-static enum status put_in_store(struct run *r, struct site *site, bool add, struct err *e)
+static enum status put_in_store(struct run *r, struct site *site, const struct site_light *light, bool add,
+				struct err *e)
 {
 	char utc[UTC_TEXT_MAX];
 	const struct change change = change_of(r, add ? "site add" : "site set", utc);
@@ -162,7 +181,7 @@ static enum status put_in_store(struct run *r, struct site *site, bool add, stru
 		return s;
 	s = site_put(r->store, site, add, e);
 	if (s == ST_OK)
-		s = put_half(r, site, r->options->half, e);
+		s = put_keys(r, site, light, e);
 	if (s == ST_OK)
 		s = store_commit(r->store, e);
 	if (s != ST_OK)
@@ -189,7 +208,8 @@ static int wanted_mask(const struct options *o, struct site *site, struct mask *
 }
 
 /* What is asked for, checked against what is stored; nothing is written yet. */
-static int wanted_site(const struct run *r, bool add, struct site *site, struct mask *mask)
+static int wanted_site(const struct run *r, bool add, struct site *site, struct mask *mask,
+		       const struct site_light *light, const char *telescope)
 {
 	const struct options *o = r->options;
 	const char *name = o->word[2];
@@ -198,8 +218,11 @@ static int wanted_site(const struct run *r, bool add, struct site *site, struct 
 	*site = (struct site){.name = name, .zone = ""};
 	if (name_check(name, strlen(name), NULL, &e) != ST_OK)
 		return diagnose_err("name", &e, EXIT_USAGE);
-	if (!add && o->n_places == 0 && !o->zone && !o->mask && !o->half) {
-		diagnose("site", "nothing to set (expected --place, --zone, --mask or --half)");
+	if (!add && o->n_places == 0 && !o->zone && !o->mask && !o->half && !site_light_any(light) &&
+	    !telescope) {
+		diagnose("site",
+			 "nothing to set (expected --place, --zone, --mask, --half, --sky, --extinction "
+			 "or --telescope)");
 		return EXIT_USAGE;
 	}
 	struct half_rule rule;
@@ -235,16 +258,22 @@ static int wanted_site(const struct run *r, bool add, struct site *site, struct 
 	return wanted_mask(o, site, mask);
 }
 
-static int change_site(const struct env *env, const struct options *o, bool add)
+static int change_site(const struct env *env, const struct options *o, bool add, const char *telescope)
 {
 	struct run read, write;
+	struct site_light light;
 	struct site site;
 	struct mask mask;
 	struct err e;
 	int code;
+	if (site_light_read(o, &light, &e) != ST_OK)
+		return diagnose_whole(&e, EXIT_USAGE);
 	if (run_open(&read, env, o, NEED_STORE, &code, &e) != ST_OK)
 		return diagnose_whole(&e, code);
-	code = wanted_site(&read, add, &site, &mask);
+	code = wanted_site(&read, add, &site, &mask, &light, telescope);
+	if (code == EXIT_DONE && telescope &&
+	    site_telescope_read(&read, site.id, telescope, &light, &e) != ST_OK)
+		code = diagnose_whole(&e, EXIT_UNMET);
 	if (code == EXIT_DONE && run_open(&write, env, o, NEED_STORE | NEED_WRITE, &code, &e) != ST_OK) {
 		run_close(&read);
 		return diagnose_whole(&e, code);
@@ -253,7 +282,7 @@ static int change_site(const struct env *env, const struct options *o, bool add)
 		run_close(&read);
 		return code;
 	}
-	if (put_in_store(&write, &site, add, &e) != ST_OK)
+	if (put_in_store(&write, &site, &light, add, &e) != ST_OK)
 		code = diagnose_err("site", &e, EXIT_UNMET);
 	else
 		code = write_sites(&write, &site, 1, false);
@@ -271,10 +300,12 @@ static int remove_site(struct run *r)
 	enum status s = store_begin(r->store, &change, &e);
 	if (s != ST_OK)
 		return diagnose_err("site", &e, EXIT_UNMET);
-	/* its key may come again */
+	/* its keys may come again */
 	long index = site_list_find(&r->sites, name);
 	if (index >= 0)
-		s = put_half(r, &r->sites.site[index], "", &e);
+		s = put_half(r, &r->sites.site[index], "dark", &e);
+	if (s == ST_OK && index >= 0)
+		s = site_light_remove(r->store, r->sites.site[index].id, &e);
 	if (s == ST_OK)
 		s = site_remove(r->store, name, &e);
 	if (s == ST_OK)
@@ -309,15 +340,25 @@ static int show_or_remove(const struct env *env, const struct options *o, bool r
 	return code;
 }
 
-int command_site(const struct env *env, const struct options *o)
+/* --telescope is not what to compute with here, but what to store. */
+int command_site(const struct env *env, const struct options *given)
 {
 	static const char *const verbs[] = {"list", "show", "add", "set", "remove"};
+	struct options own = *given;
+	const struct options *const o = &own;
+	const char *telescope = given->telescope;
 	struct run run;
 	struct err e;
 	int code;
 	int verb = verb_of("site", verbs, 5, o);
+	own.telescope = NULL;
 	if (verb < 0)
 		return EXIT_USAGE;
+	if (telescope && verb != 3) {
+		diagnose("--telescope",
+			 "the usual telescope of a site is set by wane site set NAME --telescope T");
+		return EXIT_USAGE;
+	}
 	if (verb == 0) {
 		if (run_open(&run, env, o, NEED_STORE, &code, &e) != ST_OK)
 			return diagnose_whole(&e, code);
@@ -325,5 +366,6 @@ int command_site(const struct env *env, const struct options *o)
 		run_close(&run);
 		return code;
 	}
-	return verb == 2 || verb == 3 ? change_site(env, o, verb == 2) : show_or_remove(env, o, verb == 4);
+	return verb == 2 || verb == 3 ? change_site(env, o, verb == 2, telescope)
+				      : show_or_remove(env, o, verb == 4);
 }

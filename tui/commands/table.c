@@ -14,13 +14,16 @@ const struct command commands[] = {
     {"night", "[DATE]", "The windows of one night.",
      "DATE is the local date of the evening, or an instant: the night that contains it; without it, "
      "tonight.\n",
-     GROUP_COMPUTE | GROUP_WINDOWS, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 1, command_night},
+     GROUP_COMPUTE | GROUP_WINDOWS | GROUP_EXPLAIN, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 1, command_night},
     {"plan", "[DATE]", "The running order of one telescope and night.",
      "The plan that is kept, as it was stored; without one, a proposal: of the night's windows those that "
      "fit "
-     "one after\nthe other, with the moves between them, and are worth most together. Until there is a noise "
-     "forecast an event is\nworth its priority times its chance of done, a tenth of its coverage where there "
-     "is no chance; one limb alone 0.2 of\nit. What is pinned, dropped, blocked, lost or poor is worked in, "
+     "one after\nthe other, with the moves between them, and are worth most together. With a forecast (a "
+     "telescope with aperture_m and\nband) an event is worth its priority times its open goals times its "
+     "expected "
+     "bits; else times its chance of done,\na tenth of its coverage where there is no chance, one limb alone "
+     "a "
+     "fifth of it. What is pinned, dropped, blocked, lost or poor is worked in, "
      "shown, and stored with --keep or --save. In a night\nthat runs, what has begun stands and only the "
      "rest "
      "is planned anew. Times and spans: 22:40 (site), 05:40Z, a whole\ninstant, sunset, sunrise, dusk, dawn, "
@@ -112,7 +115,9 @@ const struct command commands[] = {
      "stored one away). A mask file "
      "has\na point a line: azimuth from north through east, apparent altitude of the horizon, in degrees, 1 "
      "to 720 of "
-     "them; straight\nlines between. `#` begins a comment.\n",
+     "them; straight\nlines between. `#` begins a comment. set takes --telescope T too: the telescope that "
+     "is "
+     "used where none is\nchosen; `none`: only one that is alone.\n",
      GROUP_SITE, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 2, command_site},
     {"telescope", "list | show NAME | add NAME FIELD=VALUE... | set NAME FIELD=VALUE... | remove NAME",
      "The stored telescopes of a site.",
@@ -127,6 +132,28 @@ const struct command commands[] = {
      "(Sun at -9 deg), middle (see --half of wane site),\nstart, end (noon); each with +20m or -1h30m behind "
      "it. In the hour that a change of clocks repeats, Z or an offset is needed.\n",
      0, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 4, command_allot},
+    {"goal", "list [TARGET] | set TARGET WHOLE LIMB | remove TARGET",
+     "How many whole events and single limbs of a target are wanted.",
+     "A target has one goal a band (--band; any without). What the marks of stored plans say was done since "
+     "a "
+     "goal was set counts\nfor it: an event done whole or with a cut baseline is a whole one; one limb "
+     "alone, or "
+     "an event that was partly done,\nis a limb; a whole event more than wanted is a limb too. A target "
+     "whose "
+     "goals are all met is worth nothing; one without\ngoals always counts. After its last night (--until) a "
+     "goal counts as closed.\n",
+     GROUP_GOAL, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 4, command_goal},
+    {"star", "list TARGET | add TARGET ROLE PLACE MAG | remove TARGET NUMBER",
+     "Comparison stars, guide star and neighbours of a target.",
+     "ROLE: comparison (at most 5), guide (1) or neighbour (10). PLACE: RA,DEC as in --radec; of a neighbour "
+     "also "
+     "its distance\nin arcsec. MAG in --band. Neighbours in the measuring aperture dilute the event; how "
+     "bright the "
+     "comparison stars are\ngoes into the noise. It says whether target, comparison and guide stars fit the "
+     "telescope's field together: within a\ncircle of field_arcmin, suitably pointed.\n",
+     GROUP_STAR, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 5, command_star},
+    {"setting", "list | set KEY VALUE | clear KEY", "Settings that change results; they lie in the store.",
+     "clear goes back to what is built in.\n", 0, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, 3, command_setting},
     {"check", "", "Whether the store is sound.", NULL, 0, FORMAT_TEXT, 0, command_check},
     {"demo", "[DATE]", "An invented observatory and list in a throw-away database.",
      "On a terminal the interface opens; else the night is printed.\n", GROUP_COMPUTE | GROUP_WINDOWS,
@@ -261,6 +288,8 @@ void command_help(FILE *to, const struct command *c)
 		fields_help(to);
 	if (c->function == command_telescope)
 		telescope_help(to);
+	if (c->function == command_setting)
+		setting_help(to);
 	fputs("\nTIME: YYYY-MM-DDTHH:MM[:SS]Z in UTC, or one argument \"2461114.708333 JD_UTC\". An option's "
 	      "value may begin "
 	      "with -.\nExit code: 0 done, 1 the request could not be met, 2 the command line is wrong.\n",

@@ -39,6 +39,9 @@ int command_target(const struct env *env, const struct options *o);
 int command_site(const struct env *env, const struct options *o);
 int command_telescope(const struct env *env, const struct options *o);
 int command_allot(const struct env *env, const struct options *o);
+int command_goal(const struct env *env, const struct options *o);
+int command_star(const struct env *env, const struct options *o);
+int command_setting(const struct env *env, const struct options *o);
 int command_sky(const struct env *env, const struct options *o);
 int command_clock(const struct env *env, const struct options *o);
 int command_night(const struct env *env, const struct options *o);
@@ -55,6 +58,8 @@ int command_check(const struct env *env, const struct options *o);
 
 /* Shared by night and demo: writes one night of an open run in the format asked for. */
 int night_write(struct run *r, int32_t evening_mjd);
+/* --explain: how the forecast of o->explain's windows of that night comes about, as text. */
+int night_explain(struct run *r, int32_t evening_mjd);
 /* Says on standard error that a date lies beyond the leap-second table, if so. */
 void leap_note(const struct run *r, int32_t last_mjd);
 /* Says on standard error which targets have too short a period to be counted, if any. */
@@ -68,6 +73,8 @@ struct change change_of(const struct run *r, const char *verb, char utc[UTC_TEXT
 
 /* The fields of a telescope, for its --help. */
 void telescope_help(FILE *to);
+/* The stored settings, for theirs. */
+void setting_help(FILE *to);
 
 /* Index of o->word[1] among the verbs; every verb but `list` needs a name behind it. -1, and said, when it is none of them. */
 int verb_of(const char *command, const char *const verbs[], int n, const struct options *o);

@@ -33,7 +33,14 @@ static void get_telescope(const struct window *w, const struct night *n, struct 
 		put_text(v, n->telescope->name);
 }
 
-/* Known only when the store keeps branches and forecasts. */
+static void get_band(const struct window *w, const struct night *n, struct value *v)
+{
+	(void)n;
+	if (w->forecast.basis != BASIS_NONE && w->forecast.band != BAND_NONE)
+		put_text(v, bands[w->forecast.band].name);
+}
+
+/* Known only when the store keeps branches. */
 static void get_nothing(const struct window *w, const struct night *n, struct value *v)
 {
 	(void)w;
@@ -195,7 +202,8 @@ const struct column columns[] = {
     {"moon_lit", "", STAGE_SKY, N, SKY(moon_lit), NULL, 4, 2, "lit", 4,
      "Lit share of the Moon at the mid-time."},
     {"sky_mag_arcsec2", "mag/arcsec2", STAGE_FORECAST, N, SKY(sky_mag_arcsec2), NULL, 3, 1, "sky", 4,
-     "Brightness of the sky at the target; empty without a forecast."},
+     "Brightness of the sky behind the target at the mid-time: dark sky, Moon and twilight; empty without a "
+     "forecast."},
     {"flip_utc", "", STAGE_COVER, U, FORECAST(flip_d), NULL, 0, 0, "flip", 5,
      "When a german mount is to begin its meridian flip; empty where one side of its pier reaches all that "
      "is usable, for other mounts and without a telescope."},
@@ -203,22 +211,25 @@ const struct column columns[] = {
      "Other planets of the star that transit within this reserve."},
     {"depth_ppt", "ppt", STAGE_EVENT, N, EVENT(depth_ppt), NULL, 4, 1, "depth", 5,
      "How much light is lost, in thousandths; of an occultation empty."},
-    {"band", "", STAGE_FORECAST, T, 0, get_nothing, 0, 0, "band", 4,
-     "The observing band; empty without a telescope."},
+    {"band", "", STAGE_FORECAST, T, 0, get_band, 0, 0, "band", 4,
+     "The observing band; empty without a forecast, which takes a telescope with aperture_m and band."},
     {"exposure_s", "s", STAGE_FORECAST, N, FORECAST(exposure_s), NULL, 3, 0, "exp", 5,
-     "Exposure time; empty without a forecast."},
+     "Exposure time, the telescope's own or chosen; empty without a forecast."},
     {"noise_ppt_min", "ppt", STAGE_FORECAST, N, FORECAST(noise_ppt_min), NULL, 3, 2, "noise", 5,
-     "Noise of one minute of data; empty without a forecast."},
+     "Noise of one minute of data, averaged over the usable part; empty without a forecast."},
     {"depth_snr", "", STAGE_FORECAST, N, FORECAST(depth_snr), NULL, 3, 0, "snr", 5,
-     "Depth over its expected error; empty without a forecast."},
+     "Depth over its expected error, the telescope's noise floor in it; empty without a forecast."},
     {"timing_s", "s", STAGE_FORECAST, N, FORECAST(timing_s), NULL, 3, 0, "tim", 5,
-     "Expected error of the measured mid-time; empty without a forecast."},
+     "Expected error of the mid-time if it comes as predicted, white noise; empty without a forecast or "
+     "where the usable part can't fix it."},
     {"gain_bits", "bit", STAGE_FORECAST, N, FORECAST(gain_bits), NULL, 3, 2, "gain", 5,
-     "Expected information about the ephemeris; empty without a forecast."},
+     "Expected information about the ephemeris in clear weather, over what may be caught; empty without a "
+     "forecast."},
     {"sigma_after_min", "min", STAGE_FORECAST, N, FORECAST(sigma_after_min), NULL, 3, 1, "s.aft", 5,
-     "Error of later mid-times if it succeeds; empty without a forecast."},
+     "Error of the mid-time at the date of the settings if it succeeds; empty without a forecast."},
     {"worth", "", STAGE_FORECAST, N, FORECAST(worth), NULL, 3, 2, "worth", 5,
-     "What windows are ranked by; empty without a forecast."},
+     "What windows are ranked by: priority x open goals x expected bits, or as the settings say; empty "
+     "without a forecast."},
     {"flags", "", STAGE_CHANCE, T, 0, get_flags, 0, 0, "flags", 16, "What is doubtful, as words."},
     {"sun_sep_deg", "deg", STAGE_SKY, N, SKY(sun_sep_deg), NULL, 3, 0, "s.sep", 5,
      "Angle between target and Sun at the mid-time."},

@@ -96,7 +96,6 @@ void site_json(struct json *j, const char *key, const struct site *site)
 
 void stored_site_json(struct json *j, const struct site *site, const char *half)
 {
-	json_open(j, NULL, '{', true);
 	site_keys(j, site);
 	json_open(j, "mask", '[', true);
 	for (size_t i = 0; site->mask && i < site->mask->n; i++) {
@@ -107,7 +106,21 @@ void stored_site_json(struct json *j, const struct site *site, const char *half)
 	}
 	json_close(j, ']');
 	json_text(j, "half", half);
-	json_close(j, '}');
+}
+
+/* What ranks the windows, of the store. */
+static void stored_limits_keys(struct json *j, const struct run *r)
+{
+	const enum stored_key keys[] = {KEY_NEED_MIN, KEY_WORTH_BY, KEY_FALLBACK_BITS};
+	char text[STORED_TEXT_BYTES];
+	for (size_t i = 0; i < sizeof keys / sizeof keys[0]; i++) {
+		const struct stored_key_rule *rule = &stored_key_rules[keys[i]];
+		stored_key_text(keys[i], r->stored.value[keys[i]], text);
+		if (rule->kind == STORED_NUMBER)
+			json_digits(j, rule->name, text);
+		else
+			json_text(j, rule->name, text);
+	}
 }
 
 void limits_json(struct json *j, const struct run *r, const struct site *site)
@@ -129,6 +142,7 @@ void limits_json(struct json *j, const struct run *r, const struct site *site)
 		json_whole(j, "mask_points", site->mask ? (long)site->mask->n : 0);
 	else
 		json_null(j, "mask_points");
+	stored_limits_keys(j, r);
 	json_close(j, '}');
 }
 

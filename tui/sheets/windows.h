@@ -13,7 +13,7 @@ void window_csv(struct csv_out *c, const struct window *w, const struct night *n
 /* An object with every column, and "usable": [[from, to], ...] in the reserve. */
 void window_json(struct json *j, const struct window *w, const struct night *n);
 void site_json(struct json *j, const char *key, const struct site *site);
-/* The same with "mask": [[azimuth, altitude], ...], empty without one, and "half": where its nights are halved. */
+/* The same keys into an open object, and "mask": [[azimuth, altitude], ...], empty without one, and "half": where its nights are halved. */
 void stored_site_json(struct json *j, const struct site *site, const char *half);
 /* The limits that a target without limits of its own has, kind, min_chance, ut1_utc_s and the points of the site's horizon mask (0: none;
  * site NULL: null, there are several). */
