@@ -333,10 +333,10 @@ static void text_says_which_of_two_clocks(void **state)
 	struct memory *m = memory_open();
 	assert_true(plan_sheet_text(m->file, &f->view, NULL));
 	const char *text = memory_text(m);
-	assert_non_null(
-	    strstr(text, "CLOCKS CHANGE this night, at Sun 1 Nov 08:00 UTC: from MDT (UTC-6 h) to\n"
-			 "           MST (UTC-7 h), 02:00 MDT becomes 01:00 MST. Every local time\n"
-			 "           says which it is.\n"));
+	assert_non_null(strstr(text,
+			       "CLOCKS CHANGE this night, at Sun 1 Nov 08:00 UTC: from MDT (UTC-6 h) to\n"
+			       "           MST (UTC-7 h), 02:00 MDT becomes 01:00 MST. Every local time\n"
+			       "           says which it is.\n"));
 	assert_non_null(strstr(text, " 00 01  01  02  03 ")); /* the hours of the strip */
 	/* 07:50 UTC and 08:17 UTC by hand: 01:50 MDT, 01:18 MST (08:17:39, rounded) */
 	assert_non_null(strstr(text, "start         Sun 1 Nov 01:50 MDT"));

@@ -502,6 +502,68 @@ static void test_undo_of_keeping(void **state)
 	store_close(s);
 }
 
+/* --- what a night has been through --- */
+
+/* The revisions, more than before unless nothing was stored since; n editions were kept, the newest `plan`.
+ */
+static int64_t past(struct store *s, int64_t before, bool kept_now, size_t n, int64_t plan, int edition)
+{
+	struct plan_past p;
+	struct err e = {0};
+	must(plan_past_load(s, 1, 0, NIGHT, &p, &e), &e);
+	const int64_t revisions = p.revisions;
+	assert_true(revisions > before);
+	assert_int_equal(p.kept, kept_now);
+	assert_int_equal(p.n, n);
+	assert_int_equal(strlen(p.revised_utc), 20);
+	if (n > 0) {
+		assert_int_equal(p.was_kept[0].plan_id, plan);
+		assert_int_equal(p.was_kept[0].edition, edition);
+	}
+	for (size_t i = 0; i < p.n; i++) {
+		struct plan_row row;
+		must(plan_load_past(s, p.was_kept[i].plan_id, p.was_kept[i].edition, &row, &e), &e);
+		assert_int_equal(row.edition, p.was_kept[i].edition);
+		plan_row_free(&row);
+	}
+	plan_past_free(&p);
+	return revisions;
+}
+
+static void test_past(void **state)
+{
+	(void)state;
+	struct store *s = observing_store(6);
+	struct made *a = make("main", 3, 1), *b = make("cloudy", 2, 2);
+	struct err e = {0};
+	struct plan_past none;
+	must(plan_past_load(s, 1, 0, NIGHT, &none, &e), &e);
+	assert_true(none.revisions == 0 && none.n == 0 && !none.kept && !none.revised_utc[0]);
+	plan_past_free(&none);
+	const int64_t one = put(s, a, true, 0, 1);
+	int64_t n = past(s, 0, true, 1, one, 1);
+	const int64_t two = put(s, b, false, 0, 1); /* a draft counts, none of its items was kept */
+	n = past(s, n, true, 1, one, 1);
+	(void)put(s, a, false, 1, 2); /* the kept one stays that */
+	n = past(s, n, true, 2, one, 2);
+	change_begin(s, "plan keep");
+	must(plan_keep(s, two, &e), &e);
+	change_commit(s);
+	n = past(s, n, true, 3, one, 2); /* by when they were stored */
+	(void)undo(s, 0);
+	n = past(s, n, true, 3, one, 2);
+	change_begin(s, "plan remove");
+	must(plan_remove(s, one, &e), &e);
+	change_commit(s);
+	n = past(s, n, false, 3, one, 2);
+	(void)undo(s, 0);
+	(void)past(s, n, true, 3, one, 2);
+	sound(s);
+	free(a);
+	free(b);
+	store_close(s);
+}
+
 /* --- what may not be stored; what is cleaned --- */
 
 static void refused(struct store *s, const struct plan_row *p, enum status want, const char *says)
@@ -735,8 +797,9 @@ int main(void)
 	    cmocka_unit_test(test_round_trip), cmocka_unit_test(test_editions),
 	    cmocka_unit_test(test_keep),       cmocka_unit_test(test_marks),
 	    cmocka_unit_test(test_undo),       cmocka_unit_test(test_undo_of_keeping),
-	    cmocka_unit_test(test_refused),    cmocka_unit_test(test_hostile),
-	    cmocka_unit_test(test_damage),     cmocka_unit_test(test_guards),
+	    cmocka_unit_test(test_past),       cmocka_unit_test(test_refused),
+	    cmocka_unit_test(test_hostile),    cmocka_unit_test(test_damage),
+	    cmocka_unit_test(test_guards),
 	};
 	return cmocka_run_group_tests_name("plans", tests, NULL, NULL);
 }
