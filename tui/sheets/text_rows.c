@@ -9,7 +9,7 @@
 
 char text_mark(int flag)
 {
-	return (char)('a' + flag);
+	return (char)(flag < 26 ? 'a' + flag : 'A' + flag - 26);
 }
 
 /* `after:altitude;flat:sun` as words: `after: altitude, flat: sun`. */
