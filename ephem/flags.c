@@ -65,8 +65,9 @@ const struct flag_rule flag_rules[FLAG_COUNT] = {
 				"may be off by a tenth to a third."},
     [FLAG_DEPTH_UNKNOWN] = {"depth_unknown",
 			    "The depth of the event is not known: nothing is forecast of its timing."},
-    [FLAG_SATURATED] = {"saturated", "The star's image comes too near to the detector's full well at this "
-				     "exposure: defocus, or expose less."},
+    [FLAG_SATURATED] = {"saturated",
+			"At some usable moment the star's image comes too near to the detector's "
+			"full well: defocus, or expose less."},
     [FLAG_EXPOSURE_LONG] = {"exposure_long",
 			    "One exposure takes more than a fifth of the ingress and blurs it."},
     [FLAG_NEIGHBOUR_DILUTED] = {"neighbour_diluted", "Light of a neighbouring star falls into the aperture: "

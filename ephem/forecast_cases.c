@@ -153,6 +153,9 @@ void forecast_make_cases(struct forecast_explain *x, const struct window *w, con
 	x->whole = x->ingress = x->egress = x->ingress_alone = x->egress_alone = none;
 	x->event = curve_of(x, ev);
 	x->timing_s = x->ideal_s = NAN;
+	if (w->cover.usable.n == 0 && !isnan(w->chance.done)) /* nobody is there: nothing is caught */
+		x->whole = x->ingress = x->egress = x->ingress_alone = x->egress_alone =
+		    (struct forecast_case){.mid_d = NAN, .timing_s = INFINITY};
 	if (!(x->depth_ppt > 0.0) || isnan(x->noise_ppt_min))
 		return;
 	struct placing p = {.ev = ev,

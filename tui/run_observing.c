@@ -94,6 +94,7 @@ void run_take_observing(struct run *r)
 	o.rules.need_min = stored[KEY_NEED_MIN];
 	o.rules.floor_min = stored[KEY_SYSTEMATIC_FLOOR_S] / 60.0;
 	o.fallback_bits = stored[KEY_FALLBACK_BITS];
+	o.unknown_share = stored[KEY_UNKNOWN_SHARE];
 	const double today = wall_now(&r->wall).mjd;
 	o.at_jd_tdb = MJD_ZERO_JD + (isnan(stored[KEY_AFTER_DATE]) ? today + stored[KEY_AFTER_YEARS] * YEAR_D
 								   : stored[KEY_AFTER_DATE]);

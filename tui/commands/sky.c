@@ -3,6 +3,7 @@
 
 #include "ephem/angle_text.h"
 #include "ephem/barycentre.h"
+#include "ephem/forecast.h"
 #include "ephem/mask.h"
 #include "ephem/number_text.h"
 #include "ephem/units.h"
@@ -28,6 +29,8 @@ struct sky {
 	double ra_deg, dec_deg, ha_deg, parallactic, airmass, alt_apparent_deg, mask_deg;
 	struct altaz star, sun, moon;
 	double moon_ra_deg, moon_dec_deg, moon_sep_deg, moon_lit, sun_sep_deg;
+	enum band_id band; /* of the next */
+	struct skyglow glow;
 	long epoch;
 	double phase, sigma_min;
 	struct tdb next_mid;
@@ -41,7 +44,7 @@ static void angles_deg(struct vec3 v, double *lon_deg, double *lat_deg)
 	*lat_deg /= DEG_RAD;
 }
 
-static void fill_star(struct sky *s, const struct night *n, const struct target *t)
+static void fill_star(struct sky *s, const struct run *r, const struct night *n, const struct target *t)
 {
 	struct star star = night_star(n, t);
 	double ra, dec, lst = night_lst_rad(n, s->t_d);
@@ -63,6 +66,8 @@ static void fill_star(struct sky *s, const struct night *n, const struct target 
 			       night_light_time_s(n, &star, s->t_d, ORIGIN_SUN) / DAY_S);
 	s->moon_sep_deg = night_moon_sep_deg(n, &star, s->t_d);
 	s->sun_sep_deg = night_sun_sep_deg(n, &star, s->t_d);
+	s->band = run_observing(r, &r->site) ? r->observing.optics.band : BAND_V;
+	s->glow = forecast_sky(n, &star, &r->observing, s->band, s->t_d);
 }
 
 /* The next mid-time lies on any later night: its UTC from single light times, not from this night's tables.
@@ -103,7 +108,7 @@ static struct sky sky_at(const struct night *n, struct utc utc)
 	s.bjd_tdb = s.hjd_utc = (struct jd2){NAN, NAN};
 	s.star = (struct altaz){NAN, NAN};
 	s.ra_deg = s.dec_deg = s.ha_deg = s.parallactic = s.airmass = s.alt_apparent_deg = s.mask_deg = NAN;
-	s.moon_sep_deg = s.sun_sep_deg = s.phase = s.sigma_min = NAN;
+	s.moon_sep_deg = s.sun_sep_deg = s.phase = s.sigma_min = s.glow.mag_arcsec2 = NAN;
 	return s;
 }
 
@@ -147,7 +152,7 @@ static void write_json(FILE *to, const struct sky *s, const struct leap_table *l
 		    {"moon_az_deg", s->moon.az_north_deg, 5},
 		    {"moon_sep_deg", s->moon_sep_deg, 5},
 		    {"moon_lit", s->moon_lit, 5},
-		    {"sky_mag_arcsec2", NAN, 3},
+		    {"sky_mag_arcsec2", s->glow.mag_arcsec2, 3},
 		    {"sun_sep_deg", s->sun_sep_deg, 5}};
 	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++)
 		json_number(&j, rows[i].key, rows[i].value, rows[i].decimals);
@@ -202,6 +207,12 @@ static void star_text(FILE *to, const struct sky *s, const struct target *t)
 			    : "  behind the horizon mask, which is %.1f deg high there\n",
 			s->mask_deg);
 	fprintf(to, "  %.1f deg from the Moon, %.1f from the Sun\n", s->moon_sep_deg, s->sun_sep_deg);
+	if (isfinite(s->glow.mag_arcsec2))
+		fprintf(to, "  sky behind it %.2f mag/arcsec2 in %s%s\n", s->glow.mag_arcsec2,
+			bands[s->band].name,
+			s->glow.limits & SKY_DARK_ASSUMED
+			    ? ", with the dark sky of a very dark site: this one's is not stored"
+			    : "");
 	fprintf(to, "  BJD_TDB %s, HJD_UTC %s\n", bjd, hjd);
 }
 
@@ -287,7 +298,7 @@ static int show_sky(struct run *r, const char *at)
 	night_set_sidereal(&night, utc); /* UT1 - UTC is given for this instant, not for the evening's noon */
 	struct sky s = sky_at(&night, utc);
 	if (t)
-		fill_star(&s, &night, t);
+		fill_star(&s, r, &night, t);
 	const struct prepared *p = t ? prepared_of(r, t) : NULL;
 	if (p && fill_ephemeris(&s, r, &night, p, &e) != ST_OK)
 		return diagnose_err("sky", &e, EXIT_UNMET);

@@ -20,7 +20,7 @@ void explain_words(const struct explained *e, FILE *to, const char *name, const 
 	if (e->plain)
 		fprintf(to, "  %s: %s. %s\n", name, words, what);
 	else
-		fprintf(to, "    %-22s %-22s %s\n", name, words, what);
+		fprintf(to, "    %-22s %-26s %s\n", name, words, what);
 }
 
 void explain_number(const struct explained *e, FILE *to, const char *name, double value, int decimals,
@@ -103,9 +103,10 @@ static void exposure(const struct explained *e, FILE *to)
 		     "the ingress, 1 to 120 s (common practice).");
 	explain_number(e, to, "exposure", x->exposure_s, 1, "s",
 		       x->exposure_given ? "The telescope's own." : "Chosen; column exposure_s.");
-	explain_number(e, to, "chosen would be", x->choice.exposure_s, 1, "s",
-		       x->choice.saturates ? "Even 1 s saturates." : "Where the star stands highest:");
-	explain_words(e, to, "  at", at, "Highest usable moment.");
+	if (x->exposure_given)
+		explain_number(e, to, "would be chosen", x->choice.exposure_s, 1, "s",
+			       x->choice.saturates ? "Even 1 s saturates." : "By the rule above.");
+	explain_words(e, to, "at", at, "Where the star stands highest in the usable time.");
 	explain_number(e, to, "peak", x->mid.noise.peak_e, 0, "e-",
 		       x->mid.noise.saturated ? "Too near to the full well." : "Of a pixel at the mid-time.");
 }
