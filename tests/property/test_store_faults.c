@@ -417,7 +417,7 @@ static void every_fault_of(const char *what, bool lasting, bool thin, bool (*one
 {
 	long at = 0, points = 0;
 	for (; one(path, at); points++)
-		at += thin && at > 20 ? 1 + at / 6 : SANITIZED ? 3 : 1;
+		at += thin && at > 20 ? 1 + at / 2 : SANITIZED ? 3 : 1;
 	print_message("%s%s: %ld points of %ld\n", what, lasting ? ", for good" : "", points, at);
 	assert_true(points > 10);
 }
