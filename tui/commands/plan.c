@@ -201,13 +201,14 @@ static int run_plan(struct run *r, int32_t mjd)
 		return usage_fault("--format", &e);
 	if (o->remove_draft)
 		return plan_remove_draft(r, mjd, o->remove_draft);
-	if (o->mark.n > 0) {
-		const int code = mark_all(r, mjd);
-		if (code != EXIT_DONE)
-			return code;
-	}
+	/* before anything is stored: what can't be written changes nothing */
 	if (run_out_open(r, &out, &e) != ST_OK)
 		return diagnose_whole(&e, EXIT_UNMET);
+	const int marked = o->mark.n > 0 ? mark_all(r, mjd) : EXIT_DONE;
+	if (marked != EXIT_DONE) {
+		out_abandon(&out);
+		return marked;
+	}
 	if (o->list)
 		return plan_list_write(r, mjd, format, &out);
 	if (o->compare)
