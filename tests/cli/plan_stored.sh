@@ -1,0 +1,38 @@
+# What a stored plan outlives, and what is refused before anything is stored.
+. tests/support/check.sh
+
+db=$scratch/a.db
+night=2026-04-22
+now='--now 2026-04-22T20:00:00Z'
+"$WANE" import config-example/demo-targets.csv --db "$db" >/dev/null 2>&1
+"$WANE" site add 'Tern Hill' --place 38.62,-109.36,2100 --zone America/Denver --db "$db" >/dev/null 2>&1
+plan() { "$WANE" plan $night --db "$db" "$@" 2>"$scratch/err"; }
+code() { plan "$@" >/dev/null; echo $?; }
+said() { grep -q -- "$1" "$scratch/err"; }
+changes() { "$WANE" history --db "$db" --format csv 2>/dev/null | wc -l; }
+
+# --- one event and all of its target: Tern 31 b has two that night
+plan $now --drop 'Tern 31 b' --pin 'Tern 31 b@4101' >"$scratch/one.txt"
+check "an event that is pinned stays when the rest of its target is dropped" grep -q '^  [0-9]* pinned .* Tern 31 b *ingress' "$scratch/one.txt"
+check "the other is dropped" grep -q '^  Tern 31 b (epoch 4100): dropped by you$' "$scratch/one.txt"
+plan $now --pin 'Tern 31 b' --drop 'Tern 31 b@4101' >"$scratch/one.txt"
+check "and the other way round" grep -q '^  [0-9]* pinned .* Tern 31 b *egress' "$scratch/one.txt"
+check "pinned in two spellings is pinned once" test "$(plan $now --pin 'Tern 14 b' --pin tern14b | grep '^Pinned')" = 'Pinned: Tern 14 b'
+
+# --- nothing is stored when the result can't be written
+plan $now --keep >/dev/null
+echo old >"$scratch/there.txt"
+before=$(changes)
+check "--mark with a file that exists: exit 1" test "$(code $now --mark 'Tern 66 b=done' --out "$scratch/there.txt")" = 1
+check "the file is as it was" test "$(cat "$scratch/there.txt")" = old
+check "and nothing was marked" test "$(changes)" = "$before"
+check "a mark that can't be set writes no file" test "$(code $now --mark 'Tern 14 b=done' --out "$scratch/new.txt")$(ls "$scratch" | grep -c new.txt)" = 10
+
+# --- editions
+since() { "$WANE" sheet $night --db "$db" --since "$1" >/dev/null 2>"$scratch/err"; echo $?; }
+check "--since 1" test "$(since 1)" = 0
+check "there is no edition 0: exit 1" test "$(since 0)" = 1
+check "in words" said 'no such edition of the plan (got 0, expected 1 to 1)'
+check "nor one ahead" test "$(since 2)" = 1
+
+finish
