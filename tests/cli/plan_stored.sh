@@ -35,4 +35,18 @@ check "there is no edition 0: exit 1" test "$(since 0)" = 1
 check "in words" said 'no such edition of the plan (got 0, expected 1 to 1)'
 check "nor one ahead" test "$(since 2)" = 1
 
+# --- a stored plan is shown as it was stored
+plan $now >"$scratch/kept.txt"
+check "without a remark" test ! -s "$scratch/err"
+plan $now --sun-limit -18 --target 'Tern 8 b' >"$scratch/same.txt"
+check "whatever limits are given" cmp -s "$scratch/kept.txt" "$scratch/same.txt"
+check "and it is said that they have no part in it" said '^wane: plan: the plan is shown as it was stored'
+"$WANE" sheet $night --db "$db" --kind both >/dev/null 2>"$scratch/err"
+check "by sheets too" said '^wane: sheet: the plan is shown as it was stored'
+plan $now --sun-limit -18 --rebuild >/dev/null
+check "not when it is worked out anew" test "$(grep -c 'as it was stored' "$scratch/err")" = 0
+check "a position has no events to plan: exit 2" test "$(code $now --radec 10,10)" = 2
+check "nor anything for a sheet" test "$("$WANE" sheet $night --db "$db" --radec 10,10 >/dev/null 2>&1; echo $?)" = 2
+check "so it replaces no kept plan" test "$(code $now --radec 10,10 --afresh --keep)$(plan --list | grep -c 'kept: edition 1')" = 21
+
 finish

@@ -46,6 +46,29 @@ int plan_fault(const struct err *e)
 
 /* --- what belongs together on the command line --- */
 
+bool plan_options_fit(const struct options *o, const char *command)
+{
+	char got[ERR_QUOTE_MAX];
+	if (!one_site(o, command))
+		return false;
+	if (!o->radec)
+		return true;
+	err_quote(o->radec, strlen(o->radec), got);
+	diagnose("--radec", "a position has no events to plan (got \"%s\", expected --target NAME)", got);
+	return false;
+}
+
+void plan_unused_note(const struct options *o, const char *command)
+{
+	bool given = o->n_targets > 0 || o->kinds || o->no_allotments || o->mask || !isnan(o->ut1_utc_s);
+	for (int id = 0; id < LIM_COUNT; id++)
+		given = given || o->limit_given[id];
+	if (given)
+		diagnose(command,
+			 "the plan is shown as it was stored: what was given of targets, kinds, limits "
+			 "and allotments takes part when it is worked out anew (wane plan DATE --rebuild)");
+}
+
 /* What is at fault, or NULL. */
 static const char *at_odds(const struct options *o)
 {
@@ -155,6 +178,9 @@ static int write_plan(struct run *r, struct plan_view *v, enum format format, st
 	for (size_t i = 0; i < v->n_left; i++)
 		if (strncmp(v->left[i].reason, "pinned", strlen("pinned")) == 0)
 			diagnose("plan", "%.200s: %.400s", v->left[i].target, v->left[i].reason);
+	const struct plan_wish wish = plan_wish_of(r->options);
+	if (v->stored && !wish_any(&wish))
+		plan_unused_note(r->options, "plan");
 	if (!v->stored)
 		diagnose("plan",
 			 "shown, not stored (--keep stores and keeps it, --save stores it as a draft)");
@@ -223,7 +249,7 @@ int command_plan(const struct env *env, const struct options *o)
 	int code, needs = NEED_STORE | NEED_SITE | NEED_TARGETS;
 	int32_t mjd;
 	const char *date = o->n_words > 1 ? o->word[1] : NULL;
-	if (!one_site(o, "plan"))
+	if (!plan_options_fit(o, "plan"))
 		return EXIT_USAGE;
 	if (at_odds(o)) {
 		diagnose("plan", "%s", at_odds(o));
