@@ -203,6 +203,12 @@ enum status plan_get(struct run *r, int32_t evening_mjd, const struct plan_wish 
 	if (echo)
 		*echo = NULL;
 	enum status s = stored_find(r, evening_mjd, wish->draft, &row, e);
+	if (s == ST_OK && r->past && (row.id == 0 || wish_any(wish))) {
+		s = err_set(e, ST_ABSENT, "%.80s: nothing is planned for what is no longer stored%s",
+			    r->has_telescope ? r->telescope.name : r->site.name,
+			    row.id == 0 ? ", and no plan of this night is" : "");
+		plan_row_free(&row);
+	}
 	if (s == ST_OK) {
 		s = get(r, evening_mjd, wish, &row, night, out, &lines, e);
 		plan_row_free(&row);

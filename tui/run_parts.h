@@ -25,6 +25,12 @@ void run_half_rule(const struct run *r, int64_t site_id, struct half_rule *out);
 /* The telescope's limits over those of the run. */
 void run_put_telescope_limits(struct run *r);
 
+/* --- run_past.c --- */
+/* A site (of the chosen site, a telescope) that was removed, by name, for the commands that show stored plans: said, and r->past set. NULL none.
+ * *out is the caller's to free either way and owns what is returned. */
+const struct site *run_past_site(struct run *r, const char *name, struct site_list *out);
+const struct telescope *run_past_telescope(struct run *r, const char *name, struct telescope_list *out);
+
 /* --- run_allotted.c --- */
 /* Cuts the view's free time by the site's allotments. v->night is built. */
 void run_cut_by_allotments(const struct run *r, struct night_view *v);

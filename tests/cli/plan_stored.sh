@@ -49,4 +49,26 @@ check "a position has no events to plan: exit 2" test "$(code $now --radec 10,10
 check "nor anything for a sheet" test "$("$WANE" sheet $night --db "$db" --radec 10,10 >/dev/null 2>&1; echo $?)" = 2
 check "so it replaces no kept plan" test "$(code $now --radec 10,10 --afresh --keep)$(plan --list | grep -c 'kept: edition 1')" = 21
 
+# --- a telescope, then a site, that was removed
+t=$scratch/t.db
+cp "$db" "$t"
+"$WANE" telescope add T1 --db "$t" >/dev/null 2>&1
+"$WANE" plan $night $now --telescope T1 --keep --db "$t" >/dev/null 2>&1
+"$WANE" sheet $night --telescope T1 --format ics --db "$t" >"$scratch/there.ics" 2>/dev/null
+"$WANE" telescope remove T1 --db "$t" >/dev/null 2>&1
+past() { "$WANE" plan $night $now --telescope t1 --db "$t" "$@" 2>"$scratch/err"; }
+check "the kept plan of a telescope that was removed is shown" test "$(past | grep -c 'kept plan (draft main, edition 1)')" = 1
+check "and it is said" said '^wane: telescope: T1 is no longer stored: only its stored plans are shown$'
+check "its sheet is as it was" sh -c '"$1" sheet 2026-04-22 --telescope T1 --format ics --db "$2" 2>/dev/null | cmp -s - "$3"' - "$WANE" "$t" "$scratch/there.ics"
+check "no other is made of it: exit 1" test "$(past --rebuild >/dev/null; echo $?)" = 1
+check "in words" said '^wane: plan: T1: nothing is planned for what is no longer stored$'
+check "nor another night's" test "$("$WANE" plan 2026-04-23 --telescope T1 --db "$t" >/dev/null 2>&1; echo $?)" = 1
+check "nights know none of it: exit 2" test "$("$WANE" night $night --telescope T1 --db "$t" >/dev/null 2>&1; echo $?)" = 2
+check "one that never was: exit 2" test "$("$WANE" plan $night --telescope T2 --db "$t" >/dev/null 2>&1; echo $?)" = 2
+"$WANE" site remove 'Tern Hill' --db "$t" >/dev/null 2>&1
+check "the plans of a site that was removed are shown" test "$("$WANE" plan $night --site 'tern hill' --telescope T1 --db "$t" 2>/dev/null | grep -c 'kept plan (draft main, edition 1)')" = 1
+check "with and without a telescope" test "$("$WANE" sheet $night --site 'tern hill' --db "$t" 2>/dev/null | grep -c '^Plan:  *kept plan (draft main, edition 1)$')" = 1
+check "as another store has it in its zone" test "$("$WANE" plan $night --site 'Tern Hill' --db "$t" 2>/dev/null)" = "$(plan)"
+check "the store is sound" "$WANE" check --db "$t"
+
 finish
