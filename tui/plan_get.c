@@ -161,8 +161,11 @@ static enum status make_anew(struct plan_view *v, struct run *r, const struct pl
 		s = wished_windows(v, wish, e);
 	if (s == ST_OK)
 		s = plan_stand(v, wish, &clock, c, echo, &standing, e);
+	const char *stored_limits = v->limits;
 	if (s == ST_OK)
 		s = head_of_made(v, e);
+	if (s == ST_OK && v->limits)
+		limits_echo(echo, stored_limits, v->limits);
 	if (s == ST_OK)
 		s = plan_propose(v, c, &standing, wish->costs, e);
 	return s;

@@ -49,6 +49,19 @@ check "a position has no events to plan: exit 2" test "$(code $now --radec 10,10
 check "nor anything for a sheet" test "$("$WANE" sheet $night --db "$db" --radec 10,10 >/dev/null 2>&1; echo $?)" = 2
 check "so it replaces no kept plan" test "$(code $now --radec 10,10 --afresh --keep)$(plan --list | grep -c 'kept: edition 1')" = 21
 
+# --- limits that are not given again
+l=$scratch/l.db
+cp "$db" "$l"
+limits() { "$WANE" plan $night $now --draft late --db "$l" "$@" >"$scratch/late.txt" 2>"$scratch/err"; }
+limits --sun-limit -18 --airmass-limit 1.9 --save
+check "a draft made with limits of its own" test "$(grep -c worked "$scratch/err")" = 0
+limits --pin 'Tern 14 b'
+check "worked out anew without them: that is said" said '^wane: plan: worked out with sun_limit_deg=-12, sun_limit_baseline_deg=-12, airmass_limit=none; the stored plan was made with sun_limit_deg=-18, sun_limit_baseline_deg=-18, airmass_limit=1.9$'
+limits --pin 'Tern 14 b' --sun-limit -18 --airmass-limit 1.9
+check "with them there is nothing to say" test "$(grep -c worked "$scratch/err")" = 0
+limits
+check "nor where it is only shown" test "$(grep -c worked "$scratch/err")" = 0
+
 # --- a telescope, then a site, that was removed
 t=$scratch/t.db
 cp "$db" "$t"

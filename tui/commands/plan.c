@@ -178,9 +178,6 @@ static int write_plan(struct run *r, struct plan_view *v, enum format format, st
 	for (size_t i = 0; i < v->n_left; i++)
 		if (strncmp(v->left[i].reason, "pinned", strlen("pinned")) == 0)
 			diagnose("plan", "%.200s: %.400s", v->left[i].target, v->left[i].reason);
-	const struct plan_wish wish = plan_wish_of(r->options);
-	if (v->stored && !wish_any(&wish))
-		plan_unused_note(r->options, "plan");
 	if (!v->stored)
 		diagnose("plan",
 			 "shown, not stored (--keep stores and keeps it, --save stores it as a draft)");
@@ -203,6 +200,8 @@ static int show(struct run *r, int32_t mjd, enum format format, struct out *out)
 	echo_lines(echo);
 	if (s == ST_OK) {
 		s = draft_there(o, &view, &e);
+		if (view.stored)
+			plan_unused_note(o, "plan");
 		if (s == ST_OK && (o->keep || o->save))
 			s = plan_save(r, &view, o->draft, o->keep, &e);
 		code = s == ST_OK ? write_plan(r, &view, format, out) : plan_fault(&e);
