@@ -78,7 +78,7 @@ static void note_bad(struct site_list *out, const struct cell *name)
 		 clean);
 }
 
-enum status sites_load(struct store *s, struct site_list *out, struct err *e)
+static enum status load(struct store *s, bool removed, struct site_list *out, struct err *e)
 {
 	struct cell cell[ROW_CELLS_MAX];
 	bool row = false;
@@ -87,7 +87,7 @@ enum status sites_load(struct store *s, struct site_list *out, struct err *e)
 	while (st == ST_OK && (st = sql_step(s, SQL_SITE_LOAD, &row, e)) == ST_OK && row) {
 		if (!row_read(s, SQL_SITE_LOAD, 0, &site_table, cell)) {
 			note_bad(out, &cell[SITE_NAME]);
-		} else if (!cell[SITE_REMOVED].u.i) {
+		} else if ((cell[SITE_REMOVED].u.i != 0) == removed) {
 			st = keep_site(out, cell, e);
 		}
 	}
@@ -95,6 +95,16 @@ enum status sites_load(struct store *s, struct site_list *out, struct err *e)
 	if (st != ST_OK)
 		site_list_free(out);
 	return st;
+}
+
+enum status sites_load(struct store *s, struct site_list *out, struct err *e)
+{
+	return load(s, false, out, e);
+}
+
+enum status sites_load_removed(struct store *s, struct site_list *out, struct err *e)
+{
+	return load(s, true, out, e);
 }
 
 void site_list_free(struct site_list *list)

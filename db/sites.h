@@ -16,6 +16,8 @@ struct site_list {
 	char bad[192];	   /* one line that names the first of them; "" none */
 };
 MUST_USE enum status sites_load(struct store *s, struct site_list *out, struct err *e);
+/* Those that were removed: what was planned for them stays. */
+MUST_USE enum status sites_load_removed(struct store *s, struct site_list *out, struct err *e);
 void site_list_free(struct site_list *list);
 long site_list_find(const struct site_list *list, const char *name);
 /* Inside a change set. Ranges: latitude -90..90, longitude -180..180, height -450..9000; name by name_check.

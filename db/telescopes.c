@@ -136,7 +136,7 @@ static void note_bad(struct telescope_list *out, const struct cell *name)
 		 "the checksum of telescope %s is wrong: left out; see `wane check`", clean);
 }
 
-enum status telescopes_load(struct store *s, struct telescope_list *out, struct err *e)
+static enum status load(struct store *s, bool removed, struct telescope_list *out, struct err *e)
 {
 	struct cell cell[ROW_CELLS_MAX];
 	struct loading l = {.out = out};
@@ -146,7 +146,7 @@ enum status telescopes_load(struct store *s, struct telescope_list *out, struct 
 	while (st == ST_OK && (st = sql_step(s, SQL_TELESCOPE_LOAD, &row, e)) == ST_OK && row) {
 		if (!row_read(s, SQL_TELESCOPE_LOAD, 0, &telescope_rows, cell))
 			note_bad(out, &cell[TELESCOPE_NAME]);
-		else if (!cell[TELESCOPE_REMOVED].u.i)
+		else if ((cell[TELESCOPE_REMOVED].u.i != 0) == removed)
 			st = keep(&l, cell, e);
 	}
 	sql_reset(s, SQL_TELESCOPE_LOAD);
@@ -158,6 +158,16 @@ enum status telescopes_load(struct store *s, struct telescope_list *out, struct 
 	if (st != ST_OK)
 		telescope_list_free(out);
 	return st;
+}
+
+enum status telescopes_load(struct store *s, struct telescope_list *out, struct err *e)
+{
+	return load(s, false, out, e);
+}
+
+enum status telescopes_load_removed(struct store *s, struct telescope_list *out, struct err *e)
+{
+	return load(s, true, out, e);
 }
 
 void telescope_list_free(struct telescope_list *list)

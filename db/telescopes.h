@@ -35,6 +35,8 @@ struct telescope_list {
 	char bad[192];
 };
 MUST_USE enum status telescopes_load(struct store *s, struct telescope_list *out, struct err *e);
+/* Those that were removed: what was planned for them stays. */
+MUST_USE enum status telescopes_load_removed(struct store *s, struct telescope_list *out, struct err *e);
 void telescope_list_free(struct telescope_list *list);
 /* Index by name (folded) at a site; -1 none. */
 long telescope_list_find(const struct telescope_list *list, int64_t site_id, const char *name);

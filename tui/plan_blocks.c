@@ -76,8 +76,10 @@ static enum status split_choice(const struct plan_choice *c, struct typed_block 
 
 /* --- echo --- */
 
-static void echo_line(struct echo *echo, const char *line)
+void echo_line(struct echo *echo, const char *line)
 {
+	if (!echo)
+		return;
 	const size_t n = strlen(line);
 	char *longer = echo->failed ? NULL : realloc(echo->text, echo->n + n + 2);
 	if (!longer) {

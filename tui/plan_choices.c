@@ -203,16 +203,47 @@ static enum status named(struct err *e, const char *word, enum status s)
 	return err_set(e, s, "%s: %.440s", word, inner.text);
 }
 
-static enum status pin_or_drop(struct plan_view *v, struct plan_choices *c, enum choice_kind kind,
+/* Whether the same events are chosen already, under whatever spelling of the name. */
+static bool has_choice(const struct plan_view *v, const struct plan_choices *c, enum choice_kind kind,
+		       const struct event_name *name)
+{
+	for (size_t i = 0; i < c->n; i++) {
+		struct event_name other;
+		if (c->choice[i].kind == kind &&
+		    event_name_find(v->run, c->choice[i].text, &other, NULL) == ST_OK &&
+		    covers(name, &other) && covers(&other, name))
+			return true;
+	}
+	return false;
+}
+
+/* Of names with an epoch, or of those without. */
+static enum status pin_or_drop(struct plan_view *v, struct plan_choices *c, enum choice_kind kind, bool one,
 			       const char *text, struct err *e)
 {
 	struct event_name name;
 	enum status s = event_name_find(v->run, text, &name, e);
-	if (s == ST_OK) {
+	if (s == ST_OK && name.one == one) {
 		(void)take_away(v, c, kind == CHOICE_PIN ? CHOICE_DROP : CHOICE_PIN, &name);
-		s = add(v, c, kind, text, e);
+		if (!has_choice(v, c, kind, &name))
+			s = add(v, c, kind, text, e);
 	}
 	return s == ST_OK ? s : named(e, choice_words[kind], s);
+}
+
+/* One event goes before all of its target: those without an epoch first, so that they take none of the others
+ * away. */
+static enum status pins_and_drops(struct plan_view *v, struct plan_choices *c, const struct plan_wish *w,
+				  struct err *e)
+{
+	enum status s = ST_OK;
+	for (int one = 0; one < 2; one++) {
+		for (int i = 0; s == ST_OK && i < w->n_pin; i++)
+			s = pin_or_drop(v, c, CHOICE_PIN, one != 0, w->pin[i], e);
+		for (int i = 0; s == ST_OK && i < w->n_drop; i++)
+			s = pin_or_drop(v, c, CHOICE_DROP, one != 0, w->drop[i], e);
+	}
+	return s;
 }
 
 static enum status free_event(struct plan_view *v, struct plan_choices *c, const char *text, struct err *e)
@@ -285,10 +316,8 @@ enum status choices_wish(struct plan_view *v, struct plan_choices *c, const stru
 		s = take_span(c, "unblock", true, w->unblock[i], e);
 	for (int i = 0; s == ST_OK && i < w->n_unlost; i++)
 		s = take_span(c, "unlost", false, w->unlost[i], e);
-	for (int i = 0; s == ST_OK && i < w->n_pin; i++)
-		s = pin_or_drop(v, c, CHOICE_PIN, w->pin[i], e);
-	for (int i = 0; s == ST_OK && i < w->n_drop; i++)
-		s = pin_or_drop(v, c, CHOICE_DROP, w->drop[i], e);
+	if (s == ST_OK)
+		s = pins_and_drops(v, c, w, e);
 	for (int i = 0; s == ST_OK && i < w->n_block; i++)
 		s = add(v, c, CHOICE_BLOCK, w->block[i], e);
 	for (int i = 0; s == ST_OK && i < w->n_lost; i++)

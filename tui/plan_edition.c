@@ -19,7 +19,8 @@ enum status plan_edition(const struct plan_view *of, int edition, struct plan_vi
 	if (!r->store || !of->stored)
 		return err_set(e, ST_ABSENT, "no stored plan of this night, so none of its editions (got %d)",
 			       edition);
-	enum status s = plan_load(r->store, of->plan_id, edition, &row, e);
+	/* the store takes 0 for the newest */
+	enum status s = edition > 0 ? plan_load(r->store, of->plan_id, edition, &row, e) : ST_ABSENT;
 	if (s == ST_ABSENT)
 		return err_set(e, ST_ABSENT, "no such edition of the plan (got %d, expected 1 to %d)",
 			       edition, of->edition);

@@ -161,8 +161,11 @@ static enum status make_anew(struct plan_view *v, struct run *r, const struct pl
 		s = wished_windows(v, wish, e);
 	if (s == ST_OK)
 		s = plan_stand(v, wish, &clock, c, echo, &standing, e);
+	const char *stored_limits = v->limits;
 	if (s == ST_OK)
 		s = head_of_made(v, e);
+	if (s == ST_OK && v->limits)
+		limits_echo(echo, stored_limits, v->limits);
 	if (s == ST_OK)
 		s = plan_propose(v, c, &standing, wish->costs, e);
 	return s;
@@ -203,6 +206,12 @@ enum status plan_get(struct run *r, int32_t evening_mjd, const struct plan_wish 
 	if (echo)
 		*echo = NULL;
 	enum status s = stored_find(r, evening_mjd, wish->draft, &row, e);
+	if (s == ST_OK && r->past && (row.id == 0 || wish_any(wish))) {
+		s = err_set(e, ST_ABSENT, "%.80s: nothing is planned for what is no longer stored%s",
+			    r->has_telescope ? r->telescope.name : r->site.name,
+			    row.id == 0 ? ", and no plan of this night is" : "");
+		plan_row_free(&row);
+	}
 	if (s == ST_OK) {
 		s = get(r, evening_mjd, wish, &row, night, out, &lines, e);
 		plan_row_free(&row);

@@ -75,6 +75,7 @@ struct echo {
 	size_t n;
 	bool failed;
 };
+void echo_line(struct echo *echo, const char *line);
 void echo_add(struct echo *echo, const char *what, const struct plan_clock *clock, double from_d, double to_d);
 MUST_USE enum status blocks_resolve(struct plan_view *v, const struct plan_choices *c, const struct plan_clock *clock,
 				    const struct plan_wish *wish, struct echo *echo, struct err *e);
@@ -97,6 +98,8 @@ MUST_USE enum status stored_moves(struct plan_view *v, double moved_min, struct 
 /* What the night's plans have been through: revisions, and, where with_gone, what was kept once and is in v no more. */
 MUST_USE enum status stored_past(struct plan_view *v, bool with_gone, struct err *e);
 
+/* Says which limits and rules of moving are not those that a stored plan, now worked out anew, was made with. Texts of plan_limits_text. */
+void limits_echo(struct echo *echo, const char *stored, const char *now);
 /* Effective limits and rules of moving, `name=value` with a tab between; NULL no memory. */
 const char *plan_limits_text(struct plan_view *v);
 /* What was left out, a line each: target, kind, epoch, reason, cost. NULL no memory. */

@@ -35,18 +35,26 @@ static bool stands(const struct plan_standing *standing, const struct window *w)
 	return false;
 }
 
+/* Whether a window is pinned (or dropped): what is chosen of that event goes before what is chosen of its
+ * target.
+ */
 static bool chosen(const struct plan_view *v, const struct plan_choices *c, enum choice_kind kind,
 		   const struct window *w)
 {
+	bool one = false, found = false;
 	for (size_t i = 0; i < c->n; i++) {
 		struct event_name name;
+		const enum choice_kind k = c->choice[i].kind;
 		/* a pin may have outlived its target */
-		if (c->choice[i].kind == kind &&
-		    event_name_find(v->run, c->choice[i].text, &name, NULL) == ST_OK &&
-		    name.target == w->event.prepared->target && (!name.one || name.epoch == w->event.epoch))
-			return true;
+		if ((k != CHOICE_PIN && k != CHOICE_DROP) ||
+		    event_name_find(v->run, c->choice[i].text, &name, NULL) != ST_OK ||
+		    name.target != w->event.prepared->target ||
+		    (name.one ? name.epoch != w->event.epoch : one))
+			continue;
+		found = k == kind || (found && one == name.one);
+		one = name.one;
 	}
-	return false;
+	return found;
 }
 
 /* Poor time takes worth from a window as if its chances and its coverage were that much smaller. */

@@ -24,7 +24,8 @@ static struct moment moment_of(const struct plan_view *v)
 
 /* Limbs of an item's events. planned: those that the item holds. */
 struct limbs {
-	int planned, hit, before; /* all; taken by lost time; over before that began */
+	int planned, hit, before; /* all; taken by lost time; over before what was taken */
+	double hit_until_d;	  /* end of the last limb that was taken; -INFINITY none */
 	bool in_hit, out_hit;
 	bool ahead; /* an egress that was not planned is still to come */
 };
@@ -41,7 +42,9 @@ static void count(struct limbs *l, const struct intervals *lost, bool hit, doubl
 {
 	l->planned++;
 	l->hit += hit;
-	if (!hit && lost->n > 0 && end_d <= lost->s[0].from_d)
+	if (hit)
+		l->hit_until_d = fmax(l->hit_until_d, end_d);
+	else if (lost->n > 0 && end_d <= fmax(lost->s[0].from_d, l->hit_until_d))
 		l->before++;
 }
 
@@ -86,11 +89,15 @@ static bool let_go(struct plan_view *v, struct plan_item_view *item, const struc
 {
 	const struct intervals lost = lost_time(v);
 	const double now_d = at->inside ? at->now_d : night_of_utc(&v->night->night, item->end);
-	struct limbs l = {.planned = 0};
+	struct limbs l = {.hit_until_d = -INFINITY};
 	char note[160];
 	*ahead = false;
-	for (size_t i = 0; i < item->n; i++)
-		member_limbs(v, &item->member[i], &lost, now_d, &l);
+	/* the first pass finds the last limb that was taken, whichever event it belongs to */
+	for (int pass = 0; pass < 2; pass++) {
+		l = (struct limbs){.hit_until_d = l.hit_until_d};
+		for (size_t i = 0; i < item->n; i++)
+			member_limbs(v, &item->member[i], &lost, now_d, &l);
+	}
 	if (l.hit == 0 || l.hit + l.before < l.planned)
 		return false;
 	item->state = l.before > 0 ? PLAN_PARTLY : PLAN_LOST;

@@ -82,6 +82,46 @@ const char *plan_limits_text(struct plan_view *v)
 	return plan_copy(v, text);
 }
 
+/* The value of a name in a limits text, and its length; NULL it has none. */
+static const char *limit_value(const char *text, const char *name, size_t n, size_t *length)
+{
+	for (const char *at = text; *at;) {
+		const size_t cell = strcspn(at, "\t");
+		if (cell > n && at[n] == '=' && strncmp(at, name, n) == 0) {
+			*length = cell - n - 1;
+			return at + n + 1;
+		}
+		at += cell + (at[cell] == '\t');
+	}
+	return NULL;
+}
+
+static void put_limit(char *out, size_t n, const char *name, int name_n, const char *value, size_t value_n)
+{
+	const size_t used = strlen(out);
+	snprintf(out + used, n - used, "%s%.*s=%.*s", out[0] ? ", " : "", name_n, name,
+		 value_n ? (int)value_n : 4, value_n ? value : "none");
+}
+
+void limits_echo(struct echo *echo, const char *stored, const char *now)
+{
+	char new[400] = "", old[400] = "", line[900];
+	for (const char *at = now; *at;) {
+		const size_t cell = strcspn(at, "\t"), name = strcspn(at, "=");
+		size_t n = 0;
+		const char *was = name < cell ? limit_value(stored, at, name, &n) : NULL;
+		if (was && (n != cell - name - 1 || strncmp(was, at + name + 1, n) != 0)) {
+			put_limit(new, sizeof new, at, (int)name, at + name + 1, cell - name - 1);
+			put_limit(old, sizeof old, at, (int)name, was, n);
+		}
+		at += cell + (at[cell] == '\t');
+	}
+	if (!new[0])
+		return;
+	snprintf(line, sizeof line, "worked out with %s; the stored plan was made with %s", new, old);
+	echo_line(echo, line);
+}
+
 static void read_rules(struct plan_rules *rules, const char *text)
 {
 	for (const char *at = text; *at;) {

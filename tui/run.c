@@ -233,9 +233,16 @@ static enum status choose_site(struct run *r, int needs, struct err *e)
 	}
 	if (!(needs & (NEED_SITE | NEED_FIRST_SITE)) && o->n_sites == 0 && !o->telescope)
 		return ST_OK;
-	if (o->n_sites > 0)
+	if (o->n_sites > 0) {
+		struct site_list removed = {.n = 0};
 		s = find_site(r, o->site[0], &index, e);
-	else if (r->settings.site[0]) {
+		const struct site *past = s == ST_OK ? NULL : run_past_site(r, o->site[0], &removed);
+		if (past)
+			take_site(r, past);
+		site_list_free(&removed);
+		if (past)
+			return ST_OK;
+	} else if (r->settings.site[0]) {
 		if (find_site(r, r->settings.site, &index, e) != ST_OK)
 			s = err_set(e, ST_ABSENT,
 				    "settings: the site \"%.80s\" of the settings file is not stored",

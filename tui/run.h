@@ -48,6 +48,7 @@ struct run {
 	struct telescope_list telescopes; /* of all sites */
 	struct telescope telescope; /* the chosen one, of the chosen site; telescope_empty() when none. Its texts are in telescope_text */
 	bool has_telescope;
+	bool past; /* site or telescope were removed: only what is stored of their plans can be shown */
 	char *telescope_text;
 	struct allotment_list allotments; /* of all sites */
 	struct stored_values stored; /* settings that lie in the store */

@@ -33,6 +33,11 @@ void run_drop_observing(struct run *r);
 void run_take_observing(struct run *r);
 /* What is known of each target, laid at r->prepared: after run_prepare's own work, and after another site or telescope was chosen. */
 MUST_USE enum status run_fill_observed(struct run *r, struct err *e);
+/* --- run_past.c --- */
+/* A site (of the chosen site, a telescope) that was removed, by name, for the commands that show stored plans: said, and r->past set. NULL none.
+ * *out is the caller's to free either way and owns what is returned. */
+const struct site *run_past_site(struct run *r, const char *name, struct site_list *out);
+const struct telescope *run_past_telescope(struct run *r, const char *name, struct telescope_list *out);
 
 /* --- run_allotted.c --- */
 /* Cuts the view's free time by the site's allotments. v->night is built. */

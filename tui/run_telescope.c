@@ -99,6 +99,16 @@ static enum status no_such(const struct run *r, const char *name, struct err *e)
 		       r->site.name, got, names);
 }
 
+/* One that was removed, where plans that are stored for it can be shown. */
+static enum status take_past(struct run *r, const char *name, struct err *e)
+{
+	struct telescope_list removed;
+	const struct telescope *past = run_past_telescope(r, name, &removed);
+	enum status s = past ? take(r, past, e) : no_such(r, name, e);
+	telescope_list_free(&removed);
+	return s;
+}
+
 /* The site's only telescope; NULL when it has none or several. */
 static const struct telescope *only_one(const struct run *r)
 {
@@ -167,7 +177,7 @@ enum status run_choose_telescope(struct run *r, bool named, struct err *e)
 	if (!t && o->telescope) {
 		long i = r->site.id == 0 ? -1 : telescope_list_find(&r->telescopes, r->site.id, o->telescope);
 		if (i < 0 && named)
-			return no_such(r, o->telescope, e);
+			return take_past(r, o->telescope, e);
 		t = i < 0 ? NULL : &r->telescopes.telescope[i];
 	}
 	if (!t && !several && r->site.id != 0)

@@ -159,6 +159,32 @@ static void taking_back(void **state)
 	bench_close(b);
 }
 
+/* One event goes before all of its target, in whichever order they are typed; another spelling is no other
+ * choice. */
+static void one_before_all(void **state)
+{
+	static const char *const all[] = {"Tern 31 b"}, *const event[] = {"Tern 31 b@4101"};
+	const struct plan_wish one[] = {
+	    {.pin = event, .n_pin = 1, .drop = all, .n_drop = 1},
+	    {.drop = event, .n_drop = 1, .pin = all, .n_pin = 1},
+	};
+	(void)state;
+	struct bench *b = bench_open();
+	for (size_t i = 0; i < sizeof one / sizeof one[0]; i++) {
+		b->c.n = 0;
+		assert_int_equal(wish(b, &one[i]), ST_OK);
+		assert_int_equal(b->c.n, 2);
+		assert_string_equal(b->c.choice[1].text, "Tern 31 b@4101");
+		assert_int_equal(b->c.choice[1].kind, i == 0 ? CHOICE_PIN : CHOICE_DROP);
+	}
+	b->c.n = 0;
+	assert_int_equal(wish(b, &(struct plan_wish){.pin = LIST("Tern 14 b", "tern14B"), .n_pin = 2}),
+			 ST_OK);
+	assert_int_equal(wish(b, &(struct plan_wish){.pin = LIST("TERN-14-B"), .n_pin = 1}), ST_OK);
+	assert_int_equal(b->c.n, 1);
+	bench_close(b);
+}
+
 static void names_of_events(void **state)
 {
 	(void)state;
@@ -312,10 +338,11 @@ static void typed_wrong(void **state)
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
-	    cmocka_unit_test(lines_come_back), cmocka_unit_test(lines_that_cannot_be_read),
-	    cmocka_unit_test(taking_back),     cmocka_unit_test(names_of_events),
-	    cmocka_unit_test(standing_blocks), cmocka_unit_test(free_time_is_cut),
-	    cmocka_unit_test(poor_time),       cmocka_unit_test(typed_wrong),
+	    cmocka_unit_test(lines_come_back),	cmocka_unit_test(lines_that_cannot_be_read),
+	    cmocka_unit_test(taking_back),	cmocka_unit_test(one_before_all),
+	    cmocka_unit_test(names_of_events),	cmocka_unit_test(standing_blocks),
+	    cmocka_unit_test(free_time_is_cut), cmocka_unit_test(poor_time),
+	    cmocka_unit_test(typed_wrong),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);
 }

@@ -287,6 +287,33 @@ static void lost_time(void **state)
 	plan_run_close(p);
 }
 
+/* Tern 27 b and c in one pointing from 21:29 MDT: b from T1 21:50 to T2 22:09, T3 00:57; c's ingress from
+ * 22:16 to 22:36. Lost time over b's egress leaves no limb ahead: what was caught of the item is kept as
+ * partly, though the last minutes of c's ingress were lost too, or other time was lost before the item began.
+ */
+static void lost_after_a_limb(void **state)
+{
+	static const char *const spans[][2] = {{"22:30..06:00"}, {"20:10..20:20", "23:00..06:00"}};
+	(void)state;
+	for (size_t i = 0; i < sizeof spans / sizeof spans[0]; i++) {
+		struct plan_run *p = plan_run_open(AFTERNOON);
+		struct plan_case c;
+		keep_one(p);
+		plan_run_now(p, "2026-04-23T06:00:00Z");
+		const struct plan_wish lost = {
+		    .lost = spans[i], .n_lost = spans[i][1] ? 2 : 1, .moved_min = NAN};
+		plan_case_open(&c, p, &lost, ST_OK);
+		const struct plan_item_view *item = plan_case_item(&c, "Tern 27 c");
+		assert_non_null(item);
+		assert_int_equal(item->n, 2);
+		assert_int_equal(item->state, PLAN_PARTLY);
+		assert_string_equal(item->cause, "lost time");
+		assert_string_equal(item->note, "it took the egress");
+		plan_case_close(&c);
+		plan_run_close(p);
+	}
+}
+
 /* The ingress of Tern 14 b was planned alone, from 23:12 MDT with T1 at 23:42, since the egress of Tern 70 b
  * was pinned as well. Lost time until 23:50 takes it; its egress two hours later is offered again, and the
  * mark of the ingress does not stand for it. */
@@ -453,6 +480,7 @@ int main(void)
 	    cmocka_unit_test(moved_by_another_ephemeris),
 	    cmocka_unit_test(rest_of_the_night),
 	    cmocka_unit_test(lost_time),
+	    cmocka_unit_test(lost_after_a_limb),
 	    cmocka_unit_test(egress_still_ahead),
 	    cmocka_unit_test(stored_meanwhile),
 	    cmocka_unit_test(undone),

@@ -46,6 +46,29 @@ int plan_fault(const struct err *e)
 
 /* --- what belongs together on the command line --- */
 
+bool plan_options_fit(const struct options *o, const char *command)
+{
+	char got[ERR_QUOTE_MAX];
+	if (!one_site(o, command))
+		return false;
+	if (!o->radec)
+		return true;
+	err_quote(o->radec, strlen(o->radec), got);
+	diagnose("--radec", "a position has no events to plan (got \"%s\", expected --target NAME)", got);
+	return false;
+}
+
+void plan_unused_note(const struct options *o, const char *command)
+{
+	bool given = o->n_targets > 0 || o->kinds || o->no_allotments || o->mask || !isnan(o->ut1_utc_s);
+	for (int id = 0; id < LIM_COUNT; id++)
+		given = given || o->limit_given[id];
+	if (given)
+		diagnose(command,
+			 "the plan is shown as it was stored: what was given of targets, kinds, limits "
+			 "and allotments takes part when it is worked out anew (wane plan DATE --rebuild)");
+}
+
 /* What is at fault, or NULL. */
 static const char *at_odds(const struct options *o)
 {
@@ -177,6 +200,8 @@ static int show(struct run *r, int32_t mjd, enum format format, struct out *out)
 	echo_lines(echo);
 	if (s == ST_OK) {
 		s = draft_there(o, &view, &e);
+		if (view.stored)
+			plan_unused_note(o, "plan");
 		if (s == ST_OK && (o->keep || o->save))
 			s = plan_save(r, &view, o->draft, o->keep, &e);
 		code = s == ST_OK ? write_plan(r, &view, format, out) : plan_fault(&e);
@@ -201,13 +226,14 @@ static int run_plan(struct run *r, int32_t mjd)
 		return usage_fault("--format", &e);
 	if (o->remove_draft)
 		return plan_remove_draft(r, mjd, o->remove_draft);
-	if (o->mark.n > 0) {
-		const int code = mark_all(r, mjd);
-		if (code != EXIT_DONE)
-			return code;
-	}
+	/* before anything is stored: what can't be written changes nothing */
 	if (run_out_open(r, &out, &e) != ST_OK)
 		return diagnose_whole(&e, EXIT_UNMET);
+	const int marked = o->mark.n > 0 ? mark_all(r, mjd) : EXIT_DONE;
+	if (marked != EXIT_DONE) {
+		out_abandon(&out);
+		return marked;
+	}
 	if (o->list)
 		return plan_list_write(r, mjd, format, &out);
 	if (o->compare)
@@ -222,7 +248,7 @@ int command_plan(const struct env *env, const struct options *o)
 	int code, needs = NEED_STORE | NEED_SITE | NEED_TARGETS;
 	int32_t mjd;
 	const char *date = o->n_words > 1 ? o->word[1] : NULL;
-	if (!one_site(o, "plan"))
+	if (!plan_options_fit(o, "plan"))
 		return EXIT_USAGE;
 	if (at_odds(o)) {
 		diagnose("plan", "%s", at_odds(o));

@@ -11,6 +11,11 @@
 struct plan_wish plan_wish_of(const struct options *o);
 /* Says a fault of plan_get and its like; the exit code: 2 where something that was typed is wrong. */
 int plan_fault(const struct err *e);
+/* False, and said, when a call gives what no running order can be made for: several sites, or a position
+ * without events. */
+bool plan_options_fit(const struct options *o, const char *command);
+/* Says of a stored plan, which is shown as it was stored, what was given and not used. */
+void plan_unused_note(const struct options *o, const char *command);
 
 /* The drafts of a night. out: committed or abandoned, as by plan_compare_write. */
 int plan_list_write(struct run *r, int32_t evening_mjd, enum format format, struct out *out);

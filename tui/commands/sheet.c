@@ -1,5 +1,6 @@
 /* SPDX-License-Identifier: MIT
  * wane sheet: a night's running order for the team. */
+#include "tui/commands/plan.h"
 #include "tui/commands/table.h"
 
 #include "tui/diagnose.h"
@@ -151,6 +152,8 @@ static int write_view(struct run *r, const struct plan_view *v, enum format form
 	} else {
 		code = EXIT_DONE;
 		say_left_out(v);
+		if (v->stored)
+			plan_unused_note(r->options, "sheet");
 		if (!v->kept)
 			diagnose("sheet", "no plan of this night is kept: this is %s (wane plan DATE --keep)",
 				 v->stored ? "a draft" : "a proposal");
@@ -192,7 +195,7 @@ int command_sheet(const struct env *env, const struct options *o)
 	int code;
 	int32_t mjd;
 	const char *date = o->n_words > 1 ? o->word[1] : NULL;
-	if (!one_site(o, "sheet"))
+	if (!plan_options_fit(o, "sheet"))
 		return EXIT_USAGE;
 	/* a wrong date is told before anything is opened */
 	if (date && given_night_check(&leap_builtin, date, &e) != ST_OK && !strstr(date, ":60"))

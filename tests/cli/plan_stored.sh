@@ -1,0 +1,87 @@
+# What a stored plan outlives, and what is refused before anything is stored.
+. tests/support/check.sh
+
+db=$scratch/a.db
+night=2026-04-22
+now='--now 2026-04-22T20:00:00Z'
+"$WANE" import config-example/demo-targets.csv --db "$db" >/dev/null 2>&1
+"$WANE" site add 'Tern Hill' --place 38.62,-109.36,2100 --zone America/Denver --db "$db" >/dev/null 2>&1
+plan() { "$WANE" plan $night --db "$db" "$@" 2>"$scratch/err"; }
+code() { plan "$@" >/dev/null; echo $?; }
+said() { grep -q -- "$1" "$scratch/err"; }
+changes() { "$WANE" history --db "$db" --format csv 2>/dev/null | wc -l; }
+
+# --- one event and all of its target: Tern 31 b has two that night
+plan $now --drop 'Tern 31 b' --pin 'Tern 31 b@4101' >"$scratch/one.txt"
+check "an event that is pinned stays when the rest of its target is dropped" grep -q '^  [0-9]* pinned .* Tern 31 b *ingress' "$scratch/one.txt"
+check "the other is dropped" grep -q '^  Tern 31 b (epoch 4100): dropped by you$' "$scratch/one.txt"
+plan $now --pin 'Tern 31 b' --drop 'Tern 31 b@4101' >"$scratch/one.txt"
+check "and the other way round" grep -q '^  [0-9]* pinned .* Tern 31 b *egress' "$scratch/one.txt"
+check "pinned in two spellings is pinned once" test "$(plan $now --pin 'Tern 14 b' --pin tern14b | grep '^Pinned')" = 'Pinned: Tern 14 b'
+
+# --- nothing is stored when the result can't be written
+plan $now --keep >/dev/null
+echo old >"$scratch/there.txt"
+before=$(changes)
+check "--mark with a file that exists: exit 1" test "$(code $now --mark 'Tern 66 b=done' --out "$scratch/there.txt")" = 1
+check "the file is as it was" test "$(cat "$scratch/there.txt")" = old
+check "and nothing was marked" test "$(changes)" = "$before"
+check "a mark that can't be set writes no file" test "$(code $now --mark 'Tern 14 b=done' --out "$scratch/new.txt")$(ls "$scratch" | grep -c new.txt)" = 10
+
+# --- editions
+since() { "$WANE" sheet $night --db "$db" --since "$1" >/dev/null 2>"$scratch/err"; echo $?; }
+check "--since 1" test "$(since 1)" = 0
+check "there is no edition 0: exit 1" test "$(since 0)" = 1
+check "in words" said 'no such edition of the plan (got 0, expected 1 to 1)'
+check "nor one ahead" test "$(since 2)" = 1
+
+# --- a stored plan is shown as it was stored
+plan $now >"$scratch/kept.txt"
+check "without a remark" test ! -s "$scratch/err"
+plan $now --sun-limit -18 --target 'Tern 8 b' >"$scratch/same.txt"
+check "whatever limits are given" cmp -s "$scratch/kept.txt" "$scratch/same.txt"
+check "and it is said that they have no part in it" said '^wane: plan: the plan is shown as it was stored'
+"$WANE" sheet $night --db "$db" --kind both >/dev/null 2>"$scratch/err"
+check "by sheets too" said '^wane: sheet: the plan is shown as it was stored'
+plan $now --sun-limit -18 --rebuild >/dev/null
+check "not when it is worked out anew" test "$(grep -c 'as it was stored' "$scratch/err")" = 0
+check "a position has no events to plan: exit 2" test "$(code $now --radec 10,10)" = 2
+check "nor anything for a sheet" test "$("$WANE" sheet $night --db "$db" --radec 10,10 >/dev/null 2>&1; echo $?)" = 2
+check "so it replaces no kept plan" test "$(code $now --radec 10,10 --afresh --keep)$(plan --list | grep -c 'kept: edition 1')" = 21
+
+# --- limits that are not given again
+l=$scratch/l.db
+cp "$db" "$l"
+limits() { "$WANE" plan $night $now --draft late --db "$l" "$@" >"$scratch/late.txt" 2>"$scratch/err"; }
+limits --sun-limit -18 --airmass-limit 1.9 --save
+check "a draft made with limits of its own" test "$(grep -c worked "$scratch/err")" = 0
+limits --pin 'Tern 14 b'
+check "worked out anew without them: that is said" said '^wane: plan: worked out with sun_limit_deg=-12, sun_limit_baseline_deg=-12, airmass_limit=none; the stored plan was made with sun_limit_deg=-18, sun_limit_baseline_deg=-18, airmass_limit=1.9$'
+limits --pin 'Tern 14 b' --sun-limit -18 --airmass-limit 1.9
+check "with them there is nothing to say" test "$(grep -c worked "$scratch/err")" = 0
+limits
+check "nor where it is only shown" test "$(grep -c worked "$scratch/err")" = 0
+
+# --- a telescope, then a site, that was removed
+t=$scratch/t.db
+cp "$db" "$t"
+"$WANE" telescope add T1 --db "$t" >/dev/null 2>&1
+"$WANE" plan $night $now --telescope T1 --keep --db "$t" >/dev/null 2>&1
+"$WANE" sheet $night --telescope T1 --format ics --db "$t" >"$scratch/there.ics" 2>/dev/null
+"$WANE" telescope remove T1 --db "$t" >/dev/null 2>&1
+past() { "$WANE" plan $night $now --telescope t1 --db "$t" "$@" 2>"$scratch/err"; }
+check "the kept plan of a telescope that was removed is shown" test "$(past | grep -c 'kept plan (draft main, edition 1)')" = 1
+check "and it is said" said '^wane: telescope: T1 is no longer stored: only its stored plans are shown$'
+check "its sheet is as it was" sh -c '"$1" sheet 2026-04-22 --telescope T1 --format ics --db "$2" 2>/dev/null | cmp -s - "$3"' - "$WANE" "$t" "$scratch/there.ics"
+check "no other is made of it: exit 1" test "$(past --rebuild >/dev/null; echo $?)" = 1
+check "in words" said '^wane: plan: T1: nothing is planned for what is no longer stored$'
+check "nor another night's" test "$("$WANE" plan 2026-04-23 --telescope T1 --db "$t" >/dev/null 2>&1; echo $?)" = 1
+check "nights know none of it: exit 2" test "$("$WANE" night $night --telescope T1 --db "$t" >/dev/null 2>&1; echo $?)" = 2
+check "one that never was: exit 2" test "$("$WANE" plan $night --telescope T2 --db "$t" >/dev/null 2>&1; echo $?)" = 2
+"$WANE" site remove 'Tern Hill' --db "$t" >/dev/null 2>&1
+check "the plans of a site that was removed are shown" test "$("$WANE" plan $night --site 'tern hill' --telescope T1 --db "$t" 2>/dev/null | grep -c 'kept plan (draft main, edition 1)')" = 1
+check "with and without a telescope" test "$("$WANE" sheet $night --site 'tern hill' --db "$t" 2>/dev/null | grep -c '^Plan:  *kept plan (draft main, edition 1)$')" = 1
+check "as another store has it in its zone" test "$("$WANE" plan $night --site 'Tern Hill' --db "$t" 2>/dev/null)" = "$(plan)"
+check "the store is sound" "$WANE" check --db "$t"
+
+finish
