@@ -57,7 +57,7 @@ static enum status order_prepare(struct plan_order *k, struct err *e)
 	    .gap_d = plan_pointings_gap_d,
 	    .ctx = &k->p,
 	    .least_d = 0.0,
-	    .most_d = in->rules->settle_d + 180.0 / in->rules->slew_deg_d,
+	    .most_d = in->rules->settle_d + 180.0 / in->rules->slew_deg_d + fmax(in->rules->filter_d, 0.0),
 	};
 	return ST_OK;
 }

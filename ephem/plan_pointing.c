@@ -58,6 +58,16 @@ static int by_star(const void *left, const void *right)
 	return (a->offer > b->offer) - (a->offer < b->offer);
 }
 
+static enum band_id band_wanted(const struct plan_input *in, const struct window *w)
+{
+	const struct observed *o = w->event.prepared->observed;
+	const double jd = jd2_value(w->event.mid_bjd.jd);
+	for (size_t i = 0; o && i < o->n_goals; i++)
+		if (o->goal[i].band != BAND_NONE && goal_open(&o->goal[i], o->goal[i].band, jd))
+			return o->goal[i].band;
+	return in->night->observing ? in->night->observing->optics.band : BAND_NONE;
+}
+
 static void number_stars(const struct plan_input *in, struct planet *planet, struct plan_pointings *out)
 {
 	for (size_t i = 0; i < in->n; i++)
@@ -72,14 +82,17 @@ static void number_stars(const struct plan_input *in, struct planet *planet, str
 		const size_t star = out->star[i];
 		if (star == i) {
 			out->direction[i] = plan_direction(in->night, in->offer[i].window->event.prepared);
+			out->band[i] = band_wanted(in, in->offer[i].window);
 			out->place[i] = (uint32_t)out->n_places++;
 		} else { /* the lowest offer of the star comes before it */
 			out->direction[i] = out->direction[star];
+			out->band[i] = out->band[star];
 			out->place[i] = out->place[star];
 		}
 	}
 	for (size_t i = 0; i < in->n_fixed; i++) {
 		out->direction[in->n + i] = in->fixed[i].direction;
+		out->band[in->n + i] = BAND_NONE; /* what is on it nobody says */
 		out->place[in->n + i] = (uint32_t)out->n_places++;
 	}
 }
@@ -92,7 +105,8 @@ enum status plan_pointings_make(const struct plan_input *in, struct plan_pointin
 	out->star = malloc((in->n + 1) * sizeof *out->star);
 	out->direction = malloc((all + 1) * sizeof *out->direction);
 	out->place = malloc((all + 1) * sizeof *out->place);
-	if (!planet || !out->star || !out->direction || !out->place)
+	out->band = malloc((all + 1) * sizeof *out->band);
+	if (!planet || !out->star || !out->direction || !out->place || !out->band)
 		goto no_memory;
 	number_stars(in, planet, out);
 	free(planet);
@@ -118,6 +132,7 @@ void plan_pointings_free(struct plan_pointings *p)
 	free(p->star);
 	free(p->direction);
 	free(p->place);
+	free(p->band);
 	free(p->gap_d);
 	*p = (struct plan_pointings){0};
 }
@@ -125,7 +140,13 @@ void plan_pointings_free(struct plan_pointings *p)
 bool plan_pointings_share(const struct plan_pointings *p, size_t a, size_t b)
 {
 	return p->place[a] == p->place[b] ||
-	       in_one_field(p->rules, p->direction[a], p->direction[b], a >= p->n || b >= p->n);
+	       (!plan_pointings_other_filter(p, a, b) &&
+		in_one_field(p->rules, p->direction[a], p->direction[b], a >= p->n || b >= p->n));
+}
+
+bool plan_pointings_other_filter(const struct plan_pointings *p, size_t a, size_t b)
+{
+	return p->band[a] != BAND_NONE && p->band[b] != BAND_NONE && p->band[a] != p->band[b];
 }
 
 double plan_pointings_gap_d(const void *ctx, int from_class, int to_class)
@@ -137,8 +158,9 @@ double plan_pointings_gap_d(const void *ctx, int from_class, int to_class)
 	double *kept_d = p->gap_d ? &p->gap_d[p->place[a] * p->n_places + p->place[b]] : NULL;
 	if (kept_d && !isnan(*kept_d))
 		return *kept_d;
-	const double gap_d =
-	    plan_gap_between_d(p->rules, p->direction[a], p->direction[b], a >= p->n || b >= p->n);
+	double gap_d = plan_gap_between_d(p->rules, p->direction[a], p->direction[b], a >= p->n || b >= p->n);
+	if (plan_pointings_other_filter(p, a, b))
+		gap_d += p->rules->filter_d;
 	if (kept_d)
 		*kept_d = gap_d;
 	return gap_d;

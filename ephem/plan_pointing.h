@@ -25,6 +25,8 @@ struct plan_pointings {
 	size_t *star;		/* [n] lowest offer of the same star */
 	struct vec3 *direction; /* [n + n_fixed]; of a star, at its lowest offer */
 	uint32_t *place;	/* [n + n_fixed] place in the table of gaps */
+	enum band_id *band;	/* [n + n_fixed] filter of the star: the band that an open goal of its lowest
+				   offer asks for, else the telescope's; BAND_NONE: any */
 	size_t n_places;
 	double *gap_d; /* [n_places x n_places], worked out when asked for; NULL: none are kept */
 };
@@ -35,6 +37,8 @@ MUST_USE enum status plan_pointings_make(const struct plan_input *in, struct pla
 void plan_pointings_keep_gaps(struct plan_pointings *p);
 void plan_pointings_free(struct plan_pointings *p);
 bool plan_pointings_share(const struct plan_pointings *p, size_t a, size_t b);
+/* Another filter is needed for b than for a. */
+bool plan_pointings_other_filter(const struct plan_pointings *p, size_t a, size_t b);
 /* For struct order_gaps; ctx: struct plan_pointings. Two fixed items have no gap: they stand as they
  * happened. Not thread-safe (the table). */
 double plan_pointings_gap_d(const void *ctx, int from_class, int to_class);

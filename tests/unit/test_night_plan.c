@@ -512,6 +512,45 @@ static void test_field(void **state)
 	scene_close(s);
 }
 
+/* By hand: 10 deg apart, 4 min to settle and 10 s of moving fit into 4.4 min; half a minute for another
+ * filter does not, so that a baseline is cut. */
+static void test_filters(void **state)
+{
+	(void)state;
+	static const struct {
+		const char *what;
+		enum band_id band[2];
+		double worth, gap_min;
+	} rows[] = {
+	    {"no filter is asked for", {BAND_NONE, BAND_NONE}, 1.8, 4.0 + 10.0 / 60.0},
+	    {"one of them asks", {BAND_R, BAND_NONE}, 1.8, 4.0 + 10.0 / 60.0},
+	    {"the same filter", {BAND_R, BAND_R}, 1.8, 4.0 + 10.0 / 60.0},
+	    {"two filters", {BAND_R, BAND_V}, 0.9 + 0.9 * 0.95, 4.5 + 10.0 / 60.0},
+	};
+	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
+		struct plan_scene *s = scene_open();
+		struct goal goal[2];
+		struct observed observed[2];
+		for (int k = 0; k < 2; k++) {
+			struct prepared *planet =
+			    scene_planet(s, k ? "Tern 2 b" : "Tern 1 b", 100.0 + 10.0 * k, 0.0);
+			goal[k] = (struct goal){.band = rows[i].band[k], .wanted = 2, .until_jd = NAN};
+			observed[k] = observed_unknown();
+			observed[k].goal = &goal[k];
+			observed[k].n_goals = 1;
+			planet->observed = &observed[k];
+			event(s, planet, 600.0 + 184.4 * k);
+		}
+		struct night_plan p = plan(s);
+		assert_int_equal(p.n_items, 2);
+		check_close(rows[i].what, p.worth, rows[i].worth, 1e-12);
+		check_close(rows[i].what, (p.item[1].from_d - p.item[1].slew_by_d) * DAY_MIN, rows[i].gap_min,
+			    1e-3);
+		night_plan_free(&p);
+		scene_close(s);
+	}
+}
+
 /* The middle star's event is hours later: nothing to point at catches both others. */
 static void test_field_without_middle(void **state)
 {
@@ -827,6 +866,7 @@ int main(void)
 	    cmocka_unit_test(test_fixed_then_field),
 	    cmocka_unit_test(test_fixed_touches),
 	    cmocka_unit_test(test_fixed_close),
+	    cmocka_unit_test(test_filters),
 	    cmocka_unit_test(test_ties),
 	    cmocka_unit_test(test_words),
 	};
