@@ -99,6 +99,8 @@ struct tally {
 	bool one_target;   /* they all belong to it */
 	int64_t number;	   /* of the first: version, epoch or night */
 	char name[96];	   /* of the first */
+	bool one_number;   /* all have it */
+	char last[96];	   /* name of the last */
 };
 
 static void count(struct tally *t, int64_t target_id, const char *name, int64_t number)
@@ -107,8 +109,11 @@ static void count(struct tally *t, int64_t target_id, const char *name, int64_t 
 		t->target_id = target_id;
 		t->one_target = true;
 		t->number = number;
+		t->one_number = true;
 		(void)text_clean(name ? name : "", t->name, sizeof t->name);
 	}
+	t->one_number = t->one_number && t->number == number;
+	(void)text_clean(name ? name : "", t->last, sizeof t->last);
 	t->one_target = t->one_target && t->target_id == target_id;
 }
 
@@ -122,6 +127,8 @@ static void say_tally(const struct tally tally[TOUCHED_KINDS], enum touched kind
 	const char *of = named ? "" : " of ", *name = named ? "" : t->name;
 	if (t->n > 1 && kind == TOUCHED_MIDTIME && t->one_target)
 		snprintf(out, size, "%ld mid-times of %s", t->n, t->name);
+	else if (t->n == 2 && kind == TOUCHED_PLAN && t->one_number) /* one is kept instead of the other */
+		snprintf(out, size, "plans of %s, drafts %s and %s", night, t->name, t->last);
 	else if (t->n > 1)
 		snprintf(out, size, "%ld %s", t->n, touched_plural[kind]);
 	else if (kind == TOUCHED_TARGET)

@@ -215,9 +215,11 @@ static bool holds(const struct plan_item_view *item, const struct event_name *na
 {
 	for (size_t i = 0; i < item->n; i++) {
 		const struct plan_member_view *m = &item->member[i];
-		/* a target that was removed goes by the name that it had */
-		const bool same =
-		    name->target ? name->target->id == m->target_id : strcmp(text, m->target) == 0;
+		/* a target that was removed goes by the name that it had, without the epoch behind it */
+		const char *at = name->one ? strrchr(text, '@') : NULL;
+		const size_t n = at ? (size_t)(at - text) : strlen(text);
+		const bool same = name->target ? name->target->id == m->target_id
+					       : strlen(m->target) == n && strncmp(text, m->target, n) == 0;
 		if (same && (!name->one || name->epoch == m->epoch))
 			return true;
 	}

@@ -49,6 +49,16 @@ check "a position has no events to plan: exit 2" test "$(code $now --radec 10,10
 check "nor anything for a sheet" test "$("$WANE" sheet $night --db "$db" --radec 10,10 >/dev/null 2>&1; echo $?)" = 2
 check "so it replaces no kept plan" test "$(code $now --radec 10,10 --afresh --keep)$(plan --list | grep -c 'kept: edition 1')" = 21
 
+# --- marks of a target that was removed: Tern 31 b has two items in the kept plan
+g=$scratch/g.db
+cp "$db" "$g"
+"$WANE" target remove 'Tern 31 b' --db "$g" >/dev/null 2>&1
+gone() { "$WANE" plan $night $now --db "$g" --mark "$1" 2>"$scratch/err"; }
+check "the name alone is not enough: exit 1" test "$(gone 'Tern 31 b=done' >/dev/null; echo $?)" = 1
+check "in words" said 'several items of the plan hold it (got "Tern 31 b", expected NAME@EPOCH)'
+check "with the epoch it is marked" test "$(gone 'Tern 31 b@4101=done' | grep -c '^  4 done .* Tern 31 b *ingress')" = 1
+check "an epoch that is not planned: exit 1" test "$(gone 'Tern 31 b@4102=done' >/dev/null; echo $?)" = 1
+
 # --- limits that are not given again
 l=$scratch/l.db
 cp "$db" "$l"

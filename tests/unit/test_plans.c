@@ -438,7 +438,7 @@ static void test_undo(void **state)
 	(void)undo(s, 0);	      /* 6 */
 	(void)put(s, b, true, 0, 1);  /* 7: cloudy is kept now, main is not */
 	newest_words(s, words);
-	assert_string_equal(words, "2 plans");
+	assert_string_equal(words, "plans of 2026-04-22, drafts main and cloudy");
 	(void)undo(s, 0); /* 8: cloudy gone, main kept */
 	assert_int_equal(kept(s), id);
 	is = digest_now(s);
