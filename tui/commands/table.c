@@ -20,7 +20,7 @@ const struct command commands[] = {
      "fit "
      "one after\nthe other, with the moves between them, and are worth most together. Until there is a noise "
      "forecast an event is\nworth its priority times its chance of done, a tenth of its coverage where there "
-     "is no chance; one limb alone 0.4 of\nit. What is pinned, dropped, blocked, lost or poor is worked in, "
+     "is no chance; one limb alone 0.2 of\nit. What is pinned, dropped, blocked, lost or poor is worked in, "
      "shown, and stored with --keep or --save. In a night\nthat runs, what has begun stands and only the "
      "rest "
      "is planned anew. Times and spans: 22:40 (site), 05:40Z, a whole\ninstant, sunset, sunrise, dusk, dawn, "
