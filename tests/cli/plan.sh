@@ -35,6 +35,8 @@ check "json: keys of an item" test "$(sed -n '/^  "items"/,/^  \]/p' "$scratch/p
 check "--plain has no table" test "$(plan $now --plain | grep -c '^  # ')" = 0
 check "--plain says each item" test "$(plan $now --plain | grep -c '^Item ')" = "$(sed -n '/^  # /,/^$/p' "$scratch/p.txt" | grep -c '^ *[0-9]')"
 check "the cautions stand below" grep -q '^Cautions' "$scratch/p.txt"
+check "the share of one limb alone is that of --help" test "$(grep -o '"limb_share": [0-9.]*' "$scratch/p.json" | cut -d ' ' -f 2)" = \
+	"$("$WANE" plan --help | tr '\n' ' ' | grep -o 'one limb alone [0-9.]*' | cut -d ' ' -f 4)"
 check "--target limits the choice" test "$(plan $now --target 'Tern 14 b' | targets /dev/stdin)" = 'Tern 14 b,'
 check "a place has plans too" test "$("$WANE" plan $night --db "$db" --place 38.62,-109.36,2100 2>/dev/null | grep -c '^  1 planned')" = 1
 check "which can't be kept" test "$("$WANE" plan $night --db "$db" --place 38.62,-109.36,2100 --keep >/dev/null 2>&1; echo $?)" = 1
