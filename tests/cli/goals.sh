@@ -131,6 +131,7 @@ check "counted and met" test "$(sed -n 2p "$scratch/out")" = 'Tern 48 b,,1,0,1,0
 quiet night 2026-04-29 --all --format csv >"$scratch/n.csv"
 check "its next event is worth nothing" test "$(worth 'Tern 48 b')" = 0.000
 check "and says why" sh -c 'grep "Tern 48 b" "$1" | grep -q goal_met' - "$scratch/n.csv"
+check "nor is it planned, and that says why" sh -c '"$1" plan 2026-04-29 --db "$2" --now "$3" 2>/dev/null | grep -q "Tern 48 b.*: no goal is open for it: met, past or of another band"' - "$WANE" "$db" "$now"
 check "others are not flagged" sh -c 'test "$(grep -c goal_met "$1")" = "$(grep -c "Tern 48 b.*goal_met" "$1")"' - "$scratch/n.csv"
 quiet plan 2026-04-22 --mark 'Tern 48 b=planned' >/dev/null
 check "the mark taken back: open" test "$(quiet goal list 'Tern 48 b' --format csv | sed -n 2p | cut -d, -f11)" = open
