@@ -7,6 +7,7 @@
 #include "db/plans.h"
 #include "db/targets.h"
 
+#include <math.h>
 #include <signal.h>
 #include <stdbool.h>
 #include <stdio.h>
@@ -20,14 +21,16 @@ enum { KILLS = 80, ROWS_EACH = 5 };
 
 static const struct change change = {"2026-04-22T03:00:00Z", "test", "import"};
 
+static int first_set; /* of the writer: names of targets are not used twice */
+
 /* Change sets of ROWS_EACH targets, each acknowledged by a byte, until it is killed. */
-static void write_on(const char *path, int first, int acknowledge)
+static void write_on(const char *path, int acknowledge, bool say_ready)
 {
 	struct store *s;
 	struct err e;
-	if (store_open(path, STORE_WRITE, &s, &e) != ST_OK)
+	if (store_open(path, STORE_WRITE, &s, &e) != ST_OK || (say_ready && write(acknowledge, "r", 1) != 1))
 		_exit(2);
-	for (int set = first;; set++) {
+	for (int set = first_set;; set++) {
 		if (store_begin(s, &change, &e) != ST_OK)
 			_exit(3);
 		for (int i = 0; i < ROWS_EACH; i++) {
@@ -49,6 +52,62 @@ static void write_on(const char *path, int first, int acknowledge)
 		if (store_commit(s, &e) != ST_OK || write(acknowledge, "x", 1) != 1)
 			_exit(5);
 	}
+}
+
+static void write_anew(const char *path, int acknowledge)
+{
+	write_on(path, acknowledge, false);
+}
+
+static void write_more(const char *path, int acknowledge)
+{
+	write_on(path, acknowledge, true);
+}
+
+/* Runs `writer` in a process of its own until it is killed or done: how many bytes it wrote to acknowledge.
+ * says_ready: the time begins with a byte that is not counted. */
+static long kill_after(struct rng *r, double longest_ns, bool says_ready, const char *path,
+		       void (*writer)(const char *path, int acknowledge))
+{
+	int pipes[2], end;
+	long acknowledged = 0;
+	char byte;
+	assert_int_equal(pipe(pipes), 0);
+	pid_t pid = fork();
+	assert_true(pid >= 0);
+	if (pid == 0) {
+		close(pipes[0]);
+		writer(path, pipes[1]);
+		_exit(0);
+	}
+	close(pipes[1]);
+	if (says_ready)
+		assert_int_equal(read(pipes[0], &byte, 1), 1);
+	const double ns = rng_between(r, 1e5, longest_ns);
+	const struct timespec wait = {(time_t)(ns / 1e9), (long)fmod(ns, 1e9)};
+	nanosleep(&wait, NULL);
+	assert_int_equal(kill(pid, SIGKILL), 0);
+	assert_int_equal(waitpid(pid, &end, 0), pid);
+	if (WIFEXITED(end) && WEXITSTATUS(end) != 0)
+		check_fail("the writer ended by itself: %d", WEXITSTATUS(end));
+	while (read(pipes[0], &byte, 1) == 1)
+		acknowledged++;
+	close(pipes[0]);
+	return acknowledged;
+}
+
+/* How long it takes to open, making or bringing up included: a sanitizer or a busy machine makes it many
+ * times longer. */
+static double opening_ns(const char *path)
+{
+	struct store *s;
+	struct err e = {0};
+	struct timespec a, b;
+	(void)clock_gettime(CLOCK_MONOTONIC, &a);
+	must(store_open(path, STORE_WRITE, &s, &e), &e);
+	(void)clock_gettime(CLOCK_MONOTONIC, &b);
+	store_close(s);
+	return (double)(b.tv_sec - a.tv_sec) * 1e9 + (double)(b.tv_nsec - a.tv_nsec);
 }
 
 static void say_fault(void *ctx, const char *line)
@@ -106,33 +165,18 @@ static void test_kill(void **state)
 	assert_non_null(mkdtemp(folder));
 	snprintf(path, sizeof path, "%s/wane.db", folder);
 	snprintf(journal, sizeof journal, "%s-journal", path);
+	const double making_ns = opening_ns(path);
 	for (int turn = 0; turn < KILLS; turn++) {
 		/* the first turns are killed while the file itself is being made, and begin anew */
 		bool making = turn < KILLS / 2;
-		int pipes[2], end;
 		if (making) {
 			unlink(journal);
 			unlink(path);
 			acknowledged = 0;
 		}
-		assert_int_equal(pipe(pipes), 0);
-		pid_t pid = fork();
-		assert_true(pid >= 0);
-		if (pid == 0) {
-			close(pipes[0]);
-			write_on(path, 1000 * turn, pipes[1]);
-		}
-		close(pipes[1]);
-		const struct timespec wait = {0, (long)rng_between(&r, 1e6, making ? 2e7 : 1.2e8)};
-		nanosleep(&wait, NULL);
-		assert_int_equal(kill(pid, SIGKILL), 0);
-		assert_int_equal(waitpid(pid, &end, 0), pid);
-		if (!WIFSIGNALED(end))
-			check_fail("the writer ended by itself: %d", WEXITSTATUS(end));
-		char byte;
-		while (read(pipes[0], &byte, 1) == 1)
-			acknowledged++;
-		close(pipes[0]);
+		first_set = 1000 * turn;
+		acknowledged += kill_after(&r, making ? 1.5 * making_ns : 1.2e8, !making, path,
+					   making ? write_anew : write_more);
 		met_journal += access(journal, F_OK) == 0;
 		stored = look(path);
 		/* the one change set that was stored but not yet acknowledged may be there too, once a kill
@@ -147,34 +191,6 @@ static void test_kill(void **state)
 	unlink(journal);
 	assert_int_equal(unlink(path), 0);
 	assert_int_equal(rmdir(folder), 0);
-}
-
-/* Runs `writer` in a process of its own until it is killed or done: what it wrote to acknowledge. */
-static long kill_after(struct rng *r, double longest_ns, const char *path,
-		       void (*writer)(const char *path, int acknowledge))
-{
-	int pipes[2], end;
-	long acknowledged = 0;
-	char byte;
-	assert_int_equal(pipe(pipes), 0);
-	pid_t pid = fork();
-	assert_true(pid >= 0);
-	if (pid == 0) {
-		close(pipes[0]);
-		writer(path, pipes[1]);
-		_exit(0);
-	}
-	close(pipes[1]);
-	const struct timespec wait = {0, (long)rng_between(r, 1e5, longest_ns)};
-	nanosleep(&wait, NULL);
-	assert_int_equal(kill(pid, SIGKILL), 0);
-	assert_int_equal(waitpid(pid, &end, 0), pid);
-	if (WIFEXITED(end) && WEXITSTATUS(end) != 0)
-		check_fail("the writer ended by itself: %d", WEXITSTATUS(end));
-	while (read(pipes[0], &byte, 1) == 1)
-		acknowledged++;
-	close(pipes[0]);
-	return acknowledged;
 }
 
 /* --- an older schema --- */
@@ -203,12 +219,16 @@ static void test_kill_migration(void **state)
 	snprintf(path, sizeof path, "%s/wane.db", folder);
 	for (int i = 0; i < 5; i++)
 		snprintf(left[i], sizeof left[i], "%s%s", path, behind[i]);
+	old_store_make(path);
+	double longest_ns = 1.5 * opening_ns(path);
+	unlink(path);
+	unlink(left[1]);
 	for (int turn = 0; turn < KILLS; turn++) {
 		struct store *s;
 		struct digest_text d;
 		int faults;
 		old_store_make(path);
-		done += kill_after(&r, 6e7, path, bring_up) > 0;
+		done += kill_after(&r, longest_ns, false, path, bring_up) > 0;
 		for (enum store_mode mode = STORE_READ; mode <= STORE_WRITE; mode++) {
 			must(store_open(path, mode, &s, &e), &e);
 			d = digest_now(s);
@@ -241,7 +261,7 @@ static void plan_on(const char *path, int acknowledge)
 	struct plan_row have;
 	static const char utc[] = "2026-04-23T03:00:00Z";
 	char note[16];
-	if (store_open(path, STORE_WRITE, &s, &e) != ST_OK)
+	if (store_open(path, STORE_WRITE, &s, &e) != ST_OK || write(acknowledge, "r", 1) != 1)
 		_exit(2);
 	for (;;) {
 		enum status st = plan_find(s, 1, 0, 61152, "main", &have, &e);
@@ -295,7 +315,7 @@ static void test_kill_plan(void **state)
 	store_close(s);
 	for (int turn = 0; turn < KILLS / 2; turn++) {
 		struct plan_row p;
-		long wanted = stored + kill_after(&r, 1.2e8, path, plan_on);
+		long wanted = stored + kill_after(&r, 1.2e8, true, path, plan_on);
 		int faults;
 		must(store_open(path, STORE_READ, &s, &e), &e);
 		must(store_check(s, say_fault, NULL, &faults, &e), &e);
