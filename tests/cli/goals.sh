@@ -199,5 +199,13 @@ quiet undo >/dev/null
 quiet undo >/dev/null
 quiet site show "$hill" >"$scratch/out"
 check "undone: as before" grep -q ', dark sky R 20.9, extinction V 0.14, extinction R 0.1, usual telescope Big$' "$scratch/out"
+# --- the demo has two telescopes, and one of them is the usual one
+"$WANE" demo --format csv >"$scratch/n.csv" 2>/dev/null
+check "demo: East dome" test "$(cut -d, -f2 "$scratch/n.csv" | sort -u | tr '\n' ,)" = 'East dome,telescope,'
+check "demo: one goal is past, its event worth nothing" sh -c 'grep "Tern 45 b" "$1" | grep -q "goal_met" && test "$2" = 0.000' - "$scratch/n.csv" "$(worth 'Tern 45 b')"
+check "demo: one neighbour" test "$(grep -c neighbour_diluted "$scratch/n.csv")" = 1
+"$WANE" demo --telescope roll-off --format csv >"$scratch/n.csv" 2>/dev/null
+check "demo: Roll-off" test "$(cut -d, -f2 "$scratch/n.csv" | sort -u | tr '\n' ,)" = 'Roll-off,telescope,'
+
 check "the store is sound" sh -c "\"\$1\" check --db \"\$2\" >/dev/null" - "$WANE" "$db"
 finish
