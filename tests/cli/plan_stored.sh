@@ -59,6 +59,7 @@ plan $now --sun-limit -18 --rebuild >/dev/null
 check "not when it is worked out anew" test "$(grep -c 'as it was stored' "$scratch/err")" = 0
 check "a position has no events to plan: exit 2" test "$(code $now --radec 10,10)" = 2
 check "nor anything for a sheet" test "$("$WANE" sheet $night --db "$db" --radec 10,10 >/dev/null 2>&1; echo $?)" = 2
+check "the night of a position has no running order" test "$("$WANE" night $night --db "$db" --radec 10,10 --format json 2>/dev/null | grep -c '"running_order": \[\]')" = 1
 check "so it replaces no kept plan" test "$(code $now --radec 10,10 --afresh --keep)$(plan --list | grep -c 'kept: edition 1')" = 21
 
 # --- marks of a target that was removed: Tern 31 b has two items in the kept plan
