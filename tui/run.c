@@ -387,6 +387,18 @@ static enum status open_steps(struct run *r, int needs, int *code, struct err *e
 	return s;
 }
 
+/* What changes the store has its result asked for first: a file that can't be written must change nothing. */
+static enum status out_possible(const struct run *r, struct err *e)
+{
+	struct out out;
+	if (!r->options->out)
+		return ST_OK;
+	enum status s = run_out_open(r, &out, e);
+	if (s == ST_OK)
+		out_abandon(&out);
+	return s;
+}
+
 enum status run_open_on(struct run *r, struct store *store, const struct env *env, const struct options *o,
 			int needs, int *exit_code, struct err *e)
 {
@@ -395,6 +407,10 @@ enum status run_open_on(struct run *r, struct store *store, const struct env *en
 	r->site.zone = r->site_zone;
 	r->telescope = telescope_empty();
 	enum status s = open_steps(r, needs, exit_code, e);
+	if (s == ST_OK && needs & NEED_WRITE) {
+		s = out_possible(r, e);
+		*exit_code = 1;
+	}
 	if (s != ST_OK)
 		run_close(r);
 	else

@@ -28,6 +28,18 @@ check "the file is as it was" test "$(cat "$scratch/there.txt")" = old
 check "and nothing was marked" test "$(changes)" = "$before"
 check "a mark that can't be set writes no file" test "$(code $now --mark 'Tern 14 b=done' --out "$scratch/new.txt")$(ls "$scratch" | grep -c new.txt)" = 10
 
+# every change that has a result says first whether it can be written
+o=$scratch/o.db
+cp "$db" "$o"
+for change in 'allot add 2026-04-23 whole' 'telescope add T1' 'site add Far --place 1,1,1' "site set Tern-Hill --half sunset" undo "plan $night --save --draft x"; do
+	before=$("$WANE" history --db "$o" --format csv | wc -l)
+	# shellcheck disable=SC2086
+	"$WANE" $change --db "$o" --out "$scratch/there.txt" >/dev/null 2>"$scratch/err"
+	check "with a file that exists: exit 1: $change" test $? = 1
+	check "it is said: $change" said 'the file exists; --force replaces it$'
+	check "nothing is changed: $change" test "$("$WANE" history --db "$o" --format csv | wc -l)" = "$before"
+done
+
 # --- editions
 since() { "$WANE" sheet $night --db "$db" --since "$1" >/dev/null 2>"$scratch/err"; echo $?; }
 check "--since 1" test "$(since 1)" = 0
@@ -47,6 +59,7 @@ plan $now --sun-limit -18 --rebuild >/dev/null
 check "not when it is worked out anew" test "$(grep -c 'as it was stored' "$scratch/err")" = 0
 check "a position has no events to plan: exit 2" test "$(code $now --radec 10,10)" = 2
 check "nor anything for a sheet" test "$("$WANE" sheet $night --db "$db" --radec 10,10 >/dev/null 2>&1; echo $?)" = 2
+check "the night of a position has no running order" test "$("$WANE" night $night --db "$db" --radec 10,10 --format json 2>/dev/null | grep -c '"running_order": \[\]')" = 1
 check "so it replaces no kept plan" test "$(code $now --radec 10,10 --afresh --keep)$(plan --list | grep -c 'kept: edition 1')" = 21
 
 # --- marks of a target that was removed: Tern 31 b has two items in the kept plan

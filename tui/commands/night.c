@@ -27,6 +27,8 @@ static void order_open(struct order *order, struct run *r, int32_t evening_mjd)
 	const struct plan_wish wish = {.moved_min = NAN};
 	struct err e;
 	*order = (struct order){.there = false};
+	if (r->options->radec) /* of a position nothing is planned, and the stored targets are not known */
+		return;
 	order->there = plan_get(r, evening_mjd, &wish, &order->night, &order->view, NULL, &e) == ST_OK;
 	if (!order->there)
 		diagnose("plan", "%s", e.text);
