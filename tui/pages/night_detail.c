@@ -4,6 +4,7 @@
 #include "ephem/mount.h"
 #include "ephem/number_text.h"
 #include "ephem/units.h"
+#include "tui/pages/night_forecast.h"
 
 #include <math.h>
 #include <stdio.h>
@@ -163,7 +164,8 @@ static void lost_line(struct text_view *v, const struct night_row *row)
 			used += (size_t)snprintf(text + used, sizeof text - used, "%sto %s: %s",
 						 used ? "; " : "", cause_phrases[cause], parts);
 	}
-	text_view_addf(v, used ? ROLE_WARN : ROLE_TEXT, INDENT, "Lost   %s", used ? text : "nothing");
+	text_view_addf(v, used && !row->flip_only ? ROLE_WARN : ROLE_TEXT, INDENT, "Lost   %s",
+		       used ? text : "nothing");
 }
 
 /* Nothing without a flip. */
@@ -259,11 +261,10 @@ static void plan_line_of(struct text_view *v, bool roomy, const char *plan)
 		v->n = before + 1;
 }
 
-void detail_lines(struct text_view *v, int width, bool roomy, const struct run *r,
-		  const struct night_view *view, const struct night_head *head, const struct night_row *row,
-		  const char *plan)
+/* What is news of the window. */
+static void first_lines(struct text_view *v, bool roomy, const struct run *r, const struct night_view *view,
+			const struct night_head *head, const struct night_row *row, const char *plan)
 {
-	text_view_start(v, width);
 	be_there_line(v, r, &view->night, head, row);
 	plan_line_of(v, roomy, plan);
 	/* where room is short the plan goes before what is no news */
@@ -278,9 +279,25 @@ void detail_lines(struct text_view *v, int width, bool roomy, const struct run *
 		altitude_line(v, &view->night, row);
 	flag_lines(v, row->window->event.flags, true);
 	own_limits_line(v, &row->window->event.prepared->limits);
+}
+
+void detail_lines(struct text_view *v, int width, enum detail_extent extent, const struct run *r,
+		  const struct night_view *view, const struct night_head *head, const struct night_row *row,
+		  const char *plan)
+{
+	struct forecast_shown f;
+	text_view_start(v, width);
+	first_lines(v, extent != DETAIL_SHORT, r, view, head, row, plan);
+	forecast_show(&f, view, row);
+	forecast_lines(v, r, view, row, &f);
 	sigma_line(v, row);
 	sky_line(v, row);
 	star_line(v, row);
 	flag_lines(v, row->window->event.flags, false);
 	source_line(v, row);
+	if (extent != DETAIL_WHOLE)
+		return;
+	wish_lines(v, r, row, &f);
+	minute_lines(v, r, view, head, &f);
+	forecast_figure_lines(v, view, &f);
 }
