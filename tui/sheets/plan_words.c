@@ -153,7 +153,7 @@ bool plan_flip_at(const struct plan_view *v, const struct plan_item_view *item,
 	const struct leap_table *leap = &v->run->leap;
 	const char *text = member_figure(m, "flip_utc");
 	return text[0] && utc_parse(leap, text, t, NULL) == ST_OK &&
-	       utc_diff_s(leap, *t, item->start) >= 0.0 && utc_diff_s(leap, item->end, *t) > 0.0;
+	       utc_diff_s(leap, item->start, *t) >= 0.0 && utc_diff_s(leap, *t, item->end) > 0.0;
 }
 
 bool plan_one_limb(const struct plan_member_view *m)
