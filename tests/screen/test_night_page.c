@@ -145,6 +145,47 @@ static void test_keys_to_screens(void **state)
 	}
 }
 
+/* On the screen the cell under the first digit of an hour holds that hour's start, at every width and in both
+ * places of the axis: counted from the cells themselves, whose ends are the axis' own. */
+static void test_hours_stand_over_their_cells(void **state)
+{
+	(void)state;
+	struct page_driver d;
+	driver_open(&d, true, 45, 160, TIER_UNICODE);
+	for (int cols = PAGE_COLS_FULL; cols <= 250; cols++) {
+		driver_size(&d, 45, cols);
+		const struct night_page *p = d.page;
+		const struct night *n = &p->view.night;
+		const int row = p->axis_in_list ? p->shape.head - 2 : p->shape.head + p->shape.list + 1;
+		int labels = 0;
+		for (int i = 0; i + 1 < p->axis.cols; i++) {
+			const struct cell *c = &d.grid.cell[row * d.grid.cols + p->axis_at + i];
+			if (c[0].cp < '0' || c[0].cp > '9' || c[1].cp < '0' || c[1].cp > '9')
+				continue;
+			const double hour = 10.0 * (c[0].cp - '0') + (c[1].cp - '0');
+			const double from =
+			    zone_local(d.fixture->run.zone, night_utc(n, axis_time(&p->axis, i))).sod_s /
+			    3600.0;
+			const double length = 24.0 * (p->axis.to_d - p->axis.from_d) / p->axis.cols;
+			const double past = fmod(hour - from + 48.0, 24.0);
+			if (past > length + 1e-6 && past < 24.0 - 1e-6)
+				check_fail("%d columns: %.0f h stands over the cell that begins at %.3f h",
+					   cols, hour, from);
+			labels++;
+			i++;
+		}
+		assert_true(labels >= 3);
+		if (p->shape.hours) { /* the same under the picture of altitudes */
+			const int under = p->shape.head + p->shape.list + 1 + p->shape.curve + 1;
+			for (int i = 0; i < p->axis.cols; i++)
+				assert_int_equal(d.grid.cell[under * d.grid.cols + p->axis_at + i].cp,
+						 p->axis.hours[i]);
+		}
+	}
+	assert_int_equal(d.page->shape.hours, 1);
+	driver_close(&d);
+}
+
 static void test_wants(void **state)
 {
 	struct page_driver d;
@@ -576,15 +617,25 @@ static void test_clock(void **state)
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
-	    cmocka_unit_test(test_golden),	 cmocka_unit_test(test_keys_to_screens),
-	    cmocka_unit_test(test_wants),	 cmocka_unit_test(test_paste),
-	    cmocka_unit_test(test_cursor),	 cmocka_unit_test(test_every_size),
-	    cmocka_unit_test(test_no_nan),	 cmocka_unit_test(test_odd_nights),
-	    cmocka_unit_test(test_clock_change), cmocka_unit_test(test_without_zone),
-	    cmocka_unit_test(test_first_run),	 cmocka_unit_test(test_hostile_names),
-	    cmocka_unit_test(test_clock),	 cmocka_unit_test(test_sites),
-	    cmocka_unit_test(test_allotted),	 cmocka_unit_test(test_drop_and_load),
-	    cmocka_unit_test(test_marked_times), cmocka_unit_test(test_offered_date),
+	    cmocka_unit_test(test_golden),
+	    cmocka_unit_test(test_keys_to_screens),
+	    cmocka_unit_test(test_hours_stand_over_their_cells),
+	    cmocka_unit_test(test_wants),
+	    cmocka_unit_test(test_paste),
+	    cmocka_unit_test(test_cursor),
+	    cmocka_unit_test(test_every_size),
+	    cmocka_unit_test(test_no_nan),
+	    cmocka_unit_test(test_odd_nights),
+	    cmocka_unit_test(test_clock_change),
+	    cmocka_unit_test(test_without_zone),
+	    cmocka_unit_test(test_first_run),
+	    cmocka_unit_test(test_hostile_names),
+	    cmocka_unit_test(test_clock),
+	    cmocka_unit_test(test_sites),
+	    cmocka_unit_test(test_allotted),
+	    cmocka_unit_test(test_drop_and_load),
+	    cmocka_unit_test(test_marked_times),
+	    cmocka_unit_test(test_offered_date),
 	};
 	return cmocka_run_group_tests_name("night page", tests, NULL, NULL);
 }

@@ -4,6 +4,7 @@
 #include "db/import.h"
 #include "db/plans.h"
 #include "db/sites.h"
+#include "db/stored_settings.h"
 #include "db/telescopes.h"
 #include "tests/support/check.h"
 #include "tests/support/golden.h"
@@ -45,7 +46,8 @@ static struct store *new_store(void)
 	dome.blocks = "sunset..evening-9=evening flats and focus";
 	if (store_open("memory", STORE_MEMORY, &s, &e) != ST_OK || store_begin(s, &change, &e) != ST_OK ||
 	    site_put(s, &hill, true, &e) != ST_OK || telescope_put(s, &dome, true, &e) != ST_OK ||
-	    store_commit(s, &e) != ST_OK ||
+	    /* so that plans hold single limbs */
+	    stored_setting_put(s, "limb_share", "0.4", &e) != ST_OK || store_commit(s, &e) != ST_OK ||
 	    import_targets(s, demo_targets_csv, demo_targets_csv_size, &options, &report, quiet, NULL, &e) !=
 		ST_OK)
 		check_fail("%s", e.text);

@@ -326,6 +326,66 @@ static void text_answers(void **state)
 	plan_fixture_close(f);
 }
 
+/* A forecast and a flip put into a member's stored figures. */
+static void put_forecast(struct plan_member_view *m, const char *flip_utc)
+{
+	static const char *const figure[][2] = {{"band", "g"},
+						{"exposure_s", "2.500"},
+						{"noise_ppt_min", "1.440"},
+						{"depth_snr", "25.300"},
+						{"timing_s", "33.000"}};
+	for (size_t i = 0; i < sizeof figure / sizeof figure[0]; i++)
+		m->figure[column_find(figure[i][0])] = figure[i][1];
+	m->figure[column_find("flip_utc")] = flip_utc;
+}
+
+/* What was planned is shown, whatever the telescope says today; the flip where it falls into the item. */
+static void forecasts_are_told(void **state)
+{
+	static const struct {
+		const char *variant, *flip_utc;
+		bool flips;
+		const char *forecast;
+	} rows[] = {
+	    {"whole", "2026-04-23T04:30:00Z", true,
+	     "      forecast: 2.5 s exposures in g, noise 1.44 ppt a minute, depth\n"
+	     "        S/N 25, timing 33 s\n"},
+	    {"ingress", "2026-04-23T03:00:00Z", false, "        S/N 25, timing 33 s (of the whole event)\n"},
+	    {"egress", "", false, "        S/N 25, timing 33 s (of the whole event)\n"},
+	};
+	(void)state;
+	for (size_t i = 0; i < sizeof rows / sizeof rows[0]; i++) {
+		struct plan_fixture *f = plan_fixture_open(PLAN_FIXTURE_KEPT, FIXTURE_EVENING_MJD, true);
+		struct telescope north = telescope_empty();
+		struct memory *text = memory_open(), *html = memory_open();
+		north.name = f->view.telescope;
+		north.aperture_m = 0.4;
+		north.band = "R"; /* since it was planned */
+		f->night.night.telescope = &north;
+		f->item[PLAN_FIXTURE_JOINT].member[0].variant = rows[i].variant;
+		put_forecast(&f->item[PLAN_FIXTURE_JOINT].member[0], rows[i].flip_utc);
+		assert_true(plan_sheet_text(text->file, &f->view, NULL));
+		assert_true(plan_sheet_html(html->file, &f->view, NULL));
+		assert_mailable(memory_text(text));
+		if (!strstr(text->text, rows[i].forecast))
+			check_fail("row %zu: not there: %s\n%s", i, rows[i].forecast,
+				   strstr(text->text, "ICRS"));
+		assert_int_equal(count(text->text, "forecast: "), 1);
+		assert_int_equal(
+		    count(text->text, "      flip        Wed 22 Apr 22:30 MDT   Thu 23 Apr 04:30 UTC\n"),
+		    rows[i].flips);
+		assert_int_equal(count(text->text, "at the flip: watch the mount"), rows[i].flips);
+		assert_int_equal(count(memory_text(html), "Flip <small>watch the mount"), rows[i].flips);
+		assert_int_equal(count(html->text, "<dt>Exposure</dt><dd>2.5 s</dd>"), 1);
+		assert_int_equal(count(html->text, "error, whole event</dt>"), !rows[i].flips);
+		assert_non_null(strstr(text->text, "Telescope: North, 0.4 m, 0.4 m, band g\n"));
+		assert_non_null(strstr(html->text, ", 0.4 m, band g. Plan:"));
+		memory_close(text);
+		memory_close(html);
+		plan_fixture_close(f);
+	}
+}
+
 static void text_says_which_of_two_clocks(void **state)
 {
 	(void)state;
@@ -511,6 +571,7 @@ int main(void)
 	    cmocka_unit_test(text_fits_and_is_harmless),
 	    cmocka_unit_test(long_names_are_broken),
 	    cmocka_unit_test(text_answers),
+	    cmocka_unit_test(forecasts_are_told),
 	    cmocka_unit_test(text_says_which_of_two_clocks),
 	    cmocka_unit_test(text_of_nothing),
 	    cmocka_unit_test(csv_has_a_row_an_event),

@@ -4,7 +4,7 @@
 #include "ephem/number_text.h"
 #include "tui/commands/table.h"
 #include "tui/diagnose.h"
-#include "tui/field_light.h"
+#include "tui/field_words.h"
 #include "tui/sheets/csv.h"
 #include "tui/sheets/json.h"
 #include "tui/sheets/out.h"
@@ -12,7 +12,7 @@
 
 #include <math.h>
 
-enum { SENTENCE_BYTES = 400, NOTE_COLUMNS = 60 };
+enum { NOTE_COLUMNS = 60 };
 
 /* What is told of a target's field. */
 struct told {
@@ -32,56 +32,6 @@ static struct told told_of(const struct run *r, const struct target *t)
 	f.fit = field_fit_of(t, f.star, f.n, r->telescope.field_arcmin);
 	f.aperture_arcsec = field_aperture_arcsec(&r->observing.optics);
 	return f;
-}
-
-/* --- sentences --- */
-
-/* "" where nothing has to fit. */
-static void fit_words(const struct run *r, const struct told *f, char out[SENTENCE_BYTES])
-{
-	const struct field_fit *fit = &f->fit;
-	const double field = r->telescope.field_arcmin;
-	out[0] = '\0';
-	if (fit->stars == 0)
-		return;
-	if (isinf(fit->needs_arcmin))
-		snprintf(out, SENTENCE_BYTES,
-			 "They do not fit a field: one of them is more than 80 deg from the target.");
-	else if (!fit->known)
-		snprintf(
-		    out, SENTENCE_BYTES,
-		    "With the target they need a field of %.2f arcmin; whether they fit is not known: %s.",
-		    fit->needs_arcmin,
-		    r->has_telescope ? "the telescope has no field_arcmin" : "no telescope is chosen");
-	else if (fit->fits)
-		snprintf(out, SENTENCE_BYTES,
-			 "With the target they fit the field of %.120s: %.2f of %.2f arcmin, pointed at "
-			 "%.5f, %+.5f.",
-			 r->telescope.name, fit->needs_arcmin, field, fit->ra_deg, fit->dec_deg);
-	else
-		snprintf(out, SENTENCE_BYTES,
-			 "With the target they do not fit the field of %.120s: they need %.2f arcmin, %.2f "
-			 "more than "
-			 "its %.2f.",
-			 r->telescope.name, fit->needs_arcmin, fit->needs_arcmin - field, field);
-}
-
-static void light_words(const struct told *f, char out[SENTENCE_BYTES])
-{
-	const struct field_light *l = &f->light;
-	out[0] = '\0';
-	if (l->neighbours == 0)
-		return;
-	if (isnan(l->neighbour))
-		snprintf(
-		    out, SENTENCE_BYTES,
-		    "Neighbours in the aperture of %.1f arcsec: %d; the target's magnitude is not known.",
-		    f->aperture_arcsec, l->neighbours);
-	else
-		snprintf(out, SENTENCE_BYTES,
-			 "Neighbours in the aperture of %.1f arcsec: %d, with %.3f of the target's light%s.",
-			 f->aperture_arcsec, l->neighbours, l->neighbour,
-			 l->assumed ? " (assumed: the magnitudes are not of the observing band)" : "");
 }
 
 /* --- forms --- */
@@ -112,7 +62,7 @@ static void star_text(FILE *to, const struct target *t, const struct field_star 
 
 static void told_text(FILE *to, const struct run *r, const struct told *f)
 {
-	char words[SENTENCE_BYTES];
+	char words[FIELD_SENTENCE_BYTES];
 	text_cell(to, f->target->name, NAME_CHARS_MAX, false);
 	if (f->n == 0) {
 		fputs(": no stars of its field are stored (wane star add TARGET ROLE RA,DEC MAG)\n", to);
@@ -121,12 +71,12 @@ static void told_text(FILE *to, const struct run *r, const struct told *f)
 	fputc('\n', to);
 	for (size_t i = 0; i < f->n; i++)
 		star_text(to, f->target, &f->star[i]);
-	light_words(f, words);
+	field_light_words(&f->light, f->aperture_arcsec, words);
 	if (words[0])
 		fprintf(to, "%s\n", words);
-	fit_words(r, f, words);
+	field_fit_words(&f->fit, &r->telescope, r->has_telescope, words);
 	if (words[0]) {
-		text_cell(to, words, SENTENCE_BYTES, false);
+		text_cell(to, words, FIELD_SENTENCE_BYTES, false);
 		fputc('\n', to);
 	}
 }
@@ -141,7 +91,7 @@ static void number_cell(struct csv_out *c, double value)
 static bool told_csv(FILE *to, const struct run *r, const struct told *f)
 {
 	struct csv_out c = {.file = to};
-	char text[SENTENCE_BYTES];
+	char text[FIELD_SENTENCE_BYTES];
 	fputs("target,number,role,name,ra_deg,dec_deg,sep_arcsec,mag,band,note\n", to);
 	for (size_t i = 0; i < f->n; i++) {
 		const struct field_star *s = &f->star[i];
@@ -159,10 +109,10 @@ static bool told_csv(FILE *to, const struct run *r, const struct told *f)
 		csv_end_line(&c);
 	}
 	/* a table has no room for them */
-	light_words(f, text);
+	field_light_words(&f->light, f->aperture_arcsec, text);
 	if (text[0])
 		diagnose("star", "%s", text);
-	fit_words(r, f, text);
+	field_fit_words(&f->fit, &r->telescope, r->has_telescope, text);
 	if (text[0])
 		diagnose("star", "%s", text);
 	return !c.failed;

@@ -4,6 +4,7 @@
 #include "ephem/mount.h"
 #include "ephem/number_text.h"
 #include "ephem/units.h"
+#include "tui/pages/night_forecast.h"
 
 #include <math.h>
 #include <stdio.h>
@@ -14,6 +15,7 @@ enum {
 	LABEL_COLUMNS = 6,
 	INDENT = 7,
 	COLUMNS_FOR_RESERVE = 70,
+	COLUMNS_FOR_SECONDS = 56, /* with a mark of a clock change behind them */
 	COLUMNS_FOR_BJD = 71,
 	COLUMNS_FOR_BJD_FULL = 76,
 	CELL_BYTES = 40
@@ -46,14 +48,15 @@ static void contact_table(struct text_view *v, const struct run *r, const struct
 {
 	double at_d[CONTACTS];
 	char cell[CONTACTS][CELL_BYTES] = {"T1", "T2", "mid", "T3", "T4"};
+	const bool seconds = v->width >= COLUMNS_FOR_SECONDS;
 	contact_times(&row->window->event, at_d);
 	table_line(v, ROLE_STRONG, "", cell);
 	for (int i = 0; i < CONTACTS; i++)
-		local_text(night, r->zone, at_d[i], true, cell[i], CELL_BYTES);
+		local_text(night, r->zone, at_d[i], seconds, cell[i], CELL_BYTES);
 	table_line(v, ROLE_TEXT, head->zone, cell);
 	if (r->zone) {
 		for (int i = 0; i < CONTACTS; i++)
-			local_text(night, NULL, at_d[i], true, cell[i], CELL_BYTES);
+			local_text(night, NULL, at_d[i], seconds, cell[i], CELL_BYTES);
 		table_line(v, ROLE_TEXT, "UTC", cell);
 	}
 	if (v->width >= COLUMNS_FOR_BJD) {
@@ -72,6 +75,7 @@ static void altitude_line(struct text_view *v, const struct night *night, const 
 {
 	double at_d[CONTACTS];
 	char cell[CONTACTS][CELL_BYTES];
+	const bool with_az = v->width >= COLUMNS_FOR_SECONDS;
 	contact_times(&row->window->event, at_d);
 	for (int i = 0; i < CONTACTS; i++) {
 		struct altaz a = {NAN, NAN};
@@ -79,10 +83,12 @@ static void altitude_line(struct text_view *v, const struct night *night, const 
 			a = night_star_altaz(night, &row->star, at_d[i]);
 		if (isnan(a.alt_deg))
 			snprintf(cell[i], CELL_BYTES, "-");
-		else
+		else if (with_az)
 			snprintf(cell[i], CELL_BYTES, "%.0f, %.0f", a.alt_deg, a.az_north_deg);
+		else
+			snprintf(cell[i], CELL_BYTES, "%.0f", a.alt_deg);
 	}
-	table_line(v, ROLE_TEXT, "alt,az", cell);
+	table_line(v, ROLE_TEXT, with_az ? "alt,az" : "alt", cell);
 }
 
 static void be_there_line(struct text_view *v, const struct run *r, const struct night *night,
@@ -163,7 +169,8 @@ static void lost_line(struct text_view *v, const struct night_row *row)
 			used += (size_t)snprintf(text + used, sizeof text - used, "%sto %s: %s",
 						 used ? "; " : "", cause_phrases[cause], parts);
 	}
-	text_view_addf(v, used ? ROLE_WARN : ROLE_TEXT, INDENT, "Lost   %s", used ? text : "nothing");
+	text_view_addf(v, used && !row->flip_only ? ROLE_WARN : ROLE_TEXT, INDENT, "Lost   %s",
+		       used ? text : "nothing");
 }
 
 /* Nothing without a flip. */
@@ -259,15 +266,14 @@ static void plan_line_of(struct text_view *v, bool roomy, const char *plan)
 		v->n = before + 1;
 }
 
-void detail_lines(struct text_view *v, int width, bool roomy, const struct run *r,
-		  const struct night_view *view, const struct night_head *head, const struct night_row *row,
-		  const char *plan)
+/* What is news of the window. */
+static void first_lines(struct text_view *v, bool roomy, const struct run *r, const struct night_view *view,
+			const struct night_head *head, const struct night_row *row, const char *plan)
 {
-	text_view_start(v, width);
 	be_there_line(v, r, &view->night, head, row);
 	plan_line_of(v, roomy, plan);
 	/* where room is short the plan goes before what is no news */
-	if (roomy || !*plan || strcmp(row->lost_long, "nothing") != 0)
+	if (roomy || !*plan || (strcmp(row->lost_long, "nothing") != 0 && !row->flip_only))
 		lost_line(v, row);
 	flip_line(v, r, &view->night, head, row);
 	contact_table(v, r, &view->night, head, row);
@@ -278,9 +284,25 @@ void detail_lines(struct text_view *v, int width, bool roomy, const struct run *
 		altitude_line(v, &view->night, row);
 	flag_lines(v, row->window->event.flags, true);
 	own_limits_line(v, &row->window->event.prepared->limits);
+}
+
+void detail_lines(struct text_view *v, int width, enum detail_extent extent, const struct run *r,
+		  const struct night_view *view, const struct night_head *head, const struct night_row *row,
+		  const char *plan)
+{
+	struct forecast_shown f;
+	text_view_start(v, width);
+	first_lines(v, extent != DETAIL_SHORT, r, view, head, row, plan);
+	forecast_show(&f, view, row);
+	forecast_lines(v, r, view, row, &f);
 	sigma_line(v, row);
 	sky_line(v, row);
 	star_line(v, row);
 	flag_lines(v, row->window->event.flags, false);
 	source_line(v, row);
+	if (extent != DETAIL_WHOLE)
+		return;
+	wish_lines(v, r, row, &f);
+	minute_lines(v, r, view, head, &f);
+	forecast_figure_lines(v, view, &f);
 }

@@ -6,10 +6,12 @@
 #include "tui/pages/night_head.h"
 #include "tui/parts/text_view.h"
 
-/* Contacts in three clocks, altitudes, chances, times to be there, losses, doubts, source; the most needed
- * first. roomy: more than the first six lines will be seen at once. plan: what it says of the window,
- * "" nothing. */
-void detail_lines(struct text_view *v, int width, bool roomy, const struct run *r,
+/* SHORT: six lines or so are seen at once; ROOMY: more; WHOLE: all there is, to scroll in. */
+enum detail_extent { DETAIL_SHORT, DETAIL_ROOMY, DETAIL_WHOLE };
+/* Contacts in three clocks, altitudes, chances, times to be there, losses, forecast, doubts, source; the most
+ * needed first. WHOLE adds each figure of the forecast with its sentence, goals, stars of the field and the
+ * reserve minute by minute. plan: what it says of the window, "" nothing. */
+void detail_lines(struct text_view *v, int width, enum detail_extent extent, const struct run *r,
 		  const struct night_view *view, const struct night_head *head, const struct night_row *row,
 		  const char *plan);
 /* Keys, figures, picture of the cover, doubts, cautions. */

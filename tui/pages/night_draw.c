@@ -74,6 +74,8 @@ static void draw_row(const struct night_page *p, struct grid *g, int line, size_
 	enum role role = row_role(row), lost_role = role;
 	if (row->window->event.flags & FLAG_BIT(FLAG_SUN_UP))
 		lost_role = ROLE_BAD;
+	else if (row->flip_only)
+		lost_role = ROLE_FAINT;
 	for (int c = 0; c < ROW_CELLS; c++) {
 		if (l->width[c] == 0)
 			continue;
@@ -302,6 +304,10 @@ static void draw_pane(const struct night_page *p, struct grid *g, int row, int t
 	}
 	if (s->curve)
 		curve_draw(&p->curve, &p->axis, g, at, p->axis_at);
+	if (s->hours) {
+		draw_zone(p, g, at + s->curve + 1);
+		grid_put(g, at + s->curve + 1, p->axis_at, p->axis.cols, p->axis.hours, ROLE_FAINT);
+	}
 	for (int i = 0; i < s->text && text_top + i < p->details.n; i++)
 		grid_put(g, row + s->text_at + i, 1, s->width, p->details.line[text_top + i].text,
 			 p->details.line[text_top + i].role);

@@ -13,13 +13,17 @@ static const struct {
 	const char *word, *column;
 	double factor;
 } figures[] = {
-    {"on", "usable_start_utc", 1},  {"t1", "t1_utc", 1},
-    {"mid", "mid_utc", 1},	    {"t4", "t4_utc", 1},
-    {"leave", "usable_end_utc", 1}, {"sigma", "sigma_min", 1},
-    {"cover", "coverage", 100},	    {"in", "chance_ingress", 100},
-    {"eg", "chance_egress", 100},   {"done", "chance_done", 100},
-    {"alt", "alt_mid_deg", 1},	    {"airm", "airmass_mid", 1},
-    {"moon", "moon_sep_deg", 1},    {"depth", "depth_ppt", 1},
+    {"on", "usable_start_utc", 1},   {"t1", "t1_utc", 1},
+    {"mid", "mid_utc", 1},	     {"t4", "t4_utc", 1},
+    {"leave", "usable_end_utc", 1},  {"sigma", "sigma_min", 1},
+    {"cover", "coverage", 100},	     {"in", "chance_ingress", 100},
+    {"eg", "chance_egress", 100},    {"done", "chance_done", 100},
+    {"alt", "alt_mid_deg", 1},	     {"airm", "airmass_mid", 1},
+    {"moon", "moon_sep_deg", 1},     {"depth", "depth_ppt", 1},
+    {"noise", "noise_ppt_min", 1},   {"snr", "depth_snr", 1},
+    {"s/n", "depth_snr", 1},	     {"timing", "timing_s", 1.0 / 60.0},
+    {"tim", "timing_s", 1.0 / 60.0}, {"bits", "gain_bits", 1},
+    {"sky", "sky_mag_arcsec2", 1},
 };
 enum { WORD_NAME, WORD_TAGS, WORD_LOST, WORD_DOUBTS, WORD_STATE, WORD_KIND, WORD_PLAN, WORD_COUNT };
 static const char *const text_words[WORD_COUNT] = {"name", "tags", "lost", "doubts", "state", "kind", "plan"};
@@ -263,6 +267,14 @@ static const char *text_of(const struct night_row *row, int word)
 	}
 }
 
+/* The last place that is shown. */
+static double step_of(const struct filter_term *t)
+{
+	if (t->factor < 1.0) /* minutes of seconds */
+		return 0.1;
+	return t->factor > 1.0 ? 1.0 : pow(10.0, -columns[t->at].people_decimals);
+}
+
 static bool term_is_true(const struct filter_term *t, const struct night_row *row, const struct night *night,
 			 const struct zone *zone)
 {
@@ -284,7 +296,7 @@ static bool term_is_true(const struct filter_term *t, const struct night_row *ro
 			       t->value, 0.25);
 	default:
 		return compare(t->factor * row_figure(row, columns[t->at].name), t->op, t->value,
-			       0.5 * (t->factor > 1.0 ? 1.0 : pow(10.0, -columns[t->at].people_decimals)));
+			       0.5 * step_of(t));
 	}
 }
 

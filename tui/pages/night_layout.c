@@ -26,12 +26,12 @@ static const struct {
     {ROW_FLAGS, 320},
 };
 
-struct night_layout night_lay_out(int cols)
+struct night_layout night_lay_out(int cols, bool forecast)
 {
 	struct night_layout l = {.at = {0}};
 	int used = MARK_COLUMNS, at = MARK_COLUMNS;
 	for (int c = 0; c < ROW_CELLS; c++)
-		if (cols >= row_columns[c].from_columns) {
+		if (cols >= row_columns[c].from_columns && (forecast || !row_columns[c].forecast)) {
 			l.width[c] = row_columns[c].width;
 			used += l.width[c] + 1;
 		}

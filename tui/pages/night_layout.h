@@ -9,6 +9,6 @@
 struct night_layout {
 	int at[ROW_CELLS], width[ROW_CELLS];
 };
-struct night_layout night_lay_out(int cols);
+struct night_layout night_lay_out(int cols, bool forecast);
 
 #endif

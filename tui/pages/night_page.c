@@ -131,15 +131,18 @@ static void tick_head(struct night_page *p)
 void night_page_settle(struct night_page *p)
 {
 	const struct night_row *row = night_page_selected(p);
-	bool details = p->mode == MODE_DETAILS, roomy = details || p->grid_rows >= PAGE_ROWS_ROOMY;
-	p->layout = night_lay_out(p->grid_cols);
+	const bool details = p->mode == MODE_DETAILS;
+	const enum detail_extent extent = details			    ? DETAIL_WHOLE
+					  : p->grid_rows >= PAGE_ROWS_ROOMY ? DETAIL_ROOMY
+									    : DETAIL_SHORT;
+	p->layout = night_lay_out(p->grid_cols, p->loaded && p->view.night.observing);
 	night_page_place_axis(p);
 	int width = night_page_text_width(p);
 	char plan[1600];
 	if (row)
 		page_plan_row_words(&p->plan, row, plan, sizeof plan);
 	if (row)
-		detail_lines(&p->details, width, roomy, p->run, &p->view, &p->head, row, plan);
+		detail_lines(&p->details, width, extent, p->run, &p->view, &p->head, row, plan);
 	else
 		text_view_start(&p->details, width);
 	night_page_share(p);

@@ -83,6 +83,7 @@ struct night_shape {
 	int plan_row;		  /* 1: the plan has a row of its own in the head */
 	int sky;		  /* rows of the pane with the sky band and the strip: 0 or 2 */
 	int curve;		  /* rows of the picture of altitudes; one more for the contacts */
+	int hours;		  /* 1: the hours stand in the row under the contacts */
 	int text_at, text, width; /* first row of the pane's text, its rows and columns */
 };
 struct night_page {

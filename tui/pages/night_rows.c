@@ -2,6 +2,8 @@
 #include "tui/pages/night_rows.h"
 
 #include "ephem/number_text.h"
+#include "ephem/units.h"
+#include "tui/pages/night_forecast.h"
 #include "tui/parts/clock_mark.h"
 #include "tui/parts/columns.h"
 
@@ -30,8 +32,12 @@ const struct row_column row_columns[ROW_CELLS] = {
     [ROW_DONE] = {"done", "%", 4, 0, true, "chance_done", NULL},
     [ROW_WORTH] =
 	{"worth", "", 5, 80, true, NULL,
-	 "What it counts for: its priority times the chance of done; in the plan, of what is planned of "
-	 "it (one limb alone is worth less)."},
+	 "What it counts for in a plan: priority x open goals x expected bits; without a forecast x the "
+	 "chance of done. In the plan, of what is planned of it (one limb alone is worth less).",
+	 false},
+    [ROW_SNR] = {"S/N", "", 4, 120, true, "depth_snr", NULL, true},
+    [ROW_TIMING] = {"tim", "min", 4, 128, true, "timing_s", NULL, true},
+    [ROW_NOISE] = {"noise", "ppt", 5, 208, true, "noise_ppt_min", NULL, true},
     [ROW_ALT] = {"alt", "deg", 4, 116, true, "alt_mid_deg", NULL},
     [ROW_AIRMASS] = {"airm", "", 5, 144, true, "airmass_mid", NULL},
     [ROW_MOON] = {"Moon", "deg", 4, 144, true, "moon_sep_deg", NULL},
@@ -42,7 +48,7 @@ const struct row_column row_columns[ROW_CELLS] = {
 		   "The event drawn as a light curve over the night; see the pictures below."},
     [ROW_FLAGS] =
 	{"doubts", "", 20, 200, false, NULL,
-	 "What is doubtful, as words; +N counts further doubts that most ephemerides share. The details say "
+	 "What is doubtful, as words; +N counts further doubts that most windows share. The details say "
 	 "them all."},
 };
 
@@ -70,6 +76,7 @@ static const char part_letters[] = "BIFEA";
 #define SHARE_NOTHING 0.005
 #define CHANCE_GOOD 0.8 /* only the colour of a figure hangs on it */
 #define CHANCE_EVEN 0.5
+#define FLIP_SHORT_MIN 10.0 /* of our own choosing: no news as long as no limb is harmed */
 
 void chance_text(double chance, char *out, size_t n)
 {
@@ -141,6 +148,32 @@ static const char *without_chance(const struct window_event *ev)
 	return "no chance known";
 }
 
+/* Minutes that a flip takes where it harms no limb: neither the limb nor its least baseline; NAN where
+ * something else is lost, or nothing. */
+static double flip_loss_min(const struct window *w)
+{
+	const struct window_event *ev = &w->event;
+	const struct window_cover *c = &w->cover;
+	const bool grazing = isnan(ev->t2_d) || isnan(ev->t3_d);
+	const double part_d[PART_COUNT] = {[PART_BEFORE] = ev->before_d,
+					   [PART_FLAT] = grazing ? 0.0 : ev->t3_d - ev->t2_d,
+					   [PART_AFTER] = ev->after_d},
+		     least_min = ev->prepared->limits.value[LIM_MIN_BASELINE];
+	double lost_d = 0.0;
+	bool flips = false;
+	for (int i = 0; i < PART_COUNT; i++) {
+		if (c->lost_to[i] == CAUSE_NONE)
+			continue;
+		if (c->lost_to[i] != CAUSE_FLIP || i == PART_INGRESS || i == PART_EGRESS ||
+		    (i == PART_BEFORE && c->base_before_min < least_min) ||
+		    (i == PART_AFTER && c->base_after_min < least_min))
+			return NAN;
+		flips = true;
+		lost_d += (1.0 - c->share[i]) * part_d[i];
+	}
+	return flips ? lost_d * DAY_MIN : NAN;
+}
+
 static void lost_text(const struct night_row *row, bool words, char *out, size_t n)
 {
 	const struct window *w = row->window;
@@ -152,7 +185,10 @@ static void lost_text(const struct night_row *row, bool words, char *out, size_t
 		append(out, n, *out ? ", " : "");
 		append(out, n, without_chance(&w->event));
 	}
-	lost_parts(&w->cover, words, parts, sizeof parts);
+	if (row->flip_only)
+		snprintf(parts, sizeof parts, "flip");
+	else
+		lost_parts(&w->cover, words, parts, sizeof parts);
 	if (*parts && *out)
 		append(out, n, ", ");
 	append(out, n, *parts || *out ? parts : "nothing");
@@ -187,6 +223,7 @@ static void fill_figures(struct night_row *row, const struct night_view *view, c
 	    {ROW_LEAVE, "usable_end_utc"}, {ROW_ERROR, "sigma_min"},
 	    {ROW_ALT, "alt_mid_deg"},	   {ROW_AIRMASS, "airmass_mid"},
 	    {ROW_MOON, "moon_sep_deg"},	   {ROW_DEPTH, "depth_ppt"},
+	    {ROW_SNR, "depth_snr"},	   {ROW_NOISE, "noise_ppt_min"},
 	};
 	const struct window *w = row->window;
 	const struct target *t = w->event.prepared->target;
@@ -200,6 +237,7 @@ static void fill_figures(struct night_row *row, const struct night_view *view, c
 		snprintf(row->text[ROW_ERROR], ROW_CELL_BYTES, "?");
 	if (w->event.flags & FLAG_BIT(FLAG_PHASE_LOST))
 		snprintf(row->text[ROW_ERROR], ROW_CELL_BYTES, "lost");
+	timing_text(w->forecast.timing_s, row->text[ROW_TIMING]);
 	chance_text(w->chance.ingress, row->text[ROW_INGRESS], ROW_CELL_BYTES);
 	chance_text(w->chance.egress, row->text[ROW_EGRESS], ROW_CELL_BYTES);
 	chance_text(w->chance.done, row->text[ROW_DONE], ROW_CELL_BYTES);
@@ -210,11 +248,13 @@ static void fill_figures(struct night_row *row, const struct night_view *view, c
 	}
 }
 
-/* What nearly every published ephemeris has is only counted; that the Sun is up stands with the losses. */
+/* What nearly every published ephemeris has, or the run lacks, is only counted; that the Sun is up stands
+ * with the losses. */
 static void doubts_text(uint32_t flags, char *out, size_t n)
 {
 	const uint32_t common = FLAG_BIT(FLAG_COVARIANCE_ASSUMED_0) | FLAG_BIT(FLAG_DURATION_ERROR_UNKNOWN) |
-				FLAG_BIT(FLAG_INGRESS_ESTIMATED);
+				FLAG_BIT(FLAG_INGRESS_ESTIMATED) | FLAG_BIT(FLAG_MAGNITUDE_ASSUMED) |
+				FLAG_BIT(FLAG_SKY_ASSUMED) | FLAG_BIT(FLAG_OPTICS_ASSUMED);
 	char count[16];
 	int further = 0;
 	for (uint32_t rest = flags & common; rest; rest &= rest - 1)
@@ -242,6 +282,7 @@ static void fill_row(struct night_row *row, const struct window *w, const struct
 	row->worth = plan_worth(w, rules);
 	for (int i = 0; i < PART_COUNT; i++)
 		row->cover[i] = share_glyph(w->cover.share[i]);
+	row->flip_only = flip_loss_min(w) < FLIP_SHORT_MIN;
 	fill_figures(row, view, leap, zone);
 	lost_text(row, false, row->lost, sizeof row->lost);
 	lost_text(row, true, row->lost_long, sizeof row->lost_long);

@@ -27,6 +27,9 @@ enum row_cell {
 	ROW_EGRESS,
 	ROW_DONE,
 	ROW_WORTH,
+	ROW_SNR,
+	ROW_TIMING,
+	ROW_NOISE,
 	ROW_ALT,
 	ROW_AIRMASS,
 	ROW_MOON,
@@ -45,6 +48,7 @@ struct row_column {
 	const char *
 	    column; /* its name in the column table, whose sentence explains it; NULL: a picture of several */
 	const char *sentence; /* where the column table has none */
+	bool forecast;	      /* shown only where there is a telescope to forecast with */
 };
 extern const struct row_column row_columns[ROW_CELLS];
 
@@ -67,6 +71,7 @@ struct night_row {
 	enum glyph cover[PART_COUNT];
 	enum role chance_role;
 	char lost[ROW_LOST_BYTES], lost_long[ROW_LOST_BYTES];
+	bool flip_only; /* a flip takes some minutes of flat part or baselines, and nothing else is lost */
 	char flags[320];
 	double on_d, leave_d; /* first and last usable moment; the reserve's ends where none is usable */
 	bool has_chance, long_shot, usable;

@@ -9,6 +9,7 @@ enum {
 	TEXT_ROWS_MIN = 6, /* times, losses and contacts come before a picture of altitudes */
 	TEXT_ROWS_USUAL = 13,
 	CURVE_ROWS = 8,
+	CURVE_ROWS_HOURS = 5, /* with fewer the hours over the list have to do */
 	SKY_ROWS = 2,
 	AXIS_AT = 5,	       /* where it has the width of the screen */
 	VIEW_ROWS_PICTURE = 18 /* a view of details with fewer has no picture */
@@ -62,7 +63,8 @@ static void share_pane(const struct night_page *p, struct night_shape *s)
 	s->width = night_page_text_width(p);
 	s->text = s->pane;
 	if (p->axis_in_list) {
-		s->curve = at_most(s->pane - 1, CURVE_ROWS_MAX);
+		s->hours = s->pane - 2 >= CURVE_ROWS_HOURS;
+		s->curve = at_most(s->pane - 1 - s->hours, CURVE_ROWS_MAX);
 	} else if (s->pane > SKY_ROWS + 2) {
 		s->sky = SKY_ROWS;
 		s->curve = at_most(s->pane - SKY_ROWS - TEXT_ROWS_MIN - 1, CURVE_ROWS);

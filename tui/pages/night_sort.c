@@ -22,6 +22,8 @@ const struct sort_rule sort_rules[SORT_COUNT] = {
     [SORT_MAG] = {'b', "magnitude", "bright", NULL, false},
     [SORT_ORDER] = {'u', "running order", "order", NULL, false},
     [SORT_WORTH] = {'w', "worth", "worth", NULL, true},
+    [SORT_SNR] = {'z', "S/N of the depth", "S/N", "depth_snr", true},
+    [SORT_TIMING] = {'t', "timing", "timing", "timing_s", false},
 };
 
 int sort_find(uint32_t key)

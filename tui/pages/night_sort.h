@@ -27,6 +27,8 @@ enum {
 	SORT_MAG,
 	SORT_ORDER,
 	SORT_WORTH,
+	SORT_SNR,
+	SORT_TIMING,
 	SORT_COUNT
 };
 extern const struct sort_rule sort_rules[SORT_COUNT];

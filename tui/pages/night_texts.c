@@ -116,7 +116,8 @@ static void filter_lines(struct text_view *v)
 	text_view_add(
 	    v, ROLE_TEXT, PLAIN_INDENT,
 	    "Words: on t1 mid t4 leave sigma cover in eg done alt airm moon depth mag worth (as in the list, "
-	    "chances in percent), name tags lost doubts state kind plan, and the column names of `wane night "
+	    "chances in percent), of a forecast snr timing noise bits sky (timing in minutes), name tags "
+	    "lost doubts state kind plan, and the column names of `wane night "
 	    "--format csv` (chances as shares).");
 }
 

@@ -213,7 +213,7 @@ const struct column columns[] = {
      "How much light is lost, in thousandths; of an occultation empty."},
     {"band", "", STAGE_FORECAST, T, 0, get_band, 0, 0, "band", 4,
      "The observing band; empty without a forecast, which takes a telescope with aperture_m and band."},
-    {"exposure_s", "s", STAGE_FORECAST, N, FORECAST(exposure_s), NULL, 3, 0, "exp", 5,
+    {"exposure_s", "s", STAGE_FORECAST, N, FORECAST(exposure_s), NULL, 3, 1, "exp", 5,
      "Exposure time, the telescope's own or chosen; empty without a forecast."},
     {"noise_ppt_min", "ppt", STAGE_FORECAST, N, FORECAST(noise_ppt_min), NULL, 3, 2, "noise", 5,
      "Noise of one minute of data, averaged over the usable part; empty without a forecast."},

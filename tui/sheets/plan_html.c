@@ -130,7 +130,7 @@ static void head(struct html_page *p)
 	const struct plan_view *v = p->v;
 	const int32_t mjd = v->night->night.mjd;
 	FILE *to = p->out.to;
-	char evening[64], morning[64], standing[300];
+	char evening[64], morning[64], standing[300], telescope[NAME_BYTES_MAX + 200];
 	fputs("<!DOCTYPE html>\n<html lang=\"en\">\n<head>\n<meta charset=\"utf-8\">\n"
 	      "<meta name=\"viewport\" content=\"width=device-width, initial-scale=1\">\n"
 	      "<meta name=\"color-scheme\" content=\"light dark\">\n<title>",
@@ -146,7 +146,8 @@ static void head(struct html_page *p)
 	fprintf(to, "</h1>\n<p class=\"dates\">%s, to %s</p>\n<p>", evening, morning);
 	if (v->telescope[0]) {
 		fputs("Telescope: ", to);
-		html_text(&p->out, v->telescope);
+		plan_telescope_words(v, telescope, sizeof telescope);
+		html_text(&p->out, telescope);
 		fputs(". ", to);
 	}
 	fputs("Plan: ", to);

@@ -132,17 +132,19 @@ static void fact_usable(struct html_page *p, const struct plan_member_view *m)
 static void facts_forecast(struct html_page *p, const struct plan_member_view *m)
 {
 	static const struct {
-		const char *name, *column, *unit;
+		const char *name, *of_whole, *column, *unit;
 	} row[] = {
-	    {"Exposure", "exposure_s", "s"},
-	    {"Noise of a minute", "noise_ppt_min", "ppt"},
-	    {"Depth over its error", "depth_snr", ""},
-	    {"Expected error of the mid-time", "timing_s", "s"},
+	    {"Exposure", "Exposure", "exposure_s", "s"},
+	    {"Noise of a minute", "Noise of a minute", "noise_ppt_min", "ppt"},
+	    {"Depth over its error", "Depth over its error, whole event", "depth_snr", ""},
+	    {"Expected error of the mid-time", "Expected error of the mid-time, whole event", "timing_s",
+	     "s"},
 	};
 	char number[NUMBER_TEXT_MAX];
 	for (size_t i = 0; i < sizeof row / sizeof row[0]; i++)
 		if (figure(m, row[i].column, number))
-			fact_figure(p, row[i].name, m, row[i].column, row[i].unit);
+			fact_figure(p, plan_one_limb(m) ? row[i].of_whole : row[i].name, m, row[i].column,
+				    row[i].unit);
 }
 
 static void flag_list(struct html_page *p, const struct plan_member_view *m)
@@ -243,6 +245,8 @@ static void contacts(struct html_page *p, const struct plan_item_view *item, con
 	for (int c = 0; c < CONTACT_COUNT; c++)
 		if (plan_contact_at(m, (enum plan_contact)c, &t))
 			time_row(p, plan_contact_words[c], t, html_outside(p, item, t));
+	if (plan_flip_at(p->v, item, m, &t))
+		time_row(p, "Flip", t, plan_flip_caution);
 }
 
 /* --- cards --- */

@@ -73,7 +73,7 @@ static void title(struct plan_page *p)
 	lat_text(site->lat_deg, 4, lat);
 	lon_text(site->lon_east_deg, 4, lon);
 	page_put(p, 11, "Site:      %s (%s, %s, %.0f m)", text, lat, lon, site->height_m);
-	plan_line(v->telescope, text, sizeof text);
+	plan_telescope_words(v, text, sizeof text);
 	page_put(p, 11, "Telescope: %s", text[0] ? text : "not named");
 }
 

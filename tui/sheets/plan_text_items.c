@@ -93,10 +93,17 @@ static void member_lines(struct plan_page *p, const struct plan_item_view *item,
 				  utc_diff_s(leap, t, item->start) > 0.0 ? "  too early"
 				  : utc_diff_s(leap, item->end, t) > 0.0 ? "  after leaving"
 									 : "");
+	if (plan_flip_at(p->v, item, m, &t)) {
+		page_time(p, MEMBER_INDENT, "flip", &t, "");
+		page_put(p, WRAP_INDENT, "%*sat the flip: %s", MEMBER_INDENT, "", plan_flip_caution);
+	}
 	plan_star_words(m, text, sizeof text);
 	plan_figure(m, "depth_ppt", 1, depth);
 	page_put(p, WRAP_INDENT, "%*sICRS %s%s%s%s", MEMBER_INDENT, "", text[0] ? text : "position not known",
 		 depth[0] ? ", depth " : "", depth, depth[0] ? " ppt" : "");
+	plan_forecast_words(m, text, sizeof text);
+	if (text[0])
+		page_put(p, WRAP_INDENT, "%*sforecast: %s", MEMBER_INDENT, "", text);
 	member_figures(p, m);
 	member_marks(p, m);
 }

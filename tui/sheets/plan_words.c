@@ -145,6 +145,77 @@ bool plan_contact_at(const struct plan_member_view *m, enum plan_contact contact
 	return m->has_flat || (contact != CONTACT_T2 && contact != CONTACT_T3);
 }
 
+const char plan_flip_caution[] = "watch the mount and its cables, and centre the star again";
+
+bool plan_flip_at(const struct plan_view *v, const struct plan_item_view *item,
+		  const struct plan_member_view *m, struct utc *t)
+{
+	const struct leap_table *leap = &v->run->leap;
+	const char *text = member_figure(m, "flip_utc");
+	return text[0] && utc_parse(leap, text, t, NULL) == ST_OK &&
+	       utc_diff_s(leap, item->start, *t) >= 0.0 && utc_diff_s(leap, *t, item->end) > 0.0;
+}
+
+bool plan_one_limb(const struct plan_member_view *m)
+{
+	return strcmp(m->variant, variant_words[VARIANT_INGRESS]) == 0 ||
+	       strcmp(m->variant, variant_words[VARIANT_EGRESS]) == 0;
+}
+
+void plan_forecast_words(const struct plan_member_view *m, char *out, size_t size)
+{
+	static const struct {
+		const char *column, *before, *after;
+		int decimals;
+	} part[] = {{"noise_ppt_min", ", noise ", " ppt a minute", 2},
+		    {"depth_snr", ", depth S/N ", "", 0},
+		    {"timing_s", ", timing ", " s", 0}};
+	char figure[NUMBER_TEXT_MAX], band[NUMBER_TEXT_MAX];
+	out[0] = '\0';
+	plan_figure(m, "noise_ppt_min", 2, figure);
+	if (!figure[0])
+		return;
+	plan_figure(m, "exposure_s", 1, figure);
+	plan_line(member_figure(m, "band"), band, sizeof band);
+	snprintf(out, size, "%s s exposures%s%s", figure, band[0] ? " in " : "", band);
+	for (size_t i = 0; i < sizeof part / sizeof part[0]; i++) {
+		const size_t used = strlen(out);
+		plan_figure(m, part[i].column, part[i].decimals, figure);
+		if (figure[0])
+			snprintf(out + used, size - used, "%s%s%s", part[i].before, figure, part[i].after);
+	}
+	const size_t used = strlen(out);
+	if (plan_one_limb(m))
+		snprintf(out + used, size - used, " (of the whole event)");
+}
+
+/* Of the first member that has one; a telescope may have got another since. */
+static const char *planned_band(const struct plan_view *v)
+{
+	for (size_t i = 0; i < v->n_items; i++)
+		for (size_t k = 0; k < v->item[i].n; k++)
+			if (member_figure(&v->item[i].member[k], "band")[0])
+				return member_figure(&v->item[i].member[k], "band");
+	return "";
+}
+
+void plan_telescope_words(const struct plan_view *v, char *out, size_t size)
+{
+	const struct telescope *t = v->night->night.telescope;
+	char aperture[NUMBER_TEXT_MAX] = "", band[NAME_BYTES_MAX];
+	plan_line(v->telescope, out, size);
+	if (!out[0])
+		return;
+	if (t && t->name && strcmp(t->name, v->telescope) == 0)
+		number_text(t->aperture_m, aperture);
+	plan_line(planned_band(v), band, sizeof band);
+	if (!band[0] && aperture[0])
+		plan_line(t->band, band, sizeof band);
+	const size_t used = strlen(out);
+	snprintf(out + used, size - used, "%s%s%s%s%s", aperture[0] ? ", " : "", aperture,
+		 aperture[0] ? " m" : "", band[0] ? ", band " : "", band);
+}
+
 void plan_star_words(const struct plan_member_view *m, char *out, size_t size)
 {
 	char ra[ANGLE_TEXT_MAX], dec[ANGLE_TEXT_MAX], mag[NUMBER_TEXT_MAX], band[NUMBER_TEXT_MAX];

@@ -54,6 +54,19 @@ void plan_list_words(const struct plan_member_view *m, const char *column, char 
 enum plan_contact { CONTACT_T1, CONTACT_T2, CONTACT_MID, CONTACT_T3, CONTACT_T4, CONTACT_COUNT };
 extern const char *const plan_contact_words[CONTACT_COUNT];
 bool plan_contact_at(const struct plan_member_view *m, enum plan_contact contact, struct utc *t);
+/* When the mount changes sides while the item runs: false when it does not. */
+bool plan_flip_at(const struct plan_view *v, const struct plan_item_view *item, const struct plan_member_view *m,
+		  struct utc *t);
+/* What to do then. */
+extern const char plan_flip_caution[];
+/* `120.0 s exposures in R, noise 1.44 ppt a minute, depth S/N 25, timing 33 s`, as it was planned; of one limb
+ * alone the last two are those of the whole event, and it says so. "" no forecast. */
+void plan_forecast_words(const struct plan_member_view *m, char *out, size_t size);
+/* `East dome, 0.5 m, band R`: the aperture as it is stored today, the band of the plan's own figures where they have one;
+ * "" a telescope without a name. */
+void plan_telescope_words(const struct plan_view *v, char *out, size_t size);
+/* Whether only one limb of it is planned. */
+bool plan_one_limb(const struct plan_member_view *m);
 /* `13:00:32.1 +21:18:00, V 12.2`: what is known of it; "" nothing. */
 void plan_star_words(const struct plan_member_view *m, char *out, size_t size);
 /* `ephemeris version 2, entered 2026-03-02, BJD_TDB, from SOURCE`. */

@@ -80,6 +80,7 @@ void text_begin(struct text_sheet *t, FILE *to, const struct run *r, bool season
 		int columns = text_columns(r->prepared[i].target->name);
 		t->name_width = columns > t->name_width ? columns : t->name_width;
 	}
+	t->forecast = !season && run_observing(r, &r->site);
 	t->name_width = t->name_width > TEXT_NAME_WIDTH_MAX ? TEXT_NAME_WIDTH_MAX : t->name_width;
 }
 
@@ -163,6 +164,21 @@ static void change_line(const struct text_sheet *t, const char *from, const char
 			from);
 }
 
+/* `, 0.5 m, band R`: what is known of it. */
+static void light_words(FILE *to, const struct telescope *t)
+{
+	char aperture[NUMBER_TEXT_MAX];
+	number_text(t->aperture_m, aperture);
+	if (aperture[0])
+		fprintf(to, ", %s m", aperture);
+	if (t->band && t->band[0]) {
+		fputs(", band ", to);
+		text_cell(to, t->band, NAME_CHARS_MAX, false);
+	}
+	if (!aperture[0] || band_parse(t->band) == BAND_NONE)
+		fputs(" (no forecast: that takes aperture_m and band)", to);
+}
+
 /* `Allotted: 21:00 MDT - 01:30 MDT` */
 static void allotted_line(const struct text_sheet *t, const struct night_view *v, const struct zone *zone)
 {
@@ -191,6 +207,7 @@ void text_head(const struct text_sheet *t, const struct site *site, const struct
 	if (n->telescope) {
 		fputs("Telescope: ", t->to);
 		text_cell(t->to, n->telescope->name, NAME_CHARS_MAX, false);
+		light_words(t->to, n->telescope);
 		fputc('\n', t->to);
 	}
 	if (!zone)
@@ -316,6 +333,8 @@ void text_foot(const struct text_sheet *t, int32_t last_mjd)
 	fputc('\n', t->to);
 	if (uncounted_text(t->run, uncounted, sizeof uncounted) > 0)
 		fprintf(t->to, "%s.\n", uncounted);
+	if (t->rows > 0 && t->forecast)
+		text_forecast_notes(t);
 	if (t->rows > 0 && !t->plain)
 		fputs("on, leave: first and last usable moment of the reserve. sigma: error of the mid-time. "
 		      "bef ingr flat egr aft: "

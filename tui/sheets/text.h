@@ -12,6 +12,7 @@ struct text_sheet {
 	FILE *to;
 	const struct run *run;
 	bool plain, season; /* season: rows carry night and site */
+	bool forecast;      /* of one night with a telescope to forecast with: rows carry worth and S/N */
 	int name_width;     /* columns of the names, set by text_begin */
 	int site_width;     /* and of the sites, in a season */
 	long rows, hidden, without_chance;

@@ -3,6 +3,7 @@
 
 #include "ephem/number_text.h"
 #include "tui/pages/night_head.h"
+#include "tui/parts/columns.h"
 
 #include <math.h>
 #include <string.h>
@@ -56,20 +57,42 @@ void text_heading(const struct text_sheet *t, const char *zone_name)
 	fputc('\n', t->to);
 	if (t->season)
 		fprintf(t->to, "%-23s %-*s ", "night", t->site_width, "site");
-	fprintf(t->to, "%-*s %-5s  %-5s  %-5s  %-5s  %5s  %4s %4s %4s %4s %4s  %4s  %s\n", t->name_width,
+	fprintf(t->to, "%-*s %-5s  %-5s  %-5s  %-5s  %5s  %4s %4s %4s %4s %4s  %4s%s  %s\n", t->name_width,
 		"target", "on", "T1", "T4", "leave", "sigma", "bef", "ingr", "flat", "egr", "aft", "done",
-		"lost to; marks");
+		t->forecast ? " worth  S/N" : "", "lost to; marks");
 	if (t->season)
 		fprintf(t->to, "%-23s %-*s ", "", t->site_width, "");
 	fprintf(t->to, "%-*s %-26s %5s  %24s  %4s\n", t->name_width, "", zone_name, "min",
 		"usable, per cent     ", "%");
 }
 
+void text_forecast_notes(const struct text_sheet *t)
+{
+	static const char *const shown[][2] = {{"worth", "worth"}, {"S/N", "depth_snr"}};
+	for (size_t i = 0; i < sizeof shown / sizeof shown[0]; i++) {
+		const int at = column_find(shown[i][1]);
+		fprintf(t->to, "%s: %s\n", shown[i][0], columns[at].sentence);
+	}
+}
+
+enum { FORECAST_BYTES = 2 * NUMBER_TEXT_MAX + 4 };
+/* Worth and S/N, ` 1.93   42`; "" where none is told. */
+static void forecast_cells(const struct text_sheet *t, const struct window *w, char out[FORECAST_BYTES])
+{
+	char worth[NUMBER_TEXT_MAX], snr[NUMBER_TEXT_MAX];
+	out[0] = '\0';
+	if (!t->forecast)
+		return;
+	number_text_fixed(w->forecast.worth, 2, worth);
+	number_text_fixed(w->forecast.depth_snr, 0, snr);
+	snprintf(out, FORECAST_BYTES, " %5s %4s", worth[0] ? worth : "-", snr[0] ? snr : "-");
+}
+
 void text_row(const struct text_sheet *t, const struct window *w, const struct night *n,
 	      const struct zone *zone)
 {
 	const double at[] = {w->cover.usable_start_d, w->event.t1_d, w->event.t4_d, w->cover.usable_end_d};
-	char sigma[NUMBER_TEXT_MAX], lost[300], share[8], clock[CLOCK_BYTES], name[64];
+	char sigma[NUMBER_TEXT_MAX], lost[300], share[8], clock[CLOCK_BYTES], name[64], cells[FORECAST_BYTES];
 	if (t->season) {
 		night_name(n->mjd, name, sizeof name);
 		fprintf(t->to, "%-23s ", name);
@@ -89,7 +112,9 @@ void text_row(const struct text_sheet *t, const struct window *w, const struct n
 	}
 	per_cent(w->chance.done, share);
 	lost_words(w, lost, sizeof lost);
-	fprintf(t->to, "  %4s  %s%s", share, w->event.kind == KIND_OCCULTATION ? "(occultation) " : "", lost);
+	forecast_cells(t, w, cells);
+	fprintf(t->to, "  %4s%s  %s%s", share, cells,
+		w->event.kind == KIND_OCCULTATION ? "(occultation) " : "", lost);
 	if (w->event.flags) {
 		fputs(lost[0] ? "; " : "", t->to);
 		for (int f = 0; f < FLAG_COUNT; f++)
@@ -130,6 +155,27 @@ static void share_words(const struct text_sheet *t, const struct window *w)
 	fputs(".\n", t->to);
 }
 
+static void forecast_words(const struct text_sheet *t, const struct window *w)
+{
+	const struct window_forecast *f = &w->forecast;
+	char worth[NUMBER_TEXT_MAX], snr[NUMBER_TEXT_MAX], noise[NUMBER_TEXT_MAX], timing[NUMBER_TEXT_MAX];
+	if (!t->forecast)
+		return;
+	number_text_fixed(f->worth, 2, worth);
+	number_text_fixed(f->depth_snr, 0, snr);
+	number_text_fixed(f->noise_ppt_min, 2, noise);
+	number_text_fixed(f->timing_s, 0, timing);
+	fprintf(t->to, "Worth: %s.\n", worth[0] ? worth : "not known");
+	if (!noise[0]) {
+		fputs("Noise: not known.\n", t->to);
+		return;
+	}
+	fprintf(
+	    t->to,
+	    "Noise of a minute: %s ppt. Depth over its error: %s. Error of the mid-time measured: %s%s.\n",
+	    noise, snr[0] ? snr : "not known", timing[0] ? timing : "not known", timing[0] ? " s" : "");
+}
+
 void text_record(const struct text_sheet *t, const struct window *w, const struct night *n,
 		 const struct zone *zone)
 {
@@ -164,6 +210,7 @@ void text_record(const struct text_sheet *t, const struct window *w, const struc
 		fprintf(t->to, "Chance of both limbs in clear weather: %s per cent.\n", share);
 	else
 		fputs("Chance: none can be given.\n", t->to);
+	forecast_words(t, w);
 	lost_words(w, lost, sizeof lost);
 	fprintf(t->to, "Lost to: %s.\n", lost[0] ? lost : "nothing");
 	flags_text(ev->flags, flags, sizeof flags);
