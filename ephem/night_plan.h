@@ -25,6 +25,8 @@ struct plan_rules {
 	double first_slew_deg; /* way of a move from where nobody knows the telescope to be (90 deg) */
 	double field_deg;     /* windows whose stars are this close share a pointing; 0: planets of one star only */
 	double limb_share;    /* one limb alone, of the whole event (0.2) */
+	double limb_trust;    /* with a forecast: how much of its bits counts of a limb planned alone (0.5): what is seen of one limb only biases the
+			       * mid-time by more than its noise says (warning of Barros et al. 2013, MNRAS 430, 3032, from memory; the number is our own) */
 	double short_share;   /* factor for each baseline that is cut down (0.95) */
 	double unknown_share; /* without a chance: this times the coverage stands for it (0.1) */
 };

@@ -22,6 +22,7 @@ struct plan_rules plan_rules_built_in(void)
 	    .first_slew_deg = 90.0,
 	    .field_deg = 0.0,
 	    .limb_share = 0.2,
+	    .limb_trust = 0.5,
 	    .short_share = 0.95,
 	    .unknown_share = UNKNOWN_SHARE,
 	};
@@ -72,7 +73,7 @@ double plan_worth(const struct window *w, const struct plan_rules *rules)
 static double limb_worth(const struct window *w, const struct plan_rules *rules, double chance, double bits)
 {
 	const double each =
-	    w->forecast.basis == BASIS_BITS ? priority_of(w) * bits : value_of(w) * rules->limb_share;
+	    w->forecast.basis == BASIS_BITS ? priority_of(w) * rules->limb_trust * bits : value_of(w) * rules->limb_share;
 	return each * open_of(w).limb * chance;
 }
 

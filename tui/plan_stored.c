@@ -41,6 +41,7 @@ static const struct rule_name {
     {"first_slew_deg", offsetof(struct plan_rules, first_slew_deg), 1.0},
     {"field_deg", offsetof(struct plan_rules, field_deg), 1.0},
     {"limb_share", offsetof(struct plan_rules, limb_share), 1.0},
+    {"limb_trust", offsetof(struct plan_rules, limb_trust), 1.0},
     {"short_share", offsetof(struct plan_rules, short_share), 1.0},
     {"unknown_share", offsetof(struct plan_rules, unknown_share), 1.0},
 };

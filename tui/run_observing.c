@@ -112,6 +112,7 @@ struct plan_rules run_plan_rules(const struct run *r)
 {
 	struct plan_rules rules = plan_rules_of(&r->telescope);
 	rules.limb_share = stored_value(&r->stored, KEY_LIMB_SHARE);
+	rules.limb_trust = stored_value(&r->stored, KEY_LIMB_TRUST);
 	rules.short_share = stored_value(&r->stored, KEY_SHORT_SHARE);
 	rules.unknown_share = stored_value(&r->stored, KEY_UNKNOWN_SHARE);
 	return rules;

@@ -26,6 +26,10 @@ const struct stored_key_rule stored_key_rules[KEY_COUNT] = {
 			   "What stands for the bits of a window whose timing can't be forecast."},
     [KEY_LIMB_SHARE] = {"limb_share", "", STORED_NUMBER, 0, 1, 0.2,
 			"Worth of one limb alone, of the whole event's, where nothing is forecast."},
+    [KEY_LIMB_TRUST] =
+	{"limb_trust", "", STORED_NUMBER, 0, 1, 0.5,
+	 "How much of its bits counts of a limb that is planned alone: one limb biases a mid-time by "
+	 "more than its noise."},
     [KEY_SHORT_SHARE] = {"short_share", "", STORED_NUMBER, 0, 1, 0.95,
 			 "Worth is multiplied by this for each baseline that a plan cuts down."},
     [KEY_UNKNOWN_SHARE] = {"unknown_share", "", STORED_NUMBER, 0, 1, 0.1,

@@ -76,7 +76,7 @@ refuse 2 'setting: the value is missing' setting set need_min
 refuse 2 'setting: an argument too many' setting clear need_min 3
 refuse 2 'setting: no such verb (got "put", expected list, set, clear)' setting put need_min 3
 "$WANE" setting --help >"$scratch/help"
-for key in need_min worth_by fallback_bits limb_share short_share unknown_share after_date after_years systematic_floor_s moved_min; do
+for key in need_min worth_by fallback_bits limb_share limb_trust short_share unknown_share after_date after_years systematic_floor_s moved_min; do
 	check "--help has $key" grep -q "^  $key  *[A-Z]" "$scratch/help"
 done
 

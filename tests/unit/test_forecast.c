@@ -311,9 +311,9 @@ static void ways_of_a_plan(void **state)
 		const struct window_chance *c = &s.window.chance;
 		check_close("whole", worth[VARIANT_WHOLE], known ? f->worth : 2.0 * 0.5 * c->done, 1e-12);
 		check_close("ingress", worth[VARIANT_INGRESS],
-			    2.0 * c->ingress * (known ? f->bits_ingress : 0.5 * 0.2), 1e-12);
+			    2.0 * c->ingress * (known ? 0.5 * f->bits_ingress : 0.5 * 0.2), 1e-12);
 		check_close("egress", worth[VARIANT_EGRESS],
-			    2.0 * c->egress * (known ? f->bits_egress : 0.5 * 0.2), 1e-12);
+			    2.0 * c->egress * (known ? 0.5 * f->bits_egress : 0.5 * 0.2), 1e-12);
 		assert_true(worth[VARIANT_WHOLE] > worth[VARIANT_INGRESS]);
 	}
 	/* a goal for both limbs leaves nothing for one */
