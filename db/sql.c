@@ -270,16 +270,17 @@ const char *const sql_text[SQL_COUNT] = {
     [SQL_GOAL_UPDATE] = "UPDATE goal SET (" GOAL_PLAIN ", row_crc) = (" TEN ", ?) WHERE id = ? AND rev = ?",
     [SQL_GOAL_KEEP_OLD] =
 	"INSERT INTO goal_old(id, " GOAL_PLAIN ", replaced_by, row_crc) VALUES(" TEN ", ?, ?, ?)",
-    /* the newest item that has the mark's key, with its windows */
-    [SQL_GOAL_GOT] = "SELECT " PLAN_MARK_COLUMNS ", " WINDOW_COLUMNS ", " ITEM_COLUMNS ", " PLAN_COLUMNS
-		     ", ifnull(t.band, '') "
-		     "FROM plan_mark k JOIN plan p ON p.id = k.plan_id JOIN plan_item i ON i.id = "
-		     "(SELECT max(j.id) FROM plan_edition d JOIN plan_item j ON j.edition_id = d.id "
-		     "WHERE d.plan_id = k.plan_id AND j.item_key = k.item_key) "
-		     "JOIN plan_window w ON w.item_id = i.id LEFT JOIN telescope t ON t.id = p.telescope_id "
-		     "WHERE k.removed = 0 AND p.removed = 0 AND k.state IN ('done', 'partly') "
-		     "AND w.target_id IN (SELECT target_id FROM goal WHERE removed = 0) "
-		     "ORDER BY w.target_id, w.epoch, w.kind, p.site_id, ifnull(p.telescope_id, 0), k.id",
+    /* the newest item that has the mark's key, with its windows; marks are few: they lead the join */
+    [SQL_GOAL_GOT] =
+	"SELECT " PLAN_MARK_COLUMNS ", " WINDOW_COLUMNS ", " ITEM_COLUMNS ", " PLAN_COLUMNS
+	", ifnull(t.band, '') "
+	"FROM plan_mark k CROSS JOIN plan p ON p.id = k.plan_id CROSS JOIN plan_item i ON i.id = "
+	"(SELECT max(j.id) FROM plan_edition d JOIN plan_item j ON j.edition_id = d.id "
+	"WHERE d.plan_id = k.plan_id AND j.item_key = k.item_key) "
+	"CROSS JOIN plan_window w ON w.item_id = i.id LEFT JOIN telescope t ON t.id = p.telescope_id "
+	"WHERE k.removed = 0 AND p.removed = 0 AND k.state IN ('done', 'partly') "
+	"AND w.target_id IN (SELECT target_id FROM goal WHERE removed = 0) "
+	"ORDER BY w.target_id, w.epoch, w.kind, p.site_id, ifnull(p.telescope_id, 0), k.id",
     [SQL_FIELD_STAR_NEXT] = "SELECT ifnull(max(id), 0) + 1 FROM field_star",
     [SQL_FIELD_STAR_LOAD] =
 	"SELECT id, " FIELD_STAR_PLAIN ", row_crc FROM field_star ORDER BY target_id, role, id",

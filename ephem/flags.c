@@ -78,6 +78,9 @@ const struct flag_rule flag_rules[FLAG_COUNT] = {
     [FLAG_OPTICS_ASSUMED] = {"optics_assumed",
 			     "The telescope lacks numbers that the noise depends on; usual ones stand for "
 			     "them."},
+    [FLAG_GOAL_MET] =
+	{"goal_met",
+	 "No goal of the target is open for this event: met, past or of another band; it is worth nothing."},
 };
 
 void flags_text(uint32_t bits, char *out, size_t n)

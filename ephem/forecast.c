@@ -29,6 +29,11 @@ struct window_forecast forecast_none(void)
 /* Assumptions that change the noise by more than some percent. */
 #define OPTICS_THAT_MATTER (~(uint32_t)(OPTICS_GAIN | OPTICS_DARK | OPTICS_FOCUS))
 
+#define FORECAST_FLAGS                                                                                       \
+	(FLAG_BIT(FLAG_MAGNITUDE_UNKNOWN) | FLAG_BIT(FLAG_MAGNITUDE_ASSUMED) |                               \
+	 FLAG_BIT(FLAG_DEPTH_UNKNOWN) | FLAG_BIT(FLAG_SATURATED) | FLAG_BIT(FLAG_EXPOSURE_LONG) |            \
+	 FLAG_BIT(FLAG_NEIGHBOUR_DILUTED) | FLAG_BIT(FLAG_SKY_ASSUMED) | FLAG_BIT(FLAG_OPTICS_ASSUMED))
+
 static void make_flags(struct forecast_explain *x, const struct observing *o)
 {
 	if (isnan(x->mag.mag))
@@ -112,7 +117,7 @@ bool forecast_explain(struct window *w, const struct target_night *tn, struct fo
 	    x, w, !isnan(f->flip_d) && window_cut_by_flip(&w->event, tn, &cut, &flip_d) ? &cut : tn);
 	make_flags(x, o);
 	make_information(x, w, o);
-	w->event.flags |= x->flags;
+	w->event.flags = (w->event.flags & ~FORECAST_FLAGS) | x->flags;
 	w->sky.sky_mag_arcsec2 = x->mid.sky.mag_arcsec2;
 	f->exposure_s = x->exposure_s;
 	f->noise_ppt_min = x->noise_ppt_min;
@@ -128,7 +133,7 @@ bool forecast_explain(struct window *w, const struct target_night *tn, struct fo
 	f->band = x->band;
 	f->worth = x->worth;
 	if (x->basis != BASIS_BITS) {
-		const struct plan_rules rules = plan_rules_built_in();
+		const struct plan_rules rules = {.unknown_share = o->unknown_share};
 		f->worth = x->worth = plan_worth(w, &rules);
 	}
 	return true;

@@ -9,6 +9,7 @@ struct observing observing_of(const struct telescope *t)
 			      .exposure_s = t->exposure_s,
 			      .rules = worth_rules_built_in(),
 			      .fallback_bits = FALLBACK_BITS,
+			      .unknown_share = UNKNOWN_SHARE,
 			      .at_jd_tdb = NAN};
 	for (int i = 0; i < BAND_SKY_COUNT; i++)
 		o.dark_zenith_mag[i] = NAN;

@@ -18,9 +18,11 @@ struct observing {
 	double extinction_mag[BAND_COUNT];	 /* the site's, per airmass; NAN: the band's */
 	struct worth_rules rules;		 /* by what windows are ranked, the need, systematic floors */
 	double fallback_bits;			 /* stands for the bits (ranked by depth: for the S/N) of a window that has no forecast of its timing, >= 0 (1) */
+	double unknown_share;			 /* stands for the chance of a window without one, times its coverage; as plan_rules.unknown_share (0.1) */
 	double at_jd_tdb;			 /* date of sigma_after [JD TDB]; NAN: none is told */
 };
 #define FALLBACK_BITS 1.0 /* what a mid-time brings that is as precise as 0.58 of the prediction's error: of our own choosing */
+#define UNKNOWN_SHARE 0.1 /* of our own choosing */
 
 /* A telescope with everything else unknown or built in. */
 struct observing observing_of(const struct telescope *t);

@@ -23,7 +23,7 @@ struct plan_rules plan_rules_built_in(void)
 	    .field_deg = 0.0,
 	    .limb_share = 0.2,
 	    .short_share = 0.95,
-	    .unknown_share = 0.1,
+	    .unknown_share = UNKNOWN_SHARE,
 	};
 }
 

@@ -53,6 +53,18 @@ static bool is_listed(const struct window *w, const struct window_choice *choice
 	return choice->all || window_listed(w, choice->min_chance);
 }
 
+/* A target with goals none of which the event would serve. */
+static void mark_goals(struct window *w, const struct night *n)
+{
+	const struct observed *o = w->event.prepared->observed;
+	const enum band_id band = n->observing ? n->observing->optics.band : BAND_NONE;
+	if (!o || o->n_goals == 0)
+		return;
+	const struct open_goals open = open_goals_of(o, band, jd2_value(w->event.mid_bjd.jd));
+	if (open.whole + open.limb == 0)
+		w->event.flags |= FLAG_BIT(FLAG_GOAL_MET);
+}
+
 static bool add_events(const struct target_night *tn, enum event_kind kind, long first, long last,
 		       const struct window_choice *choice, struct window_list *list, long *hidden)
 {
@@ -64,6 +76,7 @@ static bool add_events(const struct target_night *tn, enum event_kind kind, long
 		if (is_listed(w, choice)) {
 			if (tn->night->observing) /* only of what is listed: it costs as much as the rest */
 				window_make_forecast(w, tn);
+			mark_goals(w, tn->night);
 			list->n++;
 		} else if (window_hidden(w))
 			++*hidden;

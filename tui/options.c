@@ -184,7 +184,7 @@ static const struct option_row rows[] = {
      0, 0, NULL},
     {"--remove", "DRAFT", "Take a draft out of the lists.", GROUP_PLAN, OPT_TEXT, AT(remove_draft), 0, 0,
      NULL},
-    {"--moved", "MIN", "From how many minutes a stored mid-time counts as moved (2).",
+    {"--moved", "MIN", "From how many minutes a stored mid-time counts as moved (the setting moved_min; 2).",
      GROUP_PLAN | GROUP_SHEET, OPT_NUMBER, AT(moved_min), 0, 1e6, NULL},
     {"--since", "PLAN",
      "Say first what changed since another draft, or since an edition of this plan (a number).", GROUP_SHEET,

@@ -194,6 +194,8 @@ const char *left_words(struct plan_view *v, const struct night_plan *p, const st
 	const struct window *w = offer[left->offer].window;
 	const struct order order = {
 	    .v = v, .p = p, .offer = offer, .standing = standing, .fixed_item = fixed_item};
+	if (left->reason != LEFT_DROPPED && (w->event.flags & FLAG_BIT(FLAG_GOAL_MET)))
+		return plan_copy(v, "no goal is open for it: met, past or of another band");
 	switch (left->reason) {
 	case LEFT_WORTHLESS:
 		worthless(w, text, sizeof text);

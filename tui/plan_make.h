@@ -17,7 +17,7 @@ struct plan_wish {
 	const char *const *free, *const *unblock, *const *unlost;
 	int n_free, n_unblock, n_unlost;
 	bool costs;			 /* say what each one left out would cost: a running order for each */
-	double moved_min;		 /* from how many minutes a member counts as moved; NAN: 2 */
+	double moved_min;		 /* from how many minutes a member counts as moved; NAN: the stored setting moved_min */
 };
 /* Whether anything is wished that needs the plan worked out anew. */
 bool wish_any(const struct plan_wish *wish);

@@ -88,8 +88,9 @@ static enum status member_moved(struct plan_view *v, struct plan_member_view *m,
 enum status stored_moves(struct plan_view *v, double moved_min, struct err *e)
 {
 	enum status s = ST_OK;
-	const double least_min =
-	    isfinite(moved_min) && moved_min >= 0.0 ? moved_min : v->run->stored.value[KEY_MOVED_MIN];
+	const double least_min = isfinite(moved_min) && moved_min >= 0.0
+				     ? moved_min
+				     : stored_value(&v->run->stored, KEY_MOVED_MIN);
 	v->moved = 0;
 	for (size_t i = 0; i < v->n_items; i++)
 		for (size_t k = 0; s == ST_OK && k < v->item[i].n; k++)

@@ -75,7 +75,7 @@ const char *plan_limits_text(struct plan_view *v)
 		    (size_t)snprintf(text + used, sizeof text - used, "\t%s=%s", rule_names[i].name, number);
 	}
 	for (size_t i = 0; i < sizeof keys / sizeof keys[0]; i++) {
-		stored_key_text(keys[i], r->stored.value[keys[i]], value_text);
+		stored_key_text(keys[i], stored_value(&r->stored, keys[i]), value_text);
 		used += (size_t)snprintf(text + used, sizeof text - used, "\t%s=%s",
 					 stored_key_rules[keys[i]].name, value_text);
 	}

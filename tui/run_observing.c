@@ -83,20 +83,22 @@ double run_site_value(const struct run *r, enum site_key kind, int64_t site_id, 
 
 void run_take_observing(struct run *r)
 {
-	const double *stored = r->stored.value;
+	const struct stored_values *v = &r->stored;
 	struct observing o = observing_of(&r->telescope);
 	for (int b = 0; b < BAND_COUNT; b++) {
 		if (b < BAND_SKY_COUNT)
 			o.dark_zenith_mag[b] = run_site_value(r, SITE_SKY, r->site.id, (enum band_id)b);
 		o.extinction_mag[b] = run_site_value(r, SITE_EXTINCTION, r->site.id, (enum band_id)b);
 	}
-	o.rules.choice = (enum worth_choice)(int)stored[KEY_WORTH_BY];
-	o.rules.need_min = stored[KEY_NEED_MIN];
-	o.rules.floor_min = stored[KEY_SYSTEMATIC_FLOOR_S] / 60.0;
-	o.fallback_bits = stored[KEY_FALLBACK_BITS];
+	o.rules.choice = (enum worth_choice)(int)stored_value(v, KEY_WORTH_BY);
+	o.rules.need_min = stored_value(v, KEY_NEED_MIN);
+	o.rules.floor_min = stored_value(v, KEY_SYSTEMATIC_FLOOR_S) / 60.0;
+	o.fallback_bits = stored_value(v, KEY_FALLBACK_BITS);
+	o.unknown_share = stored_value(v, KEY_UNKNOWN_SHARE);
 	const double today = wall_now(&r->wall).mjd;
-	o.at_jd_tdb = MJD_ZERO_JD + (isnan(stored[KEY_AFTER_DATE]) ? today + stored[KEY_AFTER_YEARS] * YEAR_D
-								   : stored[KEY_AFTER_DATE]);
+	o.at_jd_tdb = MJD_ZERO_JD + (isnan(stored_value(v, KEY_AFTER_DATE))
+					 ? today + stored_value(v, KEY_AFTER_YEARS) * YEAR_D
+					 : stored_value(v, KEY_AFTER_DATE));
 	r->observing = o;
 }
 
@@ -109,9 +111,9 @@ const struct observing *run_observing(const struct run *r, const struct site *si
 struct plan_rules run_plan_rules(const struct run *r)
 {
 	struct plan_rules rules = plan_rules_of(&r->telescope);
-	rules.limb_share = r->stored.value[KEY_LIMB_SHARE];
-	rules.short_share = r->stored.value[KEY_SHORT_SHARE];
-	rules.unknown_share = r->stored.value[KEY_UNKNOWN_SHARE];
+	rules.limb_share = stored_value(&r->stored, KEY_LIMB_SHARE);
+	rules.short_share = stored_value(&r->stored, KEY_SHORT_SHARE);
+	rules.unknown_share = stored_value(&r->stored, KEY_UNKNOWN_SHARE);
 	return rules;
 }
 

@@ -48,6 +48,11 @@ struct stored_values stored_values_built_in(void)
 	return v;
 }
 
+double stored_value(const struct stored_values *v, enum stored_key key)
+{
+	return v->given[key] ? v->value[key] : stored_key_rules[key].fallback;
+}
+
 int stored_key_find(const char *name)
 {
 	for (int k = 0; k < KEY_COUNT; k++)

@@ -39,6 +39,8 @@ struct stored_values {
 	bool given[KEY_COUNT]; /* stored; else built in */
 };
 struct stored_values stored_values_built_in(void);
+/* What holds: stored, else built in; a zeroed struct is all built in. */
+double stored_value(const struct stored_values *v, enum stored_key key);
 /* -1: no such key. */
 int stored_key_find(const char *name);
 /* ST_SYNTAX, ST_RANGE: the message says what is expected. */

@@ -34,7 +34,7 @@ check "check: sound" grep -q "^sound: " "$scratch/out"
 quiet import config-example/demo-targets.csv >/dev/null
 quiet night 2026-04-22 --all --format json >"$scratch/night.json"
 check "limits: the points of the stored mask" test "$(points "$scratch/night.json")" = 4
-check "limits: the last key" sh -c 'grep -A1 "\"mask_points\"" "$1" | grep -q "^  },"' - "$scratch/night.json"
+check "limits: what ranks windows comes behind it" sh -c 'grep -A1 "\"mask_points\"" "$1" | grep -q "\"need_min\": 2,"' - "$scratch/night.json"
 quiet night 2026-04-22 --all --mask "$scratch/high.csv" --format json >"$scratch/high.json"
 check "--mask wins over the stored one" test "$(points "$scratch/high.json")" = 1
 quiet night 2026-04-22 --all --mask none --format json >"$scratch/none.json"

@@ -161,7 +161,7 @@ check "no twilight: said again" sh -c 'grep -q "^wane: allotment: .* allots noth
 # --- halves
 quiet site set "$hill" --half 01:10 >"$scratch/out"
 check "site set --half: shown" grep -q ', nights halved at 01:10$' "$scratch/out"
-check "site show: json" grep -q '"mask": \[\], "half": "01:10"}' <<-EOT
+check "site show: json" grep -q '"mask": \[\], "half": "01:10", "sky": {}, "extinction": {}, "telescope": null}' <<-EOT
 	$(quiet site show "$hill" --format json)
 EOT
 quiet allot add 2026-05-10 second-half --site "$hill" >"$scratch/out"
@@ -171,7 +171,7 @@ check "by sunset" grep -q ', nights halved by sunset$' "$scratch/out"
 quiet night 2026-05-10 --site "$hill" --format json >"$scratch/sunset.json"
 quiet site set "$hill" --half dark >"$scratch/out"
 check "dark is the rule where none is said" sh -c '! grep -q halved "$1"' - "$scratch/out"
-check "json says it" grep -q '"half": "dark"}' <<-EOT
+check "json says it" grep -q '"half": "dark", "sky": {}, "extinction": {}, "telescope": null}' <<-EOT
 	$(quiet site show "$hill" --format json)
 EOT
 quiet night 2026-05-10 --site "$hill" --format json >"$scratch/dark.json"

@@ -5,6 +5,8 @@
 #include "tests/support/observing_store.h"
 
 #include "db/allotments.h"
+#include "db/field_stars.h"
+#include "db/goals.h"
 #include "db/history.h"
 #include "db/midtimes.h"
 #include "db/plans.h"
@@ -13,6 +15,7 @@
 #include "db/targets.h"
 #include "db/telescopes.h"
 
+#include <math.h>
 #include <stdbool.h>
 #include <stdio.h>
 #include <stdlib.h>
@@ -146,6 +149,25 @@ static enum status edit_setting(struct store *s, struct rng *r, struct err *e)
 	return stored_setting_put(s, pick(r, 2) ? "half.1" : "half.2", values[pick(r, 3)], e);
 }
 
+static enum status edit_goal(struct store *s, struct rng *r, int64_t target, struct err *e)
+{
+	const char *band = pick(r, 2) ? "R" : "";
+	const struct goal_row g = {.target_id = target, .whole = 1 + pick(r, 3), .band = band};
+	return pick(r, 3) ? goal_set(s, &g, e) : goal_remove(s, target, band, e);
+}
+
+static enum status edit_star(struct store *s, struct rng *r, int64_t target, struct err *e)
+{
+	int64_t id;
+	const struct field_star f = {.target_id = target,
+				     .role = pick(r, 2) ? STAR_GUIDE : STAR_COMPARISON,
+				     .ra_deg = 10 + pick(r, 7),
+				     .dec_deg = 20,
+				     .sep_arcsec = (double)NAN,
+				     .mag = 12};
+	return pick(r, 3) ? field_star_add(s, &f, &id, e) : field_star_remove(s, 1 + pick(r, 12), e);
+}
+
 /* A draft of one item, of target 1 and its first ephemeris. */
 static enum status store_plan(struct store *s, struct rng *r, struct err *e)
 {
@@ -186,7 +208,7 @@ static enum status store_plan(struct store *s, struct rng *r, struct err *e)
 
 /* Edits of plans that were taken: the loops are worth nothing without. */
 static struct {
-	long stored, kept, marked;
+	long stored, kept, marked, goals, stars;
 } taken;
 
 static enum status count_taken(enum status st, long *n)
@@ -222,7 +244,7 @@ static enum status edit(struct store *s, struct rng *r, struct err *e)
 	int number = pick(r, NAMES);
 	snprintf(name, sizeof name, "Tern %d b", number);
 	snprintf(other, sizeof other, "Tern %d b", pick(r, NAMES + 2));
-	switch (pick(r, 18)) {
+	switch (pick(r, 22)) {
 	case 0:
 	case 1:
 		return put_target(s, r, name, e);
@@ -247,6 +269,12 @@ static enum status edit(struct store *s, struct rng *r, struct err *e)
 		return edit_allotment(s, r, e);
 	case 13:
 		return edit_setting(s, r, e);
+	case 14:
+	case 15:
+		return count_taken(edit_goal(s, r, 1 + pick(r, 3), e), &taken.goals);
+	case 16:
+	case 17:
+		return count_taken(edit_star(s, r, 1 + pick(r, 2), e), &taken.stars);
 	default:
 		return edit_plan(s, r, e);
 	}
@@ -384,8 +412,10 @@ static void test_any(void **state)
 	print_message("%ld undone, %ld refused as changed since, %ld as undone already\n", done, conflicts,
 		      absent);
 	assert_true(done > 50 && conflicts > 50 && absent > 5);
-	print_message("%ld plans stored, %ld kept, %ld marks\n", taken.stored, taken.kept, taken.marked);
-	assert_true(taken.stored > 50 && taken.kept > 10 && taken.marked > 20);
+	print_message("%ld plans stored, %ld kept, %ld marks, %ld goals, %ld stars\n", taken.stored,
+		      taken.kept, taken.marked, taken.goals, taken.stars);
+	assert_true(taken.stored > 50 && taken.kept > 10 && taken.marked > 20 && taken.goals > 50 &&
+		    taken.stars > 50);
 }
 
 int main(void)

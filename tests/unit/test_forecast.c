@@ -281,6 +281,51 @@ static void goals_and_choices(void **state)
 	check_close("by priority", f->worth, 3.0 * s.window.chance.done, 1e-12);
 }
 
+static void scene_of_a_plan(bool depth_known)
+{
+	forecast_open(&s, FORECAST_DARK_MJD);
+	s.target.priority = 2.0;
+	s.observing.fallback_bits = 0.5;
+	if (!depth_known)
+		s.target.k = NAN;
+	forecast_at(&s, MIDNIGHT_D);
+}
+
+/* The ways of a plan: the whole event is worth what the window is, a limb its own bits if it is caught.
+ * Without a forecast of timing: a number of bits for an event and a fifth of it for a limb. */
+static void ways_of_a_plan(void **state)
+{
+	(void)state;
+	const struct plan_rules rules = plan_rules_built_in();
+	const struct plan_offer offer = {.window = &s.window};
+	const struct plan_input in = {
+	    .night = &s.night, .offer = &offer, .n = 1, .not_before_d = -INFINITY, .rules = &rules};
+	for (int known = 1; known >= 0; known--) {
+		struct plan_way way[PLAN_WAYS_MAX];
+		double worth[VARIANT_COUNT] = {0.0};
+		scene_of_a_plan(known);
+		const struct window_forecast *f = &s.window.forecast;
+		const int n = plan_ways(&in, 0, way);
+		for (int i = 0; i < n; i++)
+			worth[way[i].variant] = fmax(worth[way[i].variant], way[i].worth);
+		const struct window_chance *c = &s.window.chance;
+		check_close("whole", worth[VARIANT_WHOLE], known ? f->worth : 2.0 * 0.5 * c->done, 1e-12);
+		check_close("ingress", worth[VARIANT_INGRESS],
+			    2.0 * c->ingress * (known ? f->bits_ingress : 0.5 * 0.2), 1e-12);
+		check_close("egress", worth[VARIANT_EGRESS],
+			    2.0 * c->egress * (known ? f->bits_egress : 0.5 * 0.2), 1e-12);
+		assert_true(worth[VARIANT_WHOLE] > worth[VARIANT_INGRESS]);
+	}
+	/* a goal for both limbs leaves nothing for one */
+	struct plan_way way[PLAN_WAYS_MAX];
+	const struct goal both = {.band = BAND_NONE, .wanted = 1, .until_jd = NAN};
+	scene_of_a_plan(true);
+	s.observed.goal = &both;
+	s.observed.n_goals = 1;
+	for (int i = plan_ways(&in, 0, way) - 1; i >= 0; i--)
+		assert_true(way[i].variant == VARIANT_WHOLE || way[i].variant == VARIANT_SHORT);
+}
+
 /* The user's date: sigma after by the rank-one update, written out. */
 static void sigma_after(void **state)
 {
@@ -382,6 +427,7 @@ int main(void)
 	    cmocka_unit_test(grazing),
 	    cmocka_unit_test(flip),
 	    cmocka_unit_test(goals_and_choices),
+	    cmocka_unit_test(ways_of_a_plan),
 	    cmocka_unit_test(sigma_after),
 	    cmocka_unit_test(no_telescope),
 	    cmocka_unit_test(minutes),

@@ -12,7 +12,7 @@
 #include <string.h>
 
 enum verb { VERB_LIST, VERB_SET, VERB_REMOVE, VERBS };
-enum { DATE_BYTES = 16, NOTE_COLUMNS = 60 };
+enum { DATE_BYTES = 16, NOTE_COLUMNS = 60, NOTE_CHARS = 255 /* as db/goals.h says */ };
 static const struct {
 	const char *word, *arguments;
 	int least, most; /* words behind the verb */
@@ -205,6 +205,8 @@ static int read_goal(const struct run *r, enum verb verb, struct goal_row *g)
 		diagnose("--band", "unknown (got \"%s\", expected U, B, V, R, I, g, r, i, z or clear)", got);
 		return EXIT_USAGE;
 	}
+	if (!text_argument("--note", o->note, NOTE_CHARS))
+		return EXIT_USAGE;
 	if (verb == VERB_REMOVE)
 		return EXIT_DONE;
 	if (!whole_argument("WHOLE", o->word[3], 0, GOAL_EVENTS_MAX, &whole) ||

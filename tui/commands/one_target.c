@@ -1,6 +1,7 @@
 /* SPDX-License-Identifier: MIT */
 #include "tui/commands/one_target.h"
 
+#include "db/text_clean.h"
 #include "ephem/number_text.h"
 #include "tui/diagnose.h"
 
@@ -54,4 +55,13 @@ bool whole_argument(const char *word, const char *text, long min, long max, long
 	}
 	*out = (long)v;
 	return true;
+}
+
+bool text_argument(const char *option, const char *text, size_t chars_max)
+{
+	struct err e;
+	if (!text || text_check(option, text, chars_max, &e) == ST_OK)
+		return true;
+	(void)diagnose_whole(&e, EXIT_USAGE);
+	return false;
 }

@@ -15,5 +15,7 @@ const struct target *target_named(const struct run *r, const char *name);
 bool target_as_argument(const struct options *o, const char *command);
 /* A whole number of an argument; false, and said. */
 bool whole_argument(const char *word, const char *text, long min, long max, long *out);
+/* Text of an option that will be stored; false, and said. NULL is fine. */
+bool text_argument(const char *option, const char *text, size_t chars_max);
 
 #endif

@@ -72,7 +72,7 @@ static int write_settings(const struct run *r, int only)
 		char value[STORED_TEXT_BYTES], fallback[STORED_TEXT_BYTES];
 		if (only >= 0 && k != only)
 			continue;
-		stored_key_text((enum stored_key)k, r->stored.value[k], value);
+		stored_key_text((enum stored_key)k, stored_value(&r->stored, (enum stored_key)k), value);
 		stored_key_text((enum stored_key)k, rule->fallback, fallback);
 		if (format == FORMAT_CSV)
 			one_csv(&csv, rule, value, fallback, r->stored.given[k]);

@@ -10,6 +10,7 @@
 #include <math.h>
 #include <string.h>
 
+enum { STAR_NAME_CHARS = 80, STAR_NOTE_CHARS = 255 }; /* as db/field_stars.h says */
 enum verb { VERB_LIST, VERB_ADD, VERB_REMOVE, VERBS };
 static const struct {
 	const char *word, *arguments;
@@ -84,6 +85,9 @@ static int read_star(const struct options *o, struct field_star *f)
 	*f = (struct field_star){.name = o->star_name ? o->star_name : "",
 				 .band = o->band ? o->band : "",
 				 .note = o->note ? o->note : ""};
+	if (!text_argument("--name", o->star_name, STAR_NAME_CHARS) ||
+	    !text_argument("--note", o->note, STAR_NOTE_CHARS))
+		return EXIT_USAGE;
 	int code = read_role(o->word[3], &f->role);
 	if (code == EXIT_DONE)
 		code = read_place(o->word[4], f);

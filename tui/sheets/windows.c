@@ -115,7 +115,7 @@ static void stored_limits_keys(struct json *j, const struct run *r)
 	char text[STORED_TEXT_BYTES];
 	for (size_t i = 0; i < sizeof keys / sizeof keys[0]; i++) {
 		const struct stored_key_rule *rule = &stored_key_rules[keys[i]];
-		stored_key_text(keys[i], r->stored.value[keys[i]], text);
+		stored_key_text(keys[i], stored_value(&r->stored, keys[i]), text);
 		if (rule->kind == STORED_NUMBER)
 			json_digits(j, rule->name, text);
 		else
