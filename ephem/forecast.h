@@ -2,7 +2,7 @@
  * The forecast of a window: how bright the sky is, what a minute of data is worth, how well depth and mid-time can be measured, what that tells about the ephemeris.
  *
  * One path makes the figures of the window and those of its derivation. Sources are those of the parts: skyglow.h, photometry.h, limb.h, timing.h, worth.h; what is put together here
- * is our own. Noise is white but for the floor in depth_snr. Cost: 18 us on average, 10 to 45 with the error of the mid-time. */
+ * is our own. Noise is white but for the floor in depth_snr. Cost: 30 us on average, 14 to 60 with the error of the mid-time. */
 #ifndef WANE_EPHEM_FORECAST_H
 #define WANE_EPHEM_FORECAST_H
 

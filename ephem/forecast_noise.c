@@ -10,12 +10,12 @@
 /* Steps between nodes: in the dark airmass and Moon change slowly, in twilight the sky by a magnitude in 4
  * deg of the Sun. Against steps of 4 minutes the noise is within 3 %, in twilight 5 %. */
 #define STEP_DARK_D (24.0 * MIN_D)
-#define STEP_TWILIGHT_D (8.0 * MIN_D)
-#define TWILIGHT_NEAR_DEG (-22.0) /* within a step of twilight */
+#define STEP_TWILIGHT_D (6.0 * MIN_D)
+#define TWILIGHT_NEAR_DEG (-24.0) /* within a step of twilight */
 /* The Moon's light sets in and ends at once, in its model, when the centre is at 0 deg: nodes on both sides.
  */
 #define JUMP_D (0.01 * MIN_D)
-enum { STOPS_MAX = 8, SPANS_WHOLE_MAX = 12 /* more of them are taken as one */ };
+enum { STOPS_MAX = 4, SPANS_WHOLE_MAX = 12 /* more of them are taken as one */ };
 
 struct light {
 	const struct night *night;
@@ -138,16 +138,30 @@ static void add_span(struct nodes *k, const struct light *l, struct span s)
 	}
 }
 
+/* Steps that go into the nodes that there are; how much of it is twilight, by the rows of the night's light.
+ */
+static void choose_steps(struct nodes *k, const struct night *n, struct span hull, double length_d, int ends)
+{
+	const double row_d = n->length_d / (NIGHT_LIGHTS - 1);
+	double twilight_d = 0.0;
+	for (int i = 0; i < NIGHT_LIGHTS; i++)
+		if (i * row_d >= hull.from_d - row_d && i * row_d <= hull.to_d + row_d &&
+		    n->light[i].sun_alt_deg > TWILIGHT_NEAR_DEG)
+			twilight_d += row_d;
+	twilight_d = fmin(twilight_d, length_d);
+	const double wanted = twilight_d / STEP_TWILIGHT_D + (length_d - twilight_d) / STEP_DARK_D;
+	const double wider = fmax(wanted / (TIMING_NODES_MAX - 1 - STOPS_MAX - ends), 1.0);
+	k->twilight_d = wider * STEP_TWILIGHT_D;
+	k->dark_d = wider * STEP_DARK_D;
+}
+
 static void make_nodes(struct nodes *k, const struct light *l, const struct intervals *usable)
 {
 	const bool whole = usable->n > SPANS_WHOLE_MAX;
 	const struct span hull = {usable->s[0].from_d, usable->s[usable->n - 1].to_d};
 	const double length_d = whole ? hull.to_d - hull.from_d : intervals_length(usable);
-	const int ends = whole ? 2 : 2 * usable->n;
-	const double least_d = length_d / (TIMING_NODES_MAX - 1 - STOPS_MAX - ends);
 	k->n = k->n_stops = 0;
-	k->twilight_d = fmax(STEP_TWILIGHT_D, least_d);
-	k->dark_d = fmax(STEP_DARK_D, least_d);
+	choose_steps(k, l->night, hull, length_d, whole ? 2 : 2 * usable->n);
 	add_moon_stops(k, l->night, hull);
 	if (whole)
 		add_span(k, l, hull);

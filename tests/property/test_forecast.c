@@ -74,6 +74,10 @@ static void expectation(void **state)
 		const struct window_event *ev = &s.window.event;
 		if (isnan(s.window.forecast.gain_bits))
 			continue;
+		if (s.window.cover.usable.n == 0) { /* nobody is there */
+			check_close("gain of nothing", s.window.forecast.gain_bits, 0.0, 0.0);
+			continue;
+		}
 		const bool flips = window_cut_by_flip(ev, &s.on, &cut, &flip_d);
 		window_catch_sets(ev, flips ? &cut : &s.on, &sets);
 		for (int k = 0; k < DRAWS; k++) {
@@ -83,10 +87,11 @@ static void expectation(void **state)
 		}
 		const double mean = sum / DRAWS,
 			     error = sqrt(fmax(squares / DRAWS - mean * mean, 0.0) / DRAWS);
-		/* 4.5 standard errors, and what a rule of few points leaves: 1 % of the most that can be had
+		/* 4.5 standard errors, and what a rule of few points leaves where half of the other limb
+		 * comes into view: 1.5 % of the most that can be had
 		 */
 		check_close("gain", s.window.forecast.gain_bits, mean,
-			    4.5 * error + 0.01 * worth_bits(&s.prepared.eph, 0, 0.0, &s.observing.rules));
+			    4.5 * error + 0.015 * worth_bits(&s.prepared.eph, 0, 0.0, &s.observing.rules));
 		seen += s.window.forecast.gain_bits > 0.0;
 	}
 	assert_true(seen > WINDOWS / 3);
@@ -183,6 +188,8 @@ static void nodes_are_enough(void **state)
 				const double share = (m[j].t_d - p->t_d) / (p[1].t_d - p->t_d);
 				const double there =
 				    p->minute_ppt + share * (p[1].minute_ppt - p->minute_ppt);
+				if (p[1].t_d - p->t_d < 0.1 * MIN_D) /* the Moon's light sets in */
+					continue;
 				if (isfinite(there) && isfinite(m[j].noise.minute_ppt))
 					check_close("noise between nodes", there / m[j].noise.minute_ppt, 1.0,
 						    fabs(m[j].moon_alt_deg) < 2.5 ? 0.2
