@@ -68,7 +68,7 @@ check "and the built-in limit" test "$(alt)" = 30
 quiet night 2026-04-22 --format csv >"$scratch/n.csv"
 check "csv rows name it" test "$(column "$scratch/n.csv" telescope | sort -u)" = Big
 quiet night 2026-04-22 >"$scratch/out"
-check "text names it" grep -q '^Telescope: Big$' "$scratch/out"
+check "text names it" grep -q '^Telescope: Big (no forecast: that takes aperture_m and band)$' "$scratch/out"
 quiet telescope set Big alt_min_deg= >"$scratch/out"
 check "FIELD= clears" sh -c '! grep -q alt_min_deg "$1"' - "$scratch/out"
 quiet night 2026-04-22 --format json >"$scratch/out"

@@ -70,8 +70,6 @@ struct night_fixture *fixture_open(bool zoneinfo)
 	r->wall = (struct wall_clock){
 	    .leap = &r->leap, .fixed = true, .start = {.mjd = FIXTURE_EVENING_MJD + 1, .sod_s = 15245.0}};
 	settings_built_in(&r->settings);
-	r->stored = stored_values_built_in();
-	r->stored.value[KEY_LIMB_SHARE] = 0.4; /* so that plans hold single limbs */
 	r->limits = r->settings.limits;
 	r->site = (struct site){.name = "Tern Hill",
 				.lat_deg = 38.62,

@@ -31,7 +31,8 @@ struct night_layout night_lay_out(int cols, bool forecast)
 	struct night_layout l = {.at = {0}};
 	int used = MARK_COLUMNS, at = MARK_COLUMNS;
 	for (int c = 0; c < ROW_CELLS; c++)
-		if (cols >= row_columns[c].from_columns && (forecast || !row_columns[c].forecast)) {
+		if (cols >= row_columns[c].from_columns &&
+		    (forecast || !row_cell_of_forecast((enum row_cell)c))) {
 			l.width[c] = row_columns[c].width;
 			used += l.width[c] + 1;
 		}

@@ -33,11 +33,10 @@ const struct row_column row_columns[ROW_CELLS] = {
     [ROW_WORTH] =
 	{"worth", "", 5, 80, true, NULL,
 	 "What it counts for in a plan: priority x open goals x expected bits; without a forecast x the "
-	 "chance of done. In the plan, of what is planned of it (one limb alone is worth less).",
-	 false},
-    [ROW_SNR] = {"S/N", "", 4, 120, true, "depth_snr", NULL, true},
-    [ROW_TIMING] = {"tim", "min", 4, 128, true, "timing_s", NULL, true},
-    [ROW_NOISE] = {"noise", "ppt", 5, 208, true, "noise_ppt_min", NULL, true},
+	 "chance of done. In the plan, of what is planned of it (one limb alone is worth less)."},
+    [ROW_SNR] = {"S/N", "", 4, 120, true, "depth_snr", NULL},
+    [ROW_TIMING] = {"tim", "min", 4, 128, true, "timing_s", NULL},
+    [ROW_NOISE] = {"noise", "ppt", 5, 208, true, "noise_ppt_min", NULL},
     [ROW_ALT] = {"alt", "deg", 4, 116, true, "alt_mid_deg", NULL},
     [ROW_AIRMASS] = {"airm", "", 5, 144, true, "airmass_mid", NULL},
     [ROW_MOON] = {"Moon", "deg", 4, 144, true, "moon_sep_deg", NULL},
@@ -51,6 +50,11 @@ const struct row_column row_columns[ROW_CELLS] = {
 	 "What is doubtful, as words; +N counts further doubts that most windows share. The details say "
 	 "them all."},
 };
+
+bool row_cell_of_forecast(enum row_cell cell)
+{
+	return cell == ROW_SNR || cell == ROW_TIMING || cell == ROW_NOISE;
+}
 
 const char *const cause_phrases[CAUSE_COUNT] = {
     [CAUSE_SUN] = "the Sun",

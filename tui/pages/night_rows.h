@@ -40,6 +40,8 @@ enum row_cell {
 	ROW_FLAGS,
 	ROW_CELLS
 };
+/* Whether it is shown only where there is a telescope to forecast with. */
+bool row_cell_of_forecast(enum row_cell cell);
 struct row_column {
 	const char *heading, *unit; /* two lines above the list; unit of the times is their zone */
 	int width;		    /* least columns */
@@ -48,7 +50,6 @@ struct row_column {
 	const char *
 	    column; /* its name in the column table, whose sentence explains it; NULL: a picture of several */
 	const char *sentence; /* where the column table has none */
-	bool forecast;	      /* shown only where there is a telescope to forecast with */
 };
 extern const struct row_column row_columns[ROW_CELLS];
 
