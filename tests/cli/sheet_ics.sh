@@ -80,9 +80,9 @@ for twice in range(2):
     calendar.update(by_uid(south))
 say("imported twice, all six are there once: %d" % len(calendar), len(calendar) == 6)
 say("identifiers are UUIDs of version 5", all(u[14] == "5" and len(u) == 36 for u in calendar))
-say("first edition: SEQUENCE 0", all(int(e["SEQUENCE"]) == 0 for e in north))
-say("second edition: SEQUENCE 1", all(int(e["SEQUENCE"]) == 1 for e in dropped))
-say("third edition: SEQUENCE 2", all(int(e["SEQUENCE"]) == 2 for e in back))
+say("first edition: SEQUENCE 1", all(int(e["SEQUENCE"]) == 1 for e in north))
+say("second edition: SEQUENCE 2", all(int(e["SEQUENCE"]) == 2 for e in dropped))
+say("third edition: SEQUENCE 3", all(int(e["SEQUENCE"]) == 3 for e in back))
 stamp = lambda e: e["DTSTAMP"].to_ical().decode()
 say("DTSTAMP is when the edition was stored", {stamp(e) for e in north} == {"20260420T180500Z"} and {stamp(e) for e in dropped} == {"20260421T093015Z"})
 old, gone, again = [one(x, "Tern 50 b") for x in (north, dropped, back)]

@@ -475,7 +475,7 @@ static void calendar_says_what_it_is(void **state)
 	} rows[] = {
 	    /* four items, one of them in daylight: cancelled where it may have been exported before; four
 	     * blocks, one item gone; what has begun rings no bell */
-	    {PLAN_FIXTURE_KEPT, 9, 7, 0, 2, 2, 1, "DTSTAMP:20260420T180500Z\r\n", "SEQUENCE:2\r\n"},
+	    {PLAN_FIXTURE_KEPT, 9, 7, 0, 2, 2, 1, "DTSTAMP:20260423T035210Z\r\n", "SEQUENCE:3\r\n"},
 	    {PLAN_FIXTURE_DRAFT, 8, 0, 7, 1, 3, 1, "DTSTAMP:20260420T180500Z\r\n", "SEQUENCE:0\r\n"},
 	    {PLAN_FIXTURE_PROPOSAL, 7, 0, 7, 0, 3, 1, "DTSTAMP:20260420T180500Z\r\n", "SEQUENCE:0\r\n"},
 	    {PLAN_FIXTURE_EMPTY, 0, 0, 0, 0, 0, 1, "DTSTAMP:19700101T000000Z\r\n", "SEQUENCE:0\r\n"},
@@ -491,10 +491,8 @@ static void calendar_says_what_it_is(void **state)
 		assert_int_equal(count(text, "STATUS:CANCELLED\r\n"), rows[i].cancelled);
 		assert_int_equal(count(text, "BEGIN:VALARM\r\n"), rows[i].alarms);
 		assert_int_equal(count(text, "BEGIN:VJOURNAL\r\n"), rows[i].journals);
-		/* the item that was marked after the edition was stored has the time of its mark */
-		const int marked = rows[i].kind == PLAN_FIXTURE_KEPT;
-		assert_int_equal(count(text, "DTSTAMP:20260423T035210Z\r\n"), marked);
-		assert_int_equal(count(text, rows[i].stamp), rows[i].events + rows[i].journals - marked);
+		/* an item was marked after the edition was stored: what its neighbours say may change with it */
+		assert_int_equal(count(text, rows[i].stamp), rows[i].events + rows[i].journals);
 		assert_int_equal(count(text, rows[i].sequence), rows[i].events + rows[i].journals);
 		assert_null(strstr(text, "METHOD"));
 		assert_null(strstr(text, "\r\nDTSTART:1970"));

@@ -139,19 +139,31 @@ static void put_uid(struct ics *c, const struct plan_view *v, const char *kind, 
 	free(key);
 }
 
-/* DTSTAMP and SEQUENCE: from the store, never the clock. marked_utc: when the event was marked, "" not. */
-static void put_revision(struct ics *c, const struct plan_view *v, const char *marked_utc)
+/* When an item was marked last, "" never: a mark changes what its neighbours say, too. */
+static const char *last_mark(const struct plan_view *v)
+{
+	const char *last = "";
+	for (size_t i = 0; i < v->n_items; i++)
+		if (strcmp(v->item[i].marked_utc, last) > 0)
+			last = v->item[i].marked_utc;
+	return last;
+}
+
+/* DTSTAMP and SEQUENCE: from the store, never the clock. */
+static void put_revision(struct ics *c, const struct plan_view *v)
 {
 	char stamp[ICS_TIME_BYTES] = "19700101T000000Z", sequence[24];
 	/* all are of one form, `YYYY-MM-DDTHH:MM:SSZ`: the later one is the greater one */
+	const char *marked_utc = last_mark(v);
 	const char *revised = strcmp(marked_utc, v->stored_utc) > 0 ? marked_utc : v->stored_utc;
 	revised = strcmp(v->revised_utc, revised) > 0 ? v->revised_utc : revised;
 	struct utc t;
 	if (revised[0] && utc_parse(&v->run->leap, revised, &t, NULL) == ST_OK)
 		ics_time(t, false, stamp);
 	ics_value(c, "DTSTAMP", stamp);
-	/* an event has one identifier in every draft of its night: the number counts the revisions of all */
-	snprintf(sequence, sizeof sequence, "%lld", v->revisions > 0 ? (long long)v->revisions - 1 : 0LL);
+	/* an event has one identifier in every draft of its night: the number counts the revisions of all; a
+	 * proposal has 0, so that the first plan that is stored is newer */
+	snprintf(sequence, sizeof sequence, "%lld", v->revisions > 0 ? (long long)v->revisions : 0LL);
 	ics_value(c, "SEQUENCE", sequence);
 }
 
@@ -216,7 +228,7 @@ static void put_item(struct ics *c, const struct plan_view *v, const struct plan
 		 kind[KIND_OCCULTATION] ? "occultation" : "", gone ? ", cancelled" : "");
 	ics_value(c, "BEGIN", "VEVENT");
 	put_uid(c, v, "item", item->key);
-	put_revision(c, v, item->marked_utc);
+	put_revision(c, v);
 	put_span(c, v, item->start, item->end);
 	ics_text(c, "SUMMARY", summary);
 	words_close(c, to, &text, "DESCRIPTION");
@@ -270,7 +282,7 @@ static void put_block(struct ics *c, const struct plan_view *v, const struct pla
 	put_place_key(v, place);
 	snprintf(key, sizeof key, "%s/%s/%s/%s/%s", place, plan_block_words[b->kind], words, from, to);
 	put_uid(c, v, "block", key);
-	put_revision(c, v, "");
+	put_revision(c, v);
 	put_span(c, v, b->from, b->to);
 	ics_text(c, "SUMMARY", summary);
 	words_close(c, file, &text, "DESCRIPTION");
@@ -321,7 +333,7 @@ static void put_journal(struct ics *c, const struct plan_view *v)
 	snprintf(date, sizeof date, "%04d%02d%02d", d.year, d.month, d.day);
 	ics_value(c, "BEGIN", "VJOURNAL");
 	put_uid(c, v, "night", key);
-	put_revision(c, v, "");
+	put_revision(c, v);
 	ics_value(c, "DTSTART;VALUE=DATE", date);
 	ics_text(c, "SUMMARY", summary);
 	words_close(c, to, &text, "DESCRIPTION");
