@@ -31,6 +31,7 @@ bool observing_ready(const struct observing *o);
 struct observed {
 	double neighbour;	  /* light of other stars in the aperture, over the target's, >= 0; NAN or 0: none */
 	double comparison_stars;  /* as bright as the target; 0: their noise is left out; NAN: COMPARISON_STARS */
+	double comparison_count;  /* as many of one light flicker as little together; NAN or 0: as comparison_stars */
 	const struct goal *goal;  /* borrowed */
 	size_t n_goals;		  /* 0: one goal that is always open, for any catch; all of them met: worth 0 */
 };
