@@ -17,7 +17,7 @@ struct observing {
 	double dark_zenith_mag[BAND_SKY_COUNT];	 /* the site's moonless zenith, U B V R I [mag/arcsec2]; NAN: sky_dark_default */
 	double extinction_mag[BAND_COUNT];	 /* the site's, per airmass; NAN: the band's */
 	struct worth_rules rules;		 /* by what windows are ranked, the need, systematic floors */
-	double fallback_bits;			 /* stands for the bits (ranked by depth: for the S/N) of a window that has no forecast of its timing, >= 0 (1) */
+	double fallback_bits;			 /* stands for the bits (ranked by depth: for the S/N) of a window that has no forecast of its timing, >= 0 (1); bits no more than a perfect light curve would bring */
 	double at_jd_tdb;			 /* date of sigma_after [JD TDB]; NAN: none is told */
 };
 #define FALLBACK_BITS 1.0 /* what a mid-time brings that is as precise as 0.58 of the prediction's error: of our own choosing */
