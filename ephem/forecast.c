@@ -98,7 +98,9 @@ static void make_information(struct forecast_explain *x, const struct window *w,
 	else if (o->rules.choice == WORTH_BITS && !isnan(got.gain_bits)) {
 		x->basis = BASIS_BITS;
 		x->worth = fmax(got.worth, 0.0);
-	}
+	} else if (o->rules.choice == WORTH_BITS)
+		/* what is known too well earns no more for the lack of a magnitude */
+		x->event_value = fmin(x->event_value, worth_bits(eph, ev->epoch, 0.0, &o->rules));
 }
 
 bool forecast_explain(struct window *w, const struct target_night *tn, struct forecast_explain *x)

@@ -180,8 +180,10 @@ static void make_light(struct forecast_explain *x, const struct target *t, const
 		       const struct observing *o)
 {
 	x->optics = o->optics;
-	if (!isnan(known->comparison_stars))
+	if (!isnan(known->comparison_stars)) {
 		x->optics.comparison_stars = known->comparison_stars;
+		x->optics.comparison_count = or_zero(known->comparison_count);
+	}
 	x->band = o->optics.band;
 	x->catalogue_band = band_parse(t->band);
 	x->catalogue_mag = t->mag;

@@ -25,7 +25,7 @@ bool observing_ready(const struct observing *o)
 
 struct observed observed_unknown(void)
 {
-	return (struct observed){.neighbour = NAN, .comparison_stars = NAN};
+	return (struct observed){.neighbour = NAN, .comparison_stars = NAN, .comparison_count = NAN};
 }
 
 struct open_goals open_goals_of(const struct observed *o, enum band_id band, double jd)

@@ -17,7 +17,7 @@ struct observing {
 	double dark_zenith_mag[BAND_SKY_COUNT];	 /* the site's moonless zenith, U B V R I [mag/arcsec2]; NAN: sky_dark_default */
 	double extinction_mag[BAND_COUNT];	 /* the site's, per airmass; NAN: the band's */
 	struct worth_rules rules;		 /* by what windows are ranked, the need, systematic floors */
-	double fallback_bits;			 /* stands for the bits (ranked by depth: for the S/N) of a window that has no forecast of its timing, >= 0 (1) */
+	double fallback_bits;			 /* stands for the bits (ranked by depth: for the S/N) of a window that has no forecast of its timing, >= 0 (1); bits no more than a perfect light curve would bring */
 	double unknown_share;			 /* stands for the chance of a window without one, times its coverage; as plan_rules.unknown_share (0.1) */
 	double at_jd_tdb;			 /* date of sigma_after [JD TDB]; NAN: none is told */
 };
@@ -33,6 +33,7 @@ bool observing_ready(const struct observing *o);
 struct observed {
 	double neighbour;	  /* light of other stars in the aperture, over the target's, >= 0; NAN or 0: none */
 	double comparison_stars;  /* as bright as the target; 0: their noise is left out; NAN: COMPARISON_STARS */
+	double comparison_count;  /* as many of one light flicker as little together; NAN or 0: as comparison_stars */
 	const struct goal *goal;  /* borrowed */
 	size_t n_goals;		  /* 0: one goal that is always open, for any catch; all of them met: worth 0 */
 };

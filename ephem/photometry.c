@@ -109,8 +109,10 @@ struct noise photometry_noise(const struct optics *o, const struct sight *s, dou
 	n.counting = photometry_counting(o, n.electrons, n.sky_e, n.dark_e);
 	n.scintillation =
 	    photometry_scintillation(o->scintillation_c, o->aperture_m, exposure_s, s->airmass, s->height_m);
-	const double stars = o->comparison_stars > 0.0 ? 1.0 + 1.0 / o->comparison_stars : 1.0;
-	n.exposure = hypot(n.counting, n.scintillation) * sqrt(stars);
+	const double light = o->comparison_stars,
+		     flicker = o->comparison_count > 0.0 ? o->comparison_count : light;
+	n.exposure = hypot(n.counting * sqrt(light > 0.0 ? 1.0 + 1.0 / light : 1.0),
+			   n.scintillation * sqrt(light > 0.0 ? 1.0 + 1.0 / flicker : 1.0));
 	n.duty = exposure_s / (exposure_s + o->dead_s);
 	n.minute_ppt = 1e3 * photometry_per_minute(n.exposure, exposure_s, o->dead_s);
 	return n;

@@ -47,7 +47,8 @@ struct optics {
 	double aperture_px;  /* radius of the measuring aperture */
 	double background_px; /* number of pixels from which the background is taken */
 	double dead_s;	     /* between exposures */
-	double comparison_stars; /* as bright as the star; 0: their noise is left out */
+	double comparison_stars; /* as many as bright as the star have their light; 0: their noise is left out */
+	double comparison_count; /* as many of one light flicker as little together; 0: as comparison_stars. The air troubles faint stars no more than bright ones */
 	double scintillation_c;  /* C_Y */
 	double red_noise_ppt;    /* floor of a whole event */
 	uint32_t assumed;	 /* enum optics_assumed */

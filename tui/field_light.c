@@ -78,15 +78,17 @@ static bool stands(const struct target *t, const struct field_star star[], size_
 struct field_light field_light_of(const struct target *t, const struct field_star star[], size_t n,
 				  const struct optics *o)
 {
-	struct field_light out = {.comparison_stars = (double)NAN};
-	double comparison = 0.0;
+	struct field_light out = {.comparison_stars = (double)NAN, .comparison_count = (double)NAN};
+	double comparison = 0.0, squares = 0.0;
 	int comparisons = 0;
 	for (size_t i = 0; i < n; i++) {
 		const struct field_star *f = &star[i];
 		if (f->role == STAR_GUIDE || !stands(t, star, n, i, o->band))
 			continue;
 		if (f->role == STAR_COMPARISON) {
-			comparison += ratio(t, f, o->band, &out.assumed);
+			const double light = ratio(t, f, o->band, &out.assumed);
+			comparison += light;
+			squares += light * light;
 			comparisons++;
 		} else if (field_star_sep_arcsec(t, f) <= field_aperture_arcsec(o)) {
 			out.neighbour += ratio(t, f, o->band, &out.assumed);
@@ -95,6 +97,8 @@ struct field_light field_light_of(const struct target *t, const struct field_sta
 	}
 	if (comparisons > 0)
 		out.comparison_stars = comparison;
+	if (squares > 0.0)
+		out.comparison_count = comparison * comparison / squares;
 	return out;
 }
 

@@ -16,8 +16,9 @@ struct field_light {
 			     are there and the target's magnitude is not known */
 	int neighbours;	  /* how many are in it */
 	double comparison_stars; /* as many stars as bright as the target have their light; NAN: none given,
-				    or no magnitude of the target. A single bright star flickers more than
-				    that says */
+				    or no magnitude of the target */
+	double comparison_count; /* as many stars of one light flicker as little together: square of the sum
+				    of their light over the sum of its squares; NAN: none given */
 	bool assumed; /* magnitudes of different bands, or of another than the telescope's, were set against
 			 each other */
 };

@@ -156,6 +156,7 @@ static struct observed observed_of(const struct run *r, const struct target *t, 
 		const struct field_light light = field_light_of(t, star, stars, &r->observing.optics);
 		o.neighbour = light.neighbour;
 		o.comparison_stars = light.comparison_stars;
+		o.comparison_count = light.comparison_count;
 	}
 	const size_t first = *used;
 	for (size_t i = 0; i < goals; i++)

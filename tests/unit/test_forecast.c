@@ -326,6 +326,28 @@ static void ways_of_a_plan(void **state)
 		assert_true(way[i].variant == VARIANT_WHOLE || way[i].variant == VARIANT_SHORT);
 }
 
+/* A star without a magnitude never ranks above what a perfect light curve of it would bring. */
+static void no_magnitude_earns_no_more(void **state)
+{
+	(void)state;
+	forecast_open(&s, FORECAST_DARK_MJD);
+	s.target.t0_err_d = 0.5 * MIN_D;
+	s.target.period_err_d = 1e-12;
+	s.target.mag = NAN;
+	s.observing.fallback_bits = 1.0;
+	forecast_at(&s, MIDNIGHT_D);
+	assert_true(isnan(s.window.forecast.gain_bits) && s.window.chance.done > 0.99);
+	/* by hand: log2(1 + 0.5^2 / 2^2) / 2 */
+	check_close("half a minute against a need of two", s.x.event_value, 0.0437314, 1e-6);
+	check_close("worth", s.window.forecast.worth, s.x.event_value * s.window.chance.done, 1e-9);
+	s.target.t0_err_d = 60.0 * MIN_D; /* log2(901) / 2 = 4.9 bits could be had */
+	forecast_at(&s, MIDNIGHT_D);
+	check_close("as the setting says", s.x.event_value, 1.0, 0.0);
+	s.target.t0_err_d = NAN; /* nothing is known of it */
+	forecast_at(&s, MIDNIGHT_D);
+	check_close("unknown error", s.x.event_value, 1.0, 0.0);
+}
+
 /* The user's date: sigma after by the rank-one update, written out. */
 static void sigma_after(void **state)
 {
@@ -428,6 +450,7 @@ int main(void)
 	    cmocka_unit_test(flip),
 	    cmocka_unit_test(goals_and_choices),
 	    cmocka_unit_test(ways_of_a_plan),
+	    cmocka_unit_test(no_magnitude_earns_no_more),
 	    cmocka_unit_test(sigma_after),
 	    cmocka_unit_test(no_telescope),
 	    cmocka_unit_test(minutes),

@@ -127,7 +127,10 @@ static void noise(const struct explained *e, FILE *to)
 	explain_number(e, to, "scintillation", 1e3 * n->scintillation, 3, "ppt",
 		       "Of the air over this aperture.");
 	explain_number(e, to, "comparison stars", x->optics.comparison_stars, 1, "",
-		       "As bright as the target; noise x sqrt(1 + 1 / their number).");
+		       "As many as bright as the target have their light; counting x sqrt(1 + 1 / these).");
+	if (x->optics.comparison_count > 0.0)
+		explain_number(e, to, "  flickering as", x->optics.comparison_count, 1, "",
+			       "As many of one light; scintillation x sqrt(1 + 1 / these).");
 	explain_number(e, to, "an exposure", 1e3 * n->exposure, 3, "ppt", "All of these.");
 	explain_number(e, to, "duty", 100.0 * n->duty, 1, "%",
 		       "Share of the time in which light is gathered.");
