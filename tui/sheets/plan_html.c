@@ -56,7 +56,7 @@ const char *html_outside(const struct html_page *p, const struct plan_item_view 
 	const struct leap_table *leap = p->v->night->night.clock.leap;
 	if (utc_diff_s(leap, t, item->start) > 0.0)
 		return "too early";
-	return utc_diff_s(leap, item->end, t) > 0.0 ? "after leaving" : "";
+	return utc_diff_s(leap, item->end, t) > 0.0 ? "too late" : "";
 }
 
 void html_item_name(struct html_page *p, const struct plan_item_view *item)

@@ -91,7 +91,7 @@ static void member_lines(struct plan_page *p, const struct plan_item_view *item,
 		if (plan_contact_at(m, (enum plan_contact)c, &t))
 			page_time(p, MEMBER_INDENT, plan_contact_words[c], &t,
 				  utc_diff_s(leap, t, item->start) > 0.0 ? "  too early"
-				  : utc_diff_s(leap, item->end, t) > 0.0 ? "  after leaving"
+				  : utc_diff_s(leap, item->end, t) > 0.0 ? "  too late"
 									 : "");
 	if (plan_flip_at(p->v, item, m, &t)) {
 		page_time(p, MEMBER_INDENT, "flip", &t, "");
