@@ -245,8 +245,11 @@ static void contacts(struct html_page *p, const struct plan_item_view *item, con
 	for (int c = 0; c < CONTACT_COUNT; c++)
 		if (plan_contact_at(m, (enum plan_contact)c, &t))
 			time_row(p, plan_contact_words[c], t, html_outside(p, item, t));
-	if (plan_flip_at(p->v, item, m, &t))
-		time_row(p, "Flip", t, plan_flip_caution);
+	if (plan_flip_at(p->v, item, m, &t)) {
+		time_row(p, "Flip", t, "");
+		/* a row of its own: the words are too wide for the head of one on a phone */
+		fprintf(p->out.to, "<tr><td colspan=\"3\">At the flip: %s.</td></tr>\n", plan_flip_caution);
+	}
 }
 
 /* --- cards --- */

@@ -26,7 +26,7 @@ void plan_html_foot(struct html_page *p);
  */
 void html_local(struct html_page *p, struct utc t);
 void html_utc(struct html_page *p, struct utc t);
-/* `too early`, `after end`: a contact that the item does not hold; "" it does. */
+/* `too early`, `too late`: a contact that the item does not hold; "" it does. */
 const char *html_outside(const struct html_page *p, const struct plan_item_view *item, struct utc t);
 /* Names of an item's targets, joined. */
 void html_item_name(struct html_page *p, const struct plan_item_view *item);
