@@ -69,6 +69,16 @@ quiet night 2026-04-22 --format csv >"$scratch/n.csv"
 check "csv rows name it" test "$(column "$scratch/n.csv" telescope | sort -u)" = Big
 quiet night 2026-04-22 >"$scratch/out"
 check "text names it" grep -q '^Telescope: Big (no forecast: that takes aperture_m and band)$' "$scratch/out"
+quiet telescope set Big aperture_m=0.5 band=R >"$scratch/out"
+quiet night 2026-04-22 >"$scratch/with"
+check "text: aperture and band" grep -q '^Telescope: Big, 0.5 m, band R$' "$scratch/with"
+check "text: columns of the forecast" grep -q '^target .* done worth  S/N  lost to; marks$' "$scratch/with"
+check "text: what they mean" grep -q '^S/N: Depth over its expected error' "$scratch/with"
+quiet telescope set Big aperture_m= band= >"$scratch/out"
+quiet night 2026-04-22 >"$scratch/without"
+check "text: none without" sh -c '! grep -q "^target .* S/N" "$1" && ! grep -q "^S/N: " "$1"' - "$scratch/without"
+heading() { grep '^target ' "$1" | wc -c; }
+check "text: at most 12 columns wider" test $(($(heading "$scratch/with") - $(heading "$scratch/without"))) -le 12
 quiet telescope set Big alt_min_deg= >"$scratch/out"
 check "FIELD= clears" sh -c '! grep -q alt_min_deg "$1"' - "$scratch/out"
 quiet night 2026-04-22 --format json >"$scratch/out"

@@ -79,6 +79,8 @@ static void test_keys_to_screens(void **state)
 	    {60, 100, "/48\r\r", "Goal   none is set: any event of it counts", "Star  "},
 	    {90, 100, "/14\r\r", "MDT    UTC    alt  airm    sky  noise", "Usual "},
 	    {90, 100, "/14\r\r", " T1 23:42", NULL},
+	    /* it begins at 23:12:07 */
+	    {90, 100, "/14\r\r", " 23:15  05:15   62  1.13", "23:10"},
 	    {90, 100, "/14\r\r", " flip 01:26", NULL},
 	    {140, 100, "/14\r\r", "  timing 33 s: Expected error of the mid-time if it comes as predicted",
 	     NULL},

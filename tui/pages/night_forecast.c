@@ -174,11 +174,21 @@ static void after_words(struct line *l, const struct run *r, const struct night 
 		add(l, ", sigma at the set date %s min -> %s", now, then);
 }
 
+/* What stands for the bits. */
+static void event_words(struct line *l, const struct night_row *row, const struct forecast_explain *x)
+{
+	char value[NUMBER_TEXT_MAX], chance[NUMBER_TEXT_MAX];
+	fixed(x->event_value, 2, value);
+	fixed(row->window->chance.done, 2, chance);
+	add(l, " x %s an event x %s%s", value, row->has_chance ? "chance " : "0.1 of the coverage",
+	    row->has_chance ? chance : "");
+}
+
 static void worth_line(struct text_view *v, const struct run *r, const struct night_view *view,
 		       const struct night_row *row, const struct forecast_explain *x)
 {
 	struct line l = {.used = 0};
-	char bits[NUMBER_TEXT_MAX], priority[NUMBER_TEXT_MAX], worth[NUMBER_TEXT_MAX], value[NUMBER_TEXT_MAX];
+	char bits[NUMBER_TEXT_MAX], priority[NUMBER_TEXT_MAX], worth[NUMBER_TEXT_MAX];
 	timing_words(&l, x);
 	number_text_fixed(x->gain_bits, 2, bits);
 	add(&l, "%s%s", *bits ? ", " : "", *bits ? bits : ", no bits can be told");
@@ -189,10 +199,8 @@ static void worth_line(struct text_view *v, const struct run *r, const struct ni
 	add(&l, "; priority %s x open goals %d", priority, x->open.whole);
 	if (x->open.limb != x->open.whole)
 		add(&l, " (with one limb %d)", x->open.limb);
-	if (x->basis != BASIS_BITS) {
-		fixed(x->event_value, 2, value);
-		add(&l, " x %s an event x chance", value);
-	}
+	if (x->basis != BASIS_BITS)
+		event_words(&l, row, x);
 	add(&l, ": worth %s", worth);
 	text_view_addf(v, ROLE_TEXT, INDENT, "Worth  %s", l.text);
 }

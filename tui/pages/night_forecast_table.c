@@ -161,11 +161,12 @@ void minute_lines(struct text_view *v, const struct run *r, const struct night_v
 	const double from_d = fmax(ev->reserve_start_d, 0.0), to_d = fmin(ev->reserve_end_d, night->length_d);
 	const double long_d = to_d - from_d;
 	const double step_min = long_d <= LONG_FOR_5_MIN_D ? 5.0 : long_d <= LONG_FOR_10_MIN_D ? 10.0 : 30.0;
-	/* whole steps of the clock */
-	const double past_s = fmod(night_utc(night, from_d).sod_s + 0.5, 60.0 * step_min);
+	/* from the first whole step of the clock on */
+	const double step_s = 60.0 * step_min, past_s = fmod(night_utc(night, from_d).sod_s + 0.5, step_s),
+		     wait_s = past_s < 1.0 ? 0.0 : step_s - past_s;
 	struct forecast_moment moment[MOMENTS_MAX];
 	const int n =
-	    forecast_table(&f->on, &f->x, from_d - past_s / DAY_S, to_d, step_min, moment, MOMENTS_MAX);
+	    forecast_table(&f->on, &f->x, from_d + wait_s / DAY_S, to_d, step_min, moment, MOMENTS_MAX);
 	const bool two = r->zone && v->width >= COLUMNS_FOR_UTC;
 	text_view_addf(v, ROLE_STRONG, 0, "Every %.0f min of the reserve (noise of a minute)", step_min);
 	text_view_addf(v, ROLE_STRONG, 0, "%-6s%s %3s %5s %6s %6s", head->zone, two ? " UTC   " : "", "alt",
