@@ -167,7 +167,8 @@ void forecast_make_cases(struct forecast_explain *x, const struct window *w, con
 				   .n = x->n_nodes,
 				   .flip_d = w->forecast.flip_d}};
 	const double timing_s = timing_mid_s(&p.in, ev->mid_d);
-	x->timing_s = isfinite(timing_s) ? timing_s : NAN;
+	/* worse than the event is long: the data don't fix it */
+	x->timing_s = timing_s < (ev->t4_d - ev->t1_d) * DAY_S ? timing_s : NAN;
 	x->ideal_s = timing_whole_s(x->depth_ppt, x->noise_ppt_min,
 				    ev->prepared->shape[ev->kind].limb_d * DAY_MIN, x->exposure_s);
 	if (!isnan(ev->chance_contact_d))

@@ -82,7 +82,7 @@ static void test_keys_to_screens(void **state)
 	    /* it begins at 23:12:07 */
 	    {90, 100, "/14\r\r", " 23:15  05:15   62  1.13", "23:10"},
 	    {90, 100, "/14\r\r", " flip 01:26", NULL},
-	    {140, 100, "/14\r\r", "  timing 33 s: Expected error of the mid-time if it comes as predicted",
+	    {140, 100, "/14\r\r", "  timing 32 s: Expected error of the mid-time if it comes as predicted",
 	     NULL},
 	};
 	(void)state;

@@ -145,6 +145,10 @@ static void shallow_and_diluted(void **state)
 	forecast_at(&s, MIDNIGHT_D);
 	check_close("white S/N of a quarter", s.x.white_snr, 0.25 * deep_white, 1e-9 * deep_white);
 	check_close("a quarter of the depth", s.window.forecast.timing_s, 4.0 * deep_s, 0.02 * 4.0 * deep_s);
+	s.target.depth_ppt = 0.003; /* 3 ppm: no time can be told from it, and none is */
+	forecast_at(&s, MIDNIGHT_D);
+	assert_true(isnan(s.window.forecast.timing_s) && s.window.forecast.gain_bits < 1e-4 &&
+		    s.window.forecast.depth_snr < 0.1);
 	s.target.depth_ppt = 12.0;
 	s.observed.neighbour = 1.0;
 	forecast_at(&s, MIDNIGHT_D);
