@@ -28,7 +28,7 @@ struct optics optics_of(const struct telescope *t)
 	o.read_noise_e = said(t->read_noise_e, 8.0, OPTICS_READ_NOISE, a);
 	o.digitising_e = DIGITISING * said(t->gain_e_adu, 0.0, OPTICS_GAIN, a);
 	o.dark_e_s = said(t->dark_e_s, 0.0, OPTICS_DARK, a);
-	o.full_well_e = said(t->full_well_e, INFINITY, OPTICS_FULL_WELL, a);
+	o.full_well_e = said(t->full_well_e, 60000.0, OPTICS_FULL_WELL, a);
 	const double defocus_px = said(t->defocus_px, 0.0, OPTICS_FOCUS, a);
 	const double seeing_px = SEEING_ARCSEC / o.pixel_arcsec;
 	o.image_px = hypot(defocus_px, GAUSS_DISC * seeing_px);

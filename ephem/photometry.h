@@ -22,7 +22,7 @@ enum optics_assumed {
 	OPTICS_GAIN = 1 << 3,	     /* no digitising noise */
 	OPTICS_READ_NOISE = 1 << 4,  /* 8 e- */
 	OPTICS_DARK = 1 << 5,	     /* 0 */
-	OPTICS_FULL_WELL = 1 << 6,   /* nothing saturates */
+	OPTICS_FULL_WELL = 1 << 6,   /* 60,000 e- */
 	OPTICS_FOCUS = 1 << 7,	     /* in focus */
 	OPTICS_DEAD = 1 << 8,	     /* 5 s */
 	OPTICS_RED_NOISE = 1 << 9,   /* 0.5 ppt; 0.3 to 1 is usual for small telescopes (from memory) */
@@ -42,7 +42,7 @@ struct optics {
 	double read_noise_e; /* per pixel, as are the next three */
 	double digitising_e; /* 0.289 x gain: the spread of a step of the converter */
 	double dark_e_s;
-	double full_well_e;  /* INFINITY: not known */
+	double full_well_e;
 	double image_px;     /* radius of the disc of even light that has the image's peak */
 	double aperture_px;  /* radius of the measuring aperture */
 	double background_px; /* number of pixels from which the background is taken */

@@ -210,7 +210,11 @@ static void nothing_from_nothing(void **state)
 	t.aperture_m = 0.3, t.band = "V";
 	o = optics_of(&t);
 	assert_true(photometry_noise(&o, &s, 60.0).minute_ppt > 0.0);
-	assert_false(photometry_noise(&o, &s, 60.0).saturated);
+	/* 60 % of the 60,000 e- that stand for a full well that nobody gave */
+	check_close("full well", o.full_well_e, 60000.0, 0.0);
+	struct noise bright = photometry_noise(&o, &s, 60.0), brief = photometry_noise(&o, &s, 1.0);
+	assert_true(bright.saturated && bright.peak_e > 36000.0);
+	assert_true(!brief.saturated && brief.peak_e < 36000.0);
 	assert_true(isnan(photometry_noise(&o, &s, 0.0).minute_ppt));
 	s.sky_mag_arcsec2 = NAN;
 	assert_true(isnan(photometry_noise(&o, &s, 60.0).minute_ppt));

@@ -227,7 +227,7 @@ static void assumed_line(struct text_view *v, const struct optics *o)
 	    {OPTICS_OBSTRUCTION, "obstruction 0.3"},	{OPTICS_THROUGHPUT, "throughput 0.35"},
 	    {OPTICS_PIXEL, "pixels of 1 arcsec"},	{OPTICS_GAIN, "no noise of digitising"},
 	    {OPTICS_READ_NOISE, "read-out noise 8 e-"}, {OPTICS_DARK, "no dark current"},
-	    {OPTICS_FULL_WELL, "nothing saturates"},	{OPTICS_FOCUS, "in focus"},
+	    {OPTICS_FULL_WELL, "full well 60,000 e-"},	{OPTICS_FOCUS, "in focus"},
 	    {OPTICS_DEAD, "5 s between exposures"},	{OPTICS_RED_NOISE, "noise floor 0.5 ppt"},
 	};
 	struct line l = {.used = 0};
