@@ -110,6 +110,8 @@ void night_plan_free(struct night_plan *p);
 /* What a window is worth as a whole. With a forecast in bits: its worth. Else priority x open goals x chance of done, or x unknown_share x coverage where there is no
  * chance, x event_value where a forecast is on. A limb alone: priority x open goals that take one limb x its chance x its bits, or x limb_share x event_value. */
 double plan_worth(const struct window *w, const struct plan_rules *rules);
+/* The same of one limb alone, also what is left of an event that was begun as a whole (VARIANT_INGRESS, VARIANT_EGRESS); NAN: without a chance. */
+double plan_limb_worth(const struct window *w, const struct plan_rules *rules, enum variant limb);
 /* Moving from one direction to another: slew and settling [d]. */
 double plan_move_d(const struct plan_rules *rules, struct vec3 from, struct vec3 to);
 

@@ -337,6 +337,7 @@ enum status stored_view(struct plan_view *v, const struct plan_row *row, struct 
 			item->state = PLAN_PINNED;
 		if (item->state <= PLAN_PINNED && !item->note[0] && was_missed(c, item->key))
 			item->note = "not begun";
+		cut_note(v, cut_of(c->cut, c->n_cut, item->key), item);
 	}
 	worth_of_marked(v, c);
 	return s == ST_OK ? plan_memory(v, e) : s;
