@@ -79,7 +79,7 @@ struct plan_left {
 	size_t offer;
 	enum left_reason reason;
 	double cost;	   /* worth that the order would lose if it were forced in; NAN: can't be forced in, or no way was found */
-	bool at_most;	   /* the cost is that of an order that was found; that a better one costs less was not ruled out (after 2,000 looks, running_order.h) */
+	bool at_most;	   /* the cost is that of an order that was found; that a better one costs less was not ruled out (after 2,000 looks, running_order.h). Without a cost: that there is a way was not ruled out */
 	size_t n_clash;	   /* items of the order that would lose an event for it; of LEFT_PINS: if it were the only pin */
 	size_t clash[LEFT_CLASHES_MAX];
 };

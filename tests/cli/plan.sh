@@ -48,7 +48,7 @@ check "it was not there before" test "$(row "$scratch/p.txt" 'Tern 33 b')" = ''
 plan $now --drop 'tern-14 B' >"$scratch/drop.txt"
 check "--drop, by a folded name" test "$(row "$scratch/drop.txt" 'Tern 14 b')" = ''
 check "and it says why it is left out" grep -q '^  Tern 14 b: dropped by you$' "$scratch/drop.txt"
-check "what is left out costs something" grep -q 'clashes with .*; forcing it in costs [0-9.]*$' "$scratch/p.txt"
+check "what is left out costs something" grep -q 'others are worth more: forcing it in would put out .* and cost [0-9.]*$' "$scratch/p.txt"
 plan $now --block '22:40..+50m=engineering hour' >"$scratch/block.txt"
 check "--block: echoed with its date" said '^wane: plan: block engineering hour: Wed 22 Apr 22:40 MDT (04:40 UTC on 23 Apr) to Wed 22 Apr 23:30 MDT (05:30 UTC on 23 Apr)$'
 check "--block: in the table" sh -c 'echo "$1" | grep -q "22:40 *23:30 *engineering hour"' - "$(row "$scratch/block.txt" 'engineering hour')"
