@@ -87,6 +87,11 @@ static void write_json(FILE *to, const struct run *r, const struct night_view *v
 		json_open(&j, "running_order", '[', false);
 		json_close(&j, ']');
 	}
+	/* null: there is no order to be kept or not */
+	if (order->there && (order->view.kept || order->view.n_items > 0))
+		json_bool(&j, "running_order_kept", order->view.kept);
+	else
+		json_null(&j, "running_order_kept");
 	json_close(&j, '}');
 	json_end(&j);
 }

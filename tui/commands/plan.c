@@ -181,6 +181,7 @@ static int write_plan(struct run *r, struct plan_view *v, enum format format, st
 	if (!v->stored)
 		diagnose("plan",
 			 "shown, not stored (--keep stores and keeps it, --save stores it as a draft)");
+	plan_kept_elsewhere_note(r, v->night->night.mjd, "plan");
 	leap_note(r, v->night->night.mjd);
 	run_night_notes(v->night);
 	return EXIT_DONE;
