@@ -1,4 +1,5 @@
 /* SPDX-License-Identifier: MIT */
+#include "tui/commands/plan.h"
 #include "tui/commands/table.h"
 
 #include "tui/diagnose.h"
@@ -30,7 +31,9 @@ static void order_open(struct order *order, struct run *r, int32_t evening_mjd)
 	if (r->options->radec) /* of a position nothing is planned, and the stored targets are not known */
 		return;
 	order->there = plan_get(r, evening_mjd, &wish, &order->night, &order->view, NULL, &e) == ST_OK;
-	if (!order->there)
+	if (order->there)
+		plan_damage_note(&order->view);
+	else
 		diagnose("plan", "%s", e.text);
 }
 

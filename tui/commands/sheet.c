@@ -180,6 +180,7 @@ static int sheet_write(struct run *r, int32_t evening_mjd)
 		return EXIT_USAGE;
 	}
 	if (plan_get(r, evening_mjd, &wish, &night, &view, NULL, &e) == ST_OK) {
+		plan_damage_note(&view);
 		code = write_view(r, &view, format);
 		plan_view_free(&view);
 	} else {
