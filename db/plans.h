@@ -46,6 +46,8 @@ struct plan_row {
 	const char *left_out;		 /* lines: target, kind, epoch, reason, tab between */
 	size_t n;
 	struct plan_item_row *item;	 /* in order of time */
+	size_t n_bad;			 /* marks with a wrong checksum: they count as none */
+	char bad[96];			 /* names the first of them; "" */
 	char *block;			 /* owns texts and arrays: plan_row_free */
 };
 struct plan_list {
@@ -58,7 +60,7 @@ struct plan_list {
 /* All plans of a site (0: all) from one night to another, newest edition of each. */
 MUST_USE enum status plans_list(struct store *s, int64_t site_id, int32_t first_mjd, int32_t last_mjd, struct plan_list *out, struct err *e);
 void plan_list_free(struct plan_list *list);
-/* One plan with items and marks. edition 0: the one that holds. ST_ABSENT: no such plan or edition. A row with a wrong checksum: ST_STORE, named. */
+/* One plan with items and marks. edition 0: the one that holds. ST_ABSENT: no such plan or edition. A row with a wrong checksum: ST_STORE, named; of a mark: n_bad. */
 MUST_USE enum status plan_load(struct store *s, int64_t plan_id, int edition, struct plan_row *out, struct err *e);
 /* The kept plan of a night (draft NULL), or a draft by name; ST_ABSENT (no message) when there is none. */
 MUST_USE enum status plan_find(struct store *s, int64_t site_id, int64_t telescope_id, int32_t night_mjd, const char *draft, struct plan_row *out,

@@ -272,6 +272,15 @@ static void set_mark(struct keeping *k, const struct cell *cell, struct plan_row
 	}
 }
 
+/* The plan is there without it. */
+static void bad_mark(struct store *s, struct plan_row *out)
+{
+	if (out->n_bad++ == 0)
+		snprintf(out->bad, sizeof out->bad,
+			 "the checksum of mark %lld is wrong: it counts as none; see `wane check`",
+			 (long long)sqlite3_column_int64(s->stmt[SQL_PLAN_MARKS_OF_PLAN], 0));
+}
+
 static enum status load_marks(struct store *s, struct plan_row *out, struct err *e)
 {
 	const enum sql_id id = SQL_PLAN_MARKS_OF_PLAN;
@@ -282,7 +291,7 @@ static enum status load_marks(struct store *s, struct plan_row *out, struct err 
 	enum status st = cells_bind(s->stmt[id], 1, &key, 1, e);
 	while (st == ST_OK && (st = sql_step(s, id, &row, e)) == ST_OK && row) {
 		if (!row_read(s, id, 0, &plan_mark_rows, cell))
-			st = row_damaged(s, id, &plan_mark_rows, e);
+			bad_mark(s, out);
 		else if (!cell[PLAN_MARK_REMOVED].u.i)
 			set_mark(&k, cell, out);
 		if (k.full)

@@ -79,7 +79,7 @@ struct plan_left {
 	size_t offer;
 	enum left_reason reason;
 	double cost;	   /* worth that the order would lose if it were forced in; NAN: can't be forced in, or no way was found */
-	bool at_most;	   /* the cost is that of an order that was found; that a better one costs less was not ruled out (after 2,000 looks, running_order.h) */
+	bool at_most;	   /* the cost is that of an order that was found; that a better one costs less was not ruled out (after 2,000 looks, running_order.h). Without a cost: that there is a way was not ruled out */
 	size_t n_clash;	   /* items of the order that would lose an event for it; of LEFT_PINS: if it were the only pin */
 	size_t clash[LEFT_CLASHES_MAX];
 };
@@ -110,6 +110,8 @@ void night_plan_free(struct night_plan *p);
 /* What a window is worth as a whole. With a forecast in bits: its worth. Else priority x open goals x chance of done, or x unknown_share x coverage where there is no
  * chance, x event_value where a forecast is on. A limb alone: priority x open goals that take one limb x its chance x its bits, or x limb_share x event_value. */
 double plan_worth(const struct window *w, const struct plan_rules *rules);
+/* The same of one limb alone, also what is left of an event that was begun as a whole (VARIANT_INGRESS, VARIANT_EGRESS); NAN: without a chance. */
+double plan_limb_worth(const struct window *w, const struct plan_rules *rules, enum variant limb);
 /* Moving from one direction to another: slew and settling [d]. */
 double plan_move_d(const struct plan_rules *rules, struct vec3 from, struct vec3 to);
 

@@ -81,13 +81,14 @@ static enum status force_in(struct questions *q, const struct night_plan *out, s
 					t, e);
 	if (st == ST_OK)
 		st = order_through_event(*t, (int)left->offer, k->taken, &result, &held, e);
-	if (st != ST_OK || !held || (!alone && result.pins_missed > out->pins_missed))
+	if (st != ST_OK)
 		return st;
+	left->at_most = !result.optimal;
+	if (!held || (!alone && result.pins_missed > out->pins_missed))
+		return ST_OK;
 	add_lost(k, &result, out, left, q->held);
-	if (!alone) {
+	if (!alone)
 		left->cost = fmax(out->worth - result.worth, 0.0);
-		left->at_most = !result.optimal;
-	}
 	return ST_OK;
 }
 

@@ -72,9 +72,20 @@ double plan_worth(const struct window *w, const struct plan_rules *rules)
 /* A limb alone, by choice or because no more can be had. */
 static double limb_worth(const struct window *w, const struct plan_rules *rules, double chance, double bits)
 {
-	const double each =
-	    w->forecast.basis == BASIS_BITS ? priority_of(w) * rules->limb_trust * bits : value_of(w) * rules->limb_share;
+	const double each = w->forecast.basis == BASIS_BITS ? priority_of(w) * rules->limb_trust * bits
+							    : value_of(w) * rules->limb_share;
 	return each * open_of(w).limb * chance;
+}
+
+double plan_limb_worth(const struct window *w, const struct plan_rules *rules, enum variant limb)
+{
+	const bool in = limb == VARIANT_INGRESS;
+	const double chance = in ? w->chance.ingress : w->chance.egress;
+	if (isnan(chance))
+		return NAN;
+	if (chance < CHANCE_LEAST)
+		return 0.0;
+	return limb_worth(w, rules, chance, in ? w->forecast.bits_ingress : w->forecast.bits_egress);
 }
 
 bool plan_catchable(const struct window *w)

@@ -11,7 +11,7 @@
 
 static const char *const choice_words[CHOICE_KINDS] = {"pin", "drop", "block", "lost", "poor"};
 static const char *const block_words[] = {"set", "standing", "lost", "poor"};
-static const char shown_word[] = "shown", missed_word[] = "missed";
+static const char shown_word[] = "shown", missed_word[] = "missed", cut_word[] = "cut";
 
 /* --- stored lines --- */
 
@@ -56,6 +56,8 @@ static void read_line(struct plan_view *v, struct plan_choices *c, const char *l
 		read_shown(v, line, n);
 	else if (strcmp(word, missed_word) == 0 && c->n_missed < CHOICES_MAX)
 		c->missed[c->n_missed++] = text;
+	else if (strcmp(word, cut_word) == 0 && c->n_cut < CHOICES_MAX)
+		c->cut[c->n_cut++] = (struct plan_cut){text, cell(v, line, n, 2), cell(v, line, n, 3)};
 	for (int k = 0; k < CHOICE_KINDS; k++)
 		if (strcmp(word, choice_words[k]) == 0 && c->n < CHOICES_MAX)
 			c->choice[c->n++] = (struct plan_choice){(enum choice_kind)k, text};
@@ -63,7 +65,7 @@ static void read_line(struct plan_view *v, struct plan_choices *c, const char *l
 
 void choices_read(struct plan_view *v, struct plan_choices *c, const char *lines)
 {
-	c->n = c->n_missed = c->n_reopened = 0;
+	c->n = c->n_missed = c->n_cut = c->n_reopened = 0;
 	while (*lines) {
 		const size_t n = strcspn(lines, "\n");
 		read_line(v, c, lines, n);
@@ -90,6 +92,13 @@ static size_t put_block(const struct plan_view *v, char *out, size_t room, size_
 	return used + (size_t)(n > 0 ? n : 0);
 }
 
+static size_t put_cut(char *out, size_t room, size_t used, const struct plan_cut *cut)
+{
+	const int n = snprintf(out ? out + used : NULL, out ? room - used : 0, "%s\t%s\t%s\t%s\n", cut_word,
+			       cut->key, cut->was, cut->note);
+	return used + (size_t)(n > 0 ? n : 0);
+}
+
 /* Writes into out, or, NULL, only counts. */
 static size_t put_all(const struct plan_view *v, const struct plan_choices *c, char *out, size_t room)
 {
@@ -100,6 +109,8 @@ static size_t put_all(const struct plan_view *v, const struct plan_choices *c, c
 		used = put_block(v, out, room, used, &v->block[i]);
 	for (size_t i = 0; i < c->n_missed; i++)
 		used = put_line(out, room, used, missed_word, c->missed[i]);
+	for (size_t i = 0; i < c->n_cut; i++)
+		used = put_cut(out, room, used, &c->cut[i]);
 	return used;
 }
 

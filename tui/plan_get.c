@@ -60,6 +60,7 @@ static void head(struct plan_view *v, struct run *r, const struct night_view *ni
 				.limits = "",
 				.leap_date = "",
 				.revised_utc = "",
+				.damage = "",
 				.rules = run_plan_rules(r)};
 	v->telescope = plan_copy(v, r->telescope.name);
 }
@@ -179,6 +180,7 @@ static enum status get(struct run *r, int32_t evening_mjd, const struct plan_wis
 	if (!c)
 		return plan_memory(v, e);
 	enum status s = run_night_free(r, &r->site, evening_mjd, night, e);
+	v->damage = plan_copy(v, row->bad);
 	if (s == ST_OK && row->id != 0)
 		s = stored_view(v, row, c, e);
 	if (s != ST_OK)

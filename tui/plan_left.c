@@ -135,14 +135,20 @@ static void item_name(const struct order *o, size_t item, char *out, size_t n)
 	}
 }
 
-static const char *worth_words(const struct night_plan *p, const struct plan_left *left)
+/* What an order that holds it would lose. A cost that prints as 0.00 is none. */
+static void forced(const struct plan_left *left, const char *names, char *out, size_t n)
 {
-	const bool one = left->n_clash == 1;
-	if (isnan(left->cost) && p->item[left->clash[0]].fixed >= 0)
-		return one ? "which has begun" : "which have begun";
-	if (left->cost < 0.005) /* prints as 0.00 */
-		return one ? "which is worth as much" : "which are worth as much";
-	return one ? "which is worth more" : "which are worth more";
+	const bool none = left->cost < 0.005;
+	char cost[NUMBER_TEXT_MAX], loses[WORDS_BYTES / 2 + 40];
+	number_text_fixed(left->cost, 2, cost);
+	if (names[0])
+		plan_put_words(loses, sizeof loses, "put out %s%s", names,
+			       left->n_clash > LEFT_CLASHES_MAX ? " and others" : "");
+	else
+		plan_put_words(loses, sizeof loses, "cut others shorter");
+	plan_put_words(out, n, "others are worth %s: forcing it in would %s and cost %s%s",
+		       none ? "as much" : "more", loses, left->at_most && !none ? "at most " : "",
+		       none ? "nothing" : cost);
 }
 
 /* Pins that found their place: which of them are in the way is not known one by one. */
@@ -173,14 +179,24 @@ static void clash(const struct order *o, const struct plan_left *left, bool cost
 		item_name(o, left->clash[i], one, sizeof one);
 		plan_put_words(names + used, sizeof names - used, "%s%s", link, one);
 	}
-	if (left->reason == LEFT_PINS && shown > 0)
-		plan_put_words(out, n, "pinned, but it clashes with %s", names);
+	const bool running = shown > 0 && o->p->item[left->clash[0]].fixed >= 0;
+	if (running)
+		plan_put_words(out, n, "%sclashes with %s%s, which %s begun",
+			       left->reason == LEFT_PINS ? "pinned, but it " : "", names,
+			       left->n_clash > shown ? " and others" : "",
+			       left->n_clash == 1 ? "has" : "have");
+	else if (left->reason == LEFT_PINS && shown > 0)
+		plan_put_words(out, n,
+			       "pinned, but it clashes with other pins or what has begun: as the only pin it "
+			       "would put out %s%s",
+			       names, left->n_clash > shown ? " and others" : "");
 	else if (left->reason == LEFT_PINS)
 		other_pins(o, out, n);
-	else if (shown > 0)
-		plan_put_words(out, n, "clashes with %s%s, %s", names,
-			       left->n_clash > shown ? " and others" : "", worth_words(o->p, left));
-	else if (costs && isnan(left->cost))
+	else if (!isnan(left->cost))
+		forced(left, names, out, n);
+	else if (costs && left->at_most)
+		plan_put_words(out, n, "no order was found that holds it beside what is pinned or has begun");
+	else if (costs)
 		plan_put_words(out, n, "what is pinned or has begun leaves no room for it");
 	else
 		plan_put_words(out, n, "others are worth more together");
@@ -190,7 +206,7 @@ const char *left_words(struct plan_view *v, const struct night_plan *p, const st
 		       const struct plan_left *left, const struct plan_standing *standing,
 		       const size_t fixed_item[], bool costs)
 {
-	char text[WORDS_BYTES] = "", cost[NUMBER_TEXT_MAX];
+	char text[WORDS_BYTES] = "";
 	const struct window *w = offer[left->offer].window;
 	const struct order order = {
 	    .v = v, .p = p, .offer = offer, .standing = standing, .fixed_item = fixed_item};
@@ -213,9 +229,5 @@ const char *left_words(struct plan_view *v, const struct night_plan *p, const st
 	case LEFT_REASON_COUNT:
 		break;
 	}
-	number_text_fixed(left->cost, 2, cost);
-	const size_t used = strlen(text);
-	if (cost[0] && left->reason == LEFT_CLASH && used < sizeof text)
-		snprintf(text + used, sizeof text - used, "; forcing it in costs %s", cost);
 	return plan_copy(v, text);
 }

@@ -45,18 +45,24 @@ struct plan_choice {
 	const char *text; /* as typed */
 };
 enum { CHOICES_MAX = 320, POOR_NOISE_MAX = 20 };
+/* An item that has begun and of which lost time took limbs. was: what its members were before, `variant=worth`, comma between; note: what was lost. */
+struct plan_cut {
+	const char *key, *was, *note;
+};
 struct plan_choices {
 	size_t n;
 	struct plan_choice choice[CHOICES_MAX];
 	size_t n_missed;
 	const char *missed[CHOICES_MAX]; /* keys of items that were never begun */
+	size_t n_cut;
+	struct plan_cut cut[CHOICES_MAX];
 	/* not stored: keys of items that had begun and were let go of though a limb is ahead; planned anew they lose their mark */
 	size_t n_reopened;
 	const char *reopened[CHOICES_MAX];
 };
 /* Stored lines to choices and blocks as they were shown. A line that can't be read is passed over. */
 void choices_read(struct plan_view *v, struct plan_choices *c, const char *lines);
-/* Lines to store: choices, then v's blocks as resolved, then items that were never begun. NULL no memory. */
+/* Lines to store: choices, then v's blocks as resolved, items that were never begun, items of which limbs were lost. NULL no memory. */
 const char *choices_text(struct plan_view *v, const struct plan_choices *c);
 /* What is wished, laid over what is stored: a pin takes the drop of the same event away and the other way round. */
 MUST_USE enum status choices_wish(struct plan_view *v, struct plan_choices *c, const struct plan_wish *wish, struct err *e);
@@ -104,6 +110,24 @@ void limits_echo(struct echo *echo, const char *stored, const char *now);
 const char *plan_limits_text(struct plan_view *v);
 /* What was left out, a line each: target, kind, epoch, reason, cost. NULL no memory. */
 const char *left_text(struct plan_view *v);
+
+/* --- limbs and lost time --- */
+/* Limbs of an item's events. planned: those that the item holds. */
+struct limbs {
+	int planned, hit, before; /* all; taken by lost time; over by now, and before what was taken */
+	double hit_until_d;	  /* end of the last limb that was taken; -INFINITY none */
+	bool in_hit, out_hit;
+	bool ahead; /* an egress that was not planned is still to come */
+};
+struct limbs item_limbs(const struct plan_view *v, const struct plan_item_view *item, double now_d);
+/* An item that has begun keeps of each event the limbs that lost time left, with their worth, and says in its note what was lost; *c remembers what it was. Its members are
+ * copies. false: no memory. */
+bool cut_item(struct plan_view *v, struct plan_choices *c, struct plan_item_view *item, double now_d);
+/* Makes it again what it was before it was cut: `cut` is what was remembered. false: no memory. */
+bool uncut_item(struct plan_view *v, const struct plan_cut *cut, struct plan_item_view *item);
+const struct plan_cut *cut_of(const struct plan_cut cut[], size_t n, const char *key); /* NULL none */
+/* Adds what was lost to the note of an item, once. */
+void cut_note(struct plan_view *v, const struct plan_cut *cut, struct plan_item_view *item);
 
 /* --- proposals --- */
 /* What stands when a plan is worked out anew. */

@@ -19,8 +19,17 @@ enum status stored_find(struct run *r, int32_t evening_mjd, const char *draft, s
 		return ST_OK;
 	err_clear(e);
 	enum status s = plan_find(r->store, r->site.id, r->telescope.id, evening_mjd, draft, out, e);
-	if (s == ST_ABSENT && !draft)
+	if (s == ST_ABSENT && !draft) {
 		s = plan_find(r->store, r->site.id, r->telescope.id, evening_mjd, main_draft, out, e);
+		/* nobody asked for it, and it is not kept: it is in nobody's way but in that of its name */
+		if (s == ST_STORE) {
+			*out = (struct plan_row){.n_bad = 1};
+			snprintf(out->bad, sizeof out->bad,
+				 "draft %s can't be read: left out; see `wane check`", main_draft);
+			err_clear(e);
+			return ST_OK;
+		}
+	}
 	if (s != ST_ABSENT)
 		return s;
 	*out = (struct plan_row){.id = 0};
@@ -315,6 +324,7 @@ enum status stored_view(struct plan_view *v, const struct plan_row *row, struct 
 	v->stored = true;
 	v->kept = row->kept;
 	v->plan_id = row->id;
+	v->damage = plan_copy(v, row->bad);
 	v->edition = row->edition;
 	v->stored_utc = plan_copy(v, row->stored_utc);
 	v->who = plan_copy(v, row->who);
@@ -337,6 +347,7 @@ enum status stored_view(struct plan_view *v, const struct plan_row *row, struct 
 			item->state = PLAN_PINNED;
 		if (item->state <= PLAN_PINNED && !item->note[0] && was_missed(c, item->key))
 			item->note = "not begun";
+		cut_note(v, cut_of(c->cut, c->n_cut, item->key), item);
 	}
 	worth_of_marked(v, c);
 	return s == ST_OK ? plan_memory(v, e) : s;

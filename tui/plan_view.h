@@ -65,6 +65,7 @@ struct plan_view {
 	const char *telescope;		/* "" the site's unnamed one */
 	const char *draft;		/* of a proposal (stored false): the draft that it was worked out from; "" none */
 	bool stored, kept;
+	const char *damage;		/* of what is stored, what could not be read and is passed over, in words; "" */
 	int64_t plan_id;
 	int edition;			/* of a proposal: the one that it was worked out from; 0 none is stored */
 	const char *stored_utc, *who;	/* of the edition; of a proposal: of the newest change in the store, "" an empty store */

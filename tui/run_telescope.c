@@ -146,6 +146,14 @@ static const struct telescope *chosen_before(const struct run *r)
 	return NULL;
 }
 
+/* `--telescope none`, unless the site has one of that name. */
+static bool none_wanted(const struct run *r)
+{
+	const char *name = r->options->telescope;
+	return name && strcmp(name, "none") == 0 &&
+	       (r->site.id == 0 || telescope_list_find(&r->telescopes, r->site.id, name) < 0);
+}
+
 void run_half_key(int64_t site_id, char out[HALF_KEY_BYTES])
 {
 	snprintf(out, HALF_KEY_BYTES, "half:%lld", (long long)site_id);
@@ -174,6 +182,8 @@ enum status run_choose_telescope(struct run *r, bool named, struct err *e)
 		return err_set(e, ST_RANGE, "--telescope: a telescope belongs to one site, and %d are given",
 			       o->n_sites + o->n_places);
 	const struct telescope *t = chosen_before(r);
+	if (!t && none_wanted(r))
+		return take(r, NULL, e);
 	if (!t && o->telescope) {
 		long i = r->site.id == 0 ? -1 : telescope_list_find(&r->telescopes, r->site.id, o->telescope);
 		if (i < 0 && named)

@@ -56,8 +56,9 @@ check "night csv: a good night" test "$(wc -l <"$scratch/night.csv")" -ge 12
 quiet night 2026-04-22 --format json >"$scratch/night.json"
 check "night json: keys of the night" test "$(sed -n '/^  "night"/,/^  }/p' "$scratch/night.json" | keys)" = \
 	"night date start_utc end_utc sunset_utc civil_dusk_utc nautical_dusk_utc astronomical_dusk_utc dusk_utc dawn_utc astronomical_dawn_utc nautical_dawn_utc civil_dawn_utc sunrise_utc sun_limit_deg moonrise_utc moonset_utc moon_lit usable_h allotted "
-check "night json: top keys" test "$(grep -o '^  "[a-z_]*":' "$scratch/night.json" | tr -d ' ":' | tr '\n' ' ')" = "site limits night windows running_order "
+check "night json: top keys" test "$(grep -o '^  "[a-z_]*":' "$scratch/night.json" | tr -d ' ":' | tr '\n' ' ')" = "site limits night windows running_order running_order_kept "
 check "night json: site" grep -q '"site": {"name": "Tern Hill", "latitude_deg": 38.62, "longitude_east_deg": -109.36, "height_m": 2100, "zone": "America/Denver"}' "$scratch/night.json"
+check "night json: it is not kept" grep -q '^  "running_order_kept": false$' "$scratch/night.json"
 check "night json: the running order, a proposal" test "$(sed -n '/^  "running_order"/,$p' "$scratch/night.json" | grep -c '"order": ')" -gt 2
 check "night json: keys of a window" test "$(sed -n '/^  "windows"/,$p' "$scratch/night.json" | sed -n '/^    {/,/^    }/p' | sed '/^    }/q' | keys)" = "$window usable "
 check "no nan anywhere" sh -c '! grep -Eiq "\b(nan|inf)\b" "$1" "$2"' - "$scratch/night.csv" "$scratch/night.json"

@@ -262,8 +262,8 @@ check "marks and editions are in the history" test "$(wane history | grep -c 'pl
 # --- words: of two events of one target it is said which; what is planned of an event is said where it isn't all
 "$WANE" plan "$night" --place 38.62,-109.36,2100 --db "$db" </dev/null >"$scratch/two.txt" 2>/dev/null
 check "an order without a telescope holds Tern 31 b twice" test "$(sed -n '/^  # /,/^$/p' "$scratch/two.txt" | grep -c 'Tern 31 b')" = 2
-check "they are told apart" grep -q 'clashes with Tern 31 b (T1 [0-9:]* [A-Z]*), .* and Tern 31 b (T1 [0-9:]* [A-Z]*), which' "$scratch/two.txt"
-check "none is named alike" sh -c '! grep -q "clashes with.*Tern 31 b[^(]*Tern 31 b" "$1"' - "$scratch/two.txt"
+check "they are told apart" grep -q 'put out Tern 31 b (T1 [0-9:]* [A-Z]*), .* and Tern 31 b (T1 [0-9:]* [A-Z]*) and cost' "$scratch/two.txt"
+check "none is named alike" sh -c '! grep -q "put out.*Tern 31 b[^(]*Tern 31 b" "$1"' - "$scratch/two.txt"
 "$WANE" sheet "$night" --place 38.62,-109.36,2100 --db "$db" </dev/null >"$scratch/two.txt" 2>/dev/null
 check "the text sheet says what is planned of it" grep -qx ' 1  Tern 31 b (egress only)' "$scratch/two.txt"
 check "of each of two events" grep -qx ' 2  Tern 27 b (short) + Tern 27 c (ingress only)' "$scratch/two.txt"

@@ -60,6 +60,8 @@ check "not when it is worked out anew" test "$(grep -c 'as it was stored' "$scra
 check "a position has no events to plan: exit 2" test "$(code $now --radec 10,10)" = 2
 check "nor anything for a sheet" test "$("$WANE" sheet $night --db "$db" --radec 10,10 >/dev/null 2>&1; echo $?)" = 2
 check "the night of a position has no running order" test "$("$WANE" night $night --db "$db" --radec 10,10 --format json 2>/dev/null | grep -c '"running_order": \[\]')" = 1
+check "so nothing is kept or not" test "$("$WANE" night $night --db "$db" --radec 10,10 --format json 2>/dev/null | grep -c '^  "running_order_kept": null$')" = 1
+check "the kept plan of a night says that it is" test "$("$WANE" night $night --db "$db" --format json 2>/dev/null | grep -c '^  "running_order_kept": true$')" = 1
 check "so it replaces no kept plan" test "$(code $now --radec 10,10 --afresh --keep)$(plan --list | grep -c 'kept: edition 1')" = 21
 
 # --- marks of a target that was removed: Tern 31 b has two items in the kept plan
@@ -107,4 +109,26 @@ check "with and without a telescope" test "$("$WANE" sheet $night --site 'tern h
 check "as another store has it in its zone" test "$("$WANE" plan $night --site 'Tern Hill' --db "$t" 2>/dev/null)" = "$(plan)"
 check "the store is sound" "$WANE" check --db "$t"
 
+# --- a plan kept before the first telescope was added
+f=$scratch/first.db
+"$WANE" import config-example/demo-targets.csv --db "$f" >/dev/null 2>&1
+"$WANE" site add 'Tern Hill' --place 38.62,-109.36,2100 --zone America/Denver --db "$f" >/dev/null 2>&1
+first() { "$WANE" "$1" $night --db "$f" $now $2 $3 $4 2>"$scratch/err"; }
+first plan --keep >/dev/null
+first plan --telescope none >"$scratch/none.txt"
+check "--telescope none where there is no telescope" grep -q 'kept plan (draft main, edition 1)' "$scratch/none.txt"
+check "and nothing is said of others" test "$(grep -c 'is kept' "$scratch/err")" = 0
+"$WANE" telescope add Big --db "$f" >/dev/null 2>&1
+check "with the first telescope the plan is a proposal" sh -c 'grep -q "a proposal" "$1"' - "$(first plan >"$scratch/big.txt"; echo "$scratch/big.txt")"
+for command in plan sheet; do
+	first $command >/dev/null
+	check "it is said where one is kept: $command" said "^wane: $command: no plan of this night is kept for Big; one is kept without a telescope (--telescope 'none')\$"
+done
+first plan --telescope none >"$scratch/none.txt"
+check "--telescope none reaches it" grep -q 'kept plan (draft main, edition 1)' "$scratch/none.txt"
+first plan --telescope Big --keep >/dev/null
+check "kept for this one too: nothing is said" test "$(grep -c 'one is kept' "$scratch/err")" = 0
+"$WANE" telescope add none --db "$f" >/dev/null 2>&1
+first plan --telescope none >/dev/null
+check "a telescope of that name is it" said "^wane: plan: no plan of this night is kept for none; one is kept "
 finish

@@ -86,6 +86,51 @@ static void check_rebuilt(const struct kept_items *before, const struct plan_vie
 	}
 }
 
+static double lost_s(const struct plan_view *v, double from_s, double to_s)
+{
+	const struct utc zero = {.mjd = PLAN_RUN_EVENING_MJD, .sod_s = 0.0};
+	double sum_s = 0.0, until_s = from_s;
+	for (size_t i = 0; i < v->n_blocks; i++) { /* in order of time */
+		const double a = utc_diff_s(&leap_builtin, zero, v->block[i].from),
+			     b = utc_diff_s(&leap_builtin, zero, v->block[i].to);
+		if (v->block[i].kind != BLOCK_LOST || b <= until_s || a >= to_s)
+			continue;
+		sum_s += fmin(b, to_s) - fmax(a, until_s);
+		until_s = fmin(b, to_s);
+	}
+	return sum_s;
+}
+
+/* What has begun and goes on holds no ingress that lost time took, and counts for what it holds. */
+static void check_limbs(const struct plan_view *v, struct utc now)
+{
+	const struct utc zero = {.mjd = PLAN_RUN_EVENING_MJD, .sod_s = 0.0};
+	const double base_s = 60.0 * v->run->limits.value[LIM_MIN_BASELINE];
+	double total = 0.0;
+	for (size_t i = 0; i < v->n_items; i++) {
+		const struct plan_item_view *item = &v->item[i];
+		const bool over = !later(now, item->end) && item->state < PLAN_STARTED;
+		double worth = 0.0;
+		for (size_t k = 0; k < item->n; k++) {
+			const struct plan_member_view *m = &item->member[k];
+			const double t1_s = utc_diff_s(&leap_builtin, zero, m->t1),
+				     t2_s = utc_diff_s(&leap_builtin, zero, m->has_flat ? m->t2 : m->mid);
+			worth += m->worth;
+			if (item->state > PLAN_STARTED || over || !(m->worth > 0.0) ||
+			    strcmp(m->variant, "egress") == 0)
+				continue;
+			if (lost_s(v, t1_s, t2_s) > 0.5 * (t2_s - t1_s) + 1.0 ||
+			    lost_s(v, t1_s - base_s, t1_s) > 0.5 * base_s + 1.0)
+				check_fail("%s: %s is %s still, its ingress was lost", item->key, m->target,
+					   m->variant);
+		}
+		check_close("worth of an item", item->worth, worth, 1e-9);
+		if (item->state != PLAN_LOST && !over)
+			total += item->worth;
+	}
+	check_close("total", v->worth, total, 1e-9);
+}
+
 static void check_stored(struct plan_run *p, const struct plan_view *shown)
 {
 	struct plan_case c;
@@ -97,6 +142,10 @@ static void check_stored(struct plan_run *p, const struct plan_view *shown)
 		assert_string_equal(c.view.item[i].cause, shown->item[i].cause);
 		assert_string_equal(c.view.item[i].note, shown->item[i].note);
 		assert_string_equal(c.view.item[i].if_missed, shown->item[i].if_missed);
+		check_close("worth", c.view.item[i].worth, shown->item[i].worth, 1e-9);
+		for (size_t k = 0; k < shown->item[i].n; k++)
+			assert_string_equal(c.view.item[i].member[k].variant,
+					    shown->item[i].member[k].variant);
 	}
 	plan_case_close(&c);
 }
@@ -142,6 +191,7 @@ static void step(struct plan_run *p, struct rng *r, struct utc *now)
 	    .lost = lost, .n_lost = rng_unit(r) < 0.5 ? 1 : 0, .rebuild = true, .moved_min = NAN};
 	plan_case_open(&c, p, &wish, ST_OK);
 	check_rebuilt(&old, &c.view, *now);
+	check_limbs(&c.view, *now);
 	must(plan_save(&p->run, &c.view, NULL, true, &e), &e);
 	check_stored(p, &c.view);
 	plan_case_close(&c);

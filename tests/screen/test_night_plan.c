@@ -417,8 +417,8 @@ static void test_left_out(void **state)
 	open_at(&d, EVENING);
 	select_row(&d, "Tern 48 b");
 	driver_keys(&d, "\r");
-	driver_expect(&d, "Plan   left out: clashes with ");
-	driver_expect(&d, "forcing it in costs ");
+	driver_expect(&d, "Plan   left out: others are worth more");
+	driver_expect(&d, "would put out ");
 	driver_close(&d);
 	/* where the costs are not worked out with the plan, that of one is asked for */
 	open_at(&d, EVENING);

@@ -375,7 +375,7 @@ static void forecasts_are_told(void **state)
 		    count(text->text, "      flip        Wed 22 Apr 22:30 MDT   Thu 23 Apr 04:30 UTC\n"),
 		    rows[i].flips);
 		assert_int_equal(count(text->text, "at the flip: watch the mount"), rows[i].flips);
-		assert_int_equal(count(memory_text(html), "Flip <small>watch the mount"), rows[i].flips);
+		assert_int_equal(count(memory_text(html), "At the flip: watch the mount"), rows[i].flips);
 		assert_int_equal(count(html->text, "<dt>Exposure</dt><dd>2.5 s</dd>"), 1);
 		assert_int_equal(count(html->text, "error, whole event</dt>"), !rows[i].flips);
 		assert_non_null(strstr(text->text, "Telescope: North, 0.4 m, 0.4 m, band g\n"));

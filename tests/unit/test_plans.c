@@ -703,7 +703,6 @@ static void test_damage(void **state)
 	     "row 2 of table plan_item", "table plan_item, row 2"},
 	    {"DROP TRIGGER plan_window_no_update; UPDATE plan_window SET epoch = 1 WHERE id = 3",
 	     "row 3 of table plan_window", "table plan_window, row 3"},
-	    {"UPDATE plan_mark SET state = 'done'", "row 1 of table plan_mark", "table plan_mark, row 1"},
 	    {"DROP TRIGGER plan_window_no_delete; DELETE FROM plan_window WHERE id = 2",
 	     "windows of an edition", "windows are missing in item row 1"},
 	    {"DROP TRIGGER plan_window_no_delete; DELETE FROM plan_window WHERE id = 4",
@@ -757,6 +756,37 @@ static void test_damage(void **state)
 	store_close(s);
 }
 
+/* A mark that can't be read counts as none, and the plan is there. */
+static void test_damaged_mark(void **state)
+{
+	(void)state;
+	struct store *s = observing_store(5);
+	struct made *m = make("main", 3, 1);
+	struct plan_row p;
+	struct err e = {0};
+	char says[4096];
+	int64_t id = put(s, m, true, 0, 1);
+	mark(s, id, "tern-1", "started");
+	mark(s, id, "tern-2", "done");
+	must(plan_load(s, id, 0, &p, &e), &e);
+	assert_int_equal(p.n_bad, 0);
+	assert_string_equal(p.bad, "");
+	plan_row_free(&p);
+	change_behind(s, "UPDATE plan_mark SET state = 'lost' WHERE id = 1");
+	must(plan_find(s, 1, 0, NIGHT, NULL, &p, &e), &e);
+	assert_int_equal(p.n, 3);
+	assert_int_equal(p.n_bad, 1);
+	assert_string_equal(p.bad, "the checksum of mark 1 is wrong: it counts as none; see `wane check`");
+	for (size_t i = 0; i < p.n; i++)
+		assert_string_equal(p.item[i].state, strcmp(p.item[i].key, "tern-2") == 0 ? "done" : "");
+	plan_row_free(&p);
+	assert_int_equal(check_faults(s, says), 1);
+	assert_non_null(strstr(says, "table plan_mark, row 1"));
+	assert_int_equal(store_digest(s, says, &e), ST_STORE);
+	free(m);
+	store_close(s);
+}
+
 /* What the tables themselves guard. */
 static void test_guards(void **state)
 {
@@ -794,12 +824,12 @@ static void test_guards(void **state)
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
-	    cmocka_unit_test(test_round_trip), cmocka_unit_test(test_editions),
-	    cmocka_unit_test(test_keep),       cmocka_unit_test(test_marks),
-	    cmocka_unit_test(test_undo),       cmocka_unit_test(test_undo_of_keeping),
-	    cmocka_unit_test(test_past),       cmocka_unit_test(test_refused),
-	    cmocka_unit_test(test_hostile),    cmocka_unit_test(test_damage),
-	    cmocka_unit_test(test_guards),
+	    cmocka_unit_test(test_round_trip),	 cmocka_unit_test(test_editions),
+	    cmocka_unit_test(test_keep),	 cmocka_unit_test(test_marks),
+	    cmocka_unit_test(test_undo),	 cmocka_unit_test(test_undo_of_keeping),
+	    cmocka_unit_test(test_past),	 cmocka_unit_test(test_refused),
+	    cmocka_unit_test(test_hostile),	 cmocka_unit_test(test_damage),
+	    cmocka_unit_test(test_damaged_mark), cmocka_unit_test(test_guards),
 	};
 	return cmocka_run_group_tests_name("plans", tests, NULL, NULL);
 }

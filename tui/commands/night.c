@@ -1,4 +1,5 @@
 /* SPDX-License-Identifier: MIT */
+#include "tui/commands/plan.h"
 #include "tui/commands/table.h"
 
 #include "tui/diagnose.h"
@@ -30,7 +31,9 @@ static void order_open(struct order *order, struct run *r, int32_t evening_mjd)
 	if (r->options->radec) /* of a position nothing is planned, and the stored targets are not known */
 		return;
 	order->there = plan_get(r, evening_mjd, &wish, &order->night, &order->view, NULL, &e) == ST_OK;
-	if (!order->there)
+	if (order->there)
+		plan_damage_note(&order->view);
+	else
 		diagnose("plan", "%s", e.text);
 }
 
@@ -87,6 +90,11 @@ static void write_json(FILE *to, const struct run *r, const struct night_view *v
 		json_open(&j, "running_order", '[', false);
 		json_close(&j, ']');
 	}
+	/* null: there is no order to be kept or not */
+	if (order->there && (order->view.kept || order->view.n_items > 0))
+		json_bool(&j, "running_order_kept", order->view.kept);
+	else
+		json_null(&j, "running_order_kept");
 	json_close(&j, '}');
 	json_end(&j);
 }

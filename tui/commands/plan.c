@@ -69,6 +69,12 @@ void plan_unused_note(const struct options *o, const char *command)
 			 "and allotments takes part when it is worked out anew (wane plan DATE --rebuild)");
 }
 
+void plan_damage_note(const struct plan_view *v)
+{
+	if (v->damage[0])
+		diagnose("store", "%s: %s", v->run->db_path, v->damage);
+}
+
 /* What is at fault, or NULL. */
 static const char *at_odds(const struct options *o)
 {
@@ -126,6 +132,7 @@ static int mark_all(struct run *r, int32_t mjd)
 		night_view_free(&night);
 		return plan_fault(&e);
 	}
+	plan_damage_note(&view);
 	for (int i = 0; s == ST_OK && i < o->mark.n; i++) {
 		s = mark_parse(o->mark.text[i], target, sizeof target, &state, &e);
 		if (s == ST_OK)
@@ -181,6 +188,7 @@ static int write_plan(struct run *r, struct plan_view *v, enum format format, st
 	if (!v->stored)
 		diagnose("plan",
 			 "shown, not stored (--keep stores and keeps it, --save stores it as a draft)");
+	plan_kept_elsewhere_note(r, v->night->night.mjd, "plan");
 	leap_note(r, v->night->night.mjd);
 	run_night_notes(v->night);
 	return EXIT_DONE;
@@ -199,6 +207,7 @@ static int show(struct run *r, int32_t mjd, enum format format, struct out *out)
 	enum status s = plan_get(r, mjd, &wish, &night, &view, &echo, &e);
 	echo_lines(echo);
 	if (s == ST_OK) {
+		plan_damage_note(&view);
 		s = draft_there(o, &view, &e);
 		if (view.stored)
 			plan_unused_note(o, "plan");

@@ -17,6 +17,11 @@ bool plan_options_fit(const struct options *o, const char *command);
 /* Says of a stored plan, which is shown as it was stored, what was given and not used. */
 void plan_unused_note(const struct options *o, const char *command);
 
+/* Says what of a stored plan could not be read. */
+void plan_damage_note(const struct plan_view *v);
+/* Says that a plan of the night is kept for another telescope of the site, or for none, where this one has none. */
+void plan_kept_elsewhere_note(struct run *r, int32_t evening_mjd, const char *command);
+
 /* The drafts of a night. out: committed or abandoned, as by plan_compare_write. */
 int plan_list_write(struct run *r, int32_t evening_mjd, enum format format, struct out *out);
 /* The plan against the draft --compare, in words. */

@@ -14,6 +14,58 @@
 #include <stdlib.h>
 #include <string.h>
 
+/* --- kept for others --- */
+
+static const char *telescope_name(const struct telescope_list *list, int64_t id)
+{
+	for (size_t i = 0; i < list->n; i++)
+		if (list->telescope[i].id == id)
+			return list->telescope[i].name;
+	return NULL;
+}
+
+/* `for Cassegrain (--telescope Cassegrain)` */
+static void put_kept_for(const struct run *r, const struct telescope_list *removed, int64_t id, char *out,
+			 size_t n)
+{
+	const char *name = id == 0 ? "none" : telescope_name(&r->telescopes, id);
+	const size_t used = strlen(out);
+	if (!name)
+		name = telescope_name(removed, id);
+	if (!name || used >= n)
+		return;
+	snprintf(out + used, n - used, "%s%s%.120s (--telescope '%.120s')", used ? ", " : "",
+		 id == 0 ? "" : "for ", id == 0 ? "without a telescope" : name, name);
+}
+
+void plan_kept_elsewhere_note(struct run *r, int32_t evening_mjd, const char *command)
+{
+	struct plan_list list = {.n = 0};
+	struct telescope_list removed = {.n = 0};
+	struct err e;
+	char kept[600] = "";
+	bool here = false;
+	if (!r->store || r->site.id == 0 ||
+	    plans_list(r->store, r->site.id, evening_mjd, evening_mjd, &list, &e) != ST_OK)
+		return;
+	if (telescopes_load_removed(r->store, &removed, &e) != ST_OK)
+		removed = (struct telescope_list){.n = 0};
+	for (size_t i = 0; i < list.n; i++) {
+		const struct plan_row *p = &list.plan[i];
+		if (p->kept && p->telescope_id == r->telescope.id)
+			here = true;
+		else if (p->kept)
+			put_kept_for(r, &removed, p->telescope_id, kept, sizeof kept);
+	}
+	if (!here && kept[0] && r->has_telescope)
+		diagnose(command, "no plan of this night is kept for %.120s; one is kept %s",
+			 r->telescope.name, kept);
+	else if (!here && kept[0])
+		diagnose(command, "no plan of this night is kept without a telescope; one is kept %s", kept);
+	telescope_list_free(&removed);
+	plan_list_free(&list);
+}
+
 /* --- list --- */
 
 static void list_text(FILE *to, const struct run *r, int32_t mjd, const struct plan_list *list)

@@ -157,6 +157,7 @@ static int write_view(struct run *r, const struct plan_view *v, enum format form
 		if (!v->kept)
 			diagnose("sheet", "no plan of this night is kept: this is %s (wane plan DATE --keep)",
 				 v->stored ? "a draft" : "a proposal");
+		plan_kept_elsewhere_note(r, v->night->night.mjd, "sheet");
 		leap_note(r, v->night->night.mjd);
 	}
 	since_free(&since);
@@ -179,6 +180,7 @@ static int sheet_write(struct run *r, int32_t evening_mjd)
 		return EXIT_USAGE;
 	}
 	if (plan_get(r, evening_mjd, &wish, &night, &view, NULL, &e) == ST_OK) {
+		plan_damage_note(&view);
 		code = write_view(r, &view, format);
 		plan_view_free(&view);
 	} else {
