@@ -178,11 +178,7 @@ static enum status change_goal(struct run *r, enum verb verb, const struct goal_
 	if (s != ST_OK)
 		return s;
 	s = verb == VERB_SET ? goal_set(r->store, g, e) : goal_remove(r->store, g->target_id, g->band, e);
-	if (s == ST_OK)
-		s = store_commit(r->store, e);
-	if (s != ST_OK)
-		store_rollback(r->store);
-	return s;
+	return store_end(r->store, s, e);
 }
 
 /* What the words and options say; whose it is comes later. */

@@ -104,12 +104,9 @@ static enum status adopt_model(struct run *r, const struct fit_view *v, enum mod
 	if (s != ST_OK)
 		return s;
 	s = fit_adopt(r, p, v, fit, scale, &version, e);
-	if (s == ST_OK)
-		s = store_commit(r->store, e);
-	if (s != ST_OK) {
-		store_rollback(r->store);
+	s = store_end(r->store, s, e);
+	if (s != ST_OK)
 		return s;
-	}
 	diagnose("refit", "version %d is the current ephemeris now: %s, errors %s (wane undo takes it back)",
 		 version, r->options->adopt_fit, scale > 1.0 ? "scaled by the scatter" : "formal");
 	return ST_OK;

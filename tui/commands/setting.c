@@ -96,11 +96,7 @@ static enum status put_in_store(struct run *r, const char *verb, int key, const 
 	if (s != ST_OK)
 		return s;
 	s = stored_setting_put(r->store, stored_key_rules[key].name, text, e);
-	if (s == ST_OK)
-		s = store_commit(r->store, e);
-	if (s != ST_OK)
-		store_rollback(r->store);
-	return s;
+	return store_end(r->store, s, e);
 }
 
 static int change_setting(const struct env *env, const struct options *o, int key, const char *text)

@@ -180,11 +180,7 @@ static enum status put_in_store(struct run *r, struct site *site, const struct s
 	s = site_put(r->store, site, add, e);
 	if (s == ST_OK)
 		s = put_keys(r, site, light, e);
-	if (s == ST_OK)
-		s = store_commit(r->store, e);
-	if (s != ST_OK)
-		store_rollback(r->store);
-	return s;
+	return store_end(r->store, s, e);
 }
 
 /* --mask: *mask is the room for what is read. */
@@ -306,12 +302,7 @@ static int remove_site(struct run *r)
 		s = site_light_remove(r->store, r->sites.site[index].id, &e);
 	if (s == ST_OK)
 		s = site_remove(r->store, name, &e);
-	if (s == ST_OK)
-		s = store_commit(r->store, &e);
-	if (s == ST_OK)
-		return EXIT_DONE;
-	store_rollback(r->store);
-	return diagnose_err("site", &e, EXIT_UNMET);
+	return store_end(r->store, s, &e) == ST_OK ? EXIT_DONE : diagnose_err("site", &e, EXIT_UNMET);
 }
 
 static int show_or_remove(const struct env *env, const struct options *o, bool remove)
