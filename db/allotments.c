@@ -1,11 +1,12 @@
 /* SPDX-License-Identifier: MIT */
 #include "db/allotments.h"
 
+#include "db/row_list.h"
 #include "db/telescope_rows.h"
-#include "db/text_block.h"
 #include "db/text_clean.h"
 #include "ephem/timescale.h"
 
+#include <stddef.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
@@ -33,71 +34,40 @@ void night_date_text(int64_t mjd, char out[NIGHT_TEXT_MAX])
 
 /* --- reading --- */
 
-struct loading {
-	struct allotment_list *out;
-	size_t (*place)[2]; /* of span and note, while the block still moves */
-	size_t room;
-	struct text_block texts;
-};
-
-static bool make_room(struct loading *l)
+static void fill(void *element, const struct cell *cell)
 {
-	if (l->out->n < l->room)
-		return true;
-	size_t room = l->room ? 2 * l->room : 32;
-	struct allotment *list = realloc(l->out->allotment, room * sizeof *list);
-	if (list)
-		l->out->allotment = list;
-	void *place = realloc(l->place, room * sizeof *l->place);
-	if (place)
-		l->place = place;
-	if (!list || !place)
-		return false;
-	l->room = room;
-	return true;
-}
-
-static enum status keep(struct loading *l, const struct cell *cell, struct err *e)
-{
-	struct allotment_list *out = l->out;
-	if (!make_room(l) || !text_block_add(&l->texts, cell[ALLOTMENT_SPAN].u.text, &l->place[out->n][0]) ||
-	    !text_block_add(&l->texts, cell[ALLOTMENT_NOTE].u.text, &l->place[out->n][1]))
-		return err_set(e, ST_MEMORY, "database: no memory");
-	out->allotment[out->n++] = (struct allotment){
+	struct allotment *a = element;
+	*a = (struct allotment){
 	    .id = cell[0].u.i,
 	    .site_id = cell[ALLOTMENT_SITE].u.i,
 	    .telescope_id = id_of_cell(&cell[ALLOTMENT_TELESCOPE]),
 	    .first_mjd = (int32_t)cell[ALLOTMENT_FIRST].u.i,
 	    .last_mjd = (int32_t)cell[ALLOTMENT_LAST].u.i,
+	    .span = cell[ALLOTMENT_SPAN].u.text,
+	    .note = cell[ALLOTMENT_NOTE].u.text,
 	};
-	return ST_OK;
 }
+
+static const struct row_kind kind = {
+    .table = &allotment_rows,
+    .load = SQL_ALLOTMENT_LOAD,
+    .word = "allotment",
+    .removed_at = ALLOTMENT_REMOVED,
+    .size = sizeof(struct allotment),
+    .fill = fill,
+    .n_texts = 2,
+    .text_at = {offsetof(struct allotment, span), offsetof(struct allotment, note)},
+};
 
 enum status allotments_load(struct store *s, struct allotment_list *out, struct err *e)
 {
-	struct cell cell[ROW_CELLS_MAX];
-	struct loading l = {.out = out};
-	bool row = false;
-	enum status st = ST_OK;
+	struct row_list l;
 	*out = (struct allotment_list){0};
-	while (st == ST_OK && (st = sql_step(s, SQL_ALLOTMENT_LOAD, &row, e)) == ST_OK && row) {
-		bool sound = row_read(s, SQL_ALLOTMENT_LOAD, 0, &allotment_rows, cell);
-		if (sound && !cell[ALLOTMENT_REMOVED].u.i)
-			st = keep(&l, cell, e);
-		else if (!sound && out->n_bad++ == 0)
-			snprintf(out->bad, sizeof out->bad,
-				 "the checksum of allotment %lld is wrong: left out; see `wane check`",
-				 (long long)sqlite3_column_int64(s->stmt[SQL_ALLOTMENT_LOAD], 0));
-	}
-	sql_reset(s, SQL_ALLOTMENT_LOAD);
-	out->block = l.texts.text;
-	for (size_t k = 0; st == ST_OK && k < out->n; k++) {
-		out->allotment[k].span = out->block + l.place[k][0];
-		out->allotment[k].note = out->block + l.place[k][1];
-	}
-	free(l.place);
-	if (st != ST_OK)
-		allotment_list_free(out);
+	enum status st = row_list_load(s, &kind, false, &l, out->bad, sizeof out->bad, e);
+	out->n = l.n;
+	out->allotment = l.row;
+	out->block = l.block;
+	out->n_bad = l.n_bad;
 	return st;
 }
 
@@ -158,15 +128,7 @@ enum status allotment_add(struct store *s, const struct allotment *a, int64_t *i
 enum status allotment_remove(struct store *s, int64_t id, struct err *e)
 {
 	struct row old;
-	struct cell cell[ROW_CELLS_MAX];
 	enum status st = row_find(s, SQL_ALLOTMENT_BY_ID, cell_int(id), &allotment_rows, &old, e);
-	if (st == ST_ABSENT || (st == ST_OK && old.cell[ALLOTMENT_REMOVED].u.i)) {
-		st = err_set(e, ST_ABSENT, "there is no allotment %lld", (long long)id);
-	} else if (st == ST_OK) {
-		memcpy(cell, old.cell, sizeof cell);
-		cell[ALLOTMENT_REMOVED] = cell_int(1);
-		st = row_replace(s, &allotment_rows, &old, cell, e);
-	}
-	row_free(&old);
-	return st;
+	st = row_remove(s, &allotment_rows, ALLOTMENT_REMOVED, st, &old, e);
+	return st == ST_ABSENT ? err_set(e, ST_ABSENT, "there is no allotment %lld", (long long)id) : st;
 }

@@ -2,12 +2,13 @@
 #include "db/field_stars.h"
 
 #include "db/goal_rows.h"
+#include "db/row_list.h"
 #include "db/target_rows.h"
 #include "db/telescope_rows.h"
-#include "db/text_block.h"
 #include "db/text_clean.h"
 
 #include <math.h>
+#include <stddef.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
@@ -23,7 +24,7 @@ const struct table field_star_rows = {
     .keep_old = SQL_FIELD_STAR_KEEP_OLD,
 };
 const char *const field_star_words[STAR_ROLE_COUNT] = {"comparison", "guide", "neighbour"};
-enum { STAR_NAME_CHARS_MAX = 80, STAR_TEXTS = 3 };
+enum { STAR_NAME_CHARS_MAX = 80 };
 
 static enum field_star_role role_of(const char *word)
 {
@@ -41,75 +42,44 @@ int field_stars_max(const char *role)
 
 /* --- reading --- */
 
-struct loading {
-	struct field_star_list *out;
-	size_t (*place)[STAR_TEXTS]; /* of name, band and note, while the block still moves */
-	size_t room;
-	struct text_block texts;
-};
-
-static bool make_room(struct loading *l)
+static void fill(void *element, const struct cell *cell)
 {
-	if (l->out->n < l->room)
-		return true;
-	size_t room = l->room ? 2 * l->room : 64;
-	struct field_star *list = realloc(l->out->star, room * sizeof *list);
-	if (list)
-		l->out->star = list;
-	void *place = realloc(l->place, room * sizeof *l->place);
-	if (place)
-		l->place = place;
-	if (!list || !place)
-		return false;
-	l->room = room;
-	return true;
-}
-
-static enum status keep(struct loading *l, const struct cell *cell, struct err *e)
-{
-	struct field_star_list *out = l->out;
-	if (!make_room(l) || !text_block_add(&l->texts, cell[FIELD_STAR_NAME].u.text, &l->place[out->n][0]) ||
-	    !text_block_add(&l->texts, cell[FIELD_STAR_BAND].u.text, &l->place[out->n][1]) ||
-	    !text_block_add(&l->texts, cell[FIELD_STAR_NOTE].u.text, &l->place[out->n][2]))
-		return err_set(e, ST_MEMORY, "database: no memory");
-	out->star[out->n++] = (struct field_star){
+	struct field_star *f = element;
+	*f = (struct field_star){
 	    .id = cell[0].u.i,
 	    .target_id = cell[FIELD_STAR_TARGET].u.i,
 	    .role = role_of(cell[FIELD_STAR_ROLE].u.text),
+	    .name = cell[FIELD_STAR_NAME].u.text,
 	    .ra_deg = cell_number(&cell[FIELD_STAR_RA]),
 	    .dec_deg = cell_number(&cell[FIELD_STAR_DEC]),
 	    .sep_arcsec = cell_number(&cell[FIELD_STAR_SEP]),
 	    .mag = cell_number(&cell[FIELD_STAR_MAG]),
+	    .band = cell[FIELD_STAR_BAND].u.text,
+	    .note = cell[FIELD_STAR_NOTE].u.text,
 	};
-	return ST_OK;
 }
+
+static const struct row_kind kind = {
+    .table = &field_star_rows,
+    .load = SQL_FIELD_STAR_LOAD,
+    .word = "star",
+    .removed_at = FIELD_STAR_REMOVED,
+    .size = sizeof(struct field_star),
+    .fill = fill,
+    .n_texts = 3,
+    .text_at = {offsetof(struct field_star, name), offsetof(struct field_star, band),
+		offsetof(struct field_star, note)},
+};
 
 enum status field_stars_load(struct store *s, struct field_star_list *out, struct err *e)
 {
-	struct cell cell[ROW_CELLS_MAX];
-	struct loading l = {.out = out};
-	bool row = false;
-	enum status st = ST_OK;
+	struct row_list l;
 	*out = (struct field_star_list){0};
-	while (st == ST_OK && (st = sql_step(s, SQL_FIELD_STAR_LOAD, &row, e)) == ST_OK && row) {
-		bool sound = row_read(s, SQL_FIELD_STAR_LOAD, 0, &field_star_rows, cell);
-		if (sound && !cell[FIELD_STAR_REMOVED].u.i)
-			st = keep(&l, cell, e);
-		else if (!sound && out->n_bad++ == 0)
-			snprintf(out->bad, sizeof out->bad,
-				 "the checksum of star %lld is wrong: left out; see `wane check`",
-				 (long long)sqlite3_column_int64(s->stmt[SQL_FIELD_STAR_LOAD], 0));
-	}
-	sql_reset(s, SQL_FIELD_STAR_LOAD);
-	out->block = l.texts.text;
-	for (size_t k = 0; st == ST_OK && k < out->n; k++) {
-		out->star[k].name = out->block + l.place[k][0];
-		out->star[k].band = out->block + l.place[k][1];
-		out->star[k].note = out->block + l.place[k][2];
-	}
-	free(l.place);
-	if (st != ST_OK)
-		field_star_list_free(out);
+	enum status st = row_list_load(s, &kind, false, &l, out->bad, sizeof out->bad, e);
+	out->n = l.n;
+	out->star = l.row;
+	out->block = l.block;
+	out->n_bad = l.n_bad;
 	return st;
 }
 
@@ -122,18 +92,8 @@ void field_star_list_free(struct field_star_list *list)
 
 const struct field_star *field_stars_of(const struct field_star_list *list, int64_t target_id, size_t *n)
 {
-	size_t from = 0, to = list->n;
-	*n = 0;
-	while (from < to) {
-		size_t middle = from + (to - from) / 2;
-		if (list->star[middle].target_id < target_id)
-			from = middle + 1;
-		else
-			to = middle;
-	}
-	while (from + *n < list->n && list->star[from + *n].target_id == target_id)
-		(*n)++;
-	return *n > 0 ? &list->star[from] : NULL;
+	return row_list_of(list->star, list->n, sizeof *list->star, offsetof(struct field_star, target_id),
+			   target_id, n);
 }
 
 /* --- writing --- */
@@ -243,15 +203,7 @@ enum status field_star_add(struct store *s, const struct field_star *f, int64_t 
 enum status field_star_remove(struct store *s, int64_t id, struct err *e)
 {
 	struct row old;
-	struct cell cell[ROW_CELLS_MAX];
 	enum status st = row_find(s, SQL_FIELD_STAR_BY_ID, cell_int(id), &field_star_rows, &old, e);
-	if (st == ST_ABSENT || (st == ST_OK && old.cell[FIELD_STAR_REMOVED].u.i)) {
-		st = err_set(e, ST_ABSENT, "there is no star %lld", (long long)id);
-	} else if (st == ST_OK) {
-		memcpy(cell, old.cell, sizeof cell);
-		cell[FIELD_STAR_REMOVED] = cell_int(1);
-		st = row_replace(s, &field_star_rows, &old, cell, e);
-	}
-	row_free(&old);
-	return st;
+	st = row_remove(s, &field_star_rows, FIELD_STAR_REMOVED, st, &old, e);
+	return st == ST_ABSENT ? err_set(e, ST_ABSENT, "there is no star %lld", (long long)id) : st;
 }

@@ -2,11 +2,12 @@
 #include "db/goals.h"
 
 #include "db/goal_rows.h"
+#include "db/row_list.h"
 #include "db/target_rows.h"
 #include "db/telescope_rows.h"
-#include "db/text_block.h"
 #include "db/text_clean.h"
 
+#include <stddef.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
@@ -50,75 +51,42 @@ enum status band_check(const char *text, const char **name, struct err *e)
 
 /* --- reading --- */
 
-enum { GOAL_TEXTS = 3 };
-
-struct loading {
-	struct goal_list *out;
-	size_t (*place)[GOAL_TEXTS]; /* of band, note and since, while the block still moves */
-	size_t room;
-	struct text_block texts;
-};
-
-static bool make_room(struct loading *l)
+static void fill(void *element, const struct cell *cell)
 {
-	if (l->out->n < l->room)
-		return true;
-	size_t room = l->room ? 2 * l->room : 64;
-	struct goal_row *list = realloc(l->out->goal, room * sizeof *list);
-	if (list)
-		l->out->goal = list;
-	void *place = realloc(l->place, room * sizeof *l->place);
-	if (place)
-		l->place = place;
-	if (!list || !place)
-		return false;
-	l->room = room;
-	return true;
-}
-
-static enum status keep(struct loading *l, const struct cell *cell, struct err *e)
-{
-	struct goal_list *out = l->out;
-	if (!make_room(l) || !text_block_add(&l->texts, cell[GOAL_BAND].u.text, &l->place[out->n][0]) ||
-	    !text_block_add(&l->texts, cell[GOAL_NOTE].u.text, &l->place[out->n][1]) ||
-	    !text_block_add(&l->texts, cell[GOAL_SINCE].u.text, &l->place[out->n][2]))
-		return err_set(e, ST_MEMORY, "database: no memory");
-	out->goal[out->n++] = (struct goal_row){
+	struct goal_row *g = element;
+	*g = (struct goal_row){
 	    .id = cell[0].u.i,
 	    .target_id = cell[GOAL_TARGET].u.i,
 	    .whole = (int)cell[GOAL_WHOLE].u.i,
 	    .limb = (int)cell[GOAL_LIMB].u.i,
+	    .band = cell[GOAL_BAND].u.text,
 	    .until_mjd = cell[GOAL_UNTIL].type == CELL_INT ? (int32_t)cell[GOAL_UNTIL].u.i : 0,
+	    .note = cell[GOAL_NOTE].u.text,
+	    .since_utc = cell[GOAL_SINCE].u.text,
 	};
-	return ST_OK;
 }
+
+static const struct row_kind kind = {
+    .table = &goal_rows,
+    .load = SQL_GOAL_LOAD,
+    .word = "goal",
+    .removed_at = GOAL_REMOVED,
+    .size = sizeof(struct goal_row),
+    .fill = fill,
+    .n_texts = 3,
+    .text_at = {offsetof(struct goal_row, band), offsetof(struct goal_row, note),
+		offsetof(struct goal_row, since_utc)},
+};
 
 enum status goals_load(struct store *s, struct goal_list *out, struct err *e)
 {
-	struct cell cell[ROW_CELLS_MAX];
-	struct loading l = {.out = out};
-	bool row = false;
-	enum status st = ST_OK;
+	struct row_list l;
 	*out = (struct goal_list){0};
-	while (st == ST_OK && (st = sql_step(s, SQL_GOAL_LOAD, &row, e)) == ST_OK && row) {
-		bool sound = row_read(s, SQL_GOAL_LOAD, 0, &goal_rows, cell);
-		if (sound && !cell[GOAL_REMOVED].u.i)
-			st = keep(&l, cell, e);
-		else if (!sound && out->n_bad++ == 0)
-			snprintf(out->bad, sizeof out->bad,
-				 "the checksum of goal %lld is wrong: left out; see `wane check`",
-				 (long long)sqlite3_column_int64(s->stmt[SQL_GOAL_LOAD], 0));
-	}
-	sql_reset(s, SQL_GOAL_LOAD);
-	out->block = l.texts.text;
-	for (size_t k = 0; st == ST_OK && k < out->n; k++) {
-		out->goal[k].band = out->block + l.place[k][0];
-		out->goal[k].note = out->block + l.place[k][1];
-		out->goal[k].since_utc = out->block + l.place[k][2];
-	}
-	free(l.place);
-	if (st != ST_OK)
-		goal_list_free(out);
+	enum status st = row_list_load(s, &kind, false, &l, out->bad, sizeof out->bad, e);
+	out->n = l.n;
+	out->goal = l.row;
+	out->block = l.block;
+	out->n_bad = l.n_bad;
 	return st;
 }
 
@@ -131,18 +99,8 @@ void goal_list_free(struct goal_list *list)
 
 const struct goal_row *goals_of(const struct goal_list *list, int64_t target_id, size_t *n)
 {
-	size_t from = 0, to = list->n;
-	*n = 0;
-	while (from < to) {
-		size_t middle = from + (to - from) / 2;
-		if (list->goal[middle].target_id < target_id)
-			from = middle + 1;
-		else
-			to = middle;
-	}
-	while (from + *n < list->n && list->goal[from + *n].target_id == target_id)
-		(*n)++;
-	return *n > 0 ? &list->goal[from] : NULL;
+	return row_list_of(list->goal, list->n, sizeof *list->goal, offsetof(struct goal_row, target_id),
+			   target_id, n);
 }
 
 /* --- writing --- */
@@ -188,38 +146,21 @@ enum status goal_set(struct store *s, const struct goal_row *g, struct err *e)
 	    [GOAL_SINCE] = cell_text(s->utc),	    [GOAL_REMOVED] = cell_int(0),
 	};
 	st = find_goal(s, g->target_id, band, &old, e);
-	if (st == ST_ABSENT) {
-		int64_t id = 0;
-		st = row_next_id(s, &goal_rows, &id, e);
-		cell[0] = cell_int(id);
-		if (st == ST_OK)
-			st = row_add(s, &goal_rows, cell, e);
-	} else if (st == ST_OK) {
-		if (!old.cell[GOAL_REMOVED].u.i)
-			cell[GOAL_SINCE] = old.cell[GOAL_SINCE];
-		if (!cells_same(&cell[1], &old.cell[1], GOAL_REMOVED))
-			st = row_replace(s, &goal_rows, &old, cell, e);
-	}
-	row_free(&old);
-	return st;
+	if (st == ST_OK && !old.cell[GOAL_REMOVED].u.i)
+		cell[GOAL_SINCE] = old.cell[GOAL_SINCE];
+	return row_put(s, &goal_rows, GOAL_REMOVED, st, &old, cell, e);
 }
 
 enum status goal_remove(struct store *s, int64_t target_id, const char *band, struct err *e)
 {
 	struct row old;
-	struct cell cell[ROW_CELLS_MAX];
 	const char *name;
 	enum status st = band_check(band, &name, e);
 	if (st != ST_OK)
 		return st;
 	st = find_goal(s, target_id, name, &old, e);
-	if (st == ST_ABSENT || (st == ST_OK && old.cell[GOAL_REMOVED].u.i)) {
-		st = err_set(e, ST_ABSENT, "it has no goal %s%s", *name ? "in band " : "for any band", name);
-	} else if (st == ST_OK) {
-		memcpy(cell, old.cell, sizeof cell);
-		cell[GOAL_REMOVED] = cell_int(1);
-		st = row_replace(s, &goal_rows, &old, cell, e);
-	}
-	row_free(&old);
-	return st;
+	st = row_remove(s, &goal_rows, GOAL_REMOVED, st, &old, e);
+	return st == ST_ABSENT
+		   ? err_set(e, ST_ABSENT, "it has no goal %s%s", *name ? "in band " : "for any band", name)
+		   : st;
 }

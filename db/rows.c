@@ -1,6 +1,8 @@
 /* SPDX-License-Identifier: MIT */
 #include "db/store_parts.h"
 
+#include "db/target_rows.h"
+
 #include <stdlib.h>
 #include <string.h>
 
@@ -207,5 +209,38 @@ enum status row_replace(struct store *s, const struct table *table, const struct
 	if (st == ST_OK && sqlite3_changes(s->db) != 1)
 		st = err_set(e, ST_CONFLICT, "another program changed row %lld of table %s meanwhile",
 			     (long long)cell[0].u.i, table->name);
+	return st;
+}
+
+enum status row_put(struct store *s, const struct table *table, size_t removed_at, enum status found,
+		    struct row *old, struct cell *cell, struct err *e)
+{
+	enum status st = found;
+	if (st == ST_ABSENT) {
+		int64_t id = 0;
+		st = row_next_id(s, table, &id, e);
+		cell[0] = cell_int(id);
+		if (st == ST_OK)
+			st = row_add(s, table, cell, e);
+	} else if (st == ST_OK && !cells_same(&cell[1], &old->cell[1], removed_at)) {
+		st = row_replace(s, table, old, cell, e);
+	}
+	row_free(old);
+	return st;
+}
+
+enum status row_remove(struct store *s, const struct table *table, size_t removed_at, enum status found,
+		       struct row *old, struct err *e)
+{
+	struct cell cell[ROW_CELLS_MAX];
+	enum status st = found;
+	if (st == ST_OK && old->cell[removed_at].u.i) {
+		st = ST_ABSENT;
+	} else if (st == ST_OK) {
+		memcpy(cell, old->cell, sizeof cell);
+		cell[removed_at] = cell_int(1);
+		st = row_replace(s, table, old, cell, e);
+	}
+	row_free(old);
 	return st;
 }

@@ -187,34 +187,18 @@ enum status site_put(struct store *s, const struct site *site, bool add, struct 
 	    [SITE_MASK] = cell_text(mask),
 	    [SITE_REMOVED] = cell_int(0),
 	};
-	if (st == ST_ABSENT) {
-		int64_t id = 0;
-		st = row_next_id(s, &site_table, &id, e);
-		cell[0] = cell_int(id);
-		if (st == ST_OK)
-			st = row_add(s, &site_table, cell, e);
-	} else if (st == ST_OK &&
-		   !cells_same(&cell[SITE_NAME], &old.cell[SITE_NAME], SITE_REMOVED - SITE_NAME + 1)) {
-		st = row_replace(s, &site_table, &old, cell, e);
-	}
-	row_free(&old);
-	return st;
+	return row_put(s, &site_table, SITE_REMOVED, st, &old, cell, e);
 }
 
 enum status site_remove(struct store *s, const char *name, struct err *e)
 {
 	struct row old;
-	struct cell cell[ROW_CELLS_MAX];
 	enum status st = find_site(s, name, &old, e);
-	if (st == ST_ABSENT || (st == ST_OK && old.cell[SITE_REMOVED].u.i)) {
+	st = row_remove(s, &site_table, SITE_REMOVED, st, &old, e);
+	if (st == ST_ABSENT) {
 		char clean[128];
 		(void)text_clean(name, clean, sizeof clean);
 		st = err_set(e, ST_ABSENT, "no site is called \"%s\"", clean);
-	} else if (st == ST_OK) {
-		memcpy(cell, old.cell, sizeof cell);
-		cell[SITE_REMOVED] = cell_int(1);
-		st = row_replace(s, &site_table, &old, cell, e);
 	}
-	row_free(&old);
 	return st;
 }

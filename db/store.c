@@ -155,6 +155,15 @@ void store_rollback(struct store *s)
 	s->change_id = 0;
 }
 
+enum status store_end(struct store *s, enum status st, struct err *e)
+{
+	if (st == ST_OK)
+		st = store_commit(s, e);
+	if (st != ST_OK)
+		store_rollback(s);
+	return st;
+}
+
 enum status store_data_version(struct store *s, long *version, struct err *e)
 {
 	int64_t number = 0;

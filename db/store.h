@@ -38,6 +38,8 @@ MUST_USE enum status store_begin(struct store *s, const struct change *c, struct
 MUST_USE enum status store_commit(struct store *s, struct err *e);
 /* Undoes everything since begin. Never fails: uses a statement prepared at open. */
 void store_rollback(struct store *s);
+/* Ends a change set whose steps came to `st`: commits after ST_OK, else undoes it and hands st on. */
+MUST_USE enum status store_end(struct store *s, enum status st, struct err *e);
 
 /* Checks everything: SQLite's integrity and foreign keys, row checksums, schema text, ephemeris pointers. Each finding is one call
  * of `say`. *faults counts what makes the store unsound; doubts about data are said but not counted. */

@@ -72,6 +72,15 @@ MUST_USE enum status row_add(struct store *s, const struct table *table, struct 
  * the change's id. */
 MUST_USE enum status row_replace(struct store *s, const struct table *table, const struct row *old,
 				 struct cell *cell, struct err *e);
+/* What follows a row_find, which gave `found` and old; old is released. A status but ST_OK and ST_ABSENT is
+ * handed on. */
+/* Adds cell as a new row where none was found; else replaces old where a cell from 1 to removed_at differs.
+ */
+MUST_USE enum status row_put(struct store *s, const struct table *table, size_t removed_at, enum status found,
+			     struct row *old, struct cell *cell, struct err *e);
+/* Marks old as removed. ST_ABSENT (no message) when there is none or it is removed already. */
+MUST_USE enum status row_remove(struct store *s, const struct table *table, size_t removed_at,
+				enum status found, struct row *old, struct err *e);
 
 /* ST_STORE outside a change set. Gives the change set its row when it has none yet. */
 MUST_USE enum status change_needed(struct store *s, struct err *e);

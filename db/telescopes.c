@@ -1,13 +1,14 @@
 /* SPDX-License-Identifier: MIT */
 #include "db/telescopes.h"
 
+#include "db/row_list.h"
 #include "db/site_rows.h"
 #include "db/target_rows.h"
 #include "db/telescope_rows.h"
-#include "db/text_block.h"
 #include "db/text_clean.h"
 
 #include <math.h>
+#include <stddef.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
@@ -91,72 +92,35 @@ static struct telescope telescope_of_cells(const struct cell *cell)
 
 /* --- reading --- */
 
-enum { TELESCOPE_TEXTS = 4 };
-
-static const char **text_member(struct telescope *t, int i)
+static void fill(void *element, const struct cell *cell)
 {
-	const char **const members[TELESCOPE_TEXTS] = {&t->name, &t->band, &t->blocks, &t->note};
-	return members[i];
-}
-
-/* Places of the texts stand beside the list while the block still moves. */
-struct loading {
-	struct telescope_list *out;
-	size_t (*place)[TELESCOPE_TEXTS];
-	struct text_block texts;
-};
-
-static enum status keep(struct loading *l, const struct cell *cell, struct err *e)
-{
-	struct telescope_list *out = l->out;
-	struct telescope t = telescope_of_cells(cell);
-	struct telescope *list = realloc(out->telescope, (out->n + 1) * sizeof *list);
-	if (list)
-		out->telescope = list;
-	void *place = realloc(l->place, (out->n + 1) * sizeof *l->place);
-	if (place)
-		l->place = place;
-	bool room = list && place;
-	for (int i = 0; room && i < TELESCOPE_TEXTS; i++)
-		room = text_block_add(&l->texts, *text_member(&t, i), &l->place[out->n][i]);
-	if (!room)
-		return err_set(e, ST_MEMORY, "database: no memory");
-	list[out->n++] = t;
-	return ST_OK;
+	struct telescope *t = element;
+	*t = telescope_of_cells(cell);
 }
 
 /* A telescope that may be wrong would give wrong limits: it is named and left out. */
-static void note_bad(struct telescope_list *out, const struct cell *name)
-{
-	char clean[96];
-	if (out->n_bad++ > 0)
-		return;
-	(void)text_clean(name->type == CELL_TEXT ? name->u.text : "", clean, sizeof clean);
-	snprintf(out->bad, sizeof out->bad,
-		 "the checksum of telescope %s is wrong: left out; see `wane check`", clean);
-}
+static const struct row_kind kind = {
+    .table = &telescope_rows,
+    .load = SQL_TELESCOPE_LOAD,
+    .word = "telescope",
+    .removed_at = TELESCOPE_REMOVED,
+    .name_at = TELESCOPE_NAME,
+    .size = sizeof(struct telescope),
+    .fill = fill,
+    .n_texts = 4,
+    .text_at = {offsetof(struct telescope, name), offsetof(struct telescope, band),
+		offsetof(struct telescope, blocks), offsetof(struct telescope, note)},
+};
 
 static enum status load(struct store *s, bool removed, struct telescope_list *out, struct err *e)
 {
-	struct cell cell[ROW_CELLS_MAX];
-	struct loading l = {.out = out};
-	bool row = false;
-	enum status st = ST_OK;
+	struct row_list l;
 	*out = (struct telescope_list){0};
-	while (st == ST_OK && (st = sql_step(s, SQL_TELESCOPE_LOAD, &row, e)) == ST_OK && row) {
-		if (!row_read(s, SQL_TELESCOPE_LOAD, 0, &telescope_rows, cell))
-			note_bad(out, &cell[TELESCOPE_NAME]);
-		else if ((cell[TELESCOPE_REMOVED].u.i != 0) == removed)
-			st = keep(&l, cell, e);
-	}
-	sql_reset(s, SQL_TELESCOPE_LOAD);
-	out->block = l.texts.text;
-	for (size_t k = 0; st == ST_OK && k < out->n; k++)
-		for (int i = 0; i < TELESCOPE_TEXTS; i++)
-			*text_member(&out->telescope[k], i) = out->block + l.place[k][i];
-	free(l.place);
-	if (st != ST_OK)
-		telescope_list_free(out);
+	enum status st = row_list_load(s, &kind, removed, &l, out->bad, sizeof out->bad, e);
+	out->n = l.n;
+	out->telescope = l.row;
+	out->block = l.block;
+	out->n_bad = l.n_bad;
 	return st;
 }
 
@@ -258,34 +222,18 @@ enum status telescope_put(struct store *s, const struct telescope *t, bool add, 
 	    [TELESCOPE_REMOVED] = cell_int(0),
 	};
 	cells_from_telescope(t, &cell[TELESCOPE_FIELDS]);
-	if (st == ST_ABSENT) {
-		int64_t id = 0;
-		st = row_next_id(s, &telescope_rows, &id, e);
-		cell[0] = cell_int(id);
-		if (st == ST_OK)
-			st = row_add(s, &telescope_rows, cell, e);
-	} else if (st == ST_OK && !cells_same(&cell[TELESCOPE_NAME], &old.cell[TELESCOPE_NAME],
-					      TELESCOPE_REMOVED - TELESCOPE_NAME + 1)) {
-		st = row_replace(s, &telescope_rows, &old, cell, e);
-	}
-	row_free(&old);
-	return st;
+	return row_put(s, &telescope_rows, TELESCOPE_REMOVED, st, &old, cell, e);
 }
 
 enum status telescope_remove(struct store *s, int64_t site_id, const char *name, struct err *e)
 {
 	struct row old;
-	struct cell cell[ROW_CELLS_MAX];
 	enum status st = find_telescope(s, site_id, name, &old, e);
-	if (st == ST_ABSENT || (st == ST_OK && old.cell[TELESCOPE_REMOVED].u.i)) {
+	st = row_remove(s, &telescope_rows, TELESCOPE_REMOVED, st, &old, e);
+	if (st == ST_ABSENT) {
 		char clean[128];
 		(void)text_clean(name, clean, sizeof clean);
 		st = err_set(e, ST_ABSENT, "no telescope of that site is called \"%s\"", clean);
-	} else if (st == ST_OK) {
-		memcpy(cell, old.cell, sizeof cell);
-		cell[TELESCOPE_REMOVED] = cell_int(1);
-		st = row_replace(s, &telescope_rows, &old, cell, e);
 	}
-	row_free(&old);
 	return st;
 }

@@ -30,10 +30,7 @@ enum status midtime_mark(struct run *run, int64_t target_id, long epoch, enum ev
 	s = store_begin(store, &change, e);
 	if (s == ST_OK) {
 		s = midtime_use(store, target_id, epoch, kind, use, &n, e);
-		if (s == ST_OK)
-			s = store_commit(store, e);
-		if (s != ST_OK)
-			store_rollback(store);
+		s = store_end(store, s, e);
 	}
 	run_write_close(run, store);
 	if (s == ST_OK)

@@ -6,16 +6,7 @@ enum status plan_edition(const struct plan_view *of, int edition, struct plan_vi
 {
 	const struct run *r = of->run;
 	struct plan_row row;
-	*out = (struct plan_view){.run = r,
-				  .night = of->night,
-				  .telescope = "",
-				  .draft = "",
-				  .stored_utc = "",
-				  .who = "",
-				  .limits = "",
-				  .leap_date = "",
-				  .revised_utc = "",
-				  .rules = of->rules};
+	*out = plan_empty(r, of->night, &of->rules);
 	if (!r->store || !of->stored)
 		return err_set(e, ST_ABSENT, "no stored plan of this night, so none of its editions (got %d)",
 			       edition);

@@ -51,17 +51,8 @@ static enum status newest_change(struct plan_view *v, struct err *e)
 
 static void head(struct plan_view *v, struct run *r, const struct night_view *night)
 {
-	*v = (struct plan_view){.run = r,
-				.night = night,
-				.telescope = "",
-				.draft = "",
-				.stored_utc = "",
-				.who = "",
-				.limits = "",
-				.leap_date = "",
-				.revised_utc = "",
-				.damage = "",
-				.rules = run_plan_rules(r)};
+	const struct plan_rules rules = run_plan_rules(r);
+	*v = plan_empty(r, night, &rules);
 	v->telescope = plan_copy(v, r->telescope.name);
 }
 

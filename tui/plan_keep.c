@@ -265,9 +265,5 @@ enum status plan_mark_item(struct run *r, const struct plan_view *v, const char 
 		return s;
 	s = plan_mark(r->store, v->plan_id, item->key, mark ? plan_state_words[state] : "",
 		      cause ? cause : "", note ? note : "", mark ? utc : "", e);
-	if (s == ST_OK)
-		s = store_commit(r->store, e);
-	if (s != ST_OK)
-		store_rollback(r->store);
-	return s;
+	return store_end(r->store, s, e);
 }

@@ -16,6 +16,9 @@ const char *plan_copy_n(struct plan_view *v, const char *text, size_t n);
 /* ST_MEMORY when some piece could not be had since the view began. */
 MUST_USE enum status plan_memory(const struct plan_view *v, struct err *e);
 
+/* A view without a plan: nothing is owned yet, every text of its head "". */
+struct plan_view plan_empty(const struct run *r, const struct night_view *night, const struct plan_rules *rules);
+
 /* The choices that a view was made with, for storing it. NULL until they are set. */
 void plan_choices_set(struct plan_view *v, const struct plan_choices *c);
 const struct plan_choices *plan_choices_of(const struct plan_view *v);

@@ -35,6 +35,22 @@ static struct arena_block *block_with_room(struct plan_arena *a, size_t bytes)
 	return b;
 }
 
+struct plan_view plan_empty(const struct run *r, const struct night_view *night,
+			    const struct plan_rules *rules)
+{
+	return (struct plan_view){.run = r,
+				  .night = night,
+				  .telescope = "",
+				  .draft = "",
+				  .stored_utc = "",
+				  .who = "",
+				  .limits = "",
+				  .leap_date = "",
+				  .revised_utc = "",
+				  .damage = "",
+				  .rules = *rules};
+}
+
 void *plan_alloc(struct plan_view *v, size_t n, size_t size)
 {
 	const size_t step = sizeof(max_align_t);

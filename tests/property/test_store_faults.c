@@ -284,30 +284,15 @@ static bool one_fault_of_undo(const char *path, long at)
 /* One change set: a telescope, time, a setting, an edition of a plan, a mark. */
 static enum status plan_night(struct store *s, int based_on, struct err *e)
 {
-	struct plan_window_row window = {
-	    .target_id = 1, .ephemeris_id = 1, .target = "Tern 1 b", .variant = "whole", .figures = "t1=x"};
 	static const char utc[] = "2026-04-23T03:00:00Z";
-	struct plan_item_row item = {.key = "one",
-				     .slew_by_utc = utc,
-				     .start_utc = utc,
-				     .latest_start_utc = "",
-				     .end_utc = utc,
-				     .n = 1,
-				     .window = &window};
-	const struct plan_row plan = {.site_id = 1,
-				      .night_mjd = 61152,
-				      .draft = "main",
-				      .limits = "",
-				      .leap_date = "",
-				      .choices = "",
-				      .left_out = "",
-				      .n = 1,
-				      .item = &item};
+	struct small_plan p;
 	const struct allotment time = {
 	    .site_id = 1, .first_mjd = 61152, .last_mjd = 61152 + based_on, .span = "whole", .note = ""};
 	struct telescope t = telescope_empty();
 	int64_t id = 0;
 	int edition;
+	small_plan_make(&p, "one", utc);
+	p.window.figures = "t1=x";
 	t.site_id = 1;
 	t.name = "Tern One";
 	t.slew_deg_s = 1 + based_on;
@@ -319,7 +304,7 @@ static enum status plan_night(struct store *s, int based_on, struct err *e)
 	if (st == ST_OK)
 		st = stored_setting_put(s, "half.1", based_on ? "dark" : "sunset", e);
 	if (st == ST_OK)
-		st = plan_store(s, &plan, true, based_on, &id, &edition, e);
+		st = plan_store(s, &p.plan, true, based_on, &id, &edition, e);
 	if (st == ST_OK)
 		st = plan_mark(s, id, "one", based_on ? "done" : "started", "", "", utc, e);
 	if (st == ST_OK)

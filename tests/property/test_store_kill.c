@@ -259,6 +259,7 @@ static void plan_on(const char *path, int acknowledge)
 	struct store *s;
 	struct err e;
 	struct plan_row have;
+	struct small_plan p;
 	static const char utc[] = "2026-04-23T03:00:00Z";
 	char note[16];
 	if (store_open(path, STORE_WRITE, &s, &e) != ST_OK || write(acknowledge, "r", 1) != 1)
@@ -268,29 +269,9 @@ static void plan_on(const char *path, int acknowledge)
 		int64_t id;
 		int edition = st == ST_OK ? have.edition : 0;
 		plan_row_free(&have);
-		struct plan_window_row window = {.target_id = 1,
-						 .ephemeris_id = 1,
-						 .target = "Tern 1 b",
-						 .variant = "whole",
-						 .figures = ""};
-		struct plan_item_row item = {.key = "one",
-					     .slew_by_utc = utc,
-					     .start_utc = utc,
-					     .latest_start_utc = "",
-					     .end_utc = utc,
-					     .n = 1,
-					     .window = &window};
-		const struct plan_row p = {.site_id = 1,
-					   .night_mjd = 61152,
-					   .draft = "main",
-					   .limits = "",
-					   .leap_date = "",
-					   .choices = "",
-					   .left_out = "",
-					   .n = 1,
-					   .item = &item};
+		small_plan_make(&p, "one", utc);
 		if (store_begin(s, &change, &e) != ST_OK ||
-		    plan_store(s, &p, true, edition, &id, &edition, &e) != ST_OK)
+		    plan_store(s, &p.plan, true, edition, &id, &edition, &e) != ST_OK)
 			_exit(3);
 		snprintf(note, sizeof note, "%d", edition);
 		if (plan_mark(s, id, "one", "started", "", note, utc, &e) != ST_OK ||

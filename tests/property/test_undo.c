@@ -175,35 +175,23 @@ static enum status store_plan(struct store *s, struct rng *r, struct err *e)
 	int edition, based_on = 0;
 	char key[16], utc[24];
 	struct plan_row have;
+	struct small_plan p;
 	snprintf(key, sizeof key, "item-%d", pick(r, 2));
 	snprintf(utc, sizeof utc, "2026-04-23T03:0%d:00Z", pick(r, 3));
-	struct plan_window_row window = {
-	    .target_id = 1 + pick(r, 2), .target = "Tern", .variant = "whole", .figures = ""};
-	struct plan_item_row item = {.key = key,
-				     .slew_by_utc = utc,
-				     .start_utc = utc,
-				     .latest_start_utc = "",
-				     .end_utc = utc,
-				     .n = 1,
-				     .window = &window};
-	const struct plan_row p = {.site_id = 1 + pick(r, 2),
-				   .telescope_id = pick(r, 4) == 0,
-				   .night_mjd = 61152,
-				   .draft = pick(r, 2) ? "main" : "cloudy",
-				   .limits = "",
-				   .leap_date = "",
-				   .choices = "",
-				   .left_out = "",
-				   .n = 1,
-				   .item = &item};
-	window.ephemeris_id = window.target_id;
-	enum status st = plan_find(s, p.site_id, p.telescope_id, p.night_mjd, p.draft, &have, e);
+	small_plan_make(&p, key, utc);
+	p.window.target_id = p.window.ephemeris_id = 1 + pick(r, 2);
+	p.window.target = "Tern";
+	p.plan.site_id = 1 + pick(r, 2);
+	p.plan.telescope_id = pick(r, 4) == 0;
+	p.plan.draft = pick(r, 2) ? "main" : "cloudy";
+	enum status st =
+	    plan_find(s, p.plan.site_id, p.plan.telescope_id, p.plan.night_mjd, p.plan.draft, &have, e);
 	if (st == ST_OK)
 		based_on = have.edition;
 	plan_row_free(&have);
 	if (st != ST_OK && st != ST_ABSENT)
 		return st;
-	return plan_store(s, &p, pick(r, 2), based_on, &id, &edition, e);
+	return plan_store(s, &p.plan, pick(r, 2), based_on, &id, &edition, e);
 }
 
 /* Edits of plans that were taken: the loops are worth nothing without. */

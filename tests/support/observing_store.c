@@ -106,3 +106,29 @@ struct digest_text digest_now(struct store *s)
 	must(store_digest(s, d.text, &e), &e);
 	return d;
 }
+
+void small_plan_make(struct small_plan *p, const char *key, const char *utc)
+{
+	p->window = (struct plan_window_row){.target_id = 1,
+					     .ephemeris_id = 1,
+					     .target = "Tern 1 b",
+					     .kind = KIND_TRANSIT,
+					     .variant = "whole",
+					     .figures = ""};
+	p->item = (struct plan_item_row){.key = key,
+					 .slew_by_utc = utc,
+					 .start_utc = utc,
+					 .latest_start_utc = "",
+					 .end_utc = utc,
+					 .n = 1,
+					 .window = &p->window};
+	p->plan = (struct plan_row){.site_id = 1,
+				    .night_mjd = 61152,
+				    .draft = "main",
+				    .limits = "",
+				    .leap_date = "",
+				    .choices = "",
+				    .left_out = "",
+				    .n = 1,
+				    .item = &p->item};
+}

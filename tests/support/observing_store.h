@@ -28,4 +28,14 @@ struct digest_text {
 };
 struct digest_text digest_now(struct store *s);
 
+/* A plan to store: of one item of one window. It points into itself, so it stays where it was made. */
+struct small_plan {
+	struct plan_window_row window;
+	struct plan_item_row item;
+	struct plan_row plan;
+};
+/* The draft main of site 1, night 61152: target 1 with its ephemeris, whole; all times of the item are `utc`.
+ * Texts are borrowed. */
+void small_plan_make(struct small_plan *p, const char *key, const char *utc);
+
 #endif

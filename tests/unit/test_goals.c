@@ -193,36 +193,23 @@ static void observe(struct store *s, int64_t telescope_id, int32_t night_mjd, co
 	char key[80], start[24], end[24];
 	int64_t id;
 	int edition;
+	struct small_plan p;
 	const int day = 22 + (night_mjd - 61152);
 	snprintf(key, sizeof key, "S1/T%lld:transit:%ld", (long long)target_id, epoch);
 	snprintf(start, sizeof start, "2026-04-%02dT05:00:00Z", day);
 	snprintf(end, sizeof end, "2026-04-%02dT08:00:00Z", day);
-	struct plan_window_row window = {.target_id = target_id,
-					 .ephemeris_id = target_id,
-					 .target = "Tern",
-					 .kind = KIND_TRANSIT,
-					 .epoch = epoch,
-					 .variant = variant,
-					 .figures = ""};
-	struct plan_item_row item = {.key = key,
-				     .slew_by_utc = start,
-				     .start_utc = start,
-				     .latest_start_utc = "",
-				     .end_utc = end,
-				     .n = 1,
-				     .window = &window};
-	const struct plan_row plan = {.site_id = 1,
-				      .telescope_id = telescope_id,
-				      .night_mjd = night_mjd,
-				      .draft = draft,
-				      .limits = "",
-				      .leap_date = "2026-06-28",
-				      .choices = "",
-				      .left_out = "",
-				      .n = 1,
-				      .item = &item};
+	small_plan_make(&p, key, start);
+	p.window.target_id = p.window.ephemeris_id = target_id;
+	p.window.target = "Tern";
+	p.window.epoch = epoch;
+	p.window.variant = variant;
+	p.item.end_utc = end;
+	p.plan.telescope_id = telescope_id;
+	p.plan.night_mjd = night_mjd;
+	p.plan.draft = draft;
+	p.plan.leap_date = "2026-06-28";
 	change_begin(s, "plan");
-	must(plan_store(s, &plan, false, 0, &id, &edition, &e), &e);
+	must(plan_store(s, &p.plan, false, 0, &id, &edition, &e), &e);
 	must(plan_mark(s, id, key, state, "", "", "2026-04-25T12:00:00Z", &e), &e);
 	change_commit(s);
 }

@@ -221,32 +221,14 @@ static void got_one(struct store *s, const char *night_end, long epoch, const ch
 	int64_t id;
 	int edition;
 	char key[40];
+	struct small_plan p;
 	snprintf(key, sizeof key, "T1:transit:%ld", epoch);
-	struct plan_window_row window = {.target_id = 1,
-					 .ephemeris_id = 1,
-					 .target = "Tern 1 b",
-					 .kind = KIND_TRANSIT,
-					 .epoch = epoch,
-					 .variant = variant,
-					 .figures = ""};
-	struct plan_item_row item = {.key = key,
-				     .slew_by_utc = night_end,
-				     .start_utc = night_end,
-				     .latest_start_utc = "",
-				     .end_utc = night_end,
-				     .n = 1,
-				     .window = &window};
-	const struct plan_row plan = {.site_id = 1,
-				      .telescope_id = 1,
-				      .night_mjd = 61153 + (int32_t)epoch,
-				      .draft = "main",
-				      .limits = "",
-				      .leap_date = "",
-				      .choices = "",
-				      .left_out = "",
-				      .n = 1,
-				      .item = &item};
-	must(plan_store(s, &plan, true, 0, &id, &edition, &e), &e);
+	small_plan_make(&p, key, night_end);
+	p.window.epoch = epoch;
+	p.window.variant = variant;
+	p.plan.telescope_id = 1;
+	p.plan.night_mjd = 61153 + (int32_t)epoch;
+	must(plan_store(s, &p.plan, true, 0, &id, &edition, &e), &e);
 	must(plan_mark(s, id, key, "done", "", "", "2026-04-30T12:00:00Z", &e), &e);
 }
 

@@ -107,11 +107,7 @@ static enum status put_in_store(struct run *r, const char *verb, struct allotmen
 		return s;
 	s = strcmp(verb, "allot add") == 0 ? allotment_add(r->store, a, &a->id, e)
 					   : allotment_remove(r->store, a->id, e);
-	if (s == ST_OK)
-		s = store_commit(r->store, e);
-	if (s != ST_OK)
-		store_rollback(r->store);
-	return s;
+	return store_end(r->store, s, e);
 }
 
 /* The run's memo of the Earth's path is made with its targets; these commands have none. */

@@ -1,11 +1,11 @@
 /* SPDX-License-Identifier: MIT */
 #include "tui/commands/allot_write.h"
 
+#include "tui/commands/result.h"
 #include "tui/diagnose.h"
 #include "tui/pages/night_head.h"
 #include "tui/sheets/csv.h"
 #include "tui/sheets/json.h"
-#include "tui/sheets/out.h"
 #include "tui/sheets/text.h"
 
 #include <string.h>
@@ -156,15 +156,12 @@ static void line_json(struct json *j, const struct run *r, const struct line *l)
 
 int allotments_write(struct run *r, const struct allotment *const which[], size_t n)
 {
-	const struct options *o = r->options;
 	struct out out;
-	struct err e;
 	struct night night;
 	enum format format;
-	if (format_of(o, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &e) != ST_OK)
-		return usage_fault("--format", &e);
-	if (run_out_open(r, &out, &e) != ST_OK)
-		return diagnose_whole(&e, EXIT_UNMET);
+	const int opened = result_open(r, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &out);
+	if (opened != EXIT_DONE)
+		return opened;
 	struct csv_out csv = {.file = out.file};
 	struct json json = json_begin(out.file);
 	if (format == FORMAT_CSV)
@@ -188,10 +185,5 @@ int allotments_write(struct run *r, const struct allotment *const which[], size_
 		json_close(&json, ']');
 		json_end(&json);
 	}
-	if (csv.failed) {
-		out_abandon(&out);
-		diagnose("memory", "none for a long cell");
-		return EXIT_UNMET;
-	}
-	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_whole(&e, EXIT_UNMET);
+	return result_commit(&out, !csv.failed);
 }

@@ -158,15 +158,6 @@ static void say_row(void *ctx, const struct import_message *m)
 	*refused += !m->warning;
 }
 
-static enum status commit_or_not(struct store *s, enum status st, struct err *e)
-{
-	if (st == ST_OK)
-		st = store_commit(s, e);
-	if (st != ST_OK)
-		store_rollback(s);
-	return st;
-}
-
 enum status demo_fill(struct store *s, struct err *e)
 {
 	const struct import_options options = {.strict = true, .change = demo_change};
@@ -175,7 +166,7 @@ enum status demo_fill(struct store *s, struct err *e)
 	int refused = 0;
 	enum status st = store_begin(s, &demo_change, e);
 	if (st == ST_OK)
-		st = commit_or_not(s, put_place(s, e), e);
+		st = store_end(s, put_place(s, e), e);
 	if (st == ST_OK)
 		st = import_targets(s, demo_targets_csv, demo_targets_csv_size, &options, &report, say_row,
 				    &refused, e);
@@ -184,7 +175,7 @@ enum status demo_fill(struct store *s, struct err *e)
 	if (st == ST_OK)
 		st = store_begin(s, &demo_change, e);
 	if (st == ST_OK)
-		st = commit_or_not(s, put_wishes(s, &list, e), e);
+		st = store_end(s, put_wishes(s, &list, e), e);
 	target_list_free(&list);
 	return st;
 }

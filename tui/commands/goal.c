@@ -2,11 +2,11 @@
 #include "tui/commands/one_target.h"
 #include "tui/commands/table.h"
 
+#include "tui/commands/result.h"
 #include "tui/diagnose.h"
 #include "tui/given.h"
 #include "tui/sheets/csv.h"
 #include "tui/sheets/json.h"
-#include "tui/sheets/out.h"
 #include "tui/sheets/text.h"
 
 #include <string.h>
@@ -119,13 +119,11 @@ static void line_json(struct json *j, const struct line *l)
 static int write_goals(const struct run *r, const struct target *only)
 {
 	struct out out;
-	struct err e;
 	enum format format;
 	size_t shown = 0, n;
-	if (format_of(r->options, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &e) != ST_OK)
-		return usage_fault("--format", &e);
-	if (run_out_open(r, &out, &e) != ST_OK)
-		return diagnose_whole(&e, EXIT_UNMET);
+	const int opened = result_open(r, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &out);
+	if (opened != EXIT_DONE)
+		return opened;
 	struct csv_out csv = {.file = out.file};
 	struct json json = json_begin(out.file);
 	if (format == FORMAT_CSV)
@@ -153,12 +151,7 @@ static int write_goals(const struct run *r, const struct target *only)
 	} else if (format == FORMAT_TEXT && shown == 0) {
 		fputs("No goal is set: every event counts (wane goal set TARGET WHOLE LIMB).\n", out.file);
 	}
-	if (csv.failed) {
-		out_abandon(&out);
-		diagnose("memory", "none for a long cell");
-		return EXIT_UNMET;
-	}
-	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_whole(&e, EXIT_UNMET);
+	return result_commit(&out, !csv.failed);
 }
 
 /* Of the target of the third word, or all. */
@@ -185,11 +178,7 @@ static enum status change_goal(struct run *r, enum verb verb, const struct goal_
 	if (s != ST_OK)
 		return s;
 	s = verb == VERB_SET ? goal_set(r->store, g, e) : goal_remove(r->store, g->target_id, g->band, e);
-	if (s == ST_OK)
-		s = store_commit(r->store, e);
-	if (s != ST_OK)
-		store_rollback(r->store);
-	return s;
+	return store_end(r->store, s, e);
 }
 
 /* What the words and options say; whose it is comes later. */

@@ -3,10 +3,10 @@
 
 #include "db/history.h"
 #include "tui/commands/one_target.h"
+#include "tui/commands/result.h"
 #include "tui/diagnose.h"
 #include "tui/sheets/csv.h"
 #include "tui/sheets/json.h"
-#include "tui/sheets/out.h"
 #include "tui/sheets/text.h"
 
 #include <stdlib.h>
@@ -94,12 +94,7 @@ static int write_history(struct run *r, int64_t target_id)
 	else
 		write_json(out.file, row, n);
 	free(row);
-	if (!whole) {
-		out_abandon(&out);
-		diagnose("memory", "none for a long cell");
-		return EXIT_UNMET;
-	}
-	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_whole(&e, EXIT_UNMET);
+	return result_commit(&out, whole);
 }
 
 int command_history(const struct env *env, const struct options *o)

@@ -142,12 +142,9 @@ static enum status store_times(struct run *r, int64_t target_id, const char *ver
 		else
 			tally->same++;
 	}
-	if (s == ST_OK)
-		s = store_commit(r->store, e);
-	if (s != ST_OK) {
-		store_rollback(r->store);
+	s = store_end(r->store, s, e);
+	if (s != ST_OK)
 		tally->added = tally->same = 0;
-	}
 	return s;
 }
 
@@ -341,11 +338,7 @@ static enum status mark(struct run *r, enum verb verb, long epoch, int kinds, lo
 	if (s == ST_OK && !found)
 		s = err_set(e, ST_ABSENT, "no %s of epoch %ld is stored (see wane midtime list)",
 			    kinds == KINDS_OCCULTATION ? "occultation" : "mid-time", epoch);
-	if (s == ST_OK)
-		s = store_commit(r->store, e);
-	if (s != ST_OK)
-		store_rollback(r->store);
-	return s;
+	return store_end(r->store, s, e);
 }
 
 static int mark_times(const struct env *env, const struct options *o, enum verb verb)

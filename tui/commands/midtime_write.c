@@ -4,10 +4,10 @@
 #include "ephem/drift.h"
 #include "ephem/number_text.h"
 #include "ephem/units.h"
+#include "tui/commands/result.h"
 #include "tui/diagnose.h"
 #include "tui/sheets/csv.h"
 #include "tui/sheets/json.h"
-#include "tui/sheets/out.h"
 #include "tui/sheets/text.h"
 
 #include <math.h>
@@ -127,10 +127,5 @@ int midtimes_write(struct run *r)
 	else
 		write_json(out.file, &list);
 	midtime_list_free(&list);
-	if (!whole) {
-		out_abandon(&out);
-		diagnose("memory", "none for a long cell");
-		return EXIT_UNMET;
-	}
-	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_whole(&e, EXIT_UNMET);
+	return result_commit(&out, whole);
 }

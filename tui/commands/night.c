@@ -2,12 +2,12 @@
 #include "tui/commands/plan.h"
 #include "tui/commands/table.h"
 
+#include "tui/commands/one_night.h"
+#include "tui/commands/result.h"
 #include "tui/diagnose.h"
-#include "tui/given.h"
 #include "tui/parts/clock_mark.h"
 #include "tui/plan_make.h"
 #include "tui/sheets/order_text.h"
-#include "tui/sheets/out.h"
 #include "tui/sheets/plan_sheet.h"
 #include "tui/sheets/text.h"
 #include "tui/sheets/windows.h"
@@ -105,10 +105,9 @@ int night_write(struct run *r, int32_t evening_mjd)
 	struct out out;
 	struct err e;
 	enum format format;
-	if (format_of(r->options, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &e) != ST_OK)
-		return usage_fault("--format", &e);
-	if (run_out_open(r, &out, &e) != ST_OK)
-		return diagnose_whole(&e, EXIT_UNMET);
+	const int opened = result_open(r, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &out);
+	if (opened != EXIT_DONE)
+		return opened;
 	if (run_night(r, evening_mjd, format == FORMAT_TEXT, &view, &e) != ST_OK) {
 		out_abandon(&out);
 		night_view_free(&view);
@@ -132,12 +131,7 @@ int night_write(struct run *r, int32_t evening_mjd)
 		uncounted_note(r);
 	}
 	night_view_free(&view);
-	if (!whole) {
-		out_abandon(&out);
-		diagnose("memory", "none for a long cell");
-		return EXIT_UNMET;
-	}
-	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_whole(&e, EXIT_UNMET);
+	return result_commit(&out, whole);
 }
 
 void leap_note(const struct run *r, int32_t last_mjd)
@@ -167,23 +161,8 @@ bool one_site(const struct options *o, const char *command)
 
 int command_night(const struct env *env, const struct options *o)
 {
-	struct run run;
-	struct err e;
-	int code;
-	int32_t mjd;
-	const char *date = o->n_words > 1 ? o->word[1] : NULL;
 	if (!one_site(o, "night"))
 		return EXIT_USAGE;
-	/* a wrong date is told before anything is opened */
-	if (date && given_night_check(&leap_builtin, date, &e) != ST_OK && !strstr(date, ":60"))
-		return usage_fault("DATE", &e);
-	if (run_open(&run, env, o, NEED_STORE | NEED_SITE | NEED_TARGETS, &code, &e) != ST_OK)
-		return diagnose_whole(&e, code);
-	mjd = run_tonight(&run);
-	if (date && given_night(&run.leap, run.site.lon_east_deg, date, &mjd, &e) != ST_OK)
-		code = usage_fault("DATE", &e);
-	else
-		code = o->explain ? night_explain(&run, mjd) : night_write(&run, mjd);
-	run_close(&run);
-	return code;
+	return one_night_run(env, o, NEED_STORE | NEED_SITE | NEED_TARGETS,
+			     o->explain ? night_explain : night_write);
 }

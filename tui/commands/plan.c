@@ -1,9 +1,9 @@
 /* SPDX-License-Identifier: MIT */
 #include "tui/commands/plan.h"
 
+#include "tui/commands/one_night.h"
 #include "tui/commands/table.h"
 #include "tui/diagnose.h"
-#include "tui/given.h"
 #include "tui/sheets/order_text.h"
 #include "tui/sheets/plan_sheet.h"
 
@@ -252,28 +252,14 @@ static int run_plan(struct run *r, int32_t mjd)
 
 int command_plan(const struct env *env, const struct options *o)
 {
-	struct run run;
-	struct err e;
-	int code, needs = NEED_STORE | NEED_SITE | NEED_TARGETS;
-	int32_t mjd;
-	const char *date = o->n_words > 1 ? o->word[1] : NULL;
+	int needs = NEED_STORE | NEED_SITE | NEED_TARGETS;
 	if (!plan_options_fit(o, "plan"))
 		return EXIT_USAGE;
 	if (at_odds(o)) {
 		diagnose("plan", "%s", at_odds(o));
 		return EXIT_USAGE;
 	}
-	if (date && given_night_check(&leap_builtin, date, &e) != ST_OK && !strstr(date, ":60"))
-		return usage_fault("DATE", &e);
 	if (o->keep || o->save || o->mark.n > 0 || o->remove_draft)
 		needs |= NEED_WRITE;
-	if (run_open(&run, env, o, needs, &code, &e) != ST_OK)
-		return diagnose_whole(&e, code);
-	mjd = run_tonight(&run);
-	if (date && given_night(&run.leap, run.site.lon_east_deg, date, &mjd, &e) != ST_OK)
-		code = usage_fault("DATE", &e);
-	else
-		code = run_plan(&run, mjd);
-	run_close(&run);
-	return code;
+	return one_night_run(env, o, needs, run_plan);
 }

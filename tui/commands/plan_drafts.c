@@ -237,10 +237,7 @@ int plan_remove_draft(struct run *r, int32_t evening_mjd, const char *draft)
 	s = store_begin(r->store, &change, &e);
 	if (s == ST_OK) {
 		s = plan_remove(r->store, id, &e);
-		if (s == ST_OK)
-			s = store_commit(r->store, &e);
-		if (s != ST_OK)
-			store_rollback(r->store);
+		s = store_end(r->store, s, &e);
 	}
 	return s == ST_OK ? EXIT_DONE : plan_fault(&e);
 }

@@ -3,9 +3,9 @@
 
 #include "ephem/number_text.h"
 #include "tui/commands/one_target.h"
+#include "tui/commands/result.h"
 #include "tui/diagnose.h"
 #include "tui/sheets/fits.h"
-#include "tui/sheets/out.h"
 
 #include <math.h>
 #include <string.h>
@@ -104,12 +104,9 @@ static enum status adopt_model(struct run *r, const struct fit_view *v, enum mod
 	if (s != ST_OK)
 		return s;
 	s = fit_adopt(r, p, v, fit, scale, &version, e);
-	if (s == ST_OK)
-		s = store_commit(r->store, e);
-	if (s != ST_OK) {
-		store_rollback(r->store);
+	s = store_end(r->store, s, e);
+	if (s != ST_OK)
 		return s;
-	}
 	diagnose("refit", "version %d is the current ephemeris now: %s, errors %s (wane undo takes it back)",
 		 version, r->options->adopt_fit, scale > 1.0 ? "scaled by the scatter" : "formal");
 	return ST_OK;
@@ -133,12 +130,7 @@ static int write_fits(struct run *r, const struct fit_view *v)
 		whole = fits_csv(out.file, v);
 	else
 		fits_json(out.file, name, v);
-	if (!whole) {
-		out_abandon(&out);
-		diagnose("memory", "none for a long cell");
-		return EXIT_UNMET;
-	}
-	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_whole(&e, EXIT_UNMET);
+	return result_commit(&out, whole);
 }
 
 static int refit_open(struct run *r, enum model model, const struct fit_choice *choice)

@@ -3,10 +3,10 @@
 
 #include "db/stored_settings.h"
 #include "ephem/near_word.h"
+#include "tui/commands/result.h"
 #include "tui/diagnose.h"
 #include "tui/sheets/csv.h"
 #include "tui/sheets/json.h"
-#include "tui/sheets/out.h"
 
 #include <string.h>
 
@@ -55,12 +55,10 @@ static void one_text(FILE *to, const struct stored_key_rule *rule, const char *v
 static int write_settings(const struct run *r, int only)
 {
 	struct out out;
-	struct err e;
 	enum format format;
-	if (format_of(r->options, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &e) != ST_OK)
-		return usage_fault("--format", &e);
-	if (run_out_open(r, &out, &e) != ST_OK)
-		return diagnose_whole(&e, EXIT_UNMET);
+	const int opened = result_open(r, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &out);
+	if (opened != EXIT_DONE)
+		return opened;
 	struct csv_out csv = {.file = out.file};
 	struct json json = json_begin(out.file);
 	if (format == FORMAT_CSV)
@@ -85,7 +83,7 @@ static int write_settings(const struct run *r, int only)
 		json_close(&json, ']');
 		json_end(&json);
 	}
-	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_whole(&e, EXIT_UNMET);
+	return result_commit(&out, true);
 }
 
 /* --- changing --- */
@@ -98,11 +96,7 @@ static enum status put_in_store(struct run *r, const char *verb, int key, const 
 	if (s != ST_OK)
 		return s;
 	s = stored_setting_put(r->store, stored_key_rules[key].name, text, e);
-	if (s == ST_OK)
-		s = store_commit(r->store, e);
-	if (s != ST_OK)
-		store_rollback(r->store);
-	return s;
+	return store_end(r->store, s, e);
 }
 
 static int change_setting(const struct env *env, const struct options *o, int key, const char *text)

@@ -3,8 +3,8 @@
 #include "tui/commands/plan.h"
 #include "tui/commands/table.h"
 
+#include "tui/commands/one_night.h"
 #include "tui/diagnose.h"
-#include "tui/given.h"
 #include "tui/plan_make.h"
 #include "tui/sheets/plan_words.h"
 
@@ -192,23 +192,7 @@ static int sheet_write(struct run *r, int32_t evening_mjd)
 
 int command_sheet(const struct env *env, const struct options *o)
 {
-	struct run run;
-	struct err e;
-	int code;
-	int32_t mjd;
-	const char *date = o->n_words > 1 ? o->word[1] : NULL;
 	if (!plan_options_fit(o, "sheet"))
 		return EXIT_USAGE;
-	/* a wrong date is told before anything is opened */
-	if (date && given_night_check(&leap_builtin, date, &e) != ST_OK && !strstr(date, ":60"))
-		return usage_fault("DATE", &e);
-	if (run_open(&run, env, o, NEED_STORE | NEED_SITE | NEED_TARGETS, &code, &e) != ST_OK)
-		return diagnose_whole(&e, code);
-	mjd = run_tonight(&run);
-	if (date && given_night(&run.leap, run.site.lon_east_deg, date, &mjd, &e) != ST_OK)
-		code = usage_fault("DATE", &e);
-	else
-		code = sheet_write(&run, mjd);
-	run_close(&run);
-	return code;
+	return one_night_run(env, o, NEED_STORE | NEED_SITE | NEED_TARGETS, sheet_write);
 }

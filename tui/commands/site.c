@@ -5,10 +5,10 @@
 #include "db/stored_settings.h"
 #include "ephem/angle_text.h"
 #include "ephem/number_text.h"
+#include "tui/commands/result.h"
 #include "tui/commands/site_light.h"
 #include "tui/diagnose.h"
 #include "tui/given.h"
-#include "tui/sheets/out.h"
 #include "tui/sheets/text.h"
 #include "tui/sheets/windows.h"
 
@@ -86,14 +86,12 @@ static void site_record(struct json *j, const struct run *r, const struct site *
 /* The sites as a list; of show, the one alone. */
 static int write_sites(const struct run *r, const struct site site[], size_t n, bool list)
 {
-	const struct options *o = r->options;
 	struct out out;
 	struct err e;
 	enum format format;
-	if (format_of(o, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &e) != ST_OK)
-		return usage_fault("--format", &e);
-	if (run_out_open(r, &out, &e) != ST_OK)
-		return diagnose_whole(&e, EXIT_UNMET);
+	const int opened = result_open(r, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &out);
+	if (opened != EXIT_DONE)
+		return opened;
 	struct csv_out csv = {.file = out.file};
 	struct json json = json_begin(out.file);
 	if (format == FORMAT_CSV)
@@ -119,7 +117,7 @@ static int write_sites(const struct run *r, const struct site site[], size_t n, 
 		json_close(&json, ']');
 	if (format == FORMAT_JSON)
 		json_end(&json);
-	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_whole(&e, EXIT_UNMET);
+	return result_commit(&out, true);
 }
 
 /* --- changing --- */
@@ -182,11 +180,7 @@ static enum status put_in_store(struct run *r, struct site *site, const struct s
 	s = site_put(r->store, site, add, e);
 	if (s == ST_OK)
 		s = put_keys(r, site, light, e);
-	if (s == ST_OK)
-		s = store_commit(r->store, e);
-	if (s != ST_OK)
-		store_rollback(r->store);
-	return s;
+	return store_end(r->store, s, e);
 }
 
 /* --mask: *mask is the room for what is read. */
@@ -308,12 +302,7 @@ static int remove_site(struct run *r)
 		s = site_light_remove(r->store, r->sites.site[index].id, &e);
 	if (s == ST_OK)
 		s = site_remove(r->store, name, &e);
-	if (s == ST_OK)
-		s = store_commit(r->store, &e);
-	if (s == ST_OK)
-		return EXIT_DONE;
-	store_rollback(r->store);
-	return diagnose_err("site", &e, EXIT_UNMET);
+	return store_end(r->store, s, &e) == ST_OK ? EXIT_DONE : diagnose_err("site", &e, EXIT_UNMET);
 }
 
 static int show_or_remove(const struct env *env, const struct options *o, bool remove)

@@ -8,10 +8,10 @@
 #include "ephem/number_text.h"
 #include "ephem/units.h"
 #include "tui/commands/direction.h"
+#include "tui/commands/result.h"
 #include "tui/diagnose.h"
 #include "tui/given.h"
 #include "tui/sheets/json.h"
-#include "tui/sheets/out.h"
 #include "tui/sheets/text.h"
 
 #include <math.h>
@@ -258,17 +258,15 @@ static int write_sky(struct run *r, const struct sky *s, const struct target *t)
 {
 	const struct options *o = r->options;
 	struct out out;
-	struct err e;
 	enum format format;
-	if (format_of(o, FORMAT_TEXT | FORMAT_JSON, &format, &e) != ST_OK)
-		return usage_fault("--format", &e);
-	if (run_out_open(r, &out, &e) != ST_OK)
-		return diagnose_whole(&e, EXIT_UNMET);
+	const int opened = result_open(r, FORMAT_TEXT | FORMAT_JSON, &format, &out);
+	if (opened != EXIT_DONE)
+		return opened;
 	if (format == FORMAT_JSON)
 		write_json(out.file, s, &r->leap, t && !o->radec);
 	else
 		write_text(out.file, s, r, t);
-	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_whole(&e, EXIT_UNMET);
+	return result_commit(&out, true);
 }
 
 static const struct prepared *prepared_of(const struct run *r, const struct target *t)

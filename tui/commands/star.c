@@ -126,11 +126,7 @@ static enum status change_star(struct run *r, const struct field_star *f, bool a
 	if (s != ST_OK)
 		return s;
 	s = add ? field_star_add(r->store, f, &id, e) : field_star_remove(r->store, f->id, e);
-	if (s == ST_OK)
-		s = store_commit(r->store, e);
-	if (s != ST_OK)
-		store_rollback(r->store);
-	return s;
+	return store_end(r->store, s, e);
 }
 
 /* Whether the star of that number is the target's. */

@@ -2,12 +2,12 @@
 #include "tui/commands/star.h"
 
 #include "ephem/number_text.h"
+#include "tui/commands/result.h"
 #include "tui/commands/table.h"
 #include "tui/diagnose.h"
 #include "tui/field_words.h"
 #include "tui/sheets/csv.h"
 #include "tui/sheets/json.h"
-#include "tui/sheets/out.h"
 #include "tui/sheets/text.h"
 
 #include <math.h>
@@ -172,23 +172,16 @@ int stars_write(const struct run *r, const struct target *t)
 {
 	const struct told f = told_of(r, t);
 	struct out out;
-	struct err e;
 	enum format format;
 	bool whole = true;
-	if (format_of(r->options, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &e) != ST_OK)
-		return usage_fault("--format", &e);
-	if (run_out_open(r, &out, &e) != ST_OK)
-		return diagnose_whole(&e, EXIT_UNMET);
+	const int opened = result_open(r, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &out);
+	if (opened != EXIT_DONE)
+		return opened;
 	if (format == FORMAT_CSV)
 		whole = told_csv(out.file, r, &f);
 	else if (format == FORMAT_JSON)
 		told_json(out.file, r, &f);
 	else
 		told_text(out.file, r, &f);
-	if (!whole) {
-		out_abandon(&out);
-		diagnose("memory", "none for a long cell");
-		return EXIT_UNMET;
-	}
-	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_whole(&e, EXIT_UNMET);
+	return result_commit(&out, whole);
 }

@@ -148,11 +148,7 @@ static enum status in_change(struct run *r, const char *verb, const char *name, 
 		s = adopt_in_store(r, name, (int)strtol(r->options->word[3], NULL, 10), e);
 	else
 		s = target_remove(r->store, name, e);
-	if (s == ST_OK)
-		s = store_commit(r->store, e);
-	if (s != ST_OK)
-		store_rollback(r->store);
-	return s;
+	return store_end(r->store, s, e);
 }
 
 static void say_doubt(int field, const char *text)

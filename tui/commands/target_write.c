@@ -2,10 +2,10 @@
 #include "tui/commands/target_write.h"
 
 #include "ephem/angle_text.h"
+#include "tui/commands/result.h"
 #include "tui/diagnose.h"
 #include "tui/sheets/csv.h"
 #include "tui/sheets/json.h"
-#include "tui/sheets/out.h"
 #include "tui/sheets/text.h"
 
 #include <math.h>
@@ -197,15 +197,13 @@ static void begin(struct writer *w, size_t n)
 
 int targets_write(struct run *r, const size_t chosen[], size_t n, bool list)
 {
-	const struct options *o = r->options;
 	struct writer w = {.list = list};
 	struct out out;
 	struct err e;
 	enum status s = ST_OK;
-	if (format_of(o, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &w.format, &e) != ST_OK)
-		return usage_fault("--format", &e);
-	if (run_out_open(r, &out, &e) != ST_OK)
-		return diagnose_whole(&e, EXIT_UNMET);
+	const int opened = result_open(r, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &w.format, &out);
+	if (opened != EXIT_DONE)
+		return opened;
 	w.to = out.file;
 	w.csv = (struct csv_out){.file = out.file};
 	w.json = json_begin(out.file);
@@ -222,5 +220,5 @@ int targets_write(struct run *r, const size_t chosen[], size_t n, bool list)
 		json_close(&w.json, ']');
 	if (w.format == FORMAT_JSON)
 		json_end(&w.json);
-	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_whole(&e, EXIT_UNMET);
+	return result_commit(&out, true);
 }

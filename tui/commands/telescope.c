@@ -90,11 +90,7 @@ static enum status put_in_store(struct run *r, const struct telescope *t, enum v
 		return s;
 	s = verb == VERB_REMOVE ? telescope_remove(r->store, t->site_id, t->name, e)
 				: telescope_put(r->store, t, verb == VERB_ADD, e);
-	if (s == ST_OK)
-		s = store_commit(r->store, e);
-	if (s != ST_OK)
-		store_rollback(r->store);
-	return s;
+	return store_end(r->store, s, e);
 }
 
 static int no_such(const struct run *r, const char *name)

@@ -1,10 +1,10 @@
 /* SPDX-License-Identifier: MIT */
 #include "tui/commands/telescope_write.h"
 
+#include "tui/commands/result.h"
 #include "tui/diagnose.h"
 #include "tui/sheets/csv.h"
 #include "tui/sheets/json.h"
-#include "tui/sheets/out.h"
 #include "tui/sheets/text.h"
 
 #include <string.h>
@@ -113,15 +113,12 @@ static void write_json(FILE *to, const struct run *r, const struct telescope t[]
 
 int telescopes_write(struct run *r, const struct telescope t[], size_t n, bool list)
 {
-	const struct options *o = r->options;
 	struct out out;
-	struct err e;
 	enum format format;
 	bool whole = true;
-	if (format_of(o, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &e) != ST_OK)
-		return usage_fault("--format", &e);
-	if (run_out_open(r, &out, &e) != ST_OK)
-		return diagnose_whole(&e, EXIT_UNMET);
+	const int opened = result_open(r, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &out);
+	if (opened != EXIT_DONE)
+		return opened;
 	if (format == FORMAT_CSV)
 		whole = write_csv(out.file, r, t, n);
 	else if (format == FORMAT_JSON)
@@ -130,10 +127,5 @@ int telescopes_write(struct run *r, const struct telescope t[], size_t n, bool l
 		fputs("No telescope is stored here: wane telescope add NAME FIELD=VALUE...\n", out.file);
 	for (size_t i = 0; format == FORMAT_TEXT && i < n; i++)
 		telescope_text(out.file, r, &t[i], list);
-	if (!whole) {
-		out_abandon(&out);
-		diagnose("memory", "none for a long cell");
-		return EXIT_UNMET;
-	}
-	return out_commit(&out, &e) == ST_OK ? EXIT_DONE : diagnose_whole(&e, EXIT_UNMET);
+	return result_commit(&out, whole);
 }
