@@ -69,6 +69,8 @@ struct target_night target_on_night(const struct night *n, const struct prepared
 	}
 	tn.limb = intervals_and(&sky, &tn.sun_limb);
 	tn.baseline = intervals_and(&sky, &tn.sun_baseline);
+	/* mount and flip are looked at only where has_mount and has_flip say that they are there */
+	/* cppcheck-suppress uninitvar */
 	return tn;
 }
 

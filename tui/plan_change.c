@@ -82,7 +82,8 @@ enum status plan_mark_now(struct run *r, const struct plan_view *v, const char *
 	writing_end(&w, r);
 	if (s == ST_OK)
 		snprintf(said, PLAN_SAID_BYTES, "%.120s: %s; stored, u takes it back.", target,
-			 state < PLAN_STARTED ? "no mark" : plan_state_words[state]);
+			 state >= PLAN_STARTED && state < PLAN_STATE_COUNT ? plan_state_words[state]
+									   : "no mark");
 	return s;
 }
 

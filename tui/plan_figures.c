@@ -201,7 +201,7 @@ static void id_text(int64_t id, const char *name, char *out, size_t n)
 const char *item_key(struct plan_view *v, const struct plan_item_view *item)
 {
 	enum { MEMBERS = 64, EVENT_BYTES = NAME_KEY_MAX + 80 };
-	const char *event[MEMBERS];
+	const char *event[MEMBERS] = {NULL};
 	char text[EVENT_BYTES], id[NAME_KEY_MAX + 4], head[2 * NAME_KEY_MAX + 32];
 	const struct run *r = v->run;
 	size_t n = item->n < MEMBERS ? item->n : MEMBERS, room, used;

@@ -324,7 +324,7 @@ static void sun_and_moon(struct html_page *p)
 	    {"Moonrise", t->moonrise_d},
 	    {"Moonset", t->moonset_d},
 	};
-	struct sky_event here[sizeof all / sizeof all[0]];
+	struct sky_event here[sizeof all / sizeof all[0]] = {{NULL, 0.0}};
 	size_t n = 0;
 	for (size_t i = 0; i < sizeof all / sizeof all[0]; i++)
 		if (isfinite(all[i].t_d))
