@@ -144,7 +144,7 @@ static void say_tally(const struct tally tally[TOUCHED_KINDS], enum touched kind
 	else if (kind == TOUCHED_ALLOTMENT)
 		snprintf(out, size, "allotment from %s, %s", night, t->name);
 	else if (kind == TOUCHED_SETTING)
-		snprintf(out, size, "setting %s", t->name);
+		snprintf(out, size, "%s", t->name);
 	else if (kind == TOUCHED_PLAN)
 		snprintf(out, size, "plan of %s, draft %s", night, t->name);
 	else if (kind == TOUCHED_MARK)

@@ -72,6 +72,11 @@
 	"k.rev, k.change_id, k.row_crc"
 /* the edition that holds of each listed plan */
 #define HELD "FROM plan p JOIN plan_edition e ON e.plan_id = p.id AND e.edition = p.edition "
+/* a setting in words; that of a site goes by the site's name */
+#define SETTING_WORDS                                                                                        \
+	"ifnull(CASE WHEN key LIKE 'half:%' THEN 'halves of the nights of ' || "                             \
+	"(SELECT name FROM site WHERE id = CAST(substr(key, 6) AS INTEGER)) END, 'setting ' || key)"
+
 /* a mark in words: the first target of the newest item that has its key */
 #define MARK_WORDS                                                                                           \
 	"ifnull((SELECT w.target FROM plan_edition e JOIN plan_item i ON i.edition_id = e.id "               \
@@ -316,8 +321,8 @@ const char *const sql_text[SQL_COUNT] = {
 	"SELECT change_id, 6, 0, span, first_mjd FROM allotment UNION ALL "
 	"SELECT change_id, 6, 0, span, first_mjd FROM allotment_old WHERE replaced_by <> change_id "
 	"UNION ALL "
-	"SELECT change_id, 7, 0, key, 0 FROM setting UNION ALL "
-	"SELECT change_id, 7, 0, key, 0 FROM setting_old WHERE replaced_by <> change_id "
+	"SELECT change_id, 7, 0, " SETTING_WORDS ", 0 FROM setting UNION ALL "
+	"SELECT change_id, 7, 0, " SETTING_WORDS ", 0 FROM setting_old WHERE replaced_by <> change_id "
 	"UNION ALL "
 	"SELECT change_id, 8, 0, draft, night_mjd FROM plan UNION ALL "
 	"SELECT change_id, 8, 0, draft, night_mjd FROM plan_old WHERE replaced_by <> change_id UNION ALL "
@@ -416,5 +421,9 @@ const char *const sql_text[SQL_COUNT] = {
 			    "(SELECT count(*) FROM plan_window WHERE item_id = plan_item.id)",
     [SQL_COUNTS] = "SELECT (SELECT count(*) FROM target WHERE removed = 0), "
 		   "(SELECT count(*) FROM ephemeris WHERE t0_day IS NOT NULL AND period_d IS NOT NULL), "
-		   "(SELECT count(*) FROM site WHERE removed = 0), (SELECT count(*) FROM change_set)",
+		   "(SELECT count(*) FROM site WHERE removed = 0), (SELECT count(*) FROM change_set), "
+		   "(SELECT count(*) FROM telescope WHERE removed = 0), "
+		   "(SELECT count(*) FROM allotment WHERE removed = 0), "
+		   "(SELECT count(*) FROM plan WHERE removed = 0), "
+		   "(SELECT count(*) FROM goal WHERE removed = 0)",
 };

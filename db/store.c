@@ -184,6 +184,10 @@ enum status store_count(struct store *s, struct store_counts *out, struct err *e
 		    .ephemerides = (long)sqlite3_column_int64(stmt, 1),
 		    .sites = (long)sqlite3_column_int64(stmt, 2),
 		    .changes = (long)sqlite3_column_int64(stmt, 3),
+		    .telescopes = (long)sqlite3_column_int64(stmt, 4),
+		    .allotments = (long)sqlite3_column_int64(stmt, 5),
+		    .plans = (long)sqlite3_column_int64(stmt, 6),
+		    .goals = (long)sqlite3_column_int64(stmt, 7),
 		};
 	}
 	sql_reset(s, SQL_COUNTS);

@@ -46,7 +46,8 @@ MUST_USE enum status store_end(struct store *s, enum status st, struct err *e);
 MUST_USE enum status store_check(struct store *s, void (*say)(void *ctx, const char *line), void *ctx, int *faults, struct err *e);
 /* Counts for the check's summary. */
 struct store_counts {
-	long targets, ephemerides, sites, changes;
+	long targets, ephemerides, sites, telescopes, allotments, plans, goals; /* listed */
+	long changes;
 };
 MUST_USE enum status store_count(struct store *s, struct store_counts *out, struct err *e);
 

@@ -92,7 +92,7 @@ static const struct option_row rows[] = {
      AT(zone), 0, 0, NULL},
     {"--half", "RULE",
      "Where the site's nights are halved: `dark` (between dusk and dawn), `sunset` (between sunset and "
-     "sunrise) or HH:MM of its clocks.",
+     "sunrise) or HH:MM of its clocks, 18:00 to 06:00.",
      GROUP_SITE, OPT_TEXT, AT(half), 0, 0, NULL},
     {"--sky", "BAND=MAG",
      "How bright the site's moonless zenith is, in mag per square arcsec: V=21.6; `V=`: not known; again for "

@@ -158,8 +158,7 @@ static enum status resolve(struct plan_view *v, const struct plan_choice *c, con
 		s = plan_span(clock, t.span, &from_d, &to_d, e);
 	if (s != ST_OK) {
 		struct err inner = *e;
-		/* what was typed for that night and does not happen in it is as wrong as a time outside it */
-		return err_set(e, s == ST_ABSENT ? ST_RANGE : s, "%s: %.440s", words[c->kind], inner.text);
+		return err_set(e, s, "%s: %.440s", words[c->kind], inner.text);
 	}
 	put_block(v, kinds[c->kind], &t, clock->night, from_d, to_d);
 	if (echo && typed_now(c, w)) {

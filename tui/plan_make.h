@@ -23,7 +23,7 @@ struct plan_wish {
 bool wish_any(const struct plan_wish *wish);
 /* The plan of a night. A draft that is not stored is a new one (out->edition 0). Nothing wished and a stored plan: as it is stored, compared with today's ephemerides. Else worked out anew from what is stored and what is wished, what has
  * begun standing as it is. night: a view of the same night, zeroed; filled here, borrowed by *out, the caller's: night_view_free. *echo (the caller's to free) gets a line
- * for each time that was typed, resolved with its date; NULL when none was. ST_SYNTAX, ST_RANGE: something typed is wrong (exit code 2); ST_ABSENT: a target that is not there or has no window that night, something to be taken back that there is not. */
+ * for each time that was typed, resolved with its date; NULL when none was. ST_SYNTAX, ST_RANGE: something typed is wrong (exit code 2); ST_ABSENT: a target that is not there or has no window that night, a time that does not happen in it, something to be taken back that there is not. */
 MUST_USE enum status plan_get(struct run *r, int32_t evening_mjd, const struct plan_wish *wish, struct night_view *night, struct plan_view *out,
 			      char **echo, struct err *e);
 /* An edition of the stored plan `of` as it was, not compared with today; its night is that of `of`, borrowed. ST_ABSENT: `of` is not stored, or has no

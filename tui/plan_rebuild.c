@@ -157,7 +157,7 @@ enum status plan_stand(struct plan_view *v, const struct plan_wish *wish, const 
 		enum status s = plan_time(clock, wish->from, &out->not_before_d, e);
 		if (s != ST_OK) {
 			struct err inner = *e;
-			return err_set(e, s == ST_ABSENT ? ST_RANGE : s, "from: %.440s", inner.text);
+			return err_set(e, s, "from: %.440s", inner.text);
 		}
 		echo_add(echo, "from", clock, out->not_before_d, out->not_before_d);
 	} else if (runs(v, &at))

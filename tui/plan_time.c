@@ -152,7 +152,7 @@ static enum status clock_d(const struct plan_clock *c, const struct typed_time *
 		return err_set(e, ST_RANGE, "no leap second comes then (got \"%s\", expected a time that is)",
 			       got);
 	if (skipped(c, t))
-		return err_set(e, ST_RANGE,
+		return err_set(e, ST_ABSENT,
 			       "does not exist this night: the site's clocks are set forward over it (got "
 			       "\"%s\", expected another time, or it with Z, in UTC)",
 			       got);

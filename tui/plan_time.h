@@ -19,7 +19,7 @@ struct half_rule {
 	enum half_rule_kind kind;
 	int clock_min; /* minutes after midnight, local */
 };
-/* `dark` (also ""), `sunset`, `HH:MM`. */
+/* `dark` (also ""), `sunset`, `HH:MM` from 18:00 to 06:00: what can lie between a sunset and the sunrise. ST_SYNTAX, ST_RANGE. */
 MUST_USE enum status half_rule_parse(const char *text, struct half_rule *out, struct err *e);
 
 struct plan_clock {
@@ -29,7 +29,7 @@ struct plan_clock {
 	double sun_limit_deg;
 	struct half_rule half;
 };
-/* ST_SYNTAX what can't be read; ST_RANGE outside the night, in a skipped hour or ambiguous; ST_ABSENT it does not happen that night (no sunset). */
+/* ST_SYNTAX what can't be read; ST_RANGE outside the night or ambiguous; ST_ABSENT it does not happen that night (no sunset, in a skipped hour). */
 MUST_USE enum status plan_time(const struct plan_clock *c, const char *text, double *t_d, struct err *e);
 MUST_USE enum status plan_span(const struct plan_clock *c, const char *text, double *from_d, double *to_d, struct err *e);
 /* Whether a span can be read at all, before a night is known. */

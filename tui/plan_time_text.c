@@ -11,6 +11,10 @@
 
 #define EXPECTED_TIME "22:40, 05:40Z, sunset+20m, evening-9, middle or YYYY-MM-DDTHH:MMZ"
 #define EXPECTED_SPAN "FROM..TO, FROM..+25m, first-half, second-half or whole"
+enum {
+	HALF_EARLIEST_MIN = 18 * 60,
+	HALF_LATEST_MIN = 6 * 60
+}; /* a middle of the night: common practice, no source */
 enum { SHIFT_MAX_S = 24 * 3600, OFFSET_EAST_MAX_S = 14 * 3600, OFFSET_WEST_MAX_S = 12 * 3600 };
 
 static enum status refuse(const char *text, enum status s, const char *why, const char *expected,
@@ -328,7 +332,10 @@ enum status half_rule_parse(const char *text, struct half_rule *out, struct err 
 		return refuse(text, ST_SYNTAX, "not a rule for halves of the night", "dark, sunset or HH:MM",
 			      e);
 	if (hour > 23 || minute > 59)
-		return refuse(text, ST_RANGE, "no such time of day", "00:00 to 23:59", e);
-	*out = (struct half_rule){.kind = HALF_CLOCK, .clock_min = hour * 60 + minute};
+		return refuse(text, ST_RANGE, "no such time of day", "18:00 to 06:00", e);
+	const int clock_min = hour * 60 + minute;
+	if (clock_min > HALF_LATEST_MIN && clock_min < HALF_EARLIEST_MIN)
+		return refuse(text, ST_RANGE, "no middle of a night", "18:00 to 06:00", e);
+	*out = (struct half_rule){.kind = HALF_CLOCK, .clock_min = clock_min};
 	return ST_OK;
 }

@@ -109,6 +109,33 @@ check "with and without a telescope" test "$("$WANE" sheet $night --site 'tern h
 check "as another store has it in its zone" test "$("$WANE" plan $night --site 'Tern Hill' --db "$t" 2>/dev/null)" = "$(plan)"
 check "the store is sound" "$WANE" check --db "$t"
 
+# --- the check says what there is, one of a kind in the singular
+many=$scratch/many.db
+"$WANE" site add 'Tern Hill' --place 38.62,-109.36,2100 --zone America/Denver --db "$many" >/dev/null 2>&1
+check "a store with one site" sh -c '"$1" check --db "$2" | grep -qx "0 targets, 0 ephemeris versions, 1 site, 0 telescopes, 0 allotments, 0 goals, 0 plans, 1 change"' - "$WANE" "$many"
+"$WANE" import config-example/demo-targets.csv --db "$many" >/dev/null 2>&1
+"$WANE" telescope add Big --db "$many" >/dev/null 2>&1
+"$WANE" allot add 2026-04-22 whole --db "$many" >/dev/null 2>&1
+"$WANE" goal set 'Tern 14 b' 3 0 --db "$many" >/dev/null 2>&1
+"$WANE" plan $night --db "$many" $now --keep >/dev/null 2>&1
+"$WANE" plan $night --db "$many" $now --save --draft cloudy >/dev/null 2>&1
+check "and of each other kind" sh -c '"$1" check --db "$2" | grep -qx "50 targets, 50 ephemeris versions, 1 site, 1 telescope, 1 allotment, 1 goal, 2 plans, 7 changes"' - "$WANE" "$many"
+
+# --- what does not happen that night can't be met; what can't be read is wrong
+pole=$scratch/pole.db
+"$WANE" import config-example/demo-targets.csv --db "$pole" >/dev/null 2>&1
+"$WANE" site add 'Tern North' --place 78,15,10 --db "$pole" >/dev/null 2>&1
+at() { "$WANE" plan "$@" >/dev/null 2>"$scratch/err"; echo $?; }
+for option in --block --lost --poor; do
+	tail=$([ $option = --block ] && echo =flats; [ $option = --poor ] && echo ' x2')
+	check "no twilight: exit 1: $option" test "$(at 2026-06-21 --db "$pole" $option "evening-9..+20m$tail")" = 1
+	check "no twilight: said: $option" said "^wane: plan: ${option#--}: does not happen this night"
+	check "the skipped hour: exit 1: $option" test "$(at 2026-03-07 --db "$db" $option "02:30..04:00$tail")" = 1
+	check "wrong syntax: exit 2: $option" test "$(at 2026-03-07 --db "$db" $option "2:30..04:00$tail")" = 2
+	check "the repeated hour: exit 2: $option" test "$(at 2026-10-31 --db "$db" $option "01:30..04:00$tail")" = 2
+done
+check "--from in the skipped hour: exit 1" test "$(at 2026-03-07 --db "$db" --from 02:30)" = 1
+
 # --- a plan kept before the first telescope was added
 f=$scratch/first.db
 "$WANE" import config-example/demo-targets.csv --db "$f" >/dev/null 2>&1

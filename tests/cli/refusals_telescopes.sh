@@ -87,6 +87,7 @@ hill 2 '--no-allotments: unknown option of allot' allot list --no-allotments
 
 # --- --half
 refuse 2 '--half: not a rule for halves of the night (got "noon", expected dark, sunset or HH:MM)' site set 'Tern Hill' --half noon
+refuse 2 '--half: no middle of a night (got "12:00", expected 18:00 to 06:00)' site set 'Tern Hill' --half 12:00
 refuse 2 '--half: no such time of day (got "24:00"' site set 'Tern Hill' --half 24:00
 refuse 2 '--half: the value is empty' site set 'Tern Hill' --half ''
 hill 2 '--half: unknown option of night' night --half dark

@@ -146,7 +146,7 @@ quiet allot add 2026-10-31 08:30Z..04:00 >"$scratch/out"
 check "with Z: exit 0" test $? = 0
 check "with Z: said" said 'wane: allot: Sun 1 Nov 01:30 MST (08:30 UTC) to Sun 1 Nov 04:00 MST (11:00 UTC)'
 quiet allot add 2026-03-07 02:30..04:00 >"$scratch/out"
-check "in the skipped hour: exit 2" test $? = 2
+check "in the skipped hour: exit 1" test $? = 1
 check "in the skipped hour: said" said 'does not exist this night'
 quiet allot add 2026-03-06..2026-03-08 02:30..04:00 >"$scratch/out"
 check "one night of three: exit 0" test $? = 0
@@ -162,8 +162,11 @@ check "season says it of that night alone" test "$(grep -c '^wane: allotment: ni
 # --- a Sun that does not set
 quiet site add 'Tern North' --place 78,15,10 >/dev/null
 quiet allot add 2026-06-21 evening-6..morning-6 --site 'Tern North' >"$scratch/out"
-check "no twilight: kept" test $? = 0
-check "no twilight: said" said 'on 1 of 1 night it allots nothing: does not happen this night'
+check "no twilight: exit 1" test $? = 1
+check "no twilight: said" said 'wane: SPAN: does not happen this night'
+quiet allot add 2026-03-20..2026-06-21 evening-6..morning-6 --site 'Tern North' >"$scratch/out"
+check "no twilight on some nights: kept" test $? = 0
+check "no twilight on some nights: said" said 'on 78 of 94 nights it allots nothing: night 5/6 Apr 2026: does not happen this night'
 quiet night 2026-06-21 --site 'Tern North' --format json >"$scratch/out"
 check "no twilight: nothing" grep -q '"allotted": \[\]' "$scratch/out"
 check "no twilight: said again" sh -c 'grep -q "^wane: allotment: .* allots nothing: does not happen this night" "$1"' - "$scratch/err"
@@ -171,6 +174,8 @@ check "no twilight: said again" sh -c 'grep -q "^wane: allotment: .* allots noth
 # --- halves
 quiet site set "$hill" --half 01:10 >"$scratch/out"
 check "site set --half: shown" grep -q ', nights halved at 01:10$' "$scratch/out"
+check "site set --half: in the history, in words" sh -c '"$1" history --db "$2" --format csv | sed -n 2p | grep -q "halves of the nights of "' - "$WANE" "$db"
+check "undone and done again" sh -c '"$1" undo --db "$2" | grep -q "halves of the nights of " && "$1" undo --db "$2" --change "$("$1" history --db "$2" --format csv | sed -n "2s/,.*//p")" >/dev/null' - "$WANE" "$db"
 check "site show: json" grep -q '"mask": \[\], "half": "01:10", "sky": {}, "extinction": {}, "telescope": null}' <<-EOT
 	$(quiet site show "$hill" --format json)
 EOT

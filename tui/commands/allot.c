@@ -46,7 +46,7 @@ static enum status read_nights(const struct run *r, const char *text, struct all
 /* --- add --- */
 
 /* What was typed, resolved: of each night, told for the first and the last that have it. Refused where no
- * night can have it; a Sun that does not do it that night is told of. */
+ * night has it; of others it is told. */
 static int try_nights(struct run *r, const struct allotment *a)
 {
 	struct night night;
@@ -74,8 +74,8 @@ static int try_nights(struct run *r, const struct allotment *a)
 	}
 	if (last_echo[0])
 		diagnose("allot", "last: %s", last_echo);
-	if (good == 0 && absent == 0)
-		return diagnose_err("SPAN", &first_fault, EXIT_USAGE);
+	if (good == 0)
+		return diagnose_err("SPAN", &first_fault, absent > 0 ? EXIT_UNMET : EXIT_USAGE);
 	if (bad > 0)
 		diagnose("allot", "on %ld of %ld night%s it allots nothing: %s", bad, good + bad,
 			 good + bad == 1 ? "" : "s", first_fault.text);

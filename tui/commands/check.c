@@ -12,6 +12,11 @@ static void say_line(void *ctx, const char *line)
 	fprintf(ctx, "%s\n", clean);
 }
 
+static void put_count(FILE *to, const char *link, long n, const char *what)
+{
+	fprintf(to, "%s%ld %s%s", link, n, what, n == 1 ? "" : "s");
+}
+
 static int check_store(struct run *r, FILE *to)
 {
 	struct store_counts count;
@@ -24,8 +29,15 @@ static int check_store(struct run *r, FILE *to)
 	if (store_check(r->store, say_line, to, &faults, &e) != ST_OK ||
 	    store_count(r->store, &count, &e) != ST_OK)
 		return diagnose_err("check", &e, EXIT_UNMET);
-	fprintf(to, "%ld targets, %ld ephemeris versions, %ld sites, %ld changes\n", count.targets,
-		count.ephemerides, count.sites, count.changes);
+	put_count(to, "", count.targets, "target");
+	put_count(to, ", ", count.ephemerides, "ephemeris version");
+	put_count(to, ", ", count.sites, "site");
+	put_count(to, ", ", count.telescopes, "telescope");
+	put_count(to, ", ", count.allotments, "allotment");
+	put_count(to, ", ", count.goals, "goal");
+	put_count(to, ", ", count.plans, "plan");
+	put_count(to, ", ", count.changes, "change");
+	fputc('\n', to);
 	if (faults > 0)
 		fprintf(to, "NOT SOUND: %d fault%s in %s\n", faults, faults == 1 ? "" : "s", r->db_path);
 	else
