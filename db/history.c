@@ -96,11 +96,11 @@ static const char *const touched_plural[TOUCHED_KINDS] = {
 struct tally {
 	long n;
 	int64_t target_id; /* of the first */
-	bool one_target;   /* they all belong to it */
 	int64_t number;	   /* of the first: version, epoch or night */
 	char name[96];	   /* of the first */
-	bool one_number;   /* all have it */
 	char last[96];	   /* name of the last */
+	bool one_target;   /* all belong to that of the first */
+	bool one_number;   /* all have that of the first */
 };
 
 static void count(struct tally *t, int64_t target_id, const char *name, int64_t number)

@@ -95,7 +95,7 @@ enum status row_list_load(struct store *s, const struct row_kind *kind, bool rem
 	}
 	sql_reset(s, kind->load);
 	out->block = l.texts.text;
-	for (size_t k = 0; st == ST_OK && k < out->n; k++)
+	for (size_t k = 0; st == ST_OK && l.place && k < out->n; k++)
 		for (size_t i = 0; i < kind->n_texts; i++)
 			*text_member(element(&l, k), kind->text_at[i]) = out->block + l.place[k][i];
 	free(l.place);

@@ -244,18 +244,18 @@ static bool search_open(struct search *s)
 	size_t n = (size_t)s->net->n, events = (size_t)s->n_events, held = 0;
 	for (size_t j = 0; j < n; j++)
 		held += (size_t)s->net->spot[j].n_events;
-	s->shared = calloc(events, sizeof *s->shared);
-	s->fee = calloc(events, sizeof *s->fee);
-	s->count = calloc(events, sizeof *s->count);
+	s->shared = calloc(events + 1, sizeof *s->shared);
+	s->fee = calloc(events + 1, sizeof *s->fee);
+	s->count = calloc(events + 1, sizeof *s->count);
 	s->holder_at = calloc(events + 1, sizeof *s->holder_at);
-	s->holder = calloc(held, sizeof *s->holder);
-	s->barred = calloc(n, sizeof *s->barred);
-	s->gain = calloc(n, sizeof *s->gain);
-	s->end = calloc(n, sizeof *s->end);
+	s->holder = calloc(held + 1, sizeof *s->holder);
+	s->barred = calloc(n + 1, sizeof *s->barred);
+	s->gain = calloc(n + 1, sizeof *s->gain);
+	s->end = calloc(n + 1, sizeof *s->end);
 	s->beyond = calloc(n + 1, sizeof *s->beyond);
-	s->hopeless = calloc(n, sizeof *s->hopeless);
-	s->plain = calloc(n, sizeof *s->plain);
-	s->chain = calloc(n, sizeof *s->chain);
+	s->hopeless = calloc(n + 1, sizeof *s->hopeless);
+	s->plain = calloc(n + 1, sizeof *s->plain);
+	s->chain = calloc(n + 1, sizeof *s->chain);
 	return s->shared && s->fee && s->count && s->holder_at && s->holder && s->barred && s->gain &&
 	       s->plain && s->chain;
 }

@@ -200,6 +200,7 @@ static int list_allotments(const struct env *env, const struct options *o)
 		if (open_run(&run, env, o, NEED_STORE | NEED_SITE, &code, &e) != ST_OK)
 			return diagnose_whole(&e, code);
 	}
+	/* NOLINTNEXTLINE(bugprone-sizeof-expression): pointers are what it holds */
 	const struct allotment **which = calloc(run.allotments.n + 1, sizeof *which);
 	if (!which) {
 		run_close(&run);

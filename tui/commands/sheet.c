@@ -142,13 +142,16 @@ static int write_view(struct run *r, const struct plan_view *v, enum format form
 	const struct sheet_changes changes = {
 	    .since = r->options->since ? since.words : NULL, .line = since.line, .n = since.n};
 	int code = EXIT_UNMET;
-	if (run_out_open(r, &out, &e) != ST_OK) {
-		diagnose_whole(&e, EXIT_UNMET);
-	} else if (!write_format(out.file, format, v, &changes)) {
+	enum status s = run_out_open(r, &out, &e);
+	const bool whole = s == ST_OK && write_format(out.file, format, v, &changes);
+	if (whole)
+		s = out_commit(&out, &e);
+	else if (s == ST_OK)
 		out_abandon(&out);
-		diagnose("memory", "none for the whole sheet");
-	} else if (out_commit(&out, &e) != ST_OK) {
+	if (s != ST_OK) {
 		diagnose_whole(&e, EXIT_UNMET);
+	} else if (!whole) {
+		diagnose("memory", "none for the whole sheet");
 	} else {
 		code = EXIT_DONE;
 		say_left_out(v);

@@ -131,7 +131,7 @@ static int wanted(const struct run *r, enum verb verb, struct telescope *t)
 static int change_telescope(const struct env *env, const struct options *o, enum verb verb)
 {
 	struct run read, write;
-	struct telescope t;
+	struct telescope t = telescope_empty();
 	struct err e;
 	int code;
 	if (run_open(&read, env, o, NEED_STORE | NEED_SITE, &code, &e) != ST_OK)
