@@ -96,7 +96,7 @@ done
 typed 2 --from 01:30
 typed 0 --from 08:30Z
 wane plan 2026-03-07 --lost 02:30..03:30 >/dev/null
-check "in spring: a time that there is not: exit 2: $(head -n 1 "$scratch/err")" test $? = 2
+check "in spring: a time that there is not: exit 1: $(head -n 1 "$scratch/err")" test $? = 1
 wane plan 2026-03-07 --lost 01:30..03:30 >/dev/null
 check "in spring: from before to behind" grep -q 'Sun 8 Mar 01:30 MST (08:30 UTC) to Sun 8 Mar 03:30 MDT (09:30 UTC)' "$scratch/err"
 finish
