@@ -143,7 +143,7 @@ static void say_tally(const struct tally tally[TOUCHED_KINDS], enum touched kind
 		snprintf(out, size, "telescope %s", t->name);
 	else if (kind == TOUCHED_ALLOTMENT)
 		snprintf(out, size, "allotment from %s, %s", night, t->name);
-	else if (kind == TOUCHED_SETTING)
+	else if (kind == TOUCHED_SETTING || kind == TOUCHED_STAR)
 		snprintf(out, size, "%s", t->name);
 	else if (kind == TOUCHED_PLAN)
 		snprintf(out, size, "plan of %s, draft %s", night, t->name);
@@ -151,8 +151,6 @@ static void say_tally(const struct tally tally[TOUCHED_KINDS], enum touched kind
 		snprintf(out, size, "%s, plan of %s", t->name, night);
 	else if (kind == TOUCHED_GOAL)
 		snprintf(out, size, "goal of %s", t->name);
-	else if (kind == TOUCHED_STAR)
-		snprintf(out, size, "%s", t->name);
 	else
 		snprintf(out, size, "mid-time of %s, epoch %lld", t->name, (long long)t->number);
 }

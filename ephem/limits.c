@@ -104,3 +104,13 @@ struct limits limits_for_target(const struct limits *run, const struct target *t
 			continue; /* out of range: the run's limit stays, the import has flagged it */
 	return l;
 }
+
+bool limits_same(const struct limits *a, const struct limits *b)
+{
+	for (int i = 0; i < LIM_COUNT; i++) {
+		const bool none = isnan(a->value[i]) && isnan(b->value[i]);
+		if (a->source[i] != b->source[i] || (!none && !(a->value[i] == b->value[i])))
+			return false;
+	}
+	return true;
+}

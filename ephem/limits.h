@@ -45,6 +45,8 @@ struct limits limits_built_in(void);
 /* Puts a value if its source ranks at least as high as the one there. ST_RANGE outside the rule's range (NaN too, where the rule
  * does not allow it): the message names option and range. */
 MUST_USE enum status limits_put(struct limits *l, enum limit_id id, double value, enum limit_source source, struct err *e);
+/* Whether all values and where they come from are equal; no value is unlike itself, NAN too. */
+bool limits_same(const struct limits *a, const struct limits *b);
 /* The run's limits with the target's own laid over them. Values of the target that are out of range are left out. */
 struct limits limits_for_target(const struct limits *run, const struct target *t);
 

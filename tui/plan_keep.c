@@ -158,8 +158,8 @@ static enum status store_row(struct plan_view *v, const struct plan_row *row, bo
 			     struct err *e)
 {
 	struct store *s = v->run->store;
-	int edition;
-	int64_t seen_id, id = 0;
+	int edition = 0;
+	int64_t seen_id = 0, id = 0;
 	enum status st = based_on(v, row->draft, &edition, &seen_id, e);
 	if (st == ST_OK)
 		st = plan_store(s, row, keep, edition, &id, &edition, e);
@@ -251,7 +251,7 @@ static enum status find_item(const struct plan_view *v, const char *target, cons
 enum status plan_mark_item(struct run *r, const struct plan_view *v, const char *target,
 			   enum plan_state state, const char *cause, const char *note, struct err *e)
 {
-	const struct plan_item_view *item;
+	const struct plan_item_view *item = NULL;
 	char utc[UTC_TEXT_MAX];
 	const struct change change = change_now(r, "plan mark", utc);
 	const bool mark = state >= PLAN_STARTED;
@@ -261,7 +261,7 @@ enum status plan_mark_item(struct run *r, const struct plan_view *v, const char 
 	enum status s = find_item(v, target, &item, e);
 	if (s == ST_OK)
 		s = store_begin(r->store, &change, e);
-	if (s != ST_OK)
+	if (s != ST_OK || !item)
 		return s;
 	s = plan_mark(r->store, v->plan_id, item->key, mark ? plan_state_words[state] : "",
 		      cause ? cause : "", note ? note : "", mark ? utc : "", e);

@@ -162,8 +162,10 @@ enum status plan_stand(struct plan_view *v, const struct plan_wish *wish, const 
 		echo_add(echo, "from", clock, out->not_before_d, out->not_before_d);
 	} else if (runs(v, &at))
 		out->not_before_d = at.now_d;
+	/* NOLINTBEGIN(bugprone-sizeof-expression): pointers are what they hold */
 	out->item = plan_alloc(v, v->n_items, sizeof *out->item);
 	out->fixed = plan_alloc(v, v->n_items, sizeof *out->fixed);
 	out->reopened = plan_alloc(v, v->n_items, sizeof *out->reopened);
+	/* NOLINTEND(bugprone-sizeof-expression) */
 	return sort_items(v, wish->afresh, &at, c, out, e);
 }

@@ -338,7 +338,7 @@ enum status run_choose_site(struct run *r, size_t index, struct err *e)
 		return err_set(e, ST_RANGE, "site %zu: there are %zu", index, r->sites.n);
 	take_site(r, &r->sites.site[index]);
 	enum status s = take_telescope(r, false, e);
-	if (s == ST_OK && r->prepared && memcmp(&before, &r->limits, sizeof before) != 0)
+	if (s == ST_OK && r->prepared && !limits_same(&before, &r->limits))
 		s = run_prepare(r, e);
 	else if (s == ST_OK && r->prepared)
 		s = run_fill_observed(r, e);
