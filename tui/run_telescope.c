@@ -128,7 +128,7 @@ static const struct telescope *only_one(const struct run *r)
 static const struct telescope *usual_one(const struct run *r)
 {
 	const double id = run_site_value(r, SITE_TELESCOPE, r->site.id, BAND_NONE);
-	for (size_t i = 0; i < r->telescopes.n; i++) {
+	for (size_t i = 0; r->telescopes.telescope && i < r->telescopes.n; i++) {
 		const struct telescope *t = &r->telescopes.telescope[i];
 		if (t->site_id == r->site.id && (double)t->id >= id && (double)t->id <= id)
 			return t;

@@ -89,7 +89,7 @@ void ics_value(struct ics *c, const char *name, const char *value)
 void ics_text(struct ics *c, const char *name, const char *text)
 {
 	char *clean = ics_clean(text);
-	char *escaped = clean ? malloc(2 * strlen(clean) + 1) : NULL;
+	char *escaped = clean ? calloc(2 * strlen(clean) + 1, 1) : NULL;
 	size_t used = 0;
 	if (!escaped) {
 		free(clean);
