@@ -184,7 +184,7 @@ enum status plan_save(struct run *r, struct plan_view *v, const char *draft, boo
 	const char *name = draft && draft[0] ? draft : v->draft[0] ? v->draft : main_draft;
 	char utc[UTC_TEXT_MAX];
 	const struct change change = change_now(r, keep ? "plan keep" : "plan save", utc);
-	struct plan_row row = {.id = 0};
+	struct plan_row row = {.draft = ""};
 	enum status s = can_store(v, name, e);
 	if (s != ST_OK)
 		return s;
