@@ -201,4 +201,12 @@ check "the prior can" test $? = 0
 "$WANE" drift 'Tern 14 b' --no-refresh --now 2026-06-09T00:00Z --at 2026-06-09T12:00Z --format csv --db "$one" 2>/dev/null | sed 1d | cut -d, -f6 >"$scratch/one.sigma"
 check "sigma at the observed epoch: $(cat "$scratch/one.sigma")" awk '{ exit !($1 > 0.7105 && $1 < 0.7125) }' "$scratch/one.sigma"
 
+# --- a result never replaces the database, whatever is forced
+before=$(cksum <"$db")
+for command in "history" "drift --no-refresh" "midtime list 'Tern 14 b'" "refit 'WASP-4 b'"; do
+	eval "\"\$WANE\" $command $now --db \"\$db\" --out \"\$db\" --force" >/dev/null 2>"$scratch/err"
+	check "$command: exit 1 over the database" test $? = 1
+	check "$command: it says why" grep -q 'is the database: a result never replaces it' "$scratch/err"
+done
+check "the database is as it was" test "$(cksum <"$db")" = "$before"
 finish

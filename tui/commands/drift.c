@@ -323,7 +323,7 @@ int command_drift(const struct env *env, const struct options *o)
 		diagnose("site", "several are stored and none is named: refresh is searched at %s",
 			 run.site.name);
 	struct out out;
-	if (out_open(&out, o->out, o->force, &e) != ST_OK) {
+	if (run_out_open(&run, &out, &e) != ST_OK) {
 		run_close(&run);
 		return diagnose_whole(&e, EXIT_UNMET);
 	}

@@ -83,7 +83,7 @@ static int write_history(struct run *r, int64_t target_id)
 		return usage_fault("--format", &e);
 	if (r->store && history_list(r->store, target_id, &row, &n, &e) != ST_OK)
 		return diagnose_err("history", &e, EXIT_UNMET);
-	if (out_open(&out, o->out, o->force, &e) != ST_OK) {
+	if (run_out_open(r, &out, &e) != ST_OK) {
 		free(row);
 		return diagnose_whole(&e, EXIT_UNMET);
 	}

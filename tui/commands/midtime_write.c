@@ -116,7 +116,7 @@ int midtimes_write(struct run *r)
 		return diagnose_err("midtime", &e, EXIT_UNMET);
 	if (list.n_bad > 0)
 		diagnose("store", "%s", list.bad);
-	if (out_open(&out, o->out, o->force, &e) != ST_OK) {
+	if (run_out_open(r, &out, &e) != ST_OK) {
 		midtime_list_free(&list);
 		return diagnose_whole(&e, EXIT_UNMET);
 	}

@@ -121,7 +121,7 @@ static int write_fits(struct run *r, const struct fit_view *v)
 	bool whole = true;
 	if (format_of(o, FORMAT_TEXT | FORMAT_CSV | FORMAT_JSON, &format, &e) != ST_OK)
 		return usage_fault("--format", &e);
-	if (out_open(&out, o->out, o->force, &e) != ST_OK)
+	if (run_out_open(r, &out, &e) != ST_OK)
 		return diagnose_whole(&e, EXIT_UNMET);
 	const char *name = r->prepared[0].target->name;
 	if (format == FORMAT_TEXT)
