@@ -2,6 +2,7 @@
 #include "tests/support/night_fixture.h"
 
 #include "tests/support/check.h"
+#include "tui/run_parts.h"
 
 #include <math.h>
 #include <stdlib.h>
@@ -96,6 +97,7 @@ void fixture_close(struct night_fixture *f)
 {
 	zone_close(f->run.zone);
 	free(f->run.telescope_text);
+	run_drop_observing(&f->run);
 	free(f->run.memo);
 	free(f->run.prepared);
 	free(f);
