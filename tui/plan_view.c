@@ -122,3 +122,10 @@ const char *member_figure(const struct plan_member_view *m, const char *column)
 	const int i = column_find(column);
 	return i >= 0 && m->figure && m->figure[i] ? m->figure[i] : "";
 }
+
+const char *member_chance_column(const struct plan_member_view *m)
+{
+	if (strcmp(m->variant, variant_words[VARIANT_INGRESS]) == 0)
+		return "chance_ingress";
+	return strcmp(m->variant, variant_words[VARIANT_EGRESS]) == 0 ? "chance_egress" : "chance_done";
+}

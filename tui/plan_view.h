@@ -101,4 +101,7 @@ bool plan_block_same(const struct plan_view *v, const struct plan_block_view *a,
 /* Text of a member's figure by the column's name; "" none. */
 const char *member_figure(const struct plan_member_view *m, const char *column);
 
+/* The column with the chance of what is planned of a member: of its one limb, or of both. */
+const char *member_chance_column(const struct plan_member_view *m);
+
 #endif

@@ -48,7 +48,7 @@ static void member_line(struct text_view *t, const struct plan_view *v, const st
 	char slew[16] = "", start[16] = "", t1[16], t4[16], end[16] = "", number[16] = "",
 	     name[NAME_BYTES_MAX], done[NUMBER_TEXT_MAX] = "?", worth[NUMBER_TEXT_MAX], moved[24] = "";
 	double chance;
-	const char *figure = member_figure(m, "chance_done");
+	const char *figure = member_figure(m, member_chance_column(m));
 	if (figure[0] && number_parse(figure, strlen(figure), &chance, NULL, NULL) == ST_OK)
 		chance_text(chance, done, sizeof done);
 	number_text_fixed(m->worth, 2, worth);

@@ -42,14 +42,6 @@ static void moved_cell(const struct plan_member_view *m, char out[CELL_BYTES])
 		snprintf(out, CELL_BYTES, "%s", m->moved_why[0] ? "?" : "");
 }
 
-/* The chance of what is planned of it. */
-static const char *chance_column(const struct plan_member_view *m)
-{
-	if (strcmp(m->variant, variant_words[VARIANT_INGRESS]) == 0)
-		return "chance_ingress";
-	return strcmp(m->variant, variant_words[VARIANT_EGRESS]) == 0 ? "chance_egress" : "chance_done";
-}
-
 static bool has_moved(const struct plan_view *v)
 {
 	for (size_t i = 0; i < v->n_items; i++)
@@ -161,7 +153,7 @@ static void block_row(FILE *to, const struct plan_view *v, const struct plan_blo
 static void member_cells(FILE *to, const struct plan_member_view *m, int width)
 {
 	char done[NUMBER_TEXT_MAX], worth[NUMBER_TEXT_MAX], moved[CELL_BYTES];
-	plan_per_cent(m, chance_column(m), done);
+	plan_per_cent(m, member_chance_column(m), done);
 	number_text_fixed(m->worth, 2, worth);
 	moved_cell(m, moved);
 	text_cell(to, m->target, width, true);
@@ -209,7 +201,7 @@ static void item_record(FILE *to, const struct plan_view *v, const struct plan_i
 		const struct plan_member_view *m = &item->member[i];
 		sheet_both(v, m->t1, t1);
 		sheet_both(v, m->t4, t4);
-		plan_per_cent(m, chance_column(m), done);
+		plan_per_cent(m, member_chance_column(m), done);
 		text_cell(to, m->target, NAME_CHARS_MAX, false);
 		fprintf(to, ", %s, %s\nT1 %s\nT4 %s\nchance of it %s%s\nworth %.2f\n",
 			plan_kind_word(m->kind), m->variant, t1, t4, done[0] ? done : "not known",
